@@ -1,0 +1,1 @@
+"""Mass properties of rotating assemblies: pure functions and frozen values, in SI units, without a window."""

@@ -1,0 +1,220 @@
+"""Where a body stands in a frame, and how equal bodies repeat: rigid placement, mirror, ring and row.
+
+A placement named tf_group_part carries points of the part into the group: p_group = tf_group_part.apply(p_part).
+Turns are about the fixed axes of the outer frame, x first, then y, then z: R = Rz·Ry·Rx.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import TypeAlias
+
+import numpy as np
+
+from core.arrays import ArrayLike, FloatArray, frozen
+from core.errors import ValueRefused
+from core.moments import Moments, unit_vector
+
+Triple: TypeAlias = tuple[float, float, float]
+
+# Refused above this: nobody means it, and each copy costs a placement.
+MOST_COPIES = 100_000
+
+
+@dataclass(frozen=True, eq=False)
+class Placement:
+    """A turn or mirror followed by a shift, or a batch of them: p_outer = turn·p_inner + shift.
+
+    Attributes:
+        turn: (..., 3, 3) orthogonal; its determinant is −1 where the placement mirrors.
+        shift: (..., 3) m.
+    """
+
+    turn: FloatArray
+    shift: FloatArray
+
+    def __init__(self, turn: ArrayLike, shift: ArrayLike) -> None:
+        object.__setattr__(self, "turn", frozen(turn))
+        object.__setattr__(self, "shift", frozen(shift))
+
+    @classmethod
+    def identity(cls) -> Placement:
+        """Return the placement that leaves every point where it is."""
+        return cls(np.eye(3), np.zeros(3))
+
+    def __matmul__(self, inner: Placement) -> Placement:
+        """Return the placement that does inner first: tf_a_c = tf_a_b @ tf_b_c."""
+        return Placement(self.turn @ inner.turn, self.apply(inner.shift))
+
+    def apply(self, points: ArrayLike) -> FloatArray:
+        """Return the points (..., 3) m carried over; the batch of the placement broadcasts against theirs."""
+        return np.asarray(np.einsum("...ij,...j->...i", self.turn, np.asarray(points, dtype=float)) + self.shift)
+
+    def turn_only(self, directions: ArrayLike) -> FloatArray:
+        """Return directions (..., 3) carried over, without the shift."""
+        return np.asarray(np.einsum("...ij,...j->...i", self.turn, np.asarray(directions, dtype=float)))
+
+    def inverse(self) -> Placement:
+        """Return the placement that undoes this one."""
+        back = np.swapaxes(self.turn, -1, -2)
+        return Placement(back, -np.einsum("...ij,...j->...i", back, self.shift))
+
+    @property
+    def mirrors(self) -> bool:
+        """Whether this single placement turns left into right."""
+        return bool(np.linalg.det(self.turn) < 0)
+
+    @property
+    def matrix(self) -> FloatArray:
+        """Homogeneous matrices (..., 4, 4) of the same placements."""
+        matrix = np.zeros((*self.turn.shape[:-2], 4, 4))
+        matrix[..., :3, :3], matrix[..., :3, 3], matrix[..., 3, 3] = self.turn, self.shift, 1.0
+        return matrix
+
+    def place(self, moments: Moments) -> Moments:
+        """Return the moments (of the same batch, or of one body for all of it) of the body standing here."""
+        return moments.mapped(self.turn, self.shift)
+
+
+def turn_about(direction: ArrayLike, angle: ArrayLike) -> FloatArray:
+    """Return the rotation matrices (..., 3, 3) about direction (3,) by angles (...) rad (Rodrigues' formula)."""
+    unit, angles = unit_vector(direction), np.asarray(angle, dtype=float)[..., None, None]
+    cross = np.cross(np.eye(3), -unit)
+    return np.asarray(np.eye(3) + np.sin(angles) * cross + (1 - np.cos(angles)) * (cross @ cross))
+
+
+def matrix_of_turns(turns: ArrayLike) -> FloatArray:
+    """Return Rz·Ry·Rx (3, 3) for turns (3,) rad about the fixed axes x, then y, then z."""
+    about_x, about_y, about_z = (turn_about(axis, angle) for axis, angle in zip(np.eye(3), np.asarray(turns), strict=True))
+    return np.asarray(about_z @ about_y @ about_x)
+
+
+def turns_of_matrix(turn: ArrayLike) -> Triple:
+    """Return the turns (x, y, z) rad that make a rotation matrix (3, 3); at y = ±90° the turn about x is 0."""
+    matrix = np.asarray(turn, dtype=float)
+    level = np.hypot(matrix[0, 0], matrix[1, 0])
+    about_y = np.arctan2(-matrix[2, 0], level)
+    if level > 1e-12:
+        about_x, about_z = np.arctan2(matrix[2, 1], matrix[2, 2]), np.arctan2(matrix[1, 0], matrix[0, 0])
+    else:
+        about_x, about_z = 0.0, np.arctan2(-matrix[0, 1], matrix[1, 1])
+    return float(about_x), float(about_y), float(about_z)
+
+
+@dataclass(frozen=True)
+class Pose:
+    """Where a part or group stands in the frame that holds it, as typed numbers.
+
+    Attributes:
+        position: of its origin, m.
+        turns: rad, about the outer frame's axes x, then y, then z.
+    """
+
+    position: Triple = (0.0, 0.0, 0.0)
+    turns: Triple = (0.0, 0.0, 0.0)
+
+    @property
+    def placement(self) -> Placement:
+        """The placement tf_outer_inner."""
+        return Placement(matrix_of_turns(self.turns) if any(self.turns) else np.eye(3), self.position)
+
+
+@dataclass(frozen=True)
+class Several:
+    """Equal bodies at one place: a quantity whose spacing does not matter, or only one."""
+
+    count: int = 1
+
+    def __post_init__(self) -> None:
+        _check_count(self.count)
+
+    def placements(self, tf_outer_first: Placement) -> Placement:
+        """Return the placements of all copies, a batch (count,)."""
+        return _batch(tf_outer_first, self.count)
+
+
+@dataclass(frozen=True)
+class Ring:
+    """Equal bodies on a pitch circle.
+
+    Attributes:
+        count: how many.
+        point, direction: the ring's axis in the outer frame, m; direction of any length.
+        start: rad, turn of the first copy away from the placed body.
+        span: rad; a full turn spaces the copies span/count apart, a part of a turn span/(count−1).
+        turning: whether the copies turn with the ring, or all keep the first one's orientation.
+    """
+
+    count: int = 6
+    point: Triple = (0.0, 0.0, 0.0)
+    direction: Triple = (0.0, 0.0, 1.0)
+    start: float = 0.0
+    span: float = 2 * np.pi
+    turning: bool = True
+
+    def __post_init__(self) -> None:
+        _check_count(self.count)
+        unit_vector(self.direction)
+
+    def placements(self, tf_outer_first: Placement) -> Placement:
+        """Return the placements of all copies, a batch (count,)."""
+        closed = abs(abs(self.span) - 2 * np.pi) < 1e-9
+        pitch = self.span / (self.count if closed else max(self.count - 1, 1))
+        turns = turn_about(self.direction, self.start + pitch * np.arange(self.count))
+        point = np.asarray(self.point)
+        round_axis = Placement(turns, point - turns @ point)
+        if self.turning:
+            return round_axis @ tf_outer_first
+        return Placement(_batch(tf_outer_first, self.count).turn, round_axis.apply(tf_outer_first.shift))
+
+
+@dataclass(frozen=True)
+class Row:
+    """Equal bodies in a straight row, each one step (m, in the outer frame) from the one before."""
+
+    count: int = 2
+    step: Triple = (0.1, 0.0, 0.0)
+
+    def __post_init__(self) -> None:
+        _check_count(self.count)
+
+    def placements(self, tf_outer_first: Placement) -> Placement:
+        """Return the placements of all copies, a batch (count,)."""
+        steps = np.arange(self.count)[:, None] * np.asarray(self.step)
+        return Placement(_batch(tf_outer_first, self.count).turn, tf_outer_first.shift + steps)
+
+
+@dataclass(frozen=True)
+class Mirrored:
+    """A body and its mirror image in the plane through point (m) across normal (any length), in the outer frame."""
+
+    point: Triple = (0.0, 0.0, 0.0)
+    normal: Triple = (1.0, 0.0, 0.0)
+    count: int = field(default=2, init=False)
+
+    def __post_init__(self) -> None:
+        unit_vector(self.normal)
+
+    def placements(self, tf_outer_first: Placement) -> Placement:
+        """Return the body's own placement and the mirrored one, a batch (2,)."""
+        unit = unit_vector(self.normal)
+        flip = np.eye(3) - 2 * np.outer(unit, unit)
+        point = np.asarray(self.point)
+        image = Placement(flip, point - flip @ point) @ tf_outer_first
+        return Placement(
+            np.stack([tf_outer_first.turn, image.turn]), np.stack([tf_outer_first.shift, image.shift])
+        )
+
+
+Copies: TypeAlias = Several | Ring | Row | Mirrored
+
+
+def _batch(tf: Placement, count: int) -> Placement:
+    return Placement(np.broadcast_to(tf.turn, (count, 3, 3)), np.broadcast_to(tf.shift, (count, 3)))
+
+
+def _check_count(count: int) -> None:
+    if not 1 <= count <= MOST_COPIES:
+        raise ValueRefused(
+            f"a quantity lies between 1 and {MOST_COPIES}", read=str(count), remedy="Give a whole number of equal parts"
+        )
