@@ -9,14 +9,19 @@ from __future__ import annotations
 from abc import ABC, abstractmethod
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import ClassVar, Literal, Self, TypeVar
+from typing import ClassVar, Literal, Self, TypeAlias, TypeVar
 
 import numpy as np
 
-from core.arrays import ArrayLike, FloatArray
+from core.arrays import ArrayLike, BoolArray, FloatArray, frozen
 from core.errors import ShapeError
 from core.facets import Facets
 from core.moments import Moments
+
+DimensionKind: TypeAlias = Literal["length", "angle", "count"]
+
+# Fewer steps than this make no closed surface of a round body.
+FEWEST_STEPS = 3
 
 
 @dataclass(frozen=True)
@@ -35,16 +40,17 @@ class Dimension:
     name: str
     label: str
     default: float
-    kind: Literal["length", "angle", "count"] = "length"
+    kind: DimensionKind = "length"
     symbol: str = ""
     may_be_zero: bool = False
 
 
 class Shape(ABC):
-    """A solid of uniform density in its own frame (part frame); subclasses are frozen dataclasses of dimensions.
+    """A solid of uniform density in its own frame (part frame); each one is a frozen dataclass of dimensions.
 
     Each dimension may be a number or an array (...): moments then come back as a batch of that shape.
     Solids of revolution have their axis along z. Bodies with a flat base stand on the plane z = 0.
+    Making one refuses dimensions that make no body (see `check`).
     """
 
     key: ClassVar[str]
@@ -57,33 +63,66 @@ class Shape(ABC):
 
     @abstractmethod
     def facets(self, steps: int = 48) -> Facets:
-        """Return a closed surface to draw, in m; a full circle is drawn in `steps` steps. Single shapes only."""
+        """Return a closed surface to draw, in m, a full circle in `steps` steps; for a single shape only."""
+
+    def __post_init__(self) -> None:
+        for dimension in self.dimensions:
+            try:
+                value = frozen(getattr(self, dimension.name))
+            except (TypeError, ValueError) as error:
+                raise ShapeError(
+                    f"the {dimension.label} is no number",
+                    where=self.title,
+                    read=repr(getattr(self, dimension.name)),
+                    remedy="Give a number",
+                ) from error
+            # The copy keeps a caller's array from changing the shape later.
+            object.__setattr__(self, dimension.name, value if value.ndim else float(value))
+        self.check()
 
     def check(self) -> None:
-        """Refuse dimensions that make no body.
+        """Refuse dimensions that make no body; a shape with a rule between its dimensions adds it here.
 
         Raises:
-            ShapeError: a dimension is not finite, negative, or zero where it may not be.
+            ShapeError: a dimension is negative, 0 where it may not be, not finite, or not whole where it counts.
         """
         for dimension in self.dimensions:
             value = self.array(dimension.name)
             good = np.isfinite(value) & (value >= 0 if dimension.may_be_zero else value > 0)
+            if dimension.kind == "count":
+                good &= value == np.round(value)
             if not np.all(good):
-                least = "at least 0" if dimension.may_be_zero else "more than 0"
+                (bad,) = first_where(~good, value)
                 raise ShapeError(
-                    f"the {dimension.label} has to be {least}",
+                    f"the {dimension.label} has to be {_limit(dimension)}",
                     where=self.title,
-                    read=f"{float(np.broadcast_to(value, good.shape)[~good].flat[0]) * 1e3:.6g} mm",
-                    remedy="Give a positive length",
+                    read=said(bad, dimension.kind),
+                    remedy="Give 0 or more" if dimension.may_be_zero else _REMEDY[dimension.kind],
                 )
 
     def array(self, name: str) -> FloatArray:
         """Return one dimension as a float64 array (...)."""
         return np.asarray(getattr(self, name), dtype=np.float64)
 
+    def single(self, name: str) -> float:
+        """Return one dimension of a single shape, as a plain float (m, rad, pieces).
+
+        Raises:
+            ShapeError: the shape is a batch.
+        """
+        value = self.array(name)
+        if value.ndim:
+            raise ShapeError(
+                "a batch of shapes has no single surface or set of dimensions",
+                where=self.title,
+                read=f"{name} of shape {value.shape}",
+                remedy="Take one of them",
+            )
+        return float(value)
+
     def values(self) -> dict[str, float]:
         """Return the dimensions of a single shape by name, as plain floats (m, rad, pieces)."""
-        return {dimension.name: float(self.array(dimension.name)) for dimension in self.dimensions}
+        return {dimension.name: self.single(dimension.name) for dimension in self.dimensions}
 
     @classmethod
     def of(cls, values: Mapping[str, ArrayLike]) -> Self:
@@ -96,11 +135,12 @@ class Shape(ABC):
         if unknown:
             known = ", ".join(dimension.name for dimension in cls.dimensions)
             raise ShapeError(
-                f"a {cls.title} has no such dimension", read=", ".join(sorted(unknown)), remedy=f"It has {known}"
+                "there is no such dimension",
+                where=cls.title,
+                read=", ".join(sorted(unknown)),
+                remedy=f"Choose from {known}",
             )
-        shape = cls(**{dimension.name: values.get(dimension.name, dimension.default) for dimension in cls.dimensions})
-        shape.check()
-        return shape
+        return cls(**{one.name: values.get(one.name, one.default) for one in cls.dimensions})
 
 
 SHAPES: dict[str, type[Shape]] = {}
@@ -112,3 +152,45 @@ def register(shape: ShapeClass) -> ShapeClass:
     """Enter a shape into the table that everything else reads; used as a class decorator."""
     SHAPES[shape.key] = shape
     return shape
+
+
+def upright_moments(
+    volume: ArrayLike, centre_height: ArrayLike, mean_squares: tuple[ArrayLike, ArrayLike, ArrayLike]
+) -> Moments:
+    """Return the moments of a body that is symmetric in the planes x = 0 and y = 0, at unit density.
+
+    Args:
+        volume: (...) m³.
+        centre_height: (...) m, z of the centre of mass.
+        mean_squares: three of (...) m², the means of x², y² and (z − centre height)² over the volume.
+    """
+    size, height, *squares = np.broadcast_arrays(volume, centre_height, *mean_squares)
+    centre = np.stack([np.zeros_like(height), np.zeros_like(height), height], axis=-1)
+    spread = np.stack(squares, axis=-1)[..., None] * np.eye(3) * np.asarray(size)[..., None, None]
+    return Moments(size, centre, spread)
+
+
+def said(value: float, kind: DimensionKind = "length") -> str:
+    """Return a dimension as an error sentence shows it: mm, degrees or a plain count.
+
+    >>> said(0.042), said(0.5235987755982988, "angle"), said(6, "count")
+    ('42 mm', '30°', '6')
+    """
+    if kind == "length":
+        return f"{value * 1e3:.6g} mm"
+    return f"{np.degrees(value):.6g}°" if kind == "angle" else f"{value:.6g}"
+
+
+def first_where(bad: BoolArray, *values: ArrayLike) -> tuple[float, ...]:
+    """Return the values at the first place of a batch where bad (...) holds; values broadcast against it."""
+    place = int(np.argmax(bad))
+    return tuple(float(np.broadcast_to(value, np.shape(bad)).flat[place]) for value in values)
+
+
+_REMEDY = {"length": "Give a positive length", "angle": "Give a positive angle", "count": "Give a whole number"}
+
+
+def _limit(dimension: Dimension) -> str:
+    if dimension.kind == "count":
+        return f"a whole number of at least {0 if dimension.may_be_zero else 1}"
+    return "at least 0" if dimension.may_be_zero else "more than 0"
