@@ -1,0 +1,201 @@
+"""The document as one immutable value: a tree of parts and groups, the axes, and the edits that make a new one."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from functools import cached_property
+
+from core.arrays import FloatArray, frozen
+from core.assembly.nodes import Group, Node, Part, Table, joined, walk
+from core.errors import EditRefused
+from core.moments import Moments, unit_vector
+from core.placement import Triple
+
+# Deeper nesting than this is refused: no machine has it, and a reader of the file must not be led into the ground.
+DEEPEST = 32
+
+
+@dataclass(frozen=True)
+class DriveAxis:
+    """A named axis that something turns about: through point (m, document frame) along direction (any length)."""
+
+    name: str = "Spindle"
+    point: Triple = (0.0, 0.0, 0.0)
+    direction: Triple = (0.0, 0.0, 1.0)
+
+    def __post_init__(self) -> None:
+        unit_vector(self.direction)
+
+    @property
+    def unit(self) -> FloatArray:
+        """The direction at length one, (3,)."""
+        return unit_vector(self.direction)
+
+
+@dataclass(frozen=True)
+class Assembly:
+    """Everything a document says.
+
+    Attributes:
+        name: of the document, as shown.
+        members: the outermost parts and groups, in the order of the ledger.
+        axes: at least one, names all different.
+        drive: the name of the one that is driven.
+
+    Every edit returns a new assembly that shares all it can with the old one; keys are unique.
+    """
+
+    name: str = "untitled"
+    members: tuple[Node, ...] = ()
+    axes: tuple[DriveAxis, ...] = (DriveAxis(),)
+    drive: str = "Spindle"
+
+    def __post_init__(self) -> None:
+        names = [axis.name for axis in self.axes]
+        if self.drive not in names or len(set(names)) != len(names):
+            raise EditRefused(
+                "one of the axes has to be the drive axis, and each needs a name of its own",
+                read=f"{self.drive!r} among {', '.join(names) or 'none'}",
+            )
+        self._paths  # noqa: B018  # refuses double keys and bottomless nesting at once
+
+    @cached_property
+    def _paths(self) -> dict[str, tuple[int, ...]]:
+        paths: dict[str, tuple[int, ...]] = {}
+        trail: list[int] = []
+        for node, depth in walk(self.members):
+            if depth >= DEEPEST:
+                raise EditRefused(f"groups nest at most {DEEPEST} deep", where=node.name)
+            trail[depth:] = [trail[depth] + 1 if depth < len(trail) else 0]
+            if node.key in paths:
+                raise EditRefused("two lines have the same key", where=node.name, read=node.key)
+            paths[node.key] = tuple(trail)
+        return paths
+
+    @property
+    def drive_axis(self) -> DriveAxis:
+        """The axis that the ledger and the sheet speak of."""
+        return next(axis for axis in self.axes if axis.name == self.drive)
+
+    @cached_property
+    def table(self) -> Table:
+        """Every body as a row, in the document frame."""
+        return joined([node.table for node in self.members])
+
+    @cached_property
+    def total(self) -> Moments:
+        """Moments of everything whose mass is known, in the document frame."""
+        return self.table.moments.total()
+
+    @cached_property
+    def without_mass(self) -> tuple[Part, ...]:
+        """The parts that the totals leave out, because nothing says what they weigh or they bound no volume."""
+        return tuple(part for part in self.table.parts if part.single is None)
+
+    @cached_property
+    def bounds(self) -> FloatArray | None:
+        """Lowest and highest corner of the box around everything, (2, 3) m in the document frame; None when empty."""
+        table = self.table
+        if not len(table.owner):
+            return None
+        import numpy as np
+
+        low = np.stack([part.bounds[0] for part in table.parts])[table.owner]
+        high = np.stack([part.bounds[1] for part in table.parts])[table.owner]
+        # The box around a turned box: its half-widths are |R| times the old ones.
+        centre = table.standing.apply(0.5 * (low + high))
+        half = np.einsum("nij,nj->ni", np.abs(table.standing.turn), 0.5 * (high - low))
+        return frozen([(centre - half).min(axis=0), (centre + half).max(axis=0)])
+
+    def __contains__(self, key: object) -> bool:
+        return key in self._paths
+
+    def node(self, key: str) -> Node:
+        """Return the part or group with this key.
+
+        Raises:
+            EditRefused: there is none.
+        """
+        return self._along(self._path(key))[-1]
+
+    def groups_above(self, key: str) -> tuple[Group, ...]:
+        """Return the groups that hold this node, the outermost first."""
+        return tuple(node for node in self._along(self._path(key))[:-1] if isinstance(node, Group))
+
+    def fresh_key(self, stem: str = "p") -> str:
+        """Return a key that no node has."""
+        number = len(self._paths) + 1
+        while f"{stem}{number}" in self._paths:
+            number += 1
+        return f"{stem}{number}"
+
+    def fresh_name(self, stem: str) -> str:
+        """Return stem, or stem with the first number that makes it a name no node has."""
+        names = {node.name for node, _ in walk(self.members)}
+        number = 2
+        name = stem
+        while name in names:
+            name, number = f"{stem} {number}", number + 1
+        return name
+
+    def replaced(self, node: Node) -> Assembly:
+        """Return the assembly with the node of the same key replaced by this one."""
+        path = self._path(node.key)
+        return replace(self, members=_rebuilt(self.members, path, (node,)))
+
+    def inserted(self, node: Node, group: str | None = None, index: int | None = None) -> Assembly:
+        """Return the assembly with a node put into a group (None: outermost) before index (None: at the end)."""
+        if group is None:
+            return replace(self, members=_with(self.members, node, index))
+        holder = self.node(group)
+        if not isinstance(holder, Group):
+            raise EditRefused("only a group holds other parts", where=holder.name, remedy="Choose a group, or add one")
+        return self.replaced(replace(holder, members=_with(holder.members, node, index)))
+
+    def removed(self, keys: tuple[str, ...]) -> Assembly:
+        """Return the assembly without these nodes and all they hold."""
+        left = self
+        for key in keys:
+            if key in left:
+                left = replace(left, members=_rebuilt(left.members, left._path(key), ()))
+            else:
+                self._path(key)  # refused, unless it went with a group that held it
+        return left
+
+    def moved(self, key: str, group: str | None = None, index: int | None = None) -> Assembly:
+        """Return the assembly with a node taken out and put into a group before index, its pose as it was.
+
+        Raises:
+            EditRefused: the group lies inside the node itself.
+        """
+        node = self.node(key)
+        if group is not None and (group == key or key in {above.key for above in self.groups_above(group)}):
+            raise EditRefused("a group cannot be put into itself", where=node.name)
+        return self.removed((key,)).inserted(node, group, index)
+
+    def _path(self, key: str) -> tuple[int, ...]:
+        if key not in self._paths:
+            raise EditRefused("the assembly has no such line", read=key)
+        return self._paths[key]
+
+    def _along(self, path: tuple[int, ...]) -> list[Node]:
+        nodes: list[Node] = []
+        members = self.members
+        for step in path:
+            nodes.append(members[step])
+            members = nodes[-1].members if isinstance(nodes[-1], Group) else ()
+        return nodes
+
+
+def _with(members: tuple[Node, ...], node: Node, index: int | None) -> tuple[Node, ...]:
+    at = len(members) if index is None else index
+    return (*members[:at], node, *members[at:])
+
+
+def _rebuilt(members: tuple[Node, ...], path: tuple[int, ...], instead: tuple[Node, ...]) -> tuple[Node, ...]:
+    """Return the members with the node at path replaced by those given instead."""
+    at, deeper = path[0], path[1:]
+    node = members[at]
+    if deeper and isinstance(node, Group):
+        instead = (replace(node, members=_rebuilt(node.members, deeper, instead)),)
+    return (*members[:at], *instead, *members[at + 1 :])

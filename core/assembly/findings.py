@@ -1,0 +1,52 @@
+"""What needs a look: the physical checks on every part and on the total, and the verdicts on its meshes."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from core.assembly.assembly import Assembly
+from core.assembly.bodies import KnownAxial
+from core.assembly.nodes import Part
+from core.checks import Check, check_body
+
+# A drive axis turned further than this from a known part's own axis sees the transverse inertia that was filled in.
+OBLIQUE = 1e-6
+
+
+@dataclass(frozen=True)
+class Finding:
+    """A check and the line it is about; key "" is the whole assembly."""
+
+    key: str
+    name: str
+    check: Check
+
+
+def findings_of(assembly: Assembly) -> tuple[Finding, ...]:
+    """Return every check on every part, in the order of the ledger, and then those on the total."""
+    found = [Finding(part.key, part.name, check) for part in assembly.table.parts for check in part.checks]
+    found += [Finding(part.key, part.name, check) for part in assembly.table.parts for check in _oblique(assembly, part)]
+    if assembly.table.parts and len(assembly.without_mass) < len(assembly.table.parts):
+        found += [Finding("", assembly.name, check) for check in _total_checks(assembly)]
+    return tuple(found)
+
+
+def _oblique(assembly: Assembly, part: Part) -> tuple[Check, ...]:
+    """Tell where the drive axis sees inertia that a data sheet did not give."""
+    if not isinstance(part.body, KnownAxial):
+        return ()
+    rows = assembly.table.standing.turn[[assembly.table.parts[i] is part for i in assembly.table.owner]]
+    tilt = np.linalg.norm(np.cross(rows[..., 2], assembly.drive_axis.unit), axis=-1).max()
+    if tilt < OBLIQUE:
+        return ()
+    text = (
+        f"{part.name}: its data sheet gives J about its own axis only, which is not parallel to "
+        f"{assembly.drive}; across the axis it stands in as a cylinder {part.body.length * 1e3:.4g} mm long"
+    )
+    return (Check("data sheet", ok=False, text=text),)
+
+
+def _total_checks(assembly: Assembly) -> list[Check]:
+    return check_body(assembly.total, name="total", bounds=assembly.bounds)

@@ -1,0 +1,209 @@
+"""The lines of an assembly: parts and groups, each standing in the frame of the group that holds it."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+from functools import cached_property
+from typing import TypeAlias
+
+import numpy as np
+
+from core.arrays import FloatArray, IntArray
+from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, bounds_of, equal_ellipsoid
+from core.assembly.part_checks import checks_of_part
+from core.checks import Check
+from core.errors import EditRefused
+from core.facets import Facets
+from core.material import ByDensity, ByMaterial, NotSet, Weighed
+from core.moments import Moments
+from core.placement import Copies, Placement, Pose, Several
+
+# A ledger of more bodies than this is refused: nested rings multiply, and nobody means ten million bolts.
+MOST_BODIES = 1_000_000
+
+
+@dataclass(frozen=True)
+class DataSheet:
+    """The mass of a known part comes from its data sheet, with its inertia."""
+
+    basis = "data sheet"
+    label = "data sheet"
+
+
+Driver: TypeAlias = ByMaterial | ByDensity | Weighed | NotSet | DataSheet
+
+
+@dataclass(frozen=True)
+class Part:
+    """One body, or several equal ones, with what it is made of and where it stands.
+
+    Attributes:
+        key: its identity in the document; stays the same through every edit.
+        name: as shown.
+        body: a shape, a mesh, or a data sheet's values.
+        driver: the one thing that says what it weighs; DataSheet exactly for known bodies.
+        pose: of the part frame in the frame of the group that holds it.
+        copies: how often it is there and where the copies stand.
+        typed: what the user typed for a number, by field, where that says more than the number ("3/8 in + 2 mm").
+        note: free text.
+    """
+
+    key: str
+    name: str
+    body: Body
+    driver: Driver = NotSet()
+    pose: Pose = Pose()
+    copies: Copies = Several(1)
+    typed: tuple[tuple[str, str], ...] = ()
+    note: str = ""
+
+    def __post_init__(self) -> None:
+        known = isinstance(self.body, KnownTensor | KnownAxial)
+        if known != isinstance(self.driver, DataSheet):
+            raise EditRefused(
+                "a known part takes its mass from its data sheet, and only a known part does", where=self.name,
+                remedy="Give it a material, a density or a weighed mass, or make it a known part",
+            )
+
+    @cached_property
+    def single(self) -> Moments | None:
+        """Moments of one copy in the part frame; None while nothing says what it weighs, or it bounds no volume."""
+        if isinstance(self.body, KnownTensor | KnownAxial):
+            return self.body.own
+        if self.body.solid is None or isinstance(self.driver, DataSheet):
+            return None
+        mass = self.driver.mass_of(float(self.body.solid.mass))
+        return None if mass is None else self.body.solid.with_mass(mass)
+
+    @cached_property
+    def standing(self) -> Placement:
+        """Placements tf_outer_part of all copies, a batch (n,)."""
+        return self.copies.placements(self.pose.placement)
+
+    @cached_property
+    def surface(self) -> Facets:
+        """What is drawn for one copy, in the part frame; a known part is drawn as the ellipsoid of equal moments."""
+        if isinstance(self.body, ShapeBody | MeshBody):
+            return self.body.surface
+        return equal_ellipsoid(self.body.own)
+
+    @cached_property
+    def bounds(self) -> FloatArray:
+        """Lowest and highest corner of the box around one copy, (2, 3) m in the part frame."""
+        return self.body.bounds if isinstance(self.body, ShapeBody | MeshBody) else bounds_of(self.surface)
+
+    @property
+    def volume(self) -> float | None:
+        """Volume of one copy in m³; None for a known part and for a mesh that bounds none."""
+        solid = self.body.solid if isinstance(self.body, ShapeBody | MeshBody) else None
+        return None if solid is None else float(solid.mass)
+
+    @property
+    def basis(self) -> str:
+        """Where its values come from, in a word or two, as shown beside them."""
+        if isinstance(self.body, MeshBody) and self.body.asset.survey.basis != "computed":
+            return self.body.asset.survey.basis
+        return self.driver.basis
+
+    @cached_property
+    def checks(self) -> tuple[Check, ...]:
+        """What was checked on one copy, in the order that a reader wants it."""
+        return checks_of_part(self)
+
+    @cached_property
+    def table(self) -> Table:
+        """Its copies as rows, in the frame of the group that holds it."""
+        count = self.copies.count
+        own = self.single or Moments.nothing()
+        batch = Moments(np.full(count, own.mass), np.tile(own.centre, (count, 1)), np.tile(own.spread, (count, 1, 1)))
+        return Table((self,), np.zeros(count, dtype=np.int64), self.standing, self.standing.place(batch))
+
+
+@dataclass(frozen=True)
+class Group:
+    """Parts and groups that belong together and move as one.
+
+    Attributes:
+        key, name, pose, copies, note: as of a Part.
+        members: in the order of the ledger.
+    """
+
+    key: str
+    name: str
+    members: tuple[Node, ...] = ()
+    pose: Pose = Pose()
+    copies: Copies = Several(1)
+    typed: tuple[tuple[str, str], ...] = ()
+    note: str = ""
+
+    @cached_property
+    def table(self) -> Table:
+        """Everything in it as rows, in the frame of the group that holds it."""
+        return joined([member.table for member in self.members]).repeated(self.copies.placements(self.pose.placement))
+
+
+Node: TypeAlias = Part | Group
+
+
+@dataclass(frozen=True, eq=False)
+class Table:
+    """Bodies as arrays: one row for every copy of every part.
+
+    Attributes:
+        parts: the lines, in the order of the ledger.
+        owner: (n,) which of the parts a row is a copy of.
+        standing: placements tf_frame_part, a batch (n,).
+        moments: a batch (n,) in the frame; mass 0 where a part's mass is not known.
+    """
+
+    parts: tuple[Part, ...]
+    owner: IntArray
+    standing: Placement
+    moments: Moments
+
+    def repeated(self, placements: Placement) -> Table:
+        """Return the rows as they stand in the outer frame, once for each of the placements, a batch (k,)."""
+        times, rows = len(placements.shift), len(self.owner)
+        if times * rows > MOST_BODIES:
+            raise EditRefused(
+                f"an assembly holds at most {MOST_BODIES} bodies", read=f"{times} copies of {rows}",
+                remedy="Make the ring or row smaller",
+            )
+        wide = Placement(np.repeat(placements.turn, rows, axis=0), np.repeat(placements.shift, rows, axis=0))
+        inner = Placement(np.tile(self.standing.turn, (times, 1, 1)), np.tile(self.standing.shift, (times, 1)))
+        batch = Moments(
+            np.tile(self.moments.mass, times),
+            np.tile(self.moments.centre, (times, 1)),
+            np.tile(self.moments.spread, (times, 1, 1)),
+        )
+        return Table(self.parts, np.tile(self.owner, times), wide @ inner, wide.place(batch))
+
+
+def joined(tables: list[Table]) -> Table:
+    """Return the tables one under the other; they stand in the same frame."""
+    if not tables:
+        nothing = Moments(np.zeros(0), np.zeros((0, 3)), np.zeros((0, 3, 3)))
+        return Table((), np.zeros(0, dtype=np.int64), Placement(np.zeros((0, 3, 3)), np.zeros((0, 3))), nothing)
+    first = np.cumsum([0] + [len(table.parts) for table in tables[:-1]])
+    return Table(
+        tuple(part for table in tables for part in table.parts),
+        np.concatenate([table.owner + start for table, start in zip(tables, first, strict=True)]),
+        Placement(
+            np.concatenate([table.standing.turn for table in tables]),
+            np.concatenate([table.standing.shift for table in tables]),
+        ),
+        Moments(
+            np.concatenate([table.moments.mass for table in tables]),
+            np.concatenate([table.moments.centre for table in tables]),
+            np.concatenate([table.moments.spread for table in tables]),
+        ),
+    )
+
+
+def walk(members: tuple[Node, ...], depth: int = 0) -> Iterator[tuple[Node, int]]:
+    """Yield every node with its depth, in the order of the ledger: a group before its members."""
+    for node in members:
+        yield node, depth
+        if isinstance(node, Group):
+            yield from walk(node.members, depth + 1)

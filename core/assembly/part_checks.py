@@ -1,0 +1,54 @@
+"""The checks on one part: its mesh or data sheet, and whether a body with such moments can exist."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.assembly.bodies import KnownAxial, KnownTensor, MeshBody
+from core.checks import Check, check_body
+
+if TYPE_CHECKING:
+    from core.assembly.nodes import Part
+
+
+def checks_of_part(part: Part) -> tuple[Check, ...]:
+    """Return the checks on one copy of a part, and on the mesh or the data sheet behind it."""
+    checks: list[Check] = list(_entry_checks(part))
+    if part.single is None:
+        if part.volume is not None:
+            checks.append(
+                Check("mass", ok=False, text=f"{part.name}: no material, density or weighed mass is set, so the "
+                      "totals leave it out. Choose one on the Part page")
+            )
+        return tuple(checks)
+    known = isinstance(part.body, KnownTensor | KnownAxial)
+    bounds = None if known else part.bounds
+    reach = None if bounds is None else _reach(part)
+    checks += check_body(part.single, name=part.name, volume=part.volume, reach=reach, bounds=bounds)
+    return tuple(checks)
+
+
+def _entry_checks(part: Part) -> tuple[Check, ...]:
+    if isinstance(part.body, KnownTensor | KnownAxial):
+        return part.body.entry_checks
+    if not isinstance(part.body, MeshBody):
+        return ()
+    survey = part.body.asset.survey
+    sound = survey.verdict in {"closed", "hairline cracks", "inside out"} and survey.solid is not None
+    words = [f"{part.name}: mesh {survey.verdict}"]
+    if survey.open_edges:
+        words.append(f"{survey.open_edges} open edges")
+    if survey.basis != "computed":
+        words.append(survey.basis)
+    return (Check("mesh", sound, "; ".join([", ".join(words), *survey.notes])),)
+
+
+def _reach(part: Part) -> float | None:
+    """Return how far the part's box reaches from its centre of mass, m."""
+    if part.single is None:
+        return None
+    low, high = part.bounds
+    farthest = np.maximum(np.abs(low - part.single.centre), np.abs(high - part.single.centre))
+    return float(np.linalg.norm(farthest))
