@@ -84,7 +84,7 @@ class Shape(ABC):
         """Refuse dimensions that make no body; a shape with a rule between its dimensions adds it here.
 
         Raises:
-            ShapeError: a dimension is negative, 0 where it may not be, not finite, or not whole where it counts.
+            ShapeError: a dimension is negative or not finite, 0 where it may not be, or a count not whole.
         """
         for dimension in self.dimensions:
             value = self.array(dimension.name)
@@ -187,7 +187,11 @@ def first_where(bad: BoolArray, *values: ArrayLike) -> tuple[float, ...]:
     return tuple(float(np.broadcast_to(value, np.shape(bad)).flat[place]) for value in values)
 
 
-_REMEDY = {"length": "Give a positive length", "angle": "Give a positive angle", "count": "Give a whole number"}
+_REMEDY = {
+    "length": "Give a positive length",
+    "angle": "Give a positive angle",
+    "count": "Give a whole number",
+}
 
 
 def _limit(dimension: Dimension) -> str:

@@ -14,8 +14,8 @@ def turned_surface(outline: ArrayLike, steps: int) -> Facets:
     """Return the closed surface of a body of revolution about z; its points lie on the true surface.
 
     Args:
-        outline: (n, 2) radius and z in m, a closed polygon, counter-clockwise in the plane of radius and z; no
-            radius is negative, and a point of radius 0 becomes the tip of a fan.
+        outline: (n, 2) radius and z in m, a closed polygon, counter-clockwise in the (radius, z) plane;
+            no radius is negative, and a point of radius 0 becomes the tip of a fan.
         steps: facets around.
 
     Raises:

@@ -32,7 +32,7 @@ class Sphere(Shape):
         return upright_moments(np.pi / 6 * diameter**3, np.zeros(()), (square, square, square))
 
     def facets(self, steps: int = 48) -> Facets:
-        """Return facets of similar size, in m, corners on the sphere; steps is rounded up to a multiple of 4."""
+        """Return facets of similar size, in m, corners on the sphere; steps is rounded up to n × 4."""
         check_steps(steps)
         upper, facets = _hemisphere(-(-steps // 4))
         # The lower half is the upper one's mirror image; both share the points of the equator.
