@@ -1,0 +1,95 @@
+"""A mesh that a document holds: the file's bytes, with what one look at them told."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from hashlib import sha256
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.errors import MeshFileError
+from core.facets import Facets
+from core.mesh.stl import HEADER, BinaryStl, corners_of_records, is_packed, stl_of_bytes, unpacked
+from core.mesh.survey import MeshSurvey, gathered, survey_source
+from core.mesh.weld import weld_exactly
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from core.progress import Progress
+
+
+@dataclass(frozen=True, eq=False)
+class MeshAsset:
+    """An STL file as a value; two assets are equal where their bytes are.
+
+    Attributes:
+        data: the file's bytes; a gzip'ed file's are unpacked.
+        name: the file's name without its folder.
+        sha256: of data, hexadecimal.
+        survey: of the file, in its own length unit.
+    """
+
+    data: bytes
+    name: str
+    sha256: str
+    survey: MeshSurvey
+
+    @classmethod
+    def read(cls, path: str | Path, progress: Progress | None = None) -> MeshAsset:
+        """Return the mesh in an STL file.
+
+        Raises:
+            MeshFileError: no sound STL file.
+            Cancelled: progress was cancelled.
+        """
+        path = Path(path)
+        if path.is_dir():
+            raise MeshFileError("this is a folder, not a mesh file", where=str(path), remedy="Name an STL file in it")
+        try:
+            data = path.read_bytes()
+        except FileNotFoundError as fault:
+            raise MeshFileError("there is no such file", where=str(path), remedy="Check the path") from fault
+        except OSError as fault:
+            raise MeshFileError(
+                "the file cannot be read", where=str(path), read=fault.strerror or str(fault),
+                remedy="Check that it is there and that you may read it",
+            ) from fault
+        return cls.of_bytes(data, path.name, progress)
+
+    @classmethod
+    def of_bytes(cls, data: bytes, name: str, progress: Progress | None = None) -> MeshAsset:
+        """Return the mesh in the bytes of an STL file.
+
+        Raises:
+            MeshFileError: no sound STL file.
+            Cancelled: progress was cancelled.
+        """
+        plain = unpacked(data, name) if is_packed(data) else bytes(data)
+        survey = survey_source(stl_of_bytes(plain, name), progress)
+        return cls(plain, name, sha256(plain).hexdigest(), survey)
+
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, MeshAsset) and self.sha256 == other.sha256
+
+    def __hash__(self) -> int:
+        return hash(self.sha256)
+
+    @property
+    def triangles(self) -> NDArray[np.floating]:
+        """The facets' corners (n, 3, 3), file units, read-only: float32 over data itself for a binary file, else float64."""
+        source = stl_of_bytes(self.data, self.name)
+        if isinstance(source, BinaryStl):
+            return corners_of_records(self.data, source.count, HEADER)
+        triangles = gathered(source, self.survey.triangles)
+        triangles.flags.writeable = False
+        return triangles
+
+    def facets_for_view(self, most: int = 300_000) -> Facets:
+        """Return the facets over shared points, in file units; of more than most, an even choice of them."""
+        triangles = self.triangles
+        step = -(-len(triangles) // most)
+        points, corners = weld_exactly(np.ascontiguousarray(triangles[::step]))
+        return Facets(points, corners)

@@ -1,0 +1,207 @@
+"""One look at a mesh: is it closed, and what are its volume, centre and second moment?
+
+All numbers are in the file's own length unit, at unit density: Moments.enlarged changes the unit, Moments.times gives
+it a density.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.arrays import FloatArray, frozen
+from core.errors import MeshFileError
+from core.mesh.edges import Leaks, find_leaks
+from core.mesh.integrals import CHUNK, Integrator, Sums
+from core.mesh.source import ArraySource, TriangleSource
+from core.mesh.stl import open_stl
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+    from pathlib import Path
+
+    from numpy.typing import ArrayLike
+
+    from core.moments import Moments
+    from core.progress import Progress
+
+CLOSED, CRACKED, OPEN, INSIDE_OUT, MIXED = "closed", "hairline cracks", "open", "inside out", "mixed winding"
+COMPUTED, ESTIMATED = "computed", "estimated: holes closed flat"
+
+# Volume over area × diagonal below which a mesh encloses nothing but round-off.
+FLAT = 1e-13
+# Distance from the origin over size beyond which the file's 32-bit coordinates round the part's shape.
+FAR = 1e3
+
+
+@dataclass(frozen=True, eq=False)
+class MeshSurvey:
+    """What one look at a mesh tells, in file units and at unit density.
+
+    Attributes:
+        triangles: how many facets the file holds.
+        format: "binary STL", "ASCII STL" or "triangles".
+        area: of the facets.
+        solid: volume as mass, with centre and central second moment; None where no honest number exists.
+        verdict: "closed", "hairline cracks", "open", "inside out" or "mixed winding".
+        closed: whether every directed edge meets its reverse, bit for bit.
+        open_edges: how many directed edges meet none.
+        basis: "computed", "estimated: holes closed flat", or "no volume: " and the reason.
+        bounds: (2, 3) lowest and highest coordinates.
+        degenerate: facets without area; they are harmless.
+        notes: sentences that belong beside the numbers.
+        crack_volume: how much hairline cracks can change the volume, at most; 0 without cracks.
+        crack_centre: how far they can move the centre, at most.
+        crack_inertia: how much they can change the inertia about any axis through the centre, at unit density.
+    """
+
+    triangles: int
+    format: str
+    area: float
+    solid: Moments | None
+    verdict: str
+    closed: bool
+    open_edges: int
+    basis: str
+    bounds: FloatArray
+    degenerate: int
+    notes: tuple[str, ...] = ()
+    crack_volume: float = 0.0
+    crack_centre: float = 0.0
+    crack_inertia: float = 0.0
+
+    @property
+    def diagonal(self) -> float:
+        """Length of the bounding box's diagonal, file units."""
+        return float(np.linalg.norm(self.bounds[1] - self.bounds[0]))
+
+
+def survey_file(path: str | Path, progress: Progress | None = None) -> MeshSurvey:
+    """Return the survey of an STL file; see MeshSurvey for units.
+
+    Raises:
+        MeshFileError: no sound STL file.
+        Cancelled: progress was cancelled.
+    """
+    return survey_source(open_stl(path), progress)
+
+
+def survey_triangles(triangles: ArrayLike, name: str = "mesh") -> MeshSurvey:
+    """Return the survey of triangles (n, 3, 3), counter-clockwise seen from outside, any length unit.
+
+    Raises:
+        ValueRefused: another shape, or no triangle.
+        MeshFileError: a coordinate that is not finite.
+    """
+    return survey_source(ArraySource(triangles, name))
+
+
+def survey_source(source: TriangleSource, progress: Progress | None = None) -> MeshSurvey:
+    """Return the survey of whatever hands out triangles in chunks.
+
+    Raises:
+        MeshFileError: as the source, or a coordinate that is not finite.
+        Cancelled: progress was cancelled.
+    """
+    sums, reference = _sum_up(source, progress)
+    if sums.edge_sum == 0:
+        return _judged(source, sums, reference, leaks=None)
+    leaks = find_leaks(gathered(source, sums.triangles))
+    if leaks.fill is not None:
+        sums = _closed_with(sums, reference, leaks.fill)
+    return _judged(source, sums, reference, leaks)
+
+
+def gathered(source: TriangleSource, count: int) -> FloatArray:
+    """Return all count triangles (n, 3, 3) of a source in memory, in the type they are stored in."""
+    triangles = np.empty((count, 3, 3), source.dtype)
+    done = 0
+    for part, _ in source.chunks(CHUNK):
+        triangles[done : done + len(part)] = part
+        done += len(part)
+    return triangles
+
+
+def _sum_up(source: TriangleSource, progress: Progress | None) -> tuple[Sums, FloatArray]:
+    """Return the sums over all chunks and the reference point they are about."""
+    if progress is not None:
+        progress.begin(source.steps)
+    parts: list[Sums] = []
+    integrator, reference, done = None, np.zeros(3), 0
+    for triangles, steps in source.chunks(CHUNK):
+        if integrator is None:
+            reference = triangles[0, 0].astype(np.float64)
+            integrator = Integrator(reference, source.dtype)
+        part = integrator.take(triangles)
+        if part is None:
+            raise _not_finite(source.name, triangles, done)
+        parts.append(part)
+        done += part.triangles
+        if progress is not None:
+            progress.advance(steps)
+    return Sums.total(parts), reference
+
+
+def _not_finite(name: str, triangles: FloatArray, done: int) -> MeshFileError:
+    facet, corner, axis = np.argwhere(~np.isfinite(triangles))[0]
+    return MeshFileError(
+        "a coordinate is not a finite number", where=f"{name}, facet {done + facet + 1}",
+        read=f"{'xyz'[axis]} of corner {corner + 1} = {triangles[facet, corner, axis]}",
+        remedy="Mend the part where it was made and export it again",
+    )
+
+
+def _closed_with(sums: Sums, reference: FloatArray, fill: FloatArray) -> Sums:
+    """Return the sums with the integrals of fill (m, 3, 3) added; area, bounds and counts stay the file's."""
+    integrator = Integrator(reference, np.dtype(np.float64))
+    more = [integrator.take(part) for part, _ in ArraySource(fill).chunks(CHUNK)]
+    whole = Sums.total([sums, *(part for part in more if part is not None)])
+    return Sums(
+        whole.volume, whole.first, whole.second, sums.area, sums.bounds, sums.degenerate, sums.edge_sum, sums.triangles
+    )
+
+
+def _judged(source: TriangleSource, sums: Sums, reference: FloatArray, leaks: Leaks | None) -> MeshSurvey:
+    size = float(np.linalg.norm(sums.bounds[1] - sums.bounds[0]))
+    notes = list(_far_note(sums.bounds, size))
+    verdict = leaks.verdict if leaks else CLOSED
+    basis = ESTIMATED if verdict == OPEN else COMPUTED
+    solid = None
+    if leaks is not None and leaks.fill is None:
+        basis = f"no volume: {leaks.reason}"
+    elif abs(sums.volume) <= FLAT * sums.area * size:
+        basis = "no volume: the facets enclose none"
+    else:
+        solid = sums.moments(reference)
+        if sums.volume < 0:
+            solid = -solid
+            verdict = INSIDE_OUT if leaks is None else verdict
+            notes.append("The facets faced inwards; they were turned to face outwards.")
+    volume, centre, inertia = _crack_bounds(leaks, sums, size)
+    return MeshSurvey(
+        sums.triangles, source.format, sums.area, solid, verdict, leaks is None, leaks.open_edges if leaks else 0, basis,
+        frozen(sums.bounds), sums.degenerate, tuple(notes), volume, centre, inertia,
+    )
+
+
+def _far_note(bounds: FloatArray, size: float) -> Iterator[str]:
+    offset = float(np.abs(bounds).max())
+    if size > 0 and offset / size > FAR:
+        yield (
+            f"The part lies {offset / size:.0f} times its own size away from the origin: the file's 32-bit coordinates"
+            " round its shape. Export it nearer to the origin."
+        )
+
+
+def _crack_bounds(leaks: Leaks | None, sums: Sums, size: float) -> tuple[float, float, float]:
+    """Return how much cracks can change volume, centre and inertia.
+
+    No point of the true surface is farther than the gap from the facets, so between both lies at most gap × area,
+    and none of it farther from the centre than the diagonal.
+    """
+    volume = leaks.gap * sums.area if leaks else 0.0
+    if volume == 0 or sums.volume == 0:
+        return 0.0, 0.0, 0.0
+    return volume, volume * size / abs(sums.volume), volume * size**2

@@ -1,0 +1,60 @@
+"""Making vertices one: by equal bits, or by lying close together."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.mesh.closure import EdgeSum
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from core.arrays import FloatArray, IntArray
+
+_CHUNK = 16_000
+
+
+def weld_exactly(triangles: NDArray[np.floating]) -> tuple[FloatArray, IntArray]:
+    """Return points (m, 3) and corners (n, 3) of triangles (n, 3, 3); equal bits are one point, −0.0 is 0.0."""
+    stored = np.dtype(np.float32) if triangles.dtype == np.float32 else np.dtype(np.float64)
+    hashes = np.empty((len(triangles), 3), np.uint64)
+    edges = EdgeSum(_CHUNK, words=stored.itemsize // 4)
+    for start in range(0, len(triangles), _CHUNK):
+        part = triangles[start : start + _CHUNK]
+        columns = np.ascontiguousarray(part.reshape(len(part), 9).T, dtype=stored) + stored.type(0)
+        hashes[start : start + _CHUNK] = edges.vertex_hashes(columns).T
+    _, first, corners = np.unique(hashes.ravel(), return_index=True, return_inverse=True)
+    corners = corners.reshape(len(triangles), 3)
+    points = triangles.reshape(-1, 3)[first] + 0.0
+    if not np.array_equal(points[corners], triangles):
+        # Two vertices with one hash: never met, but then the slow way is the right one.
+        points, corners = np.unique(triangles.reshape(-1, 3) + 0.0, axis=0, return_inverse=True)
+        corners = corners.reshape(len(triangles), 3)
+    return points.astype(np.float64), corners.astype(np.int64)
+
+
+def clusters_within(points: FloatArray, tolerance: float) -> IntArray:
+    """Return a group number (n,) for points (n, 3): groups are apart by more than tolerance along some axis.
+
+    A group is split wherever its points leave a gap wider than tolerance along x, y or z, until none can be split.
+    """
+    groups = np.zeros(len(points), dtype=np.int64)
+    count = 0
+    while True:
+        for axis in range(3):
+            groups = _split_along(points[:, axis], groups, tolerance)
+        now = int(groups.max(initial=-1)) + 1
+        if now == count:
+            return groups
+        count = now
+
+
+def _split_along(values: FloatArray, groups: IntArray, tolerance: float) -> IntArray:
+    order = np.lexsort((values, groups))
+    new = np.diff(groups[order], prepend=-1) != 0
+    new |= np.diff(values[order], prepend=-np.inf) > tolerance
+    result = np.empty_like(groups)
+    result[order] = np.cumsum(new) - 1
+    return result
