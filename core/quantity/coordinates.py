@@ -1,7 +1,7 @@
 """Reading points and axes from the command line.
 
-Here "," and blanks separate numbers, so the decimal mark is "." only. Each number may carry a unit and arithmetic
-when commas separate: "0, 0, 3/8 in".
+Here "," and blanks separate numbers, so the decimal mark is "." only. Each number may carry a unit and
+arithmetic when commas separate: "0, 0, 3/8 in".
 """
 
 from __future__ import annotations
@@ -10,7 +10,7 @@ from typing import Final, TypeAlias
 
 from core.quantity.expression import parse
 from core.quantity.tokens import refusal
-from core.quantity.units import UNITS, Kind, Unit
+from core.quantity.units import UNITS, Unit
 
 Triple: TypeAlias = tuple[float, float, float]
 
@@ -39,7 +39,7 @@ def parse_triple(text: str, unit: Unit, *, where: str = "") -> Triple:
 
 
 def parse_axis(text: str, unit: Unit, *, where: str = "") -> tuple[Triple, Triple]:
-    """Read an axis "px,py,pz;ux,uy,uz": a point on it (in the length unit) and its direction (of any length).
+    """Read an axis "px,py,pz;ux,uy,uz": a point on it (in the given length unit) and its direction (of any length).
 
     Returns:
         The point in m, and the direction as typed.
@@ -62,8 +62,9 @@ def parse_axis(text: str, unit: Unit, *, where: str = "") -> tuple[Triple, Tripl
     along = parse_triple(direction, UNITS[""], where=where)
     if not any(along):
         raise refusal(
-            "the direction of the axis has no length", text, where=where, remedy='Write e.g. "0,0,1" behind ";"'
+            "the direction of the axis has no length",
+            text,
+            where=where,
+            remedy='Write e.g. "0,0,1" behind ";"',
         )
-    if unit.kind is not Kind.LENGTH:
-        raise refusal(f"an axis needs a length unit, not one of {unit.kind}", text, where=where, remedy="Use mm")
     return start, along

@@ -5,8 +5,8 @@
     factor  = { "+" | "−" } ( number | "(" sum ")" )
     number  = digits with "." or "," as the decimal mark, a power of ten, or a mixed fraction "1 3/8"
 
-A unit applies to the whole term before it: "3/8 in" is three eighths of an inch. Text without any unit means the
-field's own unit. A bare number beside one with a unit is refused ("25 + 2 mm"), since both readings are plausible.
+A unit applies to the whole term before it: "3/8 in" is three eighths of an inch. Text without any unit means
+the field's own unit. A bare number beside one with a unit is refused ("25 + 2 mm"): both readings are plausible.
 Everything is exact fractions until the last step, so the result is the nearest double.
 """
 
@@ -14,14 +14,17 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from fractions import Fraction
-from typing import Final
+from typing import TYPE_CHECKING, Final
 
-from core.errors import QuantityError
 from core.quantity.formatting import compact
 from core.quantity.tokens import Token, quoted, refusal, tokens_of
 from core.quantity.unit_text import ReadUnit, check_dimension, read_unit
 from core.quantity.units import FLYWHEEL, UNITS, UNITS_BY_KIND, Dimension, Kind, Unit
+
+if TYPE_CHECKING:
+    from fractions import Fraction
+
+    from core.errors import QuantityError
 
 DEEPEST_NESTING: Final = 20
 _SHOWN_DIGITS: Final = 9
@@ -35,7 +38,7 @@ class Understood:
     Attributes:
         value: in the SI unit of its kind.
         text: as it was typed.
-        shown: the value in the field's unit, e.g. "11.525 mm"; with a flywheel effect "J = GD²/4 = 0.447 kg·m²".
+        shown: the value in the field's unit, e.g. "11.525 mm", or "J = GD²/4 = 0.447 kg·m²" for a flywheel effect.
     """
 
     value: float
@@ -64,8 +67,8 @@ def parse(text: str, kind: Kind, unit: Unit | None = None, *, where: str = "") -
     if amount.bare:
         unit = unit or (UNITS[""] if kind is Kind.NUMBER else None)
         if unit is None:
-            offered = UNITS_BY_KIND[kind][0].symbol
-            raise refusal("a unit is missing", text, where=where, remedy=f'Write one behind it, such as "{offered}"')
+            remedy = f'Write one behind it, such as "{UNITS_BY_KIND[kind][0].symbol}"'
+            raise refusal("a unit is missing", text, where=where, remedy=remedy)
         exact = amount.number * unit.ratio
     else:
         check_dimension(amount.dimension, kind, text, where=where, read=reader.only_unit())
@@ -147,7 +150,7 @@ class _Reader:
         amount = self._with_unit(self._factor())
         while sign := self._take("*/"):
             if sign == "/" and self._here.mixed:
-                raise self._refused("a mixed fraction behind \"/\" can be read in two ways", "Use parentheses")
+                raise self._refused('a mixed fraction behind "/" is read in two ways', "Use parentheses")
             amount = self._with_unit(self._combined(amount, sign, self._factor()))
         return amount
 
@@ -157,7 +160,8 @@ class _Reader:
         read = read_unit(self._tokens, self._place, self._text, where=self._where)
         if not amount.bare:
             raise self._refused(
-                f'"{read.symbol}" is a second unit in one term', "Put each number with its unit in parentheses"
+                f'"{read.symbol}" is a second unit in one term',
+                "Put each number with its unit in parentheses",
             )
         self._place = read.end
         self.units.append(read)
@@ -210,7 +214,7 @@ class _Reader:
                 "Write thousands without blanks, or put + − * or / between the numbers",
             )
         if here.what == "number" and self._place:
-            return self._refused(f'"{here.text}" follows without a sign before it', "Put + − * or / before it")
+            return self._refused(f'"{here.text}" stands without a sign before it', "Put + − * or / before it")
         if here.what == "exponent":
             return self._refused("only units are raised to a power", "Multiply instead")
         return self._refused(f'"{here.text}" was not expected here', 'Write e.g. "3/8 in + 2 mm"')

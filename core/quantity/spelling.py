@@ -2,12 +2,11 @@
 
 from __future__ import annotations
 
-import difflib
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import cache, lru_cache
 from types import MappingProxyType
-from typing import TYPE_CHECKING, Final
+from typing import TYPE_CHECKING, Final, SupportsFloat
 
 from core.quantity.units import (
     DEGREE,
@@ -59,7 +58,7 @@ _NAMES: Final[Mapping[str, tuple[Fraction, Dimension, str]]] = MappingProxyType(
     "m": (ONE, _LENGTH, "metre metres meter meters"),
     "µm": (MM / 1000, _LENGTH, "μm um micron microns"),
     "mil": (INCH / 1000, _LENGTH, "mils thou"),  # the machinist's: pint's is an angle
-    "in": (INCH, _LENGTH, "inch inches \" ″"),
+    "in": (INCH, _LENGTH, 'inch inches " ″'),
     "ft": (FOOT, _LENGTH, "foot feet ' ′"),
     "kg": (ONE, _MASS, "Kg KG kilogram kilograms"),
     "g": (GRAM, _MASS, "gram grams"),
@@ -121,6 +120,8 @@ def meaning_of(name: str) -> Meaning | None:
 
 def nearest(name: str) -> str:
     """Return the known spelling that looks most like name, or nothing."""
+    import difflib  # only for an error
+
     folded = {spelling.casefold(): spelling for spelling in _BY_SPELLING}
     close = difflib.get_close_matches(name.casefold(), folded, n=1, cutoff=0.75)
     return folded[close[0]] if close else ""
@@ -143,9 +144,9 @@ def _from_pint(name: str) -> Meaning | None:
     one = registry.Quantity(1.0, name).to_root_units()
     if registry.Quantity(0.0, name).to_root_units().magnitude != 0.0:
         return None  # decibels, degrees Celsius: no ratio says what they are
-    powers = dict(one.unit_items())
-    exponents = [powers.pop(base, 0) for base in _PINT_BASES]
-    if powers or any(power != int(power) for power in exponents):
+    powers: dict[str, SupportsFloat] = dict(one.unit_items())
+    exponents = [float(powers.pop(base, 0.0)) for base in _PINT_BASES]
+    if powers or not all(power.is_integer() for power in exponents):
         return None
     length, mass, time, angle = (int(power) for power in exponents)
     return Meaning(name, Fraction(float(one.magnitude)) / 1000**mass, (length, mass, time, angle))

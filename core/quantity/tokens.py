@@ -10,7 +10,8 @@ from typing import Final
 from core.errors import QuantityError
 
 LONGEST_TEXT: Final = 200
-LARGEST_EXPONENT: Final = 400  # of a power of ten: beyond the range of a double, and still quick to hold exactly
+# Of a power of ten: beyond the range of a double, and still quick to hold exactly.
+LARGEST_EXPONENT: Final = 400
 _LONGEST_QUOTE: Final = 60
 
 _DIGITS: Final = "⁰¹²³⁴⁵⁶⁷⁸⁹"
@@ -19,8 +20,8 @@ _TEN: Final = r"[eE][+\-−]?[0-9]+"
 _TOKEN: Final = re.compile(
     rf"""
     (?P<blank>\s+)
-    # A whole number, a blank and a proper fraction. Its numerator has at most two digits, so that no blank that
-    # groups thousands can be taken for it.
+    # A whole number, a blank and a proper fraction. Its numerator has at most two digits, so that no blank
+    # that groups thousands can be taken for it.
     | (?P<mixed>(?P<whole>[0-9]+)[ \u00a0\u202f]+(?P<top>[0-9]{{1,2}})/(?P<bottom>[0-9]{{1,3}})
         (?![0-9.,]|{_TEN}))
     | (?P<number>(?:[0-9][0-9.,]*|[.,][0-9][0-9.,]*)(?:{_TEN})?)
@@ -36,7 +37,7 @@ _DIAMETER_SIGNS: Final = "⌀Øø∅"
 
 @dataclass(frozen=True)
 class Token:
-    """A piece of typed text: what it is ("number", "name", "exponent", "sign", "end"), its text, and where it lies."""
+    """A piece of typed text and where it lies; `what` is "number", "name", "exponent", "sign" or "end"."""
 
     what: str
     text: str
@@ -76,20 +77,16 @@ def tokens_of(text: str, *, where: str = "") -> tuple[Token, ...]:
         match = _TOKEN.match(text, place)
         if match is None:
             raise _strange_sign(text, text[place], where)
-        token = _token(match, text, where, follows_name=bool(found) and found[-1].what == "name")
-        if token is not None:
-            found.append(token)
-            place = token.end
-        else:
-            place = match.end()
+        place = match.end()
+        if match["blank"] is None:
+            found.append(_token(match, text, where, follows_name=bool(found) and found[-1].what == "name"))
+            place = found[-1].end
     return (*found, Token("end", "", len(text), len(text)))
 
 
-def _token(match: re.Match[str], text: str, where: str, *, follows_name: bool) -> Token | None:
+def _token(match: re.Match[str], text: str, where: str, *, follows_name: bool) -> Token:
     start, end = match.span()
     piece = match.group()
-    if match["blank"] is not None:
-        return None
     if match["exponent"] is not None:
         return Token("exponent", piece.translate(_SUPERSCRIPTS).lstrip("^* "), start, end)
     if match["name"] is not None:
@@ -99,13 +96,19 @@ def _token(match: re.Match[str], text: str, where: str, *, follows_name: bool) -
     power = re.match("[0-9]+", piece)
     if follows_name and power and text[start - 1].isalpha():
         return Token("exponent", power.group(), start, start + power.end())
-    if match["mixed"] is not None:
-        whole, top, bottom = (int(match[name]) for name in ("whole", "top", "bottom"))
-        if top < bottom:
-            return Token("number", piece, start, end, whole + Fraction(top, bottom), mixed=True)
-        end = start + len(match["whole"])
-        return Token("number", match["whole"], start, end, Fraction(whole))
-    return Token("number", piece, start, end, _number(piece, text, where))
+    return _number_token(match, text, where)
+
+
+def _number_token(match: re.Match[str], text: str, where: str) -> Token:
+    start, end = match.span()
+    piece = match.group()
+    if match["mixed"] is None:
+        return Token("number", piece, start, end, _number(piece, text, where))
+    whole, top, bottom = (int(match[name]) for name in ("whole", "top", "bottom"))
+    if top < bottom:
+        return Token("number", piece, start, end, whole + Fraction(top, bottom), mixed=True)
+    end = start + len(match["whole"])
+    return Token("number", match["whole"], start, end, Fraction(whole))
 
 
 def _number(piece: str, text: str, where: str) -> Fraction:
@@ -125,7 +128,7 @@ def _number(piece: str, text: str, where: str) -> Fraction:
 def _strange_sign(text: str, sign: str, where: str) -> QuantityError:
     if sign in _DIAMETER_SIGNS:
         return refusal(
-            "a diameter sign is not taken, since the field itself says whether it wants a diameter or a radius",
+            "a diameter sign is not taken: the field itself says whether it wants a diameter or a radius",
             text,
             where=where,
             remedy="Leave the sign out",

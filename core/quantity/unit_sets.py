@@ -6,9 +6,8 @@ from dataclasses import dataclass, replace
 from types import MappingProxyType
 from typing import TYPE_CHECKING, Final
 
-from core.errors import QuantityError
 from core.quantity.formatting import significant
-from core.quantity.tokens import quoted, tokens_of
+from core.quantity.tokens import refusal, tokens_of
 from core.quantity.unit_text import read_unit, unit_named
 from core.quantity.units import DIMENSIONS, INCH_POUND, UNITS, Kind, Unit
 
@@ -81,7 +80,7 @@ DEFAULT_UNITS: Final = UNIT_SETS["mm kg kg·m²"]
 def parse_unit_set(text: str, *, where: str = "") -> UnitSet:
     """Read a set's name, or units separated by blanks in any order: "mm kg kg*cm^2".
 
-    What is not named follows the length or the mass: inch and pound units beside in, ft, lb, oz; metric ones else.
+    What is not named follows the length, or else the mass: inch and pound units beside theirs, metric ones else.
 
     Raises:
         QuantityError: a word is no unit, or two of them measure the same.
@@ -94,15 +93,15 @@ def parse_unit_set(text: str, *, where: str = "") -> UnitSet:
         return UNIT_SETS[name]
     words = name.split()
     if not words:
-        raise QuantityError("no units were named", where=where, read=quoted(text), remedy='Write "mm kg kg*m^2"')
+        raise refusal("no units were named", text, where=where, remedy='Write "mm kg kg*m^2"')
     named: dict[Kind, Unit] = {}
     for word in words:
         unit = _unit_of_any_kind(word, where)
         if unit.kind in named:
-            raise QuantityError(
+            raise refusal(
                 f"{named[unit.kind].symbol} and {unit.symbol} both measure {unit.kind}",
+                text,
                 where=where,
-                read=quoted(text),
                 remedy="Name one unit for each quantity",
             )
         named[unit.kind] = unit
@@ -124,7 +123,5 @@ def _unit_of_any_kind(word: str, where: str) -> Unit:
         return UNITS[read.symbol]
     kind = next((kind for kind in Kind if DIMENSIONS[kind] == read.dimension), None)
     if kind is None or kind is Kind.NUMBER:
-        raise QuantityError(
-            f"values are not shown in {quoted(word)}", where=where, read=quoted(word), remedy='Use e.g. "kg*m^2"'
-        )
+        raise refusal("values are not shown in this", word, where=where, remedy='Use e.g. "kg*m^2"')
     return unit_named(word, kind, where=where)

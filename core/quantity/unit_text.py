@@ -1,7 +1,7 @@
 """Reading unit text: "kg*m^2", "lbf·in·s²", "kgf m2 GD2".
 
-A unit is a product of names with whole exponents. Names may be joined by "*", "·", a blank or a hyphen; "/" divides
-by the name that follows, and only further divisions may follow it, since "kg/m*s" is read in two ways.
+A unit is a product of names with whole exponents. Names may be joined by "*", "·", a blank or a hyphen; "/"
+divides by the name that follows, and only further divisions may follow it: "kg/m*s" is read in two ways.
 
 The flywheel effect is written as an inertia unit with GD2 (or GD²) behind it, "1.788 kgf*m^2 GD2", and means
 J = GD²/4; WR2 and WK2 (or WR², WK²) mean J = WR². The weight in them counts as the mass that has this weight.
@@ -78,7 +78,7 @@ def read_unit(tokens: tuple[Token, ...], start: int, text: str, *, where: str) -
     """Read the unit that begins at token start.
 
     Raises:
-        QuantityError: a name that is no unit of mechanics, an exponent out of range, a product behind a division.
+        QuantityError: a name that is no unit of mechanics, an exponent out of range, a product behind "/".
     """
     factors: list[tuple[Meaning, int]] = []
     effect = ""
@@ -108,7 +108,11 @@ def read_unit(tokens: tuple[Token, ...], start: int, text: str, *, where: str) -
 def check_dimension(
     dimension: Dimension, kind: Kind, text: str, *, where: str, read: ReadUnit | None = None
 ) -> None:
-    """Refuse a dimension that is not that of kind, and name the readings that a loose spelling may have meant."""
+    """Refuse a dimension that is not that of kind, and name what a loose spelling may have meant.
+
+    Raises:
+        QuantityError: it is another dimension.
+    """
     if dimension == DIMENSIONS[kind]:
         return
     found = next((name for name, known in DIMENSIONS.items() if known == dimension), None)
@@ -219,7 +223,8 @@ def _loose_spelling(read: ReadUnit, kind: Kind, text: str, where: str) -> Quanti
     """Return the refusal of a mass written for a force, or the other way round, or None."""
     if kind is Kind.INERTIA:
         return _loose_inertia(read, text, where)
-    swapped = tuple((_FORCE_OF_MASS.get(name) or _MASS_OF_FORCE.get(name) or name, p) for name, p in read.factors)
+    swaps = _FORCE_OF_MASS | _MASS_OF_FORCE
+    swapped = tuple((swaps.get(name, name), power) for name, power in read.factors)
     meant = _reading(swapped)
     if swapped == read.factors or meant.dimension != DIMENSIONS[kind]:
         return None
@@ -244,7 +249,7 @@ def _loose_inertia(read: ReadUnit, text: str, where: str) -> QuantityError | Non
     if read.dimension == _WEIGHT_INERTIA:
         force = _FORCE_OF_MASS[mass]
         return refusal(
-            f'"{read.symbol}" is a weight times a length squared: a flywheel effect, or a loosely written inertia',
+            f'"{read.symbol}" is a weight times a length squared: a flywheel effect or a loosely written inertia',
             text,
             where=where,
             remedy=f'Write "{force}*{length}^2 GD2" for J = GD²/4, "{force}*{length}^2 WR2" for J = WR², '
@@ -253,7 +258,7 @@ def _loose_inertia(read: ReadUnit, text: str, where: str) -> QuantityError | Non
     by_mass = _reading(((mass, 1), (length, 2)))
     by_force = _reading(((_FORCE_OF_MASS[mass], 1), (length, 1), ("s", 2)))
     return refusal(
-        f'"{read.symbol}" can be read as {by_force.symbol} (force-based) or as {by_mass.symbol} (mass-based), '
+        f'"{read.symbol}" can be read as {by_force.symbol} (force-based) or {by_mass.symbol} (mass-based), '
         f"which differ by a factor of {float(by_force.ratio / by_mass.ratio):.6g}",
         text,
         where=where,
@@ -271,6 +276,6 @@ def _reading(factors: tuple[tuple[str, int], ...]) -> ReadUnit:
 
 
 def _typed(factors: tuple[tuple[str, int], ...]) -> str:
-    over = "*".join(name if power == 1 else f"{name}^{power}" for name, power in factors if power > 0)
-    under = "".join(f"/{name}" if power == -1 else f"/{name}^{-power}" for name, power in factors if power < 0)
-    return f"{over}{under}"
+    raised = [(name if abs(power) == 1 else f"{name}^{abs(power)}", power) for name, power in factors]
+    over = "*".join(text for text, power in raised if power > 0)
+    return over + "".join(f"/{text}" for text, power in raised if power < 0)

@@ -1,7 +1,7 @@
 """The units that are offered, each with its exact ratio to the SI unit of its kind.
 
-The ratios are built from defined constants (inch, avoirdupois pound, standard gravity, π) as exact fractions, so
-that "3/8 in + 2 mm" is 11.525 mm to the last bit, and so that showing values needs no unit library.
+The ratios are built from defined constants (inch, avoirdupois pound, standard gravity, π) as exact fractions,
+so that "3/8 in + 2 mm" is 11.525 mm to the last bit, and so that showing values needs no unit library.
 """
 
 from __future__ import annotations

@@ -1,0 +1,242 @@
+"""What a part is made of, and the one thing that says its mass.
+
+A part has exactly one mass driver: a material of the table, a density, a weighed mass, or none yet. Each is a
+frozen value with `mass_of(volume)`, `basis` (where the mass comes from) and `label` (as a ledger shows it).
+"""
+
+from __future__ import annotations
+
+import difflib
+import math
+import re
+from dataclasses import dataclass
+from typing import ClassVar, Final
+
+from core.checks import DENSITY_RANGE
+from core.errors import MaterialError
+from core.material_table import MATERIALS, Material
+from core.quantity import compact
+from core.quantity.tokens import quoted
+
+__all__ = [
+    "MATERIALS", "ByDensity", "ByMaterial", "Material", "NotSet", "Weighed", "check_density", "implied_density",
+    "material", "search",
+]
+
+_NAMED_IN_AN_ERROR: Final = 4
+
+
+@dataclass(frozen=True)
+class NotSet:
+    """Nothing says the mass yet. That is not 0 kg: the mass is unknown."""
+
+    basis: ClassVar[str] = "not set"
+    label: ClassVar[str] = "not set"
+
+    def mass_of(self, volume: float) -> float | None:  # noqa: ARG002  (the same call for every driver)
+        """Return None: the mass is unknown."""
+        return None
+
+
+@dataclass(frozen=True)
+class ByMaterial:
+    """The mass follows from a material of the table.
+
+    The density is kept beside the name, so that a later change of the table changes no saved part in silence.
+
+    Raises:
+        MaterialError: the density is not a positive number.
+
+    >>> ByMaterial.named("steel").mass_of(1e-3)
+    7.85
+    """
+
+    name: str
+    density: float
+    basis: ClassVar[str] = "computed"
+
+    def __post_init__(self) -> None:
+        _positive(self.density, "density", "kg/m³")
+
+    @classmethod
+    def named(cls, text: str) -> ByMaterial:
+        """Return the driver for the material that text names.
+
+        Raises:
+            MaterialError: it names none, or several.
+        """
+        found = material(text)
+        return cls(found.name, found.density)
+
+    @property
+    def label(self) -> str:
+        """The material's name."""
+        return self.name
+
+    @property
+    def differs_from_table(self) -> str:
+        """Say how name and density differ from the table's; nothing where they agree."""
+        known = next((known for known in MATERIALS if known.name == self.name), None)
+        if known is None:
+            return f'"{self.name}" is not in the table of materials; its own {_density_text(self.density)} counts'
+        if known.density == self.density:
+            return ""
+        return (
+            f'"{self.name}" counts with {_density_text(self.density)} here, and the table now says '
+            f"{_density_text(known.density)}"
+        )
+
+    def mass_of(self, volume: float) -> float:
+        """Return the mass in kg of a volume in m³."""
+        return self.density * volume
+
+
+@dataclass(frozen=True)
+class ByDensity:
+    """The mass follows from a density in kg/m³.
+
+    Raises:
+        MaterialError: the density is not a positive number.
+    """
+
+    density: float
+    basis: ClassVar[str] = "computed"
+
+    def __post_init__(self) -> None:
+        _positive(self.density, "density", "kg/m³")
+
+    @property
+    def label(self) -> str:
+        """The density with its unit."""
+        return _density_text(self.density)
+
+    def mass_of(self, volume: float) -> float:
+        """Return the mass in kg of a volume in m³."""
+        return self.density * volume
+
+
+@dataclass(frozen=True)
+class Weighed:
+    """The mass was weighed, in kg; the body's own volume then implies the density.
+
+    Raises:
+        MaterialError: the mass is not a positive number.
+    """
+
+    mass: float
+    basis: ClassVar[str] = "weighed"
+    label: ClassVar[str] = "weighed"
+
+    def __post_init__(self) -> None:
+        _positive(self.mass, "weighed mass", "kg")
+
+    def mass_of(self, volume: float) -> float:  # noqa: ARG002  (the same call for every driver)
+        """Return the weighed mass in kg, whatever the volume."""
+        return self.mass
+
+
+def implied_density(mass: float, volume: float) -> float | None:
+    """Return the density in kg/m³ of mass kg in volume m³, or None where there is no volume.
+
+    >>> implied_density(7.85, 1e-3), implied_density(1.0, 0.0)
+    (7850.0, None)
+    """
+    return mass / volume if volume > 0.0 else None
+
+
+def material(name: str) -> Material:
+    """Return the material that name means.
+
+    Case, blanks and punctuation do not matter. A full name or other name comes first, then the only material
+    whose name begins with it, then the only one that holds it anywhere.
+
+    Raises:
+        MaterialError: nothing fits, or several do; the nearest are named.
+
+    >>> material("en aw 6082").name
+    'aluminium EN AW-6082'
+    """
+    wanted = _plain(name)
+    # A few digits shorten nothing: "1.43" is more likely a slip in another field than the steel 1.4301.
+    rules = (str.__eq__, str.startswith, str.__contains__) if re.search("[a-z]", wanted) else (str.__eq__,)
+    for fits in rules:
+        found = [known for known in MATERIALS if any(fits(word, wanted) for word in _names(known))]
+        if len(found) == 1:
+            return found[0]
+        if found:
+            raise _refused("several materials fit this name", name, [known.name for known in found])
+    spelled = {word: known.name for known in MATERIALS for word in _names(known)}
+    near = difflib.get_close_matches(wanted, spelled, n=_NAMED_IN_AN_ERROR, cutoff=0.6)
+    raise _refused("no material has this name", name, list(dict.fromkeys(spelled[word] for word in near)))
+
+
+def search(text: str) -> tuple[Material, ...]:
+    """Return the materials whose names hold every word of text, in the order of the table; all for no text.
+
+    >>> [found.name for found in search("titan 6al")]
+    ['titanium Ti-6Al-4V']
+    """
+    words = [_plain(word) for word in text.split()]
+    return tuple(
+        known
+        for known in MATERIALS
+        if all(any(word in name for name in (*_names(known), _plain(known.group))) for word in words)
+    )
+
+
+def check_density(density: float, *, where: str = "") -> float:
+    """Return density (kg/m³) if something solid can have it.
+
+    Raises:
+        MaterialError: it lies outside DENSITY_RANGE, with the slip that probably made it.
+
+    >>> check_density(2700.0)
+    2700.0
+    """
+    low, high = DENSITY_RANGE
+    if low <= density <= high:
+        return density
+    raise MaterialError(
+        f"a density lies between {compact(low)} and {compact(high)} kg/m³",
+        where=where,
+        read=_density_text(density),
+        remedy=_likely_slip(density),
+    )
+
+
+def _likely_slip(density: float) -> str:
+    if math.isfinite(density) and density > 0.0:
+        low, high = 500.0, 20_000.0
+        if low <= density * 1000.0 <= high:
+            return f"If {compact(density)} g/cm³ is meant, write that unit behind it"
+        if low <= density / 1000.0 <= high:
+            return "Check the decimal mark, and whether g/m³ was meant"
+    return "Check the number and its unit"
+
+
+def _positive(value: float, what: str, unit: str) -> None:
+    if not (math.isfinite(value) and value > 0.0):
+        raise MaterialError(
+            f"a {what} is a number greater than zero",
+            read=f"{compact(value)} {unit}",
+            remedy='Correct it, or choose "not set"',
+        )
+
+
+def _density_text(density: float) -> str:
+    return f"{compact(density, 6)} kg/m³"
+
+
+def _plain(text: str) -> str:
+    return re.sub(r"[\W_]+", "", text.casefold())
+
+
+def _names(known: Material) -> tuple[str, ...]:
+    return tuple(_plain(word) for word in (known.name, *known.also))
+
+
+def _refused(what: str, name: str, near: list[str]) -> MaterialError:
+    shown = "; ".join(near[:_NAMED_IN_AN_ERROR])
+    rest = f" and {len(near) - _NAMED_IN_AN_ERROR} more" if len(near) > _NAMED_IN_AN_ERROR else ""
+    remedy = f"The nearest are: {shown}{rest}" if near else 'Write e.g. "steel", or give a density'
+    return MaterialError(what, read=quoted(name), remedy=remedy)
