@@ -140,14 +140,16 @@ class Moments:
         A batch whose masses cancel has no centre of mass; the mean of its centres stands in for it, and the
         spread is then taken about that point.
         """
-        mass = self.mass.sum(axis=0)
-        centres = np.broadcast_to(self.centre, (*np.broadcast_shapes(self.mass.shape, self.centre.shape[:-1]), 3))
+        batch = np.broadcast_shapes(self.mass.shape, self.centre.shape[:-1], self.spread.shape[:-2])
+        masses = np.broadcast_to(self.mass, batch)
+        mass = masses.sum(axis=0)
+        centres = np.broadcast_to(self.centre, (*batch, 3))
         if centres.shape[0] == 0:
             return type(self)(mass, np.zeros(centres.shape[1:]), np.zeros((*centres.shape[1:], 3)))
         # About the mean of the centres: far from the origin nothing cancels.
         mean = centres.mean(axis=0)
         lever = centres - mean
-        weight = np.broadcast_to(self.mass, centres.shape[:-1])[..., None]
+        weight = masses[..., None]
         first = (weight * lever).sum(axis=0)
         shift = np.divide(first, mass[..., None], out=np.zeros_like(first), where=mass[..., None] != 0)
         lever = lever - shift

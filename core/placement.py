@@ -6,8 +6,8 @@ Turns are about the fixed axes of the outer frame, x first, then y, then z: R = 
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
-from typing import TypeAlias
+from dataclasses import dataclass
+from typing import ClassVar, TypeAlias
 
 import numpy as np
 
@@ -19,6 +19,9 @@ Triple: TypeAlias = tuple[float, float, float]
 
 # Refused above this: nobody means it, and each copy costs a placement.
 MOST_COPIES = 100_000
+
+# Cosine of the turn about y below which y counts as ±90°.
+_UPRIGHT = 1e-12
 
 
 @dataclass(frozen=True, eq=False)
@@ -79,7 +82,7 @@ class Placement:
 def turn_about(direction: ArrayLike, angle: ArrayLike) -> FloatArray:
     """Return the rotation matrices (..., 3, 3) about direction (3,) by angles (...) rad (Rodrigues' formula)."""
     unit, angles = unit_vector(direction), np.asarray(angle, dtype=float)[..., None, None]
-    cross = np.cross(np.eye(3), -unit)
+    cross = np.cross(np.eye(3), unit)
     return np.asarray(np.eye(3) + np.sin(angles) * cross + (1 - np.cos(angles)) * (cross @ cross))
 
 
@@ -92,12 +95,14 @@ def matrix_of_turns(turns: ArrayLike) -> FloatArray:
 def turns_of_matrix(turn: ArrayLike) -> Triple:
     """Return the turns (x, y, z) rad that make a rotation matrix (3, 3); at y = ±90° the turn about x is 0."""
     matrix = np.asarray(turn, dtype=float)
-    level = np.hypot(matrix[0, 0], matrix[1, 0])
+    level = np.hypot(matrix[2, 1], matrix[2, 2])
     about_y = np.arctan2(-matrix[2, 0], level)
-    if level > 1e-12:
-        about_x, about_z = np.arctan2(matrix[2, 1], matrix[2, 2]), np.arctan2(matrix[1, 0], matrix[0, 0])
-    else:
-        about_x, about_z = 0.0, np.arctan2(-matrix[0, 1], matrix[1, 1])
+    about_x = np.arctan2(matrix[2, 1], matrix[2, 2]) if level > _UPRIGHT else 0.0
+    # The turn about z is read after the one about x is undone: near y = ±90° the two blur, but never their sum.
+    cosine, sine = np.cos(about_x), np.sin(about_x)
+    about_z = np.arctan2(
+        sine * matrix[0, 2] - cosine * matrix[0, 1], cosine * matrix[1, 1] - sine * matrix[1, 2]
+    )
     return float(about_x), float(about_y), float(about_z)
 
 
@@ -190,7 +195,7 @@ class Mirrored:
 
     point: Triple = (0.0, 0.0, 0.0)
     normal: Triple = (1.0, 0.0, 0.0)
-    count: int = field(default=2, init=False)
+    count: ClassVar[int] = 2
 
     def __post_init__(self) -> None:
         unit_vector(self.normal)
@@ -214,7 +219,7 @@ def _batch(tf: Placement, count: int) -> Placement:
 
 
 def _check_count(count: int) -> None:
-    if not 1 <= count <= MOST_COPIES:
+    if not isinstance(count, int | np.integer) or not 1 <= count <= MOST_COPIES:
         raise ValueRefused(
             f"a quantity lies between 1 and {MOST_COPIES}", read=str(count), remedy="Give a whole number of equal parts"
         )
