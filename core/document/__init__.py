@@ -1,0 +1,9 @@
+"""The file `name.masswright`, read, brought up to date and saved.
+
+A ZIP with assembly.json (all that the assembly says, in SI units) and the mesh files as they were imported.
+"""
+
+from core.document.reading import read_document, read_document_bytes
+from core.document.saving import save_document
+
+__all__ = ["read_document", "read_document_bytes", "save_document"]

@@ -1,0 +1,220 @@
+"""A document read: sizes bounded, the JSON held against the schema, meshes against their hash, then built."""
+
+from __future__ import annotations
+
+import io
+from pathlib import Path
+from typing import IO, TYPE_CHECKING, TypeVar
+
+from core.assembly import (
+    Assembly,
+    Body,
+    DataSheet,
+    DriveAxis,
+    Driver,
+    Group,
+    KnownAxial,
+    KnownTensor,
+    MeshBody,
+    Node,
+    Part,
+    ShapeBody,
+)
+from core.assembly.assembly import DEEPEST
+from core.document.archive import Archive
+from core.document.layout import data_of
+from core.document.migration import MAJOR, MINOR, Data, migrated
+from core.document.validation import checked
+from core.errors import DocumentError, MasswrightError
+from core.material import ByDensity, ByMaterial, NotSet, Weighed
+from core.mesh import MeshAsset
+from core.placement import Copies, Mirrored, Pose, Ring, Row, Several
+from core.shapes import SHAPES, Shape
+
+if TYPE_CHECKING:
+    from collections.abc import Callable, Sequence
+
+    from core.document.schema import (
+        AxisEntry,
+        BodyEntry,
+        CopiesEntry,
+        DriverEntry,
+        NodeEntry,
+        PoseEntry,
+        ShapeEntry,
+    )
+
+Built = TypeVar("Built")
+
+_REMEDY = "Take the last good copy, or mend the entry where it was changed by hand"
+_REMEDY_NEWER = "It was written by a newer version of Masswright: open it with that one"
+
+
+def read_document(path: str | Path) -> Assembly:
+    """Return the assembly that a document file holds; nothing of it is taken if anything in it is wrong.
+
+    Raises:
+        DocumentError: the file cannot be opened, is no document, is damaged, or is of a newer version.
+
+    """
+    file_path = Path(path)
+    try:
+        with file_path.open("rb") as file:
+            return _read(file, file_path.name)
+    except FileNotFoundError as error:
+        raise DocumentError(
+            "there is no such file", where=str(path), remedy="Look at the name and the folder"
+        ) from error
+    except IsADirectoryError as error:
+        raise DocumentError(
+            "this is a folder, not a document", where=str(path), remedy="Choose a .masswright file"
+        ) from error
+    except PermissionError as error:
+        raise DocumentError(
+            "the file may not be read", where=str(path), remedy="Ask its owner for the right to read it"
+        ) from error
+    except OSError as error:
+        raise DocumentError(
+            "the file cannot be read", where=str(path), read=error.strerror or "",
+            remedy="Look at the drive it is on",
+        ) from error
+
+
+def read_document_bytes(data: bytes, name: str = "document") -> Assembly:
+    """Return the assembly that a document's bytes hold; name stands for the file in an error's sentence.
+
+    Raises:
+        DocumentError: they are no document, a damaged one, or one of a newer version.
+
+    """
+    return _read(io.BytesIO(data), name)
+
+
+def _read(file: IO[bytes], name: str) -> Assembly:
+    try:
+        archive = Archive(file)
+        data = migrated(data_of(archive.json()))
+        return _Builder(archive, data).assembly()
+    except DocumentError as error:
+        # Everything below knows the place in the file, and only here is the file's own name known.
+        where = f"{name}, {error.where}" if error.where else name
+        raise DocumentError(error.what, where=where, read=error.read, remedy=error.remedy) from error
+
+
+class _Builder:
+    """Makes the assembly from checked entries; parts share equal meshes and equal shapes."""
+
+    def __init__(self, archive: Archive, data: Data) -> None:
+        self._archive = archive
+        self._data = data
+        self._assets: dict[tuple[str, str], MeshAsset] = {}
+        self._shapes: dict[tuple[str, tuple[tuple[str, float], ...]], ShapeBody] = {}
+
+    def assembly(self) -> Assembly:
+        """Return the assembly."""
+        document = checked(self._data, _REMEDY_NEWER if _is_newer(self._data) else _REMEDY)
+        axes = tuple(_axis(entry, f"axes[{i}] ({entry.name})") for i, entry in enumerate(document.axes))
+        members = self._nodes(document.members, "", 0)
+        return _made("", lambda: Assembly(document.name, members, axes, document.drive))
+
+    def _nodes(self, entries: Sequence[NodeEntry], above: str, depth: int) -> tuple[Node, ...]:
+        if depth >= DEEPEST:
+            what = f"groups nest at most {DEEPEST} deep"
+            raise DocumentError(what, where=above.rstrip("."), remedy=_REMEDY)
+        return tuple(self._node(entry, f"{above}members[{i}]", depth) for i, entry in enumerate(entries))
+
+    def _node(self, entry: NodeEntry, place: str, depth: int) -> Node:
+        said = f"({entry.name})"
+        typed = tuple((field, text) for field, text in entry.typed)
+        pose = _pose(entry.pose)
+        copies = _made(f"{place}.copies {said}", lambda: _copies(entry.copies))
+        if entry.kind == "group":
+            members = self._nodes(entry.members, f"{place}.", depth + 1)
+            return Group(entry.key, entry.name, members, pose, copies, typed, entry.note)
+        driver = _made(f"{place}.driver {said}", lambda: _driver(entry.driver))
+        body = _made(f"{place}.body {said}", lambda: self._body(entry.body))
+        return _made(
+            f"{place} {said}",
+            lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note),
+        )
+
+    def _body(self, entry: BodyEntry) -> Body:
+        if entry.kind == "shape":
+            return self._shape(entry)
+        if entry.kind == "mesh":
+            return MeshBody(self._asset(entry.mesh, entry.name), entry.metres_per_unit)
+        if entry.kind == "known tensor":
+            known = KnownTensor(entry.mass, entry.centre, entry.tensor, entry.about, entry.source)
+            _ = known.own  # refuses a tensor that makes no moments
+            return known
+        return KnownAxial(entry.mass, entry.centre, entry.inertia_about_axis, entry.length, entry.source)
+
+    def _shape(self, entry: ShapeEntry) -> ShapeBody:
+        same = (entry.shape, tuple(sorted(entry.dimensions.items())))
+        if same not in self._shapes:
+            self._shapes[same] = ShapeBody(_shape(entry))
+        return self._shapes[same]
+
+    def _asset(self, sha256: str, name: str) -> MeshAsset:
+        if (sha256, name) not in self._assets:
+            asset = MeshAsset.of_bytes(self._archive.mesh(sha256), name)
+            if asset.sha256 != sha256:
+                raise DocumentError("this mesh in the archive is packed twice", where=name, remedy=_REMEDY)
+            self._assets[sha256, name] = asset
+        return self._assets[sha256, name]
+
+
+def _made(place: str, make: Callable[[], Built]) -> Built:
+    """Return what make returns; a refusal says the place in the document before its own sentence."""
+    try:
+        return make()
+    except MasswrightError as error:
+        where = ", ".join(said for said in (place, error.where) if said)
+        raise DocumentError(error.what, where=where, read=error.read, remedy=error.remedy) from error
+
+
+def _is_newer(data: Data) -> bool:
+    """Return whether the same major version has been added to since this program was written."""
+    minor = data["version"].get("minor")
+    return data["version"]["major"] == MAJOR and isinstance(minor, int) and minor > MINOR
+
+
+def _axis(entry: AxisEntry, place: str) -> DriveAxis:
+    return _made(place, lambda: DriveAxis(entry.name, entry.point, entry.direction))
+
+
+def _pose(entry: PoseEntry) -> Pose:
+    return Pose(entry.position, entry.turns)
+
+
+def _copies(entry: CopiesEntry) -> Copies:
+    if entry.kind == "ring":
+        return Ring(entry.count, entry.point, entry.direction, entry.start, entry.span, entry.turning)
+    if entry.kind == "row":
+        return Row(entry.count, entry.step)
+    if entry.kind == "mirrored":
+        return Mirrored(entry.point, entry.normal)
+    return Several(entry.count)
+
+
+def _driver(entry: DriverEntry) -> Driver:
+    if entry.kind == "material":
+        return ByMaterial(entry.name, entry.density)
+    if entry.kind == "density":
+        return ByDensity(entry.density)
+    if entry.kind == "weighed":
+        return Weighed(entry.mass)
+    return DataSheet() if entry.kind == "data sheet" else NotSet()
+
+
+def _shape(entry: ShapeEntry) -> Shape:
+    if entry.shape not in SHAPES:
+        raise DocumentError(
+            "there is no such shape in this version", read=repr(entry.shape),
+            remedy="Open the document with the version of Masswright that wrote it, or a newer one",
+        )
+    family = SHAPES[entry.shape]
+    missing = [one.label for one in family.dimensions if one.name not in entry.dimensions]
+    if missing:
+        raise DocumentError(f"the {missing[0]} is missing", where=family.title, remedy=_REMEDY)
+    return family.of(entry.dimensions)

@@ -1,0 +1,223 @@
+"""The schema of assembly.json: which entries there are, of which kind, and how large they may be.
+
+Lengths in m, angles in rad, masses in kg, inertia in kg·m², densities in kg/m³. Importing this module
+imports pydantic, so that happens where a document is read or saved.
+"""
+
+from __future__ import annotations
+
+from typing import Annotated, Literal, TypeAlias
+
+from pydantic import BaseModel, ConfigDict, Field, Strict
+
+# No length, mass or inertia of a machine comes near this; the fifth power of it is still a finite number.
+LARGEST_NUMBER = 1e30
+LONGEST_NAME = 500
+LONGEST_TEXT = 20_000
+MOST_ENTRIES = 1_000
+MOST_NODES = 200_000
+
+Number: TypeAlias = Annotated[float, Field(ge=-LARGEST_NUMBER, le=LARGEST_NUMBER, allow_inf_nan=False)]
+Positive: TypeAlias = Annotated[float, Field(gt=0, le=LARGEST_NUMBER, allow_inf_nan=False)]
+# A JSON list is the only way to write a tuple; what is in it stays strict.
+Three: TypeAlias = Annotated[tuple[Number, Number, Number], Strict(strict=False)]
+Six: TypeAlias = Annotated[tuple[Number, Number, Number, Number, Number, Number], Strict(strict=False)]
+Name: TypeAlias = Annotated[str, Field(max_length=LONGEST_NAME)]
+Text: TypeAlias = Annotated[str, Field(max_length=LONGEST_TEXT)]
+TypedField: TypeAlias = Annotated[tuple[Name, Text], Strict(strict=False)]
+Typed: TypeAlias = Annotated[list[TypedField], Field(max_length=MOST_ENTRIES)]
+
+
+class _Entry(BaseModel):
+    """Values of exactly the kind that is named, and no entries beside them."""
+
+    model_config = ConfigDict(strict=True, extra="forbid", frozen=True)
+
+
+class PoseEntry(_Entry):
+    """Where a node stands in the frame of the group that holds it."""
+
+    position: Three
+    turns: Three
+
+
+class SeveralEntry(_Entry):
+    """So many at one place."""
+
+    kind: Literal["several"]
+    count: int
+
+
+class RingEntry(_Entry):
+    """Copies on a pitch circle."""
+
+    kind: Literal["ring"]
+    count: int
+    point: Three
+    direction: Three
+    start: Number
+    span: Number
+    turning: bool
+
+
+class RowEntry(_Entry):
+    """Copies in a straight row."""
+
+    kind: Literal["row"]
+    count: int
+    step: Three
+
+
+class MirroredEntry(_Entry):
+    """A body and its mirror image."""
+
+    kind: Literal["mirrored"]
+    point: Three
+    normal: Three
+
+
+CopiesEntry: TypeAlias = Annotated[
+    SeveralEntry | RingEntry | RowEntry | MirroredEntry, Field(discriminator="kind")
+]
+
+
+class MaterialEntry(_Entry):
+    """A material by name, with the density that it had when it was chosen."""
+
+    kind: Literal["material"]
+    name: Name
+    density: Number
+
+
+class DensityEntry(_Entry):
+    """A density that was typed."""
+
+    kind: Literal["density"]
+    density: Number
+
+
+class WeighedEntry(_Entry):
+    """The mass of one copy, weighed."""
+
+    kind: Literal["weighed"]
+    mass: Number
+
+
+class NotSetEntry(_Entry):
+    """Nothing says what it weighs."""
+
+    kind: Literal["not set"]
+
+
+class DataSheetEntry(_Entry):
+    """The data sheet says it, with the inertia."""
+
+    kind: Literal["data sheet"]
+
+
+DriverEntry: TypeAlias = Annotated[
+    MaterialEntry | DensityEntry | WeighedEntry | NotSetEntry | DataSheetEntry, Field(discriminator="kind")
+]
+
+
+class ShapeEntry(_Entry):
+    """A body from dimensions; which shapes and dimensions there are, core.shapes.SHAPES says."""
+
+    kind: Literal["shape"]
+    shape: Name
+    dimensions: Annotated[dict[Name, Number], Field(max_length=MOST_ENTRIES)]
+
+
+class MeshEntry(_Entry):
+    """A body from a mesh file, which lies in the archive under its SHA-256."""
+
+    kind: Literal["mesh"]
+    mesh: Annotated[str, Field(pattern=r"^[0-9a-f]{64}$")]
+    name: Name
+    metres_per_unit: Positive
+
+
+class KnownTensorEntry(_Entry):
+    """A bought-in part with its full tensor."""
+
+    kind: Literal["known tensor"]
+    mass: Number
+    centre: Three
+    tensor: Six
+    about: Literal["centre", "origin"]
+    source: Text
+
+
+class KnownAxialEntry(_Entry):
+    """A bought-in part with the inertia about its own axis."""
+
+    kind: Literal["known axial"]
+    mass: Number
+    centre: Three
+    inertia_about_axis: Number
+    length: Number
+    source: Text
+
+
+BodyEntry: TypeAlias = Annotated[
+    ShapeEntry | MeshEntry | KnownTensorEntry | KnownAxialEntry, Field(discriminator="kind")
+]
+
+
+class PartEntry(_Entry):
+    """One line of the parts list."""
+
+    kind: Literal["part"]
+    key: Name
+    name: Name
+    note: Text
+    typed: Typed
+    pose: PoseEntry
+    copies: CopiesEntry
+    body: BodyEntry
+    driver: DriverEntry
+
+
+class GroupEntry(_Entry):
+    """Lines that move as one."""
+
+    kind: Literal["group"]
+    key: Name
+    name: Name
+    note: Text
+    typed: Typed
+    pose: PoseEntry
+    copies: CopiesEntry
+    members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
+
+
+NodeEntry: TypeAlias = Annotated[PartEntry | GroupEntry, Field(discriminator="kind")]
+
+
+class AxisEntry(_Entry):
+    """An axis that something turns about."""
+
+    name: Name
+    point: Three
+    direction: Three
+
+
+class VersionEntry(_Entry):
+    """Of the schema: a new minor version only adds entries, a new major version changes what entries mean."""
+
+    major: int
+    minor: Annotated[int, Field(ge=0)]
+
+
+class DocumentEntry(_Entry):
+    """All of assembly.json."""
+
+    version: VersionEntry
+    name: Name
+    drive: Name
+    axes: Annotated[list[AxisEntry], Field(min_length=1, max_length=MOST_ENTRIES)]
+    members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
+
+
+GroupEntry.model_rebuild()
+DocumentEntry.model_rebuild()

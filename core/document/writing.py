@@ -1,0 +1,111 @@
+"""An assembly as plain data for assembly.json."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from core.assembly import (
+    Assembly,
+    Body,
+    DataSheet,
+    DriveAxis,
+    Driver,
+    Group,
+    KnownTensor,
+    MeshBody,
+    Node,
+    Part,
+    ShapeBody,
+    walk,
+)
+from core.document.migration import MAJOR, MINOR, Data
+from core.material import ByDensity, ByMaterial, Weighed
+from core.placement import Copies, Mirrored, Pose, Ring, Row
+
+
+def data_of_assembly(assembly: Assembly) -> Data:
+    """Return everything that the assembly says, as the schema has it; meshes by their SHA-256."""
+    return {
+        "version": {"major": MAJOR, "minor": MINOR},
+        "name": assembly.name,
+        "drive": assembly.drive,
+        "axes": [_axis(axis) for axis in assembly.axes],
+        "members": [_node(node) for node in assembly.members],
+    }
+
+
+def meshes_of(assembly: Assembly) -> dict[str, bytes]:
+    """Return the mesh files that the assembly needs, by SHA-256."""
+    return {
+        node.body.asset.sha256: node.body.asset.data
+        for node, _ in walk(assembly.members)
+        if isinstance(node, Part) and isinstance(node.body, MeshBody)
+    }
+
+
+def _axis(axis: DriveAxis) -> Data:
+    return {"name": axis.name, "point": _floats(axis.point), "direction": _floats(axis.direction)}
+
+
+def _node(node: Node) -> Data:
+    common = {
+        "key": node.key,
+        "name": node.name,
+        "note": node.note,
+        "typed": [list(pair) for pair in node.typed],
+        "pose": _pose(node.pose),
+        "copies": _copies(node.copies),
+    }
+    if isinstance(node, Group):
+        return {**common, "kind": "group", "members": [_node(member) for member in node.members]}
+    return {**common, "kind": "part", "body": _body(node.body), "driver": _driver(node.driver)}
+
+
+def _pose(pose: Pose) -> Data:
+    return {"position": _floats(pose.position), "turns": _floats(pose.turns)}
+
+
+def _copies(copies: Copies) -> Data:
+    if isinstance(copies, Ring):
+        return {
+            "kind": "ring", "count": copies.count, "point": _floats(copies.point),
+            "direction": _floats(copies.direction), "start": float(copies.start), "span": float(copies.span),
+            "turning": copies.turning,
+        }
+    if isinstance(copies, Row):
+        return {"kind": "row", "count": copies.count, "step": _floats(copies.step)}
+    if isinstance(copies, Mirrored):
+        return {"kind": "mirrored", "point": _floats(copies.point), "normal": _floats(copies.normal)}
+    return {"kind": "several", "count": copies.count}
+
+
+def _body(body: Body) -> Data:
+    if isinstance(body, ShapeBody):
+        return {"kind": "shape", "shape": body.shape.key, "dimensions": body.shape.values()}
+    if isinstance(body, MeshBody):
+        asset = body.asset
+        return {
+            "kind": "mesh", "mesh": asset.sha256, "name": asset.name,
+            "metres_per_unit": float(body.metres_per_unit),
+        }
+    known: Data = {"mass": float(body.mass), "centre": _floats(body.centre), "source": body.source}
+    if isinstance(body, KnownTensor):
+        return {**known, "kind": "known tensor", "tensor": _floats(body.tensor), "about": body.about}
+    return {
+        **known, "kind": "known axial", "inertia_about_axis": float(body.inertia_about_axis),
+        "length": float(body.length),
+    }
+
+
+def _driver(driver: Driver) -> Data:
+    if isinstance(driver, ByMaterial):
+        return {"kind": "material", "name": driver.name, "density": float(driver.density)}
+    if isinstance(driver, ByDensity):
+        return {"kind": "density", "density": float(driver.density)}
+    if isinstance(driver, Weighed):
+        return {"kind": "weighed", "mass": float(driver.mass)}
+    return {"kind": "data sheet" if isinstance(driver, DataSheet) else "not set"}
+
+
+def _floats(values: Any) -> list[float]:
+    return [float(value) for value in values]
