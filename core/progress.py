@@ -66,7 +66,8 @@ class Progress:
         with self._lock:
             self._done += steps
         if self._cancelled:
-            raise Cancelled(f"{self.task} was stopped before it was done", read=f"{self._done} of {self._total}")
+            how_far = f"{self._done} of {self._total}"
+            raise Cancelled(f"{self.task} was stopped before it was done", read=how_far)
 
     def cancel(self) -> None:
         """Ask the worker to stop at its next chunk."""

@@ -9,9 +9,10 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.errors import MeshFileError
 from core.facets import Facets
-from core.mesh.stl import HEADER, BinaryStl, corners_of_records, is_packed, stl_of_bytes, unpacked
+from core.mesh.shells import shells_of
+from core.mesh.stl import BinaryStl, corners_of_records, is_packed, stl_of_bytes, unpacked
+from core.mesh.stl_faults import HEADER, reading, refuse_folder
 from core.mesh.survey import MeshSurvey, gathered, survey_source
 from core.mesh.weld import weld_exactly
 
@@ -46,17 +47,9 @@ class MeshAsset:
             Cancelled: progress was cancelled.
         """
         path = Path(path)
-        if path.is_dir():
-            raise MeshFileError("this is a folder, not a mesh file", where=str(path), remedy="Name an STL file in it")
-        try:
+        refuse_folder(path)
+        with reading(str(path)):
             data = path.read_bytes()
-        except FileNotFoundError as fault:
-            raise MeshFileError("there is no such file", where=str(path), remedy="Check the path") from fault
-        except OSError as fault:
-            raise MeshFileError(
-                "the file cannot be read", where=str(path), read=fault.strerror or str(fault),
-                remedy="Check that it is there and that you may read it",
-            ) from fault
         return cls.of_bytes(data, path.name, progress)
 
     @classmethod
@@ -79,13 +72,24 @@ class MeshAsset:
 
     @property
     def triangles(self) -> NDArray[np.floating]:
-        """The facets' corners (n, 3, 3), file units, read-only: float32 over data itself for a binary file, else float64."""
+        """The facets' corners (n, 3, 3), file units, read-only.
+
+        Of a binary file a float32 view of data itself, made without copying; of an ASCII file float64.
+        """
         source = stl_of_bytes(self.data, self.name)
         if isinstance(source, BinaryStl):
             return corners_of_records(self.data, source.count, HEADER)
         triangles = gathered(source, self.survey.triangles)
         triangles.flags.writeable = False
         return triangles
+
+    def count_shells(self, progress: Progress | None = None) -> int:
+        """Return of how many separate surfaces the mesh consists: facets that share no vertex with one another.
+
+        Raises:
+            Cancelled: progress was cancelled.
+        """
+        return shells_of(stl_of_bytes(self.data, self.name), progress)
 
     def facets_for_view(self, most: int = 300_000) -> Facets:
         """Return the facets over shared points, in file units; of more than most, an even choice of them."""

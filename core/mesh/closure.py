@@ -1,10 +1,11 @@
 """Whether a mesh is closed, as a sum: every directed edge must meet its reverse.
 
 Each vertex is sent, by a hash of its bits, to a point (p, q) of a plane over the integers modulo 2⁶⁴. The doubled
-signed area of a triangle there is a sum over its directed edges u→v of p_u·q_v − q_u·p_v, which changes sign when the
-edge is reversed. So the areas of a closed mesh add up to exactly 0, whatever the hash. For a mesh that leaks the sum
-is 0 only by chance: a polynomial identity test (Schwartz 1980) with random values in place of random arguments.
-Odds: two given vertices that differ fall together with at most 2⁻⁴⁹, the sum of a leaking mesh is 0 with about 2⁻⁵⁸.
+signed area of a triangle there is a sum over its directed edges u→v of p_u·q_v − q_u·p_v, which changes sign
+when the edge is reversed. So the areas of a closed mesh add up to exactly 0, whatever the hash. For a mesh that
+leaks the sum is 0 only by chance: a polynomial identity test (Schwartz 1980) with random values in place of random
+arguments. Odds: two given vertices that differ fall together with at most 2⁻⁴⁹; the sum of a leaking mesh is 0 with
+about 2⁻⁵⁸.
 
 An edge that four facets share is harmless when two of them run each way, and so it is here.
 """
@@ -19,9 +20,10 @@ from numpy.typing import NDArray
 Words: TypeAlias = NDArray[np.uint32]
 Hashes: TypeAlias = NDArray[np.uint64]
 
-# Odd 64-bit numbers drawn once from SplitMix64 with seed 20260: one key per 32-bit word of a vertex, two for p and q.
+# Odd 64-bit numbers without a pattern: one key per 32-bit word of a vertex, then one for p and one for q.
 _WORD_KEYS = tuple(np.uint64(key) for key in (
-    0xD5B3F0A8C1E94B7D, 0x8F2E6A4D93B70C15, 0xB46C19E7F5A2D83B, 0x9C7D31B80E64FA29, 0xE10B57D29A8C463F, 0xA83F9D64C72B1E05,
+    0xD5B3F0A8C1E94B7D, 0x8F2E6A4D93B70C15, 0xB46C19E7F5A2D83B,
+    0x9C7D31B80E64FA29, 0xE10B57D29A8C463F, 0xA83F9D64C72B1E05,
 ))
 _P_KEY, _Q_KEY = np.uint64(0xBF58476D1CE4E5B9), np.uint64(0x94D049BB133111EB)
 _HALF, _FOLD = np.uint64(32), np.uint32(16)
@@ -36,8 +38,8 @@ class EdgeSum:
     """
 
     def __init__(self, most: int, words: int = 1) -> None:
-        self._folded = np.empty((9, most * words), np.uint32)
-        self._planes = np.empty((4, 3, most), np.uint64)
+        self._folded = np.empty(9 * most * words, np.uint32)
+        self._planes = np.empty((2, 3 * most), np.uint64)
 
     def of(self, coordinates: NDArray[np.floating]) -> int:
         """Return the chunk's sum modulo 2⁶⁴; the sums of all chunks add up to 0 (mod 2⁶⁴) for a closed mesh.
@@ -45,34 +47,41 @@ class EdgeSum:
         Args:
             coordinates: (9, n) rows xa ya za xb yb zb xc yc zc, contiguous, float32 or float64, without −0.0.
         """
-        count = coordinates.shape[1]
-        one, other, p, q = self._planes[:, :, :count]
-        self._hash(coordinates, out=one, spare=other)
-        _spread(one, _P_KEY, out=p)
+        q = self._hashes(coordinates)
+        p = self._plane(1, coordinates)
+        _spread(q, _P_KEY, out=p)
         _spread(p, _Q_KEY, out=q)
         np.subtract(p[1:], p[0], out=p[1:])
         np.subtract(q[1:], q[0], out=q[1:])
-        np.multiply(p[1], q[2], out=one[0])
-        np.multiply(p[2], q[1], out=one[1])
-        np.subtract(one[0], one[1], out=one[0])
-        return int(one[0].sum())
+        np.multiply(p[1], q[2], out=p[0])
+        np.multiply(p[2], q[1], out=q[0])
+        np.subtract(p[0], q[0], out=p[0])
+        return int(p[0].sum())
 
     def vertex_hashes(self, coordinates: NDArray[np.floating]) -> Hashes:
-        """Return one 64-bit number per vertex, (3, n), equal for equal bits; a view that the next call overwrites."""
-        one, other, p, _ = self._planes[:, :, : coordinates.shape[1]]
-        self._hash(coordinates, out=one, spare=other)
-        _spread(one, _P_KEY, out=p)
-        return p
+        """Return one 64-bit number per vertex, (3, n), equal for equal bits.
 
-    def _hash(self, coordinates: NDArray[np.floating], out: Hashes, spare: Hashes) -> None:
-        """Fill out (3, n) with a multilinear hash of the words of each vertex (Dietzfelbinger 1996)."""
+        It is a view that the next call overwrites; coordinates as for of().
+        """
+        values = self._hashes(coordinates)
+        spread = self._plane(1, coordinates)
+        _spread(values, _P_KEY, out=spread)
+        return spread
+
+    def _plane(self, number: int, coordinates: NDArray[np.floating]) -> Hashes:
         count = coordinates.shape[1]
+        plane: Hashes = self._planes[number, : 3 * count].reshape(3, count)
+        return plane
+
+    def _hashes(self, coordinates: NDArray[np.floating]) -> Hashes:
+        """Return a multilinear hash (3, n) of the words of each vertex (Dietzfelbinger 1996)."""
+        out, spare = self._plane(0, coordinates), self._plane(1, coordinates)
         bits = coordinates.view(np.uint32)
-        folded = self._folded[:, : bits.shape[1]]
-        # Round coordinates end in many zero bits, which a product modulo 2⁶⁴ keeps: fold the upper half over them.
+        folded = self._folded[: bits.size].reshape(bits.shape)
+        # Round numbers end in many zero bits, which a product modulo 2⁶⁴ keeps: fold the upper half over them.
         np.right_shift(bits, _FOLD, out=folded)
         np.bitwise_xor(folded, bits, out=folded)
-        words = folded.reshape(3, 3, count, -1)
+        words = folded.reshape(3, 3, coordinates.shape[1], -1)
         planes = [words[:, axis, :, word] for axis in range(3) for word in range(words.shape[3])]
         np.copyto(out, planes[0])
         np.multiply(out, _WORD_KEYS[0], out=out)
@@ -80,6 +89,7 @@ class EdgeSum:
             np.copyto(spare, plane)
             np.multiply(spare, key, out=spare)
             np.add(out, spare, out=out)
+        return out
 
 
 def _spread(values: Hashes, key: np.uint64, out: Hashes) -> None:

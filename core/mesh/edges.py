@@ -3,8 +3,8 @@
 Nothing here is needed for a closed mesh. The whole mesh is held in memory, about 250 bytes a triangle.
 
 Vertices are one where their bits are equal. The directed edges that meet no reverse are the open edges. Then:
-- "hairline cracks": all of them vanish once vertices on them are welded that lie within WELD of the mesh's diagonal.
-  Narrow strips from each open edge to its welded place close the surface.
+- "hairline cracks": all of them vanish once their vertices are welded within WELD of the mesh's diagonal. Narrow
+  strips from each open edge to its welded place close the surface.
 - "mixed winding": every edge is shared by pairs of facets, but some of these turn opposite ways.
 - "open": anything else. The open edges form loops, each of which a fan about its centroid closes.
 """
@@ -16,11 +16,12 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.arrays import FloatArray, IntArray
 from core.mesh.weld import clusters_within, weld_exactly
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
+
+    from core.arrays import FloatArray, IntArray
 
 # Of the diagonal of the bounding box: cracks narrower than this come from rounding, not from a missing facet.
 WELD = 1e-6
@@ -92,9 +93,10 @@ def unbalanced_edges(corners: IntArray) -> EdgeTally:
 
 
 def loops_of(ends: IntArray) -> list[IntArray]:
-    """Return directed edges (k, 2) that balance at every vertex as simple loops, each an array of vertices in order.
+    """Return directed edges (k, 2) that balance at every vertex as simple loops, each its vertices in order.
 
-    Where loops touch at a vertex, a walk is cut off as soon as it comes back to a vertex, so that none crosses itself.
+    Where loops touch at a vertex, a walk is cut off as soon as it comes back to one, so that no loop passes a vertex
+    twice.
     """
     leaving: dict[int, list[int]] = {}
     for start, stop in ends.tolist():
@@ -131,7 +133,7 @@ class _Welded:
 
 
 def _welded(points: FloatArray, ends: IntArray, tolerance: float) -> tuple[_Welded, float]:
-    """Weld the vertices on open edges within tolerance; return new indices and places, and the farthest move."""
+    """Weld the vertices on open edges within tolerance; return new indices and places, and the widest gap."""
     on_edge = np.unique(ends)
     groups = clusters_within(points[on_edge], tolerance)
     sizes = np.bincount(groups)
@@ -157,7 +159,7 @@ def _balances(ends: IntArray) -> bool:
 
 
 def _strips(edges: FloatArray, places: FloatArray) -> FloatArray:
-    """Return two triangles (2k, 3, 3) from each open edge (k, 2, 3) to where its ends are welded (k, 2, 3)."""
+    """Return two triangles (2k, 3, 3) from each open edge (k, 2, 3) to its welded place (k, 2, 3)."""
     start, stop = edges[:, 0], edges[:, 1]
     new_start, new_stop = places[:, 0], places[:, 1]
     return np.concatenate([
@@ -166,7 +168,7 @@ def _strips(edges: FloatArray, places: FloatArray) -> FloatArray:
 
 
 def _caps(points: FloatArray, loops: list[IntArray]) -> FloatArray:
-    """Return the fans (m, 3, 3) that close loops against their own direction, each about its line's centroid."""
+    """Return the fans (m, 3, 3) that close loops against their own direction, about their lines' centroids."""
     fans = []
     for loop in loops:
         start, stop = points[loop], points[np.roll(loop, -1)]

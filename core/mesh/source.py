@@ -25,13 +25,24 @@ class TriangleSource(Protocol):
     """
 
     @property
-    def name(self) -> str: ...
+    def name(self) -> str:
+        """What messages call it."""
+        ...
+
     @property
-    def format(self) -> str: ...
+    def format(self) -> str:
+        """What kind of file it is."""
+        ...
+
     @property
-    def dtype(self) -> np.dtype[np.floating]: ...
+    def dtype(self) -> np.dtype[np.floating]:
+        """Type of the coordinates."""
+        ...
+
     @property
-    def steps(self) -> int: ...
+    def steps(self) -> int:
+        """Progress steps of one pass."""
+        ...
 
     def chunks(self, most: int) -> Iterator[tuple[NDArray[np.floating], int]]:
         """Yield (triangles (n, 3, 3) with n ≤ most, progress steps they took).
@@ -56,7 +67,7 @@ class ArraySource:
 
     def __init__(self, triangles: ArrayLike, name: str = "mesh") -> None:
         array = np.asarray(triangles)
-        if array.ndim != 3 or array.shape[1:] != (3, 3) or len(array) == 0:
+        if array.shape[1:] != (3, 3) or len(array) == 0:
             raise ValueRefused(
                 "a mesh needs triangles of three points", where=name, read=f"an array of shape {array.shape}",
                 remedy="Give an array of shape (n, 3, 3) with n of at least 1",

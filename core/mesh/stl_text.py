@@ -1,7 +1,7 @@
 """Parsing the text of an ASCII STL file, block by block.
 
-A facet is 21 words in a fixed order. A block of text is split at the last whole facet and its words are compared and
-converted all at once; only a block that does not fit is walked word by word, to say on which line it goes wrong.
+A facet is 21 words in a fixed order. A block of text is cut after its last whole facet, and its words are compared
+and converted all at once; only a block that does not fit is walked word by word, to say on which line it goes wrong.
 """
 
 from __future__ import annotations
@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING, BinaryIO, NoReturn
 import numpy as np
 
 from core.errors import MeshFileError
+from core.mesh.stl_faults import AGAIN, BYTE_ORDER_MARK, MEND
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -59,8 +60,7 @@ def facets_of_text(file: BinaryIO, name: str) -> Iterator[tuple[FloatArray, int]
     if _without_solid_lines(rest).strip():
         _complain(rest, name, line, facets)
     if facets == 0:
-        raise MeshFileError("the file holds no facets", where=name, read="\"solid\" and nothing more",
-                            remedy="Export or copy the file again")
+        raise MeshFileError("the file holds no facets", where=name, read='"solid" and nothing more', remedy=AGAIN)
 
 
 def _corners(text: bytes, name: str, line: int, facets: int) -> FloatArray:
@@ -92,34 +92,38 @@ def _converted(words: list[bytes], count: int) -> FloatArray | None:
 
 def _without_solid_lines(text: bytes) -> bytes:
     """Return the text without the lines that begin or end a solid, where names may stand."""
-    text = text.removeprefix(b"\xef\xbb\xbf")
+    text = text.removeprefix(BYTE_ORDER_MARK)
     return _SOLID_LINE.sub(b"", text) if b"solid" in text.lower() else text
 
 
 def _complain(text: bytes, name: str, line: int, facets: int) -> NoReturn:
     """Walk the words of a faulty text and raise what is wrong with the first one that does not fit."""
     # Names are blanked out at equal length, so that lines and places stay.
-    plain = _SOLID_LINE.sub(lambda found: b" " * len(found.group()), text.removeprefix(b"\xef\xbb\xbf"))
+    plain = _SOLID_LINE.sub(lambda found: b" " * len(found.group()), text.removeprefix(BYTE_ORDER_MARK))
     place = 0
     for found in re.finditer(rb"\S+", plain):
         word, expected = found.group(), _FACET[place % len(_FACET)]
-        where = f"{name}, line {line + _count_lines(plain[: found.start()])}, facet {facets + place // len(_FACET) + 1}"
+        where = _place(name, line + _count_lines(plain[: found.start()]), facets + place // len(_FACET))
         is_corner = place % len(_FACET) in _CORNER_NUMBERS
         if expected and word.lower() != expected:
             raise MeshFileError(
-                f"\"{expected.decode()}\" is missing in the STL text", where=where, read=_shown(word),
-                remedy="Export the part again",
+                f'"{expected.decode()}" is missing in the STL text', where=where, read=_shown(word), remedy=AGAIN
             )
         if is_corner:
             _check_number(word, where)
         elif not expected and word.lower() in _FACET:
-            raise MeshFileError("a number of the normal is missing", where=where, read=_shown(word), remedy="Export the part again")
+            raise MeshFileError("a number of the normal is missing", where=where, read=_shown(word), remedy=AGAIN)
         place += 1
-    facet, total = place % len(_FACET), facets + place // len(_FACET)
     raise MeshFileError(
-        "the file is cut short in the middle of a facet", where=f"{name}, line {line + _count_lines(plain.rstrip())}, facet {total + 1}",
-        read=f"{facet} of its {len(_FACET)} words", remedy="It was not copied or written to its end. Export or copy the file again",
+        "the file is cut short in the middle of a facet",
+        where=_place(name, line + _count_lines(plain.rstrip()), facets + place // len(_FACET)),
+        read=f"{place % len(_FACET)} of its {len(_FACET)} words",
+        remedy=f"It was not copied or written to its end. {AGAIN}",
     )
+
+
+def _place(name: str, line: int, facets_before: int) -> str:
+    return f"{name}, line {line}, facet {facets_before + 1}"
 
 
 def _check_number(word: bytes, where: str) -> None:
@@ -129,13 +133,12 @@ def _check_number(word: bytes, where: str) -> None:
             remedy="Export the part again with a decimal point; it is not guessed",
         )
     if word.lower().lstrip(b"+-").startswith((b"nan", b"inf", b"1.#")):
-        raise MeshFileError("a coordinate is not a finite number", where=where, read=_shown(word),
-                            remedy="Mend the part where it was made and export it again")
+        raise MeshFileError("a coordinate is not a finite number", where=where, read=_shown(word), remedy=MEND)
     if not _NUMBER.match(word):
-        raise MeshFileError("a coordinate is not a number", where=where, read=_shown(word), remedy="Export the part again")
+        raise MeshFileError("a coordinate is not a number", where=where, read=_shown(word), remedy=AGAIN)
     if abs(float(word)) > _LARGEST:
-        raise MeshFileError("a coordinate is larger than an STL file can hold", where=where, read=_shown(word),
-                            remedy="Export the part again")
+        what = "a coordinate is larger than an STL file can hold"
+        raise MeshFileError(what, where=where, read=_shown(word), remedy=AGAIN)
 
 
 def _count_lines(text: bytes) -> int:

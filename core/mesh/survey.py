@@ -1,12 +1,12 @@
-"""One look at a mesh: is it closed, and what are its volume, centre and second moment?
+"""One look at a mesh: whether it is closed, and what its volume, centre and second moment are.
 
-All numbers are in the file's own length unit, at unit density: Moments.enlarged changes the unit, Moments.times gives
-it a density.
+All numbers are in the file's own length unit, at unit density: Moments.enlarged changes the unit, Moments.times
+gives it a density.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -15,14 +15,16 @@ from core.arrays import FloatArray, frozen
 from core.errors import MeshFileError
 from core.mesh.edges import Leaks, find_leaks
 from core.mesh.integrals import CHUNK, Integrator, Sums
+from core.mesh.shells import shells_of
 from core.mesh.source import ArraySource, TriangleSource
 from core.mesh.stl import open_stl
+from core.mesh.stl_faults import MEND
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
     from pathlib import Path
 
-    from numpy.typing import ArrayLike
+    from numpy.typing import ArrayLike, NDArray
 
     from core.moments import Moments
     from core.progress import Progress
@@ -54,7 +56,7 @@ class MeshSurvey:
         notes: sentences that belong beside the numbers.
         crack_volume: how much hairline cracks can change the volume, at most; 0 without cracks.
         crack_centre: how far they can move the centre, at most.
-        crack_inertia: how much they can change the inertia about any axis through the centre, at unit density.
+        crack_inertia: how much they can change the inertia about any axis through the centre, at most.
     """
 
     triangles: int
@@ -98,6 +100,16 @@ def survey_triangles(triangles: ArrayLike, name: str = "mesh") -> MeshSurvey:
     return survey_source(ArraySource(triangles, name))
 
 
+def count_shells(path: str | Path, progress: Progress | None = None) -> int:
+    """Return of how many separate surfaces an STL file consists: facets that share no vertex with one another.
+
+    Raises:
+        MeshFileError: no sound STL file.
+        Cancelled: progress was cancelled.
+    """
+    return shells_of(open_stl(path), progress)
+
+
 def survey_source(source: TriangleSource, progress: Progress | None = None) -> MeshSurvey:
     """Return the survey of whatever hands out triangles in chunks.
 
@@ -114,7 +126,7 @@ def survey_source(source: TriangleSource, progress: Progress | None = None) -> M
     return _judged(source, sums, reference, leaks)
 
 
-def gathered(source: TriangleSource, count: int) -> FloatArray:
+def gathered(source: TriangleSource, count: int) -> NDArray[np.floating]:
     """Return all count triangles (n, 3, 3) of a source in memory, in the type they are stored in."""
     triangles = np.empty((count, 3, 3), source.dtype)
     done = 0
@@ -144,12 +156,12 @@ def _sum_up(source: TriangleSource, progress: Progress | None) -> tuple[Sums, Fl
     return Sums.total(parts), reference
 
 
-def _not_finite(name: str, triangles: FloatArray, done: int) -> MeshFileError:
+def _not_finite(name: str, triangles: NDArray[np.floating], done: int) -> MeshFileError:
     facet, corner, axis = np.argwhere(~np.isfinite(triangles))[0]
     return MeshFileError(
         "a coordinate is not a finite number", where=f"{name}, facet {done + facet + 1}",
         read=f"{'xyz'[axis]} of corner {corner + 1} = {triangles[facet, corner, axis]}",
-        remedy="Mend the part where it was made and export it again",
+        remedy=MEND,
     )
 
 
@@ -158,9 +170,7 @@ def _closed_with(sums: Sums, reference: FloatArray, fill: FloatArray) -> Sums:
     integrator = Integrator(reference, np.dtype(np.float64))
     more = [integrator.take(part) for part, _ in ArraySource(fill).chunks(CHUNK)]
     whole = Sums.total([sums, *(part for part in more if part is not None)])
-    return Sums(
-        whole.volume, whole.first, whole.second, sums.area, sums.bounds, sums.degenerate, sums.edge_sum, sums.triangles
-    )
+    return replace(sums, volume=whole.volume, first=whole.first, second=whole.second)
 
 
 def _judged(source: TriangleSource, sums: Sums, reference: FloatArray, leaks: Leaks | None) -> MeshSurvey:
@@ -181,8 +191,9 @@ def _judged(source: TriangleSource, sums: Sums, reference: FloatArray, leaks: Le
             notes.append("The facets faced inwards; they were turned to face outwards.")
     volume, centre, inertia = _crack_bounds(leaks, sums, size)
     return MeshSurvey(
-        sums.triangles, source.format, sums.area, solid, verdict, leaks is None, leaks.open_edges if leaks else 0, basis,
-        frozen(sums.bounds), sums.degenerate, tuple(notes), volume, centre, inertia,
+        triangles=sums.triangles, format=source.format, area=sums.area, solid=solid, verdict=verdict,
+        closed=leaks is None, open_edges=leaks.open_edges if leaks else 0, basis=basis, bounds=frozen(sums.bounds),
+        degenerate=sums.degenerate, notes=tuple(notes), crack_volume=volume, crack_centre=centre, crack_inertia=inertia,
     )
 
 
@@ -190,16 +201,16 @@ def _far_note(bounds: FloatArray, size: float) -> Iterator[str]:
     offset = float(np.abs(bounds).max())
     if size > 0 and offset / size > FAR:
         yield (
-            f"The part lies {offset / size:.0f} times its own size away from the origin: the file's 32-bit coordinates"
-            " round its shape. Export it nearer to the origin."
+            f"The part lies {offset / size:.0f} times its own size away from the origin: the file's 32-bit"
+            " coordinates round its shape. Export it nearer to the origin."
         )
 
 
 def _crack_bounds(leaks: Leaks | None, sums: Sums, size: float) -> tuple[float, float, float]:
     """Return how much cracks can change volume, centre and inertia.
 
-    No point of the true surface is farther than the gap from the facets, so between both lies at most gap × area,
-    and none of it farther from the centre than the diagonal.
+    No point of the true surface is farther than the gap from the facets, so between both lies at most
+    gap × area, and none of it farther from the centre than the diagonal.
     """
     volume = leaks.gap * sums.area if leaks else 0.0
     if volume == 0 or sums.volume == 0:

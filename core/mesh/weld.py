@@ -18,12 +18,12 @@ _CHUNK = 16_000
 
 def weld_exactly(triangles: NDArray[np.floating]) -> tuple[FloatArray, IntArray]:
     """Return points (m, 3) and corners (n, 3) of triangles (n, 3, 3); equal bits are one point, −0.0 is 0.0."""
-    stored = np.dtype(np.float32) if triangles.dtype == np.float32 else np.dtype(np.float64)
+    stored: np.dtype[np.floating] = np.dtype(np.float32 if triangles.dtype == np.float32 else np.float64)
     hashes = np.empty((len(triangles), 3), np.uint64)
     edges = EdgeSum(_CHUNK, words=stored.itemsize // 4)
     for start in range(0, len(triangles), _CHUNK):
         part = triangles[start : start + _CHUNK]
-        columns = np.ascontiguousarray(part.reshape(len(part), 9).T, dtype=stored) + stored.type(0)
+        columns = np.ascontiguousarray(part.reshape(len(part), 9).T, dtype=stored) + 0.0
         hashes[start : start + _CHUNK] = edges.vertex_hashes(columns).T
     _, first, corners = np.unique(hashes.ravel(), return_index=True, return_inverse=True)
     corners = corners.reshape(len(triangles), 3)
@@ -38,7 +38,7 @@ def weld_exactly(triangles: NDArray[np.floating]) -> tuple[FloatArray, IntArray]
 def clusters_within(points: FloatArray, tolerance: float) -> IntArray:
     """Return a group number (n,) for points (n, 3): groups are apart by more than tolerance along some axis.
 
-    A group is split wherever its points leave a gap wider than tolerance along x, y or z, until none can be split.
+    A group is split wherever its points leave a gap wider than tolerance along x, y or z, until none can be.
     """
     groups = np.zeros(len(points), dtype=np.int64)
     count = 0
