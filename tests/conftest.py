@@ -143,40 +143,42 @@ def nothing_left_behind(request: pytest.FixtureRequest) -> Iterator[None]:
     if not HAS_QT or request.node.get_closest_marker("gui") is None:
         yield
         return
-    windows_before = {id(window) for window in open_windows()}
+    windows_before = set(open_windows())
     threads_before = set(threading.enumerate())
     yield
     if leftovers(windows_before, threads_before):
         gc.collect()  # a cycle of Python objects may hold what the test let go of
     left = leftovers(windows_before, threads_before)
     clear(left)
-    names = [str(thing) for thing in left]
-    assert not names, "the test left behind: " + ", ".join(names)
+    if left:
+        pytest.fail("the test left behind: " + ", ".join(map(str, left)), pytrace=False)
 
 
-def open_windows() -> list[QObject]:
+def open_windows() -> dict[int, QObject]:
+    """Return the top-level widgets by their address in C++: their Python faces come and go."""
     widgets = sys.modules.get("PySide6.QtWidgets")
     if widgets is None or widgets.QApplication.instance() is None:
-        return []
+        return {}
+    import shiboken6
     from PySide6.QtCore import QCoreApplication, QEvent
 
     QCoreApplication.sendPostedEvents(None, QEvent.Type.DeferredDelete.value)
     QCoreApplication.processEvents()
-    return widgets.QApplication.topLevelWidgets()
+    return {shiboken6.getCppPointer(window)[0]: window for window in widgets.QApplication.topLevelWidgets()}
 
 
 def leftovers(windows_before: set[int], threads_before: set[threading.Thread]) -> list[object]:
     import shiboken6
     from PySide6.QtCore import QThread, QThreadPool, QTimer
 
-    left: list[object] = [window for window in open_windows() if id(window) not in windows_before]
+    left: list[object] = [window for place, window in open_windows().items() if place not in windows_before]
     left += [thread for thread in threading.enumerate() if thread not in threads_before]
-    pools = [QThreadPool.globalInstance()]
+    pools = {QThreadPool.globalInstance()}
     for thing in gc.get_objects():
         if not isinstance(thing, (QTimer, QThread, QThreadPool)) or not shiboken6.isValid(thing):
             continue
         if isinstance(thing, QThreadPool):
-            pools.append(thing)
+            pools.add(thing)
         elif thing.isActive() if isinstance(thing, QTimer) else thing.isRunning():
             left.append(thing)
     return left + [pool for pool in pools if not pool.waitForDone(GRACE_MS)]
