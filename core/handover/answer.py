@@ -1,0 +1,164 @@
+"""The answer of the command line as an object for JSON: SI units, full precision, whatever units are shown.
+
+Every answer has the same keys. Values that there are none of are None: mass and inertia where nothing says what a
+mesh weighs, everything about facets for a document. An inertia is about the centre of mass, along the axes of the
+file or document, in tensor elements (off-diagonal = −∫xy dm).
+"""
+
+from __future__ import annotations
+
+import json
+import math
+from typing import TYPE_CHECKING, Any, Final, TypeAlias
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable
+
+    from core.arrays import FloatArray
+    from core.assembly import Assembly, Line
+    from core.checks import Check
+    from core.handover.lines import AxisLine
+    from core.handover.mesh_reading import MeshReading
+    from core.moments import Moments
+
+Answer: TypeAlias = dict[str, Any]
+
+KEYS: Final = (
+    "path", "triangles", "unit", "verdict", "closed", "open_edges", "shells", "basis", "area_m2", "volume_m3",
+    "mass_kg", "centre_m", "inertia_kgm2", "principal_kgm2", "principal_axes", "radii_m", "curved", "axis", "checks",
+)
+
+
+def answer_of_mesh(reading: MeshReading) -> Answer:
+    """Return the answer on one mesh file.
+
+    Without a mass, `mass_kg`, `inertia_kgm2`, `principal_kgm2` and `axis.inertia_kgm2` are None; centre, principal
+    axes, radii of gyration and the axis' offset are those of the volume at uniform density. `radii_m` are about the
+    principal axes, in their order.
+    """
+    survey = reading.survey
+    values: Answer = {
+        "path": reading.name,
+        "triangles": survey.triangles,
+        "unit": reading.unit.symbol,
+        "verdict": survey.verdict,
+        "closed": survey.closed,
+        "open_edges": survey.open_edges,
+        "shells": reading.shells,
+        "basis": reading.basis,
+        "area_m2": reading.area,
+        **_values(reading.body, reading.geometry, reading.volume),
+        "curved": None,
+        "axis": _axis(reading.body, reading.geometry, reading.axis),
+        "checks": [_check(check) for check in reading.checks],
+    }
+    if reading.curved is not None:
+        body = reading.weighed(reading.curved)
+        values["curved"] = _values(body, reading.curved, float(reading.curved.mass))
+        values["curved"]["axis"] = _axis(body, reading.curved, reading.axis)
+    return values
+
+
+def answer_of_assembly(assembly: Assembly, path: str) -> Answer:
+    """Return the answer on a document: its totals, its ledger, and every check with the part it is about.
+
+    `axis` is the drive axis, with its name, point and direction. `volume_m3` is None where a part has none.
+    """
+    from core.assembly import findings_of, ledger_of
+    from core.handover.sheet import subject_of_assembly
+
+    subject, axis, ledger = subject_of_assembly(assembly), assembly.drive_axis, ledger_of(assembly)
+    spot = {"name": axis.name, "point_m": list(axis.point), "direction": _listed(axis.unit)}
+    return {
+        **dict.fromkeys(KEYS),
+        "path": path,
+        "basis": subject.basis,
+        **_values(subject.body, subject.form, _volume(assembly)),
+        "axis": {**(_axis(subject.body, subject.form, subject.axis) or {}), **spot},
+        "checks": [
+            {**_check(finding.check), "part": finding.name, "key": finding.key} for finding in findings_of(assembly)
+        ],
+        "ledger": [_line(line) for line in (*ledger.lines, ledger.total)],
+    }
+
+
+def answer_of_refusal(path: str, error: str) -> Answer:
+    """Return what stands in a list of answers for a file that gave none."""
+    return {"path": path, "error": error}
+
+
+def json_text(value: Any, indent: str = "") -> str:
+    """Return JSON in ASCII, an object's members on lines of their own and a list of numbers or rows on one.
+
+    Raises:
+        ValueError: a number in it is not finite.
+    """
+    deeper = indent + "  "
+    if isinstance(value, dict) and value:
+        members = [f"{deeper}{json.dumps(key)}: {json_text(inner, deeper)}" for key, inner in value.items()]
+        return "{\n" + ",\n".join(members) + f"\n{indent}}}"
+    if isinstance(value, list) and any(isinstance(inner, dict) for inner in value):
+        return "[\n" + ",\n".join(deeper + json_text(inner, deeper) for inner in value) + f"\n{indent}]"
+    return json.dumps(value, allow_nan=False)
+
+
+def _values(body: Moments | None, form: Moments | None, volume: float | None) -> Answer:
+    principal = None if form is None else form.principal
+    return {
+        "volume_m3": volume,
+        "mass_kg": None if body is None else float(body.mass),
+        "centre_m": None if form is None else _listed(form.centre),
+        "inertia_kgm2": None if body is None else _listed(body.inertia_about_centre),
+        "principal_kgm2": None if body is None else _listed(body.principal.moments),
+        "principal_axes": None if principal is None else _listed(principal.axes),
+        "radii_m": None if form is None else _listed(radii_about_principal(form)),
+    }
+
+
+def radii_about_principal(form: Moments) -> FloatArray:
+    """Return the radii of gyration (3,) m about the principal axes through the centre, in the order of the moments."""
+    return np.sqrt(np.maximum(form.principal.moments / form.mass, 0.0))
+
+
+def _axis(body: Moments | None, form: Moments | None, axis: AxisLine | None) -> Answer | None:
+    if axis is None:
+        return None
+    return {
+        "inertia_kgm2": None if body is None else float(body.inertia_about_axis(axis.point, axis.direction)),
+        "offset_m": None if form is None else float(form.offset_from_axis(axis.point, axis.direction)),
+    }
+
+
+def _line(line: Line) -> Answer:
+    return {
+        "key": line.key, "name": line.name, "kind": line.kind, "depth": line.depth, "count": line.count,
+        "times": line.times, "material": line.material, "basis": line.basis, "mass_kg": line.mass,
+        "centre_m": None if line.centre is None else _listed(line.centre), "own_inertia_kgm2": line.own_inertia,
+        "transfer_kgm2": line.transfer, "inertia_kgm2": line.inertia, "share": line.share,
+    }
+
+
+def _volume(assembly: Assembly) -> float | None:
+    parts = assembly.table.parts
+    copies = np.bincount(assembly.table.owner, minlength=len(parts))
+    volumes = [part.volume for part in parts]
+    if not parts or any(volume is None for volume in volumes):
+        return None
+    return float(sum(count * (volume or 0.0) for count, volume in zip(copies, volumes, strict=True)))
+
+
+def _check(check: Check) -> Answer:
+    return {"name": check.name, "ok": bool(check.ok), "text": check.text}
+
+
+def _listed(values: FloatArray) -> Any:
+    """Return an array as nested lists, with None for what is not finite: JSON knows no other number."""
+    return _plain(np.asarray(values, dtype=float).tolist())
+
+
+def _plain(values: float | Iterable[Any]) -> Any:
+    if isinstance(values, float):
+        return values if math.isfinite(values) else None
+    return [_plain(value) for value in values]

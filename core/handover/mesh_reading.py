@@ -1,0 +1,241 @@
+"""One mesh file, read and weighed: what its sheet and its answer are made of."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from functools import cached_property
+from typing import TYPE_CHECKING, Final, Protocol
+
+import numpy as np
+
+from core.checks import Check, check_body
+from core.handover.lines import AxisLine, Subject
+from core.mesh.mesh_check import check_mesh
+
+if TYPE_CHECKING:
+    from pathlib import Path
+
+    from core.arrays import FloatArray
+    from core.mesh import MeshSurvey
+    from core.moments import Moments
+    from core.progress import Progress
+    from core.quantity import Unit
+
+# Up to this many triangles, restoring curvature and counting shells takes no time that anybody notices.
+CHEAP_TRIANGLES: Final = 200_000
+_RESTORABLE: Final = frozenset({"closed", "hairline cracks", "inside out"})
+# A restored volume closer to the faceted one than this, relative, is the same: the form has no curved faces.
+_SAME: Final = 1e-12
+
+
+class Weighing(Protocol):
+    """What says how heavy a body is: a material, a density, or a weighed mass."""
+
+    @property
+    def label(self) -> str: ...
+
+    @property
+    def basis(self) -> str: ...
+
+    def mass_of(self, volume: float) -> float | None:
+        """Return the mass in kg of a volume in m³, or None."""
+        ...
+
+
+@dataclass(frozen=True, eq=False)
+class MeshReading:
+    """A mesh file with the unit, the mass and the axis that were asked for.
+
+    Attributes:
+        name: the file's path, as it was given.
+        survey: of the file, in file units.
+        unit: the length unit of the file.
+        unit_assumed: whether nobody named that unit.
+        weighing: what says its mass; None: nothing.
+        axis: that J is asked about, m in the file's frame.
+        restored: moments with curvature restored, file units, unit density; None where that was not done.
+        counts_restored: whether the restored values are the ones that count.
+        shells: how many connected shells; None where they were not counted.
+        findings: further checks on the file.
+        remarks: further sentences that belong beside the values.
+        how_to_weigh: what gives a mass, as a clause for the reader.
+    """
+
+    name: str
+    survey: MeshSurvey
+    unit: Unit
+    unit_assumed: bool = False
+    weighing: Weighing | None = None
+    axis: AxisLine | None = None
+    restored: Moments | None = None
+    counts_restored: bool = False
+    shells: int | None = None
+    findings: tuple[Check, ...] = ()
+    remarks: tuple[str, ...] = ()
+    how_to_weigh: str = "set a material, a density or a weighed mass"
+
+    @cached_property
+    def faceted(self) -> Moments | None:
+        """The volume between the facets, unit density, m."""
+        return None if self.survey.solid is None else self.survey.solid.enlarged(self.unit.factor)
+
+    @cached_property
+    def curved(self) -> Moments | None:
+        """The volume with curvature restored, unit density, m."""
+        return None if self.restored is None else self.restored.enlarged(self.unit.factor)
+
+    @property
+    def geometry(self) -> Moments | None:
+        """The volume that counts, unit density, m."""
+        return self.curved if self.counts_restored and self.curved is not None else self.faceted
+
+    def weighed(self, geometry: Moments | None) -> Moments | None:
+        """Return a volume at unit density as a body in kg; None where nothing says what it weighs."""
+        if geometry is None or self.weighing is None:
+            return None
+        mass = self.weighing.mass_of(float(geometry.mass))
+        return None if mass is None else geometry.with_mass(mass)
+
+    @cached_property
+    def body(self) -> Moments | None:
+        """The moments that count, kg and m in the file's frame."""
+        return self.weighed(self.geometry)
+
+    @property
+    def basis(self) -> str:
+        """Where the values come from: computed, estimated, or no volume and why."""
+        restored = self.counts_restored and self.curved is not None
+        return f"{self.survey.basis}, curvature restored" if restored else self.survey.basis
+
+    @property
+    def subject(self) -> Subject:
+        """The body that the sheet is about."""
+        reason = ""
+        if self.body is None:
+            reason = self.survey.basis if self.survey.solid is None else f"no mass: {self.how_to_weigh}"
+        return Subject(self.body, self.geometry, "file", self.axis, self.basis, reason)
+
+    @property
+    def volume(self) -> float | None:
+        """The volume that counts, m³."""
+        return None if self.geometry is None else float(self.geometry.mass)
+
+    @property
+    def area(self) -> float:
+        """Area of the facets, m²."""
+        return self.survey.area * self.unit.factor**2
+
+    @property
+    def bounds(self) -> FloatArray:
+        """Lowest and highest corner of the box around it, (2, 3) m."""
+        return self.survey.bounds * self.unit.factor
+
+    @cached_property
+    def checks(self) -> tuple[Check, ...]:
+        """The verdict on the mesh, and whether such a body can exist."""
+        checks = [check_mesh(self.survey, self.name), *self.findings]
+        if self.unit_assumed:
+            text = f"{self.name}: no length unit was given; {self.unit.symbol} was assumed."
+            checks.append(Check("unit", ok=True, text=text))
+        if self.body is not None:
+            # A round face reaches a little beyond its facets, so restored values get the faceted box's diagonal.
+            reach = float(np.linalg.norm(self.bounds[1] - self.bounds[0]))
+            checks += check_body(self.body, name=self.name, volume=self.volume, reach=reach, bounds=self.bounds)
+        return tuple(checks)
+
+    @property
+    def sources(self) -> tuple[tuple[str, str], ...]:
+        """Pairs of basis and text: the file, its unit, and what says its mass."""
+        size = self.survey.bounds[1] - self.survey.bounds[0]
+        extent = " × ".join(f"{value:.4g}" for value in size)
+        guess = ", which was assumed" if self.unit_assumed else ""
+        file = (
+            f"{self.survey.triangles} triangles, {self.survey.format}; "
+            f"lengths in {self.unit.symbol}{guess}: {extent} {self.unit.symbol}"
+        )
+        mass = () if self.weighing is None else ((self.weighing.basis, f"mass from {self.weighing.label}"),)
+        return (self.basis, file), *mass
+
+    @property
+    def notes(self) -> tuple[str, ...]:
+        """What was noticed on the file, and what restored curvature makes of it."""
+        check = check_mesh(self.survey, self.name)
+        said = (check.text,) if check.ok and self.survey.verdict != "closed" else ()
+        return (*said, *self.survey.notes, *self.remarks, *self._curvature_note())
+
+    @property
+    def cautions(self) -> tuple[str, ...]:
+        """What may make the values wrong."""
+        if not self.unit_assumed:
+            return ()
+        return (
+            f"An STL file says no length unit: {self.unit.symbol} was assumed. In another unit mass changes with the "
+            "third and inertia with the fifth power of the ratio.",
+        )
+
+    def _curvature_note(self) -> tuple[str, ...]:
+        if self.faceted is None or self.curved is None:
+            return ()
+        change = float(self.curved.mass / self.faceted.mass) - 1
+        if abs(change) < _SAME:
+            return ()
+        moments = self.curved.principal.moments / self.faceted.principal.moments - 1
+        counted = "as restored" if self.counts_restored else "as faceted"
+        return (
+            f"Restoring the curvature behind the facets changes the volume by {change:+.3%} and the principal moments "
+            f"at equal density by {moments.min():+.3%} to {moments.max():+.3%}; the values count the form {counted}.",
+        )
+
+
+@dataclass(frozen=True)
+class MeshRequest:
+    """What to find out about mesh files.
+
+    Attributes:
+        unit, unit_assumed, weighing, axis, how_to_weigh: as of a MeshReading.
+        count_restored: make the restored values the ones that count, however many triangles there are.
+        count_shells: count the shells, however many triangles there are.
+    """
+
+    unit: Unit
+    unit_assumed: bool = False
+    weighing: Weighing | None = None
+    axis: AxisLine | None = None
+    count_restored: bool = False
+    count_shells: bool = False
+    how_to_weigh: str = "set a material, a density or a weighed mass"
+
+
+def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None = None) -> MeshReading:
+    """Return what a mesh file holds; curvature and shells where they are asked for or cost next to nothing.
+
+    Raises:
+        MeshFileError: no sound mesh file.
+        Cancelled: progress was cancelled.
+    """
+    from core.mesh import count_shells, survey_file
+
+    survey = survey_file(path, progress)
+    cheap = survey.triangles <= CHEAP_TRIANGLES
+    reading = MeshReading(
+        str(path), survey, request.unit, request.unit_assumed, request.weighing, request.axis,
+        counts_restored=request.count_restored, how_to_weigh=request.how_to_weigh,
+    )
+    if cheap or request.count_shells:
+        reading = replace(reading, shells=count_shells(path, progress))
+    return _with_curvature(reading, path) if cheap or request.count_restored else reading
+
+
+def _with_curvature(reading: MeshReading, path: str | Path) -> MeshReading:
+    """Return the reading with its curvature restored, from the facets in memory, or with the reason why not."""
+    from core.mesh.curvature import restore
+    from core.mesh.stl import open_stl
+    from core.mesh.survey import gathered
+    from core.mesh.weld import weld_exactly
+
+    if reading.survey.verdict not in _RESTORABLE or reading.survey.solid is None:
+        remark = f"Curvature was not restored, because the mesh is {reading.survey.verdict}."
+        return replace(reading, remarks=(*reading.remarks, remark)) if reading.counts_restored else reading
+    points, corners = weld_exactly(gathered(open_stl(path), reading.survey.triangles))
+    turned = corners[:, ::-1] if reading.survey.verdict == "inside out" else corners
+    return replace(reading, restored=restore(points, turned).moments)
