@@ -39,7 +39,9 @@ def pytest_addoption(parser: pytest.Parser) -> None:
         parser.addini("qt_log_level_fail", "unused without Qt")
 
 
-def pytest_configure() -> None:
+def pytest_configure(config: pytest.Config) -> None:
+    if not config.option.benchmark_only:
+        config.option.benchmark_skip = True
     if not HAS_QT:
         return
     if not HAS_DISPLAY:
@@ -81,7 +83,7 @@ def is_whole_suite(config: pytest.Config) -> bool:
     option = config.option
     named = config.args_source is not pytest.Config.ArgsSource.TESTPATHS
     chosen = (option.keyword, option.markexpr, option.deselect, option.ignore, option.ignore_glob, option.lf)
-    return not (named or any(chosen) or option.collectonly or option.stepwise)
+    return not (named or any(chosen) or option.collectonly or option.stepwise or option.benchmark_only)
 
 
 def pytest_sessionfinish(session: pytest.Session, exitstatus: int) -> None:
