@@ -1,0 +1,194 @@
+"""A scene packed for drawing: few large arrays in single precision, relative to the middle of the scene.
+
+Small surfaces are laid out copy by copy into one batch, so that an assembly of a thousand parts is one draw call; a
+large surface is a batch of its own that is drawn once for each of its placements.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from app.window.view.camera import Camera
+from app.window.view.palette import Theme
+from app.window.view.scene import Bodies, Scene
+from app.window.view.surface import Float32Array, Surface, Uint32Array
+from core.arrays import BoolArray, FloatArray, IntArray
+
+# A surface of more triangles than this is drawn from one buffer for all its copies.
+LARGE = 20_000
+# Rims are looked for among at most so many edges.
+MOST_RIMS = 600_000
+
+
+@dataclass(frozen=True, eq=False)
+class Batch:
+    """Triangles of one or many bodies.
+
+    Attributes:
+        vertices, normals: (k, 3), m relative to the scene's middle after a placement is applied.
+        faces: (m, 3) indices into vertices.
+        owner: (k,) which body of the scene (scene.everybody) a vertex is of.
+        placements: (n, 4, 4).
+        closed: whether only the outside of its surfaces can be seen.
+    """
+
+    vertices: Float32Array
+    normals: Float32Array
+    faces: Uint32Array
+    owner: IntArray
+    placements: FloatArray
+    closed: bool
+
+
+@dataclass(frozen=True, eq=False)
+class Lines:
+    """Edges of all bodies, in m relative to the scene's middle.
+
+    Attributes:
+        sharp: (e, 2, 3); sharp_owner: (e,) which body each is of.
+        rims: (s, 2, 3), rim_normals: (s, 2, 3), rim_owner: (s,): edges that are drawn only where the surface
+            turns away from the viewer in them.
+    """
+
+    sharp: Float32Array
+    sharp_owner: IntArray
+    rims: Float32Array
+    rim_normals: Float32Array
+    rim_owner: IntArray
+
+    def rims_seen(self, camera: Camera, centre: FloatArray) -> BoolArray:
+        """Return which rims (s,) part a side that faces the viewer from one that does not."""
+        if camera.parallel:
+            toward = np.broadcast_to(camera.axes[2].astype(np.float32), (len(self.rims), 3))
+        else:
+            toward = (camera.eye - centre).astype(np.float32) - self.rims[:, 0]
+        one = np.einsum("ij,ij->i", self.rim_normals[:, 0], toward)
+        two = np.einsum("ij,ij->i", self.rim_normals[:, 1], toward)
+        return np.asarray((one > 0) != (two > 0))
+
+
+@dataclass(frozen=True, eq=False)
+class Packed:
+    """A scene ready to draw: batches of triangles and the lines on them."""
+
+    batches: tuple[Batch, ...]
+    lines: Lines
+
+    @property
+    def count(self) -> int:
+        """How many triangles one picture draws."""
+        return sum(len(batch.faces) * len(batch.placements) for batch in self.batches)
+
+
+@dataclass(frozen=True)
+class Emphasis:
+    """What stands out: parts that are selected, the one the pointer is on, and whether all is see-through."""
+
+    selected: frozenset[str] = frozenset()
+    hovered: str | None = None
+    see_through: bool = False
+
+
+def packed(scene: Scene, surface_for: Callable[[Bodies], Surface]) -> Packed:
+    """Return the scene packed; surface_for chooses the surface that is drawn for a body."""
+    small: list[tuple[int, Bodies, Surface]] = []
+    batches: list[Batch] = []
+    for index, bodies in enumerate(scene.everybody):
+        surface = surface_for(bodies)
+        if surface.count > LARGE:
+            batches.append(_own_batch(index, bodies, surface, scene.centre))
+        else:
+            small.append((index, bodies, surface))
+    # The ghost is see-through, so it never shares a batch with what is not.
+    solid = [entry for entry in small if entry[1] is not scene.ghost]
+    ghost = [entry for entry in small if entry[1] is scene.ghost]
+    batches[:0] = [_merged(entries, scene.centre) for entries in (solid, ghost) if entries]
+    return Packed(tuple(batches), _lines(scene, surface_for))
+
+
+def face_colours(scene: Scene, emphasis: Emphasis, theme: Theme) -> NDArray[np.uint8]:
+    """Return the colour of each body of scene.everybody, (b, 4) red, green, blue and opacity."""
+    colours = np.empty((len(scene.everybody), 4), dtype=np.uint8)
+    for index, bodies in enumerate(scene.everybody):
+        colour, opacity = theme.parts[bodies.tint % len(theme.parts)], 96 if emphasis.see_through else 255
+        if bodies is scene.ghost:
+            colour, opacity = theme.ghost, 110
+        elif bodies.key in emphasis.selected:
+            colour, opacity = theme.selected, 150 if emphasis.see_through else 255
+        elif bodies.key == emphasis.hovered:
+            colour = theme.hovered
+        colours[index] = (*colour, opacity)
+    return colours
+
+
+def line_ranks(scene: Scene, emphasis: Emphasis) -> IntArray:
+    """Return how each body's edges are drawn, (b,): 0 plain, 1 the pointer is on it, 2 selected."""
+    ranks = [
+        2 if bodies.key in emphasis.selected else int(bodies.key == emphasis.hovered or bodies is scene.ghost)
+        for bodies in scene.everybody
+    ]
+    return np.array(ranks, dtype=np.int64)
+
+
+def _own_batch(index: int, bodies: Bodies, surface: Surface, centre: FloatArray) -> Batch:
+    placements = np.zeros((len(bodies.shift), 4, 4))
+    placements[:, :3, :3], placements[:, 3, 3] = bodies.turn, 1.0
+    placements[:, :3, 3] = bodies.turn @ surface.middle + (bodies.shift - centre)
+    owner = np.full(len(surface.vertices), index, dtype=np.int64)
+    return Batch(surface.vertices, surface.normals, surface.faces, owner, placements, surface.closed)
+
+
+def _merged(entries: Iterable[tuple[int, Bodies, Surface]], centre: FloatArray) -> Batch:
+    vertices, normals, faces, owner = [], [], [], []
+    start, closed = 0, True
+    for index, bodies, surface in entries:
+        copies, size = len(bodies.shift), len(surface.vertices)
+        vertices.append(_laid_out(surface.vertices, bodies, surface, centre))
+        normals.append(_turned(surface.normals, bodies))
+        own = np.broadcast_to(surface.faces, (copies, surface.count, 3)).copy()
+        # A mirror image runs the other way round.
+        mirrored = np.linalg.det(bodies.turn) < 0
+        own[mirrored] = own[mirrored][:, :, ::-1]
+        offsets = start + size * np.arange(copies, dtype=np.uint32)
+        faces.append((own + offsets[:, None, None].astype(np.uint32)).reshape(-1, 3))
+        owner.append(np.full(copies * size, index, dtype=np.int64))
+        start += copies * size
+        closed &= surface.closed
+    return Batch(
+        np.concatenate(vertices), np.concatenate(normals), np.concatenate(faces), np.concatenate(owner),
+        np.eye(4)[None], closed,
+    )
+
+
+def _lines(scene: Scene, surface_for: Callable[[Bodies], Surface]) -> Lines:
+    sharp, sharp_owner, rims, rim_normals, rim_owner = [], [], [], [], []
+    left = MOST_RIMS
+    for index, bodies in enumerate(scene.everybody):
+        surface, copies = surface_for(bodies), len(bodies.shift)
+        sharp.append(_laid_out(surface.sharp.reshape(-1, 3), bodies, surface, scene.centre).reshape(-1, 2, 3))
+        sharp_owner.append(np.full(len(sharp[-1]), index, dtype=np.int64))
+        if len(surface.rims) * copies <= left:
+            left -= len(surface.rims) * copies
+            rims.append(_laid_out(surface.rims.reshape(-1, 3), bodies, surface, scene.centre).reshape(-1, 2, 3))
+            rim_normals.append(_turned(surface.rim_normals.reshape(-1, 3), bodies).reshape(-1, 2, 3))
+            rim_owner.append(np.full(len(rims[-1]), index, dtype=np.int64))
+    nothing, nobody = np.zeros((0, 2, 3), dtype=np.float32), np.zeros(0, dtype=np.int64)
+    return Lines(
+        np.concatenate([nothing, *sharp]), np.concatenate([nobody, *sharp_owner]), np.concatenate([nothing, *rims]),
+        np.concatenate([nothing, *rim_normals]), np.concatenate([nobody, *rim_owner]),
+    )
+
+
+def _laid_out(points: Float32Array, bodies: Bodies, surface: Surface, centre: FloatArray) -> Float32Array:
+    """Return the points of all copies (n·k, 3), relative to the scene's middle."""
+    shift = bodies.turn @ surface.middle + (bodies.shift - centre)
+    turn = bodies.turn.astype(np.float32)
+    return (points @ np.swapaxes(turn, 1, 2) + shift[:, None].astype(np.float32)).reshape(-1, 3)
+
+
+def _turned(directions: Float32Array, bodies: Bodies) -> Float32Array:
+    return np.asarray(directions @ np.swapaxes(bodies.turn.astype(np.float32), 1, 2)).reshape(-1, 3)

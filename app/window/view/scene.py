@@ -1,0 +1,211 @@
+"""The assembly as things to draw: bodies, drive axis, centre of mass, principal axes. No Qt, and nothing of the look.
+
+A scene depends on the assembly alone; what is selected and which theme is on comes later (see `batch`), so that the
+pointer moving over the view rebuilds nothing.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from functools import cached_property
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from app.window.view.surface import Surface, surface_of
+from core.arrays import FloatArray, frozen
+
+if TYPE_CHECKING:
+    from core.assembly import Assembly, Part
+    from core.facets import Facets
+    from core.moments import Moments
+
+# How far the drive axis reaches beyond what turns about it, relative to the size of the scene.
+_OVERHANG = 0.12
+# More vertices than this and the scene is fitted by the boxes around its bodies.
+_MOST_FITTED = 200_000
+_TIES = {"": ("1", "2", "3"), "12": ("1=2", "1=2", "3"), "23": ("1", "2=3", "2=3"), "123": ("1=2=3",) * 3}
+
+
+@dataclass(frozen=True, eq=False)
+class Bodies:
+    """A part and its copies.
+
+    Attributes:
+        key, name: of the part.
+        surface: of one copy, in the part frame.
+        turn, shift: (n, 3, 3) and (n, 3) m, placements tf_document_part of the copies.
+        tint: a small number that parts of the same material share.
+    """
+
+    key: str
+    name: str
+    surface: Surface
+    turn: FloatArray
+    shift: FloatArray
+    tint: int = 0
+
+    @property
+    def count(self) -> int:
+        """How many triangles all copies have together."""
+        return self.surface.count * len(self.shift)
+
+
+@dataclass(frozen=True, eq=False)
+class Line:
+    """A straight mark with a name, from start to end (3,) m."""
+
+    name: str
+    start: FloatArray
+    end: FloatArray
+
+
+@dataclass(frozen=True, eq=False)
+class Scene:
+    """Everything that can be seen, in the document frame.
+
+    Attributes:
+        bodies: in the order of the ledger.
+        ghost: a part that is not in the document yet.
+        bounds: (2, 3) m around all bodies; None when there is none.
+        axis: the drive axis, as long as it is drawn; None in an empty scene.
+        mass_centre: (3,) m; None while no mass is known.
+        principal: three arrows from the centre of mass, as long as the radii of gyration.
+    """
+
+    bodies: tuple[Bodies, ...] = ()
+    ghost: Bodies | None = None
+    bounds: FloatArray | None = None
+    axis: Line | None = None
+    mass_centre: FloatArray | None = None
+    principal: tuple[Line, ...] = ()
+
+    @cached_property
+    def everybody(self) -> tuple[Bodies, ...]:
+        """The bodies, and the ghost where there is one."""
+        return self.bodies if self.ghost is None else (*self.bodies, self.ghost)
+
+    @cached_property
+    def count(self) -> int:
+        """How many triangles there are."""
+        return sum(bodies.count for bodies in self.everybody)
+
+    @cached_property
+    def fit_points(self) -> FloatArray:
+        """Points (n, 3) m that are in the picture when the whole scene is; a unit box when it is empty."""
+        if self.bounds is None:
+            return np.array([[x, y, z] for x in (-0.1, 0.1) for y in (-0.1, 0.1) for z in (-0.1, 0.1)])
+        full = sum(len(bodies.surface.vertices) * len(bodies.shift) for bodies in self.everybody) <= _MOST_FITTED
+        points = [_outermost(bodies, full=full) for bodies in self.everybody]
+        marks = [self.axis, *self.principal]
+        points += [np.stack([mark.start, mark.end]) for mark in marks if mark is not None]
+        return np.concatenate(points)
+
+    @cached_property
+    def centre(self) -> FloatArray:
+        """The middle (3,) m of the points to fit; what is drawn is handed on relative to it."""
+        return 0.5 * (self.fit_points.min(axis=0) + self.fit_points.max(axis=0))
+
+    @cached_property
+    def radius(self) -> float:
+        """The radius in m of a ball about the middle that holds everything."""
+        return float(np.linalg.norm(self.fit_points - self.centre, axis=1).max())
+
+
+@dataclass
+class SurfaceStore:
+    """Surfaces made ready once, found again by the identity of the facets they were made from."""
+
+    _kept: dict[int, tuple[Facets, Surface]] = field(default_factory=dict)
+
+    def of(self, facets: Facets) -> Surface:
+        """Return the surface of the facets, made now if it is new."""
+        found = self._kept.get(id(facets))
+        if found is None or found[0] is not facets:
+            found = self._kept[id(facets)] = (facets, surface_of(facets))
+        return found[1]
+
+    def keep_only(self, scene: Scene) -> None:
+        """Forget the surfaces that the scene does not show."""
+        shown = {id(bodies.surface) for bodies in scene.everybody}
+        self._kept = {key: entry for key, entry in self._kept.items() if id(entry[1]) in shown}
+
+
+def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None) -> Scene:
+    """Return what is to be seen of an assembly, and of a part that may join it."""
+    bodies = _bodies(assembly, store)
+    ghostly = None
+    if ghost is not None and len(ghost.surface.corners):
+        standing = ghost.standing
+        ghostly = Bodies(ghost.key, ghost.name, store.of(ghost.surface), standing.turn, standing.shift)
+    everybody = bodies if ghostly is None else (*bodies, ghostly)
+    if not everybody:
+        return Scene()
+    bounds = _bounds(everybody)
+    has_mass = bool(bodies) and float(assembly.total.mass) > 0
+    arrows = _principal_arrows(assembly.total) if has_mass else ()
+    reach = np.concatenate([bounds, *([arrow.start, arrow.end] for arrow in arrows)])
+    axis = assembly.drive_axis
+    return Scene(
+        bodies, ghostly, bounds, _axis_line(axis.name, np.asarray(axis.point, dtype=float), axis.unit, reach),
+        frozen(assembly.total.centre) if has_mass else None, arrows,
+    )
+
+
+def _bodies(assembly: Assembly, store: SurfaceStore) -> tuple[Bodies, ...]:
+    table = assembly.table
+    order = np.argsort(table.owner, kind="stable")
+    start = np.searchsorted(table.owner[order], np.arange(len(table.parts) + 1))
+    tints: dict[str, int] = {}
+    bodies = []
+    for index, part in enumerate(table.parts):
+        rows = order[start[index]:start[index + 1]]
+        if len(rows) and len(part.surface.corners):
+            tint = tints.setdefault(part.driver.label, len(tints))
+            surface = store.of(part.surface)
+            bodies.append(
+                Bodies(part.key, part.name, surface, table.standing.turn[rows], table.standing.shift[rows], tint)
+            )
+    return tuple(bodies)
+
+
+def _outermost(bodies: Bodies, *, full: bool) -> FloatArray:
+    """Return points (n, 3) m of all copies: every vertex, or the corners of the boxes around them."""
+    surface = bodies.surface
+    if full:
+        local = surface.vertices + surface.middle
+    else:
+        local = np.array([surface.bounds[list(pick), range(3)] for pick in np.ndindex(2, 2, 2)])
+    return (np.einsum("nij,kj->nki", bodies.turn, local) + bodies.shift[:, None]).reshape(-1, 3)
+
+
+def _bounds(everybody: tuple[Bodies, ...]) -> FloatArray:
+    lows, highs = [], []
+    for bodies in everybody:
+        # The box around a turned box: its half-widths are |R| times the old ones.
+        centre = np.einsum("nij,j->ni", bodies.turn, bodies.surface.bounds.mean(axis=0)) + bodies.shift
+        half = np.abs(bodies.turn) @ (0.5 * np.ptp(bodies.surface.bounds, axis=0))
+        lows.append((centre - half).min(axis=0))
+        highs.append((centre + half).max(axis=0))
+    return frozen([np.min(lows, axis=0), np.max(highs, axis=0)])
+
+
+def _axis_line(name: str, point: FloatArray, unit: FloatArray, reach: FloatArray) -> Line:
+    """Return the axis from below what it passes to above it; reach (n, 3) m are the outermost points."""
+    low, high = reach.min(axis=0), reach.max(axis=0)
+    # The extent of a box along a direction.
+    middle, half = 0.5 * (low + high), 0.5 * np.abs(unit) @ (high - low)
+    along = (middle - point) @ unit
+    over = half + _OVERHANG * float(np.linalg.norm(high - low))
+    return Line(name, point + (along - over) * unit, point + (along + over) * unit)
+
+
+def _principal_arrows(total: Moments) -> tuple[Line, ...]:
+    principal = total.principal
+    radii = np.sqrt(np.maximum(principal.moments, 0.0) / float(total.mass))
+    names = _TIES[principal.tie]
+    return tuple(
+        Line(name, frozen(total.centre), frozen(total.centre + radius * axis))
+        for name, radius, axis in zip(names, radii, principal.axes, strict=True)
+        if radius > 0
+    )
