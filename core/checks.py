@@ -1,11 +1,9 @@
 """Whether a body with these mass properties can exist, and if not, which slip would explain it.
 
 Each check compares two numbers by one rule of mechanics and says so in one sentence. When a rule is broken,
-the usual slips (a power of ten, a unit, a sign, the other reference point) are tried one by one, and those that
-would make the values possible are named. Nothing is corrected here. Arguments are of one body, no batch.
+the usual slips (a power of ten, a unit, a sign, the other point) are tried one by one, and those that would
+explain it are named. Nothing is corrected here. Every argument is of one body.
 """
-
-from __future__ import annotations
 
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
@@ -82,13 +80,13 @@ def check_body(
     bounds: ArrayLike | None = None,
     tolerance: float = ROUND_OFF,
 ) -> list[Check]:
-    """Return every check that the known values allow; without a mass, only the one that fails.
+    """Return every check the known values allow; without a mass only the failing one.
 
     Args:
         moments: of a single body.
         name: the part's, for the sentences.
         volume: m³; adds the density check.
-        reach: m, distance of the part's farthest point from its centre of mass; adds the check of the radius of
+        reach: m, distance of the part's farthest point from its centre; adds the check of the radius of
             gyration. Without it the farthest corner of bounds stands in.
         bounds: (2, 3) m, lowest and highest corner of the box around the part; adds the check of the centre.
         tolerance: relative; ROUNDED_FIGURES for values copied from a data sheet.
@@ -284,7 +282,7 @@ def _check_principal(
 def _readings(
     given: FloatArray, transfer: FloatArray, other_point: FloatArray
 ) -> Iterator[tuple[str, str, FloatArray]]:
-    """Yield other ways to read a tensor: the value in doubt, the slip in words, the tensor about the centre then.
+    """Yield other ways to read a tensor: the value in doubt, the slip, the tensor about the centre then.
 
     Args:
         given: (3, 3) kg·m², about some point.

@@ -37,8 +37,13 @@ def tensor_of_points(masses: np.ndarray, places: np.ndarray, about: np.ndarray) 
     """Sum the inertia tensor (3, 3) of point masses about a point, element by element as textbooks write it."""
     tensor = np.zeros((3, 3))
     for mass, (x, y, z) in zip(masses, np.asarray(places) - about, strict=True):
-        tensor += mass * np.array([[y * y + z * z, -x * y, -x * z], [-x * y, x * x + z * z, -y * z],
-                                   [-x * z, -y * z, x * x + y * y]])
+        tensor += mass * np.array(
+            [
+                [y * y + z * z, -x * y, -x * z],
+                [-x * y, x * x + z * z, -y * z],
+                [-x * z, -y * z, x * x + y * y],
+            ]
+        )
     return tensor
 
 
@@ -60,18 +65,27 @@ def moments_of_facets(facets: Facets) -> Moments:
     volume = volumes.sum()
     centre = (weights[..., None] * nodes).sum(axis=(0, 1)) / volume
     apart = nodes - centre
-    return Moments(volume, peak + centre, np.einsum("nq,nqi,nqj->ij", np.broadcast_to(weights, nodes.shape[:2]), apart, apart))
+    return Moments(
+        volume,
+        peak + centre,
+        np.einsum("nq,nqi,nqj->ij", np.broadcast_to(weights, nodes.shape[:2]), apart, apart),
+    )
 
 
 def directed_edges_cancel(facets: Facets) -> bool:
     """Return whether each directed edge is met by its reverse as often as it occurs."""
     corners = facets.corners
-    edges = Counter(map(tuple, np.concatenate([corners[:, [0, 1]], corners[:, [1, 2]], corners[:, [2, 0]]]).tolist()))
+    edges = Counter(
+        map(tuple, np.concatenate([corners[:, [0, 1]], corners[:, [1, 2]], corners[:, [2, 0]]]).tolist())
+    )
     return all(edges[end, start] == number for (start, end), number in edges.items())
 
 
 def revolved_by_quadrature(
-    outer: Callable[[float], float], bottom: float, top: float, inner: Callable[[float], float] = lambda _z: 0.0
+    outer: Callable[[float], float],
+    bottom: float,
+    top: float,
+    inner: Callable[[float], float] = lambda _z: 0.0,
 ) -> Moments:
     """Integrate a body of revolution about z slice by slice (adaptive quadrature), at unit density."""
     from scipy.integrate import quad

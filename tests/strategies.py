@@ -2,11 +2,31 @@
 
 from __future__ import annotations
 
+from fractions import Fraction
+
+from dataclasses import replace
+
 import numpy as np
 from hypothesis import strategies as st
 
+from core.assembly import (
+    Assembly,
+    DataSheet,
+    DriveAxis,
+    Driver,
+    Group,
+    KnownAxial,
+    KnownTensor,
+    MeshBody,
+    Node,
+    Part,
+    ShapeBody,
+    six_of_tensor,
+)
+from core.material import ByDensity, ByMaterial, NotSet, Weighed
+from core.mesh import MeshAsset
 from core.moments import Moments
-from core.placement import Placement
+from core.placement import Copies, Mirrored, Placement, Pose, Ring, Row, Several
 from core.shapes import SHAPES, Box, Cone, Cylinder, Frustum, Shape, Sphere, Tube
 
 # Sizes of machine parts in m, masses in kg; every drawn body is about a metre across at most.
@@ -24,11 +44,13 @@ def rotations(draw: st.DrawFn) -> np.ndarray:
     """A rotation matrix (3, 3) from a unit quaternion (Euler–Rodrigues parameters)."""
     numbers = np.array(draw(st.tuples(*[COORDINATES] * 4).filter(lambda q: np.linalg.norm(q) > 1e-2)))
     w, x, y, z = numbers / np.linalg.norm(numbers)
-    return np.array([
-        [1 - 2 * (y * y + z * z), 2 * (x * y - w * z), 2 * (x * z + w * y)],
-        [2 * (x * y + w * z), 1 - 2 * (x * x + z * z), 2 * (y * z - w * x)],
-        [2 * (x * z - w * y), 2 * (y * z + w * x), 1 - 2 * (x * x + y * y)],
-    ])
+    return np.array(
+        [
+            [1 - 2 * (y * y + z * z), 2 * (x * y - w * z), 2 * (x * z + w * y)],
+            [2 * (x * y + w * z), 1 - 2 * (x * x + z * z), 2 * (y * z - w * x)],
+            [2 * (x * z - w * y), 2 * (y * z + w * x), 1 - 2 * (x * x + y * y)],
+        ]
+    )
 
 
 @st.composite
@@ -66,4 +88,138 @@ spheres = st.builds(Sphere, LENGTHS)
 solids: st.SearchStrategy[Shape] = st.one_of(boxes, cylinders, tubes(), cones, frusta, spheres)
 
 # Every registered shape, whoever added it, with the dimensions the gallery starts from.
-registered_shapes: st.SearchStrategy[Shape] = st.sampled_from(sorted(SHAPES)).map(lambda key: SHAPES[key].of({}))
+registered_shapes: st.SearchStrategy[Shape] = st.sampled_from(sorted(SHAPES)).map(
+    lambda key: SHAPES[key].of({})
+)
+
+
+# Typed numbers: text together with the exact value that it means, worked out without the parser.
+FINITE = st.floats(allow_nan=False, allow_infinity=False)
+READABLE_SIZES = st.floats(1e-9, 1e9) | st.floats(-1e9, -1e-9) | st.just(0.0)
+
+
+@st.composite
+def typed_decimals(draw: st.DrawFn) -> tuple[str, Fraction]:
+    """A decimal as typed with a point, without a sign."""
+    digits = draw(st.text("0123456789", min_size=1, max_size=6))
+    decimals = draw(st.none() | st.text("0123456789", max_size=6))
+    text = digits if decimals is None else f"{digits}.{decimals}"
+    return text, Fraction(int(digits + (decimals or "")), 10 ** len(decimals or ""))
+
+
+def _joined(pieces: st.SearchStrategy[tuple[str, Fraction]]) -> st.SearchStrategy[tuple[str, Fraction]]:
+    rules = {
+        "+": lambda a, b: (f"({a[0]} + {b[0]})", a[1] + b[1]),
+        "-": lambda a, b: (f"({a[0]} − {b[0]})", a[1] - b[1]),
+        "*": lambda a, b: (f"({a[0]}*{b[0]})", a[1] * b[1]),
+        "+*": lambda a, b: (f"({a[0]} + {b[0]}*{a[0]})", a[1] + b[1] * a[1]),
+        "/": lambda a, b: (f"({a[0]}/{b[0]})", a[1] / b[1]) if b[1] else a,
+        "negative": lambda a, _: (f"-({a[0]})", -a[1]),
+    }
+    return st.builds(lambda rule, a, b: rules[rule](a, b), st.sampled_from(sorted(rules)), pieces, pieces)
+
+
+typed_sums = st.recursive(typed_decimals(), _joined, max_leaves=8).filter(lambda typed: len(typed[0]) <= 200)
+
+
+# --- assemblies -------------------------------------------------------------------------------------------------
+
+TRIPLES = st.tuples(COORDINATES, COORDINATES, COORDINATES)
+DIRECTIONS = TRIPLES.filter(lambda vector: np.linalg.norm(vector) > 1e-2)
+COUNTS = st.integers(1, 6)
+# Anything a user can type into a text field: every character but halves of a pair.
+TEXTS = st.text(st.characters(exclude_categories=["Cs"]), max_size=20)
+
+poses = st.builds(Pose, TRIPLES, st.tuples(ANGLES, ANGLES, ANGLES))
+rings = st.builds(
+    Ring,
+    COUNTS,
+    TRIPLES,
+    DIRECTIONS,
+    ANGLES,
+    st.one_of(st.just(2 * np.pi), st.just(-2 * np.pi), ANGLES),
+    st.booleans(),
+)
+several_copies: st.SearchStrategy[Copies] = st.one_of(
+    st.builds(Several, COUNTS),
+    rings,
+    st.builds(Row, COUNTS, TRIPLES),
+    st.builds(Mirrored, TRIPLES, DIRECTIONS),
+)
+mass_drivers = st.one_of(
+    st.builds(ByMaterial, TEXTS, st.floats(100, 2e4)),
+    st.builds(ByDensity, st.floats(100, 2e4)),
+    st.builds(Weighed, MASSES),
+)
+unset_or_mass_drivers = st.one_of(st.just(NotSet()), mass_drivers)
+
+
+def tetrahedron_stl(legs: tuple[float, float, float]) -> bytes:
+    """Return a binary STL of the tetrahedron with its right-angled corner at the origin, legs in file units."""
+    corners = np.concatenate([np.zeros((1, 3)), np.diag(legs)])
+    facets = np.zeros(4, dtype=[("normal", "<f4", 3), ("corners", "<f4", (3, 3)), ("attribute", "<u2")])
+    facets["corners"] = corners[[[0, 2, 1], [0, 1, 3], [0, 3, 2], [1, 2, 3]]]
+    return b"four facets".ljust(80) + np.uint32(4).tobytes() + facets.tobytes()
+
+
+def mesh_body(legs: tuple[float, float, float], name: str, metres_per_unit: float) -> MeshBody:
+    return MeshBody(MeshAsset.of_bytes(tetrahedron_stl(legs), name), metres_per_unit)
+
+
+mesh_bodies = st.builds(
+    mesh_body, st.tuples(*[st.floats(1, 100)] * 3), TEXTS, st.sampled_from([1e-3, 1e-2, 1.0, 0.0254, 0.3048])
+)
+geometric_bodies = st.one_of(st.builds(ShapeBody, st.one_of(solids, registered_shapes)), mesh_bodies)
+
+
+@st.composite
+def known_tensors(draw: st.DrawFn) -> KnownTensor:
+    """A data sheet of a body that can exist, about its centre or about the origin of its frame."""
+    body, about, source = draw(realisable_moments()), draw(st.sampled_from(["centre", "origin"])), draw(TEXTS)
+    tensor = body.inertia_about_centre if about == "centre" else body.inertia_about_point(np.zeros(3))
+    centre = tuple(float(value) for value in body.centre)
+    return KnownTensor(float(body.mass), centre, six_of_tensor(tensor), about, source)
+
+
+@st.composite
+def known_axials(draw: st.DrawFn) -> KnownAxial:
+    """A data sheet that gives one inertia, large enough for the centre that it gives."""
+    mass, (x, y, z) = draw(MASSES), draw(TRIPLES)
+    own = mass * draw(LENGTHS) ** 2
+    return KnownAxial(
+        mass, (x, y, z), own + mass * (x * x + y * y), draw(st.one_of(st.just(0.0), LENGTHS)), draw(TEXTS)
+    )
+
+
+@st.composite
+def parts(draw: st.DrawFn, drivers: st.SearchStrategy[Driver] = unset_or_mass_drivers) -> Part:
+    """A part of any kind; its key is not yet its own."""
+    body = draw(st.one_of(geometric_bodies, known_tensors(), known_axials()))
+    driver = DataSheet() if isinstance(body, KnownTensor | KnownAxial) else draw(drivers)
+    typed = draw(st.lists(st.tuples(TEXTS, TEXTS), max_size=2).map(tuple))
+    return Part("", draw(TEXTS), body, driver, draw(poses), draw(several_copies), typed, draw(TEXTS))
+
+
+def groups(members: st.SearchStrategy[Node]) -> st.SearchStrategy[Node]:
+    """A group that holds up to three of the members."""
+    held = st.lists(members, max_size=3).map(tuple)
+    return st.builds(Group, st.just(""), TEXTS, held, poses, several_copies, note=TEXTS)
+
+
+def with_own_keys(members: tuple[Node, ...], stem: str = "n") -> tuple[Node, ...]:
+    """Return the nodes with keys that differ: where each stands in the tree."""
+    return tuple(
+        replace(node, key=f"{stem}.{at}", members=with_own_keys(node.members, f"{stem}.{at}"))
+        if isinstance(node, Group)
+        else replace(node, key=f"{stem}.{at}")
+        for at, node in enumerate(members)
+    )
+
+
+@st.composite
+def assemblies(draw: st.DrawFn, drivers: st.SearchStrategy[Driver] = unset_or_mass_drivers) -> Assembly:
+    """A document: groups in groups, rings, rows and mirror images, known parts, meshes, several axes."""
+    members = draw(st.lists(st.recursive(parts(drivers), groups, max_leaves=5), max_size=4).map(tuple))
+    names = draw(st.lists(TEXTS, min_size=1, max_size=3, unique=True))
+    axes = tuple(DriveAxis(name, draw(TRIPLES), draw(DIRECTIONS)) for name in names)
+    return Assembly(draw(TEXTS), with_own_keys(members), axes, draw(st.sampled_from(names)))

@@ -4,8 +4,6 @@ A shape family is one file that defines one frozen dataclass per shape and regis
 gallery, the Part page, the document, the command line and the tests find it through `SHAPES`.
 """
 
-from __future__ import annotations
-
 from abc import ABC, abstractmethod
 from collections.abc import Mapping
 from dataclasses import dataclass

@@ -1,7 +1,5 @@
 """The rectangular block."""
 
-from __future__ import annotations
-
 from dataclasses import dataclass
 from typing import ClassVar
 

@@ -1,7 +1,5 @@
 """Cone and cut-off cone (frustum)."""
 
-from __future__ import annotations
-
 from dataclasses import dataclass
 from typing import ClassVar
 

@@ -1,7 +1,5 @@
 """Round bar and tube."""
 
-from __future__ import annotations
-
 from dataclasses import dataclass
 from typing import ClassVar
 

@@ -1,7 +1,5 @@
 """The surface that a plane outline leaves when it turns once about the z axis, as facets."""
 
-from __future__ import annotations
-
 import numpy as np
 
 from core.arrays import ArrayLike

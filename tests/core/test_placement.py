@@ -128,7 +128,9 @@ def test_a_full_ring_is_the_sum_of_its_copies_written_out(body, first, axis, cou
 def test_a_part_ring_has_a_copy_at_both_of_its_ends(body, first, count, span):
     ring = Ring(count, span=span)
     turns = [Rotation.from_rotvec([0, 0, angle]).as_matrix() for angle in np.linspace(0, span, count)]
-    expected = written_out(body, [turn @ first.turn for turn in turns], [turn @ first.shift for turn in turns])
+    expected = written_out(
+        body, [turn @ first.turn for turn in turns], [turn @ first.shift for turn in turns]
+    )
     assert_same_body(ring.placements(first).place(body).total(), expected, rel=1e-13, size=4.0)
 
 
@@ -165,7 +167,9 @@ def test_a_mirrored_pair_balances_about_its_plane(body, first, point, normal):
     across = total.spread @ unit - (unit @ total.spread @ unit) * unit
     np.testing.assert_allclose(across, 0, atol=1e-13 * float(total.mass) * 16)
     np.testing.assert_allclose(
-        np.linalg.eigvalsh(copies.spread[1]), np.linalg.eigvalsh(copies.spread[0]), atol=1e-13 * float(body.mass)
+        np.linalg.eigvalsh(copies.spread[1]),
+        np.linalg.eigvalsh(copies.spread[0]),
+        atol=1e-13 * float(body.mass),
     )
 
 
@@ -185,7 +189,9 @@ def test_a_quantity_that_nobody_means_is_refused_with_its_limits(copies, count):
 
 @pytest.mark.parametrize("make", [lambda: Ring(direction=(0, 0, 0)), lambda: Mirrored(normal=(0, 0, 0))])
 def test_a_ring_or_mirror_without_a_direction_is_refused(make):
-    with pytest.raises(ValueRefused, match=r"^a direction needs a length; read .*\. Give three numbers that are not all"):
+    with pytest.raises(
+        ValueRefused, match=r"^a direction needs a length; read .*\. Give three numbers that are not all"
+    ):
         make()
 
 
