@@ -19,8 +19,8 @@ from core.quantity import compact
 from core.quantity.tokens import quoted
 
 __all__ = [
-    "MATERIALS", "ByDensity", "ByMaterial", "Material", "NotSet", "Weighed", "check_density", "implied_density",
-    "material", "search",
+    "MATERIALS", "ByDensity", "ByMaterial", "Material", "NotSet", "Weighed",
+    "check_density", "implied_density", "material", "search",
 ]
 
 _NAMED_IN_AN_ERROR: Final = 4
@@ -47,8 +47,8 @@ class ByMaterial:
     Raises:
         MaterialError: the density is not a positive number.
 
-    >>> ByMaterial.named("steel").mass_of(1e-3)
-    7.85
+    >>> ByMaterial.named("steel").mass_of(0.5)
+    3925.0
     """
 
     name: str
@@ -78,7 +78,7 @@ class ByMaterial:
         """Say how name and density differ from the table's; nothing where they agree."""
         known = next((known for known in MATERIALS if known.name == self.name), None)
         if known is None:
-            return f'"{self.name}" is not in the table of materials; its own {_density_text(self.density)} counts'
+            return f'"{self.name}" is not in the table; its own {_density_text(self.density)} counts'
         if known.density == self.density:
             return ""
         return (
@@ -138,7 +138,7 @@ class Weighed:
 def implied_density(mass: float, volume: float) -> float | None:
     """Return the density in kg/m³ of mass kg in volume m³, or None where there is no volume.
 
-    >>> implied_density(7.85, 1e-3), implied_density(1.0, 0.0)
+    >>> implied_density(3925.0, 0.5), implied_density(1.0, 0.0)
     (7850.0, None)
     """
     return mass / volume if volume > 0.0 else None

@@ -39,7 +39,7 @@ def parse_triple(text: str, unit: Unit, *, where: str = "") -> Triple:
 
 
 def parse_axis(text: str, unit: Unit, *, where: str = "") -> tuple[Triple, Triple]:
-    """Read an axis "px,py,pz;ux,uy,uz": a point on it (in the given length unit) and its direction (of any length).
+    """Read an axis "px,py,pz;ux,uy,uz": a point on it, in a length unit, and its direction, of any length.
 
     Returns:
         The point in m, and the direction as typed.

@@ -6,7 +6,7 @@
     number  = digits with "." or "," as the decimal mark, a power of ten, or a mixed fraction "1 3/8"
 
 A unit applies to the whole term before it: "3/8 in" is three eighths of an inch. Text without any unit means
-the field's own unit. A bare number beside one with a unit is refused ("25 + 2 mm"): both readings are plausible.
+the field's own unit. A bare number beside one with a unit is refused ("25 + 2 mm"): it has two readings.
 Everything is exact fractions until the last step, so the result is the nearest double.
 """
 
@@ -38,7 +38,7 @@ class Understood:
     Attributes:
         value: in the SI unit of its kind.
         text: as it was typed.
-        shown: the value in the field's unit, e.g. "11.525 mm", or "J = GD²/4 = 0.447 kg·m²" for a flywheel effect.
+        shown: the value in the field's unit, e.g. "11.525 mm"; flywheel effect: "J = GD²/4 = 0.447 kg·m²".
     """
 
     value: float

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from functools import cache, lru_cache
 from types import MappingProxyType
-from typing import TYPE_CHECKING, Final, SupportsFloat
+from typing import TYPE_CHECKING, Final
 
 from core.quantity.units import (
     DEGREE,
@@ -107,7 +107,10 @@ RUN_TOGETHER: Final[Mapping[str, tuple[str, str]]] = MappingProxyType({
 TWO_MEANINGS: Final[Mapping[str, str]] = MappingProxyType({
     "gr": 'Write "g" for gram or "grain" for grain',
     **dict.fromkeys(("ton", "tons"), 'Write "t" (1000 kg), "short_ton" (2000 lb) or "long_ton" (2240 lb)'),
-    "cwt": 'Write "short_hundredweight" (100 lb) or "long_hundredweight" (112 lb)',
+    "mt": 'Write "t" (1000 kg) or "kg" (its thousandth)',
+    **dict.fromkeys(
+        ("cwt", "hundredweight"), 'Write "short_hundredweight" (100 lb) or "long_hundredweight" (112 lb)'
+    ),
 })
 
 
@@ -136,7 +139,8 @@ def _registry() -> pint.UnitRegistry[float]:
 
 @lru_cache(maxsize=256)
 def _from_pint(name: str) -> Meaning | None:
-    if not (name.isascii() and name.replace("_", "").isalpha() and len(name) <= _LONGEST_NAME):
+    words = name.split("_")
+    if len(name) > _LONGEST_NAME or not all(word.isascii() and word.isalpha() for word in words):
         return None
     registry = _registry()
     if name not in registry:
@@ -144,9 +148,13 @@ def _from_pint(name: str) -> Meaning | None:
     one = registry.Quantity(1.0, name).to_root_units()
     if registry.Quantity(0.0, name).to_root_units().magnitude != 0.0:
         return None  # decibels, degrees Celsius: no ratio says what they are
-    powers: dict[str, SupportsFloat] = dict(one.unit_items())
-    exponents = [float(powers.pop(base, 0.0)) for base in _PINT_BASES]
-    if powers or not all(power.is_integer() for power in exponents):
+    powers = dict(one.unit_items())
+    exponents = [
+        int(power)
+        for base in _PINT_BASES
+        if isinstance(power := powers.pop(base, 0), int | float) and power == int(power)
+    ]
+    if powers or len(exponents) != len(_PINT_BASES):
         return None
-    length, mass, time, angle = (int(power) for power in exponents)
+    length, mass, time, angle = exponents
     return Meaning(name, Fraction(float(one.magnitude)) / 1000**mass, (length, mass, time, angle))

@@ -80,7 +80,7 @@ DEFAULT_UNITS: Final = UNIT_SETS["mm kg kg·m²"]
 def parse_unit_set(text: str, *, where: str = "") -> UnitSet:
     """Read a set's name, or units separated by blanks in any order: "mm kg kg*cm^2".
 
-    What is not named follows the length, or else the mass: inch and pound units beside theirs, metric ones else.
+    What is not named follows the length, or else the mass: inch and pound units beside theirs, else metric.
 
     Raises:
         QuantityError: a word is no unit, or two of them measure the same.
@@ -106,6 +106,9 @@ def parse_unit_set(text: str, *, where: str = "") -> UnitSet:
             )
         named[unit.kind] = unit
     chosen = UNIT_SETS["in lb lb·in²" if _is_inch_pound(named) else "mm kg kg·m²"]
+    for known in UNIT_SETS.values():
+        if all(named.get(kind) == known[kind] for kind in _NAMED_BY):
+            chosen = known
     for unit in named.values():
         chosen = chosen.with_unit(unit)
     return chosen

@@ -249,7 +249,7 @@ def _loose_inertia(read: ReadUnit, text: str, where: str) -> QuantityError | Non
     if read.dimension == _WEIGHT_INERTIA:
         force = _FORCE_OF_MASS[mass]
         return refusal(
-            f'"{read.symbol}" is a weight times a length squared: a flywheel effect or a loosely written inertia',
+            f'"{read.symbol}" is a weight times a length squared: a flywheel effect or a loose inertia',
             text,
             where=where,
             remedy=f'Write "{force}*{length}^2 GD2" for J = GD²/4, "{force}*{length}^2 WR2" for J = WR², '
