@@ -91,7 +91,7 @@ def revolved_by_quadrature(
     from scipy.integrate import quad
 
     def integral(slice_value: Callable[[float, float, float], float]) -> float:
-        return quad(lambda z: slice_value(outer(z), inner(z), z), bottom, top, epsabs=0, epsrel=1e-13)[0]
+        return quad(lambda z: slice_value(outer(z), inner(z), z), bottom, top, epsabs=0, epsrel=1e-12)[0]
 
     volume = integral(lambda r, i, _z: np.pi * (r * r - i * i))
     height = integral(lambda r, i, z: np.pi * (r * r - i * i) * z) / volume

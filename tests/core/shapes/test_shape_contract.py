@@ -1,0 +1,177 @@
+"""What every registered shape keeps, whoever added it."""
+
+from __future__ import annotations
+
+import dataclasses
+
+import numpy as np
+import pytest
+from oracles import assert_same_body, directed_edges_cancel, moments_of_facets
+
+from core.checks import check_body
+from core.errors import ShapeError
+from core.shapes import SHAPES, Shape
+from core.shapes.base import said
+
+every_shape = pytest.mark.parametrize(
+    "shape", [SHAPES[key].of({}) for key in sorted(SHAPES)], ids=sorted(SHAPES)
+)
+
+
+@every_shape
+def test_the_surface_is_closed(shape: Shape):
+    for steps in (3, 4, 7, 24, 48):
+        assert directed_edges_cancel(shape.facets(steps)), steps
+
+
+@every_shape
+def test_the_surface_has_no_double_point_and_no_unused_one(shape: Shape):
+    surface = shape.facets(24)
+    assert len(np.unique(surface.points.round(12), axis=0)) == len(surface.points)
+    np.testing.assert_array_equal(np.unique(surface.corners), np.arange(len(surface.points)))
+
+
+@every_shape
+def test_the_integral_over_the_facets_goes_to_the_closed_form_with_the_square_of_the_steps(shape: Shape):
+    exact = shape.moments()
+    size = float(np.sqrt(np.trace(exact.spread) / exact.mass))
+    gaps = []
+    for steps in (24, 48, 96):
+        faceted = moments_of_facets(shape.facets(steps))
+        gaps.append(
+            [
+                float(abs(faceted.mass / exact.mass - 1)),
+                float(np.abs(faceted.centre - exact.centre).max() / size),
+                float(np.abs(faceted.spread - exact.spread).max() / (exact.mass * size**2)),
+            ]
+        )
+    coarse, middle, fine = np.array(gaps)
+    round_off = 1e-12
+    assert np.all(fine < 0.01)
+    # Halving the step quarters the gap; what is flat has no gap at all.
+    np.testing.assert_array_less(middle, coarse * 0.27 + round_off)
+    np.testing.assert_array_less(fine, middle * 0.27 + round_off)
+
+
+@every_shape
+def test_moments_scale_with_volume_and_the_fifth_power_of_length(shape: Shape):
+    larger = type(shape).of(
+        {
+            one.name: shape.single(one.name) * (2.5 if one.kind == "length" else 1.0)
+            for one in shape.dimensions
+        }
+    )
+    assert_same_body(larger.moments(), shape.moments().enlarged(2.5), rel=1e-13)
+
+
+@every_shape
+def test_the_body_can_exist_at_any_density(shape: Shape):
+    moments = shape.moments().times(7850.0)
+    checks = check_body(moments, name=shape.title, volume=float(shape.moments().mass))
+    assert [check.text for check in checks if not check.ok] == []
+
+
+@every_shape
+def test_a_batch_of_dimensions_gives_a_batch_of_bodies(shape: Shape):
+    factors = np.array([1.0, 1.01, 1.02])
+    names = {one.name: one.kind for one in shape.dimensions}
+    batch = type(shape).of(
+        {name: shape.single(name) * (factors if kind == "length" else 1.0) for name, kind in names.items()}
+    )
+    for k, factor in enumerate(factors):
+        one = (
+            type(shape)
+            .of(
+                {
+                    name: shape.single(name) * (factor if kind == "length" else 1.0)
+                    for name, kind in names.items()
+                }
+            )
+            .moments()
+        )
+        moments = batch.moments()
+        assert float(moments.mass[k]) == pytest.approx(float(one.mass), rel=1e-14)
+        np.testing.assert_allclose(
+            moments.spread[k], one.spread, rtol=1e-13, atol=1e-14 * np.abs(one.spread).max()
+        )
+        np.testing.assert_allclose(moments.centre[k], one.centre, rtol=1e-13, atol=1e-15)
+
+
+@every_shape
+def test_values_make_the_same_shape_again(shape: Shape):
+    again = type(shape).of(shape.values())
+    assert again == shape
+    assert hash(again) == hash(shape)
+
+
+@every_shape
+def test_the_table_of_dimensions_names_the_fields_of_the_class(shape: Shape):
+    assert [one.name for one in shape.dimensions] == [field.name for field in dataclasses.fields(shape)]
+    assert all(one.label for one in shape.dimensions)
+
+
+@every_shape
+def test_every_dimension_refuses_a_negative_and_an_infinite_value(shape: Shape):
+    for dimension in shape.dimensions:
+        for bad in (-1.0, np.nan, np.inf):
+            with pytest.raises(ShapeError, match=dimension.label) as refusal:
+                type(shape).of({**shape.values(), dimension.name: bad})
+            assert str(refusal.value).startswith(f"{shape.title}: ")
+
+
+@every_shape
+def test_a_surface_needs_a_single_shape(shape: Shape):
+    first = shape.dimensions[0]
+    batch = type(shape).of({**shape.values(), first.name: np.full(2, shape.single(first.name))})
+    with pytest.raises(ShapeError) as refusal:
+        batch.single(first.name)
+    assert str(refusal.value) == (
+        f"{shape.title}: a batch of shapes has no single surface or set of dimensions; "
+        f"read {first.name} of shape (2,). Take one of them."
+    )
+
+
+@pytest.mark.parametrize(
+    ("make", "text"),
+    [
+        (
+            lambda: SHAPES["box"].of({"length_y": -0.05}),
+            "box: the width along y has to be more than 0; read -50 mm. Give a positive length.",
+        ),
+        (
+            lambda: SHAPES["tube"].of({"bore": -0.001}),
+            "tube: the bore has to be at least 0; read -1 mm. Give 0 or more.",
+        ),
+        (
+            lambda: SHAPES["box"].of({"depth": 0.1}),
+            "box: there is no such dimension; read depth. Choose from length_x, length_y, length_z.",
+        ),
+        (
+            lambda: SHAPES["sphere"].of({"diameter": "wide"}),
+            "sphere: the diameter is no number; read 'wide'. Give a number.",
+        ),
+        (
+            lambda: SHAPES["cylinder"].of({}).facets(2),
+            "a circle cannot be drawn in so few steps; read 2. Take at least 3.",
+        ),
+        (
+            lambda: SHAPES["sphere"].of({}).facets(2),
+            "a circle cannot be drawn in so few steps; read 2. Take at least 3.",
+        ),
+    ],
+)
+def test_a_refusal_names_shape_dimension_value_and_remedy(make, text):
+    with pytest.raises(ShapeError) as refusal:
+        make()
+    assert str(refusal.value) == text
+
+
+def test_a_caller_cannot_change_a_shape_through_its_own_array():
+    lengths = np.array([0.1, 0.2])
+    box = SHAPES["box"].of({"length_x": lengths})
+    lengths[0] = 9.0
+    np.testing.assert_array_equal(box.array("length_x"), [0.1, 0.2])
+
+
+def test_a_dimension_is_said_in_the_unit_of_its_kind():
+    assert (said(0.0125), said(np.pi / 4, "angle"), said(8, "count")) == ("12.5 mm", "45°", "8")
