@@ -9,7 +9,7 @@ FloatArray: TypeAlias = NDArray[np.float64]
 IntArray: TypeAlias = NDArray[np.int64]
 BoolArray: TypeAlias = NDArray[np.bool_]
 
-__all__ = ["ArrayLike", "BoolArray", "FloatArray", "IntArray", "frozen"]
+__all__ = ["ArrayLike", "BoolArray", "FloatArray", "IntArray", "frozen", "settled"]
 
 
 def frozen(values: ArrayLike) -> FloatArray:
@@ -17,3 +17,17 @@ def frozen(values: ArrayLike) -> FloatArray:
     array = np.array(values, dtype=np.float64)
     array.flags.writeable = False
     return array
+
+
+# Sums of many terms are off by some units in the last place of the largest term; this far below it, a value is 0.
+ROUND_OFF = 1e-13
+
+
+def settled(values: ArrayLike, scale: ArrayLike) -> FloatArray:
+    """Return values with those set to 0 that are only the round-off of terms as large as scale (same unit).
+
+    >>> settled([1e-18, 0.2], 0.15).tolist()
+    [0.0, 0.2]
+    """
+    array = np.asarray(values, dtype=np.float64)
+    return np.where(np.abs(array) <= ROUND_OFF * np.asarray(scale, dtype=np.float64), 0.0, array)

@@ -7,7 +7,7 @@ from typing import Literal
 
 import numpy as np
 
-from core.arrays import BoolArray, FloatArray, frozen
+from core.arrays import BoolArray, FloatArray, frozen, settled
 from core.assembly.assembly import Assembly, DriveAxis
 from core.assembly.nodes import Part, walk
 
@@ -58,21 +58,23 @@ class Ledger:
 
 @dataclass(frozen=True, eq=False)
 class _Sums:
-    """Per part (n,), summed over all its copies, and whether its mass is known."""
+    """Per part (n,), summed over all its copies; whether its mass is known; how far out the farthest centre is, m."""
 
     mass: FloatArray
     first: FloatArray
     own: FloatArray
     transfer: FloatArray
     known: BoolArray
+    size: float
 
     def of(self, rows: slice) -> tuple[float, FloatArray, float, float] | None:
         """Return mass, centre, own inertia and transfer of a run of parts; None when no mass among them is known."""
         mass = float(self.mass[rows].sum())
         if not self.known[rows].any() or mass == 0:
             return None
-        centre = frozen(self.first[rows].sum(axis=0) / mass)
-        return mass, centre, float(self.own[rows].sum()), float(self.transfer[rows].sum())
+        centre = frozen(settled(self.first[rows].sum(axis=0) / mass, self.size))
+        own, transfer = float(self.own[rows].sum()), float(self.transfer[rows].sum())
+        return mass, centre, own, float(settled(transfer, own + mass * self.size**2))
 
 
 def ledger_of(assembly: Assembly) -> Ledger:
@@ -140,4 +142,5 @@ def _sums(assembly: Assembly) -> _Sums:
         own=per_part(rows.own_inertia_along(axis.unit)),
         transfer=per_part(rows.transfer_to_axis(axis.point, axis.unit)),
         known=np.array([part.single is not None for part in table.parts], dtype=bool),
+        size=float(np.abs(rows.centre).max(initial=0.0)),
     )

@@ -1,0 +1,181 @@
+"""The menus and the toolbar: every command once, with its key, its words and its drawing."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QSize, Qt
+from PySide6.QtGui import QAction, QActionGroup, QKeySequence
+from PySide6.QtWidgets import QMenu, QSizePolicy, QToolBar, QToolButton, QWidget
+
+from app.window.fields import ChoiceField
+from app.window.style import GRID, Words, icon
+from core.quantity import UNIT_SETS
+from core.shapes import SHAPES
+
+if TYPE_CHECKING:
+    from app.window.main import MainWindow
+
+Keys = QKeySequence.StandardKey
+LOOKS = (("front", "1"), ("back", "2"), ("left", "3"), ("right", "4"), ("top", "5"), ("bottom", "6"), ("iso", "7"))
+
+
+@dataclass(frozen=True)
+class Command:
+    """One command of a menu."""
+
+    words: str
+    call: Callable[[], object]
+    keys: Keys | str | None = None
+    drawing: str = ""
+    tip: str = ""
+
+
+class Actions:
+    """Makes the actions of a window, and keeps those whose words or state change."""
+
+    def __init__(self, window: MainWindow) -> None:
+        self._window = window
+        self.drawn: dict[QAction, str] = {}
+        self.undo = self._action(Command("Undo", window.session.undo, Keys.Undo, "undo"))
+        self.redo = self._action(Command("Redo", window.session.redo, Keys.Redo, "redo"))
+        self.save = self._action(Command("Save", window.save, Keys.Save))
+        self.shapes = self._shapes_menu()
+        self.recent = QMenu("Open recent", window)
+        self.axes = ChoiceField("Drive axis", [])
+        self.units = ChoiceField("Units", [(name, name) for name in UNIT_SETS])
+        self._menus()
+        self._toolbar()
+
+    def _action(self, command: Command) -> QAction:
+        action = QAction(command.words, self._window)
+        action.triggered.connect(lambda _checked=False: command.call())
+        if command.keys is not None:
+            action.setShortcut(QKeySequence(command.keys))
+        if command.drawing:
+            action.setIcon(icon(command.drawing))
+            self.drawn[action] = command.drawing
+        action.setToolTip(command.tip or command.words)
+        return action
+
+    def _fill(self, menu: QMenu, entries: list[Command | QAction | QMenu | None]) -> QMenu:
+        for entry in entries:
+            if entry is None:
+                menu.addSeparator()
+            elif isinstance(entry, Command):
+                menu.addAction(self._action(entry))
+            elif isinstance(entry, QMenu):
+                menu.addMenu(entry)
+            else:
+                menu.addAction(entry)
+        return menu
+
+    def _shapes_menu(self) -> QMenu:
+        menu = QMenu("Add shape", self._window)
+        for key, shape in SHAPES.items():
+            menu.addAction(self._action(Command(shape.title, lambda key=key: self._window.add_shape(key))))  # type: ignore[misc]  # bound now
+        return menu
+
+    def _menus(self) -> None:
+        w, bar = self._window, self._window.menuBar()
+        self._fill(bar.addMenu("&File"), [
+            Command("New", w.new, Keys.New), Command("Open…", w.ask_open, Keys.Open), self.recent,
+            Command("Open the sample", w.open_sample), None,
+            self.save, Command("Save as…", w.save_as, Keys.SaveAs), None, Command("Quit", w.close, Keys.Quit),
+        ])
+        self._fill(bar.addMenu("&Edit"), [
+            self.undo, self.redo, None,
+            Command("Copy", w.copy, Keys.Copy, tip="Copies the selected cells or values, tab-separated."),
+            Command("Copy with headings", w.copy_with_headings, "Ctrl+Shift+C"),
+            Command("Copy sheet", w.copy_sheet, "Ctrl+Alt+C"), None,
+            Command("Delete", w.delete, Keys.Delete),
+        ])
+        self._fill(bar.addMenu("&Part"), [
+            self.shapes, Command("Add mesh…", w.ask_meshes, "Ctrl+M"),
+            Command("Add known part…", w.ask_known_part, "Ctrl+K"), None,
+            Command("Add group", w.add_group, "Ctrl+G", tip="Puts the selected lines into a new group."),
+            Command("Move up", lambda: w.move_line(-1), "Alt+Up"),
+            Command("Move down", lambda: w.move_line(1), "Alt+Down"),
+            Command("Move out of its group", w.move_out, "Alt+Left"),
+        ])
+        self._fill(bar.addMenu("&Axis"), [
+            Command("Edit drive axis…", w.edit_axis), Command("New axis…", w.new_axis),
+        ])
+        self._fill(bar.addMenu("&Hand-over"), [
+            Command("Copy J about the drive axis", w.copy_inertia, "Ctrl+J"), Command("Copy sheet", w.copy_sheet), None,
+            self._marks_menu(),
+        ])
+        self._view_menu(bar.addMenu("&View"))
+        self._fill(bar.addMenu("&Help"), [Command("About Masswright", w.show_about)])
+
+    def _marks_menu(self) -> QMenu:
+        menu = QMenu("Decimal mark", self._window)
+        group = QActionGroup(menu)
+        self.marks: dict[str, QAction] = {}
+        for mark, words in ((".", "Point: 0.5053"), (",", "Comma: 0,5053")):
+            action = self._action(Command(words, lambda mark=mark: self._window.choose_mark(mark)))  # type: ignore[misc]  # bound now
+            action.setCheckable(True)
+            group.addAction(action)
+            menu.addAction(action)
+            self.marks[mark] = action
+        return menu
+
+    def _view_menu(self, menu: QMenu) -> None:
+        view = self._window.view
+        self._fill(menu, [Command("Fit\tF", view.fit)])
+        for name, key in LOOKS:
+            words = "Isometric" if name == "iso" else name.capitalize()
+            menu.addAction(self._action(Command(f"{words}\t{key}", lambda name=name: view.look(name))))  # type: ignore[misc]  # bound now
+        menu.addSeparator()
+        for words, switch in (
+            ("Parallel projection", view.set_parallel), ("See-through", view.set_see_through),
+            ("Sort the ledger by share", self._window.ledger.tree.lines.sort_by_share),
+        ):
+            action = menu.addAction(words)
+            action.setCheckable(True)
+            action.toggled.connect(switch)
+        columns = self._window.ledger.columns_menu()
+        menu.addMenu(columns)
+
+    def _toolbar(self) -> None:
+        w = self._window
+        bar = QToolBar("Tools", w)
+        bar.setObjectName("tools")
+        bar.setMovable(False)
+        bar.setIconSize(QSize(20, 20))
+        bar.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextBesideIcon)
+        shape = QToolButton()
+        shape.setText("Add shape")
+        shape.setIcon(icon("shape"))
+        shape.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextBesideIcon)
+        shape.setMenu(self.shapes)
+        shape.setPopupMode(QToolButton.ToolButtonPopupMode.InstantPopup)
+        shape.setFocusPolicy(Qt.FocusPolicy.TabFocus)
+        self.shape_button = shape
+        bar.addWidget(shape)
+        for command in (
+            Command("Add mesh", w.ask_meshes, None, "mesh", "Adds STL files; they can be dropped on the window, too."),
+            Command("Add known part", w.ask_known_part, None, "known", "Adds a bought-in part from its data sheet."),
+            Command("Add group", w.add_group, None, "group", "Puts the selected lines into a new group."),
+        ):
+            bar.addAction(self._action(command))
+        bar.addSeparator()
+        bar.addAction(self.undo)
+        bar.addAction(self.redo)
+        stretch = QWidget()
+        stretch.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Preferred)
+        bar.addWidget(stretch)
+        for words, field in (("Drive axis", self.axes), ("Units", self.units)):
+            label = Words(words, "quiet")
+            label.setContentsMargins(GRID, 0, GRID // 2, 0)
+            bar.addWidget(label)
+            bar.addWidget(field)
+        w.addToolBar(bar)
+
+    def redraw_icons(self) -> None:
+        """Draw the icons again, in the colours of another theme."""
+        for action, drawing in self.drawn.items():
+            action.setIcon(icon(drawing))
+        self.shape_button.setIcon(icon("shape"))

@@ -1,0 +1,76 @@
+"""The edits that menus and keys ask for, each as a function from one assembly to the next."""
+
+from __future__ import annotations
+
+from core.assembly import Assembly, Group, Node, Part, ShapeBody
+from core.errors import EditRefused
+from core.material import NotSet
+from core.shapes import SHAPES
+
+
+def new_shape(assembly: Assembly, shape: str) -> Part:
+    """Return a new part of a shape with its default dimensions, with a key and a name that no line has."""
+    kind = SHAPES[shape]
+    return Part(assembly.fresh_key(), assembly.fresh_name(kind.title), ShapeBody(kind.of({})), NotSet())
+
+
+def inserted_at(assembly: Assembly, node: Node, selected: frozenset[str]) -> Assembly:
+    """Return the assembly with a new line: in the selected group, behind the selected line, or at the end."""
+    if len(selected) != 1:
+        return assembly.inserted(node)
+    key = next(iter(selected))
+    if isinstance(assembly.node(key), Group):
+        return assembly.inserted(node, key)
+    above = assembly.groups_above(key)
+    group = above[-1] if above else None
+    siblings = group.members if group else assembly.members
+    place = [sibling.key for sibling in siblings].index(key) + 1
+    return assembly.inserted(node, group.key if group else None, place)
+
+
+def grouped(assembly: Assembly, keys: frozenset[str], key: str) -> Assembly:
+    """Return the assembly with a new group that holds these lines, where the first of them was.
+
+    Raises:
+        EditRefused: the lines are not all in the same group.
+    """
+    outer = [each for each in keys if not any(above.key in keys for above in assembly.groups_above(each))]
+    homes = {tuple(above.key for above in assembly.groups_above(each)) for each in outer}
+    group = Group(key, assembly.fresh_name("group"))
+    if not outer:
+        return assembly.inserted(group)
+    if len(homes) > 1:
+        raise EditRefused(
+            "lines of different groups cannot be put into one new group", remedy="Select lines that stand in the same group"
+        )
+    home = next(iter(homes))
+    holder = assembly.node(home[-1]) if home else None
+    siblings = holder.members if isinstance(holder, Group) else assembly.members
+    chosen = [node for node in siblings if node.key in outer]
+    place = [node.key for node in siblings].index(chosen[0].key)
+    left = assembly.removed(tuple(node.key for node in chosen))
+    filled = Group(key, group.name, tuple(chosen))
+    return left.inserted(filled, home[-1] if home else None, place)
+
+
+def shifted(assembly: Assembly, key: str, step: int) -> Assembly:
+    """Return the assembly with a line moved up (−1) or down (+1) among its siblings; the same at either end."""
+    above = assembly.groups_above(key)
+    group = above[-1].key if above else None
+    siblings = above[-1].members if above else assembly.members
+    place = [node.key for node in siblings].index(key)
+    target = place + step
+    if not 0 <= target < len(siblings):
+        return assembly
+    return assembly.moved(key, group, target)
+
+
+def taken_out(assembly: Assembly, key: str) -> Assembly:
+    """Return the assembly with a line moved out of its group, to just behind it; the same for an outermost line."""
+    above = assembly.groups_above(key)
+    if not above:
+        return assembly
+    outer = above[-2] if len(above) > 1 else None
+    siblings = outer.members if outer else assembly.members
+    place = [node.key for node in siblings].index(above[-1].key) + 1
+    return assembly.moved(key, outer.key if outer else None, place)

@@ -1,0 +1,203 @@
+"""Adding meshes: each file is read off the window's thread, and its unit is chosen by seeing size and mass in each."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+import numpy as np
+from PySide6.QtCore import Qt
+from PySide6.QtWidgets import (
+    QAbstractItemView, QCheckBox, QDialog, QDialogButtonBox, QHeaderView, QProgressBar, QTableWidget, QTableWidgetItem,
+    QVBoxLayout, QWidget,
+)
+
+from app.window.fields import Form, TextField
+from app.window.ledger.edits import driver_of
+from app.window.numbers import shown
+from app.window.pages.part_body import MESH_UNITS
+from app.window.style import GRID, Words
+from app.window.tasks import Task
+from core.assembly import MeshBody, Part
+from core.errors import MasswrightError
+from core.material import NotSet
+from core.mesh import MeshAsset
+from core.quantity import UNITS, Kind
+
+if TYPE_CHECKING:
+    from collections.abc import Sequence
+
+    from app.window.session import Session
+
+HEADINGS = ("If the file is in", "it measures", "and one weighs")
+SOUND = frozenset({"closed", "hairline cracks", "inside out"})
+
+
+class AddMeshDialog(QDialog):
+    """Goes through the files one by one; every one becomes a line, or is left out with the reason."""
+
+    def __init__(self, session: Session, paths: Sequence[Path], parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._session = session
+        self._left = list(paths)
+        self._asset: MeshAsset | None = None
+        self._task: Task[MeshAsset] | None = None
+        self.setWindowTitle("Add mesh")
+        self.file = Words()
+        self.verdict = Words("", "quiet")
+        self.verdict.setWordWrap(True)
+        self.bar = QProgressBar()
+        self.bar.setAccessibleName("Reading the mesh")
+        self.bar.setRange(0, 100)
+        self.table = _unit_table(self)
+        self.material = TextField("Material", "a material, a density (7850 kg/m³) or a weighed mass (1.2 kg)")
+        self.all_alike = QCheckBox()
+        self.wrong = Words("", "failed")
+        self.wrong.setWordWrap(True)
+        self.buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel)
+        self.add_button = self.buttons.button(QDialogButtonBox.StandardButton.Ok)
+        self.add_button.setText("Add part")
+        self._lay_out()
+        self.table.itemSelectionChanged.connect(self._allow)
+        self.material.textChanged.connect(lambda _text: self._show_table())
+        self.buttons.accepted.connect(self.add)
+        self.buttons.rejected.connect(self.reject)
+        self._next()
+
+    def _lay_out(self) -> None:
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(2 * GRID, 2 * GRID, 2 * GRID, 2 * GRID)
+        layout.setSpacing(GRID)
+        form = Form()
+        form.add("made of", self.material, "A material's name, a density, or the mass one piece was weighed at.")
+        unit = Words("A mesh file does not say its length unit. Choose the line whose size is right.", "quiet")
+        for widget in (self.file, self.bar, self.verdict, form, unit, self.table, self.all_alike, self.wrong, self.buttons):
+            layout.addWidget(widget)
+        self.setMinimumWidth(600)
+
+    def _next(self) -> None:
+        """Read the next file, or close after the last one."""
+        self._asset = None
+        if not self._left:
+            self.accept()
+            return
+        path = self._left[0]
+        self.file.setText(f"Reading {path.name} …")
+        self.verdict.setText("")
+        self.wrong.setText("")
+        self.bar.setValue(0)
+        self.bar.show()
+        self.all_alike.setVisible(len(self._left) > 1)
+        self.all_alike.setText(f"Add the other {len(self._left) - 1} with the same unit and material")
+        self._show_table()
+        self._task = Task(
+            self, lambda progress: MeshAsset.read(path, progress), self._read, self._unreadable,
+            lambda fraction: self.bar.setValue(round(100 * fraction)),
+        )
+
+    def _read(self, asset: MeshAsset) -> None:
+        self._asset = asset
+        self.bar.hide()
+        survey = asset.survey
+        self.file.setText(f"{asset.name}: {survey.triangles} facets, {survey.format}")
+        estimate = "" if survey.basis == "computed" else f" Its values are {survey.basis}."
+        self.verdict.setText(" ".join([f"Verdict: {survey.verdict}.{estimate}", *survey.notes]))
+        self.verdict.set_role("text" if survey.verdict in SOUND else "failed")
+        self._show_table()
+        self._allow()
+        if self.all_alike.isHidden() is False and self.all_alike.isChecked() and self._factor() is not None:
+            self.add()
+
+    def _unreadable(self, sentence: str) -> None:
+        self.bar.hide()
+        name = self._left[0].name
+        self.file.setText(f"{name} was not added.")
+        self.wrong.setText(sentence)
+        self.add_button.setText("Next file" if len(self._left) > 1 else "Close")
+        self.add_button.setEnabled(True)
+
+    def _factor(self) -> float | None:
+        rows = self.table.selectionModel().selectedRows()
+        return UNITS[MESH_UNITS[rows[0].row()]].factor if rows else None
+
+    def _allow(self) -> None:
+        self.add_button.setText("Add part")
+        self.add_button.setEnabled(self._asset is not None and self._factor() is not None)
+
+    def _show_table(self) -> None:
+        """Show the size in every unit, and the mass that follows from it."""
+        for row, symbol in enumerate(MESH_UNITS):
+            self.table.setItem(row, 0, _cell(symbol))
+            self.table.setItem(row, 1, _cell(self._size(UNITS[symbol].factor)))
+            self.table.setItem(row, 2, _cell(self._weight(UNITS[symbol].factor)))
+
+    def _size(self, factor: float) -> str:
+        if self._asset is None:
+            return ""
+        unit = self._session.units[Kind.LENGTH]
+        low, high = self._asset.survey.bounds * factor
+        return " × ".join(shown(self._session, float(extent), unit) for extent in np.subtract(high, low)) + f" {unit.symbol}"
+
+    def _weight(self, factor: float) -> str:
+        if self._asset is None or self._asset.survey.solid is None:
+            return ""
+        try:
+            driver = driver_of(self.material.text(), self._session.units, "made of")
+        except MasswrightError:
+            return ""
+        volume = float(self._asset.survey.solid.mass) * factor**3
+        mass = None if not hasattr(driver, "mass_of") else driver.mass_of(volume)
+        unit = self._session.units[Kind.MASS]
+        return "material not set" if mass is None else f"{shown(self._session, mass, unit)} {unit.symbol}"
+
+    def add(self) -> None:
+        """Add the file as a line, and go on with the next one."""
+        if self._asset is None:
+            self._left.pop(0)
+            self._next()
+            return
+        factor = self._factor()
+        if factor is None:
+            return
+        try:
+            text = self.material.text()
+            driver = driver_of(text, self._session.units, "made of") if text.strip() else NotSet()
+        except MasswrightError as error:
+            self.wrong.setText(str(error))
+            return
+        assembly = self._session.assembly
+        key = assembly.fresh_key()
+        part = Part(key, assembly.fresh_name(Path(self._asset.name).stem), MeshBody(self._asset, factor), driver)
+        refusal = self._session.attempt(f"Add {part.name}", lambda before: before.inserted(part), select=key)
+        if refusal:
+            self.wrong.setText(refusal)
+            return
+        self._left.pop(0)
+        self._next()
+
+    def done(self, result: int) -> None:
+        """Stop reading when the dialog closes."""
+        if self._task is not None:
+            self._task.cancel()
+        super().done(result)
+
+
+def _unit_table(parent: QWidget) -> QTableWidget:
+    table = QTableWidget(len(MESH_UNITS), len(HEADINGS), parent)
+    table.setAccessibleName("Length unit of the mesh")
+    table.setHorizontalHeaderLabels(list(HEADINGS))
+    table.verticalHeader().hide()
+    table.setShowGrid(False)
+    table.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
+    table.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
+    table.setEditTriggers(QAbstractItemView.EditTrigger.NoEditTriggers)
+    table.setTabKeyNavigation(False)
+    header = table.horizontalHeader()
+    header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
+    header.setSectionResizeMode(QHeaderView.ResizeMode.Stretch)
+    table.setFixedHeight(header.sizeHint().height() + len(MESH_UNITS) * table.rowHeight(0) + 8)
+    return table
+
+
+def _cell(text: str) -> QTableWidgetItem:
+    return QTableWidgetItem(text)

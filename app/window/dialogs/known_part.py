@@ -1,0 +1,113 @@
+"""Adding a known part: what a data sheet says, with the point its inertia is quoted about chosen by hand."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from PySide6.QtWidgets import QDialog, QDialogButtonBox, QStackedWidget, QVBoxLayout, QWidget
+
+from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField
+from app.window.pages.part_body import TENSOR_LABELS, TENSOR_TIP
+from app.window.style import GRID, Words
+from core.assembly import DataSheet, KnownAxial, KnownTensor, Part
+from core.quantity import Kind
+
+if TYPE_CHECKING:
+    from app.window.session import Session
+
+ABOUT: list[tuple[str, object]] = [
+    ("choose what the data sheet says…", ""),
+    ("one inertia, about the part's own axis", "axis"),
+    ("a tensor about the centre of mass", "centre"),
+    ("a tensor about the part's origin", "origin"),
+]
+
+
+class KnownPartDialog(QDialog):
+    """A form that adds one part to the ledger when it is complete."""
+
+    def __init__(self, session: Session, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._session = session
+        self.setWindowTitle("Add known part")
+        self.name = TextField("Name", "motor rotor, bearing, brake disc …")
+        self.source = TextField("Source", "document, page, date")
+        self.mass = QuantityField(session, "mass", Kind.MASS)
+        self.centre = TripleField(session, "centre of mass", Kind.LENGTH)
+        self.centre.set_values((0.0, 0.0, 0.0))
+        self.about = ChoiceField("What the inertia is about", ABOUT)
+        self.axial = QuantityField(session, "J about the part's axis", Kind.INERTIA)
+        self.length = QuantityField(session, "length", Kind.LENGTH)
+        self.length.set_value(0.0)
+        self.tensor = [QuantityField(session, label, Kind.INERTIA) for label in TENSOR_LABELS]
+        for field in self.tensor[3:]:
+            field.set_value(0.0)
+        self.wrong = Words("", "failed")
+        self.wrong.setWordWrap(True)
+        self._kinds = QStackedWidget()
+        self._lay_out()
+        self.about.chosen.connect(self._choose)
+
+    def _lay_out(self) -> None:
+        form = Form()
+        form.add("name", self.name)
+        form.add("source", self.source, "Where the values come from; printed with the result.")
+        form.add("mass m", self.mass)
+        form.add("centre of mass", self.centre, "From the part's own origin; its axis is z.")
+        form.add("inertia given as", self.about)
+        axial = Form()
+        axial.add("J about its axis", self.axial, 'Also as a flywheel effect: "1.8 kgf·m² GD2" is taken as J = GD²/4.')
+        axial.add("length L", self.length, "Stands in for the inertia across the axis: ½ J + m·L²/12. 0: a thin disc.")
+        tensor = Form()
+        tensor.say(TENSOR_TIP)
+        for label, field in zip(TENSOR_LABELS, self.tensor, strict=True):
+            tensor.add(label, field, TENSOR_TIP)
+        for page in (QWidget(), axial, tensor):
+            self._kinds.addWidget(page)
+        buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel)
+        buttons.button(QDialogButtonBox.StandardButton.Ok).setText("Add part")
+        buttons.accepted.connect(self.add)
+        buttons.rejected.connect(self.reject)
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(2 * GRID, 2 * GRID, 2 * GRID, 2 * GRID)
+        layout.setSpacing(GRID)
+        for widget in (form, self._kinds, self.wrong, buttons):
+            layout.addWidget(widget)
+        self.setMinimumWidth(520)
+
+    def _choose(self, about: object) -> None:
+        self._kinds.setCurrentIndex({"": 0, "axis": 1}.get(str(about), 2))
+
+    def add(self) -> None:
+        """Add the part, or say in place what is missing."""
+        self.wrong.setText("")
+        body = self._body()
+        if body is None:
+            return
+        name = self.name.text().strip() or "known part"
+        assembly = self._session.assembly
+        key = assembly.fresh_key()
+        part = Part(key, assembly.fresh_name(name), body, DataSheet())
+        refusal = self._session.attempt(f"Add {part.name}", lambda before: before.inserted(part), select=key)
+        if refusal:
+            self.wrong.setText(refusal)
+        else:
+            self.accept()
+
+    def _body(self) -> KnownAxial | KnownTensor | None:
+        mass, centre, about = self.mass.read(), self.centre.read(), self.about.currentData()
+        if not about:
+            self.wrong.setText("Choose what the data sheet's inertia is about; the same number means another body about another point.")
+        if mass is None or centre is None or not about:
+            return None
+        source = self.source.text().strip()
+        if about == "axis":
+            axial, length = self.axial.read(), self.length.read()
+            if axial is None or length is None:
+                return None
+            return KnownAxial(mass.value, centre, axial.value, length.value, source)
+        values = [understood.value for understood in (field.read() for field in self.tensor) if understood is not None]
+        if len(values) != len(TENSOR_LABELS):
+            return None
+        xx, yy, zz, xy, xz, yz = values
+        return KnownTensor(mass.value, centre, (xx, yy, zz, xy, xz, yz), about, source)

@@ -1,0 +1,283 @@
+"""Fields of a page: a quantity with its unit and arithmetic, a choice, a line of text; each refuses in place."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import Qt, Signal
+from PySide6.QtGui import QKeyEvent
+from PySide6.QtWidgets import QComboBox, QFormLayout, QHBoxLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
+
+from app.window.style import GRID, Words, heading_font
+from core.errors import MasswrightError
+from core.quantity import Kind, Understood, Unit, compact, parse
+
+if TYPE_CHECKING:
+    from app.window.session import Session
+
+LABEL_WIDTH = 148
+FIELD_WIDTH = 190
+
+
+class QuantityField(QWidget):
+    """A number with a unit: takes arithmetic, shows what it understood, keeps what was typed.
+
+    Signals:
+        entered: (SI value, text as typed) when a readable text was finished. What is refused by the receiver is
+            told with `refuse`.
+    """
+
+    entered = Signal(float, str)
+
+    def __init__(self, session: Session, label: str, kind: Kind, unit: Unit | None = None) -> None:
+        super().__init__()
+        self._session = session
+        self._kind = kind
+        self._own_unit = unit
+        self._label = label
+        self._value: float | None = None
+        self._typed = ""
+        self.line = QLineEdit()
+        self.line.setAccessibleName(label)
+        self.line.setFixedWidth(FIELD_WIDTH - 56)
+        self.line.setAlignment(Qt.AlignmentFlag.AlignRight)
+        self.unit_words = Words(self.unit.symbol, "quiet")
+        self.understood = Words("", "quiet")
+        self.wrong = Words("", "failed")
+        self.wrong.setWordWrap(True)
+        self.wrong.hide()
+        row = QHBoxLayout()
+        row.setSpacing(GRID)
+        for widget in (self.line, self.unit_words, self.understood):
+            row.addWidget(widget)
+        row.addStretch(1)
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(0, 0, 0, 0)
+        layout.setSpacing(2)
+        layout.addLayout(row)
+        layout.addWidget(self.wrong)
+        self.line.textEdited.connect(self._preview)
+        self.line.editingFinished.connect(self._finish)
+
+    @property
+    def unit(self) -> Unit:
+        """The unit that a bare number is in."""
+        return self._own_unit or self._session.units[self._kind]
+
+    @property
+    def value(self) -> float | None:
+        """The value in SI that the field stands for; None while it is empty."""
+        return self._value
+
+    def set_value(self, value: float | None, typed: str = "") -> None:
+        """Show an SI value, as it was typed where that is known; a text being typed is left alone."""
+        if self.line.hasFocus() and self.line.isModified():
+            return
+        self._value, self._typed = value, typed
+        self.unit_words.setText(self.unit.symbol)
+        self._show()
+
+    def refuse(self, sentence: str) -> None:
+        """Say in place why the text is not taken; the value stays what it was."""
+        self.wrong.setText(sentence)
+        self.wrong.setVisible(bool(sentence))
+        self.line.setProperty("wrong", "true" if sentence else "false")
+        self.line.style().polish(self.line)
+
+    def read(self) -> Understood | None:
+        """Return what the field's text means, or None after saying in place why it means nothing."""
+        try:
+            understood = parse(self.line.text(), self._kind, self.unit, where=self._label)
+        except MasswrightError as error:
+            self.refuse(str(error))
+            return None
+        self.refuse("")
+        return understood
+
+    def restore(self) -> None:
+        """Drop the text being typed and show the value again."""
+        self.refuse("")
+        self._show()
+
+    def _plain(self) -> str:
+        if self._value is None:
+            return ""
+        return compact(self.unit.from_si(self._value), 10, decimal_mark=self._session.decimal_mark)
+
+    def _show(self) -> None:
+        self.line.setText(self._typed or self._plain())
+        self.line.setModified(False)
+        self.line.setCursorPosition(0)
+        shown = self._typed and self._value is not None and self._typed != self._plain()
+        self.understood.setText(f"= {self._plain()} {self.unit.symbol}" if shown else "")
+        self.refuse("")
+
+    def _preview(self, text: str) -> None:
+        try:
+            understood = parse(text, self._kind, self.unit)
+        except MasswrightError:
+            self.understood.setText("")
+            return
+        plain = f"{text.strip()} {self.unit.symbol}".strip()
+        self.understood.setText("" if understood.shown == plain else f"= {understood.shown}")
+
+    def _finish(self) -> None:
+        if not self.line.isModified():
+            return
+        understood = self.read()
+        if understood is not None:
+            self.line.setModified(False)
+            self._value, self._typed = understood.value, kept_text(understood.text)
+            self._show()
+            self.entered.emit(understood.value, self._typed)
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  # Qt's name
+        """Escape drops what is being typed."""
+        if event.key() == Qt.Key.Key_Escape and self.line.isModified():
+            self.restore()
+            return
+        super().keyPressEvent(event)
+
+
+def kept_text(text: str) -> str:
+    """Return the text where it says more than its number: arithmetic or a unit; "" for a bare number."""
+    bare = text.strip()
+    return "" if all(mark in "0123456789.,-+eE−" for mark in bare) else bare
+
+
+class TextField(QLineEdit):
+    """One line of text; tells when another one was finished, and drops it on Escape."""
+
+    entered = Signal(str)
+
+    def __init__(self, label: str, placeholder: str = "") -> None:
+        super().__init__()
+        self.setAccessibleName(label)
+        self.setPlaceholderText(placeholder)
+        self._kept = ""
+        self.editingFinished.connect(self._finish)
+
+    def set_value(self, text: str) -> None:
+        """Show a text, unless another one is being typed."""
+        if self.hasFocus() and self.isModified():
+            return
+        self._kept = text
+        self.setText(text)
+        self.setCursorPosition(0)
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  # Qt's name
+        """Escape drops what is being typed."""
+        if event.key() == Qt.Key.Key_Escape and self.isModified():
+            self.setText(self._kept)
+            return
+        super().keyPressEvent(event)
+
+    def _finish(self) -> None:
+        if self.text() != self._kept:
+            self._kept = self.text()
+            self.setModified(False)
+            self.entered.emit(self._kept)
+
+
+class ChoiceField(QComboBox):
+    """A choice among named values; the wheel scrolls the page unless the field has the focus."""
+
+    chosen = Signal(object)
+
+    def __init__(self, label: str, choices: list[tuple[str, object]]) -> None:
+        super().__init__()
+        self.setAccessibleName(label)
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        for words, value in choices:
+            self.addItem(words, value)
+        self.activated.connect(lambda at: self.chosen.emit(self.itemData(at)))
+
+    def set_value(self, value: object) -> None:
+        """Show a value without telling about it."""
+        for at in range(self.count()):
+            if self.itemData(at) == value:
+                self.setCurrentIndex(at)
+                return
+
+    def wheelEvent(self, event: object) -> None:  # noqa: N802  # Qt's name
+        """Change the choice with the wheel only while the field has the focus."""
+        if self.hasFocus():
+            super().wheelEvent(event)  # type: ignore[arg-type]  # handed on as it came
+        else:
+            event.ignore()  # type: ignore[attr-defined]  # a QWheelEvent
+
+
+class Form(QWidget):
+    """Labelled fields under headings, in one column on one grid."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self._layout = QFormLayout(self)
+        self._layout.setContentsMargins(0, 0, 0, 0)
+        self._layout.setHorizontalSpacing(GRID)
+        self._layout.setVerticalSpacing(GRID // 2)
+        self._layout.setFieldGrowthPolicy(QFormLayout.FieldGrowthPolicy.ExpandingFieldsGrow)
+        self._layout.setLabelAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignTop)
+        self._layout.setRowWrapPolicy(QFormLayout.RowWrapPolicy.DontWrapRows)
+
+    def heading(self, text: str) -> None:
+        """Start a section."""
+        label = QLabel(text)
+        label.setFont(heading_font(label))
+        label.setContentsMargins(0, GRID if self._layout.rowCount() else 0, 0, 0)
+        self._layout.addRow(label)
+
+    def add(self, text: str, field: QWidget, tip: str = "") -> None:
+        """Add a field behind its label."""
+        label = Words(text, "quiet")
+        label.setFixedWidth(LABEL_WIDTH)
+        label.setContentsMargins(0, 4, 0, 0)
+        label.setToolTip(tip)
+        field.setToolTip(tip)
+        label.setBuddy(field)
+        self._layout.addRow(label, field)
+
+    def say(self, text: str, role: str = "quiet") -> Words:
+        """Add a sentence over the whole width."""
+        words = Words(text, role)
+        words.setWordWrap(True)
+        self._layout.addRow(words)
+        return words
+
+    def add_row(self, widget: QWidget) -> None:
+        """Add a widget over the whole width."""
+        self._layout.addRow(widget)
+
+
+class TripleField(QWidget):
+    """Three quantities of one kind, one under the other with their letters."""
+
+    entered = Signal(int, float, str)
+
+    def __init__(self, session: Session, label: str, kind: Kind, unit: Unit | None = None) -> None:
+        super().__init__()
+        self.fields = [QuantityField(session, f"{label} {letter}", kind, unit) for letter in "xyz"]
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(0, 0, 0, 0)
+        layout.setSpacing(2)
+        for at, (letter, field) in enumerate(zip("xyz", self.fields, strict=True)):
+            row = QHBoxLayout()
+            row.setSpacing(4)
+            words = Words(letter, "quiet")
+            words.setFixedWidth(12)
+            row.addWidget(words)
+            row.addWidget(field, 1)
+            layout.addLayout(row)
+            field.entered.connect(lambda value, text, at=at: self.entered.emit(at, value, text))
+
+    def set_values(self, values: tuple[float, float, float], typed: Callable[[int], str] = lambda _at: "") -> None:
+        """Show three SI values, as they were typed where that is known."""
+        for at, field in enumerate(self.fields):
+            field.set_value(values[at], typed(at))
+
+    def read(self) -> tuple[float, float, float] | None:
+        """Return the three values, or None after saying in place which of them means nothing."""
+        read = [field.read() for field in self.fields]
+        values = [understood.value for understood in read if understood is not None]
+        return (values[0], values[1], values[2]) if len(values) == 3 else None  # noqa: PLR2004  # x, y, z

@@ -1,0 +1,1 @@
+"""The ledger: its columns, its model, how cells are painted and edited."""

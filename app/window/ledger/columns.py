@@ -1,0 +1,69 @@
+"""The columns of the ledger: heading, unit, what a line shows there, what is copied, and what may be typed."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from core.assembly import Line
+from core.quantity import Kind
+
+
+@dataclass(frozen=True)
+class Column:
+    """One column.
+
+    Attributes:
+        key: under which its width and visibility are kept.
+        heading: the first line of the heading; {axis} is the drive axis's name.
+        kind: the quantity it shows, or None for text and counts.
+        value: the number in SI, or the text, of a line; None where there is none.
+        tip: what it means and how it is formed.
+        digits: significant digits shown.
+    """
+
+    key: str
+    heading: str
+    kind: Kind | None
+    value: Callable[[Line], float | str | int | None]
+    tip: str
+    digits: int = 4
+
+
+def _centre(axis: int) -> Callable[[Line], float | None]:
+    return lambda line: None if line.centre is None else float(line.centre[axis])
+
+
+COLUMNS: tuple[Column, ...] = (
+    Column("name", "Part", None, lambda line: line.name, "The part or group. F2 edits it; drag it to move it."),
+    Column(
+        "count", "×", None, lambda line: line.count,
+        "How many equal copies there are in the group that holds them.\nMass and inertia are those of all copies.",
+    ),
+    Column(
+        "material", "Material", None, lambda line: line.material,
+        "What says the mass: a material, a density (7850 kg/m³) or a weighed mass (1.2 kg).\nType any of them here.",
+    ),
+    Column("mass", "Mass", Kind.MASS, lambda line: line.mass, "Mass of all copies."),
+    Column("x", "x", Kind.LENGTH, _centre(0), "Centre of mass of all copies together, from the document's origin."),
+    Column("y", "y", Kind.LENGTH, _centre(1), "Centre of mass of all copies together, from the document's origin."),
+    Column("z", "z", Kind.LENGTH, _centre(2), "Centre of mass of all copies together, from the document's origin."),
+    Column(
+        "own", "Own J", Kind.INERTIA, lambda line: line.own_inertia,
+        "Inertia about each copy's own centre of mass, parallel to the drive axis, added over the copies.",
+    ),
+    Column(
+        "transfer", "m·d²", Kind.INERTIA, lambda line: line.transfer,
+        "Parallel-axis term: mass × square of the distance of each copy's centre of mass from the drive axis.",
+    ),
+    Column(
+        "inertia", "J about {axis}", Kind.INERTIA, lambda line: line.inertia,
+        "Inertia about the drive axis: own J + m·d².",
+    ),
+    Column(
+        "share", "Share of J", Kind.NUMBER, lambda line: line.share,
+        "How much of the total inertia about the drive axis this line is.", 3,
+    ),
+)
+
+INDEX = {column.key: at for at, column in enumerate(COLUMNS)}

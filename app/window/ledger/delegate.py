@@ -1,0 +1,140 @@
+"""How a cell of the ledger is painted and edited: figures on one decimal mark, bars for shares, boxes for inputs."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QAbstractItemModel, QModelIndex, QPersistentModelIndex, QPoint, QRect, QSize, Qt
+from PySide6.QtGui import QColor, QFont, QPainter, QPen
+from PySide6.QtWidgets import QCompleter, QLineEdit, QStyle, QStyledItemDelegate, QStyleOptionViewItem, QToolTip, QWidget
+
+from app.window.ledger.columns import COLUMNS, INDEX
+from app.window.ledger.model import LINE_ROLE, LedgerModel
+from app.window.style import GRID, Colours, colours
+from core.assembly import Line
+from core.material import MATERIALS
+
+if TYPE_CHECKING:
+    from app.window.session import Session
+
+Index = QModelIndex | QPersistentModelIndex
+BAR_HEIGHT = 6
+ROW_HEIGHT = 26
+
+
+class LedgerDelegate(QStyledItemDelegate):
+    """Paints and edits the cells of the ledger and of its foot."""
+
+    def __init__(self, session: Session, model: LedgerModel, parent: QWidget) -> None:
+        super().__init__(parent)
+        self._session = session
+        self._model = model
+
+    def sizeHint(self, option: QStyleOptionViewItem, index: Index) -> QSize:  # noqa: N802  # Qt's name
+        """Return a row of one height, so that long ledgers scroll evenly."""
+        return QSize(super().sizeHint(option, index).width() + 2 * GRID, ROW_HEIGHT)
+
+    def paint(self, painter: QPainter, option: QStyleOptionViewItem, index: Index) -> None:
+        """Paint one cell."""
+        line = index.data(LINE_ROLE)
+        if not isinstance(line, Line):
+            return
+        c = colours()
+        painter.save()
+        self._paint_ground(painter, option, line, c)
+        font = QFont(option.font)
+        font.setBold(line.kind != "part")
+        painter.setFont(font)
+        painter.setPen(_pen(line, index.column(), c))
+        text = str(index.data(Qt.ItemDataRole.DisplayRole) or "")
+        inner = option.rect.adjusted(GRID, 0, -GRID, 0)
+        column = COLUMNS[index.column()]
+        if column.key == "share":
+            _paint_share(painter, inner, line, text, c)
+        elif column.kind is not None:
+            _paint_figure(painter, inner, text, self._session.decimal_mark, self._tail(painter, index))
+        else:
+            side = Qt.AlignmentFlag.AlignRight if column.key == "count" else Qt.AlignmentFlag.AlignLeft
+            words = painter.fontMetrics().elidedText(text, Qt.TextElideMode.ElideRight, inner.width())
+            painter.drawText(inner, int(side | Qt.AlignmentFlag.AlignVCenter), words)
+        if LedgerModel.is_input(line, index.column()) and column.key != "name":
+            painter.setPen(QPen(QColor(c.hairline), 1))
+            painter.drawRect(option.rect.adjusted(2, 3, -3, -4))
+        if option.state & QStyle.StateFlag.State_HasFocus:
+            painter.setPen(QPen(QColor(c.blue), 1))
+            painter.drawRect(option.rect.adjusted(0, 0, -1, -1))
+        painter.restore()
+
+    def _paint_ground(self, painter: QPainter, option: QStyleOptionViewItem, line: Line, c: Colours) -> None:
+        if line.key in self._session.selected or option.state & QStyle.StateFlag.State_Selected:
+            painter.fillRect(option.rect, QColor(c.selection))
+        elif option.state & QStyle.StateFlag.State_MouseOver:
+            painter.fillRect(option.rect, QColor(c.raised))
+
+    def _tail(self, painter: QPainter, index: Index) -> int:
+        """Return the room that the column's longest run of decimals takes behind the decimal mark, in pixels."""
+        longest = self._model.longest_tail(index.column())
+        return painter.fontMetrics().horizontalAdvance("0" * longest)
+
+    def createEditor(self, parent: QWidget, option: QStyleOptionViewItem, index: Index) -> QWidget:  # noqa: N802, ARG002  # Qt's name and signature
+        """Return a plain line to type in; for a material it proposes those of the table."""
+        editor = QLineEdit(parent)
+        editor.setAccessibleName(COLUMNS[index.column()].heading)
+        if index.column() == INDEX["material"]:
+            completer = QCompleter([each.name for each in MATERIALS], editor)
+            completer.setCaseSensitivity(Qt.CaseSensitivity.CaseInsensitive)
+            completer.setFilterMode(Qt.MatchFlag.MatchContains)
+            editor.setCompleter(completer)
+            editor.setPlaceholderText("material, 7850 kg/m³, 1.2 kg")
+        return editor
+
+    def setEditorData(self, editor: QWidget, index: Index) -> None:  # noqa: N802  # Qt's name
+        """Put the text to edit into the editor, all of it selected."""
+        if isinstance(editor, QLineEdit):
+            editor.setText(str(index.data(Qt.ItemDataRole.EditRole) or ""))
+            editor.selectAll()
+
+    def setModelData(self, editor: QWidget, model: QAbstractItemModel, index: Index) -> None:  # noqa: N802  # Qt's name
+        """Hand what was typed to the model; a refusal is told where it was typed."""
+        if not isinstance(editor, QLineEdit):
+            return
+        refusals: list[str] = []
+        self._session.refused.connect(refusals.append)
+        at = editor.mapToGlobal(QPoint(0, editor.height()))
+        model.setData(index, editor.text(), Qt.ItemDataRole.EditRole)
+        self._session.refused.disconnect(refusals.append)
+        if refusals:
+            QToolTip.showText(at, refusals[0], self.parent() if isinstance(self.parent(), QWidget) else None)
+
+
+def _pen(line: Line, column: int, c: Colours) -> QColor:
+    if column == INDEX["material"]:
+        if line.basis == "not set":
+            return QColor(c.estimate)
+        return QColor(c.text if line.kind == "part" else c.quiet)
+    if line.mass is None and column >= INDEX["mass"]:
+        return QColor(c.quiet)
+    estimated = "estimated" in line.basis or "not set" in line.basis
+    return QColor(c.estimate if estimated and column >= INDEX["mass"] else c.text)
+
+
+def _paint_figure(painter: QPainter, rect: QRect, text: str, mark: str, tail: int) -> None:
+    """Draw a number so that its decimal mark stands where all the marks of the column stand."""
+    whole, point, part = text.partition(mark)
+    metrics = painter.fontMetrics()
+    room = metrics.horizontalAdvance(mark) + tail
+    middle = rect.right() - room
+    flags = int(Qt.AlignmentFlag.AlignVCenter)
+    painter.drawText(QRect(rect.left() - GRID, rect.top(), middle - rect.left() + GRID, rect.height()),
+                     flags | int(Qt.AlignmentFlag.AlignRight), whole)
+    painter.drawText(QRect(middle, rect.top(), room + GRID, rect.height()), flags, point + part)
+
+
+def _paint_share(painter: QPainter, rect: QRect, line: Line, text: str, c: Colours) -> None:
+    """Draw the bar of a share with its figure beside it."""
+    figure = painter.fontMetrics().horizontalAdvance("100.0 %")
+    room = rect.width() - figure - GRID
+    if line.share is not None and room > 0:
+        bar = QRect(rect.left(), rect.center().y() - BAR_HEIGHT // 2 + 1, max(1, round(room * min(line.share, 1.0))), BAR_HEIGHT)
+        painter.fillRect(bar, QColor(c.blue if line.kind == "part" else c.quiet))
+    painter.drawText(rect, int(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter), text)

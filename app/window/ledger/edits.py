@@ -1,0 +1,100 @@
+"""What typing into a cell of the ledger means: text in, an edit with a name out."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import replace
+
+from core.assembly import Assembly, DataSheet, Driver, Group, Part
+from core.errors import EditRefused, QuantityError
+from core.material import ByDensity, ByMaterial, NotSet, Weighed, material
+from core.placement import Mirrored
+from core.quantity import UNITS, Kind, UnitSet, parse
+
+
+def renamed(key: str, text: str) -> Callable[[Assembly], Assembly]:
+    """Return the edit that gives a line another name."""
+    name = text.strip()
+
+    def change(assembly: Assembly) -> Assembly:
+        if not name:
+            raise EditRefused("a line needs a name", where=assembly.node(key).name)
+        return assembly.replaced(replace(assembly.node(key), name=name))
+
+    return change
+
+
+def counted(key: str, text: str) -> Callable[[Assembly], Assembly]:
+    """Return the edit that changes how many equal copies a line stands for, the pattern staying what it is."""
+
+    def change(assembly: Assembly) -> Assembly:
+        node = assembly.node(key)
+        if not text.strip().isascii() or not text.strip().isdigit():
+            raise QuantityError(
+                "a quantity is a whole number", where=node.name, read=f'"{text}"', remedy="Type how many there are"
+            )
+        if isinstance(node.copies, Mirrored):
+            raise EditRefused("a mirrored part is there twice", where=node.name, remedy="Change how it repeats on the Part page")
+        return assembly.replaced(replace(node, copies=replace(node.copies, count=int(text))))
+
+    return change
+
+
+def made_of(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assembly]:
+    """Return the edit that sets what says a part's mass: a material's name, a density, or a weighed mass."""
+
+    def change(assembly: Assembly) -> Assembly:
+        part = _part(assembly, key)
+        if isinstance(part.driver, DataSheet):
+            raise EditRefused(
+                "a known part takes its mass from its data sheet", where=part.name, remedy="Edit it on the Part page"
+            )
+        return assembly.replaced(replace(part, driver=driver_of(text, units, part.name)))
+
+    return change
+
+
+def weighing(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assembly]:
+    """Return the edit that gives a part the mass one copy was weighed at."""
+
+    def change(assembly: Assembly) -> Assembly:
+        part = _part(assembly, key)
+        if isinstance(part.driver, DataSheet):
+            raise EditRefused(
+                "a known part takes its mass from its data sheet", where=part.name, remedy="Edit it on the Part page"
+            )
+        mass = parse(text, Kind.MASS, units[Kind.MASS]).value
+        return assembly.replaced(replace(part, driver=Weighed(mass)))
+
+    return change
+
+
+def driver_of(text: str, units: UnitSet, where: str) -> Driver:
+    """Return what says a mass: text that starts with a number is a density or a weighed mass, other text a material.
+
+    Raises:
+        MaterialError, QuantityError: neither.
+    """
+    words = text.strip()
+    if not words:
+        return NotSet()
+    if not (words[0].isdigit() or words[0] in ".,-+("):
+        found = material(words)
+        return ByMaterial(found.name, found.density)
+    try:
+        return Weighed(parse(words, Kind.MASS, units[Kind.MASS]).value)
+    except QuantityError as not_a_mass:
+        try:
+            return ByDensity(parse(words, Kind.DENSITY, UNITS["kg/m³"]).value)
+        except QuantityError:
+            raise QuantityError(
+                "this is no material, density or mass", where=where, read=f'"{text}"',
+                remedy='Type a material\'s name, a density like "7850 kg/m³", or a weighed mass like "1.2 kg"',
+            ) from not_a_mass
+
+
+def _part(assembly: Assembly, key: str) -> Part:
+    node = assembly.node(key)
+    if isinstance(node, Group):
+        raise EditRefused("a group has no material of its own", where=node.name, remedy="Set it on the parts it holds")
+    return node

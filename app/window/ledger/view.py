@@ -1,0 +1,237 @@
+"""The ledger as it stands in the window: the tree of lines, the foot with the totals, copying and the keyboard."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QByteArray, QItemSelectionModel, QModelIndex, QPoint, Qt, Signal
+from PySide6.QtGui import QGuiApplication, QKeyEvent, QMouseEvent
+from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QMenu, QTreeView, QVBoxLayout, QWidget
+
+from app.window.ledger.columns import COLUMNS, INDEX
+from app.window.ledger.delegate import ROW_HEIGHT, LedgerDelegate
+from app.window.ledger.model import COPY_ROLE, FootModel, LedgerModel
+from core.handover import tsv_of_block
+
+if TYPE_CHECKING:
+    from app.window.session import Session
+
+WIDTHS = {"name": 220, "count": 52, "material": 190, "mass": 96, "x": 84, "y": 84, "z": 84, "own": 112, "transfer": 112,
+          "inertia": 124, "share": 180}
+
+
+class LedgerTree(QTreeView):
+    """Lines and cells; cells are selected so that any block of them can be copied."""
+
+    hovered = Signal(str)
+
+    def __init__(self, session: Session, parent: QWidget) -> None:
+        super().__init__(parent)
+        self._session = session
+        self._closed: set[str] = set()
+        self.lines = LedgerModel(session)
+        self.setModel(self.lines)
+        self.setItemDelegate(LedgerDelegate(session, self.lines, self))
+        self.setAccessibleName("Ledger")
+        self.setUniformRowHeights(True)
+        self.setAllColumnsShowFocus(False)
+        self.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectItems)
+        self.setSelectionMode(QAbstractItemView.SelectionMode.ExtendedSelection)
+        self.setEditTriggers(
+            QAbstractItemView.EditTrigger.DoubleClicked
+            | QAbstractItemView.EditTrigger.EditKeyPressed
+            | QAbstractItemView.EditTrigger.AnyKeyPressed
+        )
+        self.setDragDropMode(QAbstractItemView.DragDropMode.DragDrop)
+        self.setDefaultDropAction(Qt.DropAction.MoveAction)
+        self.setMouseTracking(True)
+        self.setHorizontalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
+        self.setContextMenuPolicy(Qt.ContextMenuPolicy.CustomContextMenu)
+        self.expandAll()
+        self.lines.modelReset.connect(self._restore)
+        self.collapsed.connect(lambda index: self._closed.add(self.lines.line(index).key))
+        self.expanded.connect(lambda index: self._closed.discard(self.lines.line(index).key))
+        self.entered.connect(lambda index: self.hovered.emit(self.lines.line(index).key))
+        self.selectionModel().selectionChanged.connect(self._tell_selection)
+        session.selection_changed.connect(self._show_selection)
+
+    def _restore(self) -> None:
+        self.expandAll()
+        for key in list(self._closed):
+            index = self.lines.index_of(key)
+            if index.isValid():
+                self.setExpanded(index, False)
+        self._show_selection()
+
+    def _tell_selection(self) -> None:
+        self._session.select(frozenset(self.lines.line(index).key for index in self.selectedIndexes()))
+        self.viewport().update()
+
+    def _show_selection(self) -> None:
+        """Select the session's lines; cells stay as they are where they already say so."""
+        if self._session.selected != frozenset(self.lines.line(index).key for index in self.selectedIndexes()):
+            model = self.selectionModel()
+            model.blockSignals(True)
+            model.clearSelection()
+            for key in self._session.selected:
+                index = self.lines.index_of(key)
+                model.select(index, QItemSelectionModel.SelectionFlag.Select)
+                model.setCurrentIndex(index, QItemSelectionModel.SelectionFlag.NoUpdate)
+                self.scrollTo(index)
+            model.blockSignals(False)
+        self.viewport().update()
+
+    def mousePressEvent(self, event: QMouseEvent) -> None:  # noqa: N802  # Qt's name
+        """Drag lines by their names only; in the other columns dragging selects a block of cells."""
+        self.setDragEnabled(self.indexAt(event.position().toPoint()).column() == INDEX["name"])
+        super().mousePressEvent(event)
+
+    def leaveEvent(self, event: object) -> None:  # noqa: N802  # Qt's name
+        """Tell that the pointer is over no line any more."""
+        self.hovered.emit("")
+        super().leaveEvent(event)  # type: ignore[arg-type]  # handed on as it came
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  # Qt's name
+        """Leave Delete and the shortcuts to the window; Return edits like F2."""
+        if event.key() in {Qt.Key.Key_Delete, Qt.Key.Key_Backspace}:
+            event.ignore()
+            return
+        if event.key() in {Qt.Key.Key_Return, Qt.Key.Key_Enter} and self.state() != QAbstractItemView.State.EditingState:
+            self.edit(self.currentIndex())
+            return
+        super().keyPressEvent(event)
+
+    def edit_name(self, key: str) -> None:
+        """Start editing a line's name."""
+        index = self.lines.index_of(key)
+        if index.isValid():
+            self.setCurrentIndex(index)
+            self.edit(index)
+
+    def block(self) -> list[list[str]]:
+        """Return the selected cells as rows of texts to copy, in the order shown; cells between them are empty."""
+        header = self.header()
+        shown = sorted(
+            (at for at in range(len(COLUMNS)) if not header.isSectionHidden(at)), key=header.visualIndex
+        )
+        chosen = {(index.internalId(), index.column()): index for index in self.selectedIndexes()}
+        columns = [at for at in shown if any(column == at for _, column in chosen)]
+        rows = [row for row in _rows(self, QModelIndex()) if any(key[0] == row.internalId() for key in chosen)]
+        return [
+            [str(chosen[row.internalId(), at].data(COPY_ROLE)) if (row.internalId(), at) in chosen else "" for at in columns]
+            for row in rows
+        ]
+
+    def headings(self) -> list[str]:
+        """Return the headings of the columns of the block, with their units."""
+        header = self.header()
+        columns = sorted({index.column() for index in self.selectedIndexes()}, key=header.visualIndex)
+        texts = (str(self.lines.headerData(at, Qt.Orientation.Horizontal, Qt.ItemDataRole.DisplayRole)) for at in columns)
+        return [_heading(*text.partition("\n")[::2]) for text in texts]
+
+
+def _heading(name: str, unit: str) -> str:
+    return f"{name} ({unit})" if unit else name
+
+
+def _rows(tree: LedgerTree, parent: QModelIndex) -> Iterable[QModelIndex]:
+    for row in range(tree.lines.rowCount(parent)):
+        index = tree.lines.index(row, 0, parent)
+        yield index
+        if tree.isExpanded(index):
+            yield from _rows(tree, index)
+
+
+class LedgerPane(QWidget):
+    """The ledger with its foot; the columns of both move together."""
+
+    def __init__(self, session: Session, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._session = session
+        self.tree = LedgerTree(session, self)
+        self.foot = QTreeView(self)
+        self.foot.setModel(FootModel(session))
+        self.foot.setItemDelegate(LedgerDelegate(session, self.tree.lines, self.foot))
+        self.foot.setAccessibleName("Totals of the ledger")
+        self.foot.setRootIsDecorated(False)
+        self.foot.setHeaderHidden(True)
+        self.foot.setSelectionMode(QAbstractItemView.SelectionMode.ExtendedSelection)
+        self.foot.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectItems)
+        self.foot.setFixedHeight(ROW_HEIGHT + 6)
+        self.foot.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.foot.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.foot.setObjectName("foot")
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(0, 0, 0, 0)
+        layout.setSpacing(0)
+        layout.addWidget(self.tree, 1)
+        layout.addWidget(self.foot)
+        self._tie_columns()
+
+    def _tie_columns(self) -> None:
+        header, below = self.tree.header(), self.foot.header()
+        header.setSectionsMovable(True)
+        header.setSectionResizeMode(QHeaderView.ResizeMode.Interactive)
+        header.setStretchLastSection(True)
+        below.setStretchLastSection(True)
+        header.setDefaultAlignment(Qt.AlignmentFlag.AlignVCenter)
+        header.sectionResized.connect(lambda at, _old, new: below.resizeSection(at, new))
+        header.sectionMoved.connect(lambda _at, old, new: below.moveSection(old, new))
+        self.tree.horizontalScrollBar().valueChanged.connect(self.foot.horizontalScrollBar().setValue)
+        for column in COLUMNS:
+            header.resizeSection(INDEX[column.key], WIDTHS[column.key])
+        header.setContextMenuPolicy(Qt.ContextMenuPolicy.CustomContextMenu)
+        header.customContextMenuRequested.connect(self._offer_columns)
+
+    def _offer_columns(self, at: QPoint) -> None:
+        menu = self.columns_menu()
+        menu.popup(self.tree.header().mapToGlobal(at))
+
+    def columns_menu(self) -> QMenu:
+        """Return a menu in which columns are shown and hidden."""
+        menu = QMenu("Columns", self)
+        for at, column in enumerate(COLUMNS):
+            if column.key == "name":
+                continue
+            action = menu.addAction(column.heading.format(axis=self._session.assembly.drive))
+            action.setCheckable(True)
+            action.setChecked(not self.tree.isColumnHidden(at))
+            action.toggled.connect(lambda wanted, at=at: self.show_column(at, wanted))
+        return menu
+
+    def show_column(self, at: int, wanted: bool) -> None:
+        """Show or hide a column of the ledger and of its foot."""
+        self.tree.setColumnHidden(at, not wanted)
+        self.foot.setColumnHidden(at, not wanted)
+
+    def save_columns(self) -> QByteArray:
+        """Return widths, order and choice of the columns, to be kept."""
+        return self.tree.header().saveState()
+
+    def restore_columns(self, state: QByteArray) -> None:
+        """Give the columns the widths, order and choice that were kept."""
+        self.tree.header().restoreState(state)
+        self.foot.header().restoreState(state)
+
+    def copy_block(self) -> bool:
+        """Put the selected cells on the clipboard, tab-separated; return whether any were selected."""
+        return _to_clipboard(self._cells())
+
+    def copy_block_with_headings(self) -> bool:
+        """Put the selected cells on the clipboard under their columns' headings."""
+        rows = self._cells()
+        headings = self.tree.headings() if self.tree.selectedIndexes() else []
+        return _to_clipboard([headings, *rows] if rows and headings else rows)
+
+    def _cells(self) -> list[list[str]]:
+        if self.foot.hasFocus() and self.foot.selectedIndexes():
+            return [[str(index.data(COPY_ROLE)) for index in self.foot.selectedIndexes()]]
+        return self.tree.block()
+
+
+
+def _to_clipboard(rows: list[list[str]]) -> bool:
+    if rows:
+        QGuiApplication.clipboard().setText(tsv_of_block(rows))
+    return bool(rows)

@@ -1,0 +1,1 @@
+"""The pages at the lower right: what is selected, the sheet, the checks."""

@@ -1,0 +1,131 @@
+"""The Part page: everything that can be typed about the selected line."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import Qt
+from PySide6.QtWidgets import QFrame, QScrollArea, QVBoxLayout, QWidget
+
+from app.window.fields import Form, QuantityField, TextField
+from app.window.pages.part_body import KnownSection, MeshSection, ShapeSection
+from app.window.pages.part_mass import MassSection
+from app.window.pages.part_place import CopiesSection, PlaceSection
+from app.window.pages.section import Section
+from app.window.style import GRID, Words
+from core.assembly import Group, MeshBody, Node, Part, ShapeBody
+
+if TYPE_CHECKING:
+    from app.window.session import Session
+
+NOTHING = (
+    "Select a line of the ledger, or click a part in the view, to edit it here.\n"
+    "Add shape, Add mesh and Add known part put a new line into the ledger."
+)
+
+
+class NameSection(Section):
+    """The name of the line, and a note on it."""
+
+    def __init__(self, session: Session, form: Form, node: Node) -> None:
+        super().__init__(session, form, node.key)
+        self._name = TextField("Name")
+        form.add("name", self._name)
+        self._note = TextField("Note", "what is worth knowing about it")
+        form.add("note", self._note)
+        self._name.entered.connect(self._rename)
+        self._note.entered.connect(lambda text: self.edit("Note", lambda line: replace(line, note=text)))
+
+    def show(self, node: Node) -> None:
+        """Show name and note."""
+        self._name.set_value(node.name)
+        self._note.set_value(node.note)
+
+    def _rename(self, text: str) -> None:
+        if text.strip():
+            self.edit(f"Rename to {text.strip()}", lambda node: replace(node, name=text.strip()))
+        else:
+            self._name.set_value(self.session.assembly.node(self.key).name)
+
+
+class PartPage(QScrollArea):
+    """Rebuilt when another kind of line is selected, refreshed in place when its values change."""
+
+    def __init__(self, session: Session, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._session = session
+        self._signature: object = None
+        self._sections: list[Section] = []
+        self.setWidgetResizable(True)
+        self.setFrameShape(QFrame.Shape.NoFrame)
+        self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.setAccessibleName("Part page")
+        for signal in (session.changed, session.selection_changed, session.shown_differently):
+            signal.connect(self.refresh)
+        self.refresh()
+
+    def refresh(self) -> None:
+        """Show the selected line as it is now."""
+        node = self._selected()
+        signature = _signature(node) if node else len(self._session.selected)
+        if signature != self._signature:
+            self._signature = signature
+            self._build(node)
+        if node is not None:
+            for section in self._sections:
+                section.show(node)
+
+    def edit_first_dimension(self) -> None:
+        """Put the keyboard into the first dimension of a shape, its text selected."""
+        for section in self._sections:
+            if isinstance(section, ShapeSection):
+                field: QuantityField = section.first_field()
+                field.line.setFocus(Qt.FocusReason.OtherFocusReason)
+                field.line.selectAll()
+                return
+
+    def _selected(self) -> Node | None:
+        if len(self._session.selected) != 1:
+            return None
+        return self._session.assembly.node(next(iter(self._session.selected)))
+
+    def _build(self, node: Node | None) -> None:
+        page = QWidget()
+        layout = QVBoxLayout(page)
+        layout.setContentsMargins(2 * GRID, GRID, 2 * GRID, 2 * GRID)
+        self._sections = []
+        if node is None:
+            several = len(self._session.selected)
+            words = Words(f"{several} lines are selected. Select one to edit it here." if several else NOTHING, "quiet")
+            words.setWordWrap(True)
+            layout.addWidget(words)
+        else:
+            form = Form()
+            self._sections = _sections(self._session, form, node)
+            layout.addWidget(form)
+        layout.addStretch(1)
+        self.setWidget(page)
+
+
+def _signature(node: Node) -> tuple[object, ...]:
+    """Return what decides which fields a line has."""
+    if isinstance(node, Group):
+        return (node.key, Group, type(node.copies))
+    inner = type(node.body.shape) if isinstance(node.body, ShapeBody) else getattr(node.body, "about", "")
+    return (node.key, type(node.body), inner, type(node.driver), type(node.copies))
+
+
+def _sections(session: Session, form: Form, node: Node) -> list[Section]:
+    sections: list[Section] = [NameSection(session, form, node)]
+    if isinstance(node, Part):
+        if isinstance(node.body, ShapeBody):
+            sections.append(ShapeSection(session, form, node))
+        elif isinstance(node.body, MeshBody):
+            sections.append(MeshSection(session, form, node))
+        else:
+            sections.append(KnownSection(session, form, node))
+        if isinstance(node.body, ShapeBody | MeshBody):
+            sections.append(MassSection(session, form, node))
+    sections += [PlaceSection(session, form, node), CopiesSection(session, form, node)]
+    return sections

@@ -1,0 +1,146 @@
+"""The fields for where a line stands and how it repeats."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import replace
+from typing import TYPE_CHECKING
+
+from app.window.fields import ChoiceField, Form, QuantityField, TripleField
+from app.window.pages.section import NumberChange, Section, typed_for, with_component
+from core.assembly import Node
+from core.errors import QuantityError
+from core.placement import Copies, Mirrored, Ring, Row, Several
+from core.quantity import UNITS, Kind
+
+if TYPE_CHECKING:
+    from app.window.session import Session
+
+PATTERNS: list[tuple[str, object]] = [
+    ("at one place", Several),
+    ("ring, on a pitch circle", Ring),
+    ("row", Row),
+    ("mirror image", Mirrored),
+]
+
+
+class PlaceSection(Section):
+    """Position and turns in the frame that holds the line."""
+
+    def __init__(self, session: Session, form: Form, node: Node) -> None:
+        super().__init__(session, form, node.key)
+        form.heading("Placement")
+        self._position = TripleField(session, "position", Kind.LENGTH)
+        form.add("position", self._position, "Of the part's own origin, in the frame of the group that holds it.")
+        self._turns = TripleField(session, "turn about", Kind.ANGLE, UNITS["°"])
+        form.add("turn about", self._turns, "About the group's fixed axes: x first, then y, then z.")
+        for at, (here, turn) in enumerate(zip(self._position.fields, self._turns.fields, strict=True)):
+            self.bind(here, f"Position {'xyz'[at]}", f"position.{at}", _moved(at))
+            self.bind(turn, f"Turn about {'xyz'[at]}", f"turn.{at}", _turned(at))
+
+    def show(self, node: Node) -> None:
+        """Show position and turns."""
+        self._position.set_values(node.pose.position, lambda at: typed_for(node, f"position.{at}"))
+        self._turns.set_values(node.pose.turns, lambda at: typed_for(node, f"turn.{at}"))
+
+
+def _moved(at: int) -> NumberChange:
+    return lambda node, value: replace(
+        node, pose=replace(node.pose, position=with_component(node.pose.position, at, value))
+    )
+
+
+def _turned(at: int) -> NumberChange:
+    return lambda node, value: replace(node, pose=replace(node.pose, turns=with_component(node.pose.turns, at, value)))
+
+
+class CopiesSection(Section):
+    """How often the line is there, and where its copies stand."""
+
+    def __init__(self, session: Session, form: Form, node: Node) -> None:
+        super().__init__(session, form, node.key)
+        form.heading("Repeats")
+        self._pattern = ChoiceField("How it repeats", PATTERNS)
+        form.add("as", self._pattern)
+        self._pattern.chosen.connect(self._choose)
+        self._count: QuantityField | None = None
+        self._angles: list[tuple[str, QuantityField]] = []
+        self._triples: list[tuple[str, TripleField]] = []
+        self._turning: ChoiceField | None = None
+        if not isinstance(node.copies, Mirrored):
+            self._count = QuantityField(session, "quantity", Kind.NUMBER)
+            form.add("quantity ×", self._count)
+            self.bind(self._count, "Quantity", "copies.count", _counted)
+        self._pattern_fields(node.copies)
+
+    def _pattern_fields(self, copies: Copies) -> None:
+        if isinstance(copies, Ring):
+            self._angle("start", "first copy at", "Turn of the first copy away from where the part was placed.")
+            self._angle("span", "over", "360° spaces the copies evenly all round.")
+            self._turning = ChoiceField("Copies turn", [("turn with the ring", True), ("keep their orientation", False)])
+            self.form.add("copies", self._turning)
+            self._turning.chosen.connect(self._choose_turning)
+            self._triple("point", "axis through", Kind.LENGTH, "A point on the ring's axis, in the group's frame.")
+            self._triple("direction", "axis along", Kind.NUMBER, "The direction of the ring's axis.")
+        elif isinstance(copies, Row):
+            self._triple("step", "step", Kind.LENGTH, "From each copy to the next, in the group's frame.")
+        elif isinstance(copies, Mirrored):
+            self._triple("point", "plane through", Kind.LENGTH, "A point of the mirror plane.")
+            self._triple("normal", "plane across", Kind.NUMBER, "The direction across the mirror plane.")
+
+    def _angle(self, name: str, label: str, tip: str) -> None:
+        field = QuantityField(self.session, label, Kind.ANGLE, UNITS["°"])
+        self.form.add(label, field, tip)
+        self.bind(field, label, f"copies.{name}", lambda node, value: _copies_with(node, **{name: value}))
+        self._angles.append((name, field))
+
+    def _triple(self, name: str, label: str, kind: Kind, tip: str) -> None:
+        triple = TripleField(self.session, label, kind)
+        self.form.add(label, triple, tip)
+        for at, field in enumerate(triple.fields):
+            self.bind(field, label, f"copies.{name}.{at}", _component_changed(name, at))
+        self._triples.append((name, triple))
+
+    def show(self, node: Node) -> None:
+        """Show how the line repeats."""
+        self._pattern.set_value(type(node.copies))
+        if self._count is not None:
+            self._count.set_value(float(node.copies.count), typed_for(node, "copies.count"))
+        for name, field in self._angles:
+            field.set_value(getattr(node.copies, name), typed_for(node, f"copies.{name}"))
+        for name, triple in self._triples:
+            triple.set_values(
+                getattr(node.copies, name), lambda at, name=name: typed_for(node, f"copies.{name}.{at}")  # type: ignore[misc]  # bound now
+            )
+        if self._turning is not None and isinstance(node.copies, Ring):
+            self._turning.set_value(node.copies.turning)
+
+    def _choose(self, pattern: object) -> None:
+        def change(node: Node) -> Node:
+            count = node.copies.count
+            fresh: dict[object, Copies] = {
+                Several: Several(count), Ring: Ring(max(count, 2)), Row: Row(max(count, 2)), Mirrored: Mirrored(),
+            }
+            return node if isinstance(node.copies, type(fresh[pattern])) else replace(node, copies=fresh[pattern])
+
+        name = self.session.assembly.node(self.key).name
+        self.edit(f"{name} repeats {self._pattern.currentText()}", change)
+
+    def _choose_turning(self, turning: object) -> None:
+        self.edit("Orientation of the copies", lambda node: _copies_with(node, turning=bool(turning)))
+
+
+def _copies_with(node: Node, **values: object) -> Node:
+    return replace(node, copies=replace(node.copies, **values))  # type: ignore[arg-type]  # fields of one of the patterns
+
+
+def _component_changed(name: str, at: int) -> NumberChange:
+    return lambda node, value: _copies_with(node, **{name: with_component(getattr(node.copies, name), at, value)})
+
+
+def _counted(node: Node, value: float) -> Node:
+    if not math.isclose(value, round(value)):
+        raise QuantityError(
+            "a quantity is a whole number", where=node.name, read=f"{value:g}", remedy="Type how many there are"
+        )
+    return _copies_with(node, count=round(value))

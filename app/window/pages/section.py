@@ -1,0 +1,78 @@
+"""One block of fields on the Part page, and the one way in which its fields become edits."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import replace
+from typing import TYPE_CHECKING
+
+from app.window.fields import Form, QuantityField
+from core.assembly import Assembly, Node
+
+if TYPE_CHECKING:
+    from app.window.session import Session
+
+# A change to one line: the line as it is in, the line as it is to be out.
+Change = Callable[[Node], Node]
+# The same with the number that was entered.
+NumberChange = Callable[[Node, float], Node]
+
+
+class Section:
+    """Fields for some aspect of a line; `show` puts a line's values into them."""
+
+    def __init__(self, session: Session, form: Form, key: str) -> None:
+        self.session = session
+        self.form = form
+        self.key = key
+
+    def show(self, node: Node) -> None:
+        """Show the values of the line as it is now."""
+        raise NotImplementedError
+
+    def attempt(self, name: str, change: Change) -> str:
+        """Try an edit of the line; return "" or the sentence that refuses it."""
+
+        def on_assembly(assembly: Assembly) -> Assembly:
+            return assembly.replaced(change(assembly.node(self.key)))
+
+        return self.session.attempt(name, on_assembly)
+
+    def edit(self, name: str, change: Change) -> None:
+        """Do an edit of the line; a refusal is told at the top of the window."""
+        refusal = self.attempt(name, change)
+        if refusal:
+            self.session.refused.emit(refusal)
+            self.show(self.session.assembly.node(self.key))
+
+    def bind(self, field: QuantityField, words: str, path: str, change: NumberChange) -> None:
+        """Let a field edit one number of the line; the text as typed is kept under its path."""
+
+        def entered(value: float, text: str) -> None:
+            name = self.session.assembly.node(self.key).name
+            shown = field.line.text().strip()
+            refusal = self.attempt(
+                f"{words} of {name}: {shown}", lambda node: with_typed(change(node, value), path, text)
+            )
+            if refusal:
+                field.refuse(refusal)
+
+        field.entered.connect(entered)
+
+
+def with_typed(node: Node, path: str, text: str) -> Node:
+    """Return the line with the text that was typed for one of its numbers kept, or dropped where it is ""."""
+    typed = {**dict(node.typed), path: text}
+    return replace(node, typed=tuple(sorted((key, value) for key, value in typed.items() if value)))
+
+
+def typed_for(node: Node, path: str) -> str:
+    """Return what was typed for a number of the line; "" where the number says it all."""
+    return dict(node.typed).get(path, "")
+
+
+def with_component(values: tuple[float, float, float], at: int, value: float) -> tuple[float, float, float]:
+    """Return three numbers with one of them replaced."""
+    changed = [*values]
+    changed[at] = value
+    return (changed[0], changed[1], changed[2])

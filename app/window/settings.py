@@ -1,0 +1,62 @@
+"""What the window remembers between two sessions: its size, its columns, the units, the files used last."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from PySide6.QtCore import QByteArray, QLocale, QSettings
+
+from core.errors import QuantityError
+from core.quantity import DEFAULT_UNITS, UnitSet, parse_unit_set
+
+MOST_RECENT = 8
+
+
+class Settings:
+    """Typed access to the user's settings file; what cannot be read there counts as never set."""
+
+    def __init__(self) -> None:
+        self._store = QSettings(QSettings.Format.IniFormat, QSettings.Scope.UserScope, "masswright", "masswright")
+
+    @property
+    def units(self) -> UnitSet:
+        """The unit set that was used last."""
+        try:
+            return parse_unit_set(str(self._store.value("units", DEFAULT_UNITS.name)))
+        except QuantityError:
+            return DEFAULT_UNITS
+
+    @units.setter
+    def units(self, units: UnitSet) -> None:
+        self._store.setValue("units", units.name)
+
+    @property
+    def decimal_mark(self) -> str:
+        """The decimal mark that was chosen, otherwise the system's."""
+        mark = str(self._store.value("decimal_mark", QLocale.system().decimalPoint()))
+        return mark if mark in {".", ","} else "."
+
+    @decimal_mark.setter
+    def decimal_mark(self, mark: str) -> None:
+        self._store.setValue("decimal_mark", mark)
+
+    @property
+    def recent(self) -> list[Path]:
+        """The documents used last that are still there, the newest first."""
+        stored = self._store.value("recent", [])
+        names = [stored] if isinstance(stored, str) else list(stored) if isinstance(stored, list) else []
+        return [Path(str(name)) for name in names if Path(str(name)).is_file()]
+
+    def add_recent(self, path: Path) -> None:
+        """Put a document in front of those used last."""
+        names = [str(path.resolve()), *(str(old) for old in self.recent if old.resolve() != path.resolve())]
+        self._store.setValue("recent", names[:MOST_RECENT])
+
+    def state(self, name: str) -> QByteArray | None:
+        """Return the stored state of a widget."""
+        value = self._store.value(f"state/{name}")
+        return value if isinstance(value, QByteArray) else None
+
+    def keep_state(self, name: str, value: QByteArray) -> None:
+        """Store the state of a widget."""
+        self._store.setValue(f"state/{name}", value)

@@ -1,0 +1,97 @@
+"""What an empty document shows: three ways in, and a line that refuses or offers something above the ledger."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from pathlib import Path
+
+from PySide6.QtCore import QSize, Qt
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QMenu, QPushButton, QToolButton, QVBoxLayout, QWidget
+
+import app
+from app.window.style import GRID, Words, colours, heading_font, icon
+
+SAMPLE = Path(app.__file__).resolve().parents[1] / "sample_parts" / "indexing_dial.masswright"
+
+
+class StartPanel(QWidget):
+    """Three big ways in."""
+
+    def __init__(self, shapes: QMenu, add_mesh: Callable[[], None], open_sample: Callable[[], None]) -> None:
+        super().__init__()
+        self.setAttribute(Qt.WidgetAttribute.WA_StyledBackground, True)
+        head = Words("What turns?")
+        head.setFont(heading_font(head))
+        words = Words("Put the parts into the ledger, one line each; the totals follow as you type.", "quiet")
+        self.shape = _way("shape", "Add a shape", "from dimensions on a sketch")
+        self.shape.setMenu(shapes)
+        self.shape.setPopupMode(QToolButton.ToolButtonPopupMode.InstantPopup)
+        self.mesh = _way("mesh", "Drop a mesh here", "or choose an STL file")
+        self.mesh.clicked.connect(add_mesh)
+        self.sample = _way("masswright", "Open the sample", "an indexing dial")
+        self.sample.clicked.connect(open_sample)
+        self.sample.setVisible(SAMPLE.is_file())
+        row = QHBoxLayout()
+        row.setSpacing(2 * GRID)
+        row.addStretch(1)
+        for button in (self.shape, self.mesh, self.sample):
+            row.addWidget(button)
+        row.addStretch(1)
+        layout = QVBoxLayout(self)
+        layout.addStretch(1)
+        for label in (head, words):
+            label.setAlignment(Qt.AlignmentFlag.AlignCenter)
+            layout.addWidget(label)
+        layout.addSpacing(2 * GRID)
+        layout.addLayout(row)
+        layout.addStretch(2)
+
+
+def _way(drawing: str, words: str, more: str) -> QToolButton:
+    button = QToolButton()
+    button.setIcon(icon(drawing))
+    button.setIconSize(QSize(32, 32))
+    button.setText(f"{words}\n{more}")
+    button.setAccessibleName(f"{words}, {more}")
+    button.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextUnderIcon)
+    button.setMinimumSize(220, 104)
+    button.setStyleSheet(f"QToolButton {{ border: 1px solid {colours().hairline}; }}")
+    return button
+
+
+class Notice(QFrame):
+    """One sentence across the window, with what can be done about it; gone when it is dealt with."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self._mark = QToolButton()
+        self._mark.setEnabled(False)
+        self._mark.setIcon(icon("failed"))
+        self.words = Words()
+        self.words.setWordWrap(True)
+        self._close = QPushButton("Close")
+        self._close.clicked.connect(self.hide)
+        self._layout = QHBoxLayout(self)
+        self._layout.setContentsMargins(GRID, 4, GRID, 4)
+        self._layout.addWidget(self.words, 1)
+        self._layout.addWidget(self._close)
+        self._offers: list[QPushButton] = []
+        self.setObjectName("notice")
+        self.hide()
+
+    def say(self, sentence: str, offers: dict[str, Callable[[], None]] | None = None) -> None:
+        """Show a sentence, with buttons for what may be done about it."""
+        for button in self._offers:
+            button.deleteLater()
+        self._offers = []
+        for words, action in (offers or {}).items():
+            button = QPushButton(words)
+            button.clicked.connect(self.hide)
+            button.clicked.connect(action)
+            self._layout.insertWidget(self._layout.count() - 1, button)
+            self._offers.append(button)
+        role = "blue" if offers else "failed"
+        self.words.set_role(role)
+        self.words.setText(sentence)
+        self.setAccessibleName(sentence)
+        self.show()
