@@ -5,6 +5,7 @@ from __future__ import annotations
 import argparse
 import os
 import sys
+from functools import partial
 from typing import TYPE_CHECKING, Final, NoReturn
 
 from app.terminal import PROGRAM, complain, drop_output, show
@@ -15,11 +16,13 @@ if TYPE_CHECKING:
 
     from app.weigh import Task
     from core.handover import SheetChoice
+    from core.handover.lines import About
     from core.handover.mesh_reading import Weighing
     from core.quantity import Unit, UnitSet
 
 INTERRUPTED, NO_READER = 130, 141  # what a shell reports for a program ended by Ctrl-C, or by a closed pipe
 
+_WIDTH: Final = 100
 _OPENING: Final = """\
 masswright [FILE]               open the window, with a document or with a mesh to import
 masswright weigh PATH...        print the mass properties of meshes and documents
@@ -28,8 +31,8 @@ masswright handover DOC --to F  write a document's sheet to a file
 _ABOUT_WEIGH: Final = """\
 Prints volume, mass, centre of mass, inertia tensor and principal axes of STL meshes and of documents.
 
-Exit status: 0 all answered and sound; 1 answered, but a check failed; 2 wrong usage; 3 a file that cannot be read.
-With several paths one bad file does not stop the others, and the highest status is returned.
+Exit status: 0 all answered and sound; 1 answered, but a check failed; 2 wrong usage; 3 a file that cannot
+be read. With several paths one bad file does not stop the others, and the highest status is returned.
 """
 # Their values may begin with a minus sign, which must not be taken for an option.
 _SIGNED: Final = ("--axis", "--about")
@@ -70,6 +73,15 @@ def _run(given: list[str]) -> int:
 class _Parser(argparse.ArgumentParser):
     """A parser that says what is wrong in one line."""
 
+    def __init__(self, name: str, **words: str) -> None:
+        # A fixed width: asking the terminal takes modules that cost as much as reading a small mesh.
+        shape = partial(argparse.RawDescriptionHelpFormatter, width=_WIDTH)
+        super().__init__(name, formatter_class=shape, **words)  # type: ignore[arg-type]  # any callable will do
+
+    def print_help(self, file: object = None) -> None:  # noqa: ARG002  # argparse's own signature
+        """Write the help in signs that the terminal knows."""
+        show(self.format_help())
+
     def error(self, message: str) -> NoReturn:
         complain(f"{message}. See {self.prog} --help")
         raise SystemExit(2)
@@ -77,9 +89,10 @@ class _Parser(argparse.ArgumentParser):
 
 def _open(given: list[str]) -> int:
     parser = _Parser(
-        PROGRAM, usage=f"{PROGRAM} [FILE] | weigh PATH... | handover DOC --to FILE",
+        PROGRAM,
+        usage=f"{PROGRAM} [FILE] | weigh PATH... | handover DOC --to FILE",
         description="Mass, centre of mass and inertia of rotating assemblies, for choosing their drive.",
-        epilog=_OPENING, formatter_class=argparse.RawDescriptionHelpFormatter,
+        epilog=_OPENING,
     )
     parser.add_argument("file", nargs="?", metavar="FILE", help="a document, or a mesh to import")
     parser.add_argument("--version", action="store_true", help="print the version and leave")
@@ -129,40 +142,58 @@ def _weigh(given: list[str]) -> int:
 
 
 def _weigh_parser() -> argparse.ArgumentParser:
-    parser = _Parser(
-        f"{PROGRAM} weigh", description=_ABOUT_WEIGH, formatter_class=argparse.RawDescriptionHelpFormatter,
-    )
+    parser = _Parser(f"{PROGRAM} weigh", description=_ABOUT_WEIGH)
     parser.add_argument("paths", nargs="+", metavar="PATH", help="an STL file or a document")
     mesh = parser.add_argument_group("for meshes")
-    mesh.add_argument("--unit", choices=("mm", "cm", "m", "in", "ft"), help="the meshes' length unit (default: mm)")
+    mesh.add_argument(
+        "--unit", choices=("mm", "cm", "m", "in", "ft"), help="the meshes' length unit (default: mm)"
+    )
     mass = mesh.add_mutually_exclusive_group()
     mass.add_argument("--material", metavar="NAME", help='what they are made of, such as "steel"')
     mass.add_argument("--density", metavar="TEXT", help='such as "7850 kg/m^3"')
     mass.add_argument("--mass", metavar="TEXT", help='of each, as weighed, such as "1.2 kg"')
     mesh.add_argument("--curved", action="store_true", help="count the curvature restored behind the facets")
     mesh.add_argument(
-        "--axis", metavar="POINT;DIRECTION", help='also J about this axis, such as "0,0,0;0,0,1"; point in --unit. '
+        "--axis",
+        metavar="POINT;DIRECTION",
+        help='also J about this axis, such as "0,0,0;0,0,1"; point in --unit. '
         "For a document it takes the place of the drive axis, in mm",
     )
     mesh.add_argument("--jobs", type=_count, default=1, metavar="N", help="work on N files at the same time")
     _add_shown(parser)
     shown = parser.add_argument_group("output")
-    shown.add_argument("--format", choices=("text", "json", "tsv", "csv"), default="text", help="(default: text)")
+    shown.add_argument(
+        "--format", choices=("text", "json", "tsv", "csv"), default="text", help="(default: text)"
+    )
     return parser
 
 
 def _add_shown(parser: argparse.ArgumentParser) -> None:
-    shown = parser.add_argument_group("what is shown (JSON is always in SI, about the centre, in tensor elements)")
+    shown = parser.add_argument_group(
+        "what is shown (JSON is always in SI, about the centre, in tensor elements)"
+    )
     shown.add_argument(
-        "--about", default="centre", metavar="POINT",
+        "--about",
+        default="centre",
+        metavar="POINT",
         help='point of the tensor: centre (default), origin, or "x,y,z" in --unit',
     )
     shown.add_argument(
-        "--products", choices=("tensor", "integral"), default="tensor",
-        help="products of inertia as tensor elements, −∫xy dm (default), or as integrals, +∫xy dm".replace("−", "-"),
+        "--products",
+        choices=("tensor", "integral"),
+        default="tensor",
+        help="products of inertia as tensor elements, Ixy = -∫xy dm (default), or integrals, Pxy = +∫xy dm",
     )
-    shown.add_argument("--show-units", default="", metavar="UNITS", help='such as "mm kg kg*cm^2" or "in lb lb*in^2"')
-    shown.add_argument("--decimal", choices=(".", ","), default=".", help="decimal mark of text and tables")
+    shown.add_argument(
+        "--show-units", default="", metavar="UNITS", help='such as "mm kg kg*cm^2" or "in lb lb*in^2"'
+    )
+    shown.add_argument(
+        "--decimal",
+        choices=(".", ","),
+        default=".",
+        metavar="MARK",
+        help='decimal mark of text and tables, "." (default) or ","',
+    )
 
 
 def _count(text: str) -> int:
@@ -176,6 +207,7 @@ def _task(chosen: argparse.Namespace) -> Task:
 
     Raises:
         ValueRefused: an option's text is no quantity, point, axis, unit or material.
+
     """
     from app.weigh import ASKED_AXIS, Task
     from core.handover.lines import AxisLine
@@ -183,12 +215,19 @@ def _task(chosen: argparse.Namespace) -> Task:
     from core.quantity import UNITS, parse_axis
 
     unit = UNITS[chosen.unit or "mm"]
-    axis = None if chosen.axis is None else AxisLine(
-        f"the axis {ASKED_AXIS}", *parse_axis(chosen.axis, unit, where="--axis")
+    axis = (
+        None
+        if chosen.axis is None
+        else AxisLine(f"the axis {ASKED_AXIS}", *parse_axis(chosen.axis, unit, where="--axis"))
     )
     request = MeshRequest(
-        unit, chosen.unit is None, _weighing(chosen), axis, count_restored=chosen.curved,
-        count_shells=chosen.format == "json", how_to_weigh="give --material, --density or --mass",
+        unit,
+        chosen.unit is None,
+        _weighing(chosen),
+        axis,
+        count_restored=chosen.curved,
+        count_shells=chosen.format == "json",
+        how_to_weigh="give --material, --density or --mass",
     )
     options = ("unit", "material", "density", "mass", "curved")
     mesh_only = tuple(f"--{name}" for name in options if getattr(chosen, name))
@@ -200,7 +239,7 @@ def _shown(chosen: argparse.Namespace, unit: Unit) -> tuple[SheetChoice, UnitSet
     from core.handover import SheetChoice
     from core.quantity import DEFAULT_UNITS, parse_triple, parse_unit_set
 
-    words = {"centre": "centre", "center": "centre", "origin": "origin"}
+    words: dict[str, About] = {"centre": "centre", "center": "centre", "origin": "origin"}
     about = words.get(chosen.about) or parse_triple(chosen.about, unit, where="--about")
     units = parse_unit_set(chosen.show_units, where="--show-units") if chosen.show_units else DEFAULT_UNITS
     return SheetChoice(about, "document", chosen.products), units
@@ -223,7 +262,9 @@ def _hand_over(given: list[str]) -> int:
     from app.hand_over import hand_over
     from core.quantity import UNITS
 
-    parser = _Parser(f"{PROGRAM} handover", description="Writes a document's sheet to a file: .csv, .tsv or .json.")
+    parser = _Parser(
+        f"{PROGRAM} handover", description="Writes a document's sheet to a file: .csv, .tsv or .json."
+    )
     parser.add_argument("document", metavar="DOC", help="a document")
     parser.add_argument("--to", required=True, metavar="FILE", help="what to write; its ending says the form")
     _add_shown(parser)

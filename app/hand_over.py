@@ -20,16 +20,19 @@ FORMS: Final = (".csv", ".tsv", ".json")
 
 
 def hand_over(document: str, target: str, choice: SheetChoice, units: UnitSet, decimal_mark: str) -> int:
-    """Write the sheet of a document to the file target, in the form its ending names, and return the exit status.
+    """Write the sheet of a document to a file, in the form its ending names, and return the exit status.
 
     Raises:
         ValueRefused: there is no such form.
         FileRefused: the document cannot be read, or the file cannot be written; nothing of it is.
+
     """
     form = Path(target).suffix.lower()
     if form not in FORMS:
         raise ValueRefused(
-            "this form of hand-over is not there", where=target, read=form or "no ending",
+            "this form of hand-over is not there",
+            where=target,
+            read=form or "no ending",
             remedy=f"Choose one of {', '.join(FORMS)}",
         )
     from core.document import read_document
@@ -62,6 +65,8 @@ def _write(target: str, text: str, encoding: str) -> None:
     except OSError as fault:
         draft.unlink(missing_ok=True)
         raise FileRefused(
-            "the file cannot be written", where=target, read=fault.strerror or str(fault),
+            "the file cannot be written",
+            where=target,
+            read=fault.strerror or str(fault),
             remedy="Check the folder and whether another program holds the file",
         ) from fault

@@ -1,4 +1,4 @@
-"""A line on standard error that shows how far a long task is: only on a terminal, and only once it takes long."""
+"""A line on standard error that shows how far a task is: only on a terminal, and once it takes long."""
 
 from __future__ import annotations
 

@@ -14,11 +14,30 @@ if TYPE_CHECKING:
 PROGRAM: Final = "masswright"
 
 # How a sign is written where the stream's encoding does not have it.
-_SPELLED: Final[Mapping[str, str]] = MappingProxyType({
-    "·": "*", "×": "x", "²": "^2", "³": "^3", "−": "-", "–": "-", "…": "...", "∫": "integral ", "√": "sqrt",
-    "°": "deg", "±": "+-", "µ": "u", "∞": "inf", "⌀": "dia. ", "≥": ">=", "≤": "<=", "ₙ": "n", "“": '"', "”": '"',
-    "’": "'",
-})
+_SPELLED: Final[Mapping[str, str]] = MappingProxyType(
+    {
+        "·": "*",
+        "×": "x",
+        "²": "^2",
+        "³": "^3",
+        "−": "-",
+        "–": "-",
+        "…": "...",
+        "∫": "integral ",
+        "√": "sqrt",
+        "°": "deg",
+        "±": "+-",
+        "µ": "u",
+        "∞": "inf",
+        "⌀": "dia. ",
+        "≥": ">=",
+        "≤": "<=",
+        "ₙ": "n",
+        "“": '"',
+        "”": '"',
+        "’": "'",
+    }
+)
 
 
 def show(text: str) -> None:
@@ -40,7 +59,7 @@ def drop_output() -> None:
 
 
 def in_signs_of(text: str, encoding: str) -> str:
-    """Return text in signs that an encoding has: usual spellings for units and formulas, escapes for the rest.
+    """Return text in signs that an encoding has: usual spellings for units, escapes for the rest.
 
     >>> in_signs_of("−0.5 kg·m²", "ascii")
     '-0.5 kg*m^2'

@@ -42,6 +42,7 @@ class Task:
         format: of what is written.
         decimal_mark: "." or ",".
         mesh_only: the options that were given and make sense for a mesh file only.
+
     """
 
     request: MeshRequest
@@ -61,6 +62,7 @@ class Outcome:
         text: for standard output, unless the format is JSON.
         answer: for standard output as JSON.
         complaints: lines for standard error.
+
     """
 
     status: int
@@ -71,7 +73,7 @@ class Outcome:
 
 def weigh(paths: list[str], task: Task, jobs: int = 1) -> int:
     """Write the answers on all paths, in their order, and return the highest status."""
-    outcomes = []
+    outcomes: list[Outcome] = []
     for outcome in _outcomes(paths, task, min(jobs, len(paths))):
         if outcome.text:
             show("\n" + outcome.text if any(before.text for before in outcomes) else outcome.text)
@@ -113,20 +115,25 @@ def is_document(path: str) -> bool:
 
 def _mesh(path: str, task: Task, progress: Progress | None) -> Outcome:
     reading = read_mesh(path, task.request, progress)
-    complaints = tuple(f"check failed: {check.name}: {check.text}" for check in reading.checks if not check.ok)
+    complaints = tuple(
+        f"check failed: {check.name}: {check.text}" for check in reading.checks if not check.ok
+    )
     status = CHECK_FAILED if complaints else SOUND
     if task.format == "json":
         from core.handover.answer import answer_of_mesh
 
         return Outcome(status, answer=answer_of_mesh(reading), complaints=complaints)
-    return Outcome(status, sheet_text(sheet_of_mesh(reading, task.choice, task.units), task), complaints=complaints)
+    return Outcome(
+        status, sheet_text(sheet_of_mesh(reading, task.choice, task.units), task), complaints=complaints
+    )
 
 
 def _document(path: str, task: Task) -> Outcome:
     if task.mesh_only:
         raise ValueRefused(
-            f"{', '.join(task.mesh_only)} is for mesh files, and this is a document, which says it for every part",
-            where=path, remedy="Leave the option out, or set it in the document",
+            f"{', '.join(task.mesh_only)} is for mesh files; a document says this for every part",
+            where=path,
+            remedy="Leave the option out, or set it in the document",
         )
     from core.assembly import findings_of, ledger_of
     from core.document import read_document
@@ -134,7 +141,8 @@ def _document(path: str, task: Task) -> Outcome:
     assembly = _about_asked_axis(read_document(path), task)
     complaints = tuple(
         f"check failed: {finding.check.name}: {finding.check.text}"
-        for finding in findings_of(assembly) if not finding.check.ok
+        for finding in findings_of(assembly)
+        if not finding.check.ok
     )
     status = CHECK_FAILED if complaints else SOUND
     if task.format == "json":

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
-from core.assembly.assembly import Assembly
-from core.assembly.nodes import Part, Table
+if TYPE_CHECKING:
+    from core.assembly.assembly import Assembly
+    from core.assembly.nodes import Part, Table
 
 
 @dataclass(frozen=True, eq=False)
@@ -15,6 +17,7 @@ class Selection:
     Attributes:
         name: of the node, or of the document.
         table: their bodies as rows, in the document frame.
+
     """
 
     name: str
@@ -41,6 +44,7 @@ def selected(assembly: Assembly, key: str | None = None) -> Selection:
 
     Raises:
         EditRefused: no node has this key.
+
     """
     if key is None:
         return Selection(assembly.name, assembly.table)

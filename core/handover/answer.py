@@ -1,8 +1,8 @@
 """The answer of the command line as an object for JSON: SI units, full precision, whatever units are shown.
 
-Every answer has the same keys. Values that there are none of are None: mass and inertia where nothing says what a
-mesh weighs, everything about facets for a document. An inertia is about the centre of mass, along the axes of the
-file or document, in tensor elements (off-diagonal = −∫xy dm).
+Every answer has the same keys. Values that there are none of are None: mass and inertia where nothing says
+what a mesh weighs, everything about facets for a document. An inertia is about the centre of mass, along the
+axes of the file or document, in tensor elements (off-diagonal = −∫xy dm).
 """
 
 from __future__ import annotations
@@ -26,17 +26,34 @@ if TYPE_CHECKING:
 Answer: TypeAlias = dict[str, Any]
 
 KEYS: Final = (
-    "path", "triangles", "unit", "verdict", "closed", "open_edges", "shells", "basis", "area_m2", "volume_m3",
-    "mass_kg", "centre_m", "inertia_kgm2", "principal_kgm2", "principal_axes", "radii_m", "curved", "axis", "checks",
+    "path",
+    "triangles",
+    "unit",
+    "verdict",
+    "closed",
+    "open_edges",
+    "shells",
+    "basis",
+    "area_m2",
+    "volume_m3",
+    "mass_kg",
+    "centre_m",
+    "inertia_kgm2",
+    "principal_kgm2",
+    "principal_axes",
+    "radii_m",
+    "curved",
+    "axis",
+    "checks",
 )
 
 
 def answer_of_mesh(reading: MeshReading) -> Answer:
     """Return the answer on one mesh file.
 
-    Without a mass, `mass_kg`, `inertia_kgm2`, `principal_kgm2` and `axis.inertia_kgm2` are None; centre, principal
-    axes, radii of gyration and the axis' offset are those of the volume at uniform density. `radii_m` are about the
-    principal axes, in their order.
+    Without a mass, `mass_kg`, `inertia_kgm2`, `principal_kgm2` and `axis.inertia_kgm2` are None; centre,
+    principal axes, radii of gyration and the axis' offset are those of the volume at uniform density.
+    `radii_m` are about the principal axes, in their order.
     """
     survey = reading.survey
     values: Answer = {
@@ -78,7 +95,8 @@ def answer_of_assembly(assembly: Assembly, path: str) -> Answer:
         **_values(subject.body, subject.form, _volume(assembly)),
         "axis": {**(_axis(subject.body, subject.form, subject.axis) or {}), **spot},
         "checks": [
-            {**_check(finding.check), "part": finding.name, "key": finding.key} for finding in findings_of(assembly)
+            {**_check(finding.check), "part": finding.name, "key": finding.key}
+            for finding in findings_of(assembly)
         ],
         "ledger": [_line(line) for line in (*ledger.lines, ledger.total)],
     }
@@ -90,10 +108,11 @@ def answer_of_refusal(path: str, error: str) -> Answer:
 
 
 def json_text(value: Any, indent: str = "") -> str:
-    """Return JSON in ASCII, an object's members on lines of their own and a list of numbers or rows on one.
+    """Return JSON in ASCII: an object's members on lines of their own, a list of numbers or rows on one.
 
     Raises:
         ValueError: a number in it is not finite.
+
     """
     deeper = indent + "  "
     if isinstance(value, dict) and value:
@@ -118,7 +137,7 @@ def _values(body: Moments | None, form: Moments | None, volume: float | None) ->
 
 
 def radii_about_principal(form: Moments) -> FloatArray:
-    """Return the radii of gyration (3,) m about the principal axes through the centre, in the order of the moments."""
+    """Return the radii of gyration (3,) m about the principal axes through the centre, in their order."""
     return np.sqrt(np.maximum(form.principal.moments / form.mass, 0.0))
 
 
@@ -133,10 +152,20 @@ def _axis(body: Moments | None, form: Moments | None, axis: AxisLine | None) -> 
 
 def _line(line: Line) -> Answer:
     return {
-        "key": line.key, "name": line.name, "kind": line.kind, "depth": line.depth, "count": line.count,
-        "times": line.times, "material": line.material, "basis": line.basis, "mass_kg": line.mass,
-        "centre_m": None if line.centre is None else _listed(line.centre), "own_inertia_kgm2": line.own_inertia,
-        "transfer_kgm2": line.transfer, "inertia_kgm2": line.inertia, "share": line.share,
+        "key": line.key,
+        "name": line.name,
+        "kind": line.kind,
+        "depth": line.depth,
+        "count": line.count,
+        "times": line.times,
+        "material": line.material,
+        "basis": line.basis,
+        "mass_kg": line.mass,
+        "centre_m": None if line.centre is None else _listed(line.centre),
+        "own_inertia_kgm2": line.own_inertia,
+        "transfer_kgm2": line.transfer,
+        "inertia_kgm2": line.inertia,
+        "share": line.share,
     }
 
 

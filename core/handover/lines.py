@@ -8,12 +8,12 @@ from typing import TYPE_CHECKING, Final, Literal, TypeAlias
 
 import numpy as np
 
-from core.arrays import FloatArray
-from core.moments import Moments, Principal
 from core.placement import Triple
 from core.quantity.units import UNITS, Kind, Unit
 
 if TYPE_CHECKING:
+    from core.arrays import FloatArray
+    from core.moments import Moments, Principal
     from core.quantity import UnitSet
 
 FOR_THE_DRIVE: Final = "For the drive"
@@ -41,6 +41,7 @@ class SheetChoice:
         about: the point: the centre of mass, the origin of the frame, or a point in that frame, m.
         along: the frame's axes, or the principal axes of the body.
         products: as tensor elements (−∫xy dm) or as product integrals (+∫xy dm).
+
     """
 
     about: About = "centre"
@@ -60,6 +61,7 @@ class Entry:
         unit: in which it is shown.
         basis: where it came from.
         reason: why there is no value; "" where there is one.
+
     """
 
     section: str
@@ -83,7 +85,7 @@ class Entry:
 
 @dataclass(frozen=True)
 class AxisLine:
-    """An axis that J is asked about: through point (m) along direction (any length), in the subject's frame."""
+    """An axis that J is asked about: through point (m) along direction (any length), subject's frame."""
 
     name: str
     point: Triple
@@ -101,6 +103,7 @@ class Subject:
         axis: that J is asked about, if any.
         basis: where the values came from.
         reason: why there is no mass, and what gives one.
+
     """
 
     body: Moments | None
@@ -175,7 +178,10 @@ def _drive_lines(subject: Subject, units: UnitSet) -> list[Entry]:
         make.of(Kind.LENGTH, "k", f"Radius of gyration √(J/m) about {name}", _root(square)),
         make.of(Kind.LENGTH, "d", f"Offset of the centre of mass from {name}", offset),
         make.of(
-            Kind.INERTIA, "J_own", f"Own J: about the axis through the centre of mass, parallel to {name}", own
+            Kind.INERTIA,
+            "J_own",
+            f"Own J: about the axis through the centre of mass, parallel to {name}",
+            own,
         ),
         make.of(Kind.INERTIA, "m·d²", f"Parallel-axis term m·d² from the centre of mass to {name}", transfer),
     ]
@@ -216,7 +222,7 @@ def _tensor_lines(subject: Subject, choice: SheetChoice, units: UnitSet) -> list
 
 
 def product_words(pair: str, products: Products, element: float | None) -> tuple[str, str, float | None]:
-    """Return symbol, label with its sign convention, and value of a product of inertia given as tensor element.
+    """Return symbol, label with sign convention, and value of a product of inertia given as tensor element.
 
     >>> product_words("xy", "integral", -2.5)
     ('Pxy', 'Pxy (product integral, +∫xy dm)', 2.5)
@@ -229,7 +235,7 @@ def product_words(pair: str, products: Products, element: float | None) -> tuple
 
 
 def tensor_chosen(body: Moments, choice: SheetChoice) -> FloatArray:
-    """Return the inertia tensor (3, 3) kg·m², tensor elements, about the chosen point along the chosen axes."""
+    """Return the tensor (3, 3) kg·m², tensor elements, about the chosen point along the chosen axes."""
     if choice.about == "centre":
         tensor = body.inertia_about_centre
     else:

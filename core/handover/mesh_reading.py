@@ -32,10 +32,14 @@ class Weighing(Protocol):
     """What says how heavy a body is: a material, a density, or a weighed mass."""
 
     @property
-    def label(self) -> str: ...
+    def label(self) -> str:
+        """What says it, as shown."""
+        ...
 
     @property
-    def basis(self) -> str: ...
+    def basis(self) -> str:
+        """Where the mass comes from: computed or weighed."""
+        ...
 
     def mass_of(self, volume: float) -> float | None:
         """Return the mass in kg of a volume in m³, or None."""
@@ -59,6 +63,7 @@ class MeshReading:
         findings: further checks on the file.
         remarks: further sentences that belong beside the values.
         how_to_weigh: what gives a mass, as a clause for the reader.
+
     """
 
     name: str
@@ -121,6 +126,13 @@ class MeshReading:
         return None if self.geometry is None else float(self.geometry.mass)
 
     @property
+    def volume_label(self) -> str:
+        """What the volume that counts is called."""
+        if self.counts_restored and self.curved is not None:
+            return "Volume, curvature restored"
+        return "Volume, as faceted" if self.survey.basis == "computed" else f"Volume, {self.survey.basis}"
+
+    @property
     def area(self) -> float:
         """Area of the facets, m²."""
         return self.survey.area * self.unit.factor**2
@@ -138,9 +150,11 @@ class MeshReading:
             text = f"{self.name}: no length unit was given; {self.unit.symbol} was assumed."
             checks.append(Check("unit", ok=True, text=text))
         if self.body is not None:
-            # A round face reaches a little beyond its facets, so restored values get the faceted box's diagonal.
+            # A round face reaches a little beyond its facets: the box's diagonal leaves room for that.
             reach = float(np.linalg.norm(self.bounds[1] - self.bounds[0]))
-            checks += check_body(self.body, name=self.name, volume=self.volume, reach=reach, bounds=self.bounds)
+            checks += check_body(
+                self.body, name=self.name, volume=self.volume, reach=reach, bounds=self.bounds
+            )
         return tuple(checks)
 
     @property
@@ -168,10 +182,11 @@ class MeshReading:
         """What may make the values wrong."""
         if not self.unit_assumed:
             return ()
-        return (
-            f"An STL file says no length unit: {self.unit.symbol} was assumed. In another unit mass changes with the "
-            "third and inertia with the fifth power of the ratio.",
+        said = (
+            f"An STL file says no length unit: {self.unit.symbol} was assumed. In another unit mass changes "
+            "with the third and inertia with the fifth power of the ratio."
         )
+        return (said,)
 
     def _curvature_note(self) -> tuple[str, ...]:
         if self.faceted is None or self.curved is None:
@@ -181,10 +196,12 @@ class MeshReading:
             return ()
         moments = self.curved.principal.moments / self.faceted.principal.moments - 1
         counted = "as restored" if self.counts_restored else "as faceted"
-        return (
-            f"Restoring the curvature behind the facets changes the volume by {change:+.3%} and the principal moments "
-            f"at equal density by {moments.min():+.3%} to {moments.max():+.3%}; the values count the form {counted}.",
+        said = (
+            f"Restoring the curvature behind the facets changes the volume by {change:+.3%} and the "
+            f"principal moments at equal density by {moments.min():+.3%} to {moments.max():+.3%}; "
+            f"the values count the form {counted}."
         )
+        return (said,)
 
 
 @dataclass(frozen=True)
@@ -195,6 +212,7 @@ class MeshRequest:
         unit, unit_assumed, weighing, axis, how_to_weigh: as of a MeshReading.
         count_restored: make the restored values the ones that count, however many triangles there are.
         count_shells: count the shells, however many triangles there are.
+
     """
 
     unit: Unit
@@ -212,14 +230,21 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
     Raises:
         MeshFileError: no sound mesh file.
         Cancelled: progress was cancelled.
+
     """
     from core.mesh import count_shells, survey_file
 
     survey = survey_file(path, progress)
     cheap = survey.triangles <= CHEAP_TRIANGLES
     reading = MeshReading(
-        str(path), survey, request.unit, request.unit_assumed, request.weighing, request.axis,
-        counts_restored=request.count_restored, how_to_weigh=request.how_to_weigh,
+        str(path),
+        survey,
+        request.unit,
+        request.unit_assumed,
+        request.weighing,
+        request.axis,
+        counts_restored=request.count_restored,
+        how_to_weigh=request.how_to_weigh,
     )
     if cheap or request.count_shells:
         reading = replace(reading, shells=count_shells(path, progress))
@@ -227,7 +252,7 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
 
 
 def _with_curvature(reading: MeshReading, path: str | Path) -> MeshReading:
-    """Return the reading with its curvature restored, from the facets in memory, or with the reason why not."""
+    """Return the reading with its curvature restored, or with the reason why not."""
     from core.mesh.curvature import restore
     from core.mesh.stl import open_stl
     from core.mesh.survey import gathered

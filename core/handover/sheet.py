@@ -1,11 +1,21 @@
-"""The sheet: what is handed over to whoever chooses the drive, of an assembly, of one of its lines, or of a mesh."""
+"""The sheet: what is handed over to whoever chooses the drive, of an assembly, a line of it, or a mesh."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Final
 
-from core.handover.lines import MASS_AND_CENTRE, AxisLine, Entry, LineMaker, SheetChoice, Subject, lines_of, tie_note
+from core.handover.lines import (
+    FOR_THE_DRIVE,
+    MASS_AND_CENTRE,
+    AxisLine,
+    Entry,
+    LineMaker,
+    SheetChoice,
+    Subject,
+    lines_of,
+    tie_note,
+)
 from core.quantity.units import Kind
 
 if TYPE_CHECKING:
@@ -16,8 +26,8 @@ if TYPE_CHECKING:
     from core.quantity import UnitSet
 
 MARGIN_CAUTION: Final = (
-    "These values carry no margin and no allowance for what is not modelled. Rotating and lifted masses hurt people: "
-    "the applicable machine-safety standards, local codes and a responsible engineer decide."
+    "These values carry no margin and no allowance for what is not modelled. Rotating and lifted masses hurt "
+    "people: the applicable machine-safety standards, local codes and a responsible engineer decide."
 )
 NOTHING_WEIGHS: Final = "no part in it has a mass; set a material, a density or a weighed mass"
 _MOST_NAMES: Final = 8
@@ -30,6 +40,7 @@ class Source:
     Attributes:
         basis: computed, weighed, data sheet, estimated …, not set.
         text: of which parts, from what document.
+
     """
 
     basis: str
@@ -49,6 +60,7 @@ class Sheet:
         checks: every check on what is in it, the failed ones first.
         notes: what was noticed, which makes no value wrong.
         cautions: what may make the values wrong or harmful.
+
     """
 
     title: str
@@ -63,8 +75,10 @@ class Sheet:
     @property
     def sections(self) -> tuple[tuple[str, tuple[Entry, ...]], ...]:
         """The entries under their headings, in order."""
-        names = dict.fromkeys(entry.section for entry in self.entries)
-        return tuple((name, tuple(entry for entry in self.entries if entry.section == name)) for name in names)
+        found: dict[str, list[Entry]] = {}
+        for entry in self.entries:
+            found.setdefault(entry.section, []).append(entry)
+        return tuple((name, tuple(entries)) for name, entries in found.items())
 
     @property
     def failed(self) -> tuple[Check, ...]:
@@ -81,6 +95,7 @@ def sheet_of_assembly(
 
     Raises:
         EditRefused: no part or group has this key.
+
     """
     from core.assembly import findings_of
     from core.assembly.selection import selected
@@ -114,16 +129,16 @@ def subject_of_assembly(assembly: Assembly, key: str | None = None) -> Subject:
 
 
 def sheet_of_mesh(reading: MeshReading, choice: SheetChoice, unit_set: UnitSet) -> Sheet:
-    """Return the sheet of one mesh file: values in the file's frame, J about the reading's axis if it has one."""
+    """Return the sheet of one mesh file: values in the file's frame, J about the reading's axis if any."""
     subject = reading.subject
     make = LineMaker(MASS_AND_CENTRE, unit_set, subject.basis, subject.reason)
     geometry = (
-        make.of(Kind.VOLUME, "V", "Volume, curvature restored" if reading.counts_restored else "Volume, as faceted",
-                reading.volume),
+        make.of(Kind.VOLUME, "V", reading.volume_label, reading.volume),
         make.of(Kind.AREA, "A", "Surface area, as faceted", reading.area),
     )
     lines = lines_of(subject, choice, unit_set)
-    first = next((i for i, entry in enumerate(lines) if entry.section not in {"For the drive", MASS_AND_CENTRE}), 0)
+    above = {FOR_THE_DRIVE, MASS_AND_CENTRE}
+    first = next((i for i, entry in enumerate(lines) if entry.section not in above), 0)
     return Sheet(
         title=reading.name,
         entries=(*lines[:first], *geometry, *lines[first:]),

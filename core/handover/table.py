@@ -1,19 +1,20 @@
-"""Tables for a spreadsheet: every name, value and unit in a cell of its own, every number a number when it lands.
+"""Tables for a spreadsheet: name, value and unit in cells of their own, every number a number when it lands.
 
-Numbers are written with an ASCII minus, an E exponent and no marks between thousands, in full precision. Text that a
-spreadsheet would take for a formula gets an apostrophe in front; a number never does.
+Numbers are written with an ASCII minus, an E exponent and no marks between thousands, in full precision. Text
+that a spreadsheet would take for a formula gets an apostrophe in front; a number never does.
 """
 
 from __future__ import annotations
 
 import csv
 import io
-from collections.abc import Iterable, Sequence
 from typing import TYPE_CHECKING, Final, TypeAlias
 
 from core.quantity.formatting import NO_VALUE, for_clipboard
 
 if TYPE_CHECKING:
+    from collections.abc import Iterable, Sequence
+
     from core.handover.sheet import Sheet
 
 Cell: TypeAlias = str | float | int | None
@@ -34,10 +35,10 @@ def csv_of_sheet(sheet: Sheet, decimal_mark: str = ".") -> str:
 
 
 def tsv_of_block(rows: Iterable[Sequence[Cell]], decimal_mark: str = ".") -> str:
-    """Return any block of cells as tab-separated text: floats and ints as numbers, None as "–", the rest as text.
+    r"""Return a block of cells as tab-separated text: floats and ints as numbers, None as "–", else as text.
 
     >>> tsv_of_block([["J", -0.5, "kg·m²"], ["=1+1", None, ""]], ",")
-    "J\\t-0,5\\tkg·m²\\n'=1+1\\t–\\t\\n"
+    "J\t-0,5\tkg·m²\n'=1+1\t–\t\n"
     """
     return _written(rows, "\t", decimal_mark)
 
@@ -48,10 +49,15 @@ def csv_of_block(rows: Iterable[Sequence[Cell]], decimal_mark: str = ".") -> str
 
 
 def rows_of_sheet(sheet: Sheet) -> list[tuple[Cell, ...]]:
-    """Return the cells of a sheet: its title, a header, a row per value, then sources, failed checks and cautions."""
+    """Return the cells of a sheet: title, header, a row per value, sources, failed checks and cautions."""
     rows: list[tuple[Cell, ...]] = [("Sheet", "", "", sheet.title), _HEADER]
     rows += [
-        (entry.label, entry.value, entry.unit.symbol, entry.basis if entry.value is not None else entry.reason)
+        (
+            entry.label,
+            entry.value,
+            entry.unit.symbol,
+            entry.basis if entry.value is not None else entry.reason,
+        )
         for entry in sheet.entries
     ]
     rows += [("Source", "", "", f"{source.basis}: {source.text}") for source in sheet.sources]
@@ -62,7 +68,7 @@ def rows_of_sheet(sheet: Sheet) -> list[tuple[Cell, ...]]:
 
 
 def cell_text(cell: Cell, decimal_mark: str = ".") -> str:
-    """Return what stands in a cell: a number that reads back as the same double, or text that is no formula."""
+    """Return what stands in a cell: a number that reads back as the same double, or harmless text."""
     if cell is None:
         return NO_VALUE
     if isinstance(cell, str):

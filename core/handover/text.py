@@ -36,7 +36,9 @@ def text_of_sheet(sheet: Sheet, decimal_mark: str = ".", digits: int = DIGITS) -
         if entry.section != section:
             section = entry.section
             lines += ["", section]
-        lines.append(f"  {symbol:<{symbols}}  {_aligned(value, left, right, decimal_mark)}  {unit:<{units}}  {label}")
+        lines.append(
+            f"  {symbol:<{symbols}}  {_aligned(value, left, right, decimal_mark)}  {unit:<{units}}  {label}"
+        )
     reasons = dict.fromkeys(entry.reason for entry in sheet.entries if entry.value is None)
     marked = [(f"{NO_VALUE} ", reason) for reason in reasons]
     marked += [("check failed: ", f"{check.name}: {check.text}") for check in sheet.failed]
@@ -49,26 +51,37 @@ def text_of_sheet(sheet: Sheet, decimal_mark: str = ".", digits: int = DIGITS) -
 def text_of_ledger(ledger: Ledger, units: UnitSet, decimal_mark: str = ".", digits: int = DIGITS) -> str:
     """Return the ledger as a table: a line per part and group, and the total at the foot.
 
-    Columns: copies in the document, mass, own J, m·d² and J about the drive axis, share of the total J, basis.
+    Columns: copies in the document, mass, own J, m·d² and J about the drive axis, share of J, basis.
     """
     mass, inertia = units[Kind.MASS], units[Kind.INERTIA]
 
     def row(line: Line) -> tuple[str, ...]:
         values = (
-            (line.mass, mass, digits), (line.own_inertia, inertia, digits), (line.transfer, inertia, digits),
-            (line.inertia, inertia, digits), (line.share, None, _SHARE_DIGITS),
+            (line.mass, mass, digits),
+            (line.own_inertia, inertia, digits),
+            (line.transfer, inertia, digits),
+            (line.inertia, inertia, digits),
+            (line.share, None, _SHARE_DIGITS),
         )
         numbers = tuple(
-            NO_VALUE if value is None
-            else number_text(unit.from_si(value), decimal_mark, wanted) if unit
+            NO_VALUE
+            if value is None
+            else number_text(unit.from_si(value), decimal_mark, wanted)
+            if unit
             else number_text(100 * value, decimal_mark, wanted)
             for value, unit, wanted in values
         )
         return ("  " * line.depth + one_line(line.name), str(line.times), *numbers, one_line(line.basis))
 
     head = (
-        "Part", "×", f"Mass {mass.symbol}", f"Own J {inertia.symbol}", f"m·d² {inertia.symbol}",
-        f"J {inertia.symbol}", "Share %", "Basis",
+        "Part",
+        "×",
+        f"Mass {mass.symbol}",
+        f"Own J {inertia.symbol}",
+        f"m·d² {inertia.symbol}",
+        f"J {inertia.symbol}",
+        "Share %",
+        "Basis",
     )
     foot = ("TOTAL", *row(ledger.total)[1:])
     body = _columns([head, *(row(line) for line in ledger.lines), foot], decimal_mark)
@@ -100,16 +113,17 @@ def _widths(numbers: Sequence[str], decimal_mark: str) -> tuple[int, int]:
 
 def _aligned(number: str, left: int, right: int, decimal_mark: str) -> str:
     head = number.partition(decimal_mark)[0]
-    return f"{head:>{left}}{number[len(head):]:<{right}}"
+    return f"{head:>{left}}{number[len(head) :]:<{right}}"
 
 
 def _columns(rows: Sequence[tuple[str, ...]], decimal_mark: str) -> list[str]:
-    """Return the rows of a table, text to the left and numbers on their decimal marks; the first row is its head."""
+    """Return the lines of a table: text to the left, numbers on their decimal marks; the first row is its head."""
     columns = []
-    for i, (head, *cells) in enumerate(zip(*rows, strict=True)):
+    for i, (head, *texts) in enumerate(zip(*rows, strict=True)):
+        cells = texts
         if 0 < i < len(rows[0]) - 1:
             left, right = _widths(cells, decimal_mark)
-            cells = [_aligned(cell, left, right, decimal_mark) for cell in cells]
+            cells = [_aligned(cell, left, right, decimal_mark) for cell in texts]
             width = max(len(head), left + right)
             columns.append([f"{cell:>{width}}" for cell in (head, *cells)])
         else:
@@ -122,7 +136,11 @@ def _wrapped(paragraphs: Sequence[tuple[str, str]]) -> list[str]:
     lines: list[str] = []
     for head, text in paragraphs:
         lines += textwrap.wrap(
-            (head + one_line(text)).strip(), _WIDTH, initial_indent="  ", subsequent_indent="    ", break_long_words=False,
+            (head + one_line(text)).strip(),
+            _WIDTH,
+            initial_indent="  ",
+            subsequent_indent="    ",
+            break_long_words=False,
             break_on_hyphens=False,
         )
     return lines

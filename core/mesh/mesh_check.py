@@ -14,7 +14,7 @@ _MEND = "Mend it where it was made and export it again."
 
 
 def check_mesh(survey: MeshSurvey, name: str) -> Check:
-    """Return whether a mesh bounds a volume that is known exactly, or within what its hairline cracks leave open."""
+    """Return whether a mesh bounds a volume that is known, exactly or within what its cracks leave open."""
     ok = survey.verdict in _SOUND and survey.solid is not None
     edges = f"{survey.open_edges} open edge{'' if survey.open_edges == 1 else 's'}"
     found = f"{name}: the mesh is {survey.verdict}"
@@ -34,5 +34,7 @@ def _crack_words(survey: MeshSurvey) -> str:
         return ""
     volume = survey.crack_volume / float(survey.solid.mass)
     smallest = float(survey.solid.principal.moments[0])
-    inertia = f", the smallest moment of inertia by {survey.crack_inertia / smallest:.2g}" if smallest > 0 else ""
+    inertia = (
+        f", the smallest moment of inertia by {survey.crack_inertia / smallest:.2g}" if smallest > 0 else ""
+    )
     return f" The cracks change the volume by at most {volume:.2g} of it{inertia}."
