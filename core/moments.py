@@ -77,20 +77,20 @@ class Moments:
         Raises:
             ValueRefused: the tensor is not symmetric.
         """
-        inertia = np.asarray(inertia_about_centre, dtype=float)
-        skew = np.abs(inertia - np.swapaxes(inertia, -1, -2)).max()
-        if skew > 1e-9 * np.abs(inertia).max():
-            raise ValueRefused("an inertia tensor is symmetric", read=f"elements that differ by {skew:.3g} kg·m²")
-        return cls(mass, centre, spread_of_inertia(inertia))
+        return cls(mass, centre, spread_of_inertia(_symmetric(inertia_about_centre)))
 
     @classmethod
     def from_inertia_about_point(cls, mass: ArrayLike, centre: ArrayLike, point: ArrayLike, inertia: ArrayLike) -> Self:
         """Return the moments of a body whose inertia tensor about some point (..., 3) in m is known.
 
         The tensor (..., 3, 3) in kg·m² lies along the axes of the frame in which point and centre are given.
+
+        Raises:
+            ValueRefused: the tensor is not symmetric.
         """
         mass_, lever = np.asarray(mass, dtype=float), np.asarray(centre, dtype=float) - np.asarray(point, dtype=float)
-        return cls.from_inertia(mass, centre, np.asarray(inertia, dtype=float) - _transfer(mass_, lever))
+        # Judged before the transfer term is taken off: what is then left of a point mass is round-off.
+        return cls(mass, centre, spread_of_inertia(_symmetric(inertia) - _transfer(mass_, lever)))
 
     @property
     def inertia_about_centre(self) -> FloatArray:
@@ -217,6 +217,15 @@ def spread_of_inertia(inertia_about_centre: ArrayLike) -> FloatArray:
     inertia = np.asarray(inertia_about_centre, dtype=float)
     half_trace = 0.5 * np.trace(inertia, axis1=-2, axis2=-1)
     return np.asarray(half_trace[..., None, None] * _IDENTITY - inertia)
+
+
+def _symmetric(inertia: ArrayLike) -> FloatArray:
+    """Return an inertia tensor (..., 3, 3) as an array, or refuse it."""
+    tensor = np.asarray(inertia, dtype=float)
+    skew = np.abs(tensor - np.swapaxes(tensor, -1, -2)).max()
+    if skew > 1e-9 * np.abs(tensor).max():
+        raise ValueRefused("an inertia tensor is symmetric", read=f"elements that differ by {skew:.3g} kg·m²")
+    return tensor
 
 
 def inertia_of_spread(spread: ArrayLike) -> FloatArray:

@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 from functools import cached_property
 
 from core.arrays import FloatArray, frozen
-from core.assembly.nodes import Group, Node, Part, Table, joined, walk
+from core.assembly.nodes import MOST_BODIES, Group, Node, Part, Table, joined, walk
 from core.errors import EditRefused
 from core.moments import Moments, unit_vector
 from core.placement import Triple
@@ -57,12 +57,14 @@ class Assembly:
                 "one of the axes has to be the drive axis, and each needs a name of its own",
                 read=f"{self.drive!r} among {', '.join(names) or 'none'}",
             )
-        self._paths  # noqa: B018  # refuses double keys and bottomless nesting at once
+        self._paths  # noqa: B018  # refuses double keys, bottomless nesting and too many bodies at once
 
     @cached_property
     def _paths(self) -> dict[str, tuple[int, ...]]:
         paths: dict[str, tuple[int, ...]] = {}
         trail: list[int] = []
+        times: list[int] = []
+        bodies = 0
         for node, depth in walk(self.members):
             if depth >= DEEPEST:
                 raise EditRefused(f"groups nest at most {DEEPEST} deep", where=node.name)
@@ -70,6 +72,13 @@ class Assembly:
             if node.key in paths:
                 raise EditRefused("two lines have the same key", where=node.name, read=node.key)
             paths[node.key] = tuple(trail)
+            times[depth:] = [(times[depth - 1] if depth else 1) * node.copies.count]
+            bodies += times[depth] if isinstance(node, Part) else 0
+            if bodies > MOST_BODIES:
+                raise EditRefused(
+                    f"an assembly holds at most {MOST_BODIES} bodies", where=node.name,
+                    remedy="Make a ring, row or quantity smaller",
+                )
         return paths
 
     @property

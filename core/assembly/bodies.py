@@ -103,7 +103,8 @@ class KnownTensor:
     @property
     def entry_checks(self) -> tuple[Check, ...]:
         """The checks on the tensor as it was entered, about the point it is quoted about."""
-        return tuple(check_inertia_tensor(self.mass, tensor_of_six(self.tensor), "data sheet"))
+        lever = self.centre if self.about == "origin" else (0.0, 0.0, 0.0)
+        return tuple(check_inertia_tensor(self.mass, tensor_of_six(self.tensor), "data sheet", lever=lever))
 
 
 @dataclass(frozen=True)

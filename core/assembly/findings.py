@@ -27,17 +27,21 @@ class Finding:
 def findings_of(assembly: Assembly) -> tuple[Finding, ...]:
     """Return every check on every part, in the order of the ledger, and then those on the total."""
     found = [Finding(part.key, part.name, check) for part in assembly.table.parts for check in part.checks]
-    found += [Finding(part.key, part.name, check) for part in assembly.table.parts for check in _oblique(assembly, part)]
+    found += [
+        Finding(part.key, part.name, check)
+        for index, part in enumerate(assembly.table.parts)
+        for check in _oblique(assembly, part, index)
+    ]
     if assembly.table.parts and len(assembly.without_mass) < len(assembly.table.parts):
         found += [Finding("", assembly.name, check) for check in _total_checks(assembly)]
     return tuple(found)
 
 
-def _oblique(assembly: Assembly, part: Part) -> tuple[Check, ...]:
+def _oblique(assembly: Assembly, part: Part, index: int) -> tuple[Check, ...]:
     """Tell where the drive axis sees inertia that a data sheet did not give."""
     if not isinstance(part.body, KnownAxial):
         return ()
-    rows = assembly.table.standing.turn[[assembly.table.parts[i] is part for i in assembly.table.owner]]
+    rows = assembly.table.standing.turn[assembly.table.owner == index]
     tilt = np.linalg.norm(np.cross(rows[..., 2], assembly.drive_axis.unit), axis=-1).max()
     if tilt < OBLIQUE:
         return ()

@@ -275,6 +275,13 @@ def test_a_direction_without_a_length_is_refused(direction):
     )
 
 
+def test_a_point_mass_quoted_about_a_point_beside_it_is_no_unsymmetric_tensor():
+    mass, centre = 0.7, np.array([0.1, 0.2, 0.3])
+    about_origin = tensor_of_points(np.array([mass]), centre[None], np.zeros(3))
+    body = Moments.from_inertia_about_point(mass, centre, np.zeros(3), about_origin)
+    np.testing.assert_allclose(body.spread, 0, rtol=0, atol=1e-15 * np.abs(about_origin).max())
+
+
 def test_an_unsymmetric_tensor_is_refused():
     tensor = [[1, 0.25, 0], [0.5, 1, 0], [0, 0, 1]]
     with pytest.raises(ValueRefused) as refusal:
