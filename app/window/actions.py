@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
@@ -16,6 +15,8 @@ from core.quantity import UNIT_SETS
 from core.shapes import SHAPES
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from app.window.main import MainWindow
 
 Keys = QKeySequence.StandardKey

@@ -1,10 +1,9 @@
-"""A crash loses at most ten seconds of work: unsaved work is written to the state folder, and offered at the next start."""
+"""A crash loses at most ten seconds of work: it is written to the state folder, and offered at the next start."""
 
 from __future__ import annotations
 
 import os
 from concurrent.futures import Future, ThreadPoolExecutor
-from pathlib import Path
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, QTimer
@@ -14,6 +13,8 @@ from core.document import read_document, save_document
 from core.errors import MasswrightError
 
 if TYPE_CHECKING:
+    from pathlib import Path
+
     from app.window.session import Session
     from core.assembly import Assembly
 

@@ -33,6 +33,7 @@ def grouped(assembly: Assembly, keys: frozenset[str], key: str) -> Assembly:
 
     Raises:
         EditRefused: the lines are not all in the same group.
+
     """
     outer = [each for each in keys if not any(above.key in keys for above in assembly.groups_above(each))]
     homes = {tuple(above.key for above in assembly.groups_above(each)) for each in outer}
@@ -41,7 +42,8 @@ def grouped(assembly: Assembly, keys: frozenset[str], key: str) -> Assembly:
         return assembly.inserted(group)
     if len(homes) > 1:
         raise EditRefused(
-            "lines of different groups cannot be put into one new group", remedy="Select lines that stand in the same group"
+            "lines of different groups cannot be put into one new group",
+            remedy="Select lines that stand in the same group",
         )
     home = next(iter(homes))
     holder = assembly.node(home[-1]) if home else None

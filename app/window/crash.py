@@ -5,12 +5,15 @@ from __future__ import annotations
 import logging
 import sys
 import traceback
-from pathlib import Path
-from types import TracebackType
+from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, Qt, Signal
 from PySide6.QtGui import QGuiApplication
 from PySide6.QtWidgets import QApplication, QMessageBox
+
+if TYPE_CHECKING:
+    from pathlib import Path
+    from types import TracebackType
 
 LOG_NAME = "errors.log"
 MOST_BYTES = 1_000_000

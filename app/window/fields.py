@@ -2,11 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtGui import QKeyEvent
 from PySide6.QtWidgets import QComboBox, QFormLayout, QHBoxLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
 
 from app.window.style import GRID, Words, heading_font
@@ -14,6 +12,10 @@ from core.errors import MasswrightError
 from core.quantity import Kind, Understood, Unit, compact, parse
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from PySide6.QtGui import QKeyEvent
+
     from app.window.session import Session
 
 LABEL_WIDTH = 148

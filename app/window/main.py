@@ -3,14 +3,22 @@
 from __future__ import annotations
 
 import sys
-from collections.abc import Callable
 from dataclasses import replace
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QEvent, Qt, QTimer
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QGuiApplication
 from PySide6.QtWidgets import (
-    QApplication, QDialog, QFileDialog, QMainWindow, QMessageBox, QSplitter, QStackedWidget, QTabWidget, QVBoxLayout,
+    QApplication,
+    QDialog,
+    QFileDialog,
+    QMainWindow,
+    QMessageBox,
+    QSplitter,
+    QStackedWidget,
+    QTabWidget,
+    QVBoxLayout,
     QWidget,
 )
 
@@ -32,6 +40,9 @@ from app.window.style import Words, dress, icon
 from app.window.view import ViewPane, prepare_opengl
 from core.assembly import Part, walk
 from core.quantity import UNIT_SETS, Kind
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
 
 DOCUMENT = ".masswright"
 DOCUMENTS = f"Masswright documents (*{DOCUMENT})"
@@ -341,7 +352,8 @@ class MainWindow(QMainWindow):
         if not self.session.unsaved:
             go_on()
             return
-        box = QMessageBox(QMessageBox.Icon.NoIcon, "Unsaved work", f"{self.session.title} has unsaved changes.", parent=self)
+        words = f"{self.session.title} has unsaved changes."
+        box = QMessageBox(QMessageBox.Icon.NoIcon, "Unsaved work", words, parent=self)
         save = box.addButton("Save", QMessageBox.ButtonRole.AcceptRole)
         drop = box.addButton("Do not save", QMessageBox.ButtonRole.DestructiveRole)
         box.addButton("Cancel", QMessageBox.ButtonRole.RejectRole)
@@ -374,7 +386,8 @@ class MainWindow(QMainWindow):
         """Say what this is, which version, and what its numbers are not."""
         from importlib.metadata import version
 
-        box = QMessageBox(QMessageBox.Icon.NoIcon, "About Masswright", f"Masswright {version('masswright')}", parent=self)
+        words = f"Masswright {version('masswright')}"
+        box = QMessageBox(QMessageBox.Icon.NoIcon, "About Masswright", words, parent=self)
         box.setInformativeText(
             "Mass, centre of mass and inertia of what a drive has to move.\n\n"
             "Values carry no margin. Rotating and lifted masses hurt people: the applicable machine-safety standards, "

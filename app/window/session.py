@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from pathlib import Path
+from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, Signal
 
@@ -12,6 +11,10 @@ from core.document import read_document, save_document
 from core.errors import MasswrightError
 from core.history import History
 from core.quantity import DEFAULT_UNITS, UnitSet
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+    from pathlib import Path
 
 
 class Session(QObject):

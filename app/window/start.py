@@ -2,14 +2,17 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QSize, Qt
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QMenu, QPushButton, QToolButton, QVBoxLayout, QWidget
 
 import app
 from app.window.style import GRID, Words, colours, heading_font, icon
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
 
 SAMPLE = Path(app.__file__).resolve().parents[1] / "sample_parts" / "indexing_dial.masswright"
 

@@ -92,7 +92,8 @@ def _repaint(application: QApplication) -> None:
 def _sheet(c: Colours) -> str:
     return f"""
     QToolTip {{ background: {c.ground}; color: {c.text}; border: 1px solid {c.hairline}; padding: 4px; }}
-    QToolBar {{ background: {c.raised}; border: 0; border-bottom: 1px solid {c.hairline}; spacing: 4px; padding: 4px 8px; }}
+    QToolBar {{ background: {c.raised}; border: 0; border-bottom: 1px solid {c.hairline}; spacing: 4px;
+                padding: 4px 8px; }}
     QToolButton {{ padding: 4px 8px; border: 1px solid transparent; border-radius: 3px; min-height: 24px; }}
     QToolButton:hover, QToolButton:focus {{ border-color: {c.blue}; }}
     QToolButton:pressed {{ background: {c.selection}; }}

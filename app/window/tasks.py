@@ -2,14 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from concurrent.futures import Future, ThreadPoolExecutor
-from typing import Generic, TypeVar
+from typing import TYPE_CHECKING, Generic, TypeVar
 
 from PySide6.QtCore import QObject, QTimer
 
 from core.errors import Cancelled, MasswrightError
 from core.progress import Progress
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
 
 Result = TypeVar("Result")
 POLL_MS = 40
@@ -23,6 +25,7 @@ class Task(QObject, Generic[Result]):
         done: called with its result, in the window's thread.
         failed: called with the sentence of a refusal, in the window's thread.
         moved: called with the fraction done, now and then.
+
     """
 
     def __init__(

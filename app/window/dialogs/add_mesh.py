@@ -8,8 +8,16 @@ from typing import TYPE_CHECKING
 import numpy as np
 from PySide6.QtCore import Qt
 from PySide6.QtWidgets import (
-    QAbstractItemView, QCheckBox, QDialog, QDialogButtonBox, QHeaderView, QProgressBar, QTableWidget, QTableWidgetItem,
-    QVBoxLayout, QWidget,
+    QAbstractItemView,
+    QCheckBox,
+    QDialog,
+    QDialogButtonBox,
+    QHeaderView,
+    QProgressBar,
+    QTableWidget,
+    QTableWidgetItem,
+    QVBoxLayout,
+    QWidget,
 )
 
 from app.window.fields import Form, TextField
@@ -71,7 +79,8 @@ class AddMeshDialog(QDialog):
         form = Form()
         form.add("made of", self.material, "A material's name, a density, or the mass one piece was weighed at.")
         unit = Words("A mesh file does not say its length unit. Choose the line whose size is right.", "quiet")
-        for widget in (self.file, self.bar, self.verdict, form, unit, self.table, self.all_alike, self.wrong, self.buttons):
+        below = (self.table, self.all_alike, self.wrong, self.buttons)
+        for widget in (self.file, self.bar, self.verdict, form, unit, *below):
             layout.addWidget(widget)
         self.setMinimumWidth(600)
 
@@ -136,7 +145,8 @@ class AddMeshDialog(QDialog):
             return ""
         unit = self._session.units[Kind.LENGTH]
         low, high = self._asset.survey.bounds * factor
-        return " × ".join(shown(self._session, float(extent), unit) for extent in np.subtract(high, low)) + f" {unit.symbol}"
+        sides = " × ".join(shown(self._session, float(extent), unit) for extent in np.subtract(high, low))
+        return f"{sides} {unit.symbol}"
 
     def _weight(self, factor: float) -> str:
         if self._asset is None or self._asset.survey.solid is None:

@@ -97,7 +97,9 @@ class KnownPartDialog(QDialog):
     def _body(self) -> KnownAxial | KnownTensor | None:
         mass, centre, about = self.mass.read(), self.centre.read(), self.about.currentData()
         if not about:
-            self.wrong.setText("Choose what the data sheet's inertia is about; the same number means another body about another point.")
+            self.wrong.setText(
+                "Choose what the data sheet's inertia is about: about another point, the same number is another body."
+            )
         if mass is None or centre is None or not about:
             return None
         source = self.source.text().strip()

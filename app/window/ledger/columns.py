@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
-from core.assembly import Line
 from core.quantity import Kind
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from core.assembly import Line
 
 
 @dataclass(frozen=True)
@@ -20,6 +24,7 @@ class Column:
         value: the number in SI, or the text, of a line; None where there is none.
         tip: what it means and how it is formed.
         digits: significant digits shown.
+
     """
 
     key: str

@@ -6,7 +6,15 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QAbstractItemModel, QModelIndex, QPersistentModelIndex, QPoint, QRect, QSize, Qt
 from PySide6.QtGui import QColor, QFont, QPainter, QPen
-from PySide6.QtWidgets import QCompleter, QLineEdit, QStyle, QStyledItemDelegate, QStyleOptionViewItem, QToolTip, QWidget
+from PySide6.QtWidgets import (
+    QCompleter,
+    QLineEdit,
+    QStyle,
+    QStyledItemDelegate,
+    QStyleOptionViewItem,
+    QToolTip,
+    QWidget,
+)
 
 from app.window.ledger.columns import COLUMNS, INDEX
 from app.window.ledger.model import LINE_ROLE, LedgerModel
@@ -135,6 +143,7 @@ def _paint_share(painter: QPainter, rect: QRect, line: Line, text: str, c: Colou
     figure = painter.fontMetrics().horizontalAdvance("100.0 %")
     room = rect.width() - figure - GRID
     if line.share is not None and room > 0:
-        bar = QRect(rect.left(), rect.center().y() - BAR_HEIGHT // 2 + 1, max(1, round(room * min(line.share, 1.0))), BAR_HEIGHT)
+        length = max(1, round(room * min(line.share, 1.0)))
+        bar = QRect(rect.left(), rect.center().y() - BAR_HEIGHT // 2 + 1, length, BAR_HEIGHT)
         painter.fillRect(bar, QColor(c.blue if line.kind == "part" else c.quiet))
     painter.drawText(rect, int(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter), text)

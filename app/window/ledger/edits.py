@@ -2,14 +2,17 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import replace
+from typing import TYPE_CHECKING
 
 from core.assembly import Assembly, DataSheet, Driver, Group, Part
 from core.errors import EditRefused, QuantityError
 from core.material import ByDensity, ByMaterial, NotSet, Weighed, material
 from core.placement import Mirrored
 from core.quantity import UNITS, Kind, UnitSet, parse
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
 
 
 def renamed(key: str, text: str) -> Callable[[Assembly], Assembly]:
@@ -34,7 +37,9 @@ def counted(key: str, text: str) -> Callable[[Assembly], Assembly]:
                 "a quantity is a whole number", where=node.name, read=f'"{text}"', remedy="Type how many there are"
             )
         if isinstance(node.copies, Mirrored):
-            raise EditRefused("a mirrored part is there twice", where=node.name, remedy="Change how it repeats on the Part page")
+            raise EditRefused(
+                "a mirrored part is there twice", where=node.name, remedy="Change how it repeats on the Part page"
+            )
         return assembly.replaced(replace(node, copies=replace(node.copies, count=int(text))))
 
     return change
@@ -74,6 +79,7 @@ def driver_of(text: str, units: UnitSet, where: str) -> Driver:
 
     Raises:
         MaterialError, QuantityError: neither.
+
     """
     words = text.strip()
     if not words:

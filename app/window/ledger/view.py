@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QByteArray, QItemSelectionModel, QModelIndex, QPoint, Qt, Signal
@@ -15,6 +14,8 @@ from app.window.ledger.model import COPY_ROLE, FootModel, LedgerModel
 from core.handover import tsv_of_block
 
 if TYPE_CHECKING:
+    from collections.abc import Iterable
+
     from app.window.session import Session
 
 WIDTHS = {"name": 220, "count": 52, "material": 190, "mass": 96, "x": 84, "y": 84, "z": 84, "own": 112, "transfer": 112,
@@ -97,7 +98,8 @@ class LedgerTree(QTreeView):
         if event.key() in {Qt.Key.Key_Delete, Qt.Key.Key_Backspace}:
             event.ignore()
             return
-        if event.key() in {Qt.Key.Key_Return, Qt.Key.Key_Enter} and self.state() != QAbstractItemView.State.EditingState:
+        editing = self.state() == QAbstractItemView.State.EditingState
+        if event.key() in {Qt.Key.Key_Return, Qt.Key.Key_Enter} and not editing:
             self.edit(self.currentIndex())
             return
         super().keyPressEvent(event)
@@ -118,16 +120,15 @@ class LedgerTree(QTreeView):
         chosen = {(index.internalId(), index.column()): index for index in self.selectedIndexes()}
         columns = [at for at in shown if any(column == at for _, column in chosen)]
         rows = [row for row in _rows(self, QModelIndex()) if any(key[0] == row.internalId() for key in chosen)]
-        return [
-            [str(chosen[row.internalId(), at].data(COPY_ROLE)) if (row.internalId(), at) in chosen else "" for at in columns]
-            for row in rows
-        ]
+        cells = {place: str(index.data(COPY_ROLE)) for place, index in chosen.items()}
+        return [[cells.get((row.internalId(), at), "") for at in columns] for row in rows]
 
     def headings(self) -> list[str]:
         """Return the headings of the columns of the block, with their units."""
         header = self.header()
         columns = sorted({index.column() for index in self.selectedIndexes()}, key=header.visualIndex)
-        texts = (str(self.lines.headerData(at, Qt.Orientation.Horizontal, Qt.ItemDataRole.DisplayRole)) for at in columns)
+        across, shown = Qt.Orientation.Horizontal, Qt.ItemDataRole.DisplayRole
+        texts = (str(self.lines.headerData(at, across, shown)) for at in columns)
         return [_heading(*text.partition("\n")[::2]) for text in texts]
 
 

@@ -11,10 +11,10 @@ from app.window.pages.section import NumberChange, Section, typed_for, with_comp
 from core.assembly import KnownAxial, KnownTensor, MeshBody, Node, Part, ShapeBody
 from core.errors import EditRefused
 from core.quantity import UNITS, Kind
-from core.shapes import Dimension, Shape
 
 if TYPE_CHECKING:
     from app.window.session import Session
+    from core.shapes import Dimension, Shape
 
 MESH_UNITS = ("mm", "cm", "m", "in", "ft")
 TENSOR_LABELS = ("Ixx", "Iyy", "Izz", "Ixy", "Ixz", "Iyz")
@@ -30,7 +30,8 @@ class ShapeSection(Section):
         form.heading(f"Dimensions of the {shape.title}")
         self._fields: dict[str, QuantityField] = {}
         for dimension in shape.dimensions:
-            field = QuantityField(session, dimension.label, _kind(dimension), UNITS["°"] if dimension.kind == "angle" else None)
+            unit = UNITS["°"] if dimension.kind == "angle" else None
+            field = QuantityField(session, dimension.label, _kind(dimension), unit)
             form.add(f"{dimension.label} {dimension.symbol}".rstrip(), field)
             self.bind(field, dimension.label, f"dimension.{dimension.name}", _resized(dimension.name))
             self._fields[dimension.name] = field

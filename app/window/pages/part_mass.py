@@ -14,11 +14,11 @@ from app.window.pages.section import Section, typed_for
 from core.assembly import Driver, Node, Part
 from core.errors import EditRefused
 from core.material import MATERIALS, ByDensity, ByMaterial, NotSet, Weighed, material
-from core.moments import Moments
 from core.quantity import Kind
 
 if TYPE_CHECKING:
     from app.window.session import Session
+    from core.moments import Moments
 
 DRIVERS: list[tuple[str, object]] = [
     ("not set yet", NotSet),

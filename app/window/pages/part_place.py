@@ -8,13 +8,13 @@ from typing import TYPE_CHECKING
 
 from app.window.fields import ChoiceField, Form, QuantityField, TripleField
 from app.window.pages.section import NumberChange, Section, typed_for, with_component
-from core.assembly import Node
 from core.errors import QuantityError
 from core.placement import Copies, Mirrored, Ring, Row, Several
 from core.quantity import UNITS, Kind
 
 if TYPE_CHECKING:
     from app.window.session import Session
+    from core.assembly import Node
 
 PATTERNS: list[tuple[str, object]] = [
     ("at one place", Several),

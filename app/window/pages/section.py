@@ -6,10 +6,10 @@ from collections.abc import Callable
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
-from app.window.fields import Form, QuantityField
 from core.assembly import Assembly, Node
 
 if TYPE_CHECKING:
+    from app.window.fields import Form, QuantityField
     from app.window.session import Session
 
 # A change to one line: the line as it is in, the line as it is to be out.

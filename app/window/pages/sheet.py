@@ -21,7 +21,10 @@ Index = QModelIndex | QPersistentModelIndex
 SYMBOL, LABEL, VALUE, UNIT, COPY = range(5)
 ABOUT: list[tuple[str, object]] = [("centre of mass", "centre"), ("document's origin", "origin")]
 ALONG: list[tuple[str, object]] = [("document's axes", "document"), ("principal axes", "principal")]
-PRODUCTS: list[tuple[str, object]] = [("tensor elements, −∫xy dm", "tensor"), ("product integrals, +∫xy dm", "integral")]
+PRODUCTS: list[tuple[str, object]] = [
+    ("tensor elements, −∫xy dm", "tensor"),
+    ("product integrals, +∫xy dm", "integral"),
+]
 OF: list[tuple[str, object]] = [("whole assembly", "whole"), ("selected line", "selected")]
 SHOWN_DIGITS = 5
 
@@ -61,26 +64,18 @@ class SheetModel(QAbstractTableModel):
         row = self.rows[index.row()]
         if isinstance(row, str):
             return self._heading_data(row, index.column(), role)
-        column = index.column()
-        if role == Qt.ItemDataRole.DisplayRole:
-            value = shown(self._session, row.si, row.unit, SHOWN_DIGITS)
-            return (row.symbol, short_label(row), value, row.unit.symbol, "copy" if row.si is not None else "")[column]
+        if role in {Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole, Qt.ItemDataRole.AccessibleTextRole}:
+            return self._text(row, index.column(), role)
+        return _look(index.column(), role)
+
+    def _text(self, entry: Entry, column: int, role: int) -> str:
+        value = shown(self._session, entry.si, entry.unit, SHOWN_DIGITS)
         if role == Qt.ItemDataRole.ToolTipRole:
-            return f"{row.label}\n{row.reason or row.basis}".strip()
-        if role == Qt.ItemDataRole.TextAlignmentRole:
-            side = Qt.AlignmentFlag.AlignRight if column in {VALUE, COPY} else Qt.AlignmentFlag.AlignLeft
-            return int(side | Qt.AlignmentFlag.AlignVCenter)
-        if role == Qt.ItemDataRole.ForegroundRole:
-            c = colours()
-            return QColor({SYMBOL: c.quiet, UNIT: c.quiet, COPY: c.blue}.get(column, c.text))
-        if role == Qt.ItemDataRole.FontRole:
-            font = QFont()
-            font.setItalic(column == SYMBOL)
-            font.setBold(column == VALUE)
-            return font
+            return f"{entry.label}\n{entry.reason or entry.basis}".strip()
         if role == Qt.ItemDataRole.AccessibleTextRole:
-            return f"{row.label} {shown(self._session, row.si, row.unit, SHOWN_DIGITS)} {row.unit.symbol}"
-        return None
+            return f"{entry.label} {value} {entry.unit.symbol}"
+        copy = "copy" if entry.si is not None else ""
+        return (entry.symbol, short_label(entry), value, entry.unit.symbol, copy)[column]
 
     @staticmethod
     def _heading_data(text: str, column: int, role: int) -> object:
@@ -99,6 +94,22 @@ class SheetModel(QAbstractTableModel):
         if isinstance(self.rows[index.row()], str):
             return Qt.ItemFlag.ItemIsEnabled
         return Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable
+
+
+def _look(column: int, role: int) -> object:
+    """Return alignment, colour or font of a value's cells."""
+    if role == Qt.ItemDataRole.TextAlignmentRole:
+        side = Qt.AlignmentFlag.AlignRight if column in {VALUE, COPY} else Qt.AlignmentFlag.AlignLeft
+        return int(side | Qt.AlignmentFlag.AlignVCenter)
+    if role == Qt.ItemDataRole.ForegroundRole:
+        c = colours()
+        return QColor({SYMBOL: c.quiet, UNIT: c.quiet, COPY: c.blue}.get(column, c.text))
+    if role == Qt.ItemDataRole.FontRole:
+        font = QFont()
+        font.setItalic(column == SYMBOL)
+        font.setBold(column == VALUE)
+        return font
+    return None
 
 
 def _name(row: Entry | str) -> str:
@@ -207,7 +218,8 @@ class SheetPage(QWidget):
         header.resizeSection(SYMBOL, 56)
         header.setSectionResizeMode(LABEL, QHeaderView.ResizeMode.Stretch)
         of_line = self.of.currentData() == "selected"
-        hint = "Select one line to see its values; these are of the whole assembly. " if of_line and not self._key() else ""
+        astray = of_line and not self._key()
+        hint = "Select one line to see its values; these are of the whole assembly. " if astray else ""
         self.told.setText(" ".join([f"{hint}{sheet.title}: {sheet.basis}.", *sheet.notes, *sheet.cautions]))
 
     def copy_row(self, row: int) -> None:
