@@ -1,25 +1,31 @@
 """A scene packed for drawing: few large arrays in single precision, relative to the middle of the scene.
 
-Small surfaces are laid out copy by copy into one batch, so that an assembly of a thousand parts is one draw call; a
-large surface is a batch of its own that is drawn once for each of its placements.
+Small surfaces are laid out copy by copy into one batch, so that an assembly of a thousand parts is one draw
+call; a large surface is a batch of its own that is drawn once for each of its placements.
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
-from numpy.typing import NDArray
 
-from app.window.view.camera import Camera
-from app.window.view.palette import Theme
-from app.window.view.scene import Bodies, Scene
-from app.window.view.surface import Float32Array, Surface, Uint32Array
-from core.arrays import BoolArray, FloatArray, IntArray
+if TYPE_CHECKING:
+    from collections.abc import Callable, Iterable
+
+    from numpy.typing import NDArray
+
+    from app.window.view.camera import Camera
+    from app.window.view.palette import Theme
+    from app.window.view.scene import Bodies, Scene
+    from app.window.view.surface import Float32Array, Surface, Uint32Array
+    from core.arrays import BoolArray, FloatArray, IntArray
 
 # A surface of more triangles than this is drawn from one buffer for all its copies.
 LARGE = 20_000
+OPAQUE = 255
+_SEE_THROUGH, _SELECTED_THROUGH, _GHOST = 96, 150, 110
 # Rims are looked for among at most so many edges.
 MOST_RIMS = 600_000
 
@@ -34,6 +40,7 @@ class Batch:
         owner: (k,) which body of the scene (scene.everybody) a vertex is of.
         placements: (n, 4, 4).
         closed: whether only the outside of its surfaces can be seen.
+
     """
 
     vertices: Float32Array
@@ -52,6 +59,7 @@ class Lines:
         sharp: (e, 2, 3); sharp_owner: (e,) which body each is of.
         rims: (s, 2, 3), rim_normals: (s, 2, 3), rim_owner: (s,): edges that are drawn only where the surface
             turns away from the viewer in them.
+
     """
 
     sharp: Float32Array
@@ -114,11 +122,14 @@ def face_colours(scene: Scene, emphasis: Emphasis, theme: Theme) -> NDArray[np.u
     """Return the colour of each body of scene.everybody, (b, 4) red, green, blue and opacity."""
     colours = np.empty((len(scene.everybody), 4), dtype=np.uint8)
     for index, bodies in enumerate(scene.everybody):
-        colour, opacity = theme.parts[bodies.tint % len(theme.parts)], 96 if emphasis.see_through else 255
+        colour, opacity = (
+            theme.parts[bodies.tint % len(theme.parts)],
+            _SEE_THROUGH if emphasis.see_through else OPAQUE,
+        )
         if bodies is scene.ghost:
-            colour, opacity = theme.ghost, 110
+            colour, opacity = theme.ghost, _GHOST
         elif bodies.key in emphasis.selected:
-            colour, opacity = theme.selected, 150 if emphasis.see_through else 255
+            colour, opacity = theme.selected, _SELECTED_THROUGH if emphasis.see_through else OPAQUE
         elif bodies.key == emphasis.hovered:
             colour = theme.hovered
         colours[index] = (*colour, opacity)
@@ -159,8 +170,12 @@ def _merged(entries: Iterable[tuple[int, Bodies, Surface]], centre: FloatArray) 
         start += copies * size
         closed &= surface.closed
     return Batch(
-        np.concatenate(vertices), np.concatenate(normals), np.concatenate(faces), np.concatenate(owner),
-        np.eye(4)[None], closed,
+        np.concatenate(vertices),
+        np.concatenate(normals),
+        np.concatenate(faces),
+        np.concatenate(owner),
+        np.eye(4)[None],
+        closed,
     )
 
 
@@ -178,8 +193,11 @@ def _lines(scene: Scene, surface_for: Callable[[Bodies], Surface]) -> Lines:
             rim_owner.append(np.full(len(rims[-1]), index, dtype=np.int64))
     nothing, nobody = np.zeros((0, 2, 3), dtype=np.float32), np.zeros(0, dtype=np.int64)
     return Lines(
-        np.concatenate([nothing, *sharp]), np.concatenate([nobody, *sharp_owner]), np.concatenate([nothing, *rims]),
-        np.concatenate([nothing, *rim_normals]), np.concatenate([nobody, *rim_owner]),
+        np.concatenate([nothing, *sharp]),
+        np.concatenate([nobody, *sharp_owner]),
+        np.concatenate([nothing, *rims]),
+        np.concatenate([nothing, *rim_normals]),
+        np.concatenate([nobody, *rim_owner]),
     )
 
 

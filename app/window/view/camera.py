@@ -1,7 +1,7 @@
 """Where the scene is seen from: a turntable camera as an immutable value, with its matrices.
 
-Lengths in m in the document frame, angles in rad, positions on the screen in logical pixels from the upper left
-corner. The camera frame has x to the right, y up and z towards the viewer, its origin at the target.
+Lengths in m in the document frame, angles in rad, positions on the screen in logical pixels from the upper
+left corner. The camera frame has x to the right, y up and z towards the viewer, its origin at the target.
 """
 
 from __future__ import annotations
@@ -19,7 +19,8 @@ Size: TypeAlias = tuple[float, float]
 # Half the height of the picture as an angle: a long lens, so that round parts keep their shape.
 HALF_FIELD = np.radians(13.0)
 
-# Azimuth and elevation of the camera's place, seen from the target. Front looks along +y, x to the right, z up.
+# Azimuth and elevation of the camera's place, seen from the target. Front looks along +y, x to the right, z
+# up.
 LOOKS: dict[LookName, tuple[float, float]] = {
     "front": (-np.pi / 2, 0.0),
     "back": (np.pi / 2, 0.0),
@@ -44,6 +45,7 @@ class Camera:
         distance: m, from the eye to the target; in parallel projection it sets the scale alone.
         azimuth, elevation: rad, where the eye stands as seen from the target.
         parallel: whether parallel lines stay parallel.
+
     """
 
     target: FloatArray
@@ -58,7 +60,12 @@ class Camera:
     @property
     def axes(self) -> FloatArray:
         """Right, up and backward directions of the camera as rows, (3, 3), in the document frame."""
-        ca, sa, ce, se = np.cos(self.azimuth), np.sin(self.azimuth), np.cos(self.elevation), np.sin(self.elevation)
+        ca, sa, ce, se = (
+            np.cos(self.azimuth),
+            np.sin(self.azimuth),
+            np.cos(self.elevation),
+            np.sin(self.elevation),
+        )
         return np.array([[-sa, ca, 0.0], [-se * ca, -se * sa, ce], [ce * ca, ce * sa, se]])
 
     @property
@@ -67,7 +74,7 @@ class Camera:
         return np.asarray(self.target + self.distance * self.axes[2])
 
     def view_matrix(self, origin: ArrayLike) -> FloatArray:
-        """Return the matrix (4, 4) from points relative to origin (3,) m to eye coordinates (depth = −z)."""
+        """Return the matrix (4, 4) from points relative to origin (3,) m to eye coordinates."""
         axes, matrix = self.axes, np.eye(4)
         matrix[:3, :3] = axes
         matrix[:3, 3] = axes @ (np.asarray(origin, dtype=float) - self.target) - [0.0, 0.0, self.distance]
@@ -102,14 +109,19 @@ class Camera:
         return np.asarray((np.asarray(points, dtype=float) - self.target) @ self.axes.T)
 
     def project(self, points: ArrayLike, size: Size) -> FloatArray:
-        """Return x and y in pixels and the depth from the eye in m of points (..., 3); behind the eye depth < 0."""
+        """Return x and y in pixels and the depth in m of points (..., 3); behind the eye it is negative."""
         local = self.in_camera(points)
         depth = self.distance - local[..., 2]
         scale = 0.5 * size[1] / np.tan(HALF_FIELD)
         away = np.full_like(depth, self.distance) if self.parallel else depth
         away = np.where(np.abs(away) < _NEAREST * self.distance, _NEAREST * self.distance, away)
         return np.stack(
-            [0.5 * size[0] + scale * local[..., 0] / away, 0.5 * size[1] - scale * local[..., 1] / away, depth], axis=-1
+            [
+                0.5 * size[0] + scale * local[..., 0] / away,
+                0.5 * size[1] - scale * local[..., 1] / away,
+                depth,
+            ],
+            axis=-1,
         )
 
     def ray(self, spot: tuple[float, float], size: Size) -> tuple[FloatArray, FloatArray]:
@@ -125,7 +137,7 @@ class Camera:
         return float(2 * self.distance * np.tan(HALF_FIELD) / size[1])
 
     def orbited(self, turn: float, tilt: float) -> Camera:
-        """Return the camera turned about z by turn and raised by tilt (rad), at most to straight above or below."""
+        """Return the camera turned about z and raised by tilt (rad), at most to straight above or below."""
         elevation = float(np.clip(self.elevation + tilt, -np.pi / 2, np.pi / 2))
         azimuth = float(np.remainder(self.azimuth + turn + np.pi, 2 * np.pi) - np.pi)
         return replace(self, azimuth=azimuth, elevation=elevation)
@@ -136,11 +148,13 @@ class Camera:
         return replace(self, target=self.target - step * (right * self.axes[0] - down * self.axes[1]))
 
     def zoomed(self, factor: float, spot: tuple[float, float], size: Size) -> Camera:
-        """Return the camera factor times nearer; what lies at the target's depth under the spot stays there."""
+        """Return the camera factor times nearer; what lies under the spot at the target's depth stays there."""
         distance = float(np.clip(self.distance / factor, _NEAREST, _FARTHEST))
         kept = distance / self.distance
         return replace(
-            self, distance=distance, target=self.target + (1 - kept) * self._offset_on_target_plane(spot, size)
+            self,
+            distance=distance,
+            target=self.target + (1 - kept) * self._offset_on_target_plane(spot, size),
         )
 
     def looking(self, name: LookName) -> Camera:
@@ -153,10 +167,10 @@ class Camera:
         return replace(self, parallel=parallel)
 
     def fitted(self, points: ArrayLike, size: Size, inset: float) -> Camera:
-        """Return the nearest camera of this direction that shows all points (n, 3) m, inset pixels off the frame.
+        """Return the nearest camera of this direction that shows all points (n, 3) m inside an inset in pixels.
 
-        In the camera frame a point is inside when |x − cx| ≤ (d − z)·t for the half field t, and the same in y:
-        linear in centre and distance, so the smallest distance is d = (max(x + z·t) − min(x − z·t)) / 2t.
+        In the camera frame a point is inside when |x − cx| ≤ (d − z)·t for the half field t, and the same in
+        y: linear in centre and distance, so the smallest distance is d = (max(x + z·t) − min(x − z·t)) / 2t.
         """
         spots = np.asarray(points, dtype=float).reshape(-1, 3)
         middle = 0.5 * (spots.min(axis=0) + spots.max(axis=0))
@@ -172,7 +186,9 @@ class Camera:
             floor += float(local[:, 2].max())
         centre = 0.5 * (high + low)
         return replace(
-            self, distance=max(distance, floor), target=middle + centre[0] * self.axes[0] + centre[1] * self.axes[1]
+            self,
+            distance=max(distance, floor),
+            target=middle + centre[0] * self.axes[0] + centre[1] * self.axes[1],
         )
 
     def _offset_on_target_plane(self, spot: tuple[float, float], size: Size) -> FloatArray:

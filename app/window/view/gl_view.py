@@ -2,45 +2,61 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import TYPE_CHECKING, Any, cast
 
 import numpy as np
 from OpenGL import GL
-from PySide6.QtCore import Qt
-from PySide6.QtGui import QMatrix4x4, QSurfaceFormat
-from PySide6.QtWidgets import QWidget
 from pyqtgraph.opengl import GLLinePlotItem, GLMeshItem, GLViewWidget
 from pyqtgraph.opengl.items.GLMeshItem import DirtyFlag
 from pyqtgraph.opengl.shaders import FragmentShader, ShaderProgram, VertexShader
+from PySide6.QtCore import Qt
+from PySide6.QtGui import QMatrix4x4, QSurfaceFormat
 
-from app.window.view.batch import Batch, Packed, face_colours, line_ranks, packed
-from app.window.view.palette import Colour
+from app.window.view.batch import OPAQUE, Batch, Packed, face_colours, line_ranks, packed
 from app.window.view.picture import Picture, qcolor, size_of
-from app.window.view.scene import Bodies, Scene
 from app.window.view.shading import EDGE_WIDTHS, LIGHT_TERMS, MOST_MOVING
-from app.window.view.surface import Float32Array, Surface
+
+if TYPE_CHECKING:
+    from PySide6.QtWidgets import QWidget
+
+    from app.window.view.palette import Colour
+    from app.window.view.scene import Bodies, Scene
+    from app.window.view.surface import Float32Array, Surface
 
 _SHADER = "masswright soft"
 # Faces are pushed back a little in depth, so that the lines on them are whole.
 _SOLID: dict[Any, Any] = {
-    GL.GL_DEPTH_TEST: True, GL.GL_BLEND: False, GL.GL_CULL_FACE: False, GL.GL_POLYGON_OFFSET_FILL: True,
-    "glPolygonOffset": (1.0, 1.0), "glDepthMask": (True,),
+    GL.GL_DEPTH_TEST: True,
+    GL.GL_BLEND: False,
+    GL.GL_CULL_FACE: False,
+    GL.GL_POLYGON_OFFSET_FILL: True,
+    "glPolygonOffset": (1.0, 1.0),
+    "glDepthMask": (True,),
 }
 _SEE_THROUGH: dict[Any, Any] = {
-    **_SOLID, GL.GL_BLEND: True, "glDepthMask": (False,),
+    **_SOLID,
+    GL.GL_BLEND: True,
+    GL.GL_CULL_FACE: True,
+    "glDepthMask": (False,),
     "glBlendFuncSeparate": (GL.GL_SRC_ALPHA, GL.GL_ONE_MINUS_SRC_ALPHA, GL.GL_ONE, GL.GL_ONE_MINUS_SRC_ALPHA),
 }
 _LINES: dict[Any, Any] = {
-    GL.GL_DEPTH_TEST: True, GL.GL_BLEND: False, GL.GL_POLYGON_OFFSET_FILL: False, "glDepthMask": (True,),
+    GL.GL_DEPTH_TEST: True,
+    GL.GL_BLEND: False,
+    GL.GL_CULL_FACE: False,
+    GL.GL_POLYGON_OFFSET_FILL: False,
+    "glDepthMask": (True,),
 }
 
 
 def _make_shader() -> None:
-    """Compile-on-demand shader: a key light from the upper left of the viewer, and a little more light from above."""
+    """Register the shader: a lamp at the upper left of the viewer, and a little more light from above."""
     base, key, sky, direction = LIGHT_TERMS
     x, y, z = direction
-    ShaderProgram(_SHADER, [
-        VertexShader("""
+    ShaderProgram(
+        _SHADER,
+        [
+            VertexShader("""
             uniform mat4 u_mvp;
             uniform mat3 u_normal;
             attribute vec4 a_position;
@@ -54,7 +70,7 @@ def _make_shader() -> None:
                 gl_Position = u_mvp * a_position;
             }
         """),
-        FragmentShader(f"""
+            FragmentShader(f"""
             #ifdef GL_ES
             precision mediump float;
             #endif
@@ -68,7 +84,8 @@ def _make_shader() -> None:
                 gl_FragColor = vec4(v_color.rgb * light, v_color.a);
             }}
         """),
-    ])
+        ],
+    )
 
 
 class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
@@ -76,6 +93,7 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
 
     def __init__(self, batch: Batch) -> None:
         self._here = QMatrix4x4()
+        self._solid = True
         self._dirty = DirtyFlag(0)
         super().__init__(glOptions="opaque", shader=_SHADER)
         self.batch = batch
@@ -87,28 +105,41 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
         """Give each vertex the colour of its body; see-through when the body is."""
         self.colors = np.ascontiguousarray(of_bodies[self.batch.owner])
         self._dirty |= DirtyFlag.COLOR
-        solid = bool((self.colors[:, 3] == 255).all())
-        self.setGLOptions(_SOLID if solid else _SEE_THROUGH)
-        self.setDepthValue(0 if solid else 10)
+        self._solid = bool((self.colors[:, 3] == OPAQUE).all())
+        self.setGLOptions(_SOLID if self._solid else _SEE_THROUGH)
+        self.setDepthValue(0 if self._solid else 10)
 
     def parseMeshData(self) -> DirtyFlag:  # noqa: N802 - the base class's hook: says which buffers to send
         dirty, self._dirty = self._dirty, DirtyFlag(0)
         return dirty
 
     def paint(self) -> None:
-        for self._here in self._placements:
-            super().paint()
+        for placement in self._placements:
+            self._here = placement
+            if self._solid:
+                super().paint()
+                continue
+            # What is see-through is blended far side first: the inside of the surface, then its outside.
+            for side in (GL.GL_FRONT, GL.GL_BACK):
+                self.updateGLOptions({"glCullFace": (side,)})
+                super().paint()
 
     def mvpMatrix(self) -> QMatrix4x4:  # noqa: N802
-        return super().mvpMatrix() * self._here
+        return cast("QMatrix4x4", super().mvpMatrix() * self._here)
 
     def modelViewMatrix(self) -> QMatrix4x4:  # noqa: N802
-        return super().modelViewMatrix() * self._here
+        return cast("QMatrix4x4", super().modelViewMatrix() * self._here)
 
     def release(self) -> None:
         """Give the buffers back; the context is current."""
-        for buffer in (self.m_vbo_position, self.m_vbo_normal, self.m_vbo_color, self.m_ibo_faces,
-                       self.m_vbo_edgeVerts, self.m_ibo_edges):
+        for buffer in (
+            self.m_vbo_position,
+            self.m_vbo_normal,
+            self.m_vbo_color,
+            self.m_ibo_faces,
+            self.m_vbo_edgeVerts,
+            self.m_ibo_edges,
+        ):
             buffer.destroy()
 
 
@@ -173,7 +204,7 @@ class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
         self._shown = (scene, light)
 
     def _set_lines(self, picture: Picture) -> None:
-        assert self._shown is not None  # noqa: S101 - set just before
+        assert self._shown is not None
         lines = self._pack(picture.scene, light=self._shown[1]).lines
         ranks = line_ranks(picture.scene, picture.emphasis)
         seen = lines.rims_seen(picture.camera, picture.scene.centre)
@@ -193,7 +224,7 @@ class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
         GL.glDepthMask(True)
         GL.glDisable(GL.GL_POLYGON_OFFSET_FILL)
 
-    def drawItemTree(self, item: Any = None, useItemNames: bool = False) -> None:  # noqa: ARG002, N802, N803
+    def drawItemTree(self, item: Any = None, useItemNames: bool = False) -> None:  # noqa: ARG002, N802
         """Draw the items in their order. Unlike the base class's, an error while drawing is not swallowed."""
         for drawn in sorted(self.items, key=lambda entry: entry.depthValue()):
             if drawn.visible():
@@ -229,5 +260,3 @@ def _full_surface(bodies: Bodies) -> Surface:
 
 def _light_surface(bodies: Bodies) -> Surface:
     return bodies.surface.light
-
-

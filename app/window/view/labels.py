@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass
 from itertools import product
-from typing import TypeAlias
+from typing import TYPE_CHECKING, TypeAlias
 
 import numpy as np
+
+if TYPE_CHECKING:
+    from collections.abc import Sequence
 
 Box: TypeAlias = tuple[float, float, float, float]
 
@@ -23,6 +25,7 @@ class Wish:
         anchor: x and y of the point it names, px.
         size: width and height of its text, px.
         toward: the direction (x, y down; any length) in which it would best stand off the point.
+
     """
 
     anchor: tuple[float, float]
@@ -31,7 +34,7 @@ class Wish:
 
 
 def places(wishes: Sequence[Wish], frame: tuple[float, float], taken: Sequence[Box] = ()) -> list[Box | None]:
-    """Return a box (left, top, width, height) for each label, earlier ones first; None where there is no room.
+    """Return a box (left, top, width, height) for each label, the first ones first; None without room.
 
     Boxes lie inside the frame (width, height), and touch neither each other nor the boxes taken already.
     """
@@ -53,9 +56,7 @@ def _candidates(wish: Wish) -> list[Box]:
     for gap, swing in product(_GAPS, _SWINGS):
         dx, dy = np.cos(angle + np.radians(swing)), np.sin(angle + np.radians(swing))
         # How far the box's middle is from its rim along the direction, so that the gap is left free.
-        reach = min(
-            0.5 * width / abs(dx) if abs(dx) > 1e-9 else np.inf, 0.5 * height / abs(dy) if abs(dy) > 1e-9 else np.inf
-        )
+        reach = min(0.5 * width / max(abs(dx), 1e-9), 0.5 * height / max(abs(dy), 1e-9))
         x, y = wish.anchor[0] + dx * (gap + reach), wish.anchor[1] + dy * (gap + reach)
         boxes.append((float(x - width / 2), float(y - height / 2), width, height))
     return boxes
@@ -67,7 +68,9 @@ def _inside(box: Box, frame: tuple[float, float]) -> bool:
 
 def _touches(box: Box, others: Sequence[Box]) -> bool:
     return any(
-        box[0] < other[0] + other[2] and other[0] < box[0] + box[2]
-        and box[1] < other[1] + other[3] and other[1] < box[1] + box[3]
+        box[0] < other[0] + other[2]
+        and other[0] < box[0] + box[2]
+        and box[1] < other[1] + other[3]
+        and other[1] < box[1] + box[3]
         for other in others
     )

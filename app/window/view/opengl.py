@@ -1,10 +1,12 @@
 """Getting OpenGL ready, and finding out whether there is any.
 
 Order, in the program's main function:
-1. `share_contexts()` before the QApplication is made: a second view, or one that moves to another window, would
+1. `share_contexts()` before the QApplication is made: a second view, or one that moves to another window,
+would
    otherwise be blank.
 2. make the QApplication.
-3. `prepare_opengl()` before the first view: only now is it known which window system Qt has chosen, and PyOpenGL has
+3. `prepare_opengl()` before the first view: only now is it known which window system Qt has chosen, and
+PyOpenGL has
    to talk to the same one. It must run before pyqtgraph.opengl is imported for the first time.
 """
 
@@ -24,7 +26,7 @@ _WITHOUT_OPENGL = {"offscreen", "minimal", "vnc", "linuxfb"}
 
 
 def share_contexts() -> None:
-    """Ask Qt, before the application is made, for contexts that share their resources, and for OpenGL proper."""
+    """Ask Qt, before the application is made, for contexts that share, and for OpenGL proper."""
     QCoreApplication.setAttribute(Qt.ApplicationAttribute.AA_ShareOpenGLContexts)
     chosen = QSurfaceFormat.defaultFormat()
     chosen.setRenderableType(QSurfaceFormat.RenderableType.OpenGL)

@@ -1,4 +1,4 @@
-"""The marks over the picture: drive axis, principal axes, centre of mass, document axes, names, note and focus.
+"""The marks over the picture: drive axis, principal axes, centre of mass, document axes, names, focus.
 
 They are drawn with QPainter in every kind of view, so that they look the same with and without OpenGL.
 """
@@ -6,6 +6,7 @@ They are drawn with QPainter in every kind of view, so that they look the same w
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
 from PySide6.QtCore import QPointF, QRectF, Qt
@@ -13,10 +14,12 @@ from PySide6.QtGui import QFont, QFontMetricsF, QPainter, QPainterPath, QPaintEv
 from PySide6.QtWidgets import QWidget
 
 from app.window.view.labels import Box, Wish, places
-from app.window.view.palette import Colour
 from app.window.view.picture import Picture, qcolor, size_of
-from app.window.view.scene import Line
-from core.arrays import FloatArray
+
+if TYPE_CHECKING:
+    from app.window.view.palette import Colour
+    from app.window.view.scene import Line
+    from core.arrays import FloatArray
 
 # ISO 128 chain line, narrow: long dash, gap, dot, gap, in line widths.
 CHAIN = (16.0, 3.0, 0.6, 3.0)
@@ -24,6 +27,10 @@ _AXIS_WIDTH, _ARROW_WIDTH, _CASING = 1.4, 1.8, 3.0
 _HEAD_LENGTH, _HEAD_WIDTH = 11.0, 7.0
 _DISC = 7.0
 _TRIAD, _TRIAD_AT = 26.0, 44.0
+# A document axis that leans this far away is drawn lighter; one as short as this on the screen is a point.
+_AWAY, _END_ON = -0.2, 0.15
+# So many parts that stand out are named in the picture; more would hide it.
+_MOST_NAMED = 3
 
 
 @dataclass(frozen=True)
@@ -59,9 +66,10 @@ class Overlay(QWidget):
             return
         painter = QPainter(self)
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        names = [*self._draw_principal(painter, picture), *self._draw_axis(painter, picture)]
+        names = self._draw_axis(painter, picture)
+        names += self._draw_principal(painter, picture)
         taken = [self._draw_centre(painter, picture)] if picture.scene.mass_centre is not None else []
-        names += self._draw_triad(painter, picture)
+        names += [*self._draw_triad(painter, picture), *self._emphasised(picture)]
         self._draw_note(painter, picture)
         self._draw_names(painter, picture, names, [*taken, *self._note_box()])
         if self.focused:
@@ -96,7 +104,8 @@ class Overlay(QWidget):
         if np.hypot(run.x(), run.y()) < _DISC:
             # Seen end on, an axis is a small centre cross.
             for dx, dy in ((10.0, 0.0), (0.0, 10.0)):
-                self._stroke(painter, picture, end - QPointF(dx, dy), end + QPointF(dx, dy), theme.drive, _AXIS_WIDTH)
+                cross = (end - QPointF(dx, dy), end + QPointF(dx, dy))
+                self._stroke(painter, picture, cross, theme.drive, _AXIS_WIDTH)
         else:
             self._case(painter, picture, start, end, _AXIS_WIDTH)
             pen = QPen(qcolor(theme.drive), _AXIS_WIDTH)
@@ -132,7 +141,7 @@ class Overlay(QWidget):
         painter.setPen(QPen(qcolor(picture.theme.casing, 170), _CASING))
         painter.setBrush(Qt.BrushStyle.NoBrush)
         painter.drawPolygon(head)
-        self._stroke(painter, picture, start, neck, picture.theme.principal, _ARROW_WIDTH, cased=False)
+        self._stroke(painter, picture, (start, neck), picture.theme.principal, _ARROW_WIDTH, cased=False)
         painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(qcolor(picture.theme.principal))
         painter.drawPolygon(head)
@@ -163,12 +172,34 @@ class Overlay(QWidget):
         for index in np.argsort(directions[:, 2]):
             right, up, toward = directions[index]
             tip = middle + QPointF(right, -up) * _TRIAD
-            pen = QPen(qcolor(picture.theme.text, 255 if toward > -0.2 else 150), 1.3)
+            pen = QPen(qcolor(picture.theme.text, 255 if toward > _AWAY else 150), 1.3)
             pen.setCapStyle(Qt.PenCapStyle.RoundCap)
             painter.setPen(pen)
             painter.drawLine(middle, tip)
-            if np.hypot(right, up) > 0.15:
+            if np.hypot(right, up) < _END_ON:
+                painter.setBrush(qcolor(picture.theme.text))
+                painter.drawEllipse(middle, 1.6, 1.6)
+            else:
                 names.append(self._name("xyz"[index], tip, tip - middle, picture.theme.text))
+        return names
+
+    def _emphasised(self, picture: Picture) -> list[_Name]:
+        """Return the names of the parts that stand out, each above the nearest of its copies."""
+        emphasis, axes = picture.emphasis, picture.camera.axes
+        keys = set(emphasis.selected if len(emphasis.selected) <= _MOST_NAMED else ()) | {emphasis.hovered}
+        names = []
+        for bodies in picture.scene.everybody:
+            if bodies.key not in keys and bodies is not picture.scene.ghost:
+                continue
+            bounds = bodies.surface.bounds
+            middles = bodies.turn @ bounds.mean(axis=0) + bodies.shift
+            nearest = int((middles @ axes[2]).argmax())
+            # The highest point of the box on the screen.
+            reach = 0.5 * np.ptp(bounds, axis=0) @ np.abs(bodies.turn[nearest].T @ axes[1])
+            spot = self._spots(picture, middles[nearest] + 0.8 * reach * axes[1])
+            if spot[2] > 0:
+                at = QPointF(spot[0], spot[1])
+                names.append(self._name(bodies.name, at, QPointF(0.0, -1.0), picture.theme.selected_edge))
         return names
 
     def _name(self, text: str, at: QPointF, toward: QPointF, colour: Colour, *, bold: bool = False) -> _Name:
@@ -210,10 +241,16 @@ class Overlay(QWidget):
         painter.drawLine(start, end)
 
     def _stroke(
-        self, painter: QPainter, picture: Picture, start: QPointF, end: QPointF, colour: Colour, width: float,
-        *, cased: bool = True,
+        self,
+        painter: QPainter,
+        picture: Picture,
+        ends: tuple[QPointF, QPointF],
+        colour: Colour,
+        width: float,
+        *,
+        cased: bool = True,
     ) -> None:
         if cased:
-            self._case(painter, picture, start, end, width)
+            self._case(painter, picture, *ends, width)
         painter.setPen(QPen(qcolor(colour), width))
-        painter.drawLine(start, end)
+        painter.drawLine(*ends)

@@ -7,10 +7,8 @@ from typing import TYPE_CHECKING, Protocol, cast
 
 import numpy as np
 from PySide6.QtCore import QEvent, QPointF, QSize, Qt, QTimer, Signal
-from PySide6.QtGui import QFocusEvent, QKeyEvent, QMouseEvent, QResizeEvent, QWheelEvent
 from PySide6.QtWidgets import QWidget
 
-from app.window.view.batch import Emphasis
 from app.window.view.camera import Camera, LookName, Size
 from app.window.view.opengl import opengl_works, prepare_opengl
 from app.window.view.overlay import Overlay
@@ -19,21 +17,30 @@ from app.window.view.picture import Picture, size_of, theme_of
 from app.window.view.scene import Scene, SurfaceStore, scene_of
 
 if TYPE_CHECKING:
+    from PySide6.QtGui import QFocusEvent, QKeyEvent, QMouseEvent, QResizeEvent, QShowEvent, QWheelEvent
+
     from core.assembly import Assembly, Part
 
 TOOL_TIP = (
-    "Drag turns the view; drag with Shift or with the middle button moves it; the wheel zooms to the pointer.\n"
-    "A click selects a part, with Ctrl or Shift one more.\n"
-    "F shows everything; 1–7: front, back, left, right, top, bottom, isometric; arrow keys turn; + and − zoom."
+    "Drag turns the view; drag with Shift or with the middle button moves it; the wheel zooms to the\n"
+    "pointer. A click selects a part, with Ctrl or Shift one more. F shows everything; 1–7: front, back, left,\n"
+    "right, top, bottom, isometric; arrow keys turn; + and − zoom."
 )
 
 _KEYS: dict[int, LookName] = {
-    Qt.Key.Key_1: "front", Qt.Key.Key_2: "back", Qt.Key.Key_3: "left", Qt.Key.Key_4: "right",
-    Qt.Key.Key_5: "top", Qt.Key.Key_6: "bottom", Qt.Key.Key_7: "iso",
+    Qt.Key.Key_1: "front",
+    Qt.Key.Key_2: "back",
+    Qt.Key.Key_3: "left",
+    Qt.Key.Key_4: "right",
+    Qt.Key.Key_5: "top",
+    Qt.Key.Key_6: "bottom",
+    Qt.Key.Key_7: "iso",
 }
 _ARROWS: dict[int, tuple[float, float]] = {
-    Qt.Key.Key_Left: (1.0, 0.0), Qt.Key.Key_Right: (-1.0, 0.0),
-    Qt.Key.Key_Up: (0.0, 1.0), Qt.Key.Key_Down: (0.0, -1.0),
+    Qt.Key.Key_Left: (1.0, 0.0),
+    Qt.Key.Key_Right: (-1.0, 0.0),
+    Qt.Key.Key_Up: (0.0, 1.0),
+    Qt.Key.Key_Down: (0.0, -1.0),
 }
 _ARROW_STEP = np.radians(7.5)
 _TURN_PER_PIXEL = np.radians(0.45)
@@ -61,7 +68,7 @@ def make_view(parent: QWidget) -> QWidget:
         prepare_opengl()
         from app.window.view.gl_view import GlView
 
-        return cast(QWidget, GlView(parent))
+        return cast("QWidget", GlView(parent))
     from app.window.view.soft_view import SoftView
 
     return SoftView(parent)
@@ -71,8 +78,8 @@ class ViewPane(QWidget):
     """Shows an assembly in space.
 
     Signals:
-        picked(str, bool): the key of the part that was clicked ("" for empty space), and whether it joins what is
-            selected already.
+        picked(str, bool): the key of the part that was clicked ("" for empty space), and whether it joins what
+            is selected already.
         hovered(str): the key of the part under the pointer, "" for none.
     """
 
@@ -123,7 +130,9 @@ class ViewPane(QWidget):
         """Return a size at which an assembly of some parts reads well."""
         return QSize(560, 440)
 
-    def show_assembly(self, assembly: Assembly, selected: frozenset[str] = frozenset(), hovered: str | None = None) -> None:
+    def show_assembly(
+        self, assembly: Assembly, selected: frozenset[str] = frozenset(), hovered: str | None = None
+    ) -> None:
         """Show an assembly, the parts with these keys selected, and lit up the one that the pointer is on."""
         emphasis = replace(self._picture.emphasis, selected=selected, hovered=hovered or None)
         was_empty = not self.scene.everybody
@@ -278,9 +287,9 @@ class ViewPane(QWidget):
         self._overlay.setGeometry(self.rect())
         self._redraw(moving=self._picture.moving)
 
-    def showEvent(self, event: QEvent) -> None:  # type: ignore[override] # noqa: N802 - Qt's hook
+    def showEvent(self, event: QShowEvent) -> None:  # noqa: N802 - Qt's hook
         """Fit the scene that was given before there was a size."""
-        super().showEvent(event)  # type: ignore[arg-type]
+        super().showEvent(event)
         self._redraw(moving=False)
 
     def changeEvent(self, event: QEvent) -> None:  # noqa: N802 - Qt's hook

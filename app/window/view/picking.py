@@ -1,4 +1,4 @@
-"""What lies under the pointer, found on the CPU: the boxes of all bodies first, then the triangles of the near ones."""
+"""What lies under the pointer, found on the CPU: the boxes of all bodies, then triangles of the near ones."""
 
 from __future__ import annotations
 
@@ -7,11 +7,10 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.arrays import BoolArray, FloatArray
-
 if TYPE_CHECKING:
     from app.window.view.scene import Bodies, Scene
     from app.window.view.surface import Surface
+    from core.arrays import BoolArray, FloatArray
 
 
 @dataclass(frozen=True)
@@ -22,6 +21,7 @@ class Hit:
         key: of its part.
         copy: which of the part's copies, in the order of the assembly's table.
         distance: m along the ray.
+
     """
 
     key: str
@@ -32,7 +32,7 @@ class Hit:
 def pick(scene: Scene, start: FloatArray, direction: FloatArray) -> Hit | None:
     """Return the first body on the ray from start (3,) m along the unit direction (3,), or None.
 
-    What lies behind the start counts as well in no case; triangles are hit from both sides.
+    What lies behind the start does not count; triangles are hit from both sides.
     """
     candidates: list[tuple[float, Bodies, int, FloatArray, FloatArray]] = []
     for bodies in scene.bodies:
@@ -40,8 +40,8 @@ def pick(scene: Scene, start: FloatArray, direction: FloatArray) -> Hit | None:
         starts = np.einsum("nji,nj->ni", bodies.turn, start - bodies.shift)
         directions = np.einsum("nji,j->ni", bodies.turn, direction)
         near, far = _box_span(starts, directions, bodies.surface.bounds)
-        for copy in np.flatnonzero((near <= far) & (far >= 0)):
-            candidates.append((float(near[copy]), bodies, int(copy), starts[copy], directions[copy]))
+        met = np.flatnonzero((near <= far) & (far >= 0)).tolist()
+        candidates += [(float(near[copy]), bodies, copy, starts[copy], directions[copy]) for copy in met]
     best: Hit | None = None
     for near_, bodies, copy, local_start, local_direction in sorted(candidates, key=lambda entry: entry[0]):
         if best is not None and near_ > best.distance:
@@ -55,8 +55,8 @@ def pick(scene: Scene, start: FloatArray, direction: FloatArray) -> Hit | None:
 def ray_surface(surface: Surface, start: FloatArray, direction: FloatArray) -> float | None:
     """Return the distance in m to the first triangle on the ray (both (3,) in the part frame), or None.
 
-    Seen along the ray, a triangle is hit when the ray's point lies on the same side of its three edges; only for
-    those few is the distance found.
+    Seen along the ray, a triangle is hit when the ray's point lies on the same side of its three edges; only
+    for those few is the distance found.
     """
     across, along = _across(direction)
     origin = start - surface.middle
@@ -87,7 +87,7 @@ def _across(direction: FloatArray) -> tuple[FloatArray, FloatArray]:
 
 
 def _box_span(starts: FloatArray, directions: FloatArray, bounds: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """Return where rays (n, 3) enter and leave a box (2, 3); the entry lies beyond the exit for a miss (slabs)."""
+    """Return where rays (n, 3) enter and leave a box (2, 3); for a miss the entry lies beyond the exit."""
     # A flat box gets a little thickness, relative to its size.
     slack = 1e-6 * float(np.ptp(bounds, axis=0).max())
     safe = np.where(directions == 0, 1e-300, directions)

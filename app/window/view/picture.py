@@ -2,18 +2,23 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
 from dataclasses import dataclass, field
-from typing import TypeAlias
+from typing import TYPE_CHECKING, TypeAlias
 
 from PySide6.QtGui import QColor, QPalette
 
 from app.window.view.batch import Emphasis
-from app.window.view.camera import Camera, Size
 from app.window.view.palette import DARK, LIGHT, Theme
-from app.window.view.scene import Scene
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable
+
+    from app.window.view.camera import Camera, Size
+    from app.window.view.scene import Scene
 
 Opacity: TypeAlias = int
+
+_MIDDLE = 128
 
 
 @dataclass(frozen=True, eq=False)
@@ -22,6 +27,7 @@ class Picture:
 
     Attributes:
         moving: the camera is on its way, so that a lighter drawing does.
+
     """
 
     scene: Scene
@@ -37,7 +43,7 @@ class Picture:
 
 def theme_of(palette: QPalette) -> Theme:
     """Return the theme that goes with a palette: dark where the window's ground is dark."""
-    return DARK if palette.color(QPalette.ColorRole.Window).lightness() < 128 else LIGHT
+    return DARK if palette.color(QPalette.ColorRole.Window).lightness() < _MIDDLE else LIGHT
 
 
 def qcolor(colour: Iterable[int], opacity: Opacity = 255) -> QColor:

@@ -1,7 +1,7 @@
-"""The assembly as things to draw: bodies, drive axis, centre of mass, principal axes. No Qt, and nothing of the look.
+"""The assembly as things to draw: bodies, drive axis, centre of mass, principal axes. No Qt in here.
 
-A scene depends on the assembly alone; what is selected and which theme is on comes later (see `batch`), so that the
-pointer moving over the view rebuilds nothing.
+A scene depends on the assembly alone; what is selected and which theme is on comes later (see `batch`), so
+that the pointer moving over the view rebuilds nothing.
 """
 
 from __future__ import annotations
@@ -36,6 +36,7 @@ class Bodies:
         surface: of one copy, in the part frame.
         turn, shift: (n, 3, 3) and (n, 3) m, placements tf_document_part of the copies.
         tint: a small number that parts of the same material share.
+
     """
 
     key: str
@@ -71,6 +72,7 @@ class Scene:
         axis: the drive axis, as long as it is drawn; None in an empty scene.
         mass_centre: (3,) m; None while no mass is known.
         principal: three arrows from the centre of mass, as long as the radii of gyration.
+
     """
 
     bodies: tuple[Bodies, ...] = ()
@@ -104,7 +106,7 @@ class Scene:
     @cached_property
     def centre(self) -> FloatArray:
         """The middle (3,) m of the points to fit; what is drawn is handed on relative to it."""
-        return 0.5 * (self.fit_points.min(axis=0) + self.fit_points.max(axis=0))
+        return np.asarray(0.5 * (self.fit_points.min(axis=0) + self.fit_points.max(axis=0)))
 
     @cached_property
     def radius(self) -> float:
@@ -147,8 +149,12 @@ def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None)
     reach = np.concatenate([bounds, *([arrow.start, arrow.end] for arrow in arrows)])
     axis = assembly.drive_axis
     return Scene(
-        bodies, ghostly, bounds, _axis_line(axis.name, np.asarray(axis.point, dtype=float), axis.unit, reach),
-        frozen(assembly.total.centre) if has_mass else None, arrows,
+        bodies,
+        ghostly,
+        bounds,
+        _axis_line(axis.name, np.asarray(axis.point, dtype=float), axis.unit, reach),
+        frozen(assembly.total.centre) if has_mass else None,
+        arrows,
     )
 
 
@@ -159,7 +165,7 @@ def _bodies(assembly: Assembly, store: SurfaceStore) -> tuple[Bodies, ...]:
     tints: dict[str, int] = {}
     bodies = []
     for index, part in enumerate(table.parts):
-        rows = order[start[index]:start[index + 1]]
+        rows = order[start[index] : start[index + 1]]
         if len(rows) and len(part.surface.corners):
             tint = tints.setdefault(part.driver.label, len(tints))
             surface = store.of(part.surface)
@@ -175,8 +181,8 @@ def _outermost(bodies: Bodies, *, full: bool) -> FloatArray:
     if full:
         local = surface.vertices + surface.middle
     else:
-        local = np.array([surface.bounds[list(pick), range(3)] for pick in np.ndindex(2, 2, 2)])
-    return (np.einsum("nij,kj->nki", bodies.turn, local) + bodies.shift[:, None]).reshape(-1, 3)
+        local = np.array([surface.bounds[list(corner), range(3)] for corner in np.ndindex(2, 2, 2)])
+    return np.asarray(np.einsum("nij,kj->nki", bodies.turn, local) + bodies.shift[:, None]).reshape(-1, 3)
 
 
 def _bounds(everybody: tuple[Bodies, ...]) -> FloatArray:

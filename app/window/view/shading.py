@@ -1,22 +1,31 @@
-"""Drawing without OpenGL: flat-shaded triangles into a depth buffer, and the parts of lines that are not hidden.
+"""Drawing without OpenGL: flat-shaded triangles into a depth buffer, and the lines that are not hidden.
 
-All triangles are laid out at once into rows and the rows into pixels; of the pixels that fall on one spot the nearest
-wins. Depth is the projected one (−1 near … 1 far), which is linear across a triangle on the screen.
+All triangles are laid out at once into rows and the rows into pixels; of the pixels that fall on one spot the
+nearest wins. Depth is the projected one (−1 near … 1 far), which is linear across a triangle on the screen.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
-from numpy.typing import NDArray
 
-from app.window.view.batch import Batch, Packed
-from app.window.view.camera import Camera, Size
-from core.arrays import BoolArray, FloatArray, IntArray
+from app.window.view.batch import OPAQUE, Batch, Packed
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from app.window.view.camera import Camera, Size
+    from core.arrays import BoolArray, FloatArray, IntArray
 
 # Light from everywhere, from a lamp, and from above; and where the lamp stands in the camera frame (unit).
-LIGHT_TERMS: tuple[float, float, float, tuple[float, float, float]] = (0.56, 0.34, 0.14, (-0.337, 0.529, 0.779))
+LIGHT_TERMS: tuple[float, float, float, tuple[float, float, float]] = (
+    0.56,
+    0.34,
+    0.14,
+    (-0.337, 0.529, 0.779),
+)
 # Line widths in logical pixels: plain, under the pointer, selected.
 EDGE_WIDTHS = (1.1, 1.9, 2.8)
 # A scene of more triangles than this is drawn lighter while the camera moves.
@@ -24,7 +33,6 @@ MOST_MOVING = 60_000
 
 # Lines are tested for being hidden in pieces of this many pixels.
 _PIECE = 4.0
-_DEPTH_SLACK = 2e-5
 _MOST_PIECES = 400_000
 
 
@@ -35,6 +43,7 @@ class Raster:
     Attributes:
         colours: (height, width, 3) red, green, blue 0…255.
         depth: (height, width) −1…1; 1 where there is only ground.
+
     """
 
     colours: NDArray[np.uint8]
@@ -43,8 +52,14 @@ class Raster:
 
 @dataclass(frozen=True, eq=False)
 class Stand:
-    """From where and how large a picture is drawn: camera, depths of its near and far plane (m), middle of the
-    scene (3,) m, and width and height in pixels."""
+    """From where and how large a picture is drawn.
+
+    Attributes:
+        camera, depths: where it is seen from, and the depths of its near and far plane, m.
+        centre: the middle of the scene, (3,) m.
+        width, height: px.
+
+    """
 
     camera: Camera
     depths: tuple[float, float]
@@ -58,16 +73,20 @@ class Stand:
         size: Size = (self.width, self.height)
         return self.camera.projection_matrix(size, self.depths) @ self.camera.view_matrix(self.centre)
 
+    @property
+    def depth_of_pixel(self) -> float:
+        """How much depth, of the 2 from near to far, is as long as one pixel is wide at the target."""
+        step = self.camera.metres_per_pixel((self.width, self.height))
+        return 2 * step / (self.depths[1] - self.depths[0])
+
 
 def light_on(normals: FloatArray) -> FloatArray:
-    """Return how bright faces with normals (..., 3) in the camera frame are, 0…1; both sides alike."""
+    """Return how bright faces with normals (..., 3) in the camera frame are; both sides alike."""
     base, key, sky, direction = LIGHT_TERMS
     length = np.linalg.norm(normals, axis=-1, keepdims=True)
     unit = np.divide(normals, length, out=np.zeros_like(normals), where=length > 0)
     unit = np.where(unit[..., 2:] < 0, -unit, unit)
-    return np.asarray(
-        base + key * np.maximum(unit @ np.asarray(direction), 0.0) + sky * (0.5 + 0.5 * unit[..., 1])
-    )
+    return np.asarray(base + key * np.maximum(unit @ np.asarray(direction), 0.0) + sky * (0.5 + 0.5 * unit[..., 1]))
 
 
 def rastered(pack: Packed, stand: Stand, of_bodies: NDArray[np.uint8], ground: tuple[int, int, int]) -> Raster:
@@ -75,16 +94,18 @@ def rastered(pack: Packed, stand: Stand, of_bodies: NDArray[np.uint8], ground: t
     pixels = stand.width * stand.height
     colours = np.empty((pixels, 3), dtype=np.float32)
     colours[:] = ground
-    depth = np.ones(pixels, dtype=np.float32)
-    for solid in (True, False):
-        layer = depth if solid else depth.copy()
-        for batch in pack.batches:
-            opacity = float(of_bodies[batch.owner[0], 3]) / 255 if len(batch.owner) else 1.0
-            if (opacity == 1.0) == solid:
-                for placement in batch.placements:
-                    _draw(batch, placement, stand, of_bodies, colours, layer, opacity)
+    sheet = _Sheet(colours, np.ones(pixels, dtype=np.float32))
+    solid = [bool((of_bodies[batch.owner, 3] == OPAQUE).all()) for batch in pack.batches]
+    for batch, is_solid in zip(pack.batches, solid, strict=True):
+        if is_solid:
+            _draw_batch(batch, stand, of_bodies, sheet)
+    # Of what is see-through, the nearest face of each batch is blended over the solid picture.
+    for batch, is_solid in zip(pack.batches, solid, strict=True):
+        if not is_solid:
+            _draw_batch(batch, stand, of_bodies, _Sheet(sheet.colours, sheet.depth.copy()))
     shape = (stand.height, stand.width)
-    return Raster(np.clip(colours, 0, 255).astype(np.uint8).reshape(*shape, 3), depth.reshape(shape))
+    whole = np.clip(sheet.colours, 0, 255).astype(np.uint8)
+    return Raster(whole.reshape(*shape, 3), sheet.depth.reshape(shape))
 
 
 def visible_lines(segments: FloatArray, stand: Stand, depth: NDArray[np.float32]) -> FloatArray:
@@ -108,7 +129,7 @@ def visible_lines(segments: FloatArray, stand: Stand, depth: NDArray[np.float32]
     inside = (column >= 0) & (row >= 0) & (column < stand.width) & (row < stand.height)
     seen = np.zeros(len(owner), dtype=bool)
     behind = _farthest_around(depth)
-    seen[inside] = middle[inside, 2] <= behind[row[inside], column[inside]] + _DEPTH_SLACK
+    seen[inside] = middle[inside, 2] <= behind[row[inside], column[inside]] + stand.depth_of_pixel
     return _runs(seen, owner, step, pieces, spots)
 
 
@@ -120,7 +141,9 @@ def _runs(seen: BoolArray, owner: IntArray, step: IntArray, pieces: IntArray, sp
     line = owner[first]
     start, run = spots[line, 0, :2], spots[line, 1, :2] - spots[line, 0, :2]
     count = pieces[line][:, None]
-    return np.stack([start + run * step[first][:, None] / count, start + run * (step[last][:, None] + 1) / count], axis=1)
+    return np.stack(
+        [start + run * step[first][:, None] / count, start + run * (step[last][:, None] + 1) / count], axis=1
+    )
 
 
 def _farthest_around(depth: NDArray[np.float32]) -> NDArray[np.float32]:
@@ -141,12 +164,22 @@ def _projected(points: FloatArray, matrix: FloatArray, stand: Stand) -> tuple[Fl
     return np.stack([x, y, clip[:, 2] / away], axis=1), ahead
 
 
-def _draw(
-    batch: Batch, placement: FloatArray, stand: Stand, of_bodies: NDArray[np.uint8], colours: NDArray[np.float32],
-    depth: NDArray[np.float32], opacity: float,
-) -> None:
-    """Draw one batch at one placement into colours and depth."""
-    spots, ahead = _projected(batch.vertices, stand.matrix @ placement, stand)
+@dataclass(frozen=True, eq=False)
+class _Sheet:
+    """What is drawn on: colours (pixels, 3) and depth (pixels,), both written to."""
+
+    colours: NDArray[np.float32]
+    depth: NDArray[np.float32]
+
+
+def _draw_batch(batch: Batch, stand: Stand, of_bodies: NDArray[np.uint8], sheet: _Sheet) -> None:
+    for placement in batch.placements:
+        _draw(batch, placement, stand, of_bodies, sheet)
+
+
+def _draw(batch: Batch, placement: FloatArray, stand: Stand, of_bodies: NDArray[np.uint8], sheet: _Sheet) -> None:
+    """Draw one batch at one placement."""
+    spots, ahead = _projected(batch.vertices.astype(np.float64), stand.matrix @ placement, stand)
     corners = spots[batch.faces]
     x, y = corners[..., 0], corners[..., 1]
     area = (x[:, 1] - x[:, 0]) * (y[:, 2] - y[:, 0]) - (x[:, 2] - x[:, 0]) * (y[:, 1] - y[:, 0])
@@ -160,22 +193,22 @@ def _draw(
     if not len(faces):
         return
     turn = stand.camera.axes @ placement[:3, :3]
-    light = light_on(batch.normals[faces].sum(axis=1, dtype=np.float64) @ turn.T)
-    paint = (of_bodies[batch.owner[faces[:, 0]], :3] * light[:, None]).astype(np.float32)
+    light = light_on(batch.normals[faces].sum(axis=1).astype(np.float64) @ turn.T)
+    body = of_bodies[batch.owner[faces[:, 0]]]
+    paint = (body[:, :3] * light[:, None]).astype(np.float32)
     spot, owner, near = _pixels(corners, area, stand)
-    np.minimum.at(depth, spot, near)
-    won = near == depth[spot]
+    np.minimum.at(sheet.depth, spot, near)
+    won = near == sheet.depth[spot]
     spot, owner = spot[won], owner[won]
-    if opacity == 1.0:
-        colours[spot] = paint[owner]
+    if (body[:, 3] == OPAQUE).all():
+        sheet.colours[spot] = paint[owner]
     else:
-        colours[spot] += opacity * (paint[owner] - colours[spot])
+        opacity = (body[owner, 3] / np.float32(OPAQUE))[:, None]
+        sheet.colours[spot] += opacity * (paint[owner] - sheet.colours[spot])
 
 
-def _pixels(
-    corners: FloatArray, area: FloatArray, stand: Stand
-) -> tuple[IntArray, IntArray, NDArray[np.float32]]:
-    """Return spot in the picture, triangle and depth of every pixel whose middle lies in a triangle (m, 3, 3)."""
+def _pixels(corners: FloatArray, area: FloatArray, stand: Stand) -> tuple[IntArray, IntArray, NDArray[np.float32]]:
+    """Return spot, triangle and depth of every pixel whose middle lies in a triangle (m, 3, 3)."""
     x, y, z = corners[..., 0], corners[..., 1], corners[..., 2]
     top = np.clip(np.ceil(y.min(axis=1) - 0.5), 0, stand.height).astype(np.int64)
     bottom = np.clip(np.floor(y.max(axis=1) - 0.5) + 1, 0, stand.height).astype(np.int64)
@@ -208,6 +241,7 @@ def _row_ends(x: FloatArray, y: FloatArray, owner: IntArray, level: FloatArray) 
         at = x[owner, one] + (level - y[owner, one]) * lean[owner]
         left = np.where(crosses, np.minimum(left, at), left)
         right = np.where(crosses, np.maximum(right, at), right)
-    # A row that only grazes a corner crosses nothing: its ends are given the wrong way round, and it has no pixels.
+    # A row that only grazes a corner crosses nothing: its ends are given the wrong way round, and it has no
+    # pixels.
     missed = right < left
     return np.where(missed, 1.0, left), np.where(missed, 0.0, right)

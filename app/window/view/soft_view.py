@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 import numpy as np
 from PySide6.QtCore import QLineF, QRect, Qt
 from PySide6.QtGui import QImage, QPainter, QPaintEvent, QPen
@@ -9,10 +11,12 @@ from PySide6.QtWidgets import QWidget
 
 from app.window.view.batch import Packed, face_colours, line_ranks, packed
 from app.window.view.picture import Picture, qcolor
-from app.window.view.scene import Bodies, Scene
 from app.window.view.shading import EDGE_WIDTHS, MOST_MOVING, Raster, Stand, rastered, visible_lines
-from app.window.view.surface import Surface
-from core.arrays import FloatArray
+
+if TYPE_CHECKING:
+    from app.window.view.scene import Bodies, Scene
+    from app.window.view.surface import Surface
+    from core.arrays import FloatArray
 
 # While the camera moves, one drawn pixel stands for a square of this many.
 _COARSE = 2
@@ -51,8 +55,11 @@ class SoftView(QWidget):
         coarse = picture.moving and picture.scene.count > MOST_MOVING // 10
         scale = 1 / _COARSE if coarse else float(self.devicePixelRatioF())
         stand = Stand(
-            picture.camera, picture.depths(), picture.scene.centre,
-            max(round(self.width() * scale), 1), max(round(self.height() * scale), 1),
+            picture.camera,
+            picture.depths(),
+            picture.scene.centre,
+            max(round(self.width() * scale), 1),
+            max(round(self.height() * scale), 1),
         )
         pack = self._pack(picture)
         colours = face_colours(picture.scene, picture.emphasis, picture.theme)
@@ -69,13 +76,15 @@ class SoftView(QWidget):
             self._packs[light] = packed(picture.scene, _light_surface if light else _full_surface)
         return self._packs[light]
 
-    def _draw_lines(
-        self, painter: QPainter, picture: Picture, pack: Packed, stand: Stand, raster: Raster
-    ) -> None:
+    def _draw_lines(self, painter: QPainter, picture: Picture, pack: Packed, stand: Stand, raster: Raster) -> None:
         lines, theme = pack.lines, picture.theme
         ranks = line_ranks(picture.scene, picture.emphasis)
         seen = lines.rims_seen(picture.camera, picture.scene.centre)
-        rims, rim_ranks, sharp_ranks = lines.rims[seen], ranks[lines.rim_owner[seen]], ranks[lines.sharp_owner]
+        rims, rim_ranks, sharp_ranks = (
+            lines.rims[seen],
+            ranks[lines.rim_owner[seen]],
+            ranks[lines.sharp_owner],
+        )
         across = self.width() / stand.width
         for rank, colour in enumerate((theme.edge, theme.hovered_edge, theme.selected_edge)):
             segments = np.concatenate([lines.sharp[sharp_ranks == rank], rims[rim_ranks == rank]])

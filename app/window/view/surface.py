@@ -1,20 +1,22 @@
 """A surface made ready for drawing: soft normals, the sharp edges, and the edges that may become a rim.
 
-All of it is found once per surface, without a loop over facets. Coordinates are kept relative to the middle of the
-surface, so that single precision is enough wherever the part stands.
+All of it is found once per surface, without a loop over facets. Coordinates are kept relative to the middle
+of the surface, so that single precision is enough wherever the part stands.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
-from typing import TypeAlias
+from typing import TYPE_CHECKING, TypeAlias
 
 import numpy as np
 from numpy.typing import NDArray
 
-from core.arrays import FloatArray, IntArray
 from core.facets import Facets
+
+if TYPE_CHECKING:
+    from core.arrays import FloatArray, IntArray
 
 Float32Array: TypeAlias = NDArray[np.float32]
 Uint32Array: TypeAlias = NDArray[np.uint32]
@@ -24,6 +26,7 @@ SHARP = np.radians(30.0)
 # A corner whose soft normal leans further than this from its facet (the tip of a cone) keeps the facet's own.
 _LEAN = np.cos(np.radians(50.0))
 _FLAT = 1 - 1e-9
+_SIDES = 2
 
 
 @dataclass(frozen=True, eq=False)
@@ -40,6 +43,7 @@ class Surface:
         rims: (s, 2, 3) m, the ends of the other edges that are not flat.
         rim_normals: (s, 2, 3) the normals on both sides of those.
         closed: whether every edge has exactly one neighbour that runs the other way.
+
     """
 
     middle: FloatArray
@@ -80,13 +84,21 @@ def surface_of(facets: Facets) -> Surface:
     soft = (edges.turn >= np.cos(SHARP)) & (edges.turn < _FLAT)
     vertices, soft_normals, faces = _softened(local, corners, normals, edges)
     return Surface(
-        middle, bounds, vertices, soft_normals, faces, normals.astype(np.float32), local[sharp],
-        local[edges.ends[soft]], normals[edges.sides[soft]].astype(np.float32), edges.closed,
+        middle,
+        bounds,
+        vertices,
+        soft_normals,
+        faces,
+        normals.astype(np.float32),
+        local[sharp],
+        local[edges.ends[soft]],
+        normals[edges.sides[soft]].astype(np.float32),
+        edges.closed,
     )
 
 
 def lighter(surface: Surface, cells: int = 44) -> Surface:
-    """Return the surface with all points in one cell of a grid drawn together, cells along its longest side."""
+    """Return the surface with the points in each cell of a grid drawn together; cells along its long side."""
     low, high = surface.vertices.min(axis=0), surface.vertices.max(axis=0)
     step = float((high - low).max()) / cells
     cell = ((surface.vertices - low) / step).astype(np.int64)
@@ -102,8 +114,17 @@ def lighter(surface: Surface, cells: int = 44) -> Surface:
 
 @dataclass(frozen=True, eq=False)
 class _Edges:
-    """Edges with two sides: ends (e, 2) points, sides (e, 2) facets, their corners (e, 2, 2), cosine of the turn;
-    lonely (l, 2): edges with one side, or more than two."""
+    """What meets along the edges.
+
+    Attributes:
+        ends: (e, 2) points of the edges that have two sides.
+        sides: (e, 2) the facets on both sides.
+        corners: (e, 2, 2) the corners (3·facet + place) of those facets at the two ends, by side.
+        turn: (e,) cosine of the angle between the facets.
+        lonely: (l, 2) points of the edges that have one side, or more than two.
+        closed: whether every edge has two sides that run opposite ways.
+
+    """
 
     ends: IntArray
     sides: IntArray
@@ -122,14 +143,14 @@ def _welded(facets: Facets) -> tuple[FloatArray, IntArray]:
         # Ranks again after each step, so that the product stays below 2⁶³.
         key = np.unique(key * len(values) + rank, return_inverse=True)[1]
     _, first, owner = np.unique(key, return_index=True, return_inverse=True)
-    return points[first], owner[facets.corners]
+    return points[first], np.asarray(owner[facets.corners])
 
 
 def _facet_normals(points: FloatArray, corners: IntArray) -> FloatArray:
     a, b, c = (points[corners[:, i]] for i in range(3))
     normals = np.cross(b - a, c - a)
     length = np.linalg.norm(normals, axis=1, keepdims=True)
-    return np.divide(normals, length, out=np.zeros_like(normals), where=length > 0)
+    return np.asarray(np.divide(normals, length, out=np.zeros_like(normals), where=length > 0))
 
 
 def _edges(corners: IntArray, points: int, normals: FloatArray) -> _Edges:
@@ -140,9 +161,9 @@ def _edges(corners: IntArray, points: int, normals: FloatArray) -> _Edges:
     ordered = key[order]
     first = np.flatnonzero(np.concatenate([[True], ordered[1:] != ordered[:-1]]))
     run = np.diff(np.append(first, len(ordered)))
-    pair = first[run == 2]
+    pair = first[run == _SIDES]
     one, two = order[pair], order[pair + 1]
-    lonely = order[first[run != 2]]
+    lonely = order[first[run != _SIDES]]
     sides = np.stack([one // 3, two // 3], axis=1)
     turn = np.einsum("ij,ij->i", normals[sides[:, 0]], normals[sides[:, 1]])
     same_way = forward[one] == forward[two]
@@ -150,11 +171,18 @@ def _edges(corners: IntArray, points: int, normals: FloatArray) -> _Edges:
     # A facet without area has no direction; its neighbours are not parted by it.
     turn = np.where((np.abs(normals).sum(axis=1) == 0)[sides].any(axis=1), 1.0, turn)
     here = np.stack([one, _next_corner(one)], axis=1)
-    there = np.where(same_way[:, None], np.stack([two, _next_corner(two)], axis=1),
-                     np.stack([_next_corner(two), two], axis=1))
+    there = np.where(
+        same_way[:, None],
+        np.stack([two, _next_corner(two)], axis=1),
+        np.stack([_next_corner(two), two], axis=1),
+    )
     return _Edges(
-        np.stack([start[one], end[one]], axis=1), sides, np.stack([here, there], axis=1), turn,
-        np.stack([start[lonely], end[lonely]], axis=1), closed=not len(lonely) and not same_way.any(),
+        np.stack([start[one], end[one]], axis=1),
+        sides,
+        np.stack([here, there], axis=1),
+        turn,
+        np.stack([start[lonely], end[lonely]], axis=1),
+        closed=not len(lonely) and not same_way.any(),
     )
 
 
@@ -185,7 +213,7 @@ def _softened(
 
 
 def _joined(count: int, one: IntArray, two: IntArray) -> IntArray:
-    """Return for each of count things the smallest number in its group, when one[i] and two[i] belong together.
+    """Return for each of count things the smallest number in its group; one[i] and two[i] belong together.
 
     Smallest labels are handed on and short-cut by pointer jumping; about log(group size) rounds.
     """
