@@ -34,7 +34,7 @@ COMPUTED, ESTIMATED = "computed", "estimated: holes closed flat"
 
 # Volume over area × diagonal below which a mesh encloses nothing but round-off.
 FLAT = 1e-13
-# Distance from the origin over size beyond which the file's 32-bit coordinates round the part's shape.
+# Distance from the origin over size beyond which the digits of an STL file's coordinates round the shape.
 FAR = 1e3
 
 
@@ -201,8 +201,8 @@ def _far_note(bounds: FloatArray, size: float) -> Iterator[str]:
     offset = float(np.abs(bounds).max())
     if size > 0 and offset / size > FAR:
         yield (
-            f"The part lies {offset / size:.0f} times its own size away from the origin: the file's 32-bit"
-            " coordinates round its shape. Export it nearer to the origin."
+            f"The part lies {offset / size:.0f} times its own size away from the origin: coordinates of about 7"
+            " digits round its shape. Export it nearer to the origin."
         )
 
 
