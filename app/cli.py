@@ -145,9 +145,7 @@ def _weigh_parser() -> argparse.ArgumentParser:
     parser = _Parser(f"{PROGRAM} weigh", description=_ABOUT_WEIGH)
     parser.add_argument("paths", nargs="+", metavar="PATH", help="an STL file or a document")
     mesh = parser.add_argument_group("for meshes")
-    mesh.add_argument(
-        "--unit", choices=("mm", "cm", "m", "in", "ft"), help="the meshes' length unit (default: mm)"
-    )
+    mesh.add_argument("--unit", choices=("mm", "cm", "m", "in", "ft"), help="the meshes' length unit (default: mm)")
     mass = mesh.add_mutually_exclusive_group()
     mass.add_argument("--material", metavar="NAME", help='what they are made of, such as "steel"')
     mass.add_argument("--density", metavar="TEXT", help='such as "7850 kg/m^3"')
@@ -162,16 +160,12 @@ def _weigh_parser() -> argparse.ArgumentParser:
     mesh.add_argument("--jobs", type=_count, default=1, metavar="N", help="work on N files at the same time")
     _add_shown(parser)
     shown = parser.add_argument_group("output")
-    shown.add_argument(
-        "--format", choices=("text", "json", "tsv", "csv"), default="text", help="(default: text)"
-    )
+    shown.add_argument("--format", choices=("text", "json", "tsv", "csv"), default="text", help="(default: text)")
     return parser
 
 
 def _add_shown(parser: argparse.ArgumentParser) -> None:
-    shown = parser.add_argument_group(
-        "what is shown (JSON is always in SI, about the centre, in tensor elements)"
-    )
+    shown = parser.add_argument_group("what is shown (JSON is always in SI, about the centre, in tensor elements)")
     shown.add_argument(
         "--about",
         default="centre",
@@ -184,9 +178,7 @@ def _add_shown(parser: argparse.ArgumentParser) -> None:
         default="tensor",
         help="products of inertia as tensor elements, Ixy = -∫xy dm (default), or integrals, Pxy = +∫xy dm",
     )
-    shown.add_argument(
-        "--show-units", default="", metavar="UNITS", help='such as "mm kg kg*cm^2" or "in lb lb*in^2"'
-    )
+    shown.add_argument("--show-units", default="", metavar="UNITS", help='such as "mm kg kg*cm^2" or "in lb lb*in^2"')
     shown.add_argument(
         "--decimal",
         choices=(".", ","),
@@ -262,9 +254,7 @@ def _hand_over(given: list[str]) -> int:
     from app.hand_over import hand_over
     from core.quantity import UNITS
 
-    parser = _Parser(
-        f"{PROGRAM} handover", description="Writes a document's sheet to a file: .csv, .tsv or .json."
-    )
+    parser = _Parser(f"{PROGRAM} handover", description="Writes a document's sheet to a file: .csv, .tsv or .json.")
     parser.add_argument("document", metavar="DOC", help="a document")
     parser.add_argument("--to", required=True, metavar="FILE", help="what to write; its ending says the form")
     _add_shown(parser)

@@ -115,17 +115,13 @@ def is_document(path: str) -> bool:
 
 def _mesh(path: str, task: Task, progress: Progress | None) -> Outcome:
     reading = read_mesh(path, task.request, progress)
-    complaints = tuple(
-        f"check failed: {check.name}: {check.text}" for check in reading.checks if not check.ok
-    )
+    complaints = tuple(f"check failed: {check.name}: {check.text}" for check in reading.checks if not check.ok)
     status = CHECK_FAILED if complaints else SOUND
     if task.format == "json":
         from core.handover.answer import answer_of_mesh
 
         return Outcome(status, answer=answer_of_mesh(reading), complaints=complaints)
-    return Outcome(
-        status, sheet_text(sheet_of_mesh(reading, task.choice, task.units), task), complaints=complaints
-    )
+    return Outcome(status, sheet_text(sheet_of_mesh(reading, task.choice, task.units), task), complaints=complaints)
 
 
 def _document(path: str, task: Task) -> Outcome:

@@ -8,6 +8,7 @@ import numpy as np
 
 from core.assembly.bodies import KnownAxial, KnownTensor, MeshBody
 from core.checks import Check, check_body
+from core.mesh.mesh_check import check_mesh
 
 if TYPE_CHECKING:
     from core.assembly.nodes import Part
@@ -35,14 +36,7 @@ def _entry_checks(part: Part) -> tuple[Check, ...]:
         return part.body.entry_checks
     if not isinstance(part.body, MeshBody):
         return ()
-    survey = part.body.asset.survey
-    sound = survey.verdict in {"closed", "hairline cracks", "inside out"} and survey.solid is not None
-    words = [f"{part.name}: mesh {survey.verdict}"]
-    if survey.open_edges:
-        words.append(f"{survey.open_edges} open edges")
-    if survey.basis != "computed":
-        words.append(survey.basis)
-    return (Check("mesh", sound, "; ".join([", ".join(words), *survey.notes])),)
+    return (check_mesh(part.body.asset.survey, part.name),)
 
 
 def _reach(part: Part) -> float | None:

@@ -95,8 +95,7 @@ def answer_of_assembly(assembly: Assembly, path: str) -> Answer:
         **_values(subject.body, subject.form, _volume(assembly)),
         "axis": {**(_axis(subject.body, subject.form, subject.axis) or {}), **spot},
         "checks": [
-            {**_check(finding.check), "part": finding.name, "key": finding.key}
-            for finding in findings_of(assembly)
+            {**_check(finding.check), "part": finding.name, "key": finding.key} for finding in findings_of(assembly)
         ],
         "ledger": [_line(line) for line in (*ledger.lines, ledger.total)],
     }

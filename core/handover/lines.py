@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Final, Literal, TypeAlias
 
 import numpy as np
 
+from core.arrays import settled
 from core.placement import Triple
 from core.quantity.units import UNITS, Kind, Unit
 
@@ -180,10 +181,12 @@ def _drive_lines(subject: Subject, units: UnitSet) -> list[Entry]:
         make.of(
             Kind.INERTIA,
             "J_own",
-            f"Own J: about the axis through the centre of mass, parallel to {name}",
+            f"Own J of the whole: about the axis through its centre of mass, parallel to {name}",
             own,
         ),
-        make.of(Kind.INERTIA, "m·d²", f"Parallel-axis term m·d² from the centre of mass to {name}", transfer),
+        make.of(
+            Kind.INERTIA, "m·d²", f"Parallel-axis term m·d² of the whole, from its centre of mass to {name}", transfer
+        ),
     ]
 
 
@@ -241,9 +244,9 @@ def tensor_chosen(body: Moments, choice: SheetChoice) -> FloatArray:
     else:
         tensor = body.inertia_about_point((0.0, 0.0, 0.0) if choice.about == "origin" else choice.about)
     if choice.along == "document":
-        return tensor
+        return settled(tensor, np.abs(tensor).max())
     axes = body.principal.axes
-    return np.asarray(axes @ tensor @ axes.T)
+    return settled(axes @ tensor @ axes.T, np.abs(tensor).max())
 
 
 def point_words(about: About, frame: str, units: UnitSet) -> str:
@@ -260,6 +263,7 @@ def _principal_lines(subject: Subject, units: UnitSet) -> list[Entry]:
     make = LineMaker(PRINCIPAL, units, subject.basis, subject.reason)
     form = subject.form
     principal: Principal | None = None if form is None else form.principal
+    axes = None if principal is None else settled(principal.axes, 1.0)
     scale = 1.0 if form is None else float(form.mass)
     lines = []
     for i in range(3):
@@ -272,7 +276,7 @@ def _principal_lines(subject: Subject, units: UnitSet) -> list[Entry]:
         lines.append(make.of(Kind.LENGTH, f"k{i + 1}", label, _root(square)))
     for i in range(3):
         for j, letter in enumerate("xyz"):
-            value = None if principal is None else float(principal.axes[i, j])
+            value = None if axes is None else float(axes[i, j])
             label = f"Principal axis {i + 1}, component along the {subject.frame}'s {letter}"
             lines.append(make.line(f"e{i + 1}_{letter}", label, value, _PLAIN))
     return lines

@@ -152,9 +152,7 @@ class MeshReading:
         if self.body is not None:
             # A round face reaches a little beyond its facets: the box's diagonal leaves room for that.
             reach = float(np.linalg.norm(self.bounds[1] - self.bounds[0]))
-            checks += check_body(
-                self.body, name=self.name, volume=self.volume, reach=reach, bounds=self.bounds
-            )
+            checks += check_body(self.body, name=self.name, volume=self.volume, reach=reach, bounds=self.bounds)
         return tuple(checks)
 
     @property
@@ -174,8 +172,9 @@ class MeshReading:
     def notes(self) -> tuple[str, ...]:
         """What was noticed on the file, and what restored curvature makes of it."""
         check = check_mesh(self.survey, self.name)
-        said = (check.text,) if check.ok and self.survey.verdict != "closed" else ()
-        return (*said, *self.survey.notes, *self.remarks, *self._curvature_note())
+        remarkable = self.survey.verdict != "closed" or self.survey.notes
+        said = (check.text,) if check.ok and remarkable else ()
+        return (*said, *self.remarks, *self._curvature_note())
 
     @property
     def cautions(self) -> tuple[str, ...]:

@@ -86,9 +86,7 @@ class Sheet:
         return tuple(check for check in self.checks if not check.ok)
 
 
-def sheet_of_assembly(
-    assembly: Assembly, choice: SheetChoice, unit_set: UnitSet, key: str | None = None
-) -> Sheet:
+def sheet_of_assembly(assembly: Assembly, choice: SheetChoice, unit_set: UnitSet, key: str | None = None) -> Sheet:
     """Return the sheet of everything, or of all copies of the part or group with this key.
 
     All values refer to the document's frame; J is about the assembly's drive axis.
@@ -178,6 +176,7 @@ def _sources(selection: Selection) -> tuple[Source, ...]:
     return tuple(
         Source(basis, f"{source}: {_names(tuple(parts))}" if source else _names(tuple(parts)))
         for (basis, source), parts in by_basis.items()
+        if basis != "not set"
     )
 
 

@@ -36,9 +36,7 @@ def text_of_sheet(sheet: Sheet, decimal_mark: str = ".", digits: int = DIGITS) -
         if entry.section != section:
             section = entry.section
             lines += ["", section]
-        lines.append(
-            f"  {symbol:<{symbols}}  {_aligned(value, left, right, decimal_mark)}  {unit:<{units}}  {label}"
-        )
+        lines.append(f"  {symbol:<{symbols}}  {_aligned(value, left, right, decimal_mark)}  {unit:<{units}}  {label}")
     reasons = dict.fromkeys(entry.reason for entry in sheet.entries if entry.value is None)
     marked = [(f"{NO_VALUE} ", reason) for reason in reasons]
     marked += [("check failed: ", f"{check.name}: {check.text}") for check in sheet.failed]
@@ -117,7 +115,7 @@ def _aligned(number: str, left: int, right: int, decimal_mark: str) -> str:
 
 
 def _columns(rows: Sequence[tuple[str, ...]], decimal_mark: str) -> list[str]:
-    """Return the lines of a table: text to the left, numbers on their decimal marks; the first row is its head."""
+    """Return the lines of a table: text to the left, numbers on their decimal marks; the first is the head."""
     columns = []
     for i, (head, *texts) in enumerate(zip(*rows, strict=True)):
         cells = texts

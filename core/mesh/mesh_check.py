@@ -24,8 +24,8 @@ def check_mesh(survey: MeshSurvey, name: str) -> Check:
         found += f", with {edges}"
     if survey.basis != "computed":
         found += f"; {survey.basis}"
-    bound = _crack_words(survey)
-    return Check("mesh", ok, f"{found}.{bound}" if ok else f"{found}. {_MEND}")
+    sentences = (f"{found}.{_crack_words(survey)}" if ok else f"{found}. {_MEND}", *survey.notes)
+    return Check("mesh", ok, " ".join(sentences))
 
 
 def _crack_words(survey: MeshSurvey) -> str:
@@ -34,7 +34,5 @@ def _crack_words(survey: MeshSurvey) -> str:
         return ""
     volume = survey.crack_volume / float(survey.solid.mass)
     smallest = float(survey.solid.principal.moments[0])
-    inertia = (
-        f", the smallest moment of inertia by {survey.crack_inertia / smallest:.2g}" if smallest > 0 else ""
-    )
+    inertia = f", the smallest moment of inertia by {survey.crack_inertia / smallest:.2g}" if smallest > 0 else ""
     return f" The cracks change the volume by at most {volume:.2g} of it{inertia}."
