@@ -91,10 +91,11 @@ def revolved_by_quadrature(
     from scipy.integrate import quad
 
     def integral(slice_value: Callable[[float, float, float], float]) -> float:
-        return quad(lambda z: slice_value(outer(z), inner(z), z), bottom, top, epsabs=0, epsrel=1e-10)[0]
+        return quad(lambda z: slice_value(outer(z), inner(z), z), bottom, top, epsabs=0, epsrel=1e-12)[0]
 
     volume = integral(lambda r, i, _z: np.pi * (r * r - i * i))
-    height = integral(lambda r, i, z: np.pi * (r * r - i * i) * z) / volume
+    # Heights above the bottom, so that no integral is 0 and its relative error means something.
+    height = bottom + integral(lambda r, i, z: np.pi * (r * r - i * i) * (z - bottom)) / volume
     across = integral(lambda r, i, _z: np.pi / 4 * (r**4 - i**4))
     along = integral(lambda r, i, z: np.pi * (r * r - i * i) * (z - height) ** 2)
     return Moments(volume, [0, 0, height], np.diag([across, across, along]))
