@@ -24,7 +24,7 @@ from core.assembly.assembly import DEEPEST
 from core.document.archive import Archive
 from core.document.layout import data_of
 from core.document.migration import MAJOR, MINOR, Data, migrated
-from core.document.validation import checked
+from core.document.validation import checked, short_place
 from core.errors import DocumentError, MasswrightError
 from core.material import ByDensity, ByMaterial, NotSet, Weighed
 from core.mesh import MeshAsset
@@ -120,7 +120,7 @@ class _Builder:
     def _nodes(self, entries: Sequence[NodeEntry], above: str, depth: int) -> tuple[Node, ...]:
         if depth >= DEEPEST:
             what = f"groups nest at most {DEEPEST} deep"
-            raise DocumentError(what, where=above.rstrip("."), remedy=_REMEDY)
+            raise DocumentError(what, where=short_place(above.rstrip(".")), remedy=_REMEDY)
         return tuple(self._node(entry, f"{above}members[{i}]", depth) for i, entry in enumerate(entries))
 
     def _node(self, entry: NodeEntry, place: str, depth: int) -> Node:
@@ -169,7 +169,7 @@ def _made(place: str, make: Callable[[], Built]) -> Built:
     try:
         return make()
     except MasswrightError as error:
-        where = ", ".join(said for said in (place, error.where) if said)
+        where = ", ".join(said for said in (short_place(place), error.where) if said)
         raise DocumentError(error.what, where=where, read=error.read, remedy=error.remedy) from error
 
 

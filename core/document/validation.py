@@ -11,12 +11,14 @@ if TYPE_CHECKING:
 
 # Longer than this, what was read is cut short in the sentence.
 _LONGEST_READ = 60
+# With more steps than this, the middle of a place is left out.
+_MOST_STEPS = 12
 
 # pydantic's kinds of error → what is wrong, and what to do; {…} are the limits that the kind carries.
 _SAID = {
     "missing": ("this entry is missing", ""),
     "extra_forbidden": ("this version knows no such entry", ""),
-    "recursion_loop": ("the groups nest deeper than in any document", ""),
+    "recursion_depth_exceeded": ("the groups nest deeper than in any document", ""),
     "finite_number": ("a number has to be finite", "Give an ordinary number"),
     "float_type": ("this has to be a number", "Give a number, without quotation marks"),
     "int_type": ("this has to be a whole number", "Give a whole number"),
@@ -38,6 +40,7 @@ _SAID = {
     "union_tag_invalid": ("the kind has to be one of {expected_tags}", ""),
     "union_tag_not_found": ("its kind is missing", ""),
 }
+_READ_NOTHING = {"missing", "union_tag_not_found", "recursion_depth_exceeded"}
 _UNIONS = {"body", "driver", "copies"}
 
 
@@ -79,7 +82,13 @@ def place_of(location: tuple[int | str, ...]) -> str:
             if isinstance(step, str):
                 under_members = step == "members"
         before = "" if is_tag else step
-    return "".join(kept).lstrip(".")
+    return short_place("".join(kept).lstrip("."))
+
+
+def short_place(place: str) -> str:
+    """Return a place in the JSON with its middle left out where groups nest deep."""
+    steps = place.split(".")
+    return place if len(steps) <= _MOST_STEPS else f"{'.'.join(steps[:3])} … {'.'.join(steps[-4:])}"
 
 
 def shown(value: object) -> str:
@@ -95,7 +104,7 @@ def _refusal(first: Any, data: object, count: int, remedy: str) -> DocumentError
     more = f" (the first of {count} such places)" if count > 1 else ""
     name = _name_of_node(first["loc"], data)
     where = f"{place or 'the document'}{f' ({name})' if name else ''}"
-    read = "" if first["type"] in {"missing", "union_tag_not_found"} else shown(first["input"])
+    read = "" if first["type"] in _READ_NOTHING else shown(first.get("ctx", {}).get("tag", first["input"]))
     return DocumentError(what + more, where=where, read=read, remedy=better or remedy)
 
 
