@@ -102,7 +102,7 @@ class Camera:
         if self.parallel:
             return middle - reach, middle + reach
         near = max(middle - reach, self.distance * _NEAR_OF_DISTANCE)
-        return near, max(middle + reach, 2 * near)
+        return near, max(middle, near) + reach
 
     def in_camera(self, points: ArrayLike) -> FloatArray:
         """Return points (..., 3) m in the camera frame."""

@@ -97,7 +97,7 @@ def surface_of(facets: Facets) -> Surface:
     )
 
 
-def lighter(surface: Surface, cells: int = 44) -> Surface:
+def lighter(surface: Surface, cells: int = 36) -> Surface:
     """Return the surface with the points in each cell of a grid drawn together; cells along its long side."""
     low, high = surface.vertices.min(axis=0), surface.vertices.max(axis=0)
     step = float((high - low).max()) / cells
@@ -196,20 +196,32 @@ def _softened(
     """Return vertices, normals and faces with one vertex for all corners that meet softly in a point."""
     soft = edges.corners[edges.turn >= np.cos(SHARP)]
     group = _joined(3 * len(corners), soft[:, 0].ravel(), soft[:, 1].ravel())
-    weight = np.repeat(normals, 3, axis=0)
+    own = np.repeat(normals, 3, axis=0)
+    # Weighted by the angle in the corner, so that how a face is cut into triangles does not show.
+    weight = own * _corner_angles(local, corners).reshape(-1, 1)
     summed = np.stack([np.bincount(group, weights=weight[:, i], minlength=len(group)) for i in range(3)], axis=1)
     length = np.linalg.norm(summed, axis=1, keepdims=True)
     mean = np.divide(summed, length, out=np.zeros_like(summed), where=length > 0)
-    leaning = np.einsum("ij,ij->i", mean[group], weight) < _LEAN
+    leaning = np.einsum("ij,ij->i", mean[group], own) < _LEAN
     group = np.where(leaning, np.arange(len(group)), group)
     # A corner that left its group owns its number only if no group goes by it; then it takes a new one.
     group[leaning] += len(group)
     used, faces = np.unique(group, return_inverse=True)
     alone = used >= len(group)
     source = np.where(alone, used - len(group), used)
-    vertex_normals = np.where(alone[:, None], weight[source], mean[source])
+    vertex_normals = np.where(alone[:, None], own[source], mean[source])
     vertices = local[corners.ravel()[source]]
     return vertices, vertex_normals.astype(np.float32), faces.reshape(-1, 3).astype(np.uint32)
+
+
+def _corner_angles(points: Float32Array, corners: IntArray) -> FloatArray:
+    """Return the angle in each corner of each facet, (m, 3) rad."""
+    spots = points[corners].astype(np.float64)
+    sides = np.roll(spots, -1, axis=1) - spots
+    length = np.sqrt(np.einsum("mij,mij->mi", sides, sides))
+    dots = -np.einsum("mij,mij->mi", sides, np.roll(sides, 1, axis=1))
+    scale = length * np.roll(length, 1, axis=1)
+    return np.arccos(np.clip(np.divide(dots, scale, out=np.ones_like(dots), where=scale > 0), -1.0, 1.0))
 
 
 def _joined(count: int, one: IntArray, two: IntArray) -> IntArray:
