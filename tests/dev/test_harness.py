@@ -124,7 +124,7 @@ def test_every_kind_of_leftover_fails_the_test_that_left_it_and_no_other(suite: 
     result.assert_outcomes(passed=7, errors=5)
     for what in ("a_window", "a_timer", "a_thread", "a_python_thread", "pool_work"):
         result.stdout.fnmatch_lines_random([f"ERROR *::test_leaves_{what}*"])
-    assert result.stdout.str().count("the test left behind: ") == 5
+    assert sum(line.startswith("the test left behind: ") for line in result.stdout.lines) == 5
 
 
 def test_a_warning_from_qt_fails_the_test(suite: pytest.Pytester) -> None:
