@@ -20,6 +20,9 @@ Triple: TypeAlias = tuple[float, float, float]
 # Refused above this: nobody means it, and each copy costs a placement.
 MOST_COPIES = 100_000
 
+# rad: a span this near to a full turn is one (360° typed or converted).
+_FULL_TURN_GAP = 1e-9
+
 # Cosine of the turn about y below which y counts as ±90°.
 _UPRIGHT = 1e-12
 
@@ -88,7 +91,8 @@ def turn_about(direction: ArrayLike, angle: ArrayLike) -> FloatArray:
 
 def matrix_of_turns(turns: ArrayLike) -> FloatArray:
     """Return Rz·Ry·Rx (3, 3) for turns (3,) rad about the fixed axes x, then y, then z."""
-    about_x, about_y, about_z = (turn_about(axis, angle) for axis, angle in zip(np.eye(3), np.asarray(turns), strict=True))
+    angles = np.asarray(turns, dtype=float)
+    about_x, about_y, about_z = (turn_about(axis, angle) for axis, angle in zip(np.eye(3), angles, strict=True))
     return np.asarray(about_z @ about_y @ about_x)
 
 
@@ -163,7 +167,7 @@ class Ring:
 
     def placements(self, tf_outer_first: Placement) -> Placement:
         """Return the placements of all copies, a batch (count,)."""
-        closed = abs(abs(self.span) - 2 * np.pi) < 1e-9
+        closed = abs(abs(self.span) - 2 * np.pi) < _FULL_TURN_GAP
         pitch = self.span / (self.count if closed else max(self.count - 1, 1))
         turns = turn_about(self.direction, self.start + pitch * np.arange(self.count))
         point = np.asarray(self.point)
