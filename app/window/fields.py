@@ -19,7 +19,8 @@ if TYPE_CHECKING:
     from app.window.session import Session
 
 LABEL_WIDTH = 148
-FIELD_WIDTH = 190
+FIELD_WIDTH = 134
+NARROW_WIDTH = 88
 
 
 class QuantityField(QWidget):
@@ -32,7 +33,9 @@ class QuantityField(QWidget):
 
     entered = Signal(float, str)
 
-    def __init__(self, session: Session, label: str, kind: Kind, unit: Unit | None = None) -> None:
+    def __init__(
+        self, session: Session, label: str, kind: Kind, unit: Unit | None = None, width: int = FIELD_WIDTH
+    ) -> None:
         super().__init__()
         self._session = session
         self._kind = kind
@@ -42,7 +45,7 @@ class QuantityField(QWidget):
         self._typed = ""
         self.line = QLineEdit()
         self.line.setAccessibleName(label)
-        self.line.setFixedWidth(FIELD_WIDTH - 56)
+        self.line.setFixedWidth(width)
         self.line.setAlignment(Qt.AlignmentFlag.AlignRight)
         self.unit_words = Words(self.unit.symbol, "quiet")
         self.understood = Words("", "quiet")
@@ -134,7 +137,7 @@ class QuantityField(QWidget):
             self._show()
             self.entered.emit(understood.value, self._typed)
 
-    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  # Qt's name
+    def keyPressEvent(self, event: QKeyEvent) -> None:
         """Escape drops what is being typed."""
         if event.key() == Qt.Key.Key_Escape and self.line.isModified():
             self.restore()
@@ -168,7 +171,7 @@ class TextField(QLineEdit):
         self.setText(text)
         self.setCursorPosition(0)
 
-    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  # Qt's name
+    def keyPressEvent(self, event: QKeyEvent) -> None:
         """Escape drops what is being typed."""
         if event.key() == Qt.Key.Key_Escape and self.isModified():
             self.setText(self._kept)
@@ -202,7 +205,7 @@ class ChoiceField(QComboBox):
                 self.setCurrentIndex(at)
                 return
 
-    def wheelEvent(self, event: object) -> None:  # noqa: N802  # Qt's name
+    def wheelEvent(self, event: object) -> None:
         """Change the choice with the wheel only while the field has the focus."""
         if self.hasFocus():
             super().wheelEvent(event)  # type: ignore[arg-type]  # handed on as it came
@@ -234,7 +237,7 @@ class Form(QWidget):
         """Add a field behind its label."""
         label = Words(text, "quiet")
         label.setFixedWidth(LABEL_WIDTH)
-        label.setContentsMargins(0, 4, 0, 0)
+        label.setContentsMargins(0, 3, 0, 0)
         label.setToolTip(tip)
         field.setToolTip(tip)
         label.setBuddy(field)
@@ -253,25 +256,26 @@ class Form(QWidget):
 
 
 class TripleField(QWidget):
-    """Three quantities of one kind, one under the other with their letters."""
+    """Three quantities of one kind in a row, each with its letter; what is refused is said below them."""
 
     entered = Signal(int, float, str)
 
     def __init__(self, session: Session, label: str, kind: Kind, unit: Unit | None = None) -> None:
         super().__init__()
-        self.fields = [QuantityField(session, f"{label} {letter}", kind, unit) for letter in "xyz"]
+        self.fields = [QuantityField(session, f"{label} {letter}", kind, unit, NARROW_WIDTH) for letter in "xyz"]
+        row = QHBoxLayout()
+        row.setSpacing(GRID // 2)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(2)
+        layout.addLayout(row)
         for at, (letter, field) in enumerate(zip("xyz", self.fields, strict=True)):
-            row = QHBoxLayout()
-            row.setSpacing(4)
-            words = Words(letter, "quiet")
-            words.setFixedWidth(12)
-            row.addWidget(words)
-            row.addWidget(field, 1)
-            layout.addLayout(row)
+            row.addWidget(Words(letter, "quiet"))
+            row.addWidget(field)
+            row.addSpacing(GRID)
+            layout.addWidget(field.wrong)
             field.entered.connect(lambda value, text, at=at: self.entered.emit(at, value, text))
+        row.addStretch(1)
 
     def set_values(self, values: tuple[float, float, float], typed: Callable[[int], str] = lambda _at: "") -> None:
         """Show three SI values, as they were typed where that is known."""
@@ -282,4 +286,4 @@ class TripleField(QWidget):
         """Return the three values, or None after saying in place which of them means nothing."""
         read = [field.read() for field in self.fields]
         values = [understood.value for understood in read if understood is not None]
-        return (values[0], values[1], values[2]) if len(values) == 3 else None  # noqa: PLR2004  # x, y, z
+        return (values[0], values[1], values[2]) if len(values) == 3 else None  # x, y, z

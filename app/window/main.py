@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import sys
 from dataclasses import replace
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -318,7 +319,7 @@ class MainWindow(QMainWindow):
     def _fill_recent(self) -> None:
         self.actions_.recent.clear()
         for path in self.settings.recent:
-            self.actions_.recent.addAction(str(path), lambda path=path: self.open_path(path))
+            self.actions_.recent.addAction(str(path), partial(self.open_path, path))
         if self.actions_.recent.isEmpty():
             self.actions_.recent.addAction("none yet").setEnabled(False)
 
@@ -397,7 +398,7 @@ class MainWindow(QMainWindow):
 
     # Qt's events
 
-    def closeEvent(self, event: QCloseEvent) -> None:  # noqa: N802  # Qt's name
+    def closeEvent(self, event: QCloseEvent) -> None:
         """Ask once about unsaved work, then remember how the window stood."""
         if self.session.unsaved:
             event.ignore()
@@ -415,12 +416,12 @@ class MainWindow(QMainWindow):
             self.settings.keep_state(name, keep())
         self._autosave.stop()
 
-    def dragEnterEvent(self, event: QDragEnterEvent) -> None:  # noqa: N802  # Qt's name
+    def dragEnterEvent(self, event: QDragEnterEvent) -> None:
         """Take files."""
         if event.mimeData().hasUrls():
             event.acceptProposedAction()
 
-    def dropEvent(self, event: QDropEvent) -> None:  # noqa: N802  # Qt's name
+    def dropEvent(self, event: QDropEvent) -> None:
         """Open a dropped document, or add dropped meshes."""
         paths = [Path(url.toLocalFile()) for url in event.mimeData().urls() if url.isLocalFile()]
         documents = [path for path in paths if path.suffix.lower() == DOCUMENT]
@@ -430,7 +431,7 @@ class MainWindow(QMainWindow):
         elif paths:
             self.add_meshes(paths)
 
-    def changeEvent(self, event: QEvent) -> None:  # noqa: N802  # Qt's name
+    def changeEvent(self, event: QEvent) -> None:
         """Follow a change of theme."""
         super().changeEvent(event)
         if event.type() == QEvent.Type.PaletteChange and hasattr(self, "actions_"):

@@ -44,7 +44,8 @@ class Session(QObject):
         self.decimal_mark = "."
         self.selected: frozenset[str] = frozenset()
         self._saved = self.history.present
-        self._judge()
+        self.ledger: Ledger = ledger_of(self.assembly)
+        self.findings: tuple[Finding, ...] = findings_of(self.assembly)
 
     @property
     def assembly(self) -> Assembly:
@@ -165,8 +166,8 @@ class Session(QObject):
         self.said.emit(words)
 
     def _judge(self) -> None:
-        self.ledger: Ledger = ledger_of(self.assembly)
-        self.findings: tuple[Finding, ...] = findings_of(self.assembly)
+        self.ledger = ledger_of(self.assembly)
+        self.findings = findings_of(self.assembly)
 
     def _after_change(self, select: str | None) -> None:
         wanted = self.selected if select is None else frozenset({select})

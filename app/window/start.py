@@ -22,6 +22,7 @@ class StartPanel(QWidget):
 
     def __init__(self, shapes: QMenu, add_mesh: Callable[[], None], open_sample: Callable[[], None]) -> None:
         super().__init__()
+        self.setObjectName("start")
         self.setAttribute(Qt.WidgetAttribute.WA_StyledBackground, True)
         head = Words("What turns?")
         head.setFont(heading_font(head))

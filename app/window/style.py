@@ -91,6 +91,7 @@ def _repaint(application: QApplication) -> None:
 
 def _sheet(c: Colours) -> str:
     return f"""
+    * {{ dialogbuttonbox-buttons-have-icons: 0; }}
     QToolTip {{ background: {c.ground}; color: {c.text}; border: 1px solid {c.hairline}; padding: 4px; }}
     QToolBar {{ background: {c.raised}; border: 0; border-bottom: 1px solid {c.hairline}; spacing: 4px;
                 padding: 4px 8px; }}
@@ -115,8 +116,32 @@ def _sheet(c: Colours) -> str:
     QPushButton:hover, QPushButton:focus, QPushButton:default {{ border-color: {c.blue}; }}
     QPushButton:pressed {{ background: {c.selection}; }}
     QPushButton:disabled {{ color: {c.quiet}; background: {c.raised}; }}
+    QComboBox::drop-down {{ border: 0; width: 20px; }}
+    QComboBox::down-arrow {{ image: url({(ICONS / "open.svg").as_posix()}); width: 12px; height: 12px; }}
+    QComboBox QAbstractItemView {{ background: {c.ground}; border: 1px solid {c.hairline}; padding: 2px; }}
+    QScrollBar:vertical {{ background: transparent; width: 12px; margin: 0; }}
+    QScrollBar:horizontal {{ background: transparent; height: 12px; margin: 0; }}
+    QScrollBar::handle {{ background: {c.hairline}; border: 3px solid transparent; border-radius: 3px; min-height: 32px;
+                          min-width: 32px; margin: 2px; }}
+    QScrollBar::handle:hover {{ background: {c.quiet}; }}
+    QScrollBar::add-line, QScrollBar::sub-line {{ width: 0; height: 0; }}
+    QScrollBar::add-page, QScrollBar::sub-page {{ background: transparent; }}
+    QMenu {{ background: {c.ground}; border: 1px solid {c.hairline}; padding: 4px; }}
+    QMenu::item {{ padding: 4px 32px 4px 24px; }}
+    QMenu::item:selected {{ background: {c.selection}; color: {c.text}; }}
+    QMenu::item:disabled {{ color: {c.quiet}; }}
+    QMenu::separator {{ height: 1px; background: {c.hairline}; margin: 4px 8px; }}
+    QWidget#page, QWidget#page QScrollArea, QWidget#start {{ background: {c.ground}; }}
+    QTreeView#foot {{ border-top: 1px solid {c.hairline}; background: {c.raised}; }}
+    QFrame#notice {{ background: {c.ground}; border-bottom: 1px solid {c.hairline}; }}
+    QToolButton::menu-indicator {{ image: url({(ICONS / "open.svg").as_posix()}); width: 10px; height: 10px;
+                                   subcontrol-position: right center; subcontrol-origin: padding; right: 2px; }}
+    QToolButton[popupMode="2"] {{ padding-right: 20px; }}
+    QProgressBar {{ border: 1px solid {c.hairline}; border-radius: 2px; background: {c.ground}; text-align: center;
+                    max-height: 16px; }}
+    QProgressBar::chunk {{ background: {c.blue}; }}
     QSplitter::handle {{ background: {c.hairline}; }}
-    QStatusBar {{ background: {c.raised}; border-top: 1px solid {c.hairline}; }}
+    QStatusBar {{ background: {c.raised}; border-top: 1px solid {c.hairline}; padding-left: 8px; }}
     QStatusBar::item {{ border: 0; }}
     """
 
@@ -145,14 +170,14 @@ class Words(QLabel):
         self.setStyleSheet(f"color: {colour};")
 
 
-_icon_cache: dict[tuple[str, bool], QIcon] = {}
+_icon_cache: dict[tuple[str, str, bool], QIcon] = {}
 
 
-def icon(name: str) -> QIcon:
-    """Return one of our line drawings in the text colour of the theme, sharp at any scale up to three."""
-    key = (name, is_dark())
+def icon(name: str, role: str = "text") -> QIcon:
+    """Return one of our line drawings in a colour of the theme, sharp at any scale up to three."""
+    key = (name, role, is_dark())
     if key not in _icon_cache:
-        drawing = (ICONS / f"{name}.svg").read_text(encoding="utf-8").replace("currentColor", colours().text)
+        drawing = (ICONS / f"{name}.svg").read_text(encoding="utf-8").replace("currentColor", getattr(colours(), role))
         renderer = QSvgRenderer(QByteArray(drawing.encode()))
         made = QIcon()
         for scale in (1, 2, 3):

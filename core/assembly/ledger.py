@@ -12,6 +12,10 @@ from core.assembly.assembly import Assembly, DriveAxis
 from core.assembly.nodes import Part, walk
 
 
+# How the basis of a value begins that a reader must not take as computed.
+WEAK = ("estimated", "no volume", "not set")
+
+
 @dataclass(frozen=True, eq=False)
 class Line:
     """One line of the ledger; a group's line is the sum of the lines it holds.
@@ -21,7 +25,7 @@ class Line:
         depth: of the node in the tree, 0 outermost.
         count: equal copies of it in the group that holds it.
         times: equal copies of it in the whole document, the copies of the groups around it multiplied in.
-        material: what says its mass, as shown ("" for a group).
+        material: what says its mass, as shown; of a group or the total only what some of its parts lack.
         basis: computed, weighed, data sheet, estimated …, not set.
         mass: kg, of all copies; None while it is not known.
         centre: (3,) m, of all copies together, document frame; None while the mass is not known.
@@ -89,11 +93,12 @@ def ledger_of(assembly: Assembly) -> Ledger:
         above[depth:] = [(above[depth - 1] if depth else 1) * node.copies.count]
         head = _Head(
             node.key, node.name, "part" if isinstance(node, Part) else "group", depth, node.copies.count, above[depth],
-            node.driver.label if isinstance(node, Part) else "", _common_basis(parts),
+            node.driver.label if isinstance(node, Part) else _warning(parts), _common_basis(parts),
         )
         lines.append(head.with_values(sums.of(slice(at, at + len(parts))), whole))
         at += isinstance(node, Part)
-    foot = _Head("", assembly.name, "total", 0, 1, 1, "", _common_basis(list(assembly.table.parts)))
+    everything = list(assembly.table.parts)
+    foot = _Head("", assembly.name, "total", 0, 1, 1, _warning(everything), _common_basis(everything))
     return Ledger(tuple(lines), foot.with_values(sums.of(slice(None)), whole), assembly.drive_axis)
 
 
@@ -124,8 +129,14 @@ def _common_basis(parts: list[Part]) -> str:
     bases = {part.basis for part in parts}
     if len(bases) <= 1:
         return bases.pop() if bases else ""
-    weak = sorted(basis for basis in bases if basis.startswith(("estimated", "no volume", "not set")))
-    return f"holds {weak[0]}" if weak else "mixed"
+    weak = sorted(basis for basis in bases if basis.startswith(WEAK))
+    return f"some {weak[0]}" if weak else "mixed"
+
+
+def _warning(parts: list[Part]) -> str:
+    """Return what some of the parts lack, as shown where a single part names its material."""
+    weak = sum(part.basis.startswith(WEAK) for part in parts)
+    return f"{weak} of {len(parts)} not computed" if weak else ""
 
 
 def _sums(assembly: Assembly) -> _Sums:
@@ -133,7 +144,7 @@ def _sums(assembly: Assembly) -> _Sums:
     rows, count = table.moments, len(table.parts)
 
     def per_part(values: FloatArray) -> FloatArray:
-        return np.bincount(table.owner, weights=values, minlength=count)
+        return np.asarray(np.bincount(table.owner, weights=values, minlength=count), dtype=np.float64)
 
     weighted = rows.mass[:, None] * rows.centre
     return _Sums(

@@ -10,21 +10,19 @@ from PySide6.QtCore import Qt
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QCheckBox,
-    QDialog,
-    QDialogButtonBox,
     QHeaderView,
     QProgressBar,
     QTableWidget,
     QTableWidgetItem,
-    QVBoxLayout,
     QWidget,
 )
 
+from app.window.dialogs.form import FormDialog
 from app.window.fields import Form, TextField
 from app.window.ledger.edits import driver_of
 from app.window.numbers import shown
 from app.window.pages.part_body import MESH_UNITS
-from app.window.style import GRID, Words
+from app.window.style import Words
 from app.window.tasks import Task
 from core.assembly import MeshBody, Part
 from core.errors import MasswrightError
@@ -41,16 +39,15 @@ HEADINGS = ("If the file is in", "it measures", "and one weighs")
 SOUND = frozenset({"closed", "hairline cracks", "inside out"})
 
 
-class AddMeshDialog(QDialog):
+class AddMeshDialog(FormDialog):
     """Goes through the files one by one; every one becomes a line, or is left out with the reason."""
 
     def __init__(self, session: Session, paths: Sequence[Path], parent: QWidget | None = None) -> None:
-        super().__init__(parent)
+        super().__init__("Add mesh", "Add part", 680, parent)
         self._session = session
         self._left = list(paths)
         self._asset: MeshAsset | None = None
         self._task: Task[MeshAsset] | None = None
-        self.setWindowTitle("Add mesh")
         self.file = Words()
         self.verdict = Words("", "quiet")
         self.verdict.setWordWrap(True)
@@ -60,29 +57,16 @@ class AddMeshDialog(QDialog):
         self.table = _unit_table(self)
         self.material = TextField("Material", "a material, a density (7850 kg/m³) or a weighed mass (1.2 kg)")
         self.all_alike = QCheckBox()
-        self.wrong = Words("", "failed")
-        self.wrong.setWordWrap(True)
-        self.buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel)
-        self.add_button = self.buttons.button(QDialogButtonBox.StandardButton.Ok)
-        self.add_button.setText("Add part")
         self._lay_out()
         self.table.itemSelectionChanged.connect(self._allow)
         self.material.textChanged.connect(lambda _text: self._show_table())
-        self.buttons.accepted.connect(self.add)
-        self.buttons.rejected.connect(self.reject)
         self._next()
 
     def _lay_out(self) -> None:
-        layout = QVBoxLayout(self)
-        layout.setContentsMargins(2 * GRID, 2 * GRID, 2 * GRID, 2 * GRID)
-        layout.setSpacing(GRID)
         form = Form()
         form.add("made of", self.material, "A material's name, a density, or the mass one piece was weighed at.")
         unit = Words("A mesh file does not say its length unit. Choose the line whose size is right.", "quiet")
-        below = (self.table, self.all_alike, self.wrong, self.buttons)
-        for widget in (self.file, self.bar, self.verdict, form, unit, *below):
-            layout.addWidget(widget)
-        self.setMinimumWidth(600)
+        self.stack(self.file, self.bar, self.verdict, form, unit, self.table, self.all_alike)
 
     def _next(self) -> None:
         """Read the next file, or close after the last one."""
@@ -93,7 +77,7 @@ class AddMeshDialog(QDialog):
         path = self._left[0]
         self.file.setText(f"Reading {path.name} …")
         self.verdict.setText("")
-        self.wrong.setText("")
+        self.refuse("")
         self.bar.setValue(0)
         self.bar.show()
         self.all_alike.setVisible(len(self._left) > 1)
@@ -115,23 +99,23 @@ class AddMeshDialog(QDialog):
         self._show_table()
         self._allow()
         if self.all_alike.isHidden() is False and self.all_alike.isChecked() and self._factor() is not None:
-            self.add()
+            self.take()
 
     def _unreadable(self, sentence: str) -> None:
         self.bar.hide()
         name = self._left[0].name
         self.file.setText(f"{name} was not added.")
-        self.wrong.setText(sentence)
-        self.add_button.setText("Next file" if len(self._left) > 1 else "Close")
-        self.add_button.setEnabled(True)
+        self.refuse(sentence)
+        self.take_button.setText("Next file" if len(self._left) > 1 else "Close")
+        self.take_button.setEnabled(True)
 
     def _factor(self) -> float | None:
         rows = self.table.selectionModel().selectedRows()
         return UNITS[MESH_UNITS[rows[0].row()]].factor if rows else None
 
     def _allow(self) -> None:
-        self.add_button.setText("Add part")
-        self.add_button.setEnabled(self._asset is not None and self._factor() is not None)
+        self.take_button.setText("Add part")
+        self.take_button.setEnabled(self._asset is not None and self._factor() is not None)
 
     def _show_table(self) -> None:
         """Show the size in every unit, and the mass that follows from it."""
@@ -160,7 +144,7 @@ class AddMeshDialog(QDialog):
         unit = self._session.units[Kind.MASS]
         return "material not set" if mass is None else f"{shown(self._session, mass, unit)} {unit.symbol}"
 
-    def add(self) -> None:
+    def take(self) -> None:
         """Add the file as a line, and go on with the next one."""
         if self._asset is None:
             self._left.pop(0)
@@ -173,14 +157,14 @@ class AddMeshDialog(QDialog):
             text = self.material.text()
             driver = driver_of(text, self._session.units, "made of") if text.strip() else NotSet()
         except MasswrightError as error:
-            self.wrong.setText(str(error))
+            self.refuse(str(error))
             return
         assembly = self._session.assembly
         key = assembly.fresh_key()
         part = Part(key, assembly.fresh_name(Path(self._asset.name).stem), MeshBody(self._asset, factor), driver)
         refusal = self._session.attempt(f"Add {part.name}", lambda before: before.inserted(part), select=key)
         if refusal:
-            self.wrong.setText(refusal)
+            self.refuse(refusal)
             return
         self._left.pop(0)
         self._next()
@@ -204,7 +188,8 @@ def _unit_table(parent: QWidget) -> QTableWidget:
     table.setTabKeyNavigation(False)
     header = table.horizontalHeader()
     header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
-    header.setSectionResizeMode(QHeaderView.ResizeMode.Stretch)
+    header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
+    header.setStretchLastSection(True)
     table.setFixedHeight(header.sizeHint().height() + len(MESH_UNITS) * table.rowHeight(0) + 8)
     return table
 

@@ -5,25 +5,24 @@ from __future__ import annotations
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
-from PySide6.QtWidgets import QDialog, QDialogButtonBox, QVBoxLayout, QWidget
-
+from app.window.dialogs.form import FormDialog
 from app.window.fields import Form, TextField, TripleField
-from app.window.style import GRID, Words
 from core.assembly import Assembly, DriveAxis
 from core.quantity import Kind
 
 if TYPE_CHECKING:
+    from PySide6.QtWidgets import QWidget
+
     from app.window.session import Session
 
 
-class AxisDialog(QDialog):
+class AxisDialog(FormDialog):
     """Edits one of the document's axes, or adds one; it becomes the drive axis."""
 
     def __init__(self, session: Session, axis: DriveAxis | None, parent: QWidget | None = None) -> None:
-        super().__init__(parent)
+        super().__init__("Drive axis" if axis else "New axis", "Use this axis", 520, parent)
         self._session = session
         self._old = axis
-        self.setWindowTitle("Drive axis" if axis else "New axis")
         shown = axis or DriveAxis(name="")
         self.name = TextField("Name", "Spindle, Tilt axis …")
         self.name.set_value(shown.name)
@@ -31,34 +30,22 @@ class AxisDialog(QDialog):
         self.point.set_values(shown.point)
         self.direction = TripleField(session, "along", Kind.NUMBER)
         self.direction.set_values(shown.direction)
-        self.wrong = Words("", "failed")
-        self.wrong.setWordWrap(True)
         form = Form()
         form.add("name", self.name)
         form.add("through", self.point, "Any point of the axis, in the document's frame.")
         form.add("along", self.direction, "Its direction, of any length. J does not depend on the sign.")
-        buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel)
-        buttons.accepted.connect(self.take)
-        buttons.rejected.connect(self.reject)
-        layout = QVBoxLayout(self)
-        layout.setContentsMargins(2 * GRID, 2 * GRID, 2 * GRID, 2 * GRID)
-        layout.setSpacing(GRID)
-        for widget in (form, self.wrong, buttons):
-            layout.addWidget(widget)
-        self.setMinimumWidth(440)
+        self.stack(form)
 
     def take(self) -> None:
         """Make the axis the drive axis, or say in place why it cannot be one."""
         point, direction, name = self.point.read(), self.direction.read(), self.name.text().strip()
-        if not name:
-            self.wrong.setText("The axis needs a name.")
+        self.refuse("" if name else "The axis needs a name.")
         if point is None or direction is None or not name:
             return
         words = f"Axis {name}" if self._old else f"Add axis {name}"
         refusal = self._session.attempt(words, lambda before: self._with_axis(before, name, point, direction))
-        if refusal:
-            self.wrong.setText(refusal)
-        else:
+        self.refuse(refusal)
+        if not refusal:
             self.accept()
 
     def _with_axis(

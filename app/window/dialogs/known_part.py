@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtWidgets import QDialog, QDialogButtonBox, QStackedWidget, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QStackedWidget, QWidget
 
+from app.window.dialogs.form import FormDialog
 from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField
 from app.window.pages.part_body import TENSOR_LABELS, TENSOR_TIP
-from app.window.style import GRID, Words
 from core.assembly import DataSheet, KnownAxial, KnownTensor, Part
 from core.quantity import Kind
 
@@ -23,13 +23,12 @@ ABOUT: list[tuple[str, object]] = [
 ]
 
 
-class KnownPartDialog(QDialog):
+class KnownPartDialog(FormDialog):
     """A form that adds one part to the ledger when it is complete."""
 
     def __init__(self, session: Session, parent: QWidget | None = None) -> None:
-        super().__init__(parent)
+        super().__init__("Add known part", "Add part", 560, parent)
         self._session = session
-        self.setWindowTitle("Add known part")
         self.name = TextField("Name", "motor rotor, bearing, brake disc …")
         self.source = TextField("Source", "document, page, date")
         self.mass = QuantityField(session, "mass", Kind.MASS)
@@ -42,8 +41,6 @@ class KnownPartDialog(QDialog):
         self.tensor = [QuantityField(session, label, Kind.INERTIA) for label in TENSOR_LABELS]
         for field in self.tensor[3:]:
             field.set_value(0.0)
-        self.wrong = Words("", "failed")
-        self.wrong.setWordWrap(True)
         self._kinds = QStackedWidget()
         self._lay_out()
         self.about.chosen.connect(self._choose)
@@ -64,23 +61,14 @@ class KnownPartDialog(QDialog):
             tensor.add(label, field, TENSOR_TIP)
         for page in (QWidget(), axial, tensor):
             self._kinds.addWidget(page)
-        buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel)
-        buttons.button(QDialogButtonBox.StandardButton.Ok).setText("Add part")
-        buttons.accepted.connect(self.add)
-        buttons.rejected.connect(self.reject)
-        layout = QVBoxLayout(self)
-        layout.setContentsMargins(2 * GRID, 2 * GRID, 2 * GRID, 2 * GRID)
-        layout.setSpacing(GRID)
-        for widget in (form, self._kinds, self.wrong, buttons):
-            layout.addWidget(widget)
-        self.setMinimumWidth(520)
+        self.stack(form, self._kinds)
 
     def _choose(self, about: object) -> None:
         self._kinds.setCurrentIndex({"": 0, "axis": 1}.get(str(about), 2))
 
-    def add(self) -> None:
+    def take(self) -> None:
         """Add the part, or say in place what is missing."""
-        self.wrong.setText("")
+        self.refuse("")
         body = self._body()
         if body is None:
             return
@@ -89,15 +77,14 @@ class KnownPartDialog(QDialog):
         key = assembly.fresh_key()
         part = Part(key, assembly.fresh_name(name), body, DataSheet())
         refusal = self._session.attempt(f"Add {part.name}", lambda before: before.inserted(part), select=key)
-        if refusal:
-            self.wrong.setText(refusal)
-        else:
+        self.refuse(refusal)
+        if not refusal:
             self.accept()
 
     def _body(self) -> KnownAxial | KnownTensor | None:
         mass, centre, about = self.mass.read(), self.centre.read(), self.about.currentData()
         if not about:
-            self.wrong.setText(
+            self.refuse(
                 "Choose what the data sheet's inertia is about: about another point, the same number is another body."
             )
         if mass is None or centre is None or not about:

@@ -38,7 +38,7 @@ class LedgerDelegate(QStyledItemDelegate):
         self._session = session
         self._model = model
 
-    def sizeHint(self, option: QStyleOptionViewItem, index: Index) -> QSize:  # noqa: N802  # Qt's name
+    def sizeHint(self, option: QStyleOptionViewItem, index: Index) -> QSize:
         """Return a row of one height, so that long ledgers scroll evenly."""
         return QSize(super().sizeHint(option, index).width() + 2 * GRID, ROW_HEIGHT)
 
@@ -56,11 +56,13 @@ class LedgerDelegate(QStyledItemDelegate):
         painter.setPen(_pen(line, index.column(), c))
         text = str(index.data(Qt.ItemDataRole.DisplayRole) or "")
         inner = option.rect.adjusted(GRID, 0, -GRID, 0)
+        mark = self._session.decimal_mark
         column = COLUMNS[index.column()]
         if column.key == "share":
             _paint_share(painter, inner, line, text, c)
         elif column.kind is not None:
-            _paint_figure(painter, inner, text, self._session.decimal_mark, self._tail(painter, index))
+            room = option.fontMetrics.horizontalAdvance(mark + "0" * self._model.longest_tail(index.column()))
+            _paint_figure(painter, inner, text, mark, room)
         else:
             side = Qt.AlignmentFlag.AlignRight if column.key == "count" else Qt.AlignmentFlag.AlignLeft
             words = painter.fontMetrics().elidedText(text, Qt.TextElideMode.ElideRight, inner.width())
@@ -79,12 +81,7 @@ class LedgerDelegate(QStyledItemDelegate):
         elif option.state & QStyle.StateFlag.State_MouseOver:
             painter.fillRect(option.rect, QColor(c.raised))
 
-    def _tail(self, painter: QPainter, index: Index) -> int:
-        """Return the room that the column's longest run of decimals takes behind the decimal mark, in pixels."""
-        longest = self._model.longest_tail(index.column())
-        return painter.fontMetrics().horizontalAdvance("0" * longest)
-
-    def createEditor(self, parent: QWidget, option: QStyleOptionViewItem, index: Index) -> QWidget:  # noqa: N802, ARG002  # Qt's name and signature
+    def createEditor(self, parent: QWidget, option: QStyleOptionViewItem, index: Index) -> QWidget:  # Qt's name and signature
         """Return a plain line to type in; for a material it proposes those of the table."""
         editor = QLineEdit(parent)
         editor.setAccessibleName(COLUMNS[index.column()].heading)
@@ -96,13 +93,13 @@ class LedgerDelegate(QStyledItemDelegate):
             editor.setPlaceholderText("material, 7850 kg/m³, 1.2 kg")
         return editor
 
-    def setEditorData(self, editor: QWidget, index: Index) -> None:  # noqa: N802  # Qt's name
+    def setEditorData(self, editor: QWidget, index: Index) -> None:
         """Put the text to edit into the editor, all of it selected."""
         if isinstance(editor, QLineEdit):
             editor.setText(str(index.data(Qt.ItemDataRole.EditRole) or ""))
             editor.selectAll()
 
-    def setModelData(self, editor: QWidget, model: QAbstractItemModel, index: Index) -> None:  # noqa: N802  # Qt's name
+    def setModelData(self, editor: QWidget, model: QAbstractItemModel, index: Index) -> None:
         """Hand what was typed to the model; a refusal is told where it was typed."""
         if not isinstance(editor, QLineEdit):
             return
@@ -112,25 +109,23 @@ class LedgerDelegate(QStyledItemDelegate):
         model.setData(index, editor.text(), Qt.ItemDataRole.EditRole)
         self._session.refused.disconnect(refusals.append)
         if refusals:
-            QToolTip.showText(at, refusals[0], self.parent() if isinstance(self.parent(), QWidget) else None)
+            QToolTip.showText(at, refusals[0])
 
 
 def _pen(line: Line, column: int, c: Colours) -> QColor:
     if column == INDEX["material"]:
         if line.basis == "not set":
             return QColor(c.estimate)
-        return QColor(c.text if line.kind == "part" else c.quiet)
+        return QColor(c.text if line.kind == "part" else c.estimate)
     if line.mass is None and column >= INDEX["mass"]:
         return QColor(c.quiet)
     estimated = "estimated" in line.basis or "not set" in line.basis
     return QColor(c.estimate if estimated and column >= INDEX["mass"] else c.text)
 
 
-def _paint_figure(painter: QPainter, rect: QRect, text: str, mark: str, tail: int) -> None:
-    """Draw a number so that its decimal mark stands where all the marks of the column stand."""
+def _paint_figure(painter: QPainter, rect: QRect, text: str, mark: str, room: int) -> None:
+    """Draw a number with room pixels from its decimal mark to the edge, so that all marks of a column line up."""
     whole, point, part = text.partition(mark)
-    metrics = painter.fontMetrics()
-    room = metrics.horizontalAdvance(mark) + tail
     middle = rect.right() - room
     flags = int(Qt.AlignmentFlag.AlignVCenter)
     painter.drawText(QRect(rect.left() - GRID, rect.top(), middle - rect.left() + GRID, rect.height()),

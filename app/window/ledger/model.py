@@ -107,27 +107,27 @@ class LedgerModel(QAbstractItemModel):
             self._tails[column] = max(len(text.partition(self.session.decimal_mark)[2]) for text in texts)
         return self._tails[column]
 
-    def index(self, row: int, column: int, parent: Index = QModelIndex()) -> QModelIndex:  # noqa: B008  # Qt's signature
+    def index(self, row: int, column: int, parent: Index = QModelIndex()) -> QModelIndex:  # Qt's signature
         """Return the index of a child."""
         rows = self._children[parent.internalId() if parent.isValid() else 0]
         if 0 <= row < len(rows) and 0 <= column < len(COLUMNS):
             return self.createIndex(row, column, rows[row] + 1)
         return QModelIndex()
 
-    def parent(self, index: Index = QModelIndex()) -> QModelIndex:  # type: ignore[override]  # noqa: B008  # two overloads in Qt
+    def parent(self, index: Index = QModelIndex()) -> QModelIndex:  # type: ignore[override]  # two overloads in Qt
         """Return the index of the group that holds a line."""
         if not index.isValid():
             return QModelIndex()
         above = self._place[index.internalId() - 1][0]
         return self._index(above - 1, 0) if above else QModelIndex()
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # noqa: N802, B008  # Qt's name and signature
+    def rowCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
         """Return how many lines a group holds."""
         if parent.column() > 0:
             return 0
         return len(self._children[parent.internalId() if parent.isValid() else 0])
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:  # noqa: N802, B008, ARG002  # Qt's name and signature
+    def columnCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
         """Return the number of columns."""
         return len(COLUMNS)
 
@@ -152,7 +152,7 @@ class LedgerModel(QAbstractItemModel):
             return False
         return column == INDEX["material"] or (column == INDEX["mass"] and line.basis == "weighed" and line.times == 1)
 
-    def headerData(self, section: int, orientation: Qt.Orientation, role: int = 0) -> object:  # noqa: N802  # Qt's name
+    def headerData(self, section: int, orientation: Qt.Orientation, role: int = 0) -> object:
         """Return a column's heading, with its unit on a second line."""
         if orientation != Qt.Orientation.Horizontal:
             return None
@@ -184,10 +184,11 @@ class LedgerModel(QAbstractItemModel):
             return f"Values: {line.basis}"
         if role == Qt.ItemDataRole.AccessibleTextRole:
             text = cell_text(self.session, line, column, Qt.ItemDataRole.DisplayRole)
-            return f"{COLUMNS[column].heading.format(axis=self.session.assembly.drive)} {text} {self._unit_text(column)}"
+            heading = COLUMNS[column].heading.format(axis=self.session.assembly.drive)
+            return f"{heading} {text} {self._unit_text(column)}"
         return None
 
-    def setData(self, index: Index, value: object, role: int = Qt.ItemDataRole.EditRole) -> bool:  # noqa: N802  # Qt's name
+    def setData(self, index: Index, value: object, role: int = Qt.ItemDataRole.EditRole) -> bool:
         """Turn what was typed into an edit; return whether it was taken."""
         if role != Qt.ItemDataRole.EditRole or not index.isValid():
             return False
@@ -204,22 +205,24 @@ class LedgerModel(QAbstractItemModel):
         words = {"name": "Rename", "count": "Quantity of", "material": "Material of", "mass": "Mass of"}[key]
         return self.session.edit(f"{words} {line.name}", change)
 
-    def supportedDropActions(self) -> Qt.DropAction:  # noqa: N802  # Qt's name
+    def supportedDropActions(self) -> Qt.DropAction:
         """Return that lines are moved, not copied."""
         return Qt.DropAction.MoveAction
 
-    def mimeTypes(self) -> list[str]:  # noqa: N802  # Qt's name
+    def mimeTypes(self) -> list[str]:
         """Return the one form in which lines are dragged."""
         return [MIME]
 
-    def mimeData(self, indexes: Sequence[Index]) -> QMimeData:  # noqa: N802  # Qt's name
+    def mimeData(self, indexes: Sequence[Index]) -> QMimeData:
         """Return the keys of the dragged lines."""
         keys = dict.fromkeys(self.line(index).key for index in indexes)
         data = QMimeData()
         data.setData(MIME, "\n".join(keys).encode())
         return data
 
-    def dropMimeData(self, data: QMimeData, action: Qt.DropAction, row: int, column: int, parent: Index) -> bool:  # noqa: N802, ARG002  # Qt's name and signature
+    def dropMimeData(
+        self, data: QMimeData, action: Qt.DropAction, row: int, column: int, parent: Index  # Qt's signature
+    ) -> bool:
         """Move the dropped lines into a group, or between two lines."""
         if not data.hasFormat(MIME):
             return False
@@ -239,11 +242,11 @@ class FootModel(QAbstractTableModel):
         for signal in (session.changed, session.shown_differently):
             signal.connect(lambda: self.dataChanged.emit(self.index(0, 0), self.index(0, len(COLUMNS) - 1)))
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # noqa: N802, B008  # Qt's name and signature
+    def rowCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
         """Return the one row."""
         return 0 if parent.isValid() else 1
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:  # noqa: N802, B008  # Qt's name and signature
+    def columnCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
         """Return the columns of the ledger."""
         return 0 if parent.isValid() else len(COLUMNS)
 
@@ -256,7 +259,7 @@ class FootModel(QAbstractTableModel):
             return COLUMNS[index.column()].tip
         if role not in {Qt.ItemDataRole.DisplayRole, COPY_ROLE}:
             return None
-        words = {INDEX["name"]: "TOTAL", INDEX["count"]: "", INDEX["material"]: ""}
+        words = {INDEX["name"]: "TOTAL", INDEX["count"]: ""}
         return words.get(index.column(), cell_text(self.session, total, index.column(), role))
 
 
@@ -286,7 +289,7 @@ def cell_text(session: Session, line: Line, column: int, role: int) -> str:
         return value
     if isinstance(value, int):
         return str(value)
-    if spec.kind is Kind.NUMBER:
-        return shown(session, value, UNITS["%"], spec.digits) + " %" if role == 0 else copied(session, value, UNITS["%"])
-    unit = session.units[Kind(spec.kind)]
-    return shown(session, value, unit, spec.digits) if role == 0 else copied(session, value, unit)
+    unit = UNITS["%"] if spec.kind in {None, Kind.NUMBER} else session.units[Kind(str(spec.kind))]
+    if role != Qt.ItemDataRole.DisplayRole:
+        return copied(session, value, unit)
+    return shown(session, value, unit, spec.digits) + (" %" if unit.symbol == "%" else "")

@@ -83,17 +83,17 @@ class LedgerTree(QTreeView):
             model.blockSignals(False)
         self.viewport().update()
 
-    def mousePressEvent(self, event: QMouseEvent) -> None:  # noqa: N802  # Qt's name
+    def mousePressEvent(self, event: QMouseEvent) -> None:
         """Drag lines by their names only; in the other columns dragging selects a block of cells."""
         self.setDragEnabled(self.indexAt(event.position().toPoint()).column() == INDEX["name"])
         super().mousePressEvent(event)
 
-    def leaveEvent(self, event: object) -> None:  # noqa: N802  # Qt's name
+    def leaveEvent(self, event: object) -> None:
         """Tell that the pointer is over no line any more."""
         self.hovered.emit("")
         super().leaveEvent(event)  # type: ignore[arg-type]  # handed on as it came
 
-    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  # Qt's name
+    def keyPressEvent(self, event: QKeyEvent) -> None:
         """Leave Delete and the shortcuts to the window; Return edits like F2."""
         if event.key() in {Qt.Key.Key_Delete, Qt.Key.Key_Backspace}:
             event.ignore()

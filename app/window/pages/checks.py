@@ -4,9 +4,17 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QModelIndex, QPersistentModelIndex, QRect, QSize, Qt
 from PySide6.QtGui import QColor
-from PySide6.QtWidgets import QHeaderView, QTreeWidget, QTreeWidgetItem, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QHeaderView,
+    QStyledItemDelegate,
+    QStyleOptionViewItem,
+    QTreeWidget,
+    QTreeWidgetItem,
+    QVBoxLayout,
+    QWidget,
+)
 
 from app.window.style import GRID, Words, colours, icon
 
@@ -15,31 +23,53 @@ if TYPE_CHECKING:
     from core.assembly import Finding
 
 KEY = Qt.ItemDataRole.UserRole
+WORD, PART, TEXT = range(3)
+
+
+class WrappedText(QStyledItemDelegate):
+    """Gives a sentence as many lines as it needs in the width of its column."""
+
+    def sizeHint(self, option: QStyleOptionViewItem, index: QModelIndex | QPersistentModelIndex) -> QSize:
+        """Return the height of the sentence in the column as it is now."""
+        size = super().sizeHint(option, index)
+        tree = self.parent()
+        if index.column() == TEXT and isinstance(tree, QTreeWidget):
+            width = tree.header().sectionSize(TEXT) - 2 * GRID
+            flags = int(Qt.TextFlag.TextWordWrap)
+            text = str(index.data(Qt.ItemDataRole.DisplayRole) or "")
+            size.setHeight(option.fontMetrics.boundingRect(QRect(0, 0, width, 10_000), flags, text).height())
+        return QSize(size.width(), size.height() + GRID)
 
 
 class ChecksPage(QWidget):
-    """Every finding as a line; a click selects the part it is about."""
+    """Every finding as a line, the sound ones folded away; a click selects the part it is about."""
 
     def __init__(self, session: Session, parent: QWidget | None = None) -> None:
         super().__init__(parent)
+        self.setObjectName("page")
+        self.setAttribute(Qt.WidgetAttribute.WA_StyledBackground, True)
         self._session = session
+        self._unfolded = False
         self.head = Words()
         self.list = QTreeWidget()
         self.list.setAccessibleName("Checks")
         self.list.setHeaderLabels(["", "Part", "What was found"])
-        self.list.setRootIsDecorated(False)
         self.list.setWordWrap(True)
-        self.list.setUniformRowHeights(False)
+        self.list.setIndentation(2 * GRID)
+        self.list.setItemDelegate(WrappedText(self.list))
         header = self.list.header()
-        header.setSectionResizeMode(0, QHeaderView.ResizeMode.ResizeToContents)
-        header.setSectionResizeMode(1, QHeaderView.ResizeMode.ResizeToContents)
-        header.setSectionResizeMode(2, QHeaderView.ResizeMode.Stretch)
+        header.setSectionResizeMode(WORD, QHeaderView.ResizeMode.ResizeToContents)
+        header.setSectionResizeMode(PART, QHeaderView.ResizeMode.ResizeToContents)
+        header.setSectionResizeMode(TEXT, QHeaderView.ResizeMode.Stretch)
+        header.sectionResized.connect(lambda *_sizes: self.list.scheduleDelayedItemsLayout())
         layout = QVBoxLayout(self)
         layout.setContentsMargins(2 * GRID, GRID, 2 * GRID, GRID)
         layout.addWidget(self.head)
         layout.addWidget(self.list, 1)
         self.list.itemClicked.connect(self._go)
         self.list.itemActivated.connect(self._go)
+        self.list.itemExpanded.connect(lambda _item: self._keep_fold(unfolded=True))
+        self.list.itemCollapsed.connect(lambda _item: self._keep_fold(unfolded=False))
         session.changed.connect(self.refresh)
         self.refresh()
 
@@ -50,18 +80,25 @@ class ChecksPage(QWidget):
         sound = [finding for finding in findings if finding.check.ok]
         self.list.clear()
         for finding in failed:
-            self.list.addTopLevelItem(_item(finding, "look", "failed", colours().failed))
-        for finding in sound:
-            self.list.addTopLevelItem(_item(finding, "sound", "sound", colours().sound))
+            self.list.addTopLevelItem(_item(finding, "look", "failed"))
+        if sound:
+            fold = QTreeWidgetItem([f"{len(sound)} sound", "", "What was checked and found right."])
+            fold.setIcon(WORD, icon("sound", "sound"))
+            fold.addChildren([_item(finding, "sound", "sound") for finding in sound])
+            self.list.addTopLevelItem(fold)
+            fold.setExpanded(self._unfolded)
         if not findings:
             self.head.setText("Nothing to check yet: add a part, and its mass, inertia and mesh are checked here.")
         elif failed:
-            self.head.setText(f"{counted(len(failed))} a look; {len(sound)} are sound. A click goes to the part.")
+            self.head.setText(f"{counted(len(failed))} a look. A click goes to the part.")
         else:
             self.head.setText(f"All {len(sound)} checks are sound.")
 
+    def _keep_fold(self, *, unfolded: bool) -> None:
+        self._unfolded = unfolded
+
     def _go(self, item: QTreeWidgetItem) -> None:
-        key = str(item.data(0, KEY))
+        key = str(item.data(WORD, KEY) or "")
         if key:
             self._session.select(frozenset({key}))
 
@@ -71,12 +108,12 @@ def counted(failed: int) -> str:
     return f"{failed} check needs" if failed == 1 else f"{failed} checks need"
 
 
-def _item(finding: Finding, word: str, drawing: str, colour: str) -> QTreeWidgetItem:
-    item = QTreeWidgetItem([word, finding.name, finding.check.text])
-    item.setIcon(0, icon(drawing))
-    item.setForeground(0, QColor(colour))
-    item.setData(0, KEY, finding.key)
-    item.setToolTip(2, finding.check.text)
+def _item(finding: Finding, word: str, role: str) -> QTreeWidgetItem:
+    text = finding.check.text.removeprefix(f"{finding.name}: ")
+    item = QTreeWidgetItem([word, finding.name, text[:1].upper() + text[1:]])
+    item.setIcon(WORD, icon(role, role))
+    item.setForeground(WORD, QColor(getattr(colours(), role)))
+    item.setData(WORD, KEY, finding.key)
     for column in range(3):
-        item.setTextAlignment(column, Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignTop)
+        item.setTextAlignment(column, Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
     return item

@@ -61,6 +61,7 @@ class PartPage(QScrollArea):
         self.setFrameShape(QFrame.Shape.NoFrame)
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setAccessibleName("Part page")
+        self.setObjectName("page")
         for signal in (session.changed, session.selection_changed, session.shown_differently):
             signal.connect(self.refresh)
         self.refresh()
@@ -92,6 +93,7 @@ class PartPage(QScrollArea):
 
     def _build(self, node: Node | None) -> None:
         page = QWidget()
+        page.setObjectName("page")
         layout = QVBoxLayout(page)
         layout.setContentsMargins(2 * GRID, GRID, 2 * GRID, 2 * GRID)
         self._sections = []

@@ -60,7 +60,8 @@ def _kind(dimension: Dimension) -> Kind:
 def _resized(name: str) -> NumberChange:
     def change(node: Node, value: float) -> Node:
         shape = _shape(node)
-        return replace(node, body=ShapeBody(type(shape).of({**shape.values(), name: value})))
+        resized = ShapeBody(type(shape).of({**shape.values(), name: value}))
+        return replace(node, body=resized) if isinstance(node, Part) else node
 
     return change
 

@@ -77,7 +77,8 @@ class CopiesSection(Section):
         if isinstance(copies, Ring):
             self._angle("start", "first copy at", "Turn of the first copy away from where the part was placed.")
             self._angle("span", "over", "360° spaces the copies evenly all round.")
-            self._turning = ChoiceField("Copies turn", [("turn with the ring", True), ("keep their orientation", False)])
+            turning: list[tuple[str, object]] = [("turn with the ring", True), ("keep their orientation", False)]
+            self._turning = ChoiceField("Copies turn", turning)
             self.form.add("copies", self._turning)
             self._turning.chosen.connect(self._choose_turning)
             self._triple("point", "axis through", Kind.LENGTH, "A point on the ring's axis, in the group's frame.")

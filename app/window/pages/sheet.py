@@ -51,11 +51,11 @@ class SheetModel(QAbstractTableModel):
         else:
             self.endResetModel()
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # noqa: N802, B008  # Qt's name and signature
+    def rowCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
         """Return headings and values."""
         return 0 if parent.isValid() else len(self.rows)
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:  # noqa: N802, B008  # Qt's name and signature
+    def columnCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
         """Return symbol, label, value, unit, copy."""
         return 0 if parent.isValid() else 5
 
@@ -75,7 +75,8 @@ class SheetModel(QAbstractTableModel):
         if role == Qt.ItemDataRole.AccessibleTextRole:
             return f"{entry.label} {value} {entry.unit.symbol}"
         copy = "copy" if entry.si is not None else ""
-        return (entry.symbol, short_label(entry), value, entry.unit.symbol, copy)[column]
+        symbol = entry.symbol.removesuffix("_c").replace("_", " ")
+        return (symbol, short_label(entry), value, entry.unit.symbol, copy)[column]
 
     @staticmethod
     def _heading_data(text: str, column: int, role: int) -> object:
@@ -143,7 +144,7 @@ class SheetTable(QTableView):
         if index.column() == COPY:
             self.copy_wanted.emit(index.row())
 
-    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  # Qt's name
+    def keyPressEvent(self, event: QKeyEvent) -> None:
         """Return copies the current value."""
         if event.key() in {Qt.Key.Key_Return, Qt.Key.Key_Enter} and self.currentIndex().isValid():
             self.copy_wanted.emit(self.currentIndex().row())
@@ -156,6 +157,8 @@ class SheetPage(QWidget):
 
     def __init__(self, session: Session, parent: QWidget | None = None) -> None:
         super().__init__(parent)
+        self.setObjectName("page")
+        self.setAttribute(Qt.WidgetAttribute.WA_StyledBackground, True)
         self._session = session
         self.of = ChoiceField("Of", OF)
         self.about = ChoiceField("About", ABOUT)
@@ -247,7 +250,7 @@ class SheetPage(QWidget):
         QGuiApplication.clipboard().setText("\n".join(lines))
         self._session.said.emit(f"Copied {len(lines)} value{'s' if len(lines) > 1 else ''}")
 
-    def changeEvent(self, event: QEvent) -> None:  # noqa: N802  # Qt's name
+    def changeEvent(self, event: QEvent) -> None:
         """Follow a change of theme."""
         super().changeEvent(event)
         if event.type() == QEvent.Type.PaletteChange:
