@@ -286,4 +286,4 @@ class TripleField(QWidget):
         """Return the three values, or None after saying in place which of them means nothing."""
         read = [field.read() for field in self.fields]
         values = [understood.value for understood in read if understood is not None]
-        return (values[0], values[1], values[2]) if len(values) == 3 else None  # x, y, z
+        return (values[0], values[1], values[2]) if len(values) == len(self.fields) else None

@@ -81,7 +81,7 @@ class LedgerDelegate(QStyledItemDelegate):
         elif option.state & QStyle.StateFlag.State_MouseOver:
             painter.fillRect(option.rect, QColor(c.raised))
 
-    def createEditor(self, parent: QWidget, option: QStyleOptionViewItem, index: Index) -> QWidget:  # Qt's name and signature
+    def createEditor(self, parent: QWidget, option: QStyleOptionViewItem, index: Index) -> QWidget:
         """Return a plain line to type in; for a material it proposes those of the table."""
         editor = QLineEdit(parent)
         editor.setAccessibleName(COLUMNS[index.column()].heading)

@@ -107,7 +107,7 @@ class LedgerModel(QAbstractItemModel):
             self._tails[column] = max(len(text.partition(self.session.decimal_mark)[2]) for text in texts)
         return self._tails[column]
 
-    def index(self, row: int, column: int, parent: Index = QModelIndex()) -> QModelIndex:  # Qt's signature
+    def index(self, row: int, column: int, parent: Index = QModelIndex()) -> QModelIndex:
         """Return the index of a child."""
         rows = self._children[parent.internalId() if parent.isValid() else 0]
         if 0 <= row < len(rows) and 0 <= column < len(COLUMNS):
@@ -121,13 +121,13 @@ class LedgerModel(QAbstractItemModel):
         above = self._place[index.internalId() - 1][0]
         return self._index(above - 1, 0) if above else QModelIndex()
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
+    def rowCount(self, parent: Index = QModelIndex()) -> int:
         """Return how many lines a group holds."""
         if parent.column() > 0:
             return 0
         return len(self._children[parent.internalId() if parent.isValid() else 0])
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
+    def columnCount(self, parent: Index = QModelIndex()) -> int:
         """Return the number of columns."""
         return len(COLUMNS)
 
@@ -221,7 +221,7 @@ class LedgerModel(QAbstractItemModel):
         return data
 
     def dropMimeData(
-        self, data: QMimeData, action: Qt.DropAction, row: int, column: int, parent: Index  # Qt's signature
+        self, data: QMimeData, action: Qt.DropAction, row: int, column: int, parent: Index
     ) -> bool:
         """Move the dropped lines into a group, or between two lines."""
         if not data.hasFormat(MIME):
@@ -242,11 +242,11 @@ class FootModel(QAbstractTableModel):
         for signal in (session.changed, session.shown_differently):
             signal.connect(lambda: self.dataChanged.emit(self.index(0, 0), self.index(0, len(COLUMNS) - 1)))
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
+    def rowCount(self, parent: Index = QModelIndex()) -> int:
         """Return the one row."""
         return 0 if parent.isValid() else 1
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
+    def columnCount(self, parent: Index = QModelIndex()) -> int:
         """Return the columns of the ledger."""
         return 0 if parent.isValid() else len(COLUMNS)
 

@@ -51,11 +51,11 @@ class SheetModel(QAbstractTableModel):
         else:
             self.endResetModel()
 
-    def rowCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
+    def rowCount(self, parent: Index = QModelIndex()) -> int:
         """Return headings and values."""
         return 0 if parent.isValid() else len(self.rows)
 
-    def columnCount(self, parent: Index = QModelIndex()) -> int:  # Qt's name and signature
+    def columnCount(self, parent: Index = QModelIndex()) -> int:
         """Return symbol, label, value, unit, copy."""
         return 0 if parent.isValid() else 5
 
