@@ -14,7 +14,7 @@ pytest_plugins = ["pytester"]
 CONFTEST = Path(__file__).parents[1] / "conftest.py"
 INI = """
 [pytest]
-addopts = --strict-markers
+addopts = --strict-markers -p no:hypothesispytest
 testpaths = .
 timeout = 60
 qt_api = pyside6
