@@ -1,0 +1,248 @@
+from __future__ import annotations
+
+import csv
+import json
+import re
+from pathlib import Path
+
+import pytest
+from mesh_files import binary_stl, box
+
+from app.cli import main
+from app.progress_bar import bar_text
+from app.terminal import in_signs_of
+from core.assembly import Assembly, DataSheet, Group, KnownAxial, MeshBody, Part, ShapeBody, ledger_of
+from core.document import save_document
+from core.handover.answer import KEYS
+from core.material import ByDensity, ByMaterial
+from core.mesh import MeshAsset
+from core.placement import Pose, Ring
+from core.shapes import SHAPES
+
+
+def assembly() -> Assembly:
+    plate = Part("p", "plate", ShapeBody(SHAPES["cylinder"].of({"diameter": 0.3, "length": 0.02})), ByMaterial.named("steel"))
+    pin = Part(
+        "q", "=pin", ShapeBody(SHAPES["cylinder"].of({"diameter": 0.02, "length": 0.05})), ByDensity(2700.0),
+        Pose((0.1, 0.0, 0.02)), Ring(6),
+    )  # fmt: skip
+    cube = Part("c", "cube", MeshBody(MeshAsset.of_bytes(binary_stl(box(20, 20, 20)), "cube.stl"), 1e-3), ByDensity(7850.0))
+    rotor = Part("r", "rotor", KnownAxial(1.9, (0, 0, 0), 0.0021, 0.05, "catalogue 7, page 3"), DataSheet())
+    return Assembly("dial", (Group("g", "table", (plate, pin)), cube, rotor))
+
+
+@pytest.fixture
+def folder(tmp_path, monkeypatch):
+    """The working directory, with a sound document, one with a part that has no mass, and a cube."""
+    monkeypatch.chdir(tmp_path)
+    for name in ("DISPLAY", "WAYLAND_DISPLAY", "QT_QPA_PLATFORM"):
+        monkeypatch.delenv(name, raising=False)
+    save_document(assembly(), tmp_path / "dial.masswright")
+    blank = Part("n", "not weighed", ShapeBody(SHAPES["sphere"].of({"diameter": 0.1})))
+    save_document(assembly().inserted(blank), tmp_path / "blank.masswright")
+    (tmp_path / "cube.stl").write_bytes(binary_stl(box(20, 20, 20)))
+    return tmp_path
+
+
+@pytest.fixture
+def run(folder, capsys):  # noqa: ARG001  (it makes the files)
+    """Run the command in this process; returns status, standard output, standard error."""
+
+    def call(*words: str) -> tuple[int, str, str]:
+        status = main(words)
+        out, err = capsys.readouterr()
+        return status, out, err
+
+    return call
+
+
+def test_a_document_is_answered_with_its_total_its_ledger_and_its_checks(run):
+    status, out, err = run("weigh", "dial.masswright", "--format", "json")
+    found, whole = json.loads(out), assembly()
+    assert (status, err) == (0, "")
+    assert tuple(found) == (*KEYS, "ledger")
+    assert found["mass_kg"] == pytest.approx(float(whole.total.mass), rel=1e-12)
+    foot = ledger_of(whole).total
+    assert found["axis"]["inertia_kgm2"] == pytest.approx(foot.inertia, rel=1e-12)
+    assert found["axis"]["name"] == "Spindle"
+    assert [line["name"] for line in found["ledger"]] == ["table", "plate", "=pin", "cube", "rotor", "dial"]
+    for line in found["ledger"]:
+        assert line["own_inertia_kgm2"] + line["transfer_kgm2"] == pytest.approx(line["inertia_kgm2"], rel=1e-12)
+    assert {"plate", "cube", "rotor"} <= {check["part"] for check in found["checks"]}
+    assert [found[key] for key in ("triangles", "unit", "verdict", "curved", "volume_m3")] == [None] * 5
+
+
+def test_the_text_of_a_document_holds_a_line_for_every_part(run):
+    _, out, _ = run("weigh", "dial.masswright")
+    ledger = out.partition("Ledger about the drive axis Spindle\n")[2].splitlines()
+    assert [re.split(r"\s{2,}", line.strip())[0] for line in ledger] == [
+        "Part", "table", "plate", "=pin", "cube", "rotor", "TOTAL",
+    ]  # fmt: skip
+    assert "catalogue 7, page 3" in out
+
+
+def test_a_document_is_known_by_its_content_not_by_its_name(run, folder):
+    (folder / "dial.masswright").rename(folder / "dial.stl")
+    assert json.loads(run("weigh", "dial.stl", "--format", "json")[1])["ledger"]
+
+
+def test_a_document_with_a_part_without_mass_is_answered_with_status_1(run):
+    status, out, err = run("weigh", "blank.masswright")
+    assert status == 1
+    assert "1 part is left out of every value because no mass is set: not weighed" in out
+    assert err.startswith("masswright: check failed: mass: not weighed: ")
+
+
+@pytest.mark.parametrize("words", [
+    ("--unit", "in"), ("--material", "steel"), ("--density", "1 g/cm^3"), ("--mass", "1 kg"), ("--curved",),
+])  # fmt: skip
+def test_options_for_meshes_are_refused_for_a_document_and_answered_for_the_mesh_beside_it(run, words):
+    status, out, err = run("weigh", "dial.masswright", "cube.stl", *words)
+    assert status >= 2
+    assert f"dial.masswright: {words[0]} is for mesh files" in err
+    assert out.startswith("cube.stl")
+
+
+def test_the_axis_asked_about_takes_the_place_of_the_drive_axis(run):
+    _, out, _ = run("weigh", "dial.masswright", "--axis", "100,0,0;0,0,1", "--format", "json")
+    found, whole = json.loads(out), assembly().total
+    assert found["axis"]["inertia_kgm2"] == pytest.approx(float(whole.inertia_about_axis((0.1, 0, 0), (0, 0, 1))), rel=1e-12)
+    assert found["ledger"][-1]["inertia_kgm2"] == pytest.approx(found["axis"]["inertia_kgm2"], rel=1e-12)
+
+
+def test_a_damaged_document_is_one_line_and_status_3(run, folder):
+    (folder / "bad.masswright").write_bytes(b"PK\x03\x04 and nothing more")
+    status, out, err = run("weigh", "bad.masswright")
+    assert (status, out) == (3, "")
+    assert err.startswith("masswright: ")
+    assert "bad.masswright" in err
+    assert err.count("\n") == 1
+
+
+def test_documents_and_meshes_side_by_side_in_two_processes(run):
+    paths = ("dial.masswright", "cube.stl", "blank.masswright")
+    assert run("weigh", *paths, "--jobs", "2") == run("weigh", *paths)
+
+
+# handover
+
+
+@pytest.mark.parametrize(("name", "separator"), [("sheet.csv", ","), ("sheet.tsv", "\t"), ("SHEET.CSV", ",")])
+def test_handover_writes_a_table_that_reads_back(run, folder, name, separator):
+    assert run("handover", "dial.masswright", "--to", name) == (0, "", "")
+    with (folder / name).open(encoding="utf-8-sig", newline="") as file:
+        rows = list(csv.reader(file, delimiter=separator))
+    mass = next(row for row in rows if row[0] == "Mass")
+    assert float(mass[1]) == pytest.approx(float(assembly().total.mass), rel=1e-15)
+    assert rows[0][3] == "dial"
+    assert {path.name for path in folder.iterdir()} >= {name, "dial.masswright"}
+    assert not list(folder.glob("*.part"))
+
+
+def test_handover_takes_units_and_decimal_mark(run, folder):
+    run("handover", "dial.masswright", "--to", "sheet.csv", "--decimal", ",", "--show-units", "in lb lb*in^2")
+    with (folder / "sheet.csv").open(encoding="utf-8-sig", newline="") as file:
+        rows = list(csv.reader(file, delimiter=";"))
+    mass = next(row for row in rows if row[0] == "Mass")
+    assert float(mass[1].replace(",", ".")) == pytest.approx(float(assembly().total.mass) / 0.45359237, rel=1e-12)
+    assert mass[2] == "lb"
+
+
+def test_handover_writes_the_same_json_as_weigh(run, folder):
+    run("handover", "dial.masswright", "--to", "sheet.json")
+    assert (folder / "sheet.json").read_text(encoding="utf-8") == run("weigh", "dial.masswright", "--format", "json")[1]
+
+
+def test_handover_of_a_document_with_a_failed_check_is_written_with_status_1(run, folder):
+    status, _, err = run("handover", "blank.masswright", "--to", "sheet.tsv")
+    assert status == 1
+    assert "check failed: mass" in err
+    assert "Check failed: mass" in (folder / "sheet.tsv").read_text(encoding="utf-8")
+
+
+@pytest.mark.parametrize(("words", "status", "said"), [
+    (("dial.masswright", "--to", "sheet.doc"), 2, "Choose one of .csv, .tsv, .json"),
+    (("dial.masswright", "--to", "sheet"), 2, "no ending"),
+    (("dial.masswright",), 2, "--to"),
+    (("nothing.masswright", "--to", "sheet.csv"), 3, "nothing.masswright"),
+    (("cube.stl", "--to", "sheet.csv"), 3, "cube.stl"),
+    (("dial.masswright", "--to", "no/such/folder/sheet.csv"), 3, "cannot be written"),
+])  # fmt: skip
+def test_a_handover_that_cannot_be_is_refused_in_one_line(run, folder, words, status, said):
+    before = sorted(folder.rglob("*"))
+    got, out, err = run("handover", *words)
+    assert (got, out) == (status, "")
+    assert said in err
+    assert err.count("\n") == 1
+    assert sorted(folder.rglob("*")) == before
+
+
+# The window, or what stands in for it
+
+
+@pytest.mark.parametrize("name", ["dial.masswright", "cube.stl", "blank.masswright"])
+def test_without_a_display_the_sheet_is_printed_and_the_status_is_0(run, monkeypatch, name):
+    monkeypatch.setattr("sys.platform", "linux")
+    status, out, err = run(name)
+    assert status == 0
+    assert out == run("weigh", name)[1]
+    assert err.startswith(f"masswright: there is no display to open a window on; this is the sheet of {name}\n")
+
+
+def test_without_a_display_and_a_file_it_says_how_to_get_values(run, monkeypatch):
+    monkeypatch.setattr("sys.platform", "linux")
+    status, out, err = run()
+    assert (status, out) == (0, "")
+    assert "masswright weigh" in err
+
+
+def test_without_a_display_an_unreadable_file_is_still_status_3(run, monkeypatch):
+    monkeypatch.setattr("sys.platform", "linux")
+    assert run("nothing.stl")[0] == 3
+
+
+def test_with_a_display_the_window_gets_the_file(run, monkeypatch):
+    opened: list[str | None] = []
+    window = type("window", (), {"open_window": staticmethod(lambda path: opened.append(path) or 0)})
+    monkeypatch.setitem(__import__("sys").modules, "app.window.main", window)
+    monkeypatch.setenv("DISPLAY", ":7")
+    assert run("dial.masswright")[0] == run()[0] == 0
+    assert opened == ["dial.masswright", None]
+
+
+@pytest.mark.parametrize("words", [("--help",), ("weigh", "--help"), ("handover", "--help")])
+def test_help_is_short_and_names_every_option(run, words):
+    status, out, err = run(*words)
+    assert (status, err) == (0, "")
+    assert len(out.splitlines()) < 60
+    if words[0] == "weigh":
+        for option in ("unit", "material", "density", "mass", "axis", "curved", "about", "products", "show-units"):
+            assert f"--{option} " in out
+        assert all(f"--{option}" in out for option in ("format", "decimal", "jobs"))
+
+
+def test_version_is_that_of_the_project(run):
+    status, out, _ = run("--version")
+    assert status == 0
+    assert re.fullmatch(r"masswright (\d+\.\d+\.\d+|\(not installed\))\n", out)
+
+
+# Small pieces
+
+
+def test_signs_that_a_terminal_lacks_are_spelled_out():
+    assert in_signs_of("−0.5 kg·m² ± 1 °", "ascii") == "-0.5 kg*m^2 +- 1 deg"
+    assert in_signs_of("−0.5 kg·m²", "latin-1") == "-0.5 kg·m²"
+    assert in_signs_of("Ω", "ascii") == "\\u03a9"
+    assert in_signs_of("−0.5 kg·m²", "utf-8") == "−0.5 kg·m²"
+
+
+def test_the_progress_bar_fills_from_left_to_right():
+    assert bar_text("x", 0.0).count("#") == 0
+    assert bar_text("x", 1.0).count(".") == 0
+    assert " 50 %" in bar_text("x", 0.5)
+
+
+def test_a_file_named_like_a_command_is_weighed(run, folder):
+    Path("weigh").write_bytes((folder / "cube.stl").read_bytes())
+    assert run("weigh", "weigh")[0] == 0
