@@ -38,8 +38,17 @@ class EdgeSum:
     """
 
     def __init__(self, most: int, words: int = 1) -> None:
-        self._folded = np.empty(9 * most * words, np.uint32)
-        self._planes = np.empty((2, 3 * most), np.uint64)
+        self._memory = np.empty(9 * most * words, np.uint32), np.empty(6 * most, np.uint64)
+        self._count = 0
+
+    def _arrange(self, count: int, bits: Words) -> None:
+        """Lay the buffers out for chunks of count triangles; done anew only where the size changes."""
+        single, double = self._memory
+        self._folded = single[: bits.size].reshape(bits.shape)
+        words = self._folded.reshape(3, 3, count, -1)
+        self._words = [words[:, axis, :, word] for axis in range(3) for word in range(words.shape[3])]
+        self._one, self._other = double[: 6 * count].reshape(2, 3, count)
+        self._count = count
 
     def of(self, coordinates: NDArray[np.floating]) -> int:
         """Return the chunk's sum modulo 2⁶⁴; the sums of all chunks add up to 0 (mod 2⁶⁴) for a closed mesh.
@@ -47,8 +56,8 @@ class EdgeSum:
         Args:
             coordinates: (9, n) rows xa ya za xb yb zb xc yc zc, contiguous, float32 or float64, without −0.0.
         """
-        q = self._hashes(coordinates)
-        p = self._plane(1, coordinates)
+        self._hash(coordinates)
+        p, q = self._other, self._one
         _spread(q, _P_KEY, out=p)
         _spread(p, _Q_KEY, out=q)
         np.subtract(p[1:], p[0], out=p[1:])
@@ -56,40 +65,32 @@ class EdgeSum:
         np.multiply(p[1], q[2], out=p[0])
         np.multiply(p[2], q[1], out=q[0])
         np.subtract(p[0], q[0], out=p[0])
-        return int(p[0].sum())
+        return int(np.add.reduce(p[0]))
 
     def vertex_hashes(self, coordinates: NDArray[np.floating]) -> Hashes:
         """Return one 64-bit number per vertex, (3, n), equal for equal bits.
 
         It is a view that the next call overwrites; coordinates as for of().
         """
-        values = self._hashes(coordinates)
-        spread = self._plane(1, coordinates)
-        _spread(values, _P_KEY, out=spread)
-        return spread
+        self._hash(coordinates)
+        _spread(self._one, _P_KEY, out=self._other)
+        return self._other
 
-    def _plane(self, number: int, coordinates: NDArray[np.floating]) -> Hashes:
-        count = coordinates.shape[1]
-        plane: Hashes = self._planes[number, : 3 * count].reshape(3, count)
-        return plane
-
-    def _hashes(self, coordinates: NDArray[np.floating]) -> Hashes:
-        """Return a multilinear hash (3, n) of the words of each vertex (Dietzfelbinger 1996)."""
-        out, spare = self._plane(0, coordinates), self._plane(1, coordinates)
+    def _hash(self, coordinates: NDArray[np.floating]) -> None:
+        """Fill self._one (3, n) with a multilinear hash of the words of each vertex (Dietzfelbinger 1996)."""
         bits = coordinates.view(np.uint32)
-        folded = self._folded[: bits.size].reshape(bits.shape)
+        if coordinates.shape[1] != self._count:
+            self._arrange(coordinates.shape[1], bits)
         # Round numbers end in many zero bits, which a product modulo 2⁶⁴ keeps: fold the upper half over them.
-        np.right_shift(bits, _FOLD, out=folded)
-        np.bitwise_xor(folded, bits, out=folded)
-        words = folded.reshape(3, 3, coordinates.shape[1], -1)
-        planes = [words[:, axis, :, word] for axis in range(3) for word in range(words.shape[3])]
-        np.copyto(out, planes[0])
-        np.multiply(out, _WORD_KEYS[0], out=out)
-        for plane, key in zip(planes[1:], _WORD_KEYS[1:], strict=False):
-            np.copyto(spare, plane)
-            np.multiply(spare, key, out=spare)
-            np.add(out, spare, out=out)
-        return out
+        np.right_shift(bits, _FOLD, out=self._folded)
+        np.bitwise_xor(self._folded, bits, out=self._folded)
+        total, term = self._one, self._other
+        np.copyto(total, self._words[0])
+        np.multiply(total, _WORD_KEYS[0], out=total)
+        for word, key in zip(self._words[1:], _WORD_KEYS[1:], strict=False):
+            np.copyto(term, word)
+            np.multiply(term, key, out=term)
+            np.add(total, term, out=total)
 
 
 def _spread(values: Hashes, key: np.uint64, out: Hashes) -> None:

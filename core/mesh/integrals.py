@@ -30,6 +30,10 @@ if TYPE_CHECKING:
 CHUNK = 10_000
 
 
+# Of the three products that make up the second moment; see Integrator._area.
+_FACTORS = np.array([4 / 3, 1 / 2, 1 / 6])
+
+
 @dataclass(frozen=True, eq=False)
 class Sums:
     """What a chunk of triangles (or all of them) adds up to, in file units about a reference point.
@@ -38,7 +42,7 @@ class Sums:
         volume: signed; only the sum over a closed mesh is one.
         first: (3,) ∫r dV. second: (3, 3) ∫r rᵀ dV. Both about the reference point.
         area: of the triangles.
-        bounds: (2, 3) lowest and highest coordinates, as in the file.
+        low, high: (3, 3) lowest and highest coordinates of each corner (row), as in the file.
         degenerate: triangles without area.
         edge_sum: modulo 2⁶⁴; 0 for a closed mesh.
         triangles: how many.
@@ -48,7 +52,8 @@ class Sums:
     first: FloatArray
     second: FloatArray
     area: float
-    bounds: FloatArray
+    low: NDArray[np.floating]
+    high: NDArray[np.floating]
     degenerate: int
     edge_sum: int
     triangles: int
@@ -62,14 +67,17 @@ class Sums:
             first=_fsum_arrays([part.first for part in all_parts]),
             second=_fsum_arrays([part.second for part in all_parts]),
             area=fsum(part.area for part in all_parts),
-            bounds=np.stack([
-                np.min([part.bounds[0] for part in all_parts], axis=0),
-                np.max([part.bounds[1] for part in all_parts], axis=0),
-            ]),
+            low=np.min([part.low for part in all_parts], axis=0),
+            high=np.max([part.high for part in all_parts], axis=0),
             degenerate=sum(part.degenerate for part in all_parts),
             edge_sum=sum(part.edge_sum for part in all_parts) % 2**64,
             triangles=sum(part.triangles for part in all_parts),
         )
+
+    @property
+    def bounds(self) -> FloatArray:
+        """Lowest and highest coordinates (2, 3)."""
+        return np.stack([self.low.min(axis=0), self.high.max(axis=0)]).astype(np.float64)
 
     def moments(self, reference: FloatArray) -> Moments:
         """Return the volume (not 0) as mass with its centre and central second moment, in the file's frame."""
@@ -88,76 +96,77 @@ class Integrator:
 
     def __init__(self, reference: FloatArray, dtype: np.dtype[np.floating], most: int = CHUNK) -> None:
         self._reference = np.asarray(reference, dtype=np.float64)[:, None]
-        self._stored = np.empty(9 * most, dtype)
-        self._corners = np.empty((3, 3 * most))
-        self._forms = np.empty((3, 3 * most))
-        self._spare = np.empty(3 * most)
-        self._rows = np.empty((2, most))
+        self._memory = np.empty(9 * most, dtype), np.empty(29 * most)
         self._edges = EdgeSum(most, words=dtype.itemsize // 4)
+        self._arrange(most)
 
-    def take(self, triangles: NDArray[np.floating]) -> Sums | None:
+    def _arrange(self, count: int) -> None:
+        """Lay the buffers out for chunks of count triangles; done anew only where the size changes."""
+        single, double = self._memory
+        self._stored = single[: 9 * count].reshape(3, 3, count)
+        corners, forms, weighted, rows = np.split(double[: 29 * count].reshape(29, count), (9, 18, 27))
+        self._corners, self._forms = corners.reshape(3, 3, count), forms.reshape(3, 3, count)
+        self._weighted = weighted.reshape(3, 3, count)
+        self._weights, self._row = rows
+        self._count = count
+
+    def sums_of(self, triangles: NDArray[np.floating]) -> Sums | None:
         """Return the sums of one chunk (n, 3, 3), n ≥ 1, or None where a coordinate is not finite."""
-        count = len(triangles)
-        stored = self._stored[: 9 * count].reshape(9, count)
-        np.copyto(stored, triangles.reshape(count, 9).T)
-        low, high = stored.min(axis=1), stored.max(axis=1)
+        if len(triangles) != self._count:
+            self._arrange(len(triangles))
+        stored = self._stored
+        np.copyto(stored, triangles.transpose(1, 2, 0))
+        low, high = np.minimum.reduce(stored, axis=2), np.maximum.reduce(stored, axis=2)
         if not (np.isfinite(low).all() and np.isfinite(high).all()):
             return None
         # Adding +0.0 makes −0.0 the same vertex as 0.0 and leaves every other number alone.
         np.add(stored, 0.0, out=stored)
-        corners = self._corners[:, : 3 * count].reshape(3, 3, count)
-        np.subtract(stored.reshape(3, 3, count), self._reference, out=corners)
-        area, degenerate = self._area(corners)
-        volume, first, second = self._integrals(count)
-        return Sums(
-            volume, first, second, area,
-            bounds=np.stack([low.reshape(3, 3).min(axis=0), high.reshape(3, 3).max(axis=0)]).astype(float),
-            degenerate=degenerate, edge_sum=self._edges.of(stored), triangles=count,
-        )
+        area, degenerate = self._area()
+        volume, first, second = self._integrals()
+        edge_sum = self._edges.of(stored.reshape(9, self._count))
+        return Sums(volume, first, second, area, low, high, degenerate, edge_sum, self._count)
 
-    def _area(self, corners: FloatArray) -> tuple[float, int]:
+    def first_not_finite(self) -> tuple[int, int, int, float]:
+        """Return the first coordinate of the last chunk that is not finite: facet, corner, axis and what it is."""
+        stored = self._stored.transpose(2, 0, 1)
+        facet, corner, axis = np.argwhere(~np.isfinite(stored))[0].tolist()
+        return facet, corner, axis, float(stored[facet, corner, axis])
+
+    def _area(self) -> tuple[float, int]:
         """Fill the forms s, p, f and the weights s·n; return the area and how many triangles have none.
 
         With e = b−a and g = c−a these are s = a+b+c, p = e−g, f = e+g, and then
         aaᵀ + bbᵀ + ccᵀ + ssᵀ = 4/3·ssᵀ + 1/2·ppᵀ + 1/6·ffᵀ: three products in place of four.
         """
-        count = corners.shape[2]
-        s, p, f = self._forms[:, : 3 * count].reshape(3, 3, count)
-        first, second, third = corners
-        normals = self._spare[: 3 * count].reshape(3, count)
-        weights, row = self._rows[:, :count]
-        np.add(first, second, out=s)
-        np.add(s, third, out=s)
-        np.subtract(second, first, out=second)
-        np.subtract(third, first, out=third)
-        for axis in range(3):
-            after, last = (axis + 1) % 3, (axis + 2) % 3
-            np.multiply(second[after], third[last], out=normals[axis])
-            np.multiply(second[last], third[after], out=row)
-            np.subtract(normals[axis], row, out=normals[axis])
-        np.subtract(second, third, out=p)
-        np.add(second, third, out=f)
+        corners, (s, p, f), normals, row = self._corners, self._forms, self._weighted[0], self._row
+        first, e, g = corners
+        np.subtract(self._stored, self._reference, out=corners)
+        np.add(first, e, out=s)
+        np.add(s, g, out=s)
+        np.subtract(corners[1:], first, out=corners[1:])
+        for axis, after, last in ((0, 1, 2), (1, 2, 0), (2, 0, 1)):
+            normal = normals[axis]
+            np.multiply(e[after], g[last], out=normal)
+            np.multiply(e[last], g[after], out=row)
+            np.subtract(normal, row, out=normal)
+        np.subtract(e, g, out=p)
+        np.add(e, g, out=f)
+        np.einsum("in,in->n", normals, s, out=self._weights)
         np.einsum("in,in->n", normals, normals, out=row)
         np.sqrt(row, out=row)
-        np.einsum("in,in->n", normals, s, out=weights)
-        return 0.5 * float(row.sum()), count - int(np.count_nonzero(row))
+        return 0.5 * float(np.add.reduce(row)), self._count - int(np.count_nonzero(row))
 
-    def _integrals(self, count: int) -> tuple[float, FloatArray, FloatArray]:
+    def _integrals(self) -> tuple[float, FloatArray, FloatArray]:
         """Return V, ∫r and ∫r rᵀ of the cones from the reference point to the triangles; s·n is 3·d."""
-        weights = self._rows[0, :count]
-        weighted = self._spare[: 3 * count].reshape(3, count)
-        first, second = np.empty(3), np.zeros((3, 3))
-        forms = self._forms[:, : 3 * count].reshape(3, 3, count)
-        for form, factor in zip(forms, (4 / 3, 1 / 2, 1 / 6), strict=True):
-            np.multiply(form, weights, out=weighted)
-            if factor > 1:
-                first = weighted.sum(axis=1)
-            for row in range(3):
-                for column in range(row + 1):
-                    # Dot products: a matrix product of this shape takes three times as long.
-                    second[row, column] += factor * np.dot(weighted[row], form[column])
-        second[np.triu_indices(3, 1)] = second.T[np.triu_indices(3, 1)]
-        return float(weights.sum()) / 18, first / 72, second / 360
+        forms, weighted = self._forms, self._weighted
+        np.multiply(forms, self._weights, out=weighted)
+        # Dot products by rows: a matrix product of this shape takes three times as long.
+        xx, yy, zz = _FACTORS @ np.vecdot(weighted, forms)
+        xy, yz = _FACTORS @ np.vecdot(weighted[:, 1:], forms[:, :2])
+        xz = _FACTORS @ np.vecdot(weighted[:, 2], forms[:, 0])
+        second = np.array([[xx, xy, xz], [xy, yy, yz], [xz, yz, zz]])
+        volume, first = float(np.add.reduce(self._weights)), np.add.reduce(weighted[0], axis=1)
+        return volume / 18, first / 72, second / 360
 
 
 def _fsum_arrays(arrays: list[FloatArray]) -> FloatArray:

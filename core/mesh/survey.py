@@ -12,13 +12,12 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.arrays import FloatArray, frozen
-from core.errors import MeshFileError
 from core.mesh.edges import Leaks, find_leaks
 from core.mesh.integrals import CHUNK, Integrator, Sums
 from core.mesh.shells import shells_of
 from core.mesh.source import ArraySource, TriangleSource
 from core.mesh.stl import open_stl
-from core.mesh.stl_faults import MEND
+from core.mesh.summing import sum_up
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -117,7 +116,7 @@ def survey_source(source: TriangleSource, progress: Progress | None = None) -> M
         MeshFileError: as the source, or a coordinate that is not finite.
         Cancelled: progress was cancelled.
     """
-    sums, reference = _sum_up(source, progress)
+    sums, reference = sum_up(source, progress)
     if sums.edge_sum == 0:
         return _judged(source, sums, reference, leaks=None)
     leaks = find_leaks(gathered(source, sums.triangles))
@@ -136,40 +135,16 @@ def gathered(source: TriangleSource, count: int) -> NDArray[np.floating]:
     return triangles
 
 
-def _sum_up(source: TriangleSource, progress: Progress | None) -> tuple[Sums, FloatArray]:
-    """Return the sums over all chunks and the reference point they are about."""
-    if progress is not None:
-        progress.begin(source.steps)
-    parts: list[Sums] = []
-    integrator, reference, done = None, np.zeros(3), 0
-    for triangles, steps in source.chunks(CHUNK):
-        if integrator is None:
-            reference = triangles[0, 0].astype(np.float64)
-            integrator = Integrator(reference, source.dtype)
-        part = integrator.take(triangles)
-        if part is None:
-            raise _not_finite(source.name, triangles, done)
-        parts.append(part)
-        done += part.triangles
-        if progress is not None:
-            progress.advance(steps)
-    return Sums.total(parts), reference
-
-
-def _not_finite(name: str, triangles: NDArray[np.floating], done: int) -> MeshFileError:
-    facet, corner, axis = np.argwhere(~np.isfinite(triangles))[0]
-    return MeshFileError(
-        "a coordinate is not a finite number", where=f"{name}, facet {done + facet + 1}",
-        read=f"{'xyz'[axis]} of corner {corner + 1} = {triangles[facet, corner, axis]}",
-        remedy=MEND,
-    )
-
-
 def _closed_with(sums: Sums, reference: FloatArray, fill: FloatArray) -> Sums:
     """Return the sums with the integrals of fill (m, 3, 3) added; area, bounds and counts stay the file's."""
     integrator = Integrator(reference, np.dtype(np.float64))
-    more = [integrator.take(part) for part, _ in ArraySource(fill).chunks(CHUNK)]
-    whole = Sums.total([sums, *(part for part in more if part is not None)])
+    parts = [sums]
+    for triangles, _ in ArraySource(fill).chunks(CHUNK):
+        part = integrator.sums_of(triangles)
+        # Fill lies between finite vertices.
+        assert part is not None  # noqa: S101  # for the type checker
+        parts.append(part)
+    whole = Sums.total(parts)
     return replace(sums, volume=whole.volume, first=whole.first, second=whole.second)
 
 
