@@ -189,17 +189,23 @@ def _outcomes(paths: list[str], task: Task, jobs: int) -> Iterator[Outcome]:
 
 def _side_by_side(paths: list[str], task: Task, jobs: int) -> Iterator[Outcome]:
     from concurrent.futures import BrokenExecutor, ProcessPoolExecutor
+    from multiprocessing import active_children
 
-    with ProcessPoolExecutor(jobs, initializer=_end_quietly) as pool:
+    pool, left = ProcessPoolExecutor(jobs, initializer=_end_quietly), len(paths)
+    try:
         futures = [pool.submit(outcome_of, path, task) for path in paths]
-        try:
-            for path, future in zip(paths, futures, strict=True):
-                try:
-                    yield future.result()
-                except BrokenExecutor:
-                    yield _refusal(path, task, _LOST.format(path), UNREADABLE)
-        finally:
-            pool.shutdown(wait=False, cancel_futures=True)
+        for path, future in zip(paths, futures, strict=True):
+            try:
+                outcome = future.result()
+            except BrokenExecutor:
+                outcome = _refusal(path, task, _LOST.format(path), UNREADABLE)
+            left -= 1
+            yield outcome
+    finally:
+        # Stopped half-way, the workers have nothing left to work for.
+        for worker in active_children() if left else ():
+            worker.terminate()
+        pool.shutdown(cancel_futures=True)
 
 
 def _end_quietly() -> None:

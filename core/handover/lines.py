@@ -168,8 +168,8 @@ def _drive_lines(subject: Subject, units: UnitSet) -> list[Entry]:
     make = LineMaker(FOR_THE_DRIVE, units, subject.basis, subject.reason)
     whole = None if body is None else float(body.inertia_about_axis(axis.point, axis.direction))
     own = None if body is None else float(body.own_inertia_along(axis.direction))
-    transfer = None if body is None else float(body.transfer_to_axis(axis.point, axis.direction))
-    offset = None if form is None else float(form.offset_from_axis(axis.point, axis.direction))
+    transfer = None if body is None else float(body.mass) * _offset(body, axis) ** 2
+    offset = None if form is None else _offset(form, axis)
     square = None if form is None else float(form.inertia_about_axis(axis.point, axis.direction) / form.mass)
     name = axis.name
     return [
@@ -190,16 +190,28 @@ def _drive_lines(subject: Subject, units: UnitSet) -> list[Entry]:
     ]
 
 
+def extent_of(form: Moments) -> float:
+    """Return how large a body is and how far out it lies, m: round-off of its lengths is relative to that."""
+    gyration = np.sqrt(np.abs(form.inertia_about_centre).max() / abs(float(form.mass)))
+    return float(gyration + np.abs(form.centre).max())
+
+
+def _offset(form: Moments, axis: AxisLine) -> float:
+    """Return the distance of the centre of mass from an axis, m, exactly 0 where only round-off is left."""
+    reach = extent_of(form) + float(np.abs(axis.point).max())
+    return float(settled(form.offset_from_axis(axis.point, axis.direction), reach))
+
+
 def _wr_unit(units: UnitSet) -> Unit:
     return UNITS["lb·in² WR²" if unit_of(units, Kind.INERTIA).symbol == "lb·in²" else "lb·ft² WR²"]
 
 
 def _mass_lines(subject: Subject, units: UnitSet) -> list[Entry]:
     make = LineMaker(MASS_AND_CENTRE, units, subject.basis, subject.reason)
-    mass = None if subject.body is None else float(subject.body.mass)
+    form, mass = subject.form, None if subject.body is None else float(subject.body.mass)
     lines = [make.of(Kind.MASS, "m", "Mass", mass)]
     for i, letter in enumerate("xyz"):
-        at = None if subject.form is None else float(subject.form.centre[i])
+        at = None if form is None else float(settled(form.centre[i], extent_of(form)))
         label = f"Centre of mass {letter}, from the {subject.frame}'s origin along the {subject.frame}'s axes"
         lines.append(make.of(Kind.LENGTH, f"{letter}_c", label, at))
     return lines

@@ -161,8 +161,9 @@ class MeshReading:
         size = self.survey.bounds[1] - self.survey.bounds[0]
         extent = " × ".join(f"{value:.4g}" for value in size)
         guess = ", which was assumed" if self.unit_assumed else ""
+        shells = "" if self.shells is None else f" in {self.shells} shell{'' if self.shells == 1 else 's'}"
         file = (
-            f"{self.survey.triangles} triangles, {self.survey.format}; "
+            f"{self.survey.triangles} triangles{shells}, {self.survey.format}; "
             f"lengths in {self.unit.symbol}{guess}: {extent} {self.unit.symbol}"
         )
         mass = () if self.weighing is None else ((self.weighing.basis, f"mass from {self.weighing.label}"),)

@@ -3,6 +3,8 @@ from __future__ import annotations
 import csv
 import io
 import json
+import os
+import signal
 import subprocess
 import sys
 from pathlib import Path
@@ -15,6 +17,18 @@ from app.cli import main
 from core.handover.answer import KEYS
 
 ROOT = Path(__file__).parents[2]
+SLOW = """
+import sys, time
+import app.cli, app.weigh
+
+def slow(path, task, progress=None):
+    print("working", flush=True)
+    time.sleep(60)
+
+if __name__ == "__main__":
+    app.weigh.outcome_of = slow
+    sys.exit(app.cli.main(["weigh", "cube.stl", "cube.stl", "--jobs", "2"]))
+"""
 STEEL_CUBE_KG = 7850 * 0.02**3
 TETRAHEDRON = np.array([[0, 0, 0], [5, 0, 0], [0, 4, 0], [0, 0, 3]], float)[[[0, 2, 1], [0, 1, 3], [0, 3, 2], [1, 2, 3]]]
 
@@ -327,3 +341,25 @@ def test_weighing_a_small_mesh_loads_no_heavy_library():
         [sys.executable, "-c", script], capture_output=True, text=True, env={"PYTHONPATH": str(ROOT)}, check=False
     )
     assert done.stdout.splitlines()[-1] == "LOADED [] 0"
+
+
+def test_a_worker_that_is_killed_is_told_and_does_not_hang_the_others(run, monkeypatch):
+    def killed(*_: object) -> None:
+        os.kill(os.getpid(), signal.SIGKILL)
+
+    monkeypatch.setattr("app.weigh._mesh", killed)  # the workers are forked with it
+    status, out, err = run("weigh", "cube.stl", "tetra.stl", "--jobs", "2")
+    assert (status, out) == (3, "")
+    assert [line.split(": ")[1] for line in err.splitlines()] == ["cube.stl", "tetra.stl"]
+    assert "--jobs 1" in err
+
+
+def test_ctrl_c_ends_its_workers_too(folder):
+    (folder / "slow.py").write_text(SLOW)
+    with subprocess.Popen(
+        [sys.executable, "slow.py"], stdout=subprocess.PIPE, stderr=subprocess.PIPE, env={"PYTHONPATH": str(ROOT)}
+    ) as running:
+        assert running.stdout.readline() == b"working\n"
+        running.send_signal(signal.SIGINT)
+        out, err = running.communicate(timeout=20)
+    assert (running.returncode, out.replace(b"working\n", b""), err) == (130, b"", b"")

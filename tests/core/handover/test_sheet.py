@@ -44,6 +44,12 @@ def test_own_j_and_parallel_axis_term_add_up_to_j_about_the_drive_axis():
     assert sheet["J"] == pytest.approx(ledger_of(assembly).total.inertia, rel=1e-12)
 
 
+def test_round_off_is_shown_as_nothing_however_the_part_is_turned():
+    ring = disc("pin", 0.02, 0.1, pose=Pose((0.1, 0.0, 0.0)), copies=Ring(7))
+    sheet = values(sheet_of_assembly(Assembly(members=(ring,)), SheetChoice(), METRIC))
+    assert [sheet[symbol] for symbol in ("x_c", "y_c", "d", "m·d²", "Ixy", "Ixz")] == [0.0] * 6
+
+
 def test_gd2_is_four_times_j_and_wr2_is_j():
     sheet = sheet_of_assembly(Assembly(members=(disc(),)), SheetChoice(), METRIC)
     shown = {entry.symbol: (entry.value, entry.unit.symbol) for entry in sheet.entries}
