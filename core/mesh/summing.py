@@ -35,7 +35,7 @@ def sum_up(source: TriangleSource, progress: Progress | None = None) -> tuple[Su
             integrator = Integrator(reference, source.dtype)
         part = integrator.sums_of(triangles)
         if part is None:
-            raise _not_finite(source.name, done, *integrator.first_not_finite())
+            raise _not_finite(source.name, done, integrator.first_not_finite())
         parts.append(part)
         done += part.triangles
         if progress is not None:
@@ -43,7 +43,8 @@ def sum_up(source: TriangleSource, progress: Progress | None = None) -> tuple[Su
     return Sums.total(parts), reference
 
 
-def _not_finite(name: str, before: int, facet: int, corner: int, axis: int, value: float) -> MeshFileError:
+def _not_finite(name: str, before: int, first: tuple[int, int, int, float]) -> MeshFileError:
+    facet, corner, axis, value = first
     return MeshFileError(
         "a coordinate is not a finite number", where=f"{name}, facet {before + facet + 1}",
         read=f"{'xyz'[axis]} of corner {corner + 1} = {value}", remedy=MEND,

@@ -71,7 +71,7 @@ def test_survey_beside_a_plain_pass_and_a_mesh_library(benchmark, large, capsys)
     assert survey.verdict == "closed"
     benchmark.extra_info.update(library_over_ours=library / ours, ours_over_plain_pass=ours / plain)
     with capsys.disabled():
-        print(
+        print(  # noqa: T201  # the ratios are what the run is for
             f"\n{survey.triangles} facets: survey {ours * 1e3:.0f} ms ({survey.triangles / ours / 1e6:.1f} M facets/s),"
             f" mesh library {library:.2f} s = {library / ours:.0f} times as long,"
             f" plain pass {plain * 1e3:.1f} ms = a {ours / plain:.1f}th of it"
@@ -102,5 +102,5 @@ def test_peak_memory_of_ten_million_facets(benchmark, tmp_path, capsys, function
     path.unlink()
     megabytes = int(out.splitlines()[-1]) // 1024
     with capsys.disabled():
-        print(f"\n{function} of 10 million facets (500 MB): peak memory {megabytes} MB")
+        print(f"\n{function} of 10 million facets: peak memory {megabytes} MB")  # noqa: T201  # as above
     assert megabytes < 250

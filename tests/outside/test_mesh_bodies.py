@@ -2,11 +2,11 @@
 
 import numpy as np
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 from mesh_files import box, hull
 from oracles import assert_same_body
 from strategies import placements
-from hypothesis import given, settings
-from hypothesis import strategies as st
 
 from core.mesh import survey_triangles
 from core.moments import Moments

@@ -10,8 +10,8 @@ from mesh_files import box, hull, quartered, ring_grid
 from oracles import assert_same_body
 from scipy.integrate import nquad
 from scipy.spatial import ConvexHull, Delaunay
-from sympy.integrals.intpoly import polytope_integrate
 from strategies import rotations
+from sympy.integrals.intpoly import polytope_integrate
 
 from core.mesh import survey_triangles
 from core.moments import Moments

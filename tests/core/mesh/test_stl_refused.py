@@ -22,33 +22,33 @@ REFUSED = {
         SOUND[:50], f"the file is too short for an STL file; read 50 bytes where the header alone takes 84. {AGAIN}"),
     "cut inside a facet": (
         SOUND[:300],
-        "the file is cut short; read a count of 12 at byte 80, which needs 684 bytes, in a file of 300 bytes with room for"
-        f" 4 whole facets. It was not copied or written to its end. {AGAIN}"),
+        ("the file is cut short; read a count of 12 at byte 80, which needs 684 bytes, in a file of 300 bytes with room for"
+        f" 4 whole facets. It was not copied or written to its end. {AGAIN}")),
     "cut after a facet": (
         SOUND[:334],
-        "the facet count in the header does not fit the file; read a count of 12 at byte 80, which needs 684 bytes, in a"
-        f" file of 334 bytes with room for 5 whole facets. The file was cut or its header is wrong. {AGAIN}"),
+        ("the facet count in the header does not fit the file; read a count of 12 at byte 80, which needs 684 bytes, in a"
+        f" file of 334 bytes with room for 5 whole facets. The file was cut or its header is wrong. {AGAIN}")),
     "header alone": (
         SOUND[:84],
-        "the facet count in the header does not fit the file; read a count of 12 at byte 80, which needs 684 bytes, in a"
-        f" file of 84 bytes with room for 0 whole facets. The file was cut or its header is wrong. {AGAIN}"),
+        ("the facet count in the header does not fit the file; read a count of 12 at byte 80, which needs 684 bytes, in a"
+        f" file of 84 bytes with room for 0 whole facets. The file was cut or its header is wrong. {AGAIN}")),
     "count too small": (
         binary_stl(BOX, count=7),
-        "the facet count in the header does not fit the file; read a count of 7 at byte 80, which needs 434 bytes, in a"
-        f" file of 684 bytes with room for 12 whole facets. The file was cut or its header is wrong. {AGAIN}"),
+        ("the facet count in the header does not fit the file; read a count of 7 at byte 80, which needs 434 bytes, in a"
+        f" file of 684 bytes with room for 12 whole facets. The file was cut or its header is wrong. {AGAIN}")),
     "trailing bytes": (
         SOUND + b"tail",
-        "bytes follow after the last facet; read a count of 12 at byte 80, which needs 684 bytes, in a file of 688 bytes"
-        f" with room for 12 whole facets. Something was appended to the file. {AGAIN}"),
+        ("bytes follow after the last facet; read a count of 12 at byte 80, which needs 684 bytes, in a file of 688 bytes"
+        f" with room for 12 whole facets. Something was appended to the file. {AGAIN}")),
     "absurd count": (
         binary_stl(BOX, count=4_294_967_295),
-        "the header announces an absurd number of facets; read a count of 4294967295 at byte 80, which needs"
+        ("the header announces an absurd number of facets; read a count of 4294967295 at byte 80, which needs"
         " 214748364834 bytes, in a file of 684 bytes with room for 12 whole facets. If it is meant to be STL, export or"
-        " copy the file again."),
+        " copy the file again.")),
     "solid header, cut": (
         binary_stl(BOX, header=b"solid part")[:300],
-        "the file is cut short; read a count of 12 at byte 80, which needs 684 bytes, in a file of 300 bytes with room for"
-        f" 4 whole facets. It was not copied or written to its end. {AGAIN}"),
+        ("the file is cut short; read a count of 12 at byte 80, which needs 684 bytes, in a file of 300 bytes with room for"
+        f" 4 whole facets. It was not copied or written to its end. {AGAIN}")),
     "no facets": (binary_stl(BOX[:0]), f"the file holds no facets; read a count of 0 at byte 80. {AGAIN}"),
     "no facets in text": (
         b"solid nothing\nendsolid nothing\n", f'the file holds no facets; read "solid" and nothing more. {AGAIN}'),
@@ -58,12 +58,12 @@ REFUSED = {
     "zip": (b"PK\x03\x04" + bytes(300), 'this is a ZIP archive, not an STL file; read "PK??????????????????????????????????????". Export the part as STL.'),
     "other text": (
         b"o part\nv 0 0 0\nv 1 0 0\n" * 5,
-        'this is a text that does not begin with "solid", not an STL file; read "o part v 0 0 0 v 1 0 0 o part v 0 0 0 v".'
-        " Export the part as STL."),
+        ('this is a text that does not begin with "solid", not an STL file; read "o part v 0 0 0 v 1 0 0 o part v 0 0 0 v".'
+        " Export the part as STL.")),
     "damaged packing": (
         gzip.compress(SOUND)[:-12],
-        "the gzip packing is damaged; read Compressed file ended before the end-of-stream marker was reached."
-        f" {AGAIN}"),
+        ("the gzip packing is damaged; read Compressed file ended before the end-of-stream marker was reached."
+        f" {AGAIN}")),
 }
 
 MEND = "Mend the part where it was made and export it again."
