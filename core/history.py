@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING
 
-from core.assembly import Assembly
+if TYPE_CHECKING:
+    from core.assembly import Assembly
 
 
 @dataclass(frozen=True)

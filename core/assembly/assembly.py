@@ -4,12 +4,15 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 from functools import cached_property
+from typing import TYPE_CHECKING
 
 from core.arrays import FloatArray, frozen
 from core.assembly.nodes import MOST_BODIES, Group, Node, Part, Table, joined, walk
 from core.errors import EditRefused
 from core.moments import Moments, unit_vector
-from core.placement import Triple
+
+if TYPE_CHECKING:
+    from core.placement import Triple
 
 # Deeper nesting than this is refused: no machine has it, and a reader of the file must not be led into the ground.
 DEEPEST = 32

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
-from typing import Literal, TypeAlias
+from typing import TYPE_CHECKING, Literal, TypeAlias
 
 import numpy as np
 
@@ -16,10 +16,12 @@ from core.arrays import FloatArray, frozen
 from core.checks import Check, check_inertia_tensor
 from core.errors import ValueRefused
 from core.facets import Facets
-from core.mesh import MeshAsset
 from core.moments import Moments
-from core.placement import Triple
 from core.shapes import SHAPES, Shape
+
+if TYPE_CHECKING:
+    from core.mesh import MeshAsset
+    from core.placement import Triple
 
 Six: TypeAlias = tuple[float, float, float, float, float, float]
 

@@ -3,13 +3,16 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.assembly.assembly import Assembly
 from core.assembly.bodies import KnownAxial
-from core.assembly.nodes import Part
 from core.checks import Check, check_body
+
+if TYPE_CHECKING:
+    from core.assembly.assembly import Assembly
+    from core.assembly.nodes import Part
 
 # A drive axis turned further than this from a known part's own axis sees the transverse inertia that was filled in.
 OBLIQUE = 1e-6

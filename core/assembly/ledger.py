@@ -3,14 +3,15 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
 import numpy as np
 
-from core.arrays import BoolArray, FloatArray, frozen, settled
-from core.assembly.assembly import Assembly, DriveAxis
+from core.arrays import FloatArray, IntArray, frozen, settled
 from core.assembly.nodes import Part, walk
 
+if TYPE_CHECKING:
+    from core.assembly.assembly import Assembly, DriveAxis
 
 # How the basis of a value begins that a reader must not take as computed.
 WEAK = ("estimated", "no volume", "not set")
@@ -60,46 +61,29 @@ class Ledger:
     axis: DriveAxis
 
 
-@dataclass(frozen=True, eq=False)
-class _Sums:
-    """Per part (n,), summed over all its copies; whether its mass is known; how far out the farthest centre is, m."""
-
-    mass: FloatArray
-    first: FloatArray
-    own: FloatArray
-    transfer: FloatArray
-    known: BoolArray
-    size: float
-
-    def of(self, rows: slice) -> tuple[float, FloatArray, float, float] | None:
-        """Return mass, centre, own inertia and transfer of a run of parts; None when no mass among them is known."""
-        mass = float(self.mass[rows].sum())
-        if not self.known[rows].any() or mass == 0:
-            return None
-        centre = frozen(settled(self.first[rows].sum(axis=0) / mass, self.size))
-        own, transfer = float(self.own[rows].sum()), float(self.transfer[rows].sum())
-        return mass, centre, own, float(settled(transfer, own + mass * self.size**2))
-
-
 def ledger_of(assembly: Assembly) -> Ledger:
     """Return the ledger about the assembly's drive axis."""
-    sums = _sums(assembly)
-    whole = float(sums.own.sum() + sums.transfer.sum())
-    lines: list[Line] = []
+    heads: list[_Head] = []
+    spans: list[tuple[int, int]] = []
     at = 0
     above: list[int] = []
     for node, depth in walk(assembly.members):
-        parts = [inner for inner, _ in walk((node,)) if isinstance(inner, Part)]
         above[depth:] = [(above[depth - 1] if depth else 1) * node.copies.count]
-        head = _Head(
-            node.key, node.name, "part" if isinstance(node, Part) else "group", depth, node.copies.count, above[depth],
-            node.driver.label if isinstance(node, Part) else _warning(parts), _common_basis(parts),
-        )
-        lines.append(head.with_values(sums.of(slice(at, at + len(parts))), whole))
-        at += isinstance(node, Part)
-    everything = list(assembly.table.parts)
-    foot = _Head("", assembly.name, "total", 0, 1, 1, _warning(everything), _common_basis(everything))
-    return Ledger(tuple(lines), foot.with_values(sums.of(slice(None)), whole), assembly.drive_axis)
+        if isinstance(node, Part):
+            words = (node.driver.label, node.basis)
+            spans.append((at, at + 1))
+            at += 1
+        else:
+            inside = node.table.parts
+            words = (_warning(inside), _common_basis(inside))
+            spans.append((at, at + len(inside)))
+        kind: Literal["part", "group"] = "part" if isinstance(node, Part) else "group"
+        heads.append(_Head(node.key, node.name, kind, depth, node.copies.count, above[depth], *words))
+    everything = assembly.table.parts
+    spans.append((0, len(everything)))
+    heads.append(_Head("", assembly.name, "total", 0, 1, 1, _warning(everything), _common_basis(everything)))
+    lines = _lines(heads, _sums(assembly).over(np.array(spans)))
+    return Ledger(tuple(lines[:-1]), lines[-1], assembly.drive_axis)
 
 
 @dataclass(frozen=True)
@@ -115,16 +99,55 @@ class _Head:
     material: str
     basis: str
 
-    def with_values(self, values: tuple[float, FloatArray, float, float] | None, whole: float) -> Line:
-        head = (self.key, self.name, self.kind, self.depth, self.count, self.times, self.material, self.basis)
-        if values is None:
-            return Line(*head, None, None, None, None, None, None)
-        mass, centre, own, transfer = values
-        inertia = own + transfer
-        return Line(*head, mass, centre, own, transfer, inertia, inertia / whole if whole > 0 else None)
+
+@dataclass(frozen=True, eq=False)
+class _Sums:
+    """Mass, first moment (n, 3), own inertia, transfer and number of known masses, of parts or of lines (n,).
+
+    `size` is how far out the farthest centre of mass is, m.
+    """
+
+    mass: FloatArray
+    first: FloatArray
+    own: FloatArray
+    transfer: FloatArray
+    known: FloatArray
+    size: float
+
+    def over(self, spans: IntArray) -> _Sums:
+        """Return the sums over runs of parts: rows first, one behind the last, (m, 2)."""
+        edges, empty = spans.ravel(), spans[:, 0] == spans[:, 1]
+
+        def summed(values: FloatArray) -> FloatArray:
+            # One more row, so that a run may end behind the last part; every second sum is between the runs.
+            padded = np.concatenate([values, np.zeros((1, *values.shape[1:]))])
+            runs = np.add.reduceat(padded, edges, axis=0)[::2]
+            runs[empty] = 0
+            return np.asarray(runs)
+
+        return _Sums(
+            *(summed(each) for each in (self.mass, self.first, self.own, self.transfer, self.known)), size=self.size
+        )
 
 
-def _common_basis(parts: list[Part]) -> str:
+def _lines(heads: list[_Head], sums: _Sums) -> list[Line]:
+    """Put words and sums together; the last one is the whole."""
+    shown = (sums.known > 0) & (sums.mass != 0)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        centres = frozen(settled(sums.first / sums.mass[:, None], sums.size))
+    transfer = settled(sums.transfer, sums.own + sums.mass * sums.size**2)
+    inertia = sums.own + transfer
+    shares = (inertia / inertia[-1]).tolist() if inertia[-1] > 0 else [None] * len(heads)
+    numbers = (column.tolist() for column in (sums.own, transfer, inertia))
+    rows = zip(heads, shown.tolist(), sums.mass.tolist(), centres, *numbers, shares, strict=True)
+    lines = []
+    for head, known, *values in rows:
+        words = (head.key, head.name, head.kind, head.depth, head.count, head.times, head.material, head.basis)
+        lines.append(Line(*words, *(values if known else (None,) * len(values))))
+    return lines
+
+
+def _common_basis(parts: tuple[Part, ...]) -> str:
     """Return the basis of the parts when all have the same one, otherwise the weakest kind among them."""
     bases = {part.basis for part in parts}
     if len(bases) <= 1:
@@ -133,7 +156,7 @@ def _common_basis(parts: list[Part]) -> str:
     return f"some {weak[0]}" if weak else "mixed"
 
 
-def _warning(parts: list[Part]) -> str:
+def _warning(parts: tuple[Part, ...]) -> str:
     """Return what some of the parts lack, as shown where a single part names its material."""
     weak = sum(part.basis.startswith(WEAK) for part in parts)
     return f"{weak} of {len(parts)} not computed" if weak else ""
@@ -152,6 +175,6 @@ def _sums(assembly: Assembly) -> _Sums:
         first=np.stack([per_part(weighted[:, i]) for i in range(3)], axis=1),
         own=per_part(rows.own_inertia_along(axis.unit)),
         transfer=per_part(rows.transfer_to_axis(axis.point, axis.unit)),
-        known=np.array([part.single is not None for part in table.parts], dtype=bool),
+        known=np.array([part.single is not None for part in table.parts], dtype=float),
         size=float(np.abs(rows.centre).max(initial=0.0)),
     )

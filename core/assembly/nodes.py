@@ -2,22 +2,25 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
 from dataclasses import dataclass
 from functools import cached_property
-from typing import TypeAlias
+from typing import TYPE_CHECKING, TypeAlias
 
 import numpy as np
 
-from core.arrays import FloatArray, IntArray
 from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, bounds_of, equal_ellipsoid
 from core.assembly.part_checks import checks_of_part
-from core.checks import Check
 from core.errors import EditRefused
-from core.facets import Facets
 from core.material import ByDensity, ByMaterial, NotSet, Weighed
 from core.moments import Moments
 from core.placement import Copies, Placement, Pose, Several
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from core.arrays import FloatArray, IntArray
+    from core.checks import Check
+    from core.facets import Facets
 
 # A ledger of more bodies than this is refused: nested rings multiply, and nobody means ten million bolts.
 MOST_BODIES = 1_000_000
