@@ -11,9 +11,10 @@ from pyqtgraph.opengl.items.GLMeshItem import DirtyFlag
 from pyqtgraph.opengl.shaders import FragmentShader, ShaderProgram, VertexShader
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QMatrix4x4, QSurfaceFormat
+from PySide6.QtOpenGL import QOpenGLFramebufferObject, QOpenGLFramebufferObjectFormat
 
-from app.window.view.batch import OPAQUE, Batch, Packed, face_colours, line_ranks, packed
-from app.window.view.picture import Picture, qcolor, size_of
+from app.window.view.batch import OPAQUE, Batch, Packed, face_colours, packed
+from app.window.view.picture import Picture, qcolor, shown_lines, size_of
 from app.window.view.shading import EDGE_WIDTHS, LIGHT_TERMS, MOST_MOVING
 
 if TYPE_CHECKING:
@@ -24,6 +25,7 @@ if TYPE_CHECKING:
     from app.window.view.surface import Float32Array, Surface
 
 _SHADER = "masswright soft"
+_SAMPLES = 4
 # Faces are pushed back a little in depth, so that the lines on them are whole.
 _SOLID: dict[Any, Any] = {
     GL.GL_DEPTH_TEST: True,
@@ -109,7 +111,7 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
         self.setGLOptions(_SOLID if self._solid else _SEE_THROUGH)
         self.setDepthValue(0 if self._solid else 10)
 
-    def parseMeshData(self) -> DirtyFlag:  # noqa: N802 - the base class's hook: says which buffers to send
+    def parseMeshData(self) -> DirtyFlag:
         dirty, self._dirty = self._dirty, DirtyFlag(0)
         return dirty
 
@@ -124,10 +126,10 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
                 self.updateGLOptions({"glCullFace": (side,)})
                 super().paint()
 
-    def mvpMatrix(self) -> QMatrix4x4:  # noqa: N802
+    def mvpMatrix(self) -> QMatrix4x4:
         return cast("QMatrix4x4", super().mvpMatrix() * self._here)
 
-    def modelViewMatrix(self) -> QMatrix4x4:  # noqa: N802
+    def modelViewMatrix(self) -> QMatrix4x4:
         return cast("QMatrix4x4", super().modelViewMatrix() * self._here)
 
     def release(self) -> None:
@@ -146,12 +148,13 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
 class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
     """Draws pictures with OpenGL 2.1 or newer, hardware or software."""
 
-    def __init__(self, parent: QWidget | None = None) -> None:
+    def __init__(self, parent: QWidget | None = None, *, rough_while_moving: bool = False) -> None:
         super().__init__(parent)
         chosen = QSurfaceFormat.defaultFormat()
         chosen.setDepthBufferSize(24)
-        chosen.setSamples(4)
         self.setFormat(chosen)
+        self._rough_while_moving = rough_while_moving
+        self._smooth: QOpenGLFramebufferObject | None = None
         self.setFocusPolicy(Qt.FocusPolicy.NoFocus)
         self.setAttribute(Qt.WidgetAttribute.WA_TransparentForMouseEvents)
         _make_shader()
@@ -206,25 +209,44 @@ class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
     def _set_lines(self, picture: Picture) -> None:
         assert self._shown is not None
         lines = self._pack(picture.scene, light=self._shown[1]).lines
-        ranks = line_ranks(picture.scene, picture.emphasis)
-        seen = lines.rims_seen(picture.camera, picture.scene.centre)
-        rims, rim_ranks = lines.rims[seen], ranks[lines.rim_owner[seen]]
-        sharp_ranks = ranks[lines.sharp_owner]
+        segments = shown_lines(lines, picture)
         theme, scale = picture.theme, float(self.devicePixelRatioF())
         colours = (theme.edge, theme.hovered_edge, theme.selected_edge)
-        for rank, (item, colour, width) in enumerate(zip(self._lines, colours, EDGE_WIDTHS, strict=True)):
-            ends = np.concatenate([lines.sharp[sharp_ranks == rank], rims[rim_ranks == rank]]).reshape(-1, 3)
-            _set_line(item, ends, colour, width * scale)
+        for item, ends, colour, width in zip(self._lines, segments, colours, EDGE_WIDTHS, strict=True):
+            _set_line(item, ends.reshape(-1, 3), colour, width * scale)
 
-    def paintGL(self) -> None:  # noqa: N802 - Qt's hook
-        """Draw the picture; depth may be written again before the ground is cleared."""
+    def paintGL(self) -> None:
+        """Draw the picture, with several samples per pixel where that is not too dear."""
+        # The ground is cleared with depth, so depth has to be written.
+        GL.glDepthMask(True)
+        if self._picture is not None and self._picture.moving and self._rough_while_moving:
+            super().paintGL()
+        else:
+            self._paint_smoothly()
         GL.glDepthMask(True)
         GL.glDisable(GL.GL_POLYGON_OFFSET_FILL)
-        super().paintGL()
-        GL.glDepthMask(True)
-        GL.glDisable(GL.GL_POLYGON_OFFSET_FILL)
 
-    def drawItemTree(self, item: Any = None, useItemNames: bool = False) -> None:  # noqa: ARG002, N802
+    def _paint_smoothly(self) -> None:
+        width, height = max(self.deviceWidth(), 1), max(self.deviceHeight(), 1)
+        buffer = self._smooth
+        if buffer is None or (buffer.width(), buffer.height()) != (width, height):
+            chosen = QOpenGLFramebufferObjectFormat()
+            chosen.setSamples(_SAMPLES)
+            chosen.setAttachment(QOpenGLFramebufferObject.Attachment.CombinedDepthStencil)
+            buffer = self._smooth = QOpenGLFramebufferObject(width, height, chosen)
+        buffer.bind()
+        GL.glViewport(0, 0, width, height)
+        self.paint(region=self.getViewport(), viewport=self.getViewport())
+        QOpenGLFramebufferObject.bindDefault()
+        # No target means the one that the widget draws to.
+        QOpenGLFramebufferObject.blitFramebuffer(cast("QOpenGLFramebufferObject", None), buffer)
+
+    def initializeGL(self) -> None:
+        """Start afresh in a new context: what belonged to the old one cannot be drawn into."""
+        self._smooth = None
+        super().initializeGL()
+
+    def drawItemTree(self, item: Any = None, useItemNames: bool = False) -> None:
         """Draw the items in their order. Unlike the base class's, an error while drawing is not swallowed."""
         for drawn in sorted(self.items, key=lambda entry: entry.depthValue()):
             if drawn.visible():
@@ -232,13 +254,13 @@ class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
                     self.default_vao.bind()
                 drawn.paint()
 
-    def viewMatrix(self) -> QMatrix4x4:  # noqa: N802
+    def viewMatrix(self) -> QMatrix4x4:
         """Return the camera's matrix for points relative to the scene's middle."""
         if self._picture is None:
             return QMatrix4x4()
         return QMatrix4x4(*self._picture.camera.view_matrix(self._picture.scene.centre).ravel().tolist())
 
-    def projectionMatrix(self, region: Any, viewport: Any) -> QMatrix4x4:  # noqa: ARG002, N802
+    def projectionMatrix(self, region: Any, viewport: Any) -> QMatrix4x4:
         """Return the camera's projection, parallel or perspective."""
         if self._picture is None:
             return QMatrix4x4()

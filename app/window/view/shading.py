@@ -33,6 +33,8 @@ MOST_MOVING = 60_000
 
 # Lines are tested for being hidden in pieces of this many pixels.
 _PIECE = 4.0
+# Of more lines than this, those shorter than a pixel are left out.
+_MANY_LINES = 20_000
 _MOST_PIECES = 400_000
 
 
@@ -117,6 +119,8 @@ def visible_lines(segments: FloatArray, stand: Stand, depth: NDArray[np.float32]
     frame = np.array([stand.width, stand.height])
     kept &= (spots[..., :2].max(axis=1) >= 0).all(axis=1) & (spots[..., :2].min(axis=1) <= frame).all(axis=1)
     spots = spots[kept]
+    if len(spots) > _MANY_LINES:
+        spots = spots[np.abs(spots[:, 1, :2] - spots[:, 0, :2]).max(axis=1) > 1.0]
     length = np.abs(spots[:, 1, :2] - spots[:, 0, :2]).max(axis=1)
     pieces = np.clip(np.ceil(length / _PIECE), 1, 4000).astype(np.int64)
     if pieces.sum() > _MOST_PIECES:

@@ -9,8 +9,8 @@ from PySide6.QtCore import QLineF, QRect, Qt
 from PySide6.QtGui import QImage, QPainter, QPaintEvent, QPen
 from PySide6.QtWidgets import QWidget
 
-from app.window.view.batch import Packed, face_colours, line_ranks, packed
-from app.window.view.picture import Picture, qcolor
+from app.window.view.batch import Packed, face_colours, packed
+from app.window.view.picture import Picture, qcolor, shown_lines
 from app.window.view.shading import EDGE_WIDTHS, MOST_MOVING, Raster, Stand, rastered, visible_lines
 
 if TYPE_CHECKING:
@@ -44,7 +44,7 @@ class SoftView(QWidget):
         self._picture = picture
         self.update()
 
-    def paintEvent(self, event: QPaintEvent) -> None:  # noqa: ARG002, N802 - Qt's signature
+    def paintEvent(self, event: QPaintEvent) -> None:
         """Draw faces into an image, and over it the lines that they do not hide."""
         painter = QPainter(self)
         picture = self._picture
@@ -77,19 +77,12 @@ class SoftView(QWidget):
         return self._packs[light]
 
     def _draw_lines(self, painter: QPainter, picture: Picture, pack: Packed, stand: Stand, raster: Raster) -> None:
-        lines, theme = pack.lines, picture.theme
-        ranks = line_ranks(picture.scene, picture.emphasis)
-        seen = lines.rims_seen(picture.camera, picture.scene.centre)
-        rims, rim_ranks, sharp_ranks = (
-            lines.rims[seen],
-            ranks[lines.rim_owner[seen]],
-            ranks[lines.sharp_owner],
-        )
+        theme = picture.theme
         across = self.width() / stand.width
-        for rank, colour in enumerate((theme.edge, theme.hovered_edge, theme.selected_edge)):
-            segments = np.concatenate([lines.sharp[sharp_ranks == rank], rims[rim_ranks == rank]])
+        colours = (theme.edge, theme.hovered_edge, theme.selected_edge)
+        for segments, colour, width in zip(shown_lines(pack.lines, picture), colours, EDGE_WIDTHS, strict=True):
             ends = visible_lines(segments.astype(np.float64), stand, raster.depth) * across
-            painter.setPen(QPen(qcolor(colour), EDGE_WIDTHS[rank], c=Qt.PenCapStyle.RoundCap))
+            painter.setPen(QPen(qcolor(colour), width, c=Qt.PenCapStyle.RoundCap))
             painter.drawLines(_qlines(ends))
 
 

@@ -63,23 +63,37 @@ class Surface:
         return len(self.faces)
 
     @cached_property
+    def blocks(self) -> Float32Array:
+        """Boxes (b, 2, 3) m around BLOCK facets at a time, relative to the middle."""
+        starts = np.arange(0, self.count, BLOCK)
+        corners = self.vertices[self.faces]
+        low, high = corners.min(axis=1), corners.max(axis=1)
+        return np.stack([np.minimum.reduceat(low, starts), np.maximum.reduceat(high, starts)], axis=1)
+
+    @cached_property
     def light(self) -> Surface:
         """A surface of far fewer triangles with the same outline in the large, for a camera that moves."""
         return self if self.count <= LIGHT_COUNT else lighter(self)
 
 
+# Facets that are picked among together.
+BLOCK = 256
 # A surface of at most so many triangles needs no lighter one.
 LIGHT_COUNT = 12_000
 
 
 def surface_of(facets: Facets) -> Surface:
     """Return the surface made ready for drawing; facets has at least one facet."""
-    points, corners = _welded(facets)
+    points, corners = facets.points, facets.corners
     bounds = np.stack([points.min(axis=0), points.max(axis=0)])
     middle = 0.5 * (bounds[0] + bounds[1])
-    local = (points - middle).astype(np.float32)
     normals = _facet_normals(points - middle, corners)
     edges = _edges(corners, len(points), normals)
+    if not edges.closed:
+        # Facets that do not share their points look open until equal points are made one.
+        points, corners = _welded(facets)
+        edges = _edges(corners, len(points), normals)
+    local = (points - middle).astype(np.float32)
     sharp = np.concatenate([edges.lonely, edges.ends[edges.turn < np.cos(SHARP)]])
     soft = (edges.turn >= np.cos(SHARP)) & (edges.turn < _FLAT)
     vertices, soft_normals, faces = _softened(local, corners, normals, edges)
@@ -157,7 +171,7 @@ def _edges(corners: IntArray, points: int, normals: FloatArray) -> _Edges:
     start, end = corners.ravel(), np.roll(corners, -1, axis=1).ravel()
     forward = start < end
     key = np.where(forward, start * points + end, end * points + start)
-    order = np.argsort(key, kind="stable")
+    order = np.argsort(key)
     ordered = key[order]
     first = np.flatnonzero(np.concatenate([[True], ordered[1:] != ordered[:-1]]))
     run = np.diff(np.append(first, len(ordered)))
@@ -206,7 +220,9 @@ def _softened(
     group = np.where(leaning, np.arange(len(group)), group)
     # A corner that left its group owns its number only if no group goes by it; then it takes a new one.
     group[leaning] += len(group)
-    used, faces = np.unique(group, return_inverse=True)
+    is_used = np.zeros(2 * len(group), dtype=bool)
+    is_used[group] = True
+    used, faces = np.flatnonzero(is_used), (np.cumsum(is_used) - 1)[group]
     alone = used >= len(group)
     source = np.where(alone, used - len(group), used)
     vertex_normals = np.where(alone[:, None], own[source], mean[source])
@@ -216,12 +232,16 @@ def _softened(
 
 def _corner_angles(points: Float32Array, corners: IntArray) -> FloatArray:
     """Return the angle in each corner of each facet, (m, 3) rad."""
-    spots = points[corners].astype(np.float64)
-    sides = np.roll(spots, -1, axis=1) - spots
-    length = np.sqrt(np.einsum("mij,mij->mi", sides, sides))
-    dots = -np.einsum("mij,mij->mi", sides, np.roll(sides, 1, axis=1))
-    scale = length * np.roll(length, 1, axis=1)
-    return np.arccos(np.clip(np.divide(dots, scale, out=np.ones_like(dots), where=scale > 0), -1.0, 1.0))
+    a, b, c = (points[corners[:, i]] for i in range(3))
+    sides = [b - a, c - b, a - c]
+    length = [np.sqrt(np.einsum("ij,ij->i", side, side)) for side in sides]
+    cosines = np.ones((len(corners), 3), dtype=np.float32)
+    for place in range(3):
+        before = place - 1
+        scale = length[place] * length[before]
+        dots = -np.einsum("ij,ij->i", sides[place], sides[before])
+        np.divide(dots, scale, out=cosines[:, place], where=scale > 0)
+    return np.arccos(np.clip(cosines, -1.0, 1.0)).astype(np.float64)
 
 
 def _joined(count: int, one: IntArray, two: IntArray) -> IntArray:

@@ -210,10 +210,11 @@ def test_the_wheel_zooms_to_the_pointer(pane, qtbot, dial):
 def test_moving_the_pointer_tells_what_it_is_on_once(pane, qtbot, dial, monkeypatch):
     pane.show_assembly(dial)
     shot(pane, qtbot)
+    pane.look("top")
     monkeypatch.setattr(pane, "underMouse", lambda: True)
     told = []
     pane.hovered.connect(told.append)
-    spot = pane.camera.project([0.12, 0.0, 0.02], pane.frame_size)
+    spot = pane.camera.project([0.05, 0.1, 0.02], pane.frame_size)
     for step in (0, 1):
         pane._last = QPointF(spot[0] + step, spot[1])
         pane._tell_hovered()

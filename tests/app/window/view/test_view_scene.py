@@ -2,14 +2,17 @@
 
 from __future__ import annotations
 
+import gc
+
 import numpy as np
 import pytest
 
 from app.window.view.batch import LARGE, Emphasis, face_colours, line_ranks, packed
 from app.window.view.camera import Camera
 from app.window.view.palette import BLUE, DARK, LIGHT, contrast
-from app.window.view.scene import Scene, SurfaceStore, scene_of
+from app.window.view.scene import SurfaceStore, scene_of
 from core.assembly import Assembly
+from core.facets import Facets
 
 THEMES = {"light": LIGHT, "dark": DARK}
 
@@ -69,11 +72,14 @@ def test_a_surface_is_made_ready_once(dial, make_dial):
     assert all(one.surface is two.surface for one, two in zip(first.bodies, second.bodies, strict=True))
 
 
-def test_surfaces_that_are_no_longer_shown_are_forgotten(dial):
+def test_a_surface_is_forgotten_with_the_facets_that_it_was_made_from():
     store = SurfaceStore()
-    scene_of(dial, store)
-    store.keep_only(Scene())
-    assert store._kept == {}
+    facets = Facets(np.eye(3), [[0, 1, 2]])
+    store.of(facets)
+    assert len(store._kept) == 1
+    del facets
+    gc.collect()
+    assert len(store._kept) == 0
 
 
 def test_parts_of_one_material_share_a_tint(dial):
