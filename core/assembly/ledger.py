@@ -125,9 +125,8 @@ class _Sums:
             runs[empty] = 0
             return np.asarray(runs)
 
-        return _Sums(
-            *(summed(each) for each in (self.mass, self.first, self.own, self.transfer, self.known)), size=self.size
-        )
+        mass, own, transfer = (summed(each) for each in (self.mass, self.own, self.transfer))
+        return _Sums(mass, summed(self.first), own, transfer, summed(self.known), self.size)
 
 
 def _lines(heads: list[_Head], sums: _Sums) -> list[Line]:
