@@ -169,12 +169,14 @@ def _strips(edges: FloatArray, places: FloatArray) -> FloatArray:
 
 def _caps(points: FloatArray, loops: list[IntArray]) -> FloatArray:
     """Return the fans (m, 3, 3) that close loops against their own direction, about their lines' centroids."""
-    fans = []
-    for loop in loops:
-        start, stop = points[loop], points[np.roll(loop, -1)]
-        lengths = np.linalg.norm(stop - start, axis=1)
-        weights = lengths if lengths.sum() > 0 else np.ones(len(loop))
-        # Weighted by length, so that a side split into many edges draws the centroid no nearer.
-        centre = np.average(0.5 * (start + stop), axis=0, weights=weights)
-        fans.append(np.stack([stop, start, np.broadcast_to(centre, start.shape)], axis=1))
-    return np.concatenate(fans)
+    sizes = np.array([len(loop) for loop in loops])
+    first = np.cumsum(sizes) - sizes
+    after = np.arange(1, sizes.sum() + 1)
+    after[first + sizes - 1] = first
+    start = points[np.concatenate(loops)]
+    stop = start[after]
+    # Weighted by length, so that a side split into many edges draws the centroid no nearer.
+    weights = np.linalg.norm(stop - start, axis=1)
+    middles = np.add.reduceat(weights[:, None] * 0.5 * (start + stop), first)
+    centres = middles / np.add.reduceat(weights, first)[:, None]
+    return np.stack([stop, start, np.repeat(centres, sizes, axis=0)], axis=1)

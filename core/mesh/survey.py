@@ -92,6 +92,14 @@ def survey_file(path: str | Path, progress: Progress | None = None) -> MeshSurve
 def survey_triangles(triangles: ArrayLike, name: str = "mesh") -> MeshSurvey:
     """Return the survey of triangles (n, 3, 3), counter-clockwise seen from outside, any length unit.
 
+    >>> faces = [[0, 2, 1], [0, 1, 3], [1, 2, 3], [0, 3, 2]]
+    >>> corners = np.array([[0, 0, 0], [3, 0, 0], [0, 3, 0], [0, 0, 3]])
+    >>> survey = survey_triangles(corners[faces])
+    >>> survey.verdict, float(survey.solid.mass), survey.solid.centre.tolist()
+    ('closed', 4.5, [0.75, 0.75, 0.75])
+    >>> survey_triangles(corners[faces[:1]]).basis
+    'no volume: the facets enclose none'
+
     Raises:
         ValueRefused: another shape, or no triangle.
         MeshFileError: a coordinate that is not finite.
