@@ -5,8 +5,34 @@ Importing this package enters every shape into SHAPES (key → class).
 
 from core.shapes.base import SHAPES, Dimension, Shape
 from core.shapes.box import Box
-from core.shapes.cone import Cone, Frustum
+from core.shapes.cap import Hemisphere, SphericalCap
+from core.shapes.cone import Cone, Frustum, HollowFrustum
 from core.shapes.cylinder import Cylinder, Tube
-from core.shapes.sphere import Sphere
+from core.shapes.ellipsoid import Ellipsoid
+from core.shapes.prism import RegularPrism
+from core.shapes.pyramid import Pyramid, Tetrahedron
+from core.shapes.sphere import HollowSphere, Sphere
+from core.shapes.torus import Torus
+from core.shapes.wedge import Wedge
 
-__all__ = ["SHAPES", "Box", "Cone", "Cylinder", "Dimension", "Frustum", "Shape", "Sphere", "Tube"]
+__all__ = [
+    "SHAPES",
+    "Box",
+    "Cone",
+    "Cylinder",
+    "Dimension",
+    "Ellipsoid",
+    "Frustum",
+    "Hemisphere",
+    "HollowFrustum",
+    "HollowSphere",
+    "Pyramid",
+    "RegularPrism",
+    "Shape",
+    "Sphere",
+    "SphericalCap",
+    "Tetrahedron",
+    "Torus",
+    "Tube",
+    "Wedge",
+]

@@ -14,6 +14,7 @@ import numpy as np
 from core.arrays import ArrayLike, BoolArray, FloatArray, frozen
 from core.errors import ShapeError
 from core.facets import Facets
+from core.measure import Measure
 from core.moments import Moments
 
 DimensionKind: TypeAlias = Literal["length", "angle", "count"]
@@ -33,6 +34,7 @@ class Dimension:
         kind: what it counts in.
         symbol: as on a drawing ("⌀D", "h").
         may_be_zero: whether 0 is a sensible value (the top of a frustum, the bore of a tube).
+        least, most: where the value has to lie, ends included; None where only the sign matters.
     """
 
     name: str
@@ -41,27 +43,43 @@ class Dimension:
     kind: DimensionKind = "length"
     symbol: str = ""
     may_be_zero: bool = False
+    least: float | None = None
+    most: float | None = None
 
 
 class Shape(ABC):
-    """A solid of uniform density in its own frame (part frame); each one is a frozen dataclass of dimensions.
+    """A uniform body in its own frame (part frame); each one is a frozen dataclass of dimensions.
 
     Each dimension may be a number or an array (...): moments then come back as a batch of that shape.
-    Solids of revolution have their axis along z. Bodies with a flat base stand on the plane z = 0.
+    Bodies of revolution have their axis along z. Bodies with a flat base stand on the plane z = 0.
     Making one refuses dimensions that make no body (see `check`).
+
+    Attributes:
+        key: its name in documents.
+        title: the trade's word for it.
+        measure: what a mass per unit multiplies: a volume, or of a body without thickness its area, its
+            length, or nothing but the piece itself.
+        note: what is idealised, as a sentence to show; "" where nothing is.
+        dimensions: in the order in which a form asks for them.
     """
 
     key: ClassVar[str]
     title: ClassVar[str]
+    measure: ClassVar[Measure] = "volume"
+    note: ClassVar[str] = ""
     dimensions: ClassVar[tuple[Dimension, ...]]
 
     @abstractmethod
     def moments(self) -> Moments:
-        """Return the moments at unit density (1 kg/m³): mass is the volume in m³. Batches broadcast."""
+        """Return the moments at 1 kg per unit of `measure`: mass is m³, m², m or 1. Batches broadcast."""
 
     @abstractmethod
     def facets(self, steps: int = 48) -> Facets:
-        """Return a closed surface to draw, in m, a full circle in `steps` steps; for a single shape only."""
+        """Return a surface to draw, in m, a full circle in `steps` steps; for a single shape only.
+
+        It is closed around a solid. A sheet or shell is drawn as it is, open where it ends; a rod, a ring and
+        a point mass as slender solids of a width of their own.
+        """
 
     def __post_init__(self) -> None:
         for dimension in self.dimensions:
@@ -82,11 +100,16 @@ class Shape(ABC):
         """Refuse dimensions that make no body; a shape with a rule between its dimensions adds it here.
 
         Raises:
-            ShapeError: a dimension is negative or not finite, 0 where it may not be, or a count not whole.
+            ShapeError: a dimension is negative or not finite, 0 where it may not be, outside its limits, or
+                a count not whole.
         """
         for dimension in self.dimensions:
             value = self.array(dimension.name)
             good = np.isfinite(value) & (value >= 0 if dimension.may_be_zero else value > 0)
+            if dimension.least is not None:
+                good &= value >= dimension.least
+            if dimension.most is not None:
+                good &= value <= dimension.most
             if dimension.kind == "count":
                 good &= value == np.round(value)
             if not np.all(good):
@@ -97,6 +120,23 @@ class Shape(ABC):
                     read=said(bad, dimension.kind),
                     remedy="Give 0 or more" if dimension.may_be_zero else _REMEDY[dimension.kind],
                 )
+
+    def refuse_where(self, bad: ArrayLike, sentence: str, *lengths: ArrayLike, remedy: str) -> None:
+        """Refuse the shape where bad (...) holds anywhere, with the lengths of that place in the sentence.
+
+        Args:
+            bad: (...) whether a rule between dimensions is broken.
+            sentence: what is wrong, with a {} for each of the lengths.
+            lengths: each (...) m.
+            remedy: what to do.
+
+        Raises:
+            ShapeError: bad holds somewhere.
+        """
+        broken = np.asarray(bad)
+        if np.any(broken):
+            shown = [said(value) for value in first_where(broken, *lengths)]
+            raise ShapeError(sentence.format(*shown), where=self.title, remedy=remedy)
 
     def array(self, name: str) -> FloatArray:
         """Return one dimension as a float64 array (...)."""
@@ -153,18 +193,21 @@ def register(shape: ShapeClass) -> ShapeClass:
 
 
 def upright_moments(
-    volume: ArrayLike, centre_height: ArrayLike, mean_squares: tuple[ArrayLike, ArrayLike, ArrayLike]
+    measure: ArrayLike, centre_height: ArrayLike, mean_squares: tuple[ArrayLike, ArrayLike, ArrayLike]
 ) -> Moments:
-    """Return the moments of a body that is symmetric in the planes x = 0 and y = 0, at unit density.
+    """Return the moments of a body that is symmetric in the planes x = 0 and y = 0, at unit mass per measure.
 
     Args:
-        volume: (...) m³.
+        measure: (...) m³; m² or m of a thin body.
         centre_height: (...) m, z of the centre of mass.
-        mean_squares: three of (...) m², the means of x², y² and (z − centre height)² over the volume.
+        mean_squares: three of (...) m², the means of x², y² and (z − centre height)² over the body.
     """
-    size, height, *squares = np.broadcast_arrays(volume, centre_height, *mean_squares)
-    centre = np.stack([np.zeros_like(height), np.zeros_like(height), height], axis=-1)
-    spread = np.stack(squares, axis=-1)[..., None] * np.eye(3) * np.asarray(size)[..., None, None]
+    size, height, *squares = np.broadcast_arrays(measure, centre_height, *mean_squares)
+    centre = np.zeros((*np.shape(size), 3))
+    centre[..., 2] = height
+    spread = np.zeros((*np.shape(size), 3, 3))
+    for axis, square in enumerate(squares):
+        np.multiply(size, square, out=spread[..., axis, axis])
     return Moments(size, centre, spread)
 
 
@@ -193,6 +236,12 @@ _REMEDY = {
 
 
 def _limit(dimension: Dimension) -> str:
-    if dimension.kind == "count":
-        return f"a whole number of at least {0 if dimension.may_be_zero else 1}"
+    whole = "a whole number " if dimension.kind == "count" else ""
+    least, most = dimension.least, dimension.most
+    if whole and least is None:
+        least = 0.0 if dimension.may_be_zero else 1.0
+    if least is not None and most is not None:
+        return f"{whole}from {said(least, dimension.kind)} to {said(most, dimension.kind)}"
+    if least is not None:
+        return f"{whole}of at least {said(least, dimension.kind)}"
     return "at least 0" if dimension.may_be_zero else "more than 0"

@@ -1,4 +1,4 @@
-"""The ball."""
+"""The ball, solid and with a cavity."""
 
 from dataclasses import dataclass
 from typing import ClassVar
@@ -9,6 +9,7 @@ from core.arrays import ArrayLike, FloatArray, IntArray
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.joining import inside_out, together
 from core.shapes.round_surface import check_steps
 
 
@@ -31,14 +32,65 @@ class Sphere(Shape):
 
     def facets(self, steps: int = 48) -> Facets:
         """Return facets of similar size, in m, corners on the sphere; steps is rounded up to n × 4."""
-        check_steps(steps)
-        upper, facets = _hemisphere(-(-steps // 4))
-        # The lower half is the upper one's mirror image; both share the points of the equator.
-        below = upper[:, 2] > 0
-        image = np.where(below, len(upper) + np.cumsum(below) - 1, np.arange(len(upper)))
-        points = np.concatenate([upper, upper[below] * [1, 1, -1]])
-        corners = np.concatenate([facets, image[facets[:, ::-1]]])
-        return Facets(points * self.single("diameter") / 2, corners)
+        return ball(np.full(3, self.single("diameter")), steps)
+
+
+@register
+@dataclass(frozen=True)
+class HollowSphere(Shape):
+    """A sphere with a concentric spherical cavity, centred on the origin. Diameters (...) in m."""
+
+    key: ClassVar[str] = "hollow sphere"
+    title: ClassVar[str] = "hollow sphere"
+    dimensions: ClassVar[tuple[Dimension, ...]] = (
+        Dimension("outer_diameter", "outer diameter", 0.06, symbol="S⌀D"),
+        Dimension("inner_diameter", "inner diameter", 0.05, symbol="S⌀d", may_be_zero=True),
+    )
+
+    outer_diameter: ArrayLike
+    inner_diameter: ArrayLike
+
+    def check(self) -> None:
+        """Refuse, beside single dimensions, a cavity that leaves no wall.
+
+        Raises:
+            ShapeError: the inner diameter is not less than the outer one.
+        """
+        super().check()
+        outer, inner = self.array("outer_diameter"), self.array("inner_diameter")
+        self.refuse_where(
+            inner >= outer,
+            "the inner diameter {} leaves no wall within the outer diameter {}",
+            inner, outer, remedy="Make the inner diameter smaller, or the outer one larger",
+        )
+
+    def moments(self) -> Moments:
+        """Return the moments at unit density; D³ − d³ and D⁵ − d⁵ are divided by D − d, which alone may be small."""
+        a, b = self.array("outer_diameter"), self.array("inner_diameter")
+        cubes = a**2 + a * b + b**2
+        square = (a**4 + a**3 * b + a**2 * b**2 + a * b**3 + b**4) / (20 * cubes)
+        return upright_moments(np.pi / 6 * (a - b) * cubes, np.zeros(()), (square, square, square))
+
+    def facets(self, steps: int = 48) -> Facets:
+        """Return the outer surface and that of the cavity, in m; steps is rounded up to n × 4."""
+        outer, inner = self.single("outer_diameter"), self.single("inner_diameter")
+        surface = ball(np.full(3, outer), steps)
+        return together([surface, inside_out(ball(np.full(3, inner), steps))]) if inner > 0 else surface
+
+
+def ball(diameters: FloatArray, steps: int) -> Facets:
+    """Return the surface of a ball stretched to three diameters (3,) in m along the axes, centred on the origin.
+
+    Raises:
+        ShapeError: too few steps; they are rounded up to n × 4.
+    """
+    check_steps(steps)
+    upper, facets = _hemisphere(-(-steps // 4))
+    # The lower half is the upper one's mirror image; both share the points of the equator.
+    below = upper[:, 2] > 0
+    image = np.where(below, len(upper) + np.cumsum(below) - 1, np.arange(len(upper)))
+    points = np.concatenate([upper, upper[below] * [1, 1, -1]])
+    return Facets(points * diameters / 2, np.concatenate([facets, image[facets[:, ::-1]]]))
 
 
 def _hemisphere(rings: int) -> tuple[FloatArray, IntArray]:
