@@ -1,0 +1,240 @@
+"""Which edges run across a smooth surface, which are creases, and where a flat runs tangent into a round.
+
+An edge is smooth only where the surface goes on bending beyond the next edge as it bends here. So a ridge between
+two flats, a bevel and a lead-in chamfer stay sharp, however little they turn.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Final
+
+import numpy as np
+
+from core.mesh.curvature.surface import conormals, patch_widths
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from core.arrays import BoolArray, FloatArray, IntArray
+    from core.mesh.curvature.surface import PatchForms, Surface
+
+# Normals turning by this or more make a crease: a regular nonagon turns by 40°.
+CREASE: Final = float(np.radians(39.9))
+
+# A neighbour this many times as wide across the edge is a flat (or straight) that runs tangent into a round.
+WIDE: Final = 3.0
+
+# How far the curvature at an edge and beyond the next edge may differ (as a factor) and still be one surface.
+ALIKE: Final = 3.0
+
+# Share of a patch's far side that must be smooth to speak for the edge.
+FAR_SIDE: Final = 0.3
+
+# The half step at the end of a round is believed where it fits this well and the full step misses by the other.
+HALF_STEP_FITS: Final = float(np.log(1.25))
+FULL_STEP_MISSES: Final = float(np.log(1.5))
+
+# In a mesh of lone triangles, an edge may turn this many times as much as the others around it.
+LONE_TURN: Final = 2.5
+
+# Where curvature changes its sign the turns are small beside those across: at most this share of them.
+SMALL_TURN: Final = 0.35
+
+# Rim edges of a patch that is one cell of a grid.
+QUAD: Final = 4
+
+# Smooth edges that two lone triangles need around the one in question.
+ENOUGH: Final = 2
+
+# Edges of one patch that are compared with each other; patches with more are flats in all but odd cases.
+MOST_COMPARED: Final = 24
+
+# What an edge tells the triangle on its side about its curvature:
+# nothing; that the neighbour's far corner lies on the same surface; the slope there, the neighbour being another strip
+# of the same round, a flat, or a round beside this flat; that the neighbour lies in the same plane.
+CREASED, CORNER, STRIP, ROUND_BESIDE_FLAT, FLAT_BESIDE_ROUND, COPLANAR = (np.int8(kind) for kind in range(6))
+
+
+@dataclass(frozen=True, eq=False)
+class Seams:
+    """What the edges of a mesh say.
+
+    Attributes:
+        kinds: (3m,) one of CREASED, CORNER, STRIP and so on, for every half-edge.
+        slopes: (3m,) rad, the part of the edge's turn that lies on the triangle's own side, where it is known.
+    """
+
+    kinds: NDArray[np.int8]
+    slopes: FloatArray
+
+    @property
+    def peers(self) -> BoolArray:
+        """Which half-edges run across one smooth round."""
+        return np.asarray((self.kinds == CORNER) | (self.kinds == STRIP))
+
+
+@dataclass(frozen=True, eq=False)
+class _Rim:
+    """The half-edges (r,) on the rims of plane patches, sorted by patch.
+
+    Attributes:
+        half_edges, patch, beyond: which, of which patch, next to which (−1: none).
+        out: (r, 3) unit vectors across the edge, outward. length, turn: of the edge.
+        mate: position in this list of the mate, or of itself where there is none.
+        smooth: could be smooth: shared by two and no crease.
+        width, width_beyond: of the own and the other patch across the edge.
+        first, count: where the patch's half-edges start in this list, and how many there are.
+    """
+
+    half_edges: IntArray
+    patch: IntArray
+    beyond: IntArray
+    out: FloatArray
+    length: FloatArray
+    turn: FloatArray
+    mate: IntArray
+    smooth: BoolArray
+    width: FloatArray
+    width_beyond: FloatArray
+    first: IntArray
+    count: IntArray
+
+
+@dataclass(frozen=True, eq=False)
+class _Beyond:
+    """What the opposite edges of its patch say about each rim half-edge (r,).
+
+    Attributes:
+        share, bend: share of them that is smooth, and their mean curvature.
+        strict_share, strict_bend: the same, from those that have no wide flat beyond.
+        turn: largest turn of the patch's other smooth edges, opposite or not. far_turn: of the opposite ones.
+    """
+
+    share: FloatArray
+    bend: FloatArray
+    strict_share: FloatArray
+    strict_bend: FloatArray
+    turn: FloatArray
+    far_turn: FloatArray
+
+
+def classify(surface: Surface, forms: PatchForms) -> Seams:
+    """Return what every edge of a mesh says about the curvature of the triangles beside it."""
+    kinds, slopes = np.zeros(len(surface.mates), dtype=np.int8), np.zeros(len(surface.mates))
+    kinds[surface.coplanar] = COPLANAR
+    rim = _rim(surface, forms)
+    if not rim.smooth.any():
+        return Seams(kinds, slopes)
+    ok, flat_beyond = _spoken_for(surface, rim)
+    mate = rim.mate
+    believed = rim.smooth & (ok | ok[mate] | _among_lone(surface, rim))
+    tangent = flat_beyond & ok & ~(flat_beyond[mate] & ok[mate])
+    strips = ~surface.lone[rim.patch] & ~surface.lone[rim.beyond]
+    found = np.where(believed, np.where(strips, STRIP, CORNER), CREASED)
+    found[believed & tangent] = ROUND_BESIDE_FLAT
+    found[believed & tangent[mate]] = FLAT_BESIDE_ROUND
+    kinds[rim.half_edges] = found
+    both = np.maximum(rim.width + rim.width_beyond, 1e-300)
+    share = np.where(found == STRIP, rim.width / both, found == ROUND_BESIDE_FLAT)
+    slopes[rim.half_edges] = rim.turn * share
+    return Seams(kinds, slopes)
+
+
+def _rim(surface: Surface, forms: PatchForms) -> _Rim:
+    owner = np.repeat(surface.patches, 3)
+    other = np.where(surface.mates >= 0, owner[surface.mates], -1)
+    half_edges = np.flatnonzero(owner != other)
+    half_edges = half_edges[np.argsort(owner[half_edges], kind="stable")]
+    mates = surface.mates[half_edges]
+    place = np.full(len(owner), -1)
+    place[half_edges] = np.arange(len(half_edges))
+    turn = surface.turns[half_edges]
+    smooth = (mates >= 0) & (np.abs(turn) < CREASE) & (turn != 0)
+    smooth &= (surface.areas[half_edges // 3] > 0) & (surface.areas[mates // 3] > 0)
+    mate = np.where(mates >= 0, place[mates], np.arange(len(half_edges)))
+    out, length = conormals(surface, half_edges)
+    patch = owner[half_edges]
+    width = patch_widths(forms.spreads, patch, out)
+    count = np.bincount(patch, minlength=len(surface.flat))
+    first = np.cumsum(count) - count
+    return _Rim(half_edges, patch, other[half_edges], out, length, turn, mate, smooth, width, width[mate],
+                first[patch], count[patch])
+
+
+def _spoken_for(surface: Surface, rim: _Rim) -> tuple[BoolArray, BoolArray]:
+    """Say where the own patch bends on beyond its far side as it does here, and where it calls the other flat."""
+    floor = 1e-12 * surface.size
+    full = 2 * rim.turn / np.maximum(rim.width + rim.width_beyond, floor)
+    half = 2 * rim.turn / np.maximum(rim.width, floor)
+    wide, narrow = rim.width_beyond > WIDE * rim.width, rim.width > WIDE * rim.width_beyond
+    beyond = _compare(rim, np.where(wide, half, full), wide)
+    share = np.where(wide, beyond.strict_share, beyond.share)
+    bend = np.where(wide, beyond.strict_bend, beyond.bend)
+    full_miss, half_miss = _miss(full, bend), _miss(half, bend)
+    lone = surface.lone[rim.patch] & surface.lone[rim.beyond]
+    half_fits = (half_miss < HALF_STEP_FITS) & (full_miss > FULL_STEP_MISSES)
+    flat_beyond = (surface.flat[rim.beyond] | wide | half_fits) & ~surface.lone[rim.beyond] | (wide & ~lone)
+    miss = np.where(flat_beyond, half_miss, full_miss)
+    ok = rim.smooth & (miss < np.log(ALIKE)) & (share > FAR_SIDE) & ~narrow & ~surface.flat[rim.patch]
+    # Where the curvature across the edge passes through zero, both turns are small and their ratio says nothing.
+    small = (np.abs(rim.turn) < SMALL_TURN * beyond.turn) & (beyond.far_turn < SMALL_TURN * beyond.turn)
+    small &= (beyond.share > 1 - FAR_SIDE) & (rim.count <= QUAD) & ~wide & ~narrow & rim.smooth
+    return ok | (small & small[rim.mate]), flat_beyond & ok
+
+
+def _among_lone(surface: Surface, rim: _Rim) -> BoolArray:
+    """Say which edges between lone triangles turn no more than the edges around them.
+
+    Those are the other edges of both triangles, and the edges of the triangles beyond those.
+    """
+    lone = surface.lone[rim.patch]
+    at = np.arange(len(rim.patch))
+    others = [np.where(lone, rim.first + (at - rim.first + step) % 3, at) for step in (1, 2)]
+    turn = np.where(rim.smooth & lone, np.abs(rim.turn), 0.0)
+    nearby = np.maximum(turn[others[0]], turn[others[1]])
+    beyond = np.where(rim.smooth & lone[rim.mate], nearby[rim.mate], 0.0)
+    around = np.maximum(nearby, np.maximum(beyond[others[0]], beyond[others[1]]))
+    sides = (turn[others[0]] > 0).astype(int) + (turn[others[1]] > 0)
+    calm = np.abs(rim.turn) <= LONE_TURN * np.maximum(around, around[rim.mate])
+    return np.asarray(rim.smooth & lone & lone[rim.mate] & calm & (sides + sides[rim.mate] >= ENOUGH))
+
+
+def _miss(here: FloatArray, beyond: FloatArray) -> FloatArray:
+    """Return |log| of the ratio of two curvatures, infinite where their signs differ."""
+    ratio = np.divide(here, beyond, out=np.zeros_like(here), where=here * beyond > 0)
+    return np.abs(np.log(ratio, out=np.full_like(ratio, np.inf), where=ratio > 0))
+
+
+def _compare(rim: _Rim, bend: FloatArray, wide: BoolArray) -> _Beyond:
+    """Look across every patch from each of its rim edges to all others, the opposite ones."""
+    rows = len(rim.patch)
+    everything, lengths, bends, strict_lengths, strict_bends, turns, far_turns = np.zeros((7, rows))
+    at = np.flatnonzero(rim.count <= MOST_COMPARED)
+    for step in range(1, MOST_COMPARED):
+        at = at[rim.count[at] > step]
+        if not len(at):
+            break
+        other = rim.first[at] + (at - rim.first[at] + step) % rim.count[at]
+        apart = rim.beyond[other] != rim.beyond[at]
+        facing = np.maximum(-np.einsum("ni,ni->n", rim.out[at], rim.out[other]), 0.0) * apart
+        facing[facing < OBLIQUE] = 0.0
+        weight = facing**2 * rim.length[other]
+        everything[at] += weight
+        weight *= rim.smooth[other]
+        lengths[at] += weight
+        bends[at] += weight * bend[other]
+        weight *= ~wide[other]
+        strict_lengths[at] += weight
+        strict_bends[at] += weight * bend[other]
+        turn = np.where(rim.smooth[other] & apart, np.abs(rim.turn[other]), 0.0)
+        turns[at] = np.maximum(turns[at], turn)
+        far_turns[at] = np.maximum(far_turns[at], turn * (facing > 0))
+    everything[everything == 0] = 1.0
+    some, strict_some = np.maximum(lengths, 1e-300), np.maximum(strict_lengths, 1e-300)
+    return _Beyond(lengths / everything, bends / some, strict_lengths / everything, strict_bends / strict_some,
+                   turns, far_turns)
+
+
+# Edges of a patch whose outward directions are this near to a right angle are beside each other, not opposite.
+OBLIQUE: Final = 0.3

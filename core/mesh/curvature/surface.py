@@ -1,0 +1,223 @@
+"""What the facets of a closed mesh are next to: mates across edges, plane patches, and how far normals turn.
+
+Half-edge 3t+k is the edge of triangle t that lies opposite its corner k; it runs from corner k+1 to corner k+2.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Final
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from core.arrays import BoolArray, FloatArray, IntArray
+
+# A corner this near to the next facet's plane (relative to the largest coordinate) lies in it: four steps of float32.
+COPLANAR = 2.0**-22
+
+# Corners of a plane patch from which on it cannot be one facet of a curved surface: a plane meets such a surface's
+# grid in at most four corners.
+FLAT_CORNERS = 5
+
+
+@dataclass(frozen=True, eq=False)
+class Surface:
+    """A closed mesh with its neighbourhoods.
+
+    Attributes:
+        points: (n, 3). corners: (m, 3) indices into points.
+        normals: (m, 3) unit, or 0 where a triangle has no area. areas: (m,).
+        mates: (3m,) the half-edge that runs the other way, or −1 where the edge is not shared by exactly two.
+        turns: (3m,) angle in rad between both normals, positive where the edge is convex; 0 without a mate.
+        coplanar: (3m,) both triangles lie in one plane.
+        patches: (m,) number of the plane patch of connected coplanar triangles.
+        lone: (patches,) the patch is a single triangle.
+        flat: (patches,) the patch has too many corners to be a facet of a curved surface.
+        size: the largest coordinate, for tolerances.
+    """
+
+    points: FloatArray
+    corners: IntArray
+    normals: FloatArray
+    areas: FloatArray
+    mates: IntArray
+    turns: FloatArray
+    coplanar: BoolArray
+    patches: IntArray
+    lone: BoolArray
+    flat: BoolArray
+    size: float
+
+
+def survey(points: FloatArray, corners: IntArray) -> Surface:
+    """Return the neighbourhoods of a mesh; points (n, 3), corners (m, 3)."""
+    size = float(np.abs(points).max())
+    normals, areas = _normals(points, corners)
+    mates = mate_half_edges(corners, len(points))
+    turns, coplanar = _turns(points, corners, normals, mates, COPLANAR * size)
+    patches = _patches(len(corners), mates, coplanar)
+    flat = _flat_patches(points, corners, mates, patches)
+    lone = np.bincount(patches) == 1
+    return Surface(points, corners, normals, areas, mates, turns, coplanar, patches, lone, flat, size)
+
+
+def _normals(points: FloatArray, corners: IntArray) -> tuple[FloatArray, FloatArray]:
+    a = points[corners[:, 0]]
+    normals = np.cross(points[corners[:, 1]] - a, points[corners[:, 2]] - a)
+    lengths = np.sqrt(np.einsum("ni,ni->n", normals, normals))
+    np.divide(normals, lengths[:, None], out=normals, where=lengths[:, None] > 0)
+    return normals, 0.5 * lengths
+
+
+def mate_half_edges(corners: IntArray, point_count: int) -> IntArray:
+    """Return for every half-edge (3m,) the one that runs the other way, −1 where not exactly two share the edge."""
+    start = corners[:, [1, 2, 0]].ravel()
+    end = corners[:, [2, 0, 1]].ravel()
+    keys = np.minimum(start, end) * point_count + np.maximum(start, end)
+    order = np.argsort(keys, kind="stable")
+    keys = keys[order]
+    same = keys[1:] == keys[:-1]
+    lone_before = np.concatenate([[True], ~same])
+    lone_after = np.concatenate([~same, [True]])
+    # A pair is two equal keys with another key before and another one after.
+    pair = np.flatnonzero(same & lone_before[:-1] & lone_after[1:])
+    one, two = order[pair], order[pair + 1]
+    opposed = start[one] == end[two]
+    one, two = one[opposed], two[opposed]
+    mates = np.full(len(start), -1, dtype=np.int64)
+    mates[one], mates[two] = two, one
+    return mates
+
+
+def _turns(
+    points: FloatArray, corners: IntArray, normals: FloatArray, mates: IntArray, tolerance: float
+) -> tuple[FloatArray, BoolArray]:
+    turns, coplanar = np.zeros(len(mates)), np.zeros(len(mates), dtype=bool)
+    one = np.flatnonzero(mates >= 0)
+    one = one[one < mates[one]]
+    two = mates[one]
+    apexes = corners.ravel()
+    for start in range(0, len(one), 200_000):
+        a, b = one[start : start + 200_000], two[start : start + 200_000]
+        normal_a, normal_b = normals[a // 3], normals[b // 3]
+        reach = points[apexes[b]] - points[apexes[a // 3 * 3 + (a + 1) % 3]]
+        back = points[apexes[a]] - points[apexes[a // 3 * 3 + (a + 1) % 3]]
+        above_a, above_b = np.einsum("ni,ni->n", reach, normal_a), np.einsum("ni,ni->n", back, normal_b)
+        cosine = np.einsum("ni,ni->n", normal_a, normal_b)
+        across = np.cross(normal_a, normal_b)
+        angle = np.arctan2(np.sqrt(np.einsum("ni,ni->n", across, across)), cosine)
+        turns[a] = turns[b] = np.where(above_a <= 0, angle, -angle)
+        proper = (normal_a != 0).any(1) & (normal_b != 0).any(1)
+        coplanar[a] = coplanar[b] = (
+            (np.abs(above_a) <= tolerance) & (np.abs(above_b) <= tolerance) & (cosine > 0) & proper
+        )
+    return turns, coplanar
+
+
+def _patches(count: int, mates: IntArray, coplanar: BoolArray) -> IntArray:
+    """Number the sets of triangles that coplanar edges connect (label hooking with pointer jumping)."""
+    one = np.flatnonzero(coplanar)
+    one = one[one < mates[one]]
+    labels = np.arange(count)
+    a, b = one // 3, mates[one] // 3
+    while len(a):
+        low, high = np.minimum(labels[a], labels[b]), np.maximum(labels[a], labels[b])
+        np.minimum.at(labels, high, low)
+        while True:
+            jumped = labels[labels]
+            if np.array_equal(jumped, labels):
+                break
+            labels = jumped
+        open_ = labels[a] != labels[b]
+        a, b = a[open_], b[open_]
+    roots = labels == np.arange(count)
+    return (np.cumsum(roots) - 1)[labels]
+
+
+def _flat_patches(points: FloatArray, corners: IntArray, mates: IntArray, patches: IntArray) -> BoolArray:
+    """Return which patches have FLAT_CORNERS corners or more, where their outline turns."""
+    triangles = np.bincount(patches)
+    flat = np.zeros(len(triangles), dtype=bool)
+    owner = np.repeat(patches, 3)
+    other = np.where(mates >= 0, owner[mates], -1)
+    rim = np.flatnonzero((triangles[owner] >= FLAT_CORNERS - 2) & (owner != other))
+    if not len(rim):
+        return flat
+    triangle, k = rim // 3, rim % 3
+    start, end = corners[triangle, (k + 1) % 3], corners[triangle, (k + 2) % 3]
+    owner = owner[rim]
+    along = points[end] - points[start]
+    leaving, arriving = owner * len(points) + start, owner * len(points) + end
+    out_order, in_order = np.argsort(leaving, kind="stable"), np.argsort(arriving, kind="stable")
+    # Both lists hold the same keys, so the n-th of one meets the n-th of the other at the same corner.
+    u, v = along[in_order], along[out_order]
+    turn = np.cross(u, v)
+    sine_squared = np.einsum("ni,ni->n", turn, turn)
+    bound = 1e-8 * np.einsum("ni,ni->n", u, u) * np.einsum("ni,ni->n", v, v)
+    bends = np.bincount(owner[out_order], weights=sine_squared > bound, minlength=len(flat))
+    flat[bends >= FLAT_CORNERS] = True
+    return flat
+
+
+def conormals(surface: Surface, half_edges: IntArray) -> tuple[FloatArray, FloatArray]:
+    """Return the outward unit vectors in the triangles' planes across their edges, and the edges' lengths."""
+    triangle, k = half_edges // 3, half_edges % 3
+    edge = surface.points[surface.corners[triangle, (k + 2) % 3]]
+    edge -= surface.points[surface.corners[triangle, (k + 1) % 3]]
+    length = np.sqrt(np.einsum("ni,ni->n", edge, edge))
+    out = np.cross(edge, surface.normals[triangle])
+    np.divide(out, length[:, None], out=out, where=length[:, None] > 0)
+    return out, length
+
+
+@dataclass(frozen=True, eq=False)
+class PatchForms:
+    """Where the plane patches are and how they stretch.
+
+    Attributes:
+        centroids: (patches, 3) of their areas.
+        spreads: (patches, 6) second moment of area about the centroid, over the area, in PAIRS' order.
+    """
+
+    centroids: FloatArray
+    spreads: FloatArray
+
+
+def patch_forms(surface: Surface) -> PatchForms:
+    """Return the centroids and spreads of all patches."""
+    patches, count = surface.patches, len(surface.flat)
+    area = np.bincount(patches, weights=surface.areas, minlength=count)
+    area[area == 0] = 1.0
+    start = surface.points[surface.corners[0, 0]]
+    a, b, c = (surface.points[surface.corners[:, k]] - start for k in range(3))
+    middle = (a + b + c) / 3
+    centroids = np.stack([np.bincount(patches, surface.areas * middle[:, i], count) / area for i in range(3)], 1)
+    own = centroids[patches]
+    a -= own
+    b -= own
+    c -= own
+    s = a + b + c
+    spreads = np.empty((count, 6))
+    for column, (i, j) in enumerate(PAIRS):
+        moment = (a[:, i] * a[:, j] + b[:, i] * b[:, j] + c[:, i] * c[:, j] + s[:, i] * s[:, j]) / 12
+        spreads[:, column] = np.bincount(patches, surface.areas * moment, count) / area
+    centroids += start
+    return PatchForms(centroids, spreads)
+
+
+def patch_widths(spreads: FloatArray, patch: IntArray, directions: FloatArray) -> FloatArray:
+    """Return the widths of patches along directions: of the rectangle that has the same second moment of area."""
+    products = np.einsum("ni,ni->n", directions, applied(spreads[patch], directions))
+    return np.asarray(np.sqrt(12 * np.maximum(products, 0)))
+
+
+def applied(tensors: FloatArray, vectors: FloatArray) -> FloatArray:
+    """Return T·v for symmetric tensors (n, 6), in PAIRS' order, and vectors (n, 3)."""
+    xx, yy, zz, xy, xz, yz = tensors.T
+    x, y, z = vectors.T
+    return np.stack([xx * x + xy * y + xz * z, xy * x + yy * y + yz * z, xz * x + yz * y + zz * z], axis=1)
+
+
+# Elements of a symmetric tensor that is stored as six numbers.
+PAIRS: Final = ((0, 0), (1, 1), (2, 2), (0, 1), (0, 2), (1, 2))
