@@ -61,6 +61,15 @@ class Actions:
         action.setToolTip(command.tip or command.words)
         return action
 
+    def _delete_action(self) -> QAction:
+        """Return Delete; its key counts only in the ledger and the view, where what it deletes is in sight."""
+        w = self._window
+        action = self._action(Command("Delete", w.delete, Keys.Delete))
+        action.setShortcutContext(Qt.ShortcutContext.WidgetWithChildrenShortcut)
+        for place in (w.ledger, w.view):
+            place.addAction(action)
+        return action
+
     def _fill(self, menu: QMenu, entries: list[Command | QAction | QMenu | None]) -> QMenu:
         for entry in entries:
             if entry is None:
@@ -90,8 +99,9 @@ class Actions:
             self.undo, self.redo, None,
             Command("Copy", w.copy, Keys.Copy, tip="Copies the selected cells or values, tab-separated."),
             Command("Copy with headings", w.copy_with_headings, "Ctrl+Shift+C"),
-            Command("Copy sheet", w.copy_sheet, "Ctrl+Alt+C"), None,
-            Command("Delete", w.delete, Keys.Delete),
+            Command("Copy sheet", w.copy_sheet, "Ctrl+Alt+C"),
+            Command("Paste into the ledger", w.ledger.paste, Keys.Paste), None,
+            self._delete_action(),
         ])
         self._fill(bar.addMenu("&Part"), [
             self.shapes, Command("Add mesh…", w.ask_meshes, "Ctrl+M"),
@@ -137,14 +147,14 @@ class Actions:
             action = menu.addAction(words)
             action.setCheckable(True)
             action.toggled.connect(switch)
-        columns = self._window.ledger.columns_menu()
-        menu.addMenu(columns)
+        menu.addMenu(self._window.ledger.columns)
 
     def _toolbar(self) -> None:
         w = self._window
         bar = QToolBar("Tools", w)
         bar.setObjectName("tools")
         bar.setMovable(False)
+        bar.setContextMenuPolicy(Qt.ContextMenuPolicy.PreventContextMenu)
         bar.setIconSize(QSize(20, 20))
         bar.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextBesideIcon)
         shape = QToolButton()

@@ -2,10 +2,20 @@
 
 from __future__ import annotations
 
+import math
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtWidgets import QComboBox, QFormLayout, QHBoxLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QComboBox,
+    QCompleter,
+    QFormLayout,
+    QHBoxLayout,
+    QLabel,
+    QLineEdit,
+    QVBoxLayout,
+    QWidget,
+)
 
 from app.window.style import GRID, Words, heading_font
 from core.errors import MasswrightError
@@ -21,14 +31,15 @@ if TYPE_CHECKING:
 LABEL_WIDTH = 148
 FIELD_WIDTH = 134
 NARROW_WIDTH = 88
+SAME_VALUE = 1e-12
 
 
 class QuantityField(QWidget):
     """A number with a unit: takes arithmetic, shows what it understood, keeps what was typed.
 
     Signals:
-        entered: (SI value, text as typed) when a readable text was finished. What is refused by the receiver is
-            told with `refuse`.
+        entered: (SI value, text as typed) when a readable text that says something else was finished. A receiver
+            that cannot take it calls `turn_down`.
     """
 
     entered = Signal(float, str)
@@ -43,6 +54,7 @@ class QuantityField(QWidget):
         self._label = label
         self._value: float | None = None
         self._typed = ""
+        self._before: tuple[float | None, str] = (None, "")
         self.line = QLineEdit()
         self.line.setAccessibleName(label)
         self.line.setFixedWidth(width)
@@ -90,8 +102,19 @@ class QuantityField(QWidget):
         self.line.setProperty("wrong", "true" if sentence else "false")
         self.line.style().polish(self.line)
 
+    def turn_down(self, sentence: str) -> None:
+        """Say in place why the text that was just entered is not taken; it stays to be mended, the old value counts."""
+        entered = self._typed or self._plain()
+        self._value, self._typed = self._before
+        self.line.setText(entered)
+        self.line.setModified(True)
+        self.understood.setText("")
+        self.refuse(sentence)
+
     def read(self) -> Understood | None:
         """Return what the field's text means, or None after saying in place why it means nothing."""
+        if self._value is not None and not self.line.isModified():
+            return Understood(self._value, self._typed or self._plain(), self._plain())
         try:
             understood = parse(self.line.text(), self._kind, self.unit, where=self._label)
         except MasswrightError as error:
@@ -110,11 +133,20 @@ class QuantityField(QWidget):
             return ""
         return compact(self.unit.from_si(self._value), 10, decimal_mark=self._session.decimal_mark)
 
+    def _still_meant(self) -> bool:
+        """Tell whether the text as typed still means the value: without a unit it means another one in other units."""
+        if not self._typed or self._value is None:
+            return False
+        try:
+            return math.isclose(parse(self._typed, self._kind, self.unit).value, self._value, rel_tol=SAME_VALUE)
+        except MasswrightError:
+            return False
+
     def _show(self) -> None:
-        self.line.setText(self._typed or self._plain())
+        shown = self._still_meant() and self._typed != self._plain()
+        self.line.setText(self._typed if shown else self._plain())
         self.line.setModified(False)
         self.line.setCursorPosition(0)
-        shown = self._typed and self._value is not None and self._typed != self._plain()
         self.understood.setText(f"= {self._plain()} {self.unit.symbol}" if shown else "")
         self.refuse("")
 
@@ -133,9 +165,11 @@ class QuantityField(QWidget):
         understood = self.read()
         if understood is not None:
             self.line.setModified(False)
+            self._before = (self._value, self._typed)
             self._value, self._typed = understood.value, kept_text(understood.text)
             self._show()
-            self.entered.emit(understood.value, self._typed)
+            if (self._value, self._typed) != self._before:
+                self.entered.emit(understood.value, self._typed)
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
         """Escape drops what is being typed."""
@@ -189,6 +223,7 @@ class ChoiceField(QComboBox):
     """A choice among named values; the wheel scrolls the page unless the field has the focus."""
 
     chosen = Signal(object)
+    typed = Signal(str)
 
     def __init__(self, label: str, choices: list[tuple[str, object]]) -> None:
         super().__init__()
@@ -197,6 +232,27 @@ class ChoiceField(QComboBox):
         for words, value in choices:
             self.addItem(words, value)
         self.activated.connect(lambda at: self.chosen.emit(self.itemData(at)))
+
+    def take_typing(self, placeholder: str) -> None:
+        """Let a choice be typed, too; what was typed is told with `typed`, and Escape drops it."""
+        line = QLineEdit(self)
+        line.setAccessibleName(self.accessibleName())
+        self.setEditable(True)
+        self.setInsertPolicy(QComboBox.InsertPolicy.NoInsert)
+        self.setLineEdit(line)
+        line.setPlaceholderText(placeholder)
+        line.editingFinished.connect(lambda: self.typed.emit(line.text()))
+        completer = QCompleter(self.model(), self)
+        completer.setCaseSensitivity(Qt.CaseSensitivity.CaseInsensitive)
+        completer.setFilterMode(Qt.MatchFlag.MatchContains)
+        self.setCompleter(completer)
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        """Escape drops what is being typed."""
+        if event.key() == Qt.Key.Key_Escape and self.isEditable():
+            self.setEditText(self.itemText(self.currentIndex()))
+            return
+        super().keyPressEvent(event)
 
     def set_value(self, value: object) -> None:
         """Show a value without telling about it."""
@@ -249,6 +305,10 @@ class Form(QWidget):
         words.setWordWrap(True)
         self._layout.addRow(words)
         return words
+
+    def show_row(self, field: QWidget, *, wanted: bool) -> None:
+        """Show or hide a field with its label."""
+        self._layout.setRowVisible(field, wanted)
 
     def add_row(self, widget: QWidget) -> None:
         """Add a widget over the whole width."""

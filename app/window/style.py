@@ -133,6 +133,7 @@ def _sheet(c: Colours) -> str:
     QMenu::separator {{ height: 1px; background: {c.hairline}; margin: 4px 8px; }}
     QWidget#page, QWidget#page QScrollArea, QWidget#start {{ background: {c.ground}; }}
     QTreeView#foot {{ border-top: 1px solid {c.hairline}; background: {c.raised}; }}
+    QLabel#refusal {{ background: {c.ground}; border: 1px solid {c.failed}; padding: 2px 6px; }}
     QFrame#notice {{ background: {c.ground}; border-bottom: 1px solid {c.hairline}; }}
     QToolButton::menu-indicator {{ image: url({(ICONS / "open.svg").as_posix()}); width: 10px; height: 10px;
                                    subcontrol-position: right center; subcontrol-origin: padding; right: 2px; }}

@@ -4,21 +4,29 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QAbstractItemModel, QModelIndex, QPersistentModelIndex, QPoint, QRect, QSize, Qt
-from PySide6.QtGui import QColor, QFont, QPainter, QPen
+from PySide6.QtCore import (
+    QAbstractItemModel,
+    QEvent,
+    QModelIndex,
+    QObject,
+    QPersistentModelIndex,
+    QRect,
+    QSize,
+    Qt,
+)
+from PySide6.QtGui import QColor, QFont, QHideEvent, QKeyEvent, QPainter, QPen
 from PySide6.QtWidgets import (
     QCompleter,
     QLineEdit,
     QStyle,
     QStyledItemDelegate,
     QStyleOptionViewItem,
-    QToolTip,
     QWidget,
 )
 
 from app.window.ledger.columns import COLUMNS, INDEX
 from app.window.ledger.model import LINE_ROLE, LedgerModel
-from app.window.style import GRID, Colours, colours
+from app.window.style import GRID, Colours, Words, colours
 from core.assembly import Line
 from core.material import MATERIALS
 
@@ -83,7 +91,7 @@ class LedgerDelegate(QStyledItemDelegate):
 
     def createEditor(self, parent: QWidget, option: QStyleOptionViewItem, index: Index) -> QWidget:
         """Return a plain line to type in; for a material it proposes those of the table."""
-        editor = QLineEdit(parent)
+        editor = CellEditor(parent, QPersistentModelIndex(index))
         editor.setAccessibleName(COLUMNS[index.column()].heading)
         if index.column() == INDEX["material"]:
             completer = QCompleter([each.name for each in MATERIALS], editor)
@@ -100,16 +108,60 @@ class LedgerDelegate(QStyledItemDelegate):
             editor.selectAll()
 
     def setModelData(self, editor: QWidget, model: QAbstractItemModel, index: Index) -> None:
-        """Hand what was typed to the model; a refusal is told where it was typed."""
-        if not isinstance(editor, QLineEdit):
-            return
-        refusals: list[str] = []
-        self._session.refused.connect(refusals.append)
-        at = editor.mapToGlobal(QPoint(0, editor.height()))
-        model.setData(index, editor.text(), Qt.ItemDataRole.EditRole)
-        self._session.refused.disconnect(refusals.append)
-        if refusals:
-            QToolTip.showText(at, refusals[0])
+        """Hand what was typed to the model when the editor is left; a refusal is told at the top of the window."""
+        if isinstance(editor, QLineEdit):
+            model.setData(index, editor.text(), Qt.ItemDataRole.EditRole)
+
+    def eventFilter(self, watched: QObject, event: QEvent) -> bool:
+        """Take what was typed on Return and Tab; where it is refused, the editor stays and says why."""
+        keys = QStyledItemDelegate.EndEditHint
+        hints = {
+            Qt.Key.Key_Return: keys.SubmitModelCache, Qt.Key.Key_Enter: keys.SubmitModelCache,
+            Qt.Key.Key_Tab: keys.EditNextItem, Qt.Key.Key_Backtab: keys.EditPreviousItem,
+        }
+        if not isinstance(event, QKeyEvent) or event.type() != QEvent.Type.KeyPress or event.key() not in hints:
+            return super().eventFilter(watched, event)
+        if not isinstance(watched, CellEditor):
+            return super().eventFilter(watched, event)
+        refusal = self._model.attempt(watched.place, watched.text())
+        watched.refuse(refusal)
+        if not refusal:
+            self.closeEditor.emit(watched, hints[Qt.Key(event.key())])
+        return True
+
+
+class CellEditor(QLineEdit):
+    """The line to type in over a cell; it says below itself why what was typed is not taken."""
+
+    def __init__(self, parent: QWidget, place: QPersistentModelIndex) -> None:
+        super().__init__(parent)
+        self.place = place
+        self._ground = parent
+        self.wrong = Words("", "failed", parent)
+        self.wrong.setObjectName("refusal")
+        self.wrong.hide()
+        self.textEdited.connect(lambda _text: self.refuse(""))
+
+    def refuse(self, sentence: str) -> None:
+        """Say why the text is not taken; "" says nothing."""
+        self.setProperty("wrong", "true" if sentence else "false")
+        self.style().polish(self)
+        self.wrong.setText(sentence)
+        self.wrong.adjustSize()
+        room = self._ground.rect()
+        here = self.geometry()
+        x = max(0, min(here.left(), room.right() - self.wrong.width()))
+        below = here.bottom() + 2
+        fits = below + self.wrong.height() <= room.bottom()
+        self.wrong.move(x, below if fits else here.top() - self.wrong.height() - 2)
+        self.wrong.raise_()
+        self.wrong.setVisible(bool(sentence))
+
+    def hideEvent(self, event: QHideEvent) -> None:
+        """Take the sentence away with the editor."""
+        self.wrong.hide()
+        self.wrong.deleteLater()
+        super().hideEvent(event)
 
 
 def _pen(line: Line, column: int, c: Colours) -> QColor:

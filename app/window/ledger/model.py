@@ -10,6 +10,7 @@ from app.window.ledger import edits
 from app.window.ledger.columns import COLUMNS, INDEX
 from app.window.numbers import copied, shown
 from core.assembly import Assembly, Group, Line
+from core.errors import EditRefused
 from core.quantity import UNITS, Kind
 
 if TYPE_CHECKING:
@@ -42,8 +43,10 @@ class LedgerModel(QAbstractItemModel):
     def refresh(self) -> None:
         """Show the session's ledger; rows are kept where only their values changed."""
         lines = self.session.ledger.lines
-        if not self.by_share and [(a.key, a.depth) for a in lines] == [(b.key, b.depth) for b in self._lines]:
+        if [(a.key, a.depth) for a in lines] == [(b.key, b.depth) for b in self._lines]:
             self._lines = lines
+            if self.by_share:
+                self._rearrange()
             self.refresh_texts()
             return
         self._tails.clear()
@@ -65,9 +68,16 @@ class LedgerModel(QAbstractItemModel):
     def sort_by_share(self, wanted: bool) -> None:
         """Order the lines of each group by their share of the total, the largest first, or as the document has them."""
         self.by_share = wanted
-        self.beginResetModel()
+        self._rearrange()
+
+    def _rearrange(self) -> None:
+        """Order the rows anew; what is selected, open or being edited stays with its line."""
+        self.layoutAboutToBeChanged.emit()
+        before = self.persistentIndexList()
         self._arrange()
-        self.endResetModel()
+        after = [self._index(index.internalId() - 1, index.column()) for index in before]
+        self.changePersistentIndexList(before, after)
+        self.layoutChanged.emit()
 
     def _arrange(self) -> None:
         """Find every line's children and place; list 0 of the children is the outermost level."""
@@ -192,18 +202,41 @@ class LedgerModel(QAbstractItemModel):
         """Turn what was typed into an edit; return whether it was taken."""
         if role != Qt.ItemDataRole.EditRole or not index.isValid():
             return False
-        line, key, text = self.line(index), COLUMNS[index.column()].key, str(value)
+        refusal = self.attempt(index, str(value))
+        if refusal:
+            self.session.refused.emit(refusal)
+        return not refusal
+
+    def attempt(self, index: Index, text: str) -> str:
+        """Try the edit that a text in a cell asks for; return "" or the sentence that refuses it."""
         if text == self.data(index, Qt.ItemDataRole.EditRole):
-            return True
+            return ""
+        words = {"name": "Rename", "count": "Quantity of", "material": "Material of", "mass": "Mass of"}
+        name = f"{words[COLUMNS[index.column()].key]} {self.line(index).name}: {text.strip()}"
+        return self.session.attempt(name, self.change(index, text))
+
+    def change(self, index: Index, text: str) -> Callable[[Assembly], Assembly]:
+        """Return the edit that a text in a cell asks for.
+
+        Raises:
+            EditRefused: the cell is computed.
+
+        """
+        line, column = self.line(index), COLUMNS[index.column()]
+        if not self.is_input(line, index.column()):
+            heading = column.heading.format(axis=self.session.assembly.drive)
+            raise EditRefused(
+                f"{heading} is computed here", where=line.name, read=f'"{text}"',
+                remedy="Type or paste into the cells with a box, or into the name",
+            )
         units = self.session.units
-        change: Callable[[Assembly], Assembly] = {
+        made = {
             "name": edits.renamed(line.key, text),
             "count": edits.counted(line.key, text),
             "material": edits.made_of(line.key, text, units),
             "mass": edits.weighing(line.key, text, units),
-        }[key]
-        words = {"name": "Rename", "count": "Quantity of", "material": "Material of", "mass": "Mass of"}[key]
-        return self.session.edit(f"{words} {line.name}", change)
+        }
+        return made[column.key]
 
     def supportedDropActions(self) -> Qt.DropAction:
         """Return that lines are moved, not copied."""
@@ -215,7 +248,7 @@ class LedgerModel(QAbstractItemModel):
 
     def mimeData(self, indexes: Sequence[Index]) -> QMimeData:
         """Return the keys of the dragged lines."""
-        keys = dict.fromkeys(self.line(index).key for index in indexes)
+        keys = dict.fromkeys(self.line(index).key for index in sorted(indexes, key=lambda index: index.internalId()))
         data = QMimeData()
         data.setData(MIME, "\n".join(keys).encode())
         return data
@@ -228,7 +261,10 @@ class LedgerModel(QAbstractItemModel):
             return False
         keys = bytes(data.data(MIME).data()).decode().split("\n")
         group = self.line(parent).key if parent.isValid() else None
-        self.session.edit("Move lines", lambda assembly: moved_lines(assembly, keys, group, row if row >= 0 else None))
+        # Between two lines means something only where they stand in the document's order.
+        place = None if row < 0 or self.by_share else row
+        words = self.session.assembly.node(keys[0]).name if len(keys) == 1 else f"{len(keys)} lines"
+        self.session.edit(f"Move {words}", lambda assembly: moved_lines(assembly, keys, group, place))
         # The edit has already moved them; Qt is not to remove the rows it dragged.
         return False
 

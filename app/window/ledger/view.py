@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QByteArray, QItemSelectionModel, QModelIndex, QPoint, Qt, Signal
+from PySide6.QtCore import QByteArray, QEvent, QItemSelectionModel, QModelIndex, QObject, QPoint, Qt, Signal
 from PySide6.QtGui import QGuiApplication, QKeyEvent, QMouseEvent
-from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QMenu, QTreeView, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QHeaderView, QMenu, QTreeView, QVBoxLayout, QWidget
 
 from app.window.ledger.columns import COLUMNS, INDEX
 from app.window.ledger.delegate import ROW_HEIGHT, LedgerDelegate
@@ -17,9 +17,11 @@ if TYPE_CHECKING:
     from collections.abc import Iterable
 
     from app.window.session import Session
+    from core.assembly import Assembly
 
-WIDTHS = {"name": 220, "count": 52, "material": 190, "mass": 96, "x": 84, "y": 84, "z": 84, "own": 112, "transfer": 112,
-          "inertia": 124, "share": 180}
+# All columns fit into a window 1280 wide, with a scroll bar beside them.
+WIDTHS = {"name": 200, "count": 48, "material": 180, "mass": 90, "x": 76, "y": 76, "z": 80, "own": 104, "transfer": 104,
+          "inertia": 120, "share": 160}
 
 
 class LedgerTree(QTreeView):
@@ -100,7 +102,8 @@ class LedgerTree(QTreeView):
             return
         editing = self.state() == QAbstractItemView.State.EditingState
         if event.key() in {Qt.Key.Key_Return, Qt.Key.Key_Enter} and not editing:
-            self.edit(self.currentIndex())
+            if self.currentIndex().flags() & Qt.ItemFlag.ItemIsEditable:
+                self.edit(self.currentIndex())
             return
         super().keyPressEvent(event)
 
@@ -122,6 +125,14 @@ class LedgerTree(QTreeView):
         rows = [row for row in _rows(self, QModelIndex()) if any(key[0] == row.internalId() for key in chosen)]
         cells = {place: str(index.data(COPY_ROLE)) for place, index in chosen.items()}
         return [[cells.get((row.internalId(), at), "") for at in columns] for row in rows]
+
+    def places_from(self, start: QModelIndex) -> tuple[list[QModelIndex], list[int]]:
+        """Return the lines from a cell on downwards, and the columns from it on to the right, as they are shown."""
+        header = self.header()
+        lines = list(_rows(self, QModelIndex()))
+        first = [line.internalId() for line in lines].index(start.internalId())
+        columns = sorted((at for at in range(len(COLUMNS)) if not header.isSectionHidden(at)), key=header.visualIndex)
+        return lines[first:], columns[columns.index(start.column()) :]
 
     def headings(self) -> list[str]:
         """Return the headings of the columns of the block, with their units."""
@@ -167,8 +178,20 @@ class LedgerPane(QWidget):
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(0)
         layout.addWidget(self.tree, 1)
-        layout.addWidget(self.foot)
+        self._under = QHBoxLayout()
+        self._under.addWidget(self.foot)
+        layout.addLayout(self._under)
+        self.columns = self._columns_menu()
+        self._tell_columns()
         self._tie_columns()
+        self.tree.verticalScrollBar().installEventFilter(self)
+
+    def eventFilter(self, watched: QObject, event: QEvent) -> bool:
+        """Keep the foot as wide as the cells above it, beside a scroll bar that comes and goes."""
+        if event.type() in {QEvent.Type.Show, QEvent.Type.Hide, QEvent.Type.Resize}:
+            bar = self.tree.verticalScrollBar()
+            self._under.setContentsMargins(0, 0, bar.width() if bar.isVisible() else 0, 0)
+        return super().eventFilter(watched, event)
 
     def _tie_columns(self) -> None:
         header, below = self.tree.header(), self.foot.header()
@@ -186,20 +209,22 @@ class LedgerPane(QWidget):
         header.customContextMenuRequested.connect(self._offer_columns)
 
     def _offer_columns(self, at: QPoint) -> None:
-        menu = self.columns_menu()
-        menu.popup(self.tree.header().mapToGlobal(at))
+        self.columns.popup(self.tree.header().mapToGlobal(at))
 
-    def columns_menu(self) -> QMenu:
-        """Return a menu in which columns are shown and hidden."""
+    def _columns_menu(self) -> QMenu:
+        """Return the menu in which columns are shown and hidden."""
         menu = QMenu("Columns", self)
-        for at, column in enumerate(COLUMNS):
-            if column.key == "name":
-                continue
-            action = menu.addAction(column.heading.format(axis=self._session.assembly.drive))
+        for at in range(1, len(COLUMNS)):
+            action = menu.addAction("")
             action.setCheckable(True)
-            action.setChecked(not self.tree.isColumnHidden(at))
-            action.toggled.connect(lambda wanted, at=at: self.show_column(at, wanted))
+            action.triggered.connect(lambda wanted, at=at: self.show_column(at, wanted))
+        menu.aboutToShow.connect(self._tell_columns)
         return menu
+
+    def _tell_columns(self) -> None:
+        for at, action in enumerate(self.columns.actions(), 1):
+            action.setText(COLUMNS[at].heading.format(axis=self._session.assembly.drive))
+            action.setChecked(not self.tree.isColumnHidden(at))
 
     def show_column(self, at: int, wanted: bool) -> None:
         """Show or hide a column of the ledger and of its foot."""
@@ -225,11 +250,34 @@ class LedgerPane(QWidget):
         headings = self.tree.headings() if self.tree.selectedIndexes() else []
         return _to_clipboard([headings, *rows] if rows and headings else rows)
 
+    def paste(self) -> None:
+        """Put the clipboard's cells into the inputs from the current cell on, all of them or none."""
+        start = self.tree.currentIndex()
+        rows = [line.split("\t") for line in QGuiApplication.clipboard().text().rstrip("\r\n").splitlines()]
+        if not start.isValid() or not rows:
+            self._session.refused.emit("There is nothing to paste, or no cell to paste into. Choose the first cell.")
+            return
+        lines, columns = self.tree.places_from(start)
+        count, widest = sum(map(len, rows)), max(map(len, rows))
+
+        def change(assembly: Assembly) -> Assembly:
+            for texts, line in zip(rows, lines, strict=False):
+                for text, at in zip(texts, columns, strict=False):
+                    assembly = self.tree.lines.change(line.siblingAtColumn(at), text)(assembly)
+            return assembly
+
+        if len(rows) > len(lines) or widest > len(columns):
+            self._session.refused.emit(
+                f"The clipboard holds {len(rows)} × {widest} cells, and only {len(lines)} × {len(columns)} are left "
+                "from the current cell on. Choose a cell further up or to the left."
+            )
+        else:
+            self._session.edit(f"Paste {count} cell{'s' if count > 1 else ''}", change)
+
     def _cells(self) -> list[list[str]]:
         if self.foot.hasFocus() and self.foot.selectedIndexes():
             return [[str(index.data(COPY_ROLE)) for index in self.foot.selectedIndexes()]]
         return self.tree.block()
-
 
 
 def _to_clipboard(rows: list[list[str]]) -> bool:

@@ -6,7 +6,7 @@ from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QFrame, QScrollArea, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QApplication, QFrame, QScrollArea, QVBoxLayout, QWidget
 
 from app.window.fields import Form, QuantityField, TextField
 from app.window.pages.part_body import KnownSection, MeshSection, ShapeSection
@@ -107,7 +107,21 @@ class PartPage(QScrollArea):
             self._sections = _sections(self._session, form, node)
             layout.addWidget(form)
         layout.addStretch(1)
+        self._put(page)
+
+    def _put(self, page: QWidget) -> None:
+        """Show another page of fields, the keyboard in the field of the same name where it was in one."""
+        focused = QApplication.focusWidget()
+        old = self.takeWidget()
+        name = focused.accessibleName() if old is not None and focused is not None and old.isAncestorOf(focused) else ""
         self.setWidget(page)
+        if name:
+            same = (field for field in page.findChildren(QWidget) if field.accessibleName() == name)
+            next(same, self).setFocus(Qt.FocusReason.OtherFocusReason)
+        if old is not None:
+            # Not at once: one of its fields may be telling about the edit that brought us here.
+            old.hide()
+            old.deleteLater()
 
 
 def _signature(node: Node) -> tuple[object, ...]:
@@ -115,7 +129,7 @@ def _signature(node: Node) -> tuple[object, ...]:
     if isinstance(node, Group):
         return (node.key, Group, type(node.copies))
     inner = type(node.body.shape) if isinstance(node.body, ShapeBody) else getattr(node.body, "about", "")
-    return (node.key, type(node.body), inner, type(node.driver), type(node.copies))
+    return (node.key, type(node.body), inner, type(node.copies))
 
 
 def _sections(session: Session, form: Form, node: Node) -> list[Section]:

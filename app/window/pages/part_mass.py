@@ -6,7 +6,6 @@ from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QCompleter
 
 from app.window.fields import ChoiceField, Form, QuantityField
 from app.window.numbers import shown
@@ -18,7 +17,6 @@ from core.quantity import Kind
 
 if TYPE_CHECKING:
     from app.window.session import Session
-    from core.moments import Moments
 
 DRIVERS: list[tuple[str, object]] = [
     ("not set yet", NotSet),
@@ -26,7 +24,6 @@ DRIVERS: list[tuple[str, object]] = [
     ("a density", ByDensity),
     ("a weighed mass", Weighed),
 ]
-STEEL_LIKE = 7850.0
 
 
 class MassSection(Section):
@@ -35,37 +32,43 @@ class MassSection(Section):
     def __init__(self, session: Session, form: Form, part: Part) -> None:
         super().__init__(session, form, part.key)
         form.heading("Mass")
+        # What was chosen to say the mass, until its value is typed: nothing is made up for it.
+        self._awaited: type | None = None
         self._by = ChoiceField("What says the mass", DRIVERS)
         form.add("comes from", self._by)
-        self._by.chosen.connect(self._choose)
-        self._material: ChoiceField | None = None
-        self._number: QuantityField | None = None
-        if isinstance(part.driver, ByMaterial):
-            self._material = _material_field()
-            form.add("material", self._material)
-            self._material.chosen.connect(self._choose_material)
-        elif isinstance(part.driver, ByDensity):
-            self._number = QuantityField(session, "density", Kind.DENSITY)
-            form.add("density ρ", self._number)
-            self.bind(self._number, "Density", "density", lambda node, value: _driven(node, ByDensity(value)))
-        elif isinstance(part.driver, Weighed):
-            self._number = QuantityField(session, "weighed mass of one", Kind.MASS)
-            form.add("weighed, one piece", self._number)
-            self.bind(self._number, "Weighed mass", "weighed", lambda node, value: _driven(node, Weighed(value)))
+        self._material = _material_field()
+        form.add("material", self._material)
+        self._density = QuantityField(session, "density", Kind.DENSITY)
+        form.add("density ρ", self._density)
+        self._weighed = QuantityField(session, "weighed mass of one", Kind.MASS)
+        form.add("weighed, one piece", self._weighed)
+        self._wrong = form.say("", "failed")
         self._follows = form.say("")
+        self.bind(self._density, "Density", "density", lambda node, value: _driven(node, ByDensity(value)))
+        self.bind(self._weighed, "Weighed mass", "weighed", lambda node, value: _driven(node, Weighed(value)))
+        self._by.chosen.connect(self._choose)
+        self._material.chosen.connect(self._choose_material)
+        self._material.typed.connect(self._choose_material)
 
     def show(self, node: Node) -> None:
         """Show what says the mass, and what follows from it."""
         if not isinstance(node, Part):
             return
         driver = node.driver
-        self._by.set_value(type(driver))
-        if self._material is not None and isinstance(driver, ByMaterial):
-            self._material.set_value(driver.name)
-        if self._number is not None and isinstance(driver, ByDensity):
-            self._number.set_value(driver.density, typed_for(node, "density"))
-        if self._number is not None and isinstance(driver, Weighed):
-            self._number.set_value(driver.mass, typed_for(node, "weighed"))
+        if isinstance(driver, self._awaited or NotSet):
+            self._awaited = None
+        wanted = self._awaited or type(driver)
+        self._by.set_value(wanted)
+        for field, kind in ((self._material, ByMaterial), (self._density, ByDensity), (self._weighed, Weighed)):
+            self.form.show_row(field, wanted=wanted is kind)
+        self._refuse("")
+        if isinstance(driver, ByMaterial):
+            self._material.setCurrentIndex(self._material.findData(driver.name))
+            self._material.setEditText(driver.name)
+        else:
+            self._material.setCurrentIndex(-1)
+        self._density.set_value(*_entered(node, ByDensity, "density"))
+        self._weighed.set_value(*_entered(node, Weighed, "weighed"))
         self._follows.setText(self._consequence(node))
         self._follows.set_role("estimate" if node.single is None else "quiet")
 
@@ -85,36 +88,59 @@ class MassSection(Section):
         )
 
     def _choose(self, kind: object) -> None:
-        def change(node: Node) -> Node:
-            if not isinstance(node, Part) or isinstance(node.driver, _type_of(kind)):
-                return node
-            return _driven(node, _first_guess(kind, node.single, node.volume))
+        node = self.session.assembly.node(self.key)
+        if not isinstance(node, Part) or not isinstance(kind, type):
+            return
+        driver = _same_mass(kind, node)
+        self._awaited = kind if driver is None and not isinstance(node.driver, kind) else None
+        if driver is None or isinstance(node.driver, kind):
+            self.show(node)
+            self._wait_for_value()
+        else:
+            self.edit(f"Mass of {node.name}: {self._by.currentText()}", lambda line: _driven(line, driver))
 
-        self.edit(f"Mass of {self.session.assembly.node(self.key).name}: {self._by.currentText()}", change)
+    def _wait_for_value(self) -> None:
+        """Put the keyboard into the field whose value is still missing."""
+        fields = {ByMaterial: self._material, ByDensity: self._density.line, Weighed: self._weighed.line}
+        if self._awaited is not None:
+            fields[self._awaited].setFocus(Qt.FocusReason.OtherFocusReason)
 
     def _choose_material(self, name: object) -> None:
-        found = material(str(name))
-        self.edit(
-            f"Material of {self.session.assembly.node(self.key).name}: {found.name}",
-            lambda node: _driven(node, ByMaterial(found.name, found.density)),
-        )
+        node = self.session.assembly.node(self.key)
+        text = str(name).strip()
+        if not isinstance(node, Part) or text == getattr(node.driver, "name", ""):
+            self._refuse("")
+            return
+
+        def change(line: Node) -> Node:
+            found = material(text)
+            return _driven(line, ByMaterial(found.name, found.density))
+
+        self._refuse(self.attempt(f"Material of {node.name}: {text}", change))
+
+    def _refuse(self, sentence: str) -> None:
+        self._wrong.setText(sentence)
+        self.form.show_row(self._wrong, wanted=bool(sentence))
 
 
-def _type_of(kind: object) -> type:
-    return kind if isinstance(kind, type) else NotSet
+def _entered(part: Part, kind: type, path: str) -> tuple[float | None, str]:
+    """Return the density or the weighed mass that counts, with its text as typed; None where another thing counts."""
+    driver = part.driver
+    if not isinstance(driver, kind):
+        return None, ""
+    return getattr(driver, "density" if kind is ByDensity else "mass"), typed_for(part, path)
 
 
-def _first_guess(kind: object, single: Moments | None, volume: float | None) -> Driver:
-    """Return a driver of the kind asked for that keeps the mass the part has, where it has one."""
-    mass = None if single is None else float(single.mass)
-    density = STEEL_LIKE if mass is None or not volume else mass / volume
-    if kind is ByMaterial:
-        return ByMaterial(MATERIALS[0].name, MATERIALS[0].density)
+def _same_mass(kind: type, part: Part) -> Driver | None:
+    """Return a driver of a kind that keeps the mass the part has; None where only the user can say it."""
+    if kind is NotSet:
+        return NotSet()
+    if part.single is None or not part.volume:
+        return None
+    mass = float(part.single.mass)
     if kind is ByDensity:
-        return ByDensity(density)
-    if kind is Weighed:
-        return Weighed(mass if mass is not None else density * (volume or 1e-3))
-    return NotSet()
+        return ByDensity(mass / part.volume)
+    return Weighed(mass) if kind is Weighed else None
 
 
 def _driven(node: Node, driver: Driver) -> Node:
@@ -128,11 +154,5 @@ def _material_field() -> ChoiceField:
     for at, each in enumerate(MATERIALS):
         tip = f"{each.density:.0f} kg/m³ ({each.low:.0f} to {each.high:.0f}); {each.source}"
         field.setItemData(at, tip, Qt.ItemDataRole.ToolTipRole)
-    field.setEditable(True)
-    field.setInsertPolicy(ChoiceField.InsertPolicy.NoInsert)
-    completer = QCompleter(field.model(), field)
-    completer.setCaseSensitivity(Qt.CaseSensitivity.CaseInsensitive)
-    completer.setFilterMode(Qt.MatchFlag.MatchContains)
-    field.setCompleter(completer)
-    completer.activated.connect(field.chosen.emit)
+    field.take_typing("choose or type one")
     return field

@@ -55,7 +55,7 @@ class Section:
                 f"{words} of {name}: {shown}", lambda node: with_typed(change(node, value), path, text)
             )
             if refusal:
-                field.refuse(refusal)
+                field.turn_down(refusal)
 
         field.entered.connect(entered)
 
