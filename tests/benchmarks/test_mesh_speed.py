@@ -45,6 +45,12 @@ def plain_pass(path: Path) -> int:
     return total
 
 
+def whole_pass(path: Path) -> int:
+    """Read a file whole and add up its bytes as 64-bit numbers."""
+    data = path.read_bytes()
+    return int(np.frombuffer(data, np.uint64, len(data) // 8).sum())
+
+
 def peer(path: Path) -> tuple[bool, np.ndarray]:
     import trimesh
 
@@ -64,17 +70,18 @@ def seconds(function, path: Path, rounds: int) -> float:
 @pytest.mark.timeout(900)
 def test_survey_beside_a_plain_pass_and_a_mesh_library(benchmark, large, capsys):
     survey_file(large)
-    plain = seconds(plain_pass, large, ROUNDS)
+    plain, whole = seconds(plain_pass, large, ROUNDS), seconds(whole_pass, large, ROUNDS)
     survey = benchmark.pedantic(survey_file, (large,), rounds=ROUNDS)
     library = seconds(peer, large, 1)
     ours = benchmark.stats.stats.min
     assert survey.verdict == "closed"
-    benchmark.extra_info.update(library_over_ours=library / ours, ours_over_plain_pass=ours / plain)
+    benchmark.extra_info.update(library_over_ours=library / ours, ours_over_whole_pass=ours / whole, ours_over_plain_pass=ours / plain)
     with capsys.disabled():
         print(  # noqa: T201  # the ratios are what the run is for
             f"\n{survey.triangles} facets: survey {ours * 1e3:.0f} ms ({survey.triangles / ours / 1e6:.1f} M facets/s),"
             f" mesh library {library:.2f} s = {library / ours:.0f} times as long,"
-            f" plain pass {plain * 1e3:.1f} ms = a {ours / plain:.1f}th of it"
+            f" {ours / whole:.1f} times reading the file whole and adding up its words ({whole * 1e3:.0f} ms),"
+            f" {ours / plain:.1f} times doing so in one small buffer ({plain * 1e3:.1f} ms)"
         )
 
 
