@@ -12,6 +12,8 @@ from core.shapes.ellipsoid import Ellipsoid
 from core.shapes.prism import RegularPrism
 from core.shapes.pyramid import Pyramid, Tetrahedron
 from core.shapes.sphere import HollowSphere, Sphere
+from core.shapes.spoked_wheel import SpokedWheel
+from core.shapes.toothed_wheel import ToothedWheel
 from core.shapes.torus import Torus
 from core.shapes.wedge import Wedge
 
@@ -31,7 +33,9 @@ __all__ = [
     "Shape",
     "Sphere",
     "SphericalCap",
+    "SpokedWheel",
     "Tetrahedron",
+    "ToothedWheel",
     "Torus",
     "Tube",
     "Wedge",
