@@ -201,17 +201,16 @@ def _task(chosen: argparse.Namespace) -> Task:
         ValueRefused: an option's text is no quantity, point, axis, unit or material.
 
     """
-    from app.weigh import ASKED_AXIS, Task
-    from core.handover.lines import AxisLine
+    from app.weigh import Task
+    from core.handover.lines import AxisLine, axis_words
     from core.handover.mesh_reading import MeshRequest
     from core.quantity import UNITS, parse_axis
 
     unit = UNITS[chosen.unit or "mm"]
-    axis = (
-        None
-        if chosen.axis is None
-        else AxisLine(f"the axis {ASKED_AXIS}", *parse_axis(chosen.axis, unit, where="--axis"))
-    )
+    axis = None
+    if chosen.axis is not None:
+        point, direction = parse_axis(chosen.axis, unit, where="--axis")
+        axis = AxisLine(f"the axis {axis_words(point, direction, unit)}", point, direction)
     request = MeshRequest(
         unit,
         chosen.unit is None,

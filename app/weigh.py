@@ -25,9 +25,8 @@ if TYPE_CHECKING:
 SOUND, CHECK_FAILED, WRONG_USAGE, UNREADABLE = 0, 1, 2, 3
 Format = Literal["text", "json", "tsv", "csv"]
 
-ASKED_AXIS: Final = "given by --axis"
-
-_ARCHIVE_START: Final = b"PK"
+# How a ZIP file begins, as every document is one; an STL file may begin with any two of these.
+_ARCHIVE_START: Final = b"PK\x03\x04"
 _LOST: Final = "{}: the process that read it ended before it was done. Try it again with --jobs 1."
 
 
@@ -171,7 +170,7 @@ def _about_asked_axis(assembly: Assembly, task: Task) -> Assembly:
         return assembly
     from core.assembly import DriveAxis
 
-    axis = DriveAxis(ASKED_AXIS, asked.point, asked.direction)
+    axis = DriveAxis(asked.name.removeprefix("the axis "), asked.point, asked.direction)
     others = tuple(other for other in assembly.axes if other.name != axis.name)
     return replace(assembly, axes=(*others, axis), drive=axis.name)
 

@@ -267,8 +267,20 @@ def point_words(about: About, frame: str, units: UnitSet) -> str:
         return "the centre of mass"
     if about == "origin":
         return f"the {frame}'s origin"
-    unit = unit_of(units, Kind.LENGTH)
-    return f"the point ({'; '.join(f'{unit.from_si(part):.9g}' for part in about)}) {unit.symbol}"
+    return f"the point {_triple_text(about, unit_of(units, Kind.LENGTH))}"
+
+
+def axis_words(point: Triple, direction: Triple, unit: Unit) -> str:
+    """Return how a sentence names an axis that has no name of its own; point in m, shown in a length unit.
+
+    >>> axis_words((0.0, 0.01, 0.0), (0.0, 0.0, 1.0), UNITS["mm"])
+    'through (0; 10; 0) mm along (0; 0; 1)'
+    """
+    return f"through {_triple_text(point, unit)} along {_triple_text(direction, _PLAIN)}".rstrip()
+
+
+def _triple_text(triple: Triple, unit: Unit) -> str:
+    return f"({'; '.join(f'{unit.from_si(part):.9g}' for part in triple)}) {unit.symbol}"
 
 
 def _principal_lines(subject: Subject, units: UnitSet) -> list[Entry]:

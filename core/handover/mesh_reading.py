@@ -248,7 +248,10 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
     )
     if cheap or request.count_shells:
         reading = replace(reading, shells=count_shells(path, progress))
-    return _with_curvature(reading, path) if cheap or request.count_restored else reading
+    if cheap or request.count_restored:
+        return _with_curvature(reading, path)
+    remark = f"Curvature was not restored, because the file has more than {CHEAP_TRIANGLES} triangles."
+    return replace(reading, remarks=(*reading.remarks, remark))
 
 
 def _with_curvature(reading: MeshReading, path: str | Path) -> MeshReading:

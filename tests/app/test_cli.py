@@ -86,6 +86,11 @@ def test_a_document_is_known_by_its_content_not_by_its_name(run, folder):
     assert json.loads(run("weigh", "dial.stl", "--format", "json")[1])["ledger"]
 
 
+def test_a_mesh_whose_header_begins_like_an_archive_is_a_mesh(run, folder):
+    (folder / "pk.stl").write_bytes(binary_stl(box(20, 20, 20), b"PKG 7 plate"))
+    assert run("weigh", "pk.stl")[0] == 0
+
+
 def test_a_document_with_a_part_without_mass_is_answered_with_status_1(run):
     status, out, err = run("weigh", "blank.masswright")
     assert status == 1

@@ -126,6 +126,11 @@ def test_the_axis_point_is_in_the_unit_of_the_file_and_may_be_negative(answer):
     assert found == {"inertia_kgm2": None, "offset_m": pytest.approx(20 * 0.0254, rel=1e-12)}
 
 
+def test_the_axis_asked_about_is_named_in_every_label(run):
+    _, out, _ = run("weigh", "cube.stl", "--material", "steel", "--axis", "0,0,1 in;0,2,0")
+    assert "Moment of inertia about the axis through (0; 0; 25.4) mm along (0; 2; 0)\n" in out
+
+
 def test_a_weighed_mass_gives_the_same_shape_of_tensor(answer):
     found = answer("cube.stl", "--mass", "0.06 kg")
     assert found["mass_kg"] == 0.06

@@ -6,7 +6,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from mesh_files import binary_stl, box
+from mesh_files import binary_stl, box, quartered
 
 from core.handover import SheetChoice, sheet_of_mesh
 from core.handover.answer import KEYS, answer_of_mesh, json_text
@@ -108,6 +108,16 @@ def test_shells_and_curvature_of_a_small_mesh_come_unasked(tmp_path: Path):
     assert reading.survey.triangles < CHEAP_TRIANGLES
     assert reading.shells == 2
     assert reading.restored is not None
+
+
+def test_a_large_mesh_is_answered_without_curvature_and_says_so(tmp_path: Path):
+    path = tmp_path / "large.stl"
+    path.write_bytes(binary_stl(quartered(box(), 8)))
+    reading = read_mesh(path, MeshRequest(UNITS["mm"]))
+    assert reading.survey.triangles > CHEAP_TRIANGLES
+    assert (reading.restored, reading.shells) == (None, None)
+    assert any("not restored" in note for note in reading.notes)
+    assert read_mesh(path, MeshRequest(UNITS["mm"], count_shells=True)).shells == 1
 
 
 def test_the_answer_has_exactly_the_documented_keys():
