@@ -43,6 +43,11 @@ def pytest_configure(config: pytest.Config) -> None:
     if not config.option.benchmark_only:
         config.option.benchmark_skip = True
     if not HAS_QT:
+        from hypothesis import settings
+
+        # The same tests run in full beside Qt; here they only show that core needs none of it.
+        settings.register_profile("few", parent=settings(), max_examples=10)
+        settings.load_profile("few")
         return
     if not HAS_DISPLAY:
         os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
