@@ -71,7 +71,8 @@ def test_every_tensor_on_a_sheet_is_that_of_point_masses_with_the_same_moments(a
         expected = tensor_of_points(masses, places, place)
         got = [sheet[f"I{pair}"] for pair in ("xx", "yy", "zz", "xy", "xz", "yz")]
         six = [expected[i, j] for i, j in ((0, 0), (1, 1), (2, 2), (0, 1), (0, 2), (1, 2))]
-        np.testing.assert_allclose(got, six, rtol=0, atol=1e-9 * np.abs(expected).max())
+        size = np.abs(places).max() + np.abs(place).max()
+        np.testing.assert_allclose(got, six, rtol=0, atol=1e-12 * masses.sum() * size**2)
 
 
 def test_products_change_sign_and_name_with_the_convention():
