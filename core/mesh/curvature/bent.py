@@ -70,12 +70,12 @@ def flat_sums(corners: FloatArray) -> tuple[float, FloatArray, FloatArray]:
 
 
 def _rule() -> tuple[FloatArray, FloatArray]:
-    """Return barycentric nodes (25, 3) and weights (25,) on a triangle of area 1/2, exact to degree 8."""
-    nodes, weights = np.polynomial.legendre.leggauss(5)
+    """Return barycentric nodes (16, 3) and weights (16,) on a triangle of area 1/2, exact to degree 6."""
+    nodes, weights = np.polynomial.legendre.leggauss(4)
     nodes, weights = 0.5 * (nodes + 1), 0.5 * weights
-    u = np.repeat(nodes, 5)
-    v = np.tile(nodes, 5) * (1 - u)
-    return np.stack([1 - u - v, u, v], axis=1), np.repeat(weights, 5) * np.tile(weights, 5) * (1 - u)
+    u = np.repeat(nodes, 4)
+    v = np.tile(nodes, 4) * (1 - u)
+    return np.stack([1 - u - v, u, v], axis=1), np.repeat(weights, 4) * np.tile(weights, 4) * (1 - u)
 
 
 def bent_sums(corners: FloatArray, moved: FloatArray) -> tuple[float, FloatArray, FloatArray]:
@@ -103,12 +103,13 @@ def dome_sums(corners: FloatArray, dome: Dome, heights: FloatArray) -> tuple[flo
     """
     volume, first, second = 0.0, np.zeros(3), np.zeros((3, 3))
     a = np.ascontiguousarray(corners.transpose(1, 2, 0))
+    quadratics = [0.5 * (dome.omegas[(k + 1) % 3] + dome.omegas[(k + 2) % 3]) * heights[:, k] for k in range(3)]
     normal = np.cross(a[1] - a[0], a[2] - a[0], axis=0)
     for (p, u, v), weight in zip(*_rule(), strict=True):
-        raw = u * v * dome.raw[:, 0] + v * p * dome.raw[:, 1] + p * u * dome.raw[:, 2]
+        tapered = u * v * quadratics[0] + v * p * quadratics[1] + p * u * quadratics[2]
         quadratic = u * v * heights[:, 0] + v * p * heights[:, 1] + p * u * heights[:, 2]
-        omega = p * dome.omegas[:, 0] + u * dome.omegas[:, 1] + v * dome.omegas[:, 2]
-        thick = 4 * weight * np.sqrt(np.einsum("in,in->n", normal, normal)) * (raw / omega - quadratic)
+        omega = p * dome.omegas[0] + u * dome.omegas[1] + v * dome.omegas[2]
+        thick = 4 * weight * np.sqrt(np.einsum("in,in->n", normal, normal)) * (tapered / omega - quadratic)
         r = p * a[0] + u * a[1] + v * a[2]
         volume += float(thick.sum())
         first += r @ thick

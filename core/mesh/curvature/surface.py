@@ -6,9 +6,11 @@ Half-edge 3t+k is the edge of triangle t that lies opposite its corner k; it run
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Final
+from typing import TYPE_CHECKING
 
 import numpy as np
+
+from core.mesh.curvature.vectors import PAIRS, applied, cross, dot, gathered, length
 
 if TYPE_CHECKING:
     from core.arrays import BoolArray, FloatArray, IntArray
@@ -161,14 +163,15 @@ def _flat_patches(points: FloatArray, corners: IntArray, mates: IntArray, patche
 
 
 def conormals(surface: Surface, half_edges: IntArray) -> tuple[FloatArray, FloatArray]:
-    """Return the outward unit vectors in the triangles' planes across their edges, and the edges' lengths."""
+    """Return the outward unit vectors (3, h) in the triangles' planes across their edges, and the edges' lengths."""
     triangle, k = half_edges // 3, half_edges % 3
-    edge = surface.points[surface.corners[triangle, (k + 2) % 3]]
-    edge -= surface.points[surface.corners[triangle, (k + 1) % 3]]
-    length = np.sqrt(np.einsum("ni,ni->n", edge, edge))
-    out = np.cross(edge, surface.normals[triangle])
-    np.divide(out, length[:, None], out=out, where=length[:, None] > 0)
-    return out, length
+    flat = surface.corners.ravel()
+    edge = gathered(surface.points, flat[3 * triangle + (k + 2) % 3])
+    edge -= gathered(surface.points, flat[3 * triangle + (k + 1) % 3])
+    lengths = length(edge)
+    out = cross(edge, gathered(surface.normals, triangle))
+    out /= np.where(lengths > 0, lengths, 1.0)
+    return out, lengths
 
 
 @dataclass(frozen=True, eq=False)
@@ -206,18 +209,9 @@ def patch_forms(surface: Surface) -> PatchForms:
     return PatchForms(centroids, spreads)
 
 
-def patch_widths(spreads: FloatArray, patch: IntArray, directions: FloatArray) -> FloatArray:
-    """Return the widths of patches along directions: of the rectangle that has the same second moment of area."""
-    products = np.einsum("ni,ni->n", directions, applied(spreads[patch], directions))
-    return np.asarray(np.sqrt(12 * np.maximum(products, 0)))
+def patch_widths(spreads: FloatArray, directions: FloatArray) -> FloatArray:
+    """Return the widths (n,) of patches with spreads (6, n) along directions (3, n).
 
-
-def applied(tensors: FloatArray, vectors: FloatArray) -> FloatArray:
-    """Return T·v for symmetric tensors (n, 6), in PAIRS' order, and vectors (n, 3)."""
-    xx, yy, zz, xy, xz, yz = tensors.T
-    x, y, z = vectors.T
-    return np.stack([xx * x + xy * y + xz * z, xy * x + yy * y + yz * z, xz * x + yz * y + zz * z], axis=1)
-
-
-# Elements of a symmetric tensor that is stored as six numbers.
-PAIRS: Final = ((0, 0), (1, 1), (2, 2), (0, 1), (0, 2), (1, 2))
+    They are those of the rectangle that has the same second moment of area.
+    """
+    return np.asarray(np.sqrt(12 * np.maximum(dot(directions, applied(spreads, directions)), 0)))
