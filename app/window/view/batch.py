@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Iterable
+    from collections.abc import Callable
 
     from numpy.typing import NDArray
 
@@ -28,6 +28,8 @@ OPAQUE = 255
 _SEE_THROUGH, _SELECTED_THROUGH, _GHOST = 96, 150, 110
 # Rims are looked for among at most so many edges.
 MOST_RIMS = 600_000
+
+_NO_LINES = np.zeros((0, 2, 3), dtype=np.float32)
 
 
 @dataclass(frozen=True, eq=False)
@@ -153,60 +155,48 @@ def _own_batch(index: int, bodies: Bodies, surface: Surface, centre: FloatArray)
     return Batch(surface.vertices, surface.normals, surface.faces, owner, placements, surface.closed)
 
 
-def _merged(entries: Iterable[tuple[int, Bodies, Surface]], centre: FloatArray) -> Batch:
-    vertices, normals, faces, owner = [], [], [], []
-    start, closed = 0, True
-    for index, bodies, surface in entries:
-        copies, size = len(bodies.shift), len(surface.vertices)
-        vertices.append(_laid_out(surface.vertices, bodies, surface, centre))
-        normals.append(_turned(surface.normals, bodies))
-        own = np.broadcast_to(surface.faces, (copies, surface.count, 3)).copy()
-        # A mirror image runs the other way round.
-        mirrored = np.linalg.det(bodies.turn) < 0
-        own[mirrored] = own[mirrored][:, :, ::-1]
-        offsets = start + size * np.arange(copies, dtype=np.uint32)
-        faces.append((own + offsets[:, None, None].astype(np.uint32)).reshape(-1, 3))
-        owner.append(np.full(copies * size, index, dtype=np.int64))
-        start += copies * size
-        closed &= surface.closed
+def _merged(entries: list[tuple[int, Bodies, Surface]], centre: FloatArray) -> Batch:
+    laid = [bodies.faces_of(surface) for _, bodies, surface in entries]
+    sizes = np.array([len(piece.vertices) for piece in laid])
+    counts = np.array([len(piece.faces) for piece in laid])
+    indices = np.array([index for index, _, _ in entries])
+    starts = (np.cumsum(sizes) - sizes).astype(np.uint32)
     return Batch(
-        np.concatenate(vertices),
-        np.concatenate(normals),
-        np.concatenate(faces),
-        np.concatenate(owner),
+        np.concatenate([piece.vertices for piece in laid]) + _offsets(entries, sizes, centre),
+        np.concatenate([piece.normals for piece in laid]),
+        np.concatenate([piece.faces for piece in laid]) + np.repeat(starts, counts)[:, None],
+        np.repeat(indices, sizes),
         np.eye(4)[None],
-        closed,
+        all(surface.closed for _, _, surface in entries),
     )
 
 
 def _lines(scene: Scene, surface_for: Callable[[Bodies], Surface]) -> Lines:
-    sharp, sharp_owner, rims, rim_normals, rim_owner = [], [], [], [], []
-    left = MOST_RIMS
-    for index, bodies in enumerate(scene.everybody):
-        surface, copies = surface_for(bodies), len(bodies.shift)
-        sharp.append(_laid_out(surface.sharp.reshape(-1, 3), bodies, surface, scene.centre).reshape(-1, 2, 3))
-        sharp_owner.append(np.full(len(sharp[-1]), index, dtype=np.int64))
-        if len(surface.rims) * copies <= left:
-            left -= len(surface.rims) * copies
-            rims.append(_laid_out(surface.rims.reshape(-1, 3), bodies, surface, scene.centre).reshape(-1, 2, 3))
-            rim_normals.append(_turned(surface.rim_normals.reshape(-1, 3), bodies).reshape(-1, 2, 3))
-            rim_owner.append(np.full(len(rims[-1]), index, dtype=np.int64))
-    nothing, nobody = np.zeros((0, 2, 3), dtype=np.float32), np.zeros(0, dtype=np.int64)
-    return Lines(
-        np.concatenate([nothing, *sharp]),
-        np.concatenate([nobody, *sharp_owner]),
-        np.concatenate([nothing, *rims]),
-        np.concatenate([nothing, *rim_normals]),
-        np.concatenate([nobody, *rim_owner]),
+    entries = [(index, bodies, surface_for(bodies)) for index, bodies in enumerate(scene.everybody)]
+    left, rimmed = MOST_RIMS, []
+    for entry in entries:
+        count = len(entry[2].rims) * len(entry[1].shift)
+        if count <= left:
+            left -= count
+            rimmed.append(entry)
+    sharp, sharp_owner = _joined_lines(
+        [bodies.lines_of(surface).sharp for _, bodies, surface in entries], entries, scene
     )
+    rims, rim_owner = _joined_lines([bodies.lines_of(surface).rims for _, bodies, surface in rimmed], rimmed, scene)
+    normals = [bodies.lines_of(surface).rim_normals for _, bodies, surface in rimmed]
+    return Lines(sharp, sharp_owner, rims, np.concatenate([_NO_LINES, *normals]), rim_owner)
 
 
-def _laid_out(points: Float32Array, bodies: Bodies, surface: Surface, centre: FloatArray) -> Float32Array:
-    """Return the points of all copies (n·k, 3), relative to the scene's middle."""
-    shift = bodies.turn @ surface.middle + (bodies.shift - centre)
-    turn = bodies.turn.astype(np.float32)
-    return (points @ np.swapaxes(turn, 1, 2) + shift[:, None].astype(np.float32)).reshape(-1, 3)
+def _joined_lines(
+    pieces: list[Float32Array], entries: list[tuple[int, Bodies, Surface]], scene: Scene
+) -> tuple[Float32Array, IntArray]:
+    """Return all lines (e, 2, 3) relative to the scene's middle, and which body each is of."""
+    sizes = np.array([len(piece) for piece in pieces], dtype=np.int64)
+    joined = np.concatenate([_NO_LINES, *pieces]) + _offsets(entries, sizes, scene.centre)[:, None]
+    return joined, np.repeat(np.array([index for index, _, _ in entries], dtype=np.int64), sizes)
 
 
-def _turned(directions: Float32Array, bodies: Bodies) -> Float32Array:
-    return np.asarray(directions @ np.swapaxes(bodies.turn.astype(np.float32), 1, 2)).reshape(-1, 3)
+def _offsets(entries: list[tuple[int, Bodies, Surface]], sizes: IntArray, centre: FloatArray) -> Float32Array:
+    """Return how far each body's anchor is from the scene's middle, repeated sizes times, (Σ sizes, 3) m."""
+    anchors = np.array([bodies.anchor for _, bodies, _ in entries]).reshape(-1, 3)
+    return np.repeat((anchors - centre).astype(np.float32), sizes, axis=0)

@@ -140,7 +140,7 @@ class ViewPane(QWidget):
         was_empty = not self.scene.everybody
         if assembly is not self._assembly:
             self._assembly = assembly
-            self._picture = replace(self._picture, scene=scene_of(assembly, self.store, self._ghost))
+            self._picture = replace(self._picture, scene=scene_of(assembly, self.store, self._ghost, self.scene))
         self._picture = replace(self._picture, emphasis=emphasis)
         if was_empty and self.scene.everybody:
             self._fit_due = True
@@ -154,7 +154,7 @@ class ViewPane(QWidget):
         if self._assembly is None:
             return
         was_empty = not self.scene.everybody
-        self._picture = replace(self._picture, scene=scene_of(self._assembly, self.store, part))
+        self._picture = replace(self._picture, scene=scene_of(self._assembly, self.store, part, self.scene))
         self._fit_due |= was_empty
         self._redraw(moving=False)
 

@@ -13,6 +13,7 @@ from weakref import WeakKeyDictionary
 
 import numpy as np
 
+from app.window.view.laid import LaidFaces, LaidLines, laid_faces, laid_lines
 from app.window.view.surface import Surface, surface_of
 from core.arrays import FloatArray, frozen
 
@@ -24,7 +25,7 @@ if TYPE_CHECKING:
 # How far the drive axis reaches beyond what turns about it, relative to the size of the scene.
 _OVERHANG = 0.12
 # More vertices than this and the scene is fitted by the boxes around its bodies.
-_MOST_FITTED = 200_000
+_MOST_FITTED = 50_000
 _TIES = {"": ("1", "2", "3"), "12": ("1=2", "1=2", "3"), "23": ("1", "2=3", "2=3"), "123": ("1=2=3",) * 3}
 
 
@@ -38,6 +39,7 @@ class Bodies:
         turn, shift: (n, 3, 3) and (n, 3) m, placements tf_document_part of the copies.
         tint: a small number that parts of the same material share.
 
+    What is worked out from these is kept, and with it through every edit that leaves the part alone.
     """
 
     key: str
@@ -46,11 +48,53 @@ class Bodies:
     turn: FloatArray
     shift: FloatArray
     tint: int = 0
+    _faces: dict[int, LaidFaces] = field(default_factory=dict, init=False, repr=False)
+    _lines: dict[int, LaidLines] = field(default_factory=dict, init=False, repr=False)
 
     @property
     def count(self) -> int:
         """How many triangles all copies have together."""
         return self.surface.count * len(self.shift)
+
+    @cached_property
+    def bounds(self) -> FloatArray:
+        """Lowest and highest corner of the box around all copies, (2, 3) m in the document frame."""
+        # The box around a turned box: its half-widths are |R| times the old ones.
+        centre = self.turn @ self.surface.bounds.mean(axis=0) + self.shift
+        half = np.abs(self.turn) @ (0.5 * np.ptp(self.surface.bounds, axis=0))
+        return frozen([(centre - half).min(axis=0), (centre + half).max(axis=0)])
+
+    @cached_property
+    def anchor(self) -> FloatArray:
+        """The middle (3,) m of all copies; what is laid out is relative to it."""
+        return frozen(self.bounds.mean(axis=0))
+
+    @cached_property
+    def box_corners(self) -> FloatArray:
+        """The corners (8·n, 3) m of the boxes around the copies, turned with them."""
+        local = np.array([self.surface.bounds[list(corner), range(3)] for corner in np.ndindex(2, 2, 2)])
+        return np.asarray(local @ np.swapaxes(self.turn, 1, 2) + self.shift[:, None]).reshape(-1, 3)
+
+    def faces_of(self, surface: Surface) -> LaidFaces:
+        """Return the triangles of all copies drawn with a surface of this part: its own, or a lighter one."""
+        if id(surface) not in self._faces:
+            self._faces[id(surface)] = laid_faces(surface, self.turn, self.shift - self.anchor)
+        return self._faces[id(surface)]
+
+    def lines_of(self, surface: Surface) -> LaidLines:
+        """Return the edges of all copies drawn with a surface of this part."""
+        if id(surface) not in self._lines:
+            self._lines[id(surface)] = laid_lines(surface, self.turn, self.shift - self.anchor)
+        return self._lines[id(surface)]
+
+    def still_stands(self, surface: Surface, turn: FloatArray, shift: FloatArray, tint: int) -> bool:
+        """Return whether these are the same copies, drawn with the same surface and tint."""
+        return (
+            surface is self.surface
+            and tint == self.tint
+            and np.array_equal(shift, self.shift)
+            and np.array_equal(turn, self.turn)
+        )
 
 
 @dataclass(frozen=True, eq=False)
@@ -98,8 +142,11 @@ class Scene:
         """Points (n, 3) m that are in the picture when the whole scene is; a unit box when it is empty."""
         if self.bounds is None:
             return np.array([[x, y, z] for x in (-0.1, 0.1) for y in (-0.1, 0.1) for z in (-0.1, 0.1)])
-        full = sum(len(bodies.surface.vertices) * len(bodies.shift) for bodies in self.everybody) <= _MOST_FITTED
-        points = [_outermost(bodies, full=full) for bodies in self.everybody]
+        few = sum(len(bodies.surface.vertices) * len(bodies.shift) for bodies in self.everybody) <= _MOST_FITTED
+        points = [
+            bodies.faces_of(bodies.surface).vertices + bodies.anchor if few else bodies.box_corners
+            for bodies in self.everybody
+        ]
         marks = [self.axis, *self.principal]
         points += [np.stack([mark.start, mark.end]) for mark in marks if mark is not None]
         return np.concatenate(points)
@@ -132,9 +179,12 @@ class SurfaceStore:
         return found
 
 
-def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None) -> Scene:
-    """Return what is to be seen of an assembly, and of a part that may join it."""
-    bodies = _bodies(assembly, store)
+def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None, before: Scene | None = None) -> Scene:
+    """Return what is to be seen of an assembly, and of a part that may join it.
+
+    What has not changed since the scene before is taken over from it.
+    """
+    bodies = _bodies(assembly, store, before or Scene())
     ghostly = None
     if ghost is not None and len(ghost.surface.corners):
         standing = ghost.standing
@@ -157,7 +207,8 @@ def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None)
     )
 
 
-def _bodies(assembly: Assembly, store: SurfaceStore) -> tuple[Bodies, ...]:
+def _bodies(assembly: Assembly, store: SurfaceStore, before: Scene) -> tuple[Bodies, ...]:
+    known = {bodies.key: bodies for bodies in before.bodies}
     table = assembly.table
     order = np.argsort(table.owner, kind="stable")
     start = np.searchsorted(table.owner[order], np.arange(len(table.parts) + 1))
@@ -168,31 +219,17 @@ def _bodies(assembly: Assembly, store: SurfaceStore) -> tuple[Bodies, ...]:
         if len(rows) and len(part.surface.corners):
             tint = tints.setdefault(part.driver.label, len(tints))
             surface = store.of(part.surface)
-            bodies.append(
-                Bodies(part.key, part.name, surface, table.standing.turn[rows], table.standing.shift[rows], tint)
-            )
+            turn, shift = table.standing.turn[rows], table.standing.shift[rows]
+            old = known.get(part.key)
+            if old is None or old.name != part.name or not old.still_stands(surface, turn, shift, tint):
+                old = Bodies(part.key, part.name, surface, turn, shift, tint)
+            bodies.append(old)
     return tuple(bodies)
 
 
-def _outermost(bodies: Bodies, *, full: bool) -> FloatArray:
-    """Return points (n, 3) m of all copies: every vertex, or the corners of the boxes around them."""
-    surface = bodies.surface
-    if full:
-        local = surface.vertices + surface.middle
-    else:
-        local = np.array([surface.bounds[list(corner), range(3)] for corner in np.ndindex(2, 2, 2)])
-    return np.asarray(np.einsum("nij,kj->nki", bodies.turn, local) + bodies.shift[:, None]).reshape(-1, 3)
-
-
 def _bounds(everybody: tuple[Bodies, ...]) -> FloatArray:
-    lows, highs = [], []
-    for bodies in everybody:
-        # The box around a turned box: its half-widths are |R| times the old ones.
-        centre = np.einsum("nij,j->ni", bodies.turn, bodies.surface.bounds.mean(axis=0)) + bodies.shift
-        half = np.abs(bodies.turn) @ (0.5 * np.ptp(bodies.surface.bounds, axis=0))
-        lows.append((centre - half).min(axis=0))
-        highs.append((centre + half).max(axis=0))
-    return frozen([np.min(lows, axis=0), np.max(highs, axis=0)])
+    boxes = np.array([bodies.bounds for bodies in everybody])
+    return frozen([boxes[:, 0].min(axis=0), boxes[:, 1].max(axis=0)])
 
 
 def _axis_line(name: str, point: FloatArray, unit: FloatArray, reach: FloatArray) -> Line:

@@ -110,7 +110,7 @@ def test_a_click_on_a_part_gives_its_key(pane, qtbot, make_dial, at):
     shot(pane, qtbot)
     fixture = next(bodies for bodies in pane.scene.bodies if bodies.key == "fixture")
     for shift in fixture.shift:
-        spot = pane.camera.project(shift + [0, 0, 0.045], pane.frame_size)
+        spot = pane.camera.project(shift + np.array([0, 0, 0.045]), pane.frame_size)
         with qtbot.waitSignal(pane.picked, timeout=1000) as caught:
             qtbot.mouseClick(pane, Qt.MouseButton.LeftButton, pos=QPoint(round(spot[0]), round(spot[1])))
         assert caught.args == ["fixture", False]
@@ -160,23 +160,23 @@ def test_the_keys_fit_turn_and_zoom(pane, qtbot, dial):
     assert pane.camera.distance == pytest.approx(fitted, rel=0.1)
 
 
-def test_dragging_turns_and_with_shift_moves_and_picks_nothing(pane, qtbot, dial):
+def test_dragging_turns_and_with_shift_moves_and_picks_nothing(pane, dial):
     pane.show_assembly(dial)
     keys = []
     pane.picked.connect(lambda key, _more: keys.append(key))
     before = pane.camera
-    drag(pane, qtbot, Qt.KeyboardModifier.NoModifier)
+    drag(pane, Qt.KeyboardModifier.NoModifier)
     turned = pane.camera
     assert turned.azimuth != before.azimuth
     np.testing.assert_array_equal(turned.target, before.target)
-    drag(pane, qtbot, Qt.KeyboardModifier.ShiftModifier)
+    drag(pane, Qt.KeyboardModifier.ShiftModifier)
     assert pane.camera.azimuth == turned.azimuth
     moved = pane.camera.project(turned.target, pane.frame_size)[:2] - np.array(SIZE) / 2
     np.testing.assert_allclose(moved, [60, 20], atol=1e-6)
     assert keys == []
 
 
-def drag(pane, qtbot, modifier):
+def drag(pane, modifier):
     from PySide6.QtCore import QEvent
     from PySide6.QtGui import QMouseEvent
 

@@ -50,10 +50,10 @@ def test_each_copy_is_found_again_at_the_pixel_that_its_top_projects_to(make_dia
     fixture = next(bodies for bodies in scene.bodies if bodies.key == "fixture")
     camera = Camera(np.zeros(3), parallel=parallel).looking("iso").fitted(scene.fit_points, SIZE, 20)
     for copy, shift in enumerate(fixture.shift):
-        spot = camera.project(shift + [0, 0, 0.045], SIZE)
+        spot = camera.project(shift + np.array([0, 0, 0.045]), SIZE)
         hit = pick(scene, *camera.ray((spot[0], spot[1]), SIZE))
         assert (hit.key, hit.copy) == ("fixture", copy)
-        assert hit.distance == pytest.approx(np.linalg.norm(shift + [0, 0, 0.045] - camera.ray((spot[0], spot[1]), SIZE)[0]), rel=1e-6)
+        assert hit.distance == pytest.approx(np.linalg.norm(shift + np.array([0, 0, 0.045]) - camera.ray((spot[0], spot[1]), SIZE)[0]), rel=1e-6)
 
 
 @pytest.mark.parametrize("name", LOOKS)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import gc
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -13,6 +14,7 @@ from app.window.view.palette import BLUE, DARK, LIGHT, contrast
 from app.window.view.scene import SurfaceStore, scene_of
 from core.assembly import Assembly
 from core.facets import Facets
+from core.placement import Pose
 
 THEMES = {"light": LIGHT, "dark": DARK}
 
@@ -66,7 +68,7 @@ def test_arrows_of_a_box_are_numbered(make_solid):
     assert names == ["1", "2", "3"]
 
 
-def test_a_surface_is_made_ready_once(dial, make_dial):
+def test_a_surface_is_made_ready_once(dial):
     store = SurfaceStore()
     first, second = scene_of(dial, store), scene_of(dial, store)
     assert all(one.surface is two.surface for one, two in zip(first.bodies, second.bodies, strict=True))
@@ -80,6 +82,24 @@ def test_a_surface_is_forgotten_with_the_facets_that_it_was_made_from():
     del facets
     gc.collect()
     assert len(store._kept) == 0
+
+
+def test_an_edit_leaves_the_bodies_of_all_other_parts_as_they_are(dial):
+    store = SurfaceStore()
+    first = scene_of(dial, store)
+    (group,) = dial.members
+    members = list(group.members)
+    members[4] = replace(members[4], pose=Pose((0.0, 0.0, -0.13)))
+    edited = replace(dial, members=(replace(group, members=tuple(members)),))
+    second = scene_of(edited, store, before=first)
+    assert [one is two for one, two in zip(first.bodies, second.bodies, strict=True)] == [
+        key != "shaft" for key in ("plate", "hub", "fixture", "bolt", "shaft", "rotor")
+    ]
+    again = scene_of(edited, SurfaceStore())
+    np.testing.assert_array_equal(second.bounds, again.bounds)
+    one, two = packed(second, full).batches[0], packed(again, full).batches[0]
+    np.testing.assert_array_equal(one.vertices, two.vertices)
+    np.testing.assert_array_equal(one.faces, two.faces)
 
 
 def test_parts_of_one_material_share_a_tint(dial):

@@ -80,7 +80,7 @@ def test_a_facet_turned_over_does_not_part_a_flat_face():
 
 def test_single_precision_holds_for_a_part_a_kilometre_away():
     near = facets_of("box", length_x=0.1, length_y=0.2, length_z=0.3)
-    far = surface_of(Facets(near.points + [1000.0, -1000.0, 500.0], near.corners))
+    far = surface_of(Facets(near.points + np.array([1000.0, -1000.0, 500.0]), near.corners))
     lengths = np.linalg.norm(np.diff(far.sharp, axis=1), axis=-1).ravel()
     np.testing.assert_allclose(np.sort(lengths), np.repeat([0.1, 0.2, 0.3], 4), rtol=1e-6)
 
