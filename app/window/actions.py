@@ -40,8 +40,8 @@ class Actions:
     def __init__(self, window: MainWindow) -> None:
         self._window = window
         self.drawn: dict[QAction, str] = {}
-        self.undo = self._action(Command("Undo", window.session.undo, Keys.Undo, "undo"))
-        self.redo = self._action(Command("Redo", window.session.redo, Keys.Redo, "redo"))
+        self.undo = self._action(Command("Undo", window.undo, Keys.Undo, "undo"))
+        self.redo = self._action(Command("Redo", window.redo, Keys.Redo, "redo"))
         self.save = self._action(Command("Save", window.save, Keys.Save))
         self.shapes = self._shapes_menu()
         self.recent = QMenu("Open recent", window)
@@ -91,8 +91,8 @@ class Actions:
     def _menus(self) -> None:
         w, bar = self._window, self._window.menuBar()
         self._fill(bar.addMenu("&File"), [
-            Command("New", w.new, Keys.New), Command("Open…", w.ask_open, Keys.Open), self.recent,
-            Command("Open the sample", w.open_sample), None,
+            Command("New", w.files.new, Keys.New), Command("Open…", w.files.ask_open, Keys.Open), self.recent,
+            Command("Open the sample", w.files.open_sample), None,
             self.save, Command("Save as…", w.save_as, Keys.SaveAs), None, Command("Quit", w.close, Keys.Quit),
         ])
         self._fill(bar.addMenu("&Edit"), [
@@ -104,7 +104,7 @@ class Actions:
             self._delete_action(),
         ])
         self._fill(bar.addMenu("&Part"), [
-            self.shapes, Command("Add mesh…", w.ask_meshes, "Ctrl+M"),
+            self.shapes, Command("Add mesh…", w.files.ask_meshes, "Ctrl+M"),
             Command("Add known part…", w.ask_known_part, "Ctrl+K"), None,
             Command("Add group", w.add_group, "Ctrl+G", tip="Puts the selected lines into a new group."),
             Command("Move up", lambda: w.move_line(-1), "Alt+Up"),
@@ -167,7 +167,7 @@ class Actions:
         self.shape_button = shape
         bar.addWidget(shape)
         for command in (
-            Command("Add mesh", w.ask_meshes, None, "mesh", "Adds STL files; they can be dropped on the window, too."),
+            Command("Add mesh", w.files.ask_meshes, None, "mesh", "Adds STL files; they can be dropped, too."),
             Command("Add known part", w.ask_known_part, None, "known", "Adds a bought-in part from its data sheet."),
             Command("Add group", w.add_group, None, "group", "Puts the selected lines into a new group."),
         ):

@@ -6,7 +6,7 @@ import os
 from concurrent.futures import Future, ThreadPoolExecutor
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QObject, QTimer
+from PySide6.QtCore import QObject, QTimer, Signal
 
 from app.window.crash import state_folder
 from core.document import read_document, save_document
@@ -30,13 +30,20 @@ def folder() -> Path:
 
 
 class Autosave(QObject):
-    """Writes the document, in a thread, some seconds after an edit; removes it when the work is safe elsewhere."""
+    """Writes the document, in a thread, some seconds after an edit; removes it when the work is safe elsewhere.
+
+    Signals:
+        failed: the work could not be written; the sentence that says why, once.
+    """
+
+    failed = Signal(str)
 
     def __init__(self, session: Session) -> None:
         super().__init__(session)
         self._session = session
         self._pool = ThreadPoolExecutor(1)
         self._running: Future[None] | None = None
+        self._told = False
         self._path = folder() / f"{os.getpid()}{SUFFIX}"
         self._timer = QTimer(self)
         self._timer.setSingleShot(True)
@@ -59,6 +66,19 @@ class Autosave(QObject):
             return
         if self._session.unsaved:
             self._running = self._pool.submit(save_document, self._session.assembly, self._path)
+            self._running.add_done_callback(self._look_at)
+
+    def take_over(self, old: Path) -> None:
+        """Keep recovered work under this session's name; only then is the file that it came from removed."""
+        self.write()
+        if self._running is not None:
+            self._running.add_done_callback(lambda done: None if done.exception() else old.unlink(missing_ok=True))
+
+    def _look_at(self, done: Future[None]) -> None:
+        error = done.exception()
+        if error is not None and not self._told:
+            self._told = True
+            self.failed.emit(str(error))
 
     def stop(self) -> None:
         """End: the work is saved, or was given up on purpose."""
@@ -74,13 +94,11 @@ def left_behind() -> list[Path]:
 
 
 def recovered(path: Path) -> Assembly | None:
-    """Return the unsaved work in a file and remove it; None where it cannot be read."""
+    """Return the unsaved work in a file; None where it cannot be read."""
     try:
-        assembly = read_document(path)
+        return read_document(path)
     except MasswrightError:
         return None
-    path.unlink(missing_ok=True)
-    return assembly
 
 
 def _alive(process: str) -> bool:

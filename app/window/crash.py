@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import logging
 import sys
+import threading
 import traceback
 from typing import TYPE_CHECKING
 
@@ -41,6 +42,9 @@ class CrashReporter(QObject):
     def install(self) -> None:
         """Take over from Python's way of printing errors, until the application ends."""
         sys.excepthook = self.take
+        threading.excepthook = lambda told: self.take(
+            told.exc_type, told.exc_value or told.exc_type(), told.exc_traceback
+        )
 
     def take(self, kind: type[BaseException], error: BaseException, trace: TracebackType | None) -> None:
         """Log an error and have it shown; an interrupt from the keyboard ends the program."""

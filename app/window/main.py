@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import sys
 from dataclasses import replace
-from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -12,10 +11,10 @@ from PySide6.QtCore import QEvent, Qt, QTimer
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QGuiApplication
 from PySide6.QtWidgets import (
     QApplication,
-    QDialog,
-    QFileDialog,
+    QLineEdit,
     QMainWindow,
     QMessageBox,
+    QSizePolicy,
     QSplitter,
     QStackedWidget,
     QTabWidget,
@@ -23,20 +22,21 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
-from app.window import autosave, commands
+from app.window import commands
 from app.window.actions import Actions
 from app.window.crash import CrashReporter
 from app.window.dialogs.add_mesh import AddMeshDialog
 from app.window.dialogs.axis import AxisDialog
 from app.window.dialogs.known_part import KnownPartDialog
+from app.window.files import Files
 from app.window.ledger.view import LedgerPane
-from app.window.numbers import copied, shown
+from app.window.numbers import copied, preview, shown
 from app.window.pages.checks import ChecksPage, counted
 from app.window.pages.part import PartPage
 from app.window.pages.sheet import SheetPage
 from app.window.session import Session
 from app.window.settings import Settings
-from app.window.start import SAMPLE, Notice, StartPanel
+from app.window.start import Notice, StartPanel
 from app.window.style import Words, dress, icon
 from app.window.view import ViewPane, prepare_opengl
 from core.assembly import Part, walk
@@ -45,9 +45,7 @@ from core.quantity import UNIT_SETS, Kind
 if TYPE_CHECKING:
     from collections.abc import Callable
 
-DOCUMENT = ".masswright"
-DOCUMENTS = f"Masswright documents (*{DOCUMENT})"
-MESHES = "Meshes (*.stl *.STL *.stl.gz)"
+SAID_MS = 8000
 
 
 class MainWindow(QMainWindow):
@@ -67,8 +65,12 @@ class MainWindow(QMainWindow):
         self.pages = QTabWidget()
         self.notice = Notice()
         self.totals = Words()
+        self.told = Words("", "quiet")
+        self.files = Files(self, self.session, self.settings, self.notice)
         self.actions_ = Actions(self)
-        self._autosave = autosave.Autosave(self.session)
+        self._place: QWidget = self.ledger
+        self._given_up = False
+        self._silence = QTimer(self, singleShot=True, interval=SAID_MS)
         self._hovered = ""
         self._lay_out()
         self._connect()
@@ -80,7 +82,7 @@ class MainWindow(QMainWindow):
             self.pages.addTab(page, words)
         self.pages.setCurrentWidget(self.sheet)
         self.pages.setDocumentMode(True)
-        self.start = StartPanel(self.actions_.shapes, self.ask_meshes, self.open_sample)
+        self.start = StartPanel(self.actions_.shapes, self.files.ask_meshes, self.files.open_sample)
         self.top = QStackedWidget()
         self.top.addWidget(self.ledger)
         self.top.addWidget(self.start)
@@ -102,7 +104,11 @@ class MainWindow(QMainWindow):
         layout.addWidget(self.notice)
         layout.addWidget(self.halves, 1)
         self.setCentralWidget(middle)
-        self.statusBar().addWidget(self.totals, 1)
+        for line, room in ((self.totals, 3), (self.told, 2)):
+            # A long name is cut off rather than making the window wide.
+            line.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
+            self.statusBar().addWidget(line, room)
+        self.told.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
         self.setAcceptDrops(True)
         self.setMinimumSize(960, 600)
         self.resize(1400, 880)
@@ -114,13 +120,20 @@ class MainWindow(QMainWindow):
             signal.connect(self.refresh)
         s.selection_changed.connect(self._show_in_view)
         s.refused.connect(self.notice.say)
-        s.said.connect(lambda text: self.statusBar().showMessage(text, 4000))
+        s.said.connect(self._say)
+        s.changed.connect(self.notice.clear_refusal)
+        self._silence.timeout.connect(self.told.clear)
+        self.files.opened.connect(self._opened)
+        self.files.meshes_chosen.connect(self.add_meshes)
+        application = QApplication.instance()
+        if isinstance(application, QApplication):
+            application.focusChanged.connect(self._note_place)
         self.view.picked.connect(self._pick)
         self.view.hovered.connect(self._hover)
         self.ledger.tree.hovered.connect(self._hover)
         a.axes.chosen.connect(self._choose_axis)
         a.units.chosen.connect(self._choose_units)
-        a.recent.aboutToShow.connect(self._fill_recent)
+        a.recent.aboutToShow.connect(lambda: self.files.fill_recent(a.recent))
 
     def _restore(self) -> None:
         for name, take in self._states():
@@ -161,7 +174,16 @@ class MainWindow(QMainWindow):
         self._show_totals(failed)
         self._show_in_view()
 
+    def _say(self, text: str) -> None:
+        """Say what was done, beside the totals, for some seconds."""
+        self.told.setText(text)
+        self.told.setToolTip(text)
+        self._silence.start()
+
     def _show_totals(self, failed: int) -> None:
+        if not self.session.assembly.members:
+            self.totals.setText("The ledger is empty: add a shape, drop a mesh, or open the sample.")
+            return
         total, units = self.session.ledger.total, self.session.units
         mass = f"{shown(self.session, total.mass, units[Kind.MASS])} {units[Kind.MASS].symbol}"
         inertia = f"{shown(self.session, total.inertia, units[Kind.INERTIA])} {units[Kind.INERTIA].symbol}"
@@ -211,17 +233,13 @@ class MainWindow(QMainWindow):
             self.pages.setCurrentWidget(self.part)
             QTimer.singleShot(0, self.part.edit_first_dimension)
 
-    def ask_meshes(self) -> None:
-        """Ask for mesh files and add them."""
-        self._ask_files("Add meshes", MESHES, QFileDialog.FileMode.ExistingFiles, self.add_meshes)
-
     def add_meshes(self, paths: list[Path]) -> None:
         """Read mesh files and ask for the unit of each."""
-        self._open_dialog(AddMeshDialog(self.session, paths, self))
+        self.files.show_dialog(AddMeshDialog(self.session, paths, self))
 
     def ask_known_part(self) -> None:
         """Ask for a data sheet's values and add the part."""
-        self._open_dialog(KnownPartDialog(self.session, self))
+        self.files.show_dialog(KnownPartDialog(self.session, self))
 
     def add_group(self) -> None:
         """Put the selected lines into a new group, and edit its name."""
@@ -253,168 +271,120 @@ class MainWindow(QMainWindow):
 
     def edit_axis(self) -> None:
         """Edit the drive axis."""
-        self._open_dialog(AxisDialog(self.session, self.session.assembly.drive_axis, self))
+        self.files.show_dialog(AxisDialog(self.session, self.session.assembly.drive_axis, self))
 
     def new_axis(self) -> None:
         """Add an axis; it becomes the drive axis."""
-        self._open_dialog(AxisDialog(self.session, None, self))
-
-    def _open_dialog(self, dialog: QDialog) -> None:
-        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
-        dialog.open()
+        self.files.show_dialog(AxisDialog(self.session, None, self))
 
     # Copying
 
+    def _note_place(self, _old: QWidget | None, now: QWidget | None) -> None:
+        """Remember which table the keyboard was in last: opening a menu may take it out of there."""
+        for place in (self.sheet, self.checks, self.ledger):
+            if now is not None and place.isAncestorOf(now):
+                self._place = place
+
     def copy(self) -> None:
-        """Copy what is selected where the keyboard is: values of the sheet, or cells of the ledger."""
-        if self.sheet.isAncestorOf(QApplication.focusWidget() or self):
+        """Copy what is selected where the keyboard is or was last: values, a finding, or cells of the ledger."""
+        if self._place is self.sheet:
             self.sheet.copy_selection()
-        elif self.ledger.copy_block():
-            self.session.said.emit("Copied the selected cells")
+        elif self._place is self.checks:
+            text = self.checks.copy_current()
+            self._say_copied("the finding", text)
+        else:
+            self._say_copied("the selected cells", self.ledger.copy_block())
 
     def copy_with_headings(self) -> None:
         """Copy the selected cells of the ledger under their headings."""
-        if self.ledger.copy_block_with_headings():
-            self.session.said.emit("Copied the selected cells with their headings")
+        self._say_copied("the selected cells with their headings", self.ledger.copy_block_with_headings())
+
+    def _say_copied(self, what: str, text: str) -> None:
+        said = f"Copied {what}: {preview(text)}" if text else "Nothing is selected that could be copied"
+        self.session.said.emit(said)
 
     def copy_sheet(self) -> None:
         """Copy the whole sheet."""
+        self._commit_typing()
         self.sheet.copy_sheet()
 
     def copy_inertia(self) -> None:
         """Copy J about the drive axis: full precision, in the unit shown, no unit."""
+        self._commit_typing()
         total, unit = self.session.ledger.total, self.session.units[Kind.INERTIA]
-        if total.inertia is not None:
-            text = copied(self.session, total.inertia, unit)
-            QGuiApplication.clipboard().setText(text)
-            self.session.said.emit(f"Copied {text} (J about {self.session.assembly.drive} in {unit.symbol})")
-
-    # Files
-
-    def new(self) -> None:
-        """Start an empty document."""
-        self._when_safe(self.session.start_new)
-
-    def ask_open(self) -> None:
-        """Ask for a document and open it."""
-        self._ask_files("Open", DOCUMENTS, QFileDialog.FileMode.ExistingFile, lambda paths: self.open_path(paths[0]))
-
-    def open_path(self, path: Path) -> None:
-        """Open a document, or import a mesh."""
-        if path.suffix.lower() == DOCUMENT:
-            self._when_safe(lambda: self._opened(path))
-        else:
-            self.add_meshes([path])
-
-    def _opened(self, path: Path) -> None:
-        if self.session.open(path):
-            self.notice.hide()
-            self.settings.add_recent(path)
-            self.view.fit()
-
-    def open_sample(self) -> None:
-        """Open the sample."""
-        self._when_safe(lambda: self._opened(SAMPLE))
-
-    def _fill_recent(self) -> None:
-        self.actions_.recent.clear()
-        for path in self.settings.recent:
-            self.actions_.recent.addAction(str(path), partial(self.open_path, path))
-        if self.actions_.recent.isEmpty():
-            self.actions_.recent.addAction("none yet").setEnabled(False)
-
-    def save(self) -> bool:
-        """Save the document where it is; return whether it is saved."""
-        return self.session.save(self.session.path) if self.session.path else self.save_as()
-
-    def save_as(self) -> bool:
-        """Ask where to save the document; return whether it is saved."""
-        suggestion = str(self.session.path or Path.home() / self.session.title)
-        name, _ = QFileDialog.getSaveFileName(self, "Save as", suggestion, DOCUMENTS)
-        if not name:
-            return False
-        path = Path(name) if Path(name).suffix else Path(f"{name}{DOCUMENT}")
-        if not self.session.save(path):
-            return False
-        self.settings.add_recent(path)
-        return True
-
-    def _ask_files(
-        self, title: str, pattern: str, mode: QFileDialog.FileMode, then: Callable[[list[Path]], None]
-    ) -> None:
-        folder = str(self.session.path.parent) if self.session.path else ""
-        dialog = QFileDialog(self, title, folder, pattern)
-        dialog.setFileMode(mode)
-        dialog.filesSelected.connect(lambda names: then([Path(name) for name in names]))
-        self._open_dialog(dialog)
-
-    def _when_safe(self, go_on: Callable[[], object]) -> None:
-        """Go on at once, or once the user has decided about unsaved work."""
-        if not self.session.unsaved:
-            go_on()
+        if total.inertia is None:
+            self.session.said.emit("Nothing to copy: no part has a mass yet")
             return
-        words = f"{self.session.title} has unsaved changes."
-        box = QMessageBox(QMessageBox.Icon.NoIcon, "Unsaved work", words, parent=self)
-        save = box.addButton("Save", QMessageBox.ButtonRole.AcceptRole)
-        drop = box.addButton("Do not save", QMessageBox.ButtonRole.DestructiveRole)
-        box.addButton("Cancel", QMessageBox.ButtonRole.RejectRole)
-        box.setDefaultButton(save)
+        text = copied(self.session, total.inertia, unit)
+        QGuiApplication.clipboard().setText(text)
+        self.session.said.emit(f"Copied {text} (J about {self.session.assembly.drive} in {unit.symbol})")
 
-        def decided() -> None:
-            if box.clickedButton() is drop or (box.clickedButton() is save and self.save()):
-                go_on()
+    # Files and the history
 
-        box.finished.connect(decided)
-        self._open_dialog(box)
+    def save(self) -> None:
+        """Save the document where it is, or ask where."""
+        self._commit_typing()
+        self.files.save()
 
-    def offer_recovery(self) -> None:
-        """Offer the unsaved work of a session that ended without closing."""
-        left = autosave.left_behind()
-        if left:
-            self.notice.say(
-                "The last session ended with unsaved work.",
-                {"Open it": lambda: self._recover(left[0]), "Discard it": lambda: left[0].unlink(missing_ok=True)},
-            )
+    def save_as(self) -> None:
+        """Ask where to save the document."""
+        self._commit_typing()
+        self.files.save_as()
 
-    def _recover(self, path: Path) -> None:
-        assembly = autosave.recovered(path)
-        if assembly is None:
-            self.notice.say("The unsaved work could not be read; it was left where it is.")
-        else:
-            self.session.take(assembly, None, saved=False)
+    def undo(self) -> None:
+        """Take the last edit back; one that is still being typed counts as done."""
+        self._commit_typing()
+        self.session.undo()
+
+    def redo(self) -> None:
+        """Do the last undone edit again."""
+        self.session.redo()
+
+    def _commit_typing(self) -> None:
+        """Take a text that is being typed as finished, so that what is saved or copied is what is seen."""
+        field = QApplication.focusWidget()
+        if not isinstance(field, QLineEdit) or not self.isAncestorOf(field):
+            return
+        if self.ledger.isAncestorOf(field):
+            self.ledger.tree.setFocus()
+        elif field.isModified():
+            field.editingFinished.emit()
+
+    def _opened(self) -> None:
+        self.notice.clear_refusal()
+        self.view.fit()
 
     def show_about(self) -> None:
         """Say what this is, which version, and what its numbers are not."""
-        from importlib.metadata import version
-
-        words = f"Masswright {version('masswright')}"
+        words = f"Masswright {_version()}".strip()
         box = QMessageBox(QMessageBox.Icon.NoIcon, "About Masswright", words, parent=self)
         box.setInformativeText(
             "Mass, centre of mass and inertia of what a drive has to move.\n\n"
             "Values carry no margin. Rotating and lifted masses hurt people: the applicable machine-safety standards, "
             "local codes and a responsible engineer decide."
         )
-        self._open_dialog(box)
+        self.files.show_dialog(box)
 
     # Qt's events
 
     def closeEvent(self, event: QCloseEvent) -> None:
         """Ask once about unsaved work, then remember how the window stood."""
-        if self.session.unsaved:
+        self._commit_typing()
+        if self.session.unsaved and not self._given_up:
             event.ignore()
-            self._when_safe(self._close_for_good)
+            self.files.when_safe(self._close_for_good)
             return
         self._end()
         event.accept()
 
     def _close_for_good(self) -> None:
-        self.session.take(self.session.assembly, self.session.path)
+        self._given_up = True
         self.close()
 
     def _end(self) -> None:
         for name, (keep, _take) in self._states():
             self.settings.keep_state(name, keep())
-        self._autosave.stop()
+        self.files.autosave.stop()
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
         """Take files."""
@@ -423,19 +393,23 @@ class MainWindow(QMainWindow):
 
     def dropEvent(self, event: QDropEvent) -> None:
         """Open a dropped document, or add dropped meshes."""
-        paths = [Path(url.toLocalFile()) for url in event.mimeData().urls() if url.isLocalFile()]
-        documents = [path for path in paths if path.suffix.lower() == DOCUMENT]
         event.acceptProposedAction()
-        if documents:
-            self.open_path(documents[0])
-        elif paths:
-            self.add_meshes(paths)
+        self.files.drop([Path(url.toLocalFile()) for url in event.mimeData().urls() if url.isLocalFile()])
 
     def changeEvent(self, event: QEvent) -> None:
         """Follow a change of theme."""
         super().changeEvent(event)
         if event.type() == QEvent.Type.PaletteChange and hasattr(self, "actions_"):
             self.actions_.redraw_icons()
+
+
+def _version() -> str:
+    from importlib.metadata import PackageNotFoundError, version
+
+    try:
+        return version("masswright")
+    except PackageNotFoundError:  # run from a checkout
+        return ""
 
 
 def open_window(path: str | Path | None) -> int:
@@ -449,7 +423,7 @@ def open_window(path: str | Path | None) -> int:
     dress(application)
     window = MainWindow()
     window.show()
-    window.offer_recovery()
+    window.files.offer_recovery()
     if path is not None:
-        QTimer.singleShot(0, lambda: window.open_path(Path(path)))
+        QTimer.singleShot(0, lambda: window.files.open_path(Path(path)))
     return application.exec()

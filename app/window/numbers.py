@@ -17,6 +17,14 @@ def shown(session: Session, value: float | None, unit: Unit, digits: int = 4) ->
     return significant(unit.from_si(value), digits, decimal_mark=session.decimal_mark)
 
 
+def preview(text: str, most: int = 56) -> str:
+    """Return what lies on the clipboard in one short line: cells between bars, further rows left out."""
+    first, *more = text.rstrip("\n").split("\n")
+    line = first.replace("\t", " | ")
+    line = line if len(line) <= most else f"{line[: most - 1]}…"
+    return f"{line}  and {len(more)} more row{'s' if len(more) > 1 else ''}" if more else line
+
+
 def copied(session: Session, value: float, unit: Unit) -> str:
     """Return an SI value in a unit at full precision, so that it lands as a number in a spreadsheet's cell."""
     return for_clipboard(unit.from_si(value), session.decimal_mark)

@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QSize, Qt
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QMenu, QPushButton, QToolButton, QVBoxLayout, QWidget
+from PySide6.QtCore import QEvent, QSize, Qt
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QMenu, QPushButton, QToolButton, QVBoxLayout, QWidget
 
 import app
-from app.window.style import GRID, Words, colours, heading_font, icon
+from app.window.style import GRID, Words, heading_font, icon
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -50,6 +51,13 @@ class StartPanel(QWidget):
         layout.addLayout(row)
         layout.addStretch(2)
 
+    def changeEvent(self, event: QEvent) -> None:
+        """Follow a change of theme."""
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.PaletteChange and hasattr(self, "sample"):
+            for button, drawing in ((self.shape, "shape"), (self.mesh, "mesh"), (self.sample, "masswright")):
+                button.setIcon(icon(drawing))
+
 
 def _way(drawing: str, words: str, more: str) -> QToolButton:
     button = QToolButton()
@@ -59,7 +67,8 @@ def _way(drawing: str, words: str, more: str) -> QToolButton:
     button.setAccessibleName(f"{words}, {more}")
     button.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextUnderIcon)
     button.setMinimumSize(220, 104)
-    button.setStyleSheet(f"QToolButton {{ border: 1px solid {colours().hairline}; }}")
+    button.setObjectName("way")
+    button.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
     return button
 
 
@@ -68,15 +77,15 @@ class Notice(QFrame):
 
     def __init__(self) -> None:
         super().__init__()
-        self._mark = QToolButton()
-        self._mark.setEnabled(False)
-        self._mark.setIcon(icon("failed"))
+        self._mark = QLabel()
         self.words = Words()
         self.words.setWordWrap(True)
         self._close = QPushButton("Close")
         self._close.clicked.connect(self.hide)
         self._layout = QHBoxLayout(self)
         self._layout.setContentsMargins(GRID, 4, GRID, 4)
+        self._layout.setSpacing(GRID)
+        self._layout.addWidget(self._mark)
         self._layout.addWidget(self.words, 1)
         self._layout.addWidget(self._close)
         self._offers: list[QPushButton] = []
@@ -90,12 +99,24 @@ class Notice(QFrame):
         self._offers = []
         for words, action in (offers or {}).items():
             button = QPushButton(words)
-            button.clicked.connect(self.hide)
-            button.clicked.connect(action)
+            button.clicked.connect(partial(self._accept, action))
             self._layout.insertWidget(self._layout.count() - 1, button)
             self._offers.append(button)
-        role = "blue" if offers else "failed"
-        self.words.set_role(role)
+        self.words.set_role("text" if offers else "failed")
+        self._mark.setVisible(not offers)
+        self._mark.setPixmap(icon("failed", "failed").pixmap(16, 16))
         self.words.setText(sentence)
         self.setAccessibleName(sentence)
         self.show()
+
+    def _accept(self, action: Callable[[], None]) -> None:
+        for button in self._offers:
+            button.deleteLater()
+        self._offers = []
+        self.hide()
+        action()
+
+    def clear_refusal(self) -> None:
+        """Go where the sentence was a refusal: something else was done since. An offer stays."""
+        if not self._offers:
+            self.hide()

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from pathlib import Path
 
-from PySide6.QtCore import QByteArray, QRectF, QSize, Qt
+from PySide6.QtCore import QByteArray, QEvent, QRectF, QSize, Qt
 from PySide6.QtGui import QColor, QFont, QGuiApplication, QIcon, QPainter, QPalette, QPixmap
 from PySide6.QtSvg import QSvgRenderer
 from PySide6.QtWidgets import QApplication, QLabel, QWidget
@@ -133,6 +133,8 @@ def _sheet(c: Colours) -> str:
     QMenu::separator {{ height: 1px; background: {c.hairline}; margin: 4px 8px; }}
     QWidget#page, QWidget#page QScrollArea, QWidget#start {{ background: {c.ground}; }}
     QTreeView#foot {{ border-top: 1px solid {c.hairline}; background: {c.raised}; }}
+    QToolButton#way {{ border-color: {c.hairline}; }}
+    QToolButton#way:hover, QToolButton#way:focus {{ border-color: {c.blue}; }}
     QLabel#refusal {{ background: {c.ground}; border: 1px solid {c.failed}; padding: 2px 6px; }}
     QFrame#notice {{ background: {c.ground}; border-bottom: 1px solid {c.hairline}; }}
     QToolButton::menu-indicator {{ image: url({(ICONS / "open.svg").as_posix()}); width: 10px; height: 10px;
@@ -166,9 +168,15 @@ class Words(QLabel):
     def set_role(self, role: str) -> None:
         """Set the text in a role of `Colours`: text, quiet, failed, estimate, sound, blue."""
         self._role = role
-        self.setForegroundRole(QPalette.ColorRole.WindowText)
-        colour = getattr(colours(), role)
-        self.setStyleSheet(f"color: {colour};")
+        sheet = f"color: {getattr(colours(), role)};"
+        if sheet != self.styleSheet():
+            self.setStyleSheet(sheet)
+
+    def changeEvent(self, event: QEvent) -> None:
+        """Follow a change of theme."""
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.PaletteChange and hasattr(self, "_role"):
+            self.set_role(self._role)
 
 
 _icon_cache: dict[tuple[str, str, bool], QIcon] = {}

@@ -54,11 +54,11 @@ class Task(QObject, Generic[Result]):
             return
         self._timer.stop()
         self._pool.shutdown(wait=False)
-        try:
-            result = self._future.result()
-        except Cancelled:
-            return
-        except MasswrightError as error:
+        error = self._future.exception()
+        if error is None:
+            self._done(self._future.result())
+        elif isinstance(error, MasswrightError) and not isinstance(error, Cancelled):
             self._failed(str(error))
-            return
-        self._done(result)
+        elif not isinstance(error, Cancelled):
+            self._failed("Something unexpected went wrong while it was read; nothing of it was taken.")
+            raise error

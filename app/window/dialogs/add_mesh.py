@@ -47,6 +47,8 @@ class AddMeshDialog(FormDialog):
         self._session = session
         self._left = list(paths)
         self._asset: MeshAsset | None = None
+        self._skips = False
+        self._alike = False
         self._task: Task[MeshAsset] | None = None
         self.file = Words()
         self.verdict = Words("", "quiet")
@@ -70,7 +72,7 @@ class AddMeshDialog(FormDialog):
 
     def _next(self) -> None:
         """Read the next file, or close after the last one."""
-        self._asset = None
+        self._asset, self._skips = None, False
         if not self._left:
             self.accept()
             return
@@ -80,8 +82,14 @@ class AddMeshDialog(FormDialog):
         self.refuse("")
         self.bar.setValue(0)
         self.bar.show()
+        if not self._alike:
+            # A unit is never taken over from the file before without being asked for.
+            self.table.clearSelection()
+        self._allow()
         self.all_alike.setVisible(len(self._left) > 1)
-        self.all_alike.setText(f"Add the other {len(self._left) - 1} with the same unit and material")
+        others = len(self._left) - 1
+        which = "other file" if others == 1 else f"other {others} files"
+        self.all_alike.setText(f"Add the {which} with the same unit and material")
         self._show_table()
         self._task = Task(
             self, lambda progress: MeshAsset.read(path, progress), self._read, self._unreadable,
@@ -98,7 +106,7 @@ class AddMeshDialog(FormDialog):
         self.verdict.set_role("text" if survey.verdict in SOUND else "failed")
         self._show_table()
         self._allow()
-        if self.all_alike.isHidden() is False and self.all_alike.isChecked() and self._factor() is not None:
+        if self._alike:
             self.take()
 
     def _unreadable(self, sentence: str) -> None:
@@ -106,6 +114,7 @@ class AddMeshDialog(FormDialog):
         name = self._left[0].name
         self.file.setText(f"{name} was not added.")
         self.refuse(sentence)
+        self._skips = True
         self.take_button.setText("Next file" if len(self._left) > 1 else "Close")
         self.take_button.setEnabled(True)
 
@@ -145,13 +154,13 @@ class AddMeshDialog(FormDialog):
         return "material not set" if mass is None else f"{shown(self._session, mass, unit)} {unit.symbol}"
 
     def take(self) -> None:
-        """Add the file as a line, and go on with the next one."""
-        if self._asset is None:
+        """Add the file as a line, and go on with the next one; a file that could not be read is passed over."""
+        if self._skips:
             self._left.pop(0)
             self._next()
             return
         factor = self._factor()
-        if factor is None:
+        if self._asset is None or factor is None:
             return
         try:
             text = self.material.text()
@@ -166,6 +175,7 @@ class AddMeshDialog(FormDialog):
         if refusal:
             self.refuse(refusal)
             return
+        self._alike = self.all_alike.isChecked()
         self._left.pop(0)
         self._next()
 

@@ -19,6 +19,9 @@ class FormDialog(QDialog):
         buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel)
         self.take_button = buttons.button(QDialogButtonBox.StandardButton.Ok)
         self.take_button.setText(take)
+        # Return takes or does nothing; it never leaves the dialog.
+        self.take_button.setDefault(True)
+        buttons.button(QDialogButtonBox.StandardButton.Cancel).setAutoDefault(False)
         buttons.accepted.connect(self.take)
         buttons.rejected.connect(self.reject)
         self._layout = QVBoxLayout(self)

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 from PySide6.QtWidgets import QStackedWidget, QWidget
 
 from app.window.dialogs.form import FormDialog
-from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField
+from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField, kept_text
 from app.window.pages.part_body import TENSOR_LABELS, TENSOR_TIP
 from core.assembly import DataSheet, KnownAxial, KnownTensor, Part
 from core.quantity import Kind
@@ -75,11 +75,22 @@ class KnownPartDialog(FormDialog):
         name = self.name.text().strip() or "known part"
         assembly = self._session.assembly
         key = assembly.fresh_key()
-        part = Part(key, assembly.fresh_name(name), body, DataSheet())
+        part = Part(key, assembly.fresh_name(name), body, DataSheet(), typed=self._typed(body))
         refusal = self._session.attempt(f"Add {part.name}", lambda before: before.inserted(part), select=key)
         self.refuse(refusal)
         if not refusal:
             self.accept()
+
+    def _typed(self, body: KnownAxial | KnownTensor) -> tuple[tuple[str, str], ...]:
+        """Return the texts that say more than their numbers, under the paths that the Part page knows them by."""
+        fields = {"known.mass": self.mass}
+        fields |= {f"known.centre.{at}": field for at, field in enumerate(self.centre.fields)}
+        if isinstance(body, KnownAxial):
+            fields |= {"known.axial": self.axial, "known.length": self.length}
+        else:
+            fields |= {f"known.tensor.{at}": field for at, field in enumerate(self.tensor)}
+        kept = ((path, kept_text(field.line.text())) for path, field in fields.items())
+        return tuple(sorted((path, text) for path, text in kept if text))
 
     def _body(self) -> KnownAxial | KnownTensor | None:
         mass, centre, about = self.mass.read(), self.centre.read(), self.about.currentData()

@@ -134,10 +134,9 @@ class LedgerTree(QTreeView):
         columns = sorted((at for at in range(len(COLUMNS)) if not header.isSectionHidden(at)), key=header.visualIndex)
         return lines[first:], columns[columns.index(start.column()) :]
 
-    def headings(self) -> list[str]:
-        """Return the headings of the columns of the block, with their units."""
-        header = self.header()
-        columns = sorted({index.column() for index in self.selectedIndexes()}, key=header.visualIndex)
+    def headings(self, chosen: QTreeView) -> list[str]:
+        """Return the headings of the columns in which a tree's cells are selected, with their units."""
+        columns = sorted({index.column() for index in chosen.selectedIndexes()}, key=self.header().visualIndex)
         across, shown = Qt.Orientation.Horizontal, Qt.ItemDataRole.DisplayRole
         texts = (str(self.lines.headerData(at, across, shown)) for at in columns)
         return [_heading(*text.partition("\n")[::2]) for text in texts]
@@ -240,15 +239,14 @@ class LedgerPane(QWidget):
         self.tree.header().restoreState(state)
         self.foot.header().restoreState(state)
 
-    def copy_block(self) -> bool:
-        """Put the selected cells on the clipboard, tab-separated; return whether any were selected."""
+    def copy_block(self) -> str:
+        """Put the selected cells on the clipboard, tab-separated; return that text, "" where none are selected."""
         return _to_clipboard(self._cells())
 
-    def copy_block_with_headings(self) -> bool:
-        """Put the selected cells on the clipboard under their columns' headings."""
+    def copy_block_with_headings(self) -> str:
+        """Put the selected cells on the clipboard under their columns' headings; return that text."""
         rows = self._cells()
-        headings = self.tree.headings() if self.tree.selectedIndexes() else []
-        return _to_clipboard([headings, *rows] if rows and headings else rows)
+        return _to_clipboard([self.tree.headings(self._copied_from()), *rows] if rows else rows)
 
     def paste(self) -> None:
         """Put the clipboard's cells into the inputs from the current cell on, all of them or none."""
@@ -275,12 +273,17 @@ class LedgerPane(QWidget):
             self._session.edit(f"Paste {count} cell{'s' if count > 1 else ''}", change)
 
     def _cells(self) -> list[list[str]]:
-        if self.foot.hasFocus() and self.foot.selectedIndexes():
-            return [[str(index.data(COPY_ROLE)) for index in self.foot.selectedIndexes()]]
+        if self._copied_from() is self.foot:
+            chosen = sorted(self.foot.selectedIndexes(), key=lambda at: self.foot.header().visualIndex(at.column()))
+            return [[str(index.data(COPY_ROLE)) for index in chosen]]
         return self.tree.block()
 
+    def _copied_from(self) -> QTreeView:
+        return self.foot if self.foot.hasFocus() and self.foot.selectedIndexes() else self.tree
 
-def _to_clipboard(rows: list[list[str]]) -> bool:
-    if rows:
-        QGuiApplication.clipboard().setText(tsv_of_block(rows))
-    return bool(rows)
+
+def _to_clipboard(rows: list[list[str]]) -> str:
+    text = tsv_of_block(rows) if rows else ""
+    if text:
+        QGuiApplication.clipboard().setText(text)
+    return text

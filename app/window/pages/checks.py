@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QModelIndex, QPersistentModelIndex, QRect, QSize, Qt
-from PySide6.QtGui import QColor
+from PySide6.QtCore import QEvent, QModelIndex, QPersistentModelIndex, QRect, QSize, Qt
+from PySide6.QtGui import QColor, QGuiApplication
 from PySide6.QtWidgets import (
     QHeaderView,
     QStyledItemDelegate,
@@ -93,6 +93,20 @@ class ChecksPage(QWidget):
             self.head.setText(f"{counted(len(failed))} a look. A click goes to the part.")
         else:
             self.head.setText(f"All {len(sound)} checks are sound.")
+
+    def changeEvent(self, event: QEvent) -> None:
+        """Follow a change of theme."""
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.PaletteChange and hasattr(self, "head"):
+            self.refresh()
+
+    def copy_current(self) -> str:
+        """Put the current finding on the clipboard, and return it."""
+        item = self.list.currentItem()
+        text = "\t".join(item.text(column) for column in (WORD, PART, TEXT)) if item else ""
+        if text:
+            QGuiApplication.clipboard().setText(text)
+        return text
 
     def _keep_fold(self, *, unfolded: bool) -> None:
         self._unfolded = unfolded

@@ -9,7 +9,7 @@ from PySide6.QtGui import QColor, QFont, QGuiApplication, QKeyEvent
 from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QHeaderView, QPushButton, QTableView, QVBoxLayout, QWidget
 
 from app.window.fields import ChoiceField
-from app.window.numbers import copied, shown
+from app.window.numbers import copied, preview, shown
 from app.window.style import GRID, Words, colours, icon
 from core.handover import Entry, Sheet, SheetChoice, sheet_of_assembly, tsv_of_sheet
 from core.quantity import UNITS
@@ -25,6 +25,16 @@ PRODUCTS: list[tuple[str, object]] = [
     ("tensor elements, −∫xy dm", "tensor"),
     ("product integrals, +∫xy dm", "integral"),
 ]
+NOTHING = (
+    "Nothing to hand over yet. Add a shape, a mesh or a known part and say what it weighs; "
+    "mass, centre and inertia of the whole then stand here, each with a way to copy it."
+)
+TIPS = {
+    "Of": "Whose values these are.",
+    "About": "The point that the tensor is about.",
+    "Along": "The axes that the tensor is resolved along.",
+    "Products of inertia": "Which of the two signs in use the products of inertia have.",
+}
 OF: list[tuple[str, object]] = [("whole assembly", "whole"), ("selected line", "selected")]
 SHOWN_DIGITS = 5
 
@@ -172,6 +182,7 @@ class SheetPage(QWidget):
         self.copy_all.clicked.connect(self.copy_sheet)
         self.told = Words("", "quiet")
         self.told.setWordWrap(True)
+        self.told.setAlignment(Qt.AlignmentFlag.AlignTop)
         self._lay_out()
         self.table.copy_wanted.connect(self.copy_row)
         for field in (self.of, self.about, self.along, self.products):
@@ -184,6 +195,7 @@ class SheetPage(QWidget):
         choices = QHBoxLayout()
         choices.setSpacing(GRID)
         for field in (self.of, self.about, self.along, self.products):
+            field.setToolTip(TIPS[field.accessibleName()])
             choices.addWidget(field)
         choices.addStretch(1)
         choices.addWidget(self.copy_all)
@@ -208,6 +220,9 @@ class SheetPage(QWidget):
 
     def refresh(self) -> None:
         """Show the values as they are now."""
+        empty = not self._session.assembly.members
+        for widget in (self.table, self.of, self.about, self.along, self.products, self.copy_all):
+            widget.setVisible(not empty)
         sheet = self.sheet
         self.model.show(sheet)
         header = self.table.horizontalHeader()
@@ -223,7 +238,8 @@ class SheetPage(QWidget):
         of_line = self.of.currentData() == "selected"
         astray = of_line and not self._key()
         hint = "Select one line to see its values; these are of the whole assembly. " if astray else ""
-        self.told.setText(" ".join([f"{hint}{sheet.title}: {sheet.basis}.", *sheet.notes, *sheet.cautions]))
+        words = " ".join([f"{hint}{sheet.title}: {sheet.basis}.", *sheet.notes, *sheet.cautions])
+        self.told.setText(NOTHING if empty else words)
 
     def copy_row(self, row: int) -> None:
         """Put one value on the clipboard: full precision, no unit."""
@@ -236,8 +252,12 @@ class SheetPage(QWidget):
 
     def copy_sheet(self) -> None:
         """Put the whole sheet on the clipboard, tab-separated: name, value, unit."""
-        QGuiApplication.clipboard().setText(tsv_of_sheet(self.sheet, self._session.decimal_mark))
-        self._session.said.emit("Copied the sheet: name, value and unit in three columns")
+        if self._session.assembly.members:
+            text = tsv_of_sheet(self.sheet, self._session.decimal_mark)
+            QGuiApplication.clipboard().setText(text)
+            self._session.said.emit(f"Copied the sheet: {preview(text)}")
+        else:
+            self._session.said.emit("Nothing to copy: the ledger is empty")
 
     def copy_selection(self) -> None:
         """Put the selected values on the clipboard, one below the other; nothing selected: the sheet."""
@@ -247,8 +267,9 @@ class SheetPage(QWidget):
             self.copy_sheet()
             return
         lines = [copied(self._session, entry.si, entry.unit) if entry.si is not None else "" for entry in values]
-        QGuiApplication.clipboard().setText("\n".join(lines))
-        self._session.said.emit(f"Copied {len(lines)} value{'s' if len(lines) > 1 else ''}")
+        text = "\n".join(lines)
+        QGuiApplication.clipboard().setText(text)
+        self._session.said.emit(f"Copied {len(lines)} value{'s' if len(lines) > 1 else ''}: {preview(text)}")
 
     def changeEvent(self, event: QEvent) -> None:
         """Follow a change of theme."""

@@ -1,0 +1,192 @@
+"""Documents on disk as the window handles them: open, save, the question about unsaved work, recovery."""
+
+from __future__ import annotations
+
+from functools import partial
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QObject, Qt, Signal
+from PySide6.QtWidgets import QFileDialog, QMenu, QMessageBox
+
+from app.window import autosave
+from app.window.start import SAMPLE
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from PySide6.QtWidgets import QDialog, QWidget
+
+    from app.window.session import Session
+    from app.window.settings import Settings
+    from app.window.start import Notice
+
+DOCUMENT = ".masswright"
+DOCUMENTS = f"Masswright documents (*{DOCUMENT})"
+MESHES = "Meshes (*.stl *.STL *.stl.gz)"
+
+
+class Files(QObject):
+    """Asks where, warns before work is lost, and tells a refusal in one sentence.
+
+    Signals:
+        opened: another document is shown.
+        meshes_chosen: paths of mesh files to add.
+    """
+
+    opened = Signal()
+    meshes_chosen = Signal(object)
+
+    def __init__(self, window: QWidget, session: Session, settings: Settings, notice: Notice) -> None:
+        super().__init__(window)
+        self._window, self._session, self._settings, self._notice = window, session, settings, notice
+        self._question: QMessageBox | None = None
+        self.autosave = autosave.Autosave(session)
+        self.autosave.failed.connect(self._tell_no_autosave)
+
+    def new(self) -> None:
+        """Start an empty document."""
+        self.when_safe(self._session.start_new)
+
+    def ask_open(self) -> None:
+        """Ask for a document and open it."""
+        self._ask("Open", DOCUMENTS, QFileDialog.FileMode.ExistingFile, lambda paths: self.open_path(paths[0]))
+
+    def ask_meshes(self) -> None:
+        """Ask for mesh files to add."""
+        self._ask("Add meshes", MESHES, QFileDialog.FileMode.ExistingFiles, self.meshes_chosen.emit)
+
+    def open_path(self, path: Path) -> None:
+        """Open a document, or import a mesh."""
+        if path.suffix.lower() == DOCUMENT:
+            self.when_safe(lambda: self._open(path))
+        else:
+            self.meshes_chosen.emit([path])
+
+    def drop(self, paths: list[Path]) -> None:
+        """Open a dropped document, or add dropped meshes; a mixture is not taken."""
+        documents = [path for path in paths if path.suffix.lower() == DOCUMENT]
+        if documents and len(paths) > 1:
+            self._session.refused.emit("Drop one document, or any number of meshes. Nothing was taken.")
+        elif documents:
+            self.open_path(documents[0])
+        elif paths:
+            self.meshes_chosen.emit(paths)
+
+    def open_sample(self) -> None:
+        """Show the sample as a new document, so that saving it asks where."""
+        self.when_safe(self._open_sample)
+
+    def _open_sample(self) -> None:
+        if self._session.open(SAMPLE):
+            self._session.take(self._session.assembly, None)
+            self.opened.emit()
+
+    def _open(self, path: Path) -> None:
+        if self._session.open(path):
+            self._settings.add_recent(path)
+            self.opened.emit()
+
+    def fill_recent(self, menu: QMenu) -> None:
+        """Put the documents used last into a menu."""
+        menu.clear()
+        for path in self._settings.recent:
+            menu.addAction(str(path).replace("&", "&&"), partial(self.open_path, path))
+        if menu.isEmpty():
+            menu.addAction("none yet").setEnabled(False)
+
+    def save(self, then: Callable[[], object] | None = None) -> None:
+        """Save the document where it is, or ask where; go on with `then` once it is saved."""
+        if self._session.path is None:
+            self.save_as(then)
+        elif self._session.save(self._session.path) and then is not None:
+            then()
+
+    def save_as(self, then: Callable[[], object] | None = None) -> None:
+        """Ask where to save the document; go on with `then` once it is saved."""
+        dialog = QFileDialog(self._window, "Save as", "", DOCUMENTS)
+        dialog.setAcceptMode(QFileDialog.AcceptMode.AcceptSave)
+        dialog.setFileMode(QFileDialog.FileMode.AnyFile)
+        dialog.setDefaultSuffix(DOCUMENT)
+        dialog.selectFile(str(self._session.path or Path.home() / self._session.title))
+        dialog.fileSelected.connect(lambda name: self.save_under(Path(name), then))
+        self.show_dialog(dialog)
+
+    def save_under(self, chosen: Path, then: Callable[[], object] | None = None) -> None:
+        """Save under a chosen name, with our ending; a file that the user was not asked about is not replaced."""
+        ours = chosen.suffix.lower() == DOCUMENT
+        path = chosen if ours else chosen.with_name(chosen.name + DOCUMENT)
+        if not ours and path.exists():
+            self._session.refused.emit(f"{path.name} is there already. To replace it, choose it itself.")
+        elif self._session.save(path):
+            self._settings.add_recent(path)
+            if then is not None:
+                then()
+
+    def _ask(
+        self, title: str, pattern: str, mode: QFileDialog.FileMode, then: Callable[[list[Path]], object]
+    ) -> None:
+        folder = str(self._session.path.parent) if self._session.path else ""
+        dialog = QFileDialog(self._window, title, folder, pattern)
+        dialog.setFileMode(mode)
+        dialog.filesSelected.connect(lambda names: then([Path(name) for name in names]))
+        self.show_dialog(dialog)
+
+    def show_dialog(self, dialog: QDialog) -> None:
+        """Show a dialog over the window, without holding up the program; it goes when it is closed."""
+        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        dialog.open()
+
+    def when_safe(self, go_on: Callable[[], object]) -> None:
+        """Go on at once, or once the user has decided about unsaved work; never ask twice at the same time."""
+        if not self._session.unsaved:
+            go_on()
+            return
+        if self._question is not None:
+            self._question.raise_()
+            return
+        words = f"{self._session.title} has unsaved changes."
+        box = QMessageBox(QMessageBox.Icon.NoIcon, "Unsaved work", words, parent=self._window)
+        box.setTextFormat(Qt.TextFormat.PlainText)
+        save = box.addButton("Save", QMessageBox.ButtonRole.AcceptRole)
+        drop = box.addButton("Do not save", QMessageBox.ButtonRole.DestructiveRole)
+        box.setEscapeButton(box.addButton("Cancel", QMessageBox.ButtonRole.RejectRole))
+        box.setDefaultButton(save)
+
+        def decided() -> None:
+            self._question = None
+            if box.clickedButton() is drop:
+                go_on()
+            elif box.clickedButton() is save:
+                self.save(go_on)
+
+        box.finished.connect(decided)
+        self._question = box
+        self.show_dialog(box)
+
+    def offer_recovery(self) -> None:
+        """Offer the unsaved work of a session that ended without closing."""
+        left = autosave.left_behind()
+        if left:
+            self._notice.say(
+                "The last session ended with unsaved work.",
+                {
+                    "Open it": lambda: self.when_safe(lambda: self._recover(left[0])),
+                    "Discard it": lambda: left[0].unlink(missing_ok=True),
+                },
+            )
+
+    def _recover(self, path: Path) -> None:
+        assembly = autosave.recovered(path)
+        if assembly is None:
+            self._notice.say(
+                f"The unsaved work in {path} could not be read; it was left where it is.",
+                {"Discard it": lambda: path.unlink(missing_ok=True)},
+            )
+            return
+        self._session.take(assembly, None, saved=False)
+        self.autosave.take_over(path)
+        self.opened.emit()
+
+    def _tell_no_autosave(self, why: str) -> None:
+        self._session.refused.emit(f"Unsaved work is not kept safe against a crash: {why} Save the document yourself.")
