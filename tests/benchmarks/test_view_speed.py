@@ -69,6 +69,21 @@ def pane(request, qtbot, monkeypatch):
     return made
 
 
+def draw_a_frame(pane, *, moving: bool) -> None:
+    """Turn the camera a little and draw to the end."""
+    pane._move_to(pane.camera.orbited(0.03, 0.0), moving=moving)
+    pane._rest.stop()
+    if not hasattr(pane.canvas, "makeCurrent"):
+        pane.canvas.repaint()
+        return
+    from OpenGL import GL
+
+    pane.canvas.makeCurrent()
+    pane.canvas.paintGL()
+    GL.glFinish()
+    pane.canvas.doneCurrent()
+
+
 @pytest.mark.parametrize("moving", [False, True], ids=["at rest", "moving"])
 @pytest.mark.parametrize("count", COUNTS)
 def test_a_frame(pane, qtbot, benchmark, count, moving):
@@ -76,17 +91,7 @@ def test_a_frame(pane, qtbot, benchmark, count, moving):
     qtbot.wait(50)
 
     def frame():
-        pane._move_to(pane.camera.orbited(0.03, 0.0), moving=moving)
-        pane._rest.stop()
-        if hasattr(pane.canvas, "grabFramebuffer"):
-            pane.canvas.makeCurrent()
-            pane.canvas.paintGL()
-            from OpenGL import GL
-
-            GL.glFinish()
-            pane.canvas.doneCurrent()
-        else:
-            pane.canvas.repaint()
+        draw_a_frame(pane, moving=moving)
 
     frame()
     benchmark.pedantic(frame, rounds=5, warmup_rounds=1)
@@ -98,9 +103,7 @@ def test_a_frame_of_many_parts(pane, qtbot, benchmark, count):
     qtbot.wait(50)
 
     def frame():
-        pane._move_to(pane.camera.orbited(0.03, 0.0), moving=True)
-        pane._rest.stop()
-        pane.canvas.repaint()
+        draw_a_frame(pane, moving=True)
 
     benchmark.pedantic(frame, rounds=5, warmup_rounds=1)
 

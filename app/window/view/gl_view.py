@@ -26,6 +26,8 @@ if TYPE_CHECKING:
 
 _SHADER = "masswright soft"
 _SAMPLES = 4
+# A processor takes several samples per pixel of at most so many triangles.
+_MOST_SMOOTH = 150_000
 # Faces are pushed back a little in depth, so that the lines on them are whole.
 _SOLID: dict[Any, Any] = {
     GL.GL_DEPTH_TEST: True,
@@ -148,12 +150,12 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
 class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
     """Draws pictures with OpenGL 2.1 or newer, hardware or software."""
 
-    def __init__(self, parent: QWidget | None = None, *, rough_while_moving: bool = False) -> None:
+    def __init__(self, parent: QWidget | None = None, *, in_software: bool = False) -> None:
         super().__init__(parent)
         chosen = QSurfaceFormat.defaultFormat()
         chosen.setDepthBufferSize(24)
         self.setFormat(chosen)
-        self._rough_while_moving = rough_while_moving
+        self._in_software = in_software
         self._smooth: QOpenGLFramebufferObject | None = None
         self.setFocusPolicy(Qt.FocusPolicy.NoFocus)
         self.setAttribute(Qt.WidgetAttribute.WA_TransparentForMouseEvents)
@@ -219,7 +221,8 @@ class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
         """Draw the picture, with several samples per pixel where that is not too dear."""
         # The ground is cleared with depth, so depth has to be written.
         GL.glDepthMask(True)
-        if self._picture is not None and self._picture.moving and self._rough_while_moving:
+        picture = self._picture
+        if picture is None or (self._in_software and (picture.moving or picture.scene.count > _MOST_SMOOTH)):
             super().paintGL()
         else:
             self._paint_smoothly()
@@ -227,7 +230,9 @@ class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
         GL.glDisable(GL.GL_POLYGON_OFFSET_FILL)
 
     def _paint_smoothly(self) -> None:
-        width, height = max(self.deviceWidth(), 1), max(self.deviceHeight(), 1)
+        # Rounded as Qt rounds the size of the buffer that the widget shows.
+        scale = float(self.devicePixelRatioF())
+        width, height = (max(int(side * scale + 0.5), 1) for side in (self.width(), self.height()))
         buffer = self._smooth
         if buffer is None or (buffer.width(), buffer.height()) != (width, height):
             chosen = QOpenGLFramebufferObjectFormat()

@@ -69,7 +69,7 @@ def make_view(parent: QWidget) -> QWidget:
         prepare_opengl()
         from app.window.view.gl_view import GlView
 
-        return cast("QWidget", GlView(parent, rough_while_moving=found.in_software))
+        return cast("QWidget", GlView(parent, in_software=found.in_software))
     from app.window.view.soft_view import SoftView
 
     return SoftView(parent)
@@ -103,7 +103,9 @@ class ViewPane(QWidget):
         self._assembly: Assembly | None = None
         self._ghost: Part | None = None
         self._picture = Picture(Scene(), Camera(np.zeros(3)), theme=theme_of(self.palette()))
+        # Fitted when there is something to fit and a size to fit it to, and again until the camera is moved.
         self._fit_due = True
+        self._stays_fitted = True
         self._pressed: QPointF | None = None
         self._last = QPointF()
         self._dragging = False
@@ -143,7 +145,7 @@ class ViewPane(QWidget):
             self._picture = replace(self._picture, scene=scene_of(assembly, self.store, self._ghost, self.scene))
         self._picture = replace(self._picture, emphasis=emphasis)
         if was_empty and self.scene.everybody:
-            self._fit_due = True
+            self._fit_due = self._stays_fitted = True
         self._redraw(moving=self._picture.moving)
 
     def set_preview(self, part: Part | None) -> None:
@@ -160,8 +162,8 @@ class ViewPane(QWidget):
 
     def fit(self) -> None:
         """Show everything."""
-        camera = self.camera.fitted(self.scene.fit_points, self.frame_size, _INSET)
-        self._move_to(camera, moving=False)
+        self._fit_due = self._stays_fitted = True
+        self._redraw(moving=False)
 
     def look(self, name: LookName) -> None:
         """Turn to one of the named views, and show everything."""
@@ -170,7 +172,8 @@ class ViewPane(QWidget):
 
     def set_parallel(self, parallel: bool) -> None:
         """Draw in parallel or in perspective projection."""
-        self._move_to(self.camera.with_parallel(parallel), moving=False)
+        self._picture = replace(self._picture, camera=self.camera.with_parallel(parallel))
+        self._redraw(moving=False)
 
     def set_see_through(self, see_through: bool) -> None:
         """Draw all parts so that what lies behind and inside them shows."""
@@ -185,6 +188,7 @@ class ViewPane(QWidget):
         return "" if hit is None else hit.key
 
     def _move_to(self, camera: Camera, *, moving: bool) -> None:
+        self._stays_fitted = False
         self._picture = replace(self._picture, camera=camera)
         self._redraw(moving=moving)
 
@@ -286,6 +290,7 @@ class ViewPane(QWidget):
         super().resizeEvent(event)
         self.canvas.setGeometry(self.rect())
         self._overlay.setGeometry(self.rect())
+        self._fit_due |= self._stays_fitted
         self._redraw(moving=self._picture.moving)
 
     def showEvent(self, event: QShowEvent) -> None:

@@ -104,6 +104,21 @@ def test_everything_is_inside_the_frame_from_every_side(pane, qtbot, dial, view)
         assert not (seen & border).any()
 
 
+def test_a_fitted_picture_stays_fitted_when_the_pane_grows_until_the_camera_is_moved(pane, qtbot, dial):
+    pane.show_assembly(dial)
+    shot(pane, qtbot)
+    pane.resize(300, 500)
+    seen = off_ground(shot(pane, qtbot))
+    assert seen[:, 15:-15].any()
+    assert not seen[:, :15].any()
+    assert not seen[:, -15:].any()
+    qtbot.keyClick(pane, Qt.Key.Key_Plus)
+    camera = pane.camera
+    pane.resize(*SIZE)
+    shot(pane, qtbot)
+    assert pane.camera is camera
+
+
 @pytest.mark.parametrize("at", [(0.0, 0.0, 0.0), (2000.0, -700.0, 300.0)])
 def test_a_click_on_a_part_gives_its_key(pane, qtbot, make_dial, at):
     pane.show_assembly(make_dial(at))
