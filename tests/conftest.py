@@ -40,7 +40,7 @@ def pytest_addoption(parser: pytest.Parser) -> None:
 
 
 def pytest_configure(config: pytest.Config) -> None:
-    if not config.option.benchmark_only:
+    if not config.getoption("benchmark_only", None):
         config.option.benchmark_skip = True
     if not HAS_QT:
         from hypothesis import settings
@@ -85,10 +85,10 @@ def pytest_runtest_makereport(item: pytest.Item) -> Iterator[None]:
 
 def is_whole_suite(config: pytest.Config) -> bool:
     """Say whether nobody asked for only some of the tests, so that the count can be held against the record."""
-    option = config.option
-    named = config.args_source is not pytest.Config.ArgsSource.TESTPATHS
-    chosen = (option.keyword, option.markexpr, option.deselect, option.ignore, option.ignore_glob, option.lf)
-    return not (named or any(chosen) or option.collectonly or option.stepwise or option.benchmark_only)
+    if config.args_source is not pytest.Config.ArgsSource.TESTPATHS:
+        return False
+    narrowing = ("keyword", "markexpr", "deselect", "ignore", "ignore_glob", "lf", "stepwise", "collectonly")
+    return not any(config.getoption(name, None) for name in (*narrowing, "benchmark_only"))
 
 
 def pytest_sessionfinish(session: pytest.Session, exitstatus: int) -> None:
