@@ -1,7 +1,8 @@
 """What a part is made of, and the one thing that says its mass.
 
-A part has exactly one mass driver: a material of the table, a density, a weighed mass, or none yet. Each is a
-frozen value with `mass_of(volume)`, `basis` (where the mass comes from) and `label` (as a ledger shows it).
+A part has exactly one mass driver: a material of the table, a density, of a thin body a mass per area or per
+length, a weighed mass, or none yet. Each is a frozen value with `measure` (what it multiplies; None for nothing),
+`mass_of(extent)` (kg for so many m³, m² or m), `basis` (where the mass comes from) and `label` (as a ledger shows it).
 """
 
 from __future__ import annotations
@@ -10,7 +11,7 @@ import difflib
 import math
 import re
 from dataclasses import dataclass
-from typing import ClassVar, Final
+from typing import TYPE_CHECKING, ClassVar, Final, TypeAlias
 
 from core.checks import DENSITY_RANGE
 from core.errors import MaterialError
@@ -18,9 +19,12 @@ from core.material_table import MATERIALS, Material
 from core.quantity import compact
 from core.quantity.tokens import quoted
 
+if TYPE_CHECKING:
+    from core.measure import Measure
+
 __all__ = [
-    "MATERIALS", "ByDensity", "ByMaterial", "Material", "NotSet", "Weighed",
-    "check_density", "implied_density", "material", "search",
+    "MATERIALS", "ByDensity", "ByMaterial", "Material", "NotSet", "PerArea", "PerLength", "Weighed",
+    "check_density", "check_measure", "implied_density", "material", "search",
 ]
 
 _NAMED_IN_AN_ERROR: Final = 4
@@ -30,10 +34,11 @@ _NAMED_IN_AN_ERROR: Final = 4
 class NotSet:
     """Nothing says the mass yet. That is not 0 kg: the mass is unknown."""
 
+    measure: ClassVar[Measure | None] = None
     basis: ClassVar[str] = "not set"
     label: ClassVar[str] = "not set"
 
-    def mass_of(self, volume: float) -> float | None:  # noqa: ARG002  (the same call for every driver)
+    def mass_of(self, extent: float) -> float | None:  # noqa: ARG002  (the same call for every driver)
         """Return None: the mass is unknown."""
         return None
 
@@ -53,6 +58,7 @@ class ByMaterial:
 
     name: str
     density: float
+    measure: ClassVar[Measure | None] = "volume"
     basis: ClassVar[str] = "computed"
 
     def __post_init__(self) -> None:
@@ -86,9 +92,9 @@ class ByMaterial:
             f"{_density_text(known.density)}"
         )
 
-    def mass_of(self, volume: float) -> float:
+    def mass_of(self, extent: float) -> float:
         """Return the mass in kg of a volume in m³."""
-        return self.density * volume
+        return self.density * extent
 
 
 @dataclass(frozen=True)
@@ -100,6 +106,7 @@ class ByDensity:
     """
 
     density: float
+    measure: ClassVar[Measure | None] = "volume"
     basis: ClassVar[str] = "computed"
 
     def __post_init__(self) -> None:
@@ -110,29 +117,119 @@ class ByDensity:
         """The density with its unit."""
         return _density_text(self.density)
 
-    def mass_of(self, volume: float) -> float:
+    def mass_of(self, extent: float) -> float:
         """Return the mass in kg of a volume in m³."""
-        return self.density * volume
+        return self.density * extent
+
+
+@dataclass(frozen=True)
+class PerArea:
+    """The mass of a sheet or shell follows from its mass per area in kg/m²: density times thickness.
+
+    Raises:
+        MaterialError: it is not a positive number.
+
+    >>> PerArea(12.0).mass_of(0.25)
+    3.0
+    """
+
+    mass_per_area: float
+    measure: ClassVar[Measure | None] = "area"
+    basis: ClassVar[str] = "computed"
+
+    def __post_init__(self) -> None:
+        _positive(self.mass_per_area, "mass per area", "kg/m²")
+
+    @property
+    def label(self) -> str:
+        """The mass per area with its unit."""
+        return f"{compact(self.mass_per_area, 6)} kg/m²"
+
+    def mass_of(self, extent: float) -> float:
+        """Return the mass in kg of an area in m²."""
+        return self.mass_per_area * extent
+
+
+@dataclass(frozen=True)
+class PerLength:
+    """The mass of a rod or ring follows from its mass per length in kg/m: density times cross-section.
+
+    Raises:
+        MaterialError: it is not a positive number.
+
+    >>> PerLength(0.8).mass_of(2.5)
+    2.0
+    """
+
+    mass_per_length: float
+    measure: ClassVar[Measure | None] = "length"
+    basis: ClassVar[str] = "computed"
+
+    def __post_init__(self) -> None:
+        _positive(self.mass_per_length, "mass per length", "kg/m")
+
+    @property
+    def label(self) -> str:
+        """The mass per length with its unit."""
+        return f"{compact(self.mass_per_length, 6)} kg/m"
+
+    def mass_of(self, extent: float) -> float:
+        """Return the mass in kg of a length in m."""
+        return self.mass_per_length * extent
 
 
 @dataclass(frozen=True)
 class Weighed:
-    """The mass was weighed, in kg; the body's own volume then implies the density.
+    """The mass was weighed, in kg; the body's own volume, area or length then implies the rest.
 
     Raises:
         MaterialError: the mass is not a positive number.
     """
 
     mass: float
+    measure: ClassVar[Measure | None] = None
     basis: ClassVar[str] = "weighed"
     label: ClassVar[str] = "weighed"
 
     def __post_init__(self) -> None:
         _positive(self.mass, "weighed mass", "kg")
 
-    def mass_of(self, volume: float) -> float:  # noqa: ARG002  (the same call for every driver)
-        """Return the weighed mass in kg, whatever the volume."""
+    def mass_of(self, extent: float) -> float:  # noqa: ARG002  (the same call for every driver)
+        """Return the weighed mass in kg, whatever the extent."""
         return self.mass
+
+
+def check_measure(driver: _Driver, measure: Measure, where: str) -> None:
+    """Refuse a driver that multiplies what the body does not have, and say what is missing.
+
+    Args:
+        driver: of the part.
+        measure: of its body.
+        where: the part's name.
+
+    Raises:
+        MaterialError: a density for a body without thickness, a mass per area for one that has a volume, ….
+    """
+    if driver.measure is None or driver.measure == measure:
+        return
+    if driver.measure == "volume":
+        what = f"a density needs a volume, and the {_MISSING[measure]} of this body is not given"
+    else:
+        what = f"a mass per {driver.measure} does not fit a body that has {_EXTENT[measure]}"
+    raise MaterialError(what, where=where, read=driver.label, remedy=_HOW_TO_WEIGH[measure])
+
+
+_Driver: TypeAlias = ByMaterial | ByDensity | PerArea | PerLength | Weighed | NotSet
+_MISSING: Final[dict[Measure, str]] = {"area": "thickness", "length": "cross-section", "pieces": "size"}
+_EXTENT: Final[dict[Measure, str]] = {
+    "volume": "a volume", "area": "an area", "length": "a length", "pieces": "no size",
+}
+_HOW_TO_WEIGH: Final[dict[Measure, str]] = {
+    "volume": 'Give a material, a density like "7850 kg/m³", or a weighed mass',
+    "area": 'Give its mass per area (density times thickness) like "12 kg/m²", or weigh it',
+    "length": 'Give its mass per length (density times cross-section) like "0.8 kg/m", or weigh it',
+    "pieces": 'Give its mass like "1.2 kg"',
+}
 
 
 def implied_density(mass: float, volume: float) -> float | None:

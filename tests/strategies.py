@@ -6,7 +6,7 @@ from dataclasses import replace
 from fractions import Fraction
 
 import numpy as np
-from hypothesis import settings
+from hypothesis import reject, settings
 from hypothesis import strategies as st
 
 from core.assembly import (
@@ -23,11 +23,12 @@ from core.assembly import (
     ShapeBody,
     six_of_tensor,
 )
-from core.material import ByDensity, ByMaterial, NotSet, Weighed
+from core.errors import ShapeError
+from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed
 from core.mesh import MeshAsset
 from core.moments import Moments
 from core.placement import Copies, Mirrored, Placement, Pose, Ring, Row, Several
-from core.shapes import SHAPES, Box, Cone, Cylinder, Frustum, Shape, Sphere, Tube
+from core.shapes import SHAPES, Box, Cone, Cylinder, Frustum, Shape, Sphere, SpokedWheel, ToothedWheel, Tube
 
 # The first example of a test pays for lazy imports, and other jobs share the processor: time is no verdict.
 settings.register_profile("masswright", deadline=None)
@@ -91,7 +92,55 @@ frusta = st.builds(Frustum, LENGTHS, st.one_of(st.just(0.0), LENGTHS), LENGTHS)
 spheres = st.builds(Sphere, LENGTHS)
 solids: st.SearchStrategy[Shape] = st.one_of(boxes, cylinders, tubes(), cones, frusta, spheres)
 
-# Every registered shape, whoever added it, with the dimensions the gallery starts from.
+
+@st.composite
+def toothed_wheels(draw: st.DrawFn) -> ToothedWheel:
+    module, teeth = draw(st.floats(5e-4, 2e-2)), draw(st.integers(6, 120))
+    root = module * (teeth - 2.5)
+    angle = draw(st.floats(np.radians(10), np.radians(30)))
+    return ToothedWheel(module, teeth, angle, draw(LENGTHS), root * draw(st.floats(0.0, 0.95)))
+
+
+@st.composite
+def spoked_wheels(draw: st.DrawFn) -> SpokedWheel:
+    rim, spokes = draw(st.floats(0.1, 1.0)), draw(st.integers(2, 40))
+    inner = rim * draw(st.floats(0.5, 0.99))
+    hub = inner * draw(st.floats(0.1, 0.8))
+    rim_width, hub_length = draw(LENGTHS), draw(LENGTHS)
+    width = min(rim_width, hub_length) * draw(st.floats(0.1, 1.0))
+    thickness = hub * np.tan(np.pi / max(spokes, 4)) * draw(st.floats(0.1, 0.99))
+    bore = hub * draw(st.floats(0.0, 0.9))
+    return SpokedWheel(rim, inner, rim_width, hub, bore, hub_length, spokes, width, thickness)
+
+
+OWN_STRATEGIES: dict[str, st.SearchStrategy[Shape]] = {
+    "toothed wheel": toothed_wheels(),
+    "spoked wheel": spoked_wheels(),
+}
+
+
+@st.composite
+def shapes_of(draw: st.DrawFn, key: str) -> Shape:
+    """A shape of one family with any dimensions that it takes; what breaks a rule between them is drawn again."""
+    if key in OWN_STRATEGIES:
+        return draw(OWN_STRATEGIES[key])
+    kinds = {
+        "length": LENGTHS,
+        "angle": st.floats(0.01, np.pi),
+        "count": st.integers(3, 40),
+    }
+    values = {
+        one.name: draw(st.one_of(st.just(0.0), kinds[one.kind]) if one.may_be_zero else kinds[one.kind])
+        for one in SHAPES[key].dimensions
+    }
+    try:
+        return SHAPES[key].of(values)
+    except ShapeError:
+        reject()
+
+
+# Every registered shape, whoever added it: with any dimensions, and with those the gallery starts from.
+any_shapes: st.SearchStrategy[Shape] = st.sampled_from(sorted(SHAPES)).flatmap(shapes_of)
 registered_shapes: st.SearchStrategy[Shape] = st.sampled_from(sorted(SHAPES)).map(
     lambda key: SHAPES[key].of({})
 )
@@ -155,6 +204,12 @@ mass_drivers = st.one_of(
     st.builds(ByDensity, st.floats(100, 2e4)),
     st.builds(Weighed, MASSES),
 )
+# For bodies without thickness a density says nothing: what stands in for it, by what the body has.
+THIN_DRIVERS: dict[str, st.SearchStrategy[Driver]] = {
+    "area": st.builds(PerArea, st.floats(0.1, 200)),
+    "length": st.builds(PerLength, st.floats(0.01, 100)),
+    "pieces": st.builds(Weighed, MASSES),
+}
 unset_or_mass_drivers = st.one_of(st.just(NotSet()), mass_drivers)
 
 
@@ -200,6 +255,8 @@ def parts(draw: st.DrawFn, drivers: st.SearchStrategy[Driver] = unset_or_mass_dr
     """A part of any kind; its key is not yet its own."""
     body = draw(st.one_of(geometric_bodies, known_tensors(), known_axials()))
     driver = DataSheet() if isinstance(body, KnownTensor | KnownAxial) else draw(drivers)
+    if isinstance(body, ShapeBody) and driver.measure is not None and body.measure != driver.measure:
+        driver = draw(THIN_DRIVERS[body.measure])
     typed = draw(st.lists(st.tuples(TEXTS, TEXTS), max_size=2).map(tuple))
     return Part("", draw(TEXTS), body, driver, draw(poses), draw(several_copies), typed, draw(TEXTS))
 

@@ -1,14 +1,14 @@
 """What a part is made of: a shape, a mesh, or values from a data sheet.
 
 Every body lives in its own part frame, in metres. Bodies with a geometry give their moments at unit density
-(mass = volume); a data sheet gives mass and inertia themselves.
+(mass = volume; of a thin body its area or length); a data sheet gives mass and inertia themselves.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
-from typing import TYPE_CHECKING, Literal, TypeAlias
+from typing import TYPE_CHECKING, ClassVar, Literal, TypeAlias
 
 import numpy as np
 
@@ -20,6 +20,7 @@ from core.moments import Moments
 from core.shapes import SHAPES, Shape
 
 if TYPE_CHECKING:
+    from core.measure import Measure
     from core.mesh import MeshAsset
     from core.placement import Triple
 
@@ -28,13 +29,18 @@ Six: TypeAlias = tuple[float, float, float, float, float, float]
 
 @dataclass(frozen=True)
 class ShapeBody:
-    """A solid made from dimensions."""
+    """A body made from dimensions."""
 
     shape: Shape
 
+    @property
+    def measure(self) -> Measure:
+        """What a mass per unit multiplies: its volume, or of a thin body its area or length."""
+        return self.shape.measure
+
     @cached_property
     def solid(self) -> Moments:
-        """Moments at unit density in the part frame; mass = volume in m³."""
+        """Moments at unit mass per measure in the part frame; mass = volume in m³, or area in m², or length in m."""
         return self.shape.moments()
 
     @cached_property
@@ -59,6 +65,7 @@ class MeshBody:
 
     asset: MeshAsset
     metres_per_unit: float
+    measure: ClassVar[Measure] = "volume"
 
     @cached_property
     def solid(self) -> Moments | None:

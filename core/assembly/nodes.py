@@ -11,7 +11,7 @@ import numpy as np
 from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, bounds_of, equal_ellipsoid
 from core.assembly.part_checks import checks_of_part
 from core.errors import EditRefused
-from core.material import ByDensity, ByMaterial, NotSet, Weighed
+from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, check_measure
 from core.moments import Moments
 from core.placement import Copies, Placement, Pose, Several
 
@@ -21,6 +21,7 @@ if TYPE_CHECKING:
     from core.arrays import FloatArray, IntArray
     from core.checks import Check
     from core.facets import Facets
+    from core.measure import Measure
 
 # A ledger of more bodies than this is refused: nested rings multiply, and nobody means ten million bolts.
 MOST_BODIES = 1_000_000
@@ -34,7 +35,7 @@ class DataSheet:
     label = "data sheet"
 
 
-Driver: TypeAlias = ByMaterial | ByDensity | Weighed | NotSet | DataSheet
+Driver: TypeAlias = ByMaterial | ByDensity | PerArea | PerLength | Weighed | NotSet | DataSheet
 
 
 @dataclass(frozen=True)
@@ -68,6 +69,8 @@ class Part:
                 "a known part takes its mass from its data sheet, and only a known part does", where=self.name,
                 remedy="Give it a material, a density or a weighed mass, or make it a known part",
             )
+        if isinstance(self.body, ShapeBody | MeshBody) and not isinstance(self.driver, DataSheet):
+            check_measure(self.driver, self.body.measure, self.name)
 
     @cached_property
     def single(self) -> Moments | None:
@@ -97,10 +100,20 @@ class Part:
         return self.body.bounds if isinstance(self.body, ShapeBody | MeshBody) else bounds_of(self.surface)
 
     @property
-    def volume(self) -> float | None:
-        """Volume of one copy in m³; None for a known part and for a mesh that bounds none."""
+    def measure(self) -> Measure | None:
+        """What a mass per unit multiplies in it; None for a known part."""
+        return self.body.measure if isinstance(self.body, ShapeBody | MeshBody) else None
+
+    @property
+    def extent(self) -> float | None:
+        """Its measure, of one copy: m³, m², m or 1; None for a known part and for a mesh that bounds no volume."""
         solid = self.body.solid if isinstance(self.body, ShapeBody | MeshBody) else None
         return None if solid is None else float(solid.mass)
+
+    @property
+    def volume(self) -> float | None:
+        """Volume of one copy in m³; None for a known part, a thin body, and a mesh that bounds none."""
+        return self.extent if self.measure == "volume" else None
 
     @property
     def basis(self) -> str:

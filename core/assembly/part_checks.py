@@ -12,15 +12,23 @@ from core.mesh.mesh_check import check_mesh
 
 if TYPE_CHECKING:
     from core.assembly.nodes import Part
+    from core.measure import Measure
+
+_WEIGHED_BY: dict[Measure, str] = {
+    "volume": "material, density or weighed mass",
+    "area": "mass per area or weighed mass",
+    "length": "mass per length or weighed mass",
+    "pieces": "weighed mass",
+}
 
 
 def checks_of_part(part: Part) -> tuple[Check, ...]:
     """Return the checks on one copy of a part, and on the mesh or the data sheet behind it."""
     checks: list[Check] = list(_entry_checks(part))
     if part.single is None:
-        if part.volume is not None:
+        if part.extent is not None and part.measure is not None:
             checks.append(
-                Check("mass", ok=False, text=f"{part.name}: no material, density or weighed mass is set, so the "
+                Check("mass", ok=False, text=f"{part.name}: no {_WEIGHED_BY[part.measure]} is set, so the "
                       "totals leave it out. Choose one on the Part page")
             )
         return tuple(checks)

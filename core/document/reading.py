@@ -26,7 +26,7 @@ from core.document.layout import data_of
 from core.document.migration import MAJOR, MINOR, Data, migrated
 from core.document.validation import checked, short_place
 from core.errors import DocumentError, MasswrightError
-from core.material import ByDensity, ByMaterial, NotSet, Weighed
+from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed
 from core.mesh import MeshAsset
 from core.placement import Copies, Mirrored, Pose, Ring, Row, Several
 from core.shapes import SHAPES, Shape
@@ -202,6 +202,10 @@ def _driver(entry: DriverEntry) -> Driver:
         return ByMaterial(entry.name, entry.density)
     if entry.kind == "density":
         return ByDensity(entry.density)
+    if entry.kind == "per area":
+        return PerArea(entry.mass_per_area)
+    if entry.kind == "per length":
+        return PerLength(entry.mass_per_length)
     if entry.kind == "weighed":
         return Weighed(entry.mass)
     return DataSheet() if entry.kind == "data sheet" else NotSet()

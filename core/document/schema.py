@@ -96,6 +96,20 @@ class DensityEntry(_Entry):
     density: Number
 
 
+class PerAreaEntry(_Entry):
+    """The mass per area of a body without thickness, kg/m²."""
+
+    kind: Literal["per area"]
+    mass_per_area: Number
+
+
+class PerLengthEntry(_Entry):
+    """The mass per length of a rod or ring, kg/m."""
+
+    kind: Literal["per length"]
+    mass_per_length: Number
+
+
 class WeighedEntry(_Entry):
     """The mass of one copy, weighed."""
 
@@ -116,7 +130,8 @@ class DataSheetEntry(_Entry):
 
 
 DriverEntry: TypeAlias = Annotated[
-    MaterialEntry | DensityEntry | WeighedEntry | NotSetEntry | DataSheetEntry, Field(discriminator="kind")
+    MaterialEntry | DensityEntry | PerAreaEntry | PerLengthEntry | WeighedEntry | NotSetEntry | DataSheetEntry,
+    Field(discriminator="kind"),
 ]
 
 

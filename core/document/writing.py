@@ -19,7 +19,7 @@ from core.assembly import (
     walk,
 )
 from core.document.migration import MAJOR, MINOR, Data
-from core.material import ByDensity, ByMaterial, Weighed
+from core.material import ByDensity, ByMaterial, PerArea, PerLength, Weighed
 from core.placement import Copies, Mirrored, Pose, Ring, Row
 
 
@@ -102,6 +102,10 @@ def _driver(driver: Driver) -> Data:
         return {"kind": "material", "name": driver.name, "density": float(driver.density)}
     if isinstance(driver, ByDensity):
         return {"kind": "density", "density": float(driver.density)}
+    if isinstance(driver, PerArea):
+        return {"kind": "per area", "mass_per_area": float(driver.mass_per_area)}
+    if isinstance(driver, PerLength):
+        return {"kind": "per length", "mass_per_length": float(driver.mass_per_length)}
     if isinstance(driver, Weighed):
         return {"kind": "weighed", "mass": float(driver.mass)}
     return {"kind": "data sheet" if isinstance(driver, DataSheet) else "not set"}

@@ -9,33 +9,47 @@ from core.shapes.cap import Hemisphere, SphericalCap
 from core.shapes.cone import Cone, Frustum, HollowFrustum
 from core.shapes.cylinder import Cylinder, Tube
 from core.shapes.ellipsoid import Ellipsoid
+from core.shapes.point import PointMass
 from core.shapes.prism import RegularPrism
 from core.shapes.pyramid import Pyramid, Tetrahedron
+from core.shapes.sheet import ThinDisc, ThinSheet
+from core.shapes.shell import ConicalShell, CylindricalShell, DomedShell, SphericalShell, ToroidalShell
 from core.shapes.sphere import HollowSphere, Sphere
 from core.shapes.spoked_wheel import SpokedWheel
 from core.shapes.toothed_wheel import ToothedWheel
 from core.shapes.torus import Torus
 from core.shapes.wedge import Wedge
+from core.shapes.wire import ThinRing, ThinRod
 
 __all__ = [
     "SHAPES",
     "Box",
     "Cone",
+    "ConicalShell",
     "Cylinder",
+    "CylindricalShell",
     "Dimension",
+    "DomedShell",
     "Ellipsoid",
     "Frustum",
     "Hemisphere",
     "HollowFrustum",
     "HollowSphere",
+    "PointMass",
     "Pyramid",
     "RegularPrism",
     "Shape",
     "Sphere",
     "SphericalCap",
+    "SphericalShell",
     "SpokedWheel",
     "Tetrahedron",
+    "ThinDisc",
+    "ThinRing",
+    "ThinRod",
+    "ThinSheet",
     "ToothedWheel",
+    "ToroidalShell",
     "Torus",
     "Tube",
     "Wedge",
