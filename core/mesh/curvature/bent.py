@@ -6,15 +6,18 @@ V = ⅓∫ r·N, ∫r = ¼∫ r (r·N), ∫r rᵀ = ⅕∫ r rᵀ (r·N), with N
 
 from __future__ import annotations
 
+from itertools import permutations
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
 
 from core.mesh.curvature.seams import CREASED, FLAT_BESIDE_ROUND, ROUND_BESIDE_FLAT
+from core.mesh.curvature.vectors import cross, dot, gathered, length
 
 if TYPE_CHECKING:
-    from core.arrays import FloatArray, IntArray
+    from core.arrays import FloatArray
     from core.mesh.curvature.bulge import Dome
+    from core.mesh.curvature.fit import Chunk
     from core.mesh.curvature.seams import Seams
     from core.mesh.curvature.surface import Surface
 
@@ -22,28 +25,26 @@ if TYPE_CHECKING:
 FARTHEST_CREASE: Final = 2.5
 
 
-def displacements(surface: Surface, seams: Seams, heights: FloatArray, chunk: IntArray) -> FloatArray:
-    """Return how far the middles of the edges of a chunk of triangles move, (n, 3, 3)."""
-    moved = np.empty((len(chunk), 3, 3))
+def displacements(surface: Surface, seams: Seams, heights: FloatArray, chunk: Chunk) -> FloatArray:
+    """Return how far the middles of the edges of a chunk of triangles move, (3 edges, 3 components, n)."""
+    moved = np.empty((3, 3, len(chunk.triangles)))
     flat_heights = heights.ravel()
-    own = surface.normals[chunk]
+    own = chunk.normals
     for k in range(3):
-        half_edges = 3 * chunk + k
+        half_edges = 3 * chunk.triangles + k
         mates = surface.mates[half_edges]
         kind = seams.kinds[half_edges]
         here, there = flat_heights[half_edges], np.where(mates >= 0, flat_heights[mates], 0.0)
-        other = surface.normals[mates // 3]
-        known = (mates >= 0) & (own != 0).any(1) & (other != 0).any(1)
+        other = gathered(surface.normals, mates // 3)
+        # A triangle without area has no normal: nothing moves beside it, nor at an edge without a mate.
+        known = (mates >= 0) & (dot(own, own) > 0) & (dot(other, other) > 0)
         between = own + other
-        length = np.sqrt(np.einsum("ni,ni->n", between, between))
-        np.divide(between, length[:, None], out=between, where=length[:, None] > 0)
-        move = 0.5 * (here + there)[:, None] * between
-        move = np.where((kind == FLAT_BESIDE_ROUND)[:, None], here[:, None] * own, move)
-        move = np.where((kind == ROUND_BESIDE_FLAT)[:, None], there[:, None] * other, move)
-        crease = (kind == CREASED) & known
-        move[crease] = _meeting(own[crease], other[crease], here[crease], there[crease], move[crease])
-        move[~known] = 0.0
-        moved[:, k] = move
+        move = between * (0.5 * (here + there) / np.maximum(length(between), 1e-300))
+        move = np.where(kind == FLAT_BESIDE_ROUND, here * own, move)
+        move = np.where(kind == ROUND_BESIDE_FLAT, there * other, move)
+        crease = np.flatnonzero((kind == CREASED) & known & ((here != 0) | (there != 0)))
+        move[:, crease] = _meeting(own[:, crease], other[:, crease], here[crease], there[crease], move[:, crease])
+        moved[k] = move * known
     return moved
 
 
@@ -51,73 +52,87 @@ def _meeting(
     own: FloatArray, other: FloatArray, here: FloatArray, there: FloatArray, between: FloatArray
 ) -> FloatArray:
     """Return where two surfaces meet that stand here and there above two planes: n₁·v = z₁, n₂·v = z₂."""
-    cosine = np.einsum("ni,ni->n", own, other)
+    cosine = dot(own, other)
     sine_squared = np.maximum(1 - cosine**2, 1e-12)
     a, b = (here - cosine * there) / sine_squared, (there - cosine * here) / sine_squared
-    move = a[:, None] * own + b[:, None] * other
+    move = a * own + b * other
     reach = FARTHEST_CREASE * np.maximum(np.abs(here), np.abs(there))
-    near = np.einsum("ni,ni->n", move, move) <= reach**2
-    return np.where(near[:, None], move, between)
+    return np.where(dot(move, move) <= reach**2, move, between)
 
 
-def flat_sums(corners: FloatArray) -> tuple[float, FloatArray, FloatArray]:
-    """Return V, ∫r and ∫r rᵀ of the cones from the origin to flat triangles; corners (n, 3, 3)."""
-    a, b, c = corners.transpose(1, 2, 0)
+def flat_sums(corners: list[FloatArray]) -> tuple[float, FloatArray, FloatArray]:
+    """Return V, ∫r and ∫r rᵀ of the cones from the origin to flat triangles; corners three times (3, n)."""
+    a, b, c = corners
     s = a + b + c
-    flux = _triple(a, b, c)
-    second = sum(((flux * p) @ p.T for p in (a, b, c, s)), np.zeros((3, 3)))
+    flux = dot(a, cross(b, c))
+    second = sum((_products(flux * p, p) for p in (a, b, c, s)), np.zeros((3, 3)))
     return float(flux.sum()) / 6, (s * flux).sum(axis=1) / 24, second / 120
 
 
+def _products(a: FloatArray, b: FloatArray) -> FloatArray:
+    """Return Σ a bᵀ (3, 3) where that is symmetric: six long dot products, faster than one matrix product."""
+    found = np.empty((3, 3))
+    for i in range(3):
+        for j in range(i + 1):
+            found[i, j] = found[j, i] = np.dot(a[i], b[j])
+    return found
+
+
 def _rule() -> tuple[FloatArray, FloatArray]:
-    """Return barycentric nodes (16, 3) and weights (16,) on a triangle of area 1/2, exact to degree 6."""
-    nodes, weights = np.polynomial.legendre.leggauss(4)
-    nodes, weights = 0.5 * (nodes + 1), 0.5 * weights
-    u = np.repeat(nodes, 4)
-    v = np.tile(nodes, 4) * (1 - u)
-    return np.stack([1 - u - v, u, v], axis=1), np.repeat(weights, 4) * np.tile(weights, 4) * (1 - u)
+    """Return barycentric nodes (12, 3) and weights (12,) on a triangle of area 1/2, exact to degree 6.
+
+    Dunavant 1985, "High degree efficient symmetrical Gaussian quadrature rules for the triangle" (from memory; the
+    tests integrate all monomials up to that degree).
+    """
+    nodes, weights = [], []
+    for weight, a, b in (
+        (0.116786275726379, 0.249286745170910, 0.249286745170910),
+        (0.050844906370207, 0.063089014491502, 0.063089014491502),
+        (0.082851075618374, 0.053145049844817, 0.310352451033784),
+    ):
+        orbit = sorted(set(permutations((a, b, 1 - a - b))))
+        nodes.extend(orbit)
+        weights.extend([0.5 * weight] * len(orbit))
+    return np.array(nodes), np.array(weights)
 
 
-def bent_sums(corners: FloatArray, moved: FloatArray) -> tuple[float, FloatArray, FloatArray]:
-    """Return V, ∫r and ∫r rᵀ of the cones from the origin to bent triangles; corners and moved (n, 3, 3)."""
+def bent_sums(corners: list[FloatArray], moved: FloatArray) -> tuple[float, FloatArray, FloatArray]:
+    """Return V, ∫r and ∫r rᵀ of the cones from the origin to bent triangles.
+
+    corners three times (3, n); moved (3, 3, n) as displacements() gives it.
+    """
     volume, first, second = 0.0, np.zeros(3), np.zeros((3, 3))
-    a = np.ascontiguousarray(corners.transpose(1, 2, 0))
-    d = np.ascontiguousarray(4 * moved.transpose(1, 2, 0))
-    side_u, side_v = a[1] - a[0], a[2] - a[0]
+    a, b, c = corners
+    d = 4 * moved
+    side_u, side_v = b - a, c - a
     for (p, u, v), weight in zip(*_rule(), strict=True):
-        r = p * a[0] + u * a[1] + v * a[2] + (u * v) * d[0] + (v * p) * d[1] + (p * u) * d[2]
-        along_u = side_u + v * d[0] - v * d[1] + (p - u) * d[2]
-        along_v = side_v + u * d[0] + (p - v) * d[1] - u * d[2]
-        flux = weight * _triple(r, along_u, along_v)
+        r = p * a + u * b + v * c + (u * v) * d[0] + (v * p) * d[1] + (p * u) * d[2]
+        along_u = side_u + v * (d[0] - d[1]) + (p - u) * d[2]
+        along_v = side_v + u * (d[0] - d[2]) + (p - v) * d[1]
+        flux = weight * dot(r, cross(along_u, along_v))
         volume += float(flux.sum()) / 3
         weighted = r * flux
         first += weighted.sum(axis=1) / 4
-        second += weighted @ r.T / 5
+        second += _products(weighted, r) / 5
     return volume, first, second
 
 
-def dome_sums(corners: FloatArray, dome: Dome, heights: FloatArray) -> tuple[float, FloatArray, FloatArray]:
+def dome_sums(corners: list[FloatArray], dome: Dome, heights: FloatArray) -> tuple[float, FloatArray, FloatArray]:
     """Return V, ∫r and ∫r rᵀ of what lies between tapered surfaces z = q/ω and the quadratic ones over triangles.
 
-    corners (n, 3, 3); heights (n, 3) over the middles of the edges.
+    corners three times (3, n); heights (3, n) over the middles of the edges.
     """
     volume, first, second = 0.0, np.zeros(3), np.zeros((3, 3))
-    a = np.ascontiguousarray(corners.transpose(1, 2, 0))
-    quadratics = [0.5 * (dome.omegas[(k + 1) % 3] + dome.omegas[(k + 2) % 3]) * heights[:, k] for k in range(3)]
-    normal = np.cross(a[1] - a[0], a[2] - a[0], axis=0)
+    a, b, c = corners
+    tapered = [0.5 * (dome.omegas[(k + 1) % 3] + dome.omegas[(k + 2) % 3]) * heights[k] for k in range(3)]
+    area = 4 * length(cross(b - a, c - a))
     for (p, u, v), weight in zip(*_rule(), strict=True):
-        tapered = u * v * quadratics[0] + v * p * quadratics[1] + p * u * quadratics[2]
-        quadratic = u * v * heights[:, 0] + v * p * heights[:, 1] + p * u * heights[:, 2]
+        quadratic = u * v * heights[0] + v * p * heights[1] + p * u * heights[2]
+        raised = u * v * tapered[0] + v * p * tapered[1] + p * u * tapered[2]
         omega = p * dome.omegas[0] + u * dome.omegas[1] + v * dome.omegas[2]
-        thick = 4 * weight * np.sqrt(np.einsum("in,in->n", normal, normal)) * (tapered / omega - quadratic)
-        r = p * a[0] + u * a[1] + v * a[2]
+        thick = weight * area * (raised / omega - quadratic)
+        r = p * a + u * b + v * c
         volume += float(thick.sum())
-        first += r @ thick
-        second += (r * thick) @ r.T
+        first += (r * thick).sum(axis=1)
+        second += _products(r * thick, r)
     return volume, first, second
-
-
-def _triple(r: FloatArray, u: FloatArray, v: FloatArray) -> FloatArray:
-    return np.asarray(
-        r[0] * (u[1] * v[2] - u[2] * v[1]) + r[1] * (u[2] * v[0] - u[0] * v[2]) + r[2] * (u[0] * v[1] - u[1] * v[0])
-    )

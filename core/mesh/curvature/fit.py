@@ -75,6 +75,15 @@ def chunk_of(surface: Surface, triangles: IntArray) -> Chunk:
                  2 * surface.areas[triangles])
 
 
+def part_of(chunk: Chunk, which: BoolArray) -> Chunk:
+    """Return those triangles of the chunk for which which (n,) is true."""
+    return Chunk(
+        chunk.triangles[which], chunk.patches[which], [corner.compress(which, axis=1) for corner in chunk.corners],
+        [edge.compress(which, axis=1) for edge in chunk.edges], chunk.normals.compress(which, axis=1),
+        chunk.double_area[which],
+    )
+
+
 def fitted(surface: Surface, forms: PatchForms, seams: Seams, curved: IntArray, progress: Progress) -> Fit:
     """Return the shape operators of all patches; curved (c,) are the triangles to fit, sorted by patch.
 

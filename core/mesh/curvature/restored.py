@@ -10,15 +10,15 @@ import numpy as np
 from core.errors import ValueRefused
 from core.mesh.curvature.bent import bent_sums, displacements, dome_sums, flat_sums
 from core.mesh.curvature.bulge import Bulges, bulges
+from core.mesh.curvature.fit import CHUNK, Chunk, chunk_of, part_of
 from core.mesh.curvature.seams import CREASED, FLAT_BESIDE_ROUND, ROUND_BESIDE_FLAT, Seams, classify
 from core.mesh.curvature.surface import Surface, patch_forms, survey
+from core.mesh.curvature.vectors import dot, gathered
 from core.moments import Moments
 from core.progress import Progress
 
 if TYPE_CHECKING:
     from core.arrays import ArrayLike, FloatArray, IntArray
-
-CHUNK: Final = 8_000
 
 # What may be left of a facet's own correction: a share for its turn squared (the next term of the series; the largest
 # factor met on bodies with exact values is 0.6), a floor for the weak pulls in the fit and a share of what its edges'
@@ -170,53 +170,56 @@ def _summed(surface: Surface, seams: Seams, found: Bulges, progress: Progress) -
     flat, more = _Sums(), _Sums()
     doubts, places = [], []
     for start in range(0, len(surface.corners), CHUNK):
-        chunk = np.arange(start, min(start + CHUNK, len(surface.corners)))
-        corners = surface.points[surface.corners[chunk]] - reference
-        flat.add(flat_sums(corners))
+        chunk = chunk_of(surface, np.arange(start, min(start + CHUNK, len(surface.corners))))
+        flat.add(flat_sums(_seen_from(reference, chunk)))
         moved = displacements(surface, seams, found.heights, chunk)
-        count, bent = len(chunk), (moved != 0).any(axis=(1, 2))
-        chunk, corners, moved = chunk[bent], corners[bent], moved[bent]
-        if len(chunk):
+        bent = (moved != 0).any(axis=(0, 1))
+        progress.advance(len(bent))
+        if not bent.all():
+            chunk, moved = part_of(chunk, bent), moved.compress(bent, axis=2)
+        if len(chunk.triangles):
+            corners = _seen_from(reference, chunk)
             more.add(bent_sums(corners, moved))
             more.add(flat_sums(corners), -1.0)
             doubts.append(_doubts(surface, seams, found, chunk, moved))
-            places.append(corners.mean(axis=1))
-        progress.advance(count)
+            places.append((corners[0] + corners[1] + corners[2]) / 3)
     if flat.volume == 0:
         raise ValueRefused("the mesh encloses no volume", remedy="Check that it is closed and wound one way")
     faceted = flat.moments(reference)
     if not doubts:
         return Restored(faceted, faceted, Left(0.0, 0.0), 0, 0, _kept_sharp(surface, seams))
     for dome in found.domes:
-        corners = surface.points[surface.corners[dome.triangles]] - reference
-        more.add(dome_sums(corners, dome, found.heights[dome.triangles]))
+        corners = _seen_from(reference, chunk_of(surface, dome.triangles))
+        more.add(dome_sums(corners, dome, gathered(found.heights, dome.triangles)))
     flat.add((more.volume, more.first, more.second))
     moments = flat.moments(reference)
-    left = _left(moments, reference, np.concatenate(doubts), np.concatenate(places))
+    left = _left(moments, reference, np.concatenate(doubts), np.concatenate(places, axis=1))
     smooth = seams.peers | (seams.kinds == ROUND_BESIDE_FLAT) | (seams.kinds == FLAT_BESIDE_ROUND)
     return Restored(moments, faceted, left, sum(map(len, doubts)), int(smooth.sum()) // 2, _kept_sharp(surface, seams))
 
 
-def _doubts(
-    surface: Surface, seams: Seams, found: Bulges, chunk: IntArray, moved: FloatArray
-) -> FloatArray:
+def _seen_from(reference: FloatArray, chunk: Chunk) -> list[FloatArray]:
+    return [corner - reference[:, None] for corner in chunk.corners]
+
+
+def _doubts(surface: Surface, seams: Seams, found: Bulges, chunk: Chunk, moved: FloatArray) -> FloatArray:
     """Return how much of what each triangle's bend adds to the volume may be wrong (n,)."""
-    third = surface.areas[chunk] / 3
-    shift = third * np.einsum("nki,ni->n", moved, surface.normals[chunk])
-    half_edges = 3 * chunk[:, None] + np.arange(3)
-    smooth = seams.kinds[half_edges] != CREASED
-    turn = (np.abs(surface.turns[half_edges]) * smooth).max(axis=1)
-    across = surface.mates[half_edges]
-    dispute = np.abs(found.heights[chunk] - found.heights[across // 3, across % 3]) * seams.peers[half_edges]
+    shift, turn, dispute = np.zeros((3, len(chunk.triangles)))
+    heights = found.heights.ravel()
+    for k in range(3):
+        half_edges = 3 * chunk.triangles + k
+        smooth, peers = seams.kinds[half_edges] != CREASED, seams.peers[half_edges]
+        shift += dot(moved[k], chunk.normals)
+        np.maximum(turn, np.abs(surface.turns[half_edges]) * smooth, out=turn)
+        dispute += np.abs(heights[half_edges] - heights[surface.mates[half_edges]]) * peers
     prism = np.clip((turn - DOUBT_FROM) / (DOUBT_FULL - DOUBT_FROM), 0, 1)
     share = np.maximum(LEFT_FLOOR + LEFT_PER_TURN_SQUARED * turn**2, prism)
-    disputed: FloatArray = LEFT_OF_DISPUTE * third * dispute.sum(axis=1) / 2
-    return np.asarray(np.abs(shift) * share + disputed)
+    return np.asarray((np.abs(shift) * share + 0.5 * LEFT_OF_DISPUTE * dispute) * chunk.double_area / 6)
 
 
 def _left(moments: Moments, reference: FloatArray, doubts: FloatArray, places: FloatArray) -> Left:
-    lever = places - (moments.centre - reference)
-    second = float(doubts @ np.einsum("ni,ni->n", lever, lever))
+    lever = places - (moments.centre - reference)[:, None]
+    second = float(doubts @ dot(lever, lever))
     return Left(float(doubts.sum() / abs(moments.mass)), second / abs(float(np.trace(moments.spread))))
 
 

@@ -70,15 +70,12 @@ class Seams:
     Attributes:
         kinds: (3m,) one of CREASED, CORNER, STRIP and so on, for every half-edge.
         slopes: (3m,) rad, the part of the edge's turn that lies on the triangle's own side, where it is known.
+        peers: (3m,) which half-edges run across one smooth round.
     """
 
     kinds: NDArray[np.int8]
     slopes: FloatArray
-
-    @property
-    def peers(self) -> BoolArray:
-        """Which half-edges run across one smooth round."""
-        return np.asarray((self.kinds == CORNER) | (self.kinds == STRIP))
+    peers: BoolArray
 
 
 @dataclass(frozen=True, eq=False)
@@ -132,7 +129,7 @@ def classify(surface: Surface, forms: PatchForms) -> Seams:
     kinds[surface.coplanar] = COPLANAR
     rim = _rim(surface, forms)
     if not rim.smooth.any():
-        return Seams(kinds, slopes)
+        return Seams(kinds, slopes, np.zeros(len(kinds), dtype=bool))
     ok, flat_beyond = _spoken_for(surface, rim)
     mate = rim.mate
     believed = rim.smooth & (ok | ok[mate] | _among_lone(surface, rim))
@@ -145,7 +142,7 @@ def classify(surface: Surface, forms: PatchForms) -> Seams:
     both = np.maximum(rim.width + rim.width_beyond, 1e-300)
     share = np.where(found == STRIP, rim.width / both, found == ROUND_BESIDE_FLAT)
     slopes[rim.half_edges] = rim.turn * share
-    return Seams(kinds, slopes)
+    return Seams(kinds, slopes, (kinds == CORNER) | (kinds == STRIP))
 
 
 def _rim(surface: Surface, forms: PatchForms) -> _Rim:
@@ -240,7 +237,7 @@ def _look_across(
     """Add to the sums of the rim edges at what the step-th next one of the same patch says."""
     other = rim.first[at] + (at - rim.first[at] + step) % rim.count[at]
     apart = rim.beyond[other] != rim.beyond[at]
-    facing = np.maximum(-dot(rim.out[:, at], rim.out[:, other]), 0.0) * apart
+    facing = np.maximum(-dot(rim.out.take(at, axis=1), rim.out.take(other, axis=1)), 0.0) * apart
     facing[facing < OBLIQUE] = 0.0
     weight = facing**2 * rim.length[other]
     sums[0, at] += weight

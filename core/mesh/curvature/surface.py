@@ -22,6 +22,9 @@ COPLANAR = 2.0**-22
 # grid in at most four corners.
 FLAT_CORNERS = 5
 
+# Edges that are looked at together: they stay in the processor's cache.
+CHUNK = 8_000
+
 
 @dataclass(frozen=True, eq=False)
 class Surface:
@@ -100,20 +103,18 @@ def _turns(
     one = one[one < mates[one]]
     two = mates[one]
     apexes = corners.ravel()
-    for start in range(0, len(one), 200_000):
-        a, b = one[start : start + 200_000], two[start : start + 200_000]
-        normal_a, normal_b = normals[a // 3], normals[b // 3]
-        reach = points[apexes[b]] - points[apexes[a // 3 * 3 + (a + 1) % 3]]
-        back = points[apexes[a]] - points[apexes[a // 3 * 3 + (a + 1) % 3]]
-        above_a, above_b = np.einsum("ni,ni->n", reach, normal_a), np.einsum("ni,ni->n", back, normal_b)
-        cosine = np.einsum("ni,ni->n", normal_a, normal_b)
-        across = np.cross(normal_a, normal_b)
-        angle = np.arctan2(np.sqrt(np.einsum("ni,ni->n", across, across)), cosine)
+    for start in range(0, len(one), CHUNK):
+        a, b = one[start : start + CHUNK], two[start : start + CHUNK]
+        normal_a, normal_b = gathered(normals, a // 3), gathered(normals, b // 3)
+        foot = gathered(points, apexes[a // 3 * 3 + (a + 1) % 3])
+        above_a = dot(gathered(points, apexes[b]) - foot, normal_a)
+        above_b = dot(gathered(points, apexes[a]) - foot, normal_b)
+        cosine = dot(normal_a, normal_b)
+        angle = np.arctan2(length(cross(normal_a, normal_b)), cosine)
         turns[a] = turns[b] = np.where(above_a <= 0, angle, -angle)
-        proper = (normal_a != 0).any(1) & (normal_b != 0).any(1)
-        coplanar[a] = coplanar[b] = (
-            (np.abs(above_a) <= tolerance) & (np.abs(above_b) <= tolerance) & (cosine > 0) & proper
-        )
+        near = (np.abs(above_a) <= tolerance) & (np.abs(above_b) <= tolerance)
+        # A triangle without area has no normal, and so a cosine of 0.
+        coplanar[a] = coplanar[b] = near & (cosine > 0)
     return turns, coplanar
 
 
@@ -193,17 +194,16 @@ def patch_forms(surface: Surface) -> PatchForms:
     area = np.bincount(patches, weights=surface.areas, minlength=count)
     area[area == 0] = 1.0
     start = surface.points[surface.corners[0, 0]]
-    a, b, c = (surface.points[surface.corners[:, k]] - start for k in range(3))
-    middle = (a + b + c) / 3
-    centroids = np.stack([np.bincount(patches, surface.areas * middle[:, i], count) / area for i in range(3)], 1)
-    own = centroids[patches]
-    a -= own
-    b -= own
-    c -= own
-    s = a + b + c
-    spreads = np.empty((count, 6))
+    a, b, c = (gathered(surface.points, surface.corners[:, k]) - start[:, None] for k in range(3))
+    centroids, spreads = np.empty((count, 3)), np.empty((count, 6))
+    for i in range(3):
+        weight = surface.areas * (a[i] + b[i] + c[i]) / 3
+        centroids[:, i] = np.bincount(patches, weight, count) / area
+    own = gathered(centroids, patches)
+    a, b, c = a - own, b - own, c - own
+    s = np.add(np.add(a, b, out=own), c, out=own)
     for column, (i, j) in enumerate(PAIRS):
-        moment = (a[:, i] * a[:, j] + b[:, i] * b[:, j] + c[:, i] * c[:, j] + s[:, i] * s[:, j]) / 12
+        moment = (a[i] * a[j] + b[i] * b[j] + c[i] * c[j] + s[i] * s[j]) / 12
         spreads[:, column] = np.bincount(patches, surface.areas * moment, count) / area
     centroids += start
     return PatchForms(centroids, spreads)
