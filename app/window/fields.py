@@ -55,6 +55,7 @@ class QuantityField(QWidget):
         self._value: float | None = None
         self._typed = ""
         self._before: tuple[float | None, str] = (None, "")
+        self._entered = ""
         self.line = QLineEdit()
         self.line.setAccessibleName(label)
         self.line.setFixedWidth(width)
@@ -104,9 +105,8 @@ class QuantityField(QWidget):
 
     def turn_down(self, sentence: str) -> None:
         """Say in place why the text that was just entered is not taken; it stays to be mended, the old value counts."""
-        entered = self._typed or self._plain()
         self._value, self._typed = self._before
-        self.line.setText(entered)
+        self.line.setText(self._entered)
         self.line.setModified(True)
         self.understood.setText("")
         self.refuse(sentence)
@@ -165,7 +165,7 @@ class QuantityField(QWidget):
         understood = self.read()
         if understood is not None:
             self.line.setModified(False)
-            self._before = (self._value, self._typed)
+            self._before, self._entered = (self._value, self._typed), understood.text
             self._value, self._typed = understood.value, kept_text(understood.text)
             self._show()
             if (self._value, self._typed) != self._before:

@@ -19,9 +19,6 @@ class FormDialog(QDialog):
         buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel)
         self.take_button = buttons.button(QDialogButtonBox.StandardButton.Ok)
         self.take_button.setText(take)
-        # Return takes or does nothing; it never leaves the dialog.
-        self.take_button.setDefault(True)
-        buttons.button(QDialogButtonBox.StandardButton.Cancel).setAutoDefault(False)
         buttons.accepted.connect(self.take)
         buttons.rejected.connect(self.reject)
         self._layout = QVBoxLayout(self)
@@ -31,6 +28,9 @@ class FormDialog(QDialog):
         self._layout.setSizeConstraint(QLayout.SizeConstraint.SetMinimumSize)
         self._layout.addWidget(self.wrong)
         self._layout.addWidget(buttons)
+        # Return takes or does nothing; it never leaves the dialog.
+        self.take_button.setDefault(True)
+        buttons.button(QDialogButtonBox.StandardButton.Cancel).setAutoDefault(False)
         self._layout.addSpacerItem(QSpacerItem(width, 0, QSizePolicy.Policy.Minimum, QSizePolicy.Policy.Fixed))
 
     def stack(self, *widgets: QWidget) -> None:
