@@ -6,6 +6,7 @@ Turns are about the fixed axes of the outer frame, x first, then y, then z: R = 
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from typing import ClassVar, TypeAlias
 
@@ -85,15 +86,21 @@ class Placement:
 def turn_about(direction: ArrayLike, angle: ArrayLike) -> FloatArray:
     """Return the rotation matrices (..., 3, 3) about direction (3,) by angles (...) rad (Rodrigues' formula)."""
     unit, angles = unit_vector(direction), np.asarray(angle, dtype=float)[..., None, None]
-    cross = np.cross(np.eye(3), unit)
+    x, y, z = unit
+    cross = np.array([[0.0, -z, y], [z, 0.0, -x], [-y, x, 0.0]])
     return np.asarray(np.eye(3) + np.sin(angles) * cross + (1 - np.cos(angles)) * (cross @ cross))
 
 
 def matrix_of_turns(turns: ArrayLike) -> FloatArray:
     """Return Rz·Ry·Rx (3, 3) for turns (3,) rad about the fixed axes x, then y, then z."""
-    angles = np.asarray(turns, dtype=float)
-    about_x, about_y, about_z = (turn_about(axis, angle) for axis, angle in zip(np.eye(3), angles, strict=True))
-    return np.asarray(about_z @ about_y @ about_x)
+    x, y, z = (float(angle) for angle in np.asarray(turns, dtype=float))
+    cx, sx, cy, sy, cz, sz = math.cos(x), math.sin(x), math.cos(y), math.sin(y), math.cos(z), math.sin(z)
+    # Written out: a document of 10,000 parts asks for as many of them at once.
+    return np.array([
+        [cz * cy, cz * sy * sx - sz * cx, cz * sy * cx + sz * sx],
+        [sz * cy, sz * sy * sx + cz * cx, sz * sy * cx - cz * sx],
+        [-sy, cy * sx, cy * cx],
+    ])
 
 
 def turns_of_matrix(turn: ArrayLike) -> Triple:

@@ -7,7 +7,7 @@ from functools import cached_property
 from typing import TYPE_CHECKING
 
 from core.arrays import FloatArray, frozen
-from core.assembly.nodes import MOST_BODIES, Group, Node, Part, Table, joined, walk
+from core.assembly.nodes import MOST_BODIES, Group, Node, Part, Table, table_of, walk
 from core.errors import EditRefused
 from core.moments import Moments, unit_vector
 
@@ -92,7 +92,7 @@ class Assembly:
     @cached_property
     def table(self) -> Table:
         """Every body as a row, in the document frame."""
-        return joined([node.table for node in self.members])
+        return table_of(self.members)
 
     @cached_property
     def total(self) -> Moments:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
+from itertools import groupby
 from typing import TYPE_CHECKING, TypeAlias
 
 import numpy as np
@@ -130,10 +131,7 @@ class Part:
     @cached_property
     def table(self) -> Table:
         """Its copies as rows, in the frame of the group that holds it."""
-        count = self.copies.count
-        own = self.single or Moments.nothing()
-        batch = Moments(np.full(count, own.mass), np.tile(own.centre, (count, 1)), np.tile(own.spread, (count, 1, 1)))
-        return Table((self,), np.zeros(count, dtype=np.int64), self.standing, self.standing.place(batch))
+        return _table_of_parts((self,))
 
 
 @dataclass(frozen=True)
@@ -156,7 +154,7 @@ class Group:
     @cached_property
     def table(self) -> Table:
         """Everything in it as rows, in the frame of the group that holds it."""
-        return joined([member.table for member in self.members]).repeated(self.copies.placements(self.pose.placement))
+        return table_of(self.members).repeated(self.copies.placements(self.pose.placement))
 
 
 Node: TypeAlias = Part | Group
@@ -196,7 +194,34 @@ class Table:
         return Table(self.parts, np.tile(self.owner, times), wide @ inner, wide.place(batch))
 
 
-def joined(tables: list[Table]) -> Table:
+def table_of(members: tuple[Node, ...]) -> Table:
+    """Return everything in nodes that stand in the same frame as rows in that frame."""
+    tables: list[Table] = []
+    for _, run in groupby(members, key=type):
+        nodes = tuple(run)
+        parts = tuple(node for node in nodes if isinstance(node, Part))
+        tables += [_table_of_parts(parts)] if parts else [node.table for node in nodes]
+    return _joined(tables)
+
+
+def _table_of_parts(parts: tuple[Part, ...]) -> Table:
+    """Return the copies of all the parts as rows; placed together, which for many parts takes far less time."""
+    nothing = Moments.nothing()
+    owner = np.repeat(np.arange(len(parts)), [part.copies.count for part in parts])
+    singles = [nothing if part.single is None else part.single for part in parts]
+    standing = Placement(
+        np.concatenate([part.standing.turn for part in parts]),
+        np.concatenate([part.standing.shift for part in parts]),
+    )
+    batch = Moments(
+        np.array([single.mass for single in singles])[owner],
+        np.array([single.centre for single in singles])[owner],
+        np.array([single.spread for single in singles])[owner],
+    )
+    return Table(parts, owner, standing, standing.place(batch))
+
+
+def _joined(tables: list[Table]) -> Table:
     """Return the tables one under the other; they stand in the same frame."""
     if not tables:
         nothing = Moments(np.zeros(0), np.zeros((0, 3)), np.zeros((0, 3, 3)))

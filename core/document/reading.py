@@ -38,6 +38,7 @@ if TYPE_CHECKING:
         AxisEntry,
         BodyEntry,
         CopiesEntry,
+        DocumentEntry,
         DriverEntry,
         NodeEntry,
         PoseEntry,
@@ -94,7 +95,9 @@ def _read(file: IO[bytes], name: str) -> Assembly:
     try:
         archive = Archive(file)
         data = migrated(data_of(archive.json()))
-        return _Builder(archive, data).assembly()
+        document = checked(data, _REMEDY_NEWER if _is_newer(data) else _REMEDY)
+        del data  # as large as what is built from it, and not needed for that
+        return _Builder(archive).assembly(document)
     except DocumentError as error:
         # Everything below knows the place in the file, and only here is the file's own name known.
         where = f"{name}, {error.where}" if error.where else name
@@ -104,15 +107,13 @@ def _read(file: IO[bytes], name: str) -> Assembly:
 class _Builder:
     """Makes the assembly from checked entries; parts share equal meshes and equal shapes."""
 
-    def __init__(self, archive: Archive, data: Data) -> None:
+    def __init__(self, archive: Archive) -> None:
         self._archive = archive
-        self._data = data
         self._assets: dict[tuple[str, str], MeshAsset] = {}
         self._shapes: dict[tuple[str, tuple[tuple[str, float], ...]], ShapeBody] = {}
 
-    def assembly(self) -> Assembly:
-        """Return the assembly."""
-        document = checked(self._data, _REMEDY_NEWER if _is_newer(self._data) else _REMEDY)
+    def assembly(self, document: DocumentEntry) -> Assembly:
+        """Return the assembly that the checked entries describe."""
         axes = tuple(_axis(entry, f"axes[{i}] ({entry.name})") for i, entry in enumerate(document.axes))
         members = self._nodes(document.members, "", 0)
         return _made("", lambda: Assembly(document.name, members, axes, document.drive))

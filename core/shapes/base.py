@@ -112,7 +112,7 @@ class Shape(ABC):
                 good &= value <= dimension.most
             if dimension.kind == "count":
                 good &= value == np.round(value)
-            if not np.all(good):
+            if not good.all():
                 (bad,) = first_where(~good, value)
                 raise ShapeError(
                     f"the {dimension.label} has to be {_limit(dimension)}",
@@ -202,13 +202,13 @@ def upright_moments(
         centre_height: (...) m, z of the centre of mass.
         mean_squares: three of (...) m², the means of x², y² and (z − centre height)² over the body.
     """
-    size, height, *squares = np.broadcast_arrays(measure, centre_height, *mean_squares)
-    centre = np.zeros((*np.shape(size), 3))
-    centre[..., 2] = height
-    spread = np.zeros((*np.shape(size), 3, 3))
-    for axis, square in enumerate(squares):
-        np.multiply(size, square, out=spread[..., axis, axis])
-    return Moments(size, centre, spread)
+    batch = np.broadcast(measure, centre_height, *mean_squares).shape
+    centre = np.zeros((*batch, 3))
+    centre[..., 2] = centre_height
+    spread = np.zeros((*batch, 3, 3))
+    for axis, square in enumerate(mean_squares):
+        np.multiply(measure, square, out=spread[..., axis, axis])
+    return Moments(np.broadcast_to(measure, batch) if batch else measure, centre, spread)
 
 
 def said(value: float, kind: DimensionKind = "length") -> str:
