@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from contextlib import suppress
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from core.assembly import Assembly, DataSheet, Driver, Group, Part
 from core.errors import EditRefused, QuantityError
-from core.material import ByDensity, ByMaterial, NotSet, Weighed, material
+from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, material
 from core.placement import Mirrored
 from core.quantity import UNITS, Kind, UnitSet, parse
 
@@ -46,7 +47,7 @@ def counted(key: str, text: str) -> Callable[[Assembly], Assembly]:
 
 
 def made_of(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assembly]:
-    """Return the edit that sets what says a part's mass: a material's name, a density, or a weighed mass."""
+    """Return the edit that sets what says a part's mass: a material, a density, a mass per area or length, a mass."""
 
     def change(assembly: Assembly) -> Assembly:
         part = _part(assembly, key)
@@ -75,7 +76,9 @@ def weighing(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assemb
 
 
 def driver_of(text: str, units: UnitSet, where: str) -> Driver:
-    """Return what says a mass: text that starts with a number is a density or a weighed mass, other text a material.
+    """Return what says a mass: of text that starts with a number its unit tells which, other text is a material.
+
+    A bare number is a weighed mass.
 
     Raises:
         MaterialError, QuantityError: neither.
@@ -90,13 +93,21 @@ def driver_of(text: str, units: UnitSet, where: str) -> Driver:
     try:
         return Weighed(parse(words, Kind.MASS, units[Kind.MASS]).value)
     except QuantityError as not_a_mass:
-        try:
-            return ByDensity(parse(words, Kind.DENSITY, UNITS["kg/m³"]).value)
-        except QuantityError:
-            raise QuantityError(
-                "this is no material, density or mass", where=where, read=f'"{text}"',
-                remedy='Type a material\'s name, a density like "7850 kg/m³", or a weighed mass like "1.2 kg"',
-            ) from not_a_mass
+        for kind, unit, driver in _MASS_PER:
+            with suppress(QuantityError):
+                return driver(parse(words, kind, UNITS[unit]).value)
+        raise QuantityError(
+            "this is no material, density or mass", where=where, read=f'"{text}"',
+            remedy='Type a material\'s name, a density like "7850 kg/m³", a weighed mass like "1.2 kg", or of a thin '
+            'body its mass per area or length like "12 kg/m²" or "0.8 kg/m"',
+        ) from not_a_mass
+
+
+_MASS_PER: tuple[tuple[Kind, str, type[ByDensity | PerArea | PerLength]], ...] = (
+    (Kind.DENSITY, "kg/m³", ByDensity),
+    (Kind.AREA_DENSITY, "kg/m²", PerArea),
+    (Kind.LINEAR_DENSITY, "kg/m", PerLength),
+)
 
 
 def _part(assembly: Assembly, key: str) -> Part:

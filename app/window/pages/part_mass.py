@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
-from typing import TYPE_CHECKING
+from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING, TypeAlias
 
 from PySide6.QtCore import Qt
 
@@ -12,18 +12,62 @@ from app.window.numbers import shown
 from app.window.pages.section import Section, typed_for
 from core.assembly import Driver, Node, Part
 from core.errors import EditRefused
-from core.material import MATERIALS, ByDensity, ByMaterial, NotSet, Weighed, material
+from core.material import MATERIALS, ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, material
 from core.quantity import Kind
 
 if TYPE_CHECKING:
-    from app.window.session import Session
+    from PySide6.QtWidgets import QWidget
 
-DRIVERS: list[tuple[str, object]] = [
-    ("not set yet", NotSet),
-    ("a material", ByMaterial),
-    ("a density", ByDensity),
-    ("a weighed mass", Weighed),
-]
+    from app.window.session import Session
+    from core.measure import Measure
+
+Numbered: TypeAlias = ByDensity | PerArea | PerLength | Weighed
+
+# What can say the mass of a body, by what the body has; a point mass has nothing to multiply.
+DRIVERS: dict[Measure, list[tuple[str, object]]] = {
+    "volume": [
+        ("not set yet", NotSet), ("a material", ByMaterial), ("a density", ByDensity), ("a weighed mass", Weighed),
+    ],
+    "area": [("not set yet", NotSet), ("a mass per area", PerArea), ("a weighed mass", Weighed)],
+    "length": [("not set yet", NotSet), ("a mass per length", PerLength), ("a weighed mass", Weighed)],
+    "pieces": [("not set yet", NotSet), ("a weighed mass", Weighed)],
+}
+
+
+@dataclass(frozen=True)
+class Entry:
+    """A number that says the mass.
+
+    Attributes:
+        kind: what it measures.
+        label, spoken, words: before its field, as a screen reader says it, and in the name of an edit.
+        path: under which the text as typed is kept.
+        attribute: of the driver.
+
+    """
+
+    kind: Kind
+    label: str
+    spoken: str
+    words: str
+    path: str
+    attribute: str
+
+
+ENTRIES: dict[type[Numbered], Entry] = {
+    ByDensity: Entry(Kind.DENSITY, "density ρ", "density", "Density", "density", "density"),
+    PerArea: Entry(Kind.AREA_DENSITY, "mass per area", "mass per area", "Mass per area", "per area", "mass_per_area"),
+    PerLength: Entry(
+        Kind.LINEAR_DENSITY, "mass per length", "mass per length", "Mass per length", "per length", "mass_per_length"
+    ),
+    Weighed: Entry(Kind.MASS, "weighed, one piece", "weighed mass of one", "Weighed mass", "weighed", "mass"),
+}
+# How much of what a body has: its name, its kind, and the driver that goes with it.
+EXTENTS: dict[Measure, tuple[str, Kind, type[ByDensity | PerArea | PerLength]]] = {
+    "volume": ("volume", Kind.VOLUME, ByDensity),
+    "area": ("area", Kind.AREA, PerArea),
+    "length": ("length", Kind.LENGTH, PerLength),
+}
 
 
 class MassSection(Section):
@@ -34,21 +78,25 @@ class MassSection(Section):
         form.heading("Mass")
         # What was chosen to say the mass, until its value is typed: nothing is made up for it.
         self._awaited: type | None = None
-        self._by = ChoiceField("What says the mass", DRIVERS)
+        measure = part.measure or "volume"
+        choices = DRIVERS[measure]
+        self._by = ChoiceField("What says the mass", choices)
         form.add("comes from", self._by)
         self._material = _material_field()
         form.add("material", self._material)
-        self._density = QuantityField(session, "density", Kind.DENSITY)
-        form.add("density ρ", self._density)
-        self._weighed = QuantityField(session, "weighed mass of one", Kind.MASS)
-        form.add("weighed, one piece", self._weighed)
+        self._numbers = {driver: self._number(driver) for _, driver in choices if driver in ENTRIES}
         self._wrong = form.say("", "failed")
         self._follows = form.say("")
-        self.bind(self._density, "Density", "density", lambda node, value: _driven(node, ByDensity(value)))
-        self.bind(self._weighed, "Weighed mass", "weighed", lambda node, value: _driven(node, Weighed(value)))
         self._by.chosen.connect(self._choose)
         self._material.chosen.connect(self._choose_material)
         self._material.typed.connect(self._choose_material)
+
+    def _number(self, kind: type[Numbered]) -> QuantityField:
+        entry = ENTRIES[kind]
+        field = QuantityField(self.session, entry.spoken, entry.kind)
+        self.form.add(entry.label, field)
+        self.bind(field, entry.words, entry.path, lambda node, value: _driven(node, kind(value)))
+        return field
 
     def show(self, node: Node) -> None:
         """Show what says the mass, and what follows from it."""
@@ -59,33 +107,38 @@ class MassSection(Section):
             self._awaited = None
         wanted = self._awaited or type(driver)
         self._by.set_value(wanted)
-        for field, kind in ((self._material, ByMaterial), (self._density, ByDensity), (self._weighed, Weighed)):
+        self.form.show_row(self._material, wanted=wanted is ByMaterial)
+        for kind, field in self._numbers.items():
             self.form.show_row(field, wanted=wanted is kind)
+            field.set_value(*_entered(node, kind))
         self._refuse("")
         if isinstance(driver, ByMaterial):
             self._material.setCurrentIndex(self._material.findData(driver.name))
             self._material.setEditText(driver.name)
         else:
             self._material.setCurrentIndex(-1)
-        self._density.set_value(*_entered(node, ByDensity, "density"))
-        self._weighed.set_value(*_entered(node, Weighed, "weighed"))
         self._follows.setText(self._consequence(node))
         self._follows.set_role("estimate" if node.single is None else "quiet")
 
     def _consequence(self, part: Part) -> str:
-        volume = part.volume
-        if volume is None:
+        measure, extent = part.measure, part.extent
+        if measure is None or extent is None:
             return "The mesh bounds no volume, so nothing follows from a density; see Checks."
-        space = self.session.units[Kind.VOLUME]
-        words = f"One piece: volume {shown(self.session, volume, space)} {space.symbol}"
+        if measure == "pieces":
+            return "It has no size, so nothing but its mass counts."
+        name, kind, driver = EXTENTS[measure]
+        words = f"One piece: {name} {self._said(extent, kind)}"
         if part.single is None:
             return f"{words}; its mass is not known yet, so the totals leave it out."
-        weight, dense = self.session.units[Kind.MASS], self.session.units[Kind.DENSITY]
-        density = float(part.single.mass) / volume
+        mass, entry = float(part.single.mass), ENTRIES[driver]
         return (
-            f"{words}, mass {shown(self.session, float(part.single.mass), weight)} {weight.symbol}, "
-            f"density {shown(self.session, density, dense)} {dense.symbol}"
+            f"{words}, mass {self._said(mass, Kind.MASS)}, "
+            f"{entry.spoken} {self._said(mass / extent, entry.kind)}"
         )
+
+    def _said(self, value: float, kind: Kind) -> str:
+        unit = self.session.units[kind]
+        return f"{shown(self.session, value, unit)} {unit.symbol}"
 
     def _choose(self, kind: object) -> None:
         node = self.session.assembly.node(self.key)
@@ -101,9 +154,9 @@ class MassSection(Section):
 
     def _wait_for_value(self) -> None:
         """Put the keyboard into the field whose value is still missing."""
-        fields = {ByMaterial: self._material, ByDensity: self._density.line, Weighed: self._weighed.line}
+        lines: dict[type, QWidget] = {kind: field.line for kind, field in self._numbers.items()}
         if self._awaited is not None:
-            fields[self._awaited].setFocus(Qt.FocusReason.OtherFocusReason)
+            lines.get(self._awaited, self._material).setFocus(Qt.FocusReason.OtherFocusReason)
 
     def _choose_material(self, name: object) -> None:
         node = self.session.assembly.node(self.key)
@@ -123,24 +176,24 @@ class MassSection(Section):
         self.form.show_row(self._wrong, wanted=bool(sentence))
 
 
-def _entered(part: Part, kind: type, path: str) -> tuple[float | None, str]:
-    """Return the density or the weighed mass that counts, with its text as typed; None where another thing counts."""
-    driver = part.driver
-    if not isinstance(driver, kind):
+def _entered(part: Part, kind: type[Numbered]) -> tuple[float | None, str]:
+    """Return the number that counts, with its text as typed; None where another thing counts."""
+    if not isinstance(part.driver, kind):
         return None, ""
-    return getattr(driver, "density" if kind is ByDensity else "mass"), typed_for(part, path)
+    return getattr(part.driver, ENTRIES[kind].attribute), typed_for(part, ENTRIES[kind].path)
 
 
 def _same_mass(kind: type, part: Part) -> Driver | None:
     """Return a driver of a kind that keeps the mass the part has; None where only the user can say it."""
     if kind is NotSet:
         return NotSet()
-    if part.single is None or not part.volume:
+    if part.single is None or not part.extent or part.measure is None:
         return None
     mass = float(part.single.mass)
-    if kind is ByDensity:
-        return ByDensity(mass / part.volume)
-    return Weighed(mass) if kind is Weighed else None
+    if kind is Weighed:
+        return Weighed(mass)
+    fitting = EXTENTS.get(part.measure)
+    return fitting[2](mass / part.extent) if fitting is not None and kind is fitting[2] else None
 
 
 def _driven(node: Node, driver: Driver) -> Node:
