@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.facets import Facets
+from core.mesh.lighter import lighter_facets
 from core.mesh.shells import shells_of
 from core.mesh.stl import BinaryStl, corners_of_records, is_packed, stl_of_bytes, unpacked
 from core.mesh.stl_faults import HEADER, reading, refuse_folder
@@ -92,8 +93,11 @@ class MeshAsset:
         return shells_of(stl_of_bytes(self.data, self.name), progress)
 
     def facets_for_view(self, most: int = 300_000) -> Facets:
-        """Return the facets over shared points, in file units; of more than most, an even choice of them."""
+        """Return the facets over shared points, in file units; of more than most, a lighter mesh of the same form.
+
+        The lighter one takes about 0.8 s per million facets.
+        """
         triangles = self.triangles
-        step = -(-len(triangles) // most)
-        points, corners = weld_exactly(np.ascontiguousarray(triangles[::step]))
-        return Facets(points, corners)
+        if len(triangles) > most:
+            return lighter_facets(triangles, most)
+        return Facets(*weld_exactly(np.ascontiguousarray(triangles)))

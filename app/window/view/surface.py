@@ -14,6 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from core.facets import Facets
+from core.mesh.lighter import lighter_facets
 
 if TYPE_CHECKING:
     from core.arrays import FloatArray, IntArray
@@ -27,6 +28,8 @@ SHARP = np.radians(30.0)
 _LEAN = np.cos(np.radians(50.0))
 _FLAT = 1 - 1e-9
 _SIDES = 2
+# A surface of more facets than this is fine enough for lone sharp edges to be noise.
+_FINE = 50_000
 
 
 @dataclass(frozen=True, eq=False)
@@ -95,6 +98,8 @@ def surface_of(facets: Facets) -> Surface:
         edges = _edges(corners, len(points), normals)
     local = (points - middle).astype(np.float32)
     sharp = np.concatenate([edges.lonely, edges.ends[edges.turn < np.cos(SHARP)]])
+    if len(corners) > _FINE:
+        sharp = _in_chains(sharp, len(points))
     soft = (edges.turn >= np.cos(SHARP)) & (edges.turn < _FLAT)
     vertices, soft_normals, faces = _softened(local, corners, normals, edges)
     return Surface(
@@ -111,19 +116,20 @@ def surface_of(facets: Facets) -> Surface:
     )
 
 
-def lighter(surface: Surface, cells: int = 36) -> Surface:
-    """Return the surface with the points in each cell of a grid drawn together; cells along its long side."""
-    low, high = surface.vertices.min(axis=0), surface.vertices.max(axis=0)
-    step = float((high - low).max()) / cells
-    cell = ((surface.vertices - low) / step).astype(np.int64)
-    key = (cell[:, 0] * (cells + 1) + cell[:, 1]) * (cells + 1) + cell[:, 2]
-    _, first, owner = np.unique(key, return_index=True, return_inverse=True)
-    corners = owner[surface.faces]
-    a, b, c = corners.T
-    corners = corners[(a != b) & (b != c) & (c != a)]
-    if not len(corners):
+def _in_chains(ends: IntArray, points: int) -> IntArray:
+    """Return the edges (e, 2) that go on at both ends: in a fine mesh a lone sharp edge is noise, not form."""
+    for _ in range(2):
+        degree = np.bincount(ends.ravel(), minlength=points)
+        ends = ends[(degree[ends] >= _SIDES).all(axis=1)]
+    return ends
+
+
+def lighter(surface: Surface) -> Surface:
+    """Return a surface of the same form with at most LIGHT_COUNT triangles."""
+    facets = lighter_facets(surface.vertices[surface.faces], LIGHT_COUNT)
+    if not len(facets.corners):
         return surface
-    return surface_of(Facets(surface.vertices[first] + surface.middle, corners))
+    return surface_of(Facets(facets.points + surface.middle, facets.corners))
 
 
 @dataclass(frozen=True, eq=False)

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
-from app.window.view.surface import LIGHT_COUNT, lighter, surface_of
+from app.window.view.surface import LIGHT_COUNT, _in_chains, lighter, surface_of
 from core.facets import Facets
 from core.shapes import SHAPES
 
@@ -102,3 +102,13 @@ def test_a_lighter_surface_has_few_triangles_and_the_same_extent():
 def test_a_small_surface_is_its_own_lighter_one():
     surface = surface_of(facets_of("sphere", diameter=0.2))
     assert surface.light is surface
+
+
+def test_the_rim_of_a_fine_bar_stays_whole():
+    bar = facets_of("cylinder", steps=20_000, diameter=0.1, length=0.2)
+    assert len(surface_of(bar).sharp) == 2 * 20_000
+
+
+def test_edges_that_lead_nowhere_are_left_out_of_chains():
+    square, lone, tail = [[0, 1], [1, 2], [2, 3], [3, 0]], [[4, 5]], [[3, 6], [6, 7]]
+    assert _in_chains(np.array(square + lone + tail), 8).tolist() == square
