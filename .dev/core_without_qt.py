@@ -28,7 +28,7 @@ def main() -> int:
     for package in ("PySide6", "pyqtgraph", "OpenGL"):
         if environment.runs(python, f"import {package}"):
             sys.exit(f"{package} can be imported in .venv-noqt, so this run would prove nothing.")
-    command = [python, "-m", "pytest", *(sys.argv[1:] or TESTS)]
+    command = [python, "-m", "pytest", *TESTS, *sys.argv[1:]]
     return subprocess.run(command, cwd=environment.ROOT, check=False).returncode
 
 
