@@ -107,8 +107,8 @@ def turned_moments(outline):
     """Turn a counter-clockwise outline in (r, z) about z: V = π∮r²dz, and so on (Green's theorem)."""
     v, z, zz, xx = (
         boundary_integral([outline], f)
-        for f in (lambda r, z: np.pi * r**2, lambda r, z: np.pi * r**2 * z,
-                  lambda r, z: np.pi * r**2 * z**2, lambda r, z: np.pi / 4 * r**4)
+        for f in (lambda r, _: np.pi * r**2, lambda r, z: np.pi * r**2 * z,
+                  lambda r, z: np.pi * r**2 * z**2, lambda r, _: np.pi / 4 * r**4)
     )
     return about_centre(v, [0, 0, z], np.diag([xx, xx, zz]))
 
@@ -117,8 +117,8 @@ def extruded_moments(outlines, height):
     """Outer outline counter-clockwise, holes clockwise; from z = 0 to height."""
     a, x, y, xx, xy, yy = (
         boundary_integral(outlines, f)
-        for f in (lambda x, y: x, lambda x, y: x**2 / 2, lambda x, y: x * y,
-                  lambda x, y: x**3 / 3, lambda x, y: x**2 * y / 2, lambda x, y: x * y**2)
+        for f in (lambda x, _: x, lambda x, _: x**2 / 2, lambda x, y: x * y,
+                  lambda x, _: x**3 / 3, lambda x, y: x**2 * y / 2, lambda x, y: x * y**2)
     )
     h = height
     second = [[xx * h, xy * h, x * h**2 / 2], [xy * h, yy * h, y * h**2 / 2],
@@ -147,7 +147,7 @@ def proper(triangles):
     return triangles[~same]
 
 
-def turned_mesh(outline, steps, flip=0, phase=0.0, along=1):
+def turned_mesh(outline, steps, flip=0, phase=0.0):
     """Turn the chords of an outline in (r, z); points on the axis become fans."""
     rz = chords(outline)
     rz[np.abs(rz[:, 0]) < 1e-9, 0] = 0.0
@@ -200,7 +200,7 @@ def hull_mesh(points):
 TAU = 2 * np.pi
 
 
-def circle(x, y, r, steps, hole=False, phase=0.0):
+def circle(x, y, r, steps, *, hole=False, phase=0.0):
     return [Arc((x, y), (r, r), phase, phase - TAU if hole else phase + TAU, steps)]
 
 
@@ -455,7 +455,7 @@ def remeshed_ellipsoid(count):
     return stretched(remeshed_sphere(count), f"remeshed ellipsoid {count}", (1.0, 1.5, 0.8))
 
 
-def remeshed_cylinder(steps, rows, seed=0, radius=10.0, height=30.0, shake=0.3):
+def remeshed_cylinder(steps, rows, *, seed=0, radius=10.0, height=30.0, shake=0.3):
     """A cylinder wall of nearly even triangles with shaken corners, fans as caps."""
     rng = np.random.default_rng(seed)
     k, z = np.meshgrid(np.arange(steps), np.arange(rows + 1), indexing="ij")
@@ -494,7 +494,7 @@ def antiprism_cylinder(steps, radius=10.0, height=30.0):
     return RoundBody(f"needle cylinder {steps}", np.concatenate([up, down, *caps]), cylinder(8).exact)
 
 
-def shaken_torus(steps, around, seed=0, shake=0.25, ring=30.0, radius=10.0):
+def shaken_torus(steps, around, *, seed=0, shake=0.25, ring=30.0, radius=10.0):
     rng = np.random.default_rng(seed)
     u, v = np.meshgrid(np.arange(steps, dtype=float), np.arange(around, dtype=float), indexing="ij")
     u += shake * rng.uniform(-1, 1, u.shape)
@@ -525,10 +525,33 @@ def flat_bodies():
         flat("shallow V block", [(0, 0), (40, 0), (40, 20), (20, 16), (0, 20)], 30),
         flat("single bevels of 15°", [(0, 0), (40, 0), (40, 20), (36, 21.1), (4, 21.1), (0, 20)], 30),
         flat("double chamfer", [(0, 0), (40, 0), (40, 26), (38.8, 28.8), (36, 30), (0, 30)], 12),
-        RoundBody("square frustum", hull_mesh(np.array(
-            [[x * s, y * s, z] for s, z in ((20.0, 0.0), (12.0, 15.0)) for x in (-1, 1) for y in (-1, 1)])),
-            Moments(0, [0, 0, 0], np.eye(3))),
     ]
+
+
+def pyramid(sides, radius=20.0, height=5.0):
+    angle = TAU * np.arange(sides) / sides
+    rim = np.stack([radius * np.cos(angle), radius * np.sin(angle), 0 * angle], -1)
+    return hull_mesh(np.concatenate([rim, [[0, 0, height]]]))
+
+
+def tapered_prism(sides, low, high, height):
+    angle = TAU * np.arange(sides) / sides
+    ring = np.stack([np.cos(angle), np.sin(angle), 0 * angle], -1)
+    return hull_mesh(np.concatenate([low * ring, high * ring + [0, 0, height]]))
+
+
+def polyhedra():
+    """Return (name, triangles) of bodies of flat faces whose normals turn by little from face to face."""
+    found = [(f"flat pyramid {n}", pyramid(n)) for n in (3, 4, 5, 6, 8, 9)]
+    found += [(f"flat frustum {n}", tapered_prism(n, 20.0, 12.0, 2.9)) for n in (3, 4, 6, 8)]
+    found += [(f"steep frustum {n}", tapered_prism(n, 20.0, 18.0, 20.0)) for n in (3, 4, 6, 8)]
+    found += [(f"hull of {n} points in a cube", hull_mesh(np.random.default_rng(0).uniform(-1, 1, (n, 3))))
+              for n in (8, 12, 20)]
+    roof = np.array([[x, y, 0.0] for x in (-20, 20) for y in (-10, 10)] + [[-14, 0, 4], [14, 0, 4]])
+    found.append(("hipped roof", hull_mesh(roof)))
+    plate = [(0, 0), (40, 0), (52, 5), (60, 14), (58, 30), (40, 41), (10, 38), (-4, 20)]
+    found.append(("irregular plate", flat("", plate, 5).triangles))
+    return found
 
 
 def round_bodies():

@@ -12,7 +12,7 @@ from core.mesh.curvature.seams import COPLANAR, CORNER, CREASED
 from core.mesh.curvature.vectors import applied, dot, gathered, length
 
 if TYPE_CHECKING:
-    from core.arrays import FloatArray, IntArray
+    from core.arrays import BoolArray, FloatArray, IntArray
     from core.mesh.curvature.seams import Seams
     from core.mesh.curvature.surface import PatchForms, Surface
     from core.progress import Progress
@@ -68,6 +68,13 @@ def bulges(surface: Surface, forms: PatchForms, seams: Seams, progress: Progress
         progress.advance(len(chunk.triangles))
     progress.advance(3 * (len(surface.corners) - len(curved)))
     return Bulges(heights, domes)
+
+
+def flattened(bulges: Bulges, dropped: BoolArray) -> Bulges:
+    """Return the bulges without those of the dropped triangles (m,)."""
+    heights = np.where(dropped[:, None], 0.0, bulges.heights)
+    kept = [(dome, ~dropped[dome.triangles]) for dome in bulges.domes]
+    return Bulges(heights, [Dome(dome.triangles[keep], dome.omegas[:, keep]) for dome, keep in kept])
 
 
 def curved_triangles(surface: Surface, seams: Seams) -> IntArray:

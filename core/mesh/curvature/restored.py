@@ -9,7 +9,8 @@ import numpy as np
 
 from core.errors import ValueRefused
 from core.mesh.curvature.bent import bent_sums, displacements, dome_sums, flat_sums
-from core.mesh.curvature.bulge import Bulges, bulges
+from core.mesh.curvature.bulge import Bulges, bulges, flattened
+from core.mesh.curvature.coherence import broken_surfaces, creased
 from core.mesh.curvature.fit import CHUNK, Chunk, chunk_of, part_of
 from core.mesh.curvature.seams import CREASED, FLAT_BESIDE_ROUND, ROUND_BESIDE_FLAT, Seams, classify
 from core.mesh.curvature.surface import Surface, patch_forms, survey
@@ -58,7 +59,8 @@ class Restored:
             correction: a floor, the square of how far its edges turn (the term after the one that is restored), and
             how far both sides of its edges disagree. The whole correction counts where facets turn by 30° and
             more (a part of it from 20° on): a prism of twelve sides and a cylinder in twelve facets are the same
-            mesh, and if the prism is meant, the correction itself is the error. Edges kept sharp count nothing.
+            mesh, and if the prism is meant, the correction itself is the error. Edges kept sharp count
+            nothing: a coarse round that was cut unevenly may be among them, and kept_sharp counts them.
         round_facets: how many triangles belong to rounds.
         smooth_edges: how many edges were found to run across or along a round.
         kept_sharp: how many edges turn by less than 61° and were kept sharp: bevels, or the corners of a
@@ -110,6 +112,9 @@ def restore(points: ArrayLike, corners: ArrayLike, progress: Progress | None = N
     seams = classify(surface, forms)
     tracker.advance(len(triangles))
     found = bulges(surface, forms, seams, tracker)
+    broken = broken_surfaces(surface, seams, found.heights)
+    if broken.any():
+        seams, found = creased(seams, broken), flattened(found, broken)
     return _summed(surface, seams, found, tracker)
 
 

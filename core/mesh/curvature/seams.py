@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING, Final
 import numpy as np
 
 from core.mesh.curvature.surface import conormals, patch_widths
-from core.mesh.curvature.vectors import dot, gathered
+from core.mesh.curvature.vectors import dot, gathered, length
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -26,8 +26,14 @@ CREASE: Final = float(np.radians(39.9))
 # A neighbour this many times as wide across the edge is a flat (or straight) that runs tangent into a round.
 WIDE: Final = 3.0
 
-# How far the curvature at an edge and beyond the next edge may differ (as a factor) and still be one surface.
-ALIKE: Final = 3.0
+# From this ratio of widths on, a plane patch of several triangles is taken for a flat when its edge is compared with
+# the one across the round: rounds are cut into even steps.
+STEPPED: Final = 1.5
+
+# How far the curvature at an edge and beyond the next edge may differ and still be one surface, as the logarithm of a
+# factor, by how far the edge turns: coarse steps are only made along arcs, and those are even.
+TURNS: Final = (float(np.radians(10)), float(np.radians(25)))
+ALIKE: Final = (float(np.log(3.0)), float(np.log(1.5)))
 
 # Share of a patch's far side that must be smooth to speak for the edge.
 FAR_SIDE: Final = 0.3
@@ -132,7 +138,8 @@ def classify(surface: Surface, forms: PatchForms) -> Seams:
         return Seams(kinds, slopes, np.zeros(len(kinds), dtype=bool))
     ok, flat_beyond = _spoken_for(surface, rim)
     mate = rim.mate
-    believed = rim.smooth & (ok | ok[mate] | _among_lone(surface, rim))
+    believed = _carried(surface, rim, ok, _among_lone(surface, rim))
+    believed &= ~_at_corners(surface, rim, believed)
     tangent = flat_beyond & ok & ~(flat_beyond[mate] & ok[mate])
     strips = ~surface.lone[rim.patch] & ~surface.lone[rim.beyond]
     found = np.where(believed, np.where(strips, STRIP, CORNER), CREASED)
@@ -175,7 +182,8 @@ def _spoken_for(surface: Surface, rim: _Rim) -> tuple[BoolArray, BoolArray]:
     full = 2 * rim.turn / np.maximum(rim.width + rim.width_beyond, floor)
     half = 2 * rim.turn / np.maximum(rim.width, floor)
     wide, narrow = rim.width_beyond > WIDE * rim.width, rim.width > WIDE * rim.width_beyond
-    beyond = _compare(rim, np.where(wide, half, full), wide)
+    stepped = (rim.width_beyond > STEPPED * rim.width) & ~surface.lone[rim.beyond]
+    beyond = _compare(rim, np.where(wide | stepped, half, full), wide)
     share = np.where(wide, beyond.strict_share, beyond.share)
     bend = np.where(wide, beyond.strict_bend, beyond.bend)
     full_miss, half_miss = _miss(full, bend), _miss(half, bend)
@@ -183,7 +191,8 @@ def _spoken_for(surface: Surface, rim: _Rim) -> tuple[BoolArray, BoolArray]:
     half_fits = (half_miss < HALF_STEP_FITS) & (full_miss > FULL_STEP_MISSES)
     flat_beyond = (surface.flat[rim.beyond] | wide | half_fits) & ~surface.lone[rim.beyond] | (wide & ~lone)
     miss = np.where(flat_beyond, half_miss, full_miss)
-    ok = rim.smooth & (miss < np.log(ALIKE)) & (share > FAR_SIDE) & ~narrow & ~surface.flat[rim.patch]
+    ok = rim.smooth & (miss < np.interp(np.abs(rim.turn), TURNS, ALIKE)) & (share > FAR_SIDE)
+    ok &= ~narrow & ~surface.flat[rim.patch]
     # Where the curvature across the edge passes through zero, both turns are small and their ratio says nothing.
     small = (np.abs(rim.turn) < SMALL_TURN * beyond.turn) & (beyond.far_turn < SMALL_TURN * beyond.turn)
     small &= (beyond.share > 1 - FAR_SIDE) & (rim.count <= QUAD) & ~wide & ~narrow & rim.smooth
@@ -205,6 +214,58 @@ def _among_lone(surface: Surface, rim: _Rim) -> BoolArray:
     sides = (turn[others[0]] > 0).astype(int) + (turn[others[1]] > 0)
     calm = np.abs(rim.turn) <= LONE_TURN * np.maximum(around, around[rim.mate])
     return np.asarray(rim.smooth & lone & lone[rim.mate] & calm & (sides + sides[rim.mate] >= ENOUGH))
+
+
+def _carried(surface: Surface, rim: _Rim, ok: BoolArray, calm: BoolArray) -> BoolArray:
+    """Return which edges are smooth: both sides speak for them, or one does whose far side is such an edge.
+
+    So a round between two creases needs four facets: three may well be three flats. Lone triangles have no far side.
+    """
+    either = rim.smooth & (ok | ok[rim.mate] | calm)
+    sure = either & ((ok & ok[rim.mate]) | surface.lone[rim.patch] | surface.lone[rim.beyond])
+    at = np.flatnonzero(either & ~sure & ok & (rim.count <= MOST_COMPARED))
+    backed = np.zeros(len(ok), dtype=bool)
+    for step in range(1, MOST_COMPARED):
+        at = at[rim.count[at] > step]
+        other = rim.first[at] + (at - rim.first[at] + step) % rim.count[at]
+        facing = -dot(rim.out.take(at, axis=1), rim.out.take(other, axis=1))
+        backed[at] |= sure[other] & (facing > OBLIQUE) & (rim.beyond[other] != rim.beyond[at])
+    return sure | backed | (either & backed[rim.mate])
+
+
+def _at_corners(surface: Surface, rim: _Rim, believed: BoolArray) -> BoolArray:
+    """Return the smooth edges that end where a crease turns a corner: the ridges of a pyramid or a tapered block.
+
+    The normals of a flat pyramid turn little from side to side, but its base turns by 90°. An edge that also ends on
+    a crease without a corner stays smooth.
+    """
+    flat = surface.corners.ravel()
+    begin = flat[rim.half_edges // 3 * 3 + (rim.half_edges % 3 + 1) % 3]
+    end = flat[rim.half_edges // 3 * 3 + (rim.half_edges % 3 + 2) % 3]
+    on_crease = np.zeros(len(surface.points), dtype=bool)
+    on_crease[begin[~believed]] = True
+    corner, plain = np.zeros((2, len(begin)), dtype=bool)
+    at = np.flatnonzero(believed & on_crease[end])
+    if not len(at):
+        return corner
+    count = len(surface.points)
+    after = _found(rim.patch * count + begin, rim.patch[at] * count + end[at])
+    before = _found(rim.patch * count + end, rim.beyond[at] * count + end[at])
+    both = ~believed[after] & ~believed[before]
+    after, before, at = after[both], before[both], at[both]
+    arriving = gathered(surface.points, end[before]) - gathered(surface.points, begin[before])
+    leaving = gathered(surface.points, end[after]) - gathered(surface.points, begin[after])
+    turned = dot(arriving, leaving) <= np.cos(CREASE) * length(arriving) * length(leaving)
+    corner[at[turned]] = True
+    plain[at[~turned]] = True
+    corner |= corner[rim.mate]
+    return corner & ~(plain | plain[rim.mate])
+
+
+def _found(keys: IntArray, wanted: IntArray) -> IntArray:
+    """Return the position of each wanted key among the keys, which hold it."""
+    order = np.argsort(keys, kind="stable")
+    return order[np.searchsorted(keys, wanted, sorter=order)]
 
 
 def _miss(here: FloatArray, beyond: FloatArray) -> FloatArray:

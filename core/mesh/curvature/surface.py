@@ -61,7 +61,9 @@ def survey(points: FloatArray, corners: IntArray) -> Surface:
     normals, areas = _normals(points, corners)
     mates = mate_half_edges(corners, len(points))
     turns, coplanar = _turns(points, corners, normals, mates, COPLANAR * size)
-    patches = _patches(len(corners), mates, coplanar)
+    inner = np.flatnonzero(coplanar)
+    inner = inner[inner < mates[inner]]
+    patches = connected(len(corners), inner // 3, mates[inner] // 3)
     flat = _flat_patches(points, corners, mates, patches)
     lone = np.bincount(patches) == 1
     return Surface(points, corners, normals, areas, mates, turns, coplanar, patches, lone, flat, size)
@@ -118,22 +120,19 @@ def _turns(
     return turns, coplanar
 
 
-def _patches(count: int, mates: IntArray, coplanar: BoolArray) -> IntArray:
-    """Number the sets of triangles that coplanar edges connect (label hooking with pointer jumping)."""
-    one = np.flatnonzero(coplanar)
-    one = one[one < mates[one]]
+def connected(count: int, one: IntArray, two: IntArray) -> IntArray:
+    """Number the sets of count things that the pairs one, two (n,) connect (label hooking with pointer jumping)."""
     labels = np.arange(count)
-    a, b = one // 3, mates[one] // 3
-    while len(a):
-        low, high = np.minimum(labels[a], labels[b]), np.maximum(labels[a], labels[b])
+    while len(one):
+        low, high = np.minimum(labels[one], labels[two]), np.maximum(labels[one], labels[two])
         np.minimum.at(labels, high, low)
         while True:
             jumped = labels[labels]
             if np.array_equal(jumped, labels):
                 break
             labels = jumped
-        open_ = labels[a] != labels[b]
-        a, b = a[open_], b[open_]
+        open_ = labels[one] != labels[two]
+        one, two = one[open_], two[open_]
     roots = labels == np.arange(count)
     return (np.cumsum(roots) - 1)[labels]
 
