@@ -226,7 +226,7 @@ Copies: TypeAlias = Several | Ring | Row | Mirrored
 
 
 def _batch(tf: Placement, count: int) -> Placement:
-    return Placement(np.broadcast_to(tf.turn, (count, 3, 3)), np.broadcast_to(tf.shift, (count, 3)))
+    return Placement(np.repeat(tf.turn[None], count, axis=0), np.repeat(tf.shift[None], count, axis=0))
 
 
 def _check_count(count: int) -> None:
