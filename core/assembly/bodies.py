@@ -16,6 +16,7 @@ from core.arrays import FloatArray, frozen
 from core.checks import Check, check_inertia_tensor
 from core.errors import ValueRefused
 from core.facets import Facets
+from core.mesh import can_restore
 from core.moments import Moments
 from core.shapes import SHAPES, Shape
 
@@ -24,6 +25,7 @@ if TYPE_CHECKING:
     from core.mesh import MeshAsset
     from core.placement import Triple
 
+Counts: TypeAlias = Literal["faceted", "restored"]
 Six: TypeAlias = tuple[float, float, float, float, float, float]
 
 
@@ -61,17 +63,40 @@ class MeshBody:
     Attributes:
         asset: the file's bytes and what a survey of them found.
         metres_per_unit: the length unit of the file's coordinates.
+        counts: whether the values of the facets count, or those with the curvature behind them restored.
+
+    Raises:
+        ValueRefused: the restored curvature is to count, and it cannot be restored.
     """
 
     asset: MeshAsset
     metres_per_unit: float
+    counts: Counts = "faceted"
     measure: ClassVar[Measure] = "volume"
+
+    def __post_init__(self) -> None:
+        if self.counts == "restored" and not can_restore(self.asset.survey):
+            raise ValueRefused(
+                "the curvature behind these facets cannot be restored", where=self.asset.name,
+                read=f"a mesh that is {self.asset.survey.verdict}", remedy="Mend the mesh, or count it as faceted",
+            )
 
     @cached_property
     def solid(self) -> Moments | None:
         """Moments at unit density in the part frame, or None where the mesh bounds no volume."""
+        return self.restored if self.counts == "restored" else self.faceted
+
+    @cached_property
+    def faceted(self) -> Moments | None:
+        """The moments of the facets as they are, at unit density in the part frame; None where they bound no volume."""
         solid = self.asset.survey.solid
         return None if solid is None else solid.enlarged(self.metres_per_unit)
+
+    @cached_property
+    def restored(self) -> Moments | None:
+        """The moments with curvature restored, at unit density in the part frame; None where that cannot be done."""
+        body = self.asset.restored()
+        return None if body is None else body.moments.enlarged(self.metres_per_unit)
 
     @cached_property
     def surface(self) -> Facets:

@@ -143,7 +143,7 @@ class _Builder:
         if entry.kind == "shape":
             return self._shape(entry)
         if entry.kind == "mesh":
-            return MeshBody(self._asset(entry.mesh, entry.name), entry.metres_per_unit)
+            return MeshBody(self._asset(entry.mesh, entry.name), entry.metres_per_unit, entry.counts)
         if entry.kind == "known tensor":
             known = KnownTensor(entry.mass, entry.centre, entry.tensor, entry.about, entry.source)
             _ = known.own  # refuses a tensor that makes no moments

@@ -150,6 +150,7 @@ class MeshEntry(_Entry):
     mesh: Annotated[str, Field(pattern=r"^[0-9a-f]{64}$")]
     name: Name
     metres_per_unit: Positive
+    counts: Literal["faceted", "restored"] = "faceted"
 
 
 class KnownTensorEntry(_Entry):

@@ -86,7 +86,7 @@ def _body(body: Body) -> Data:
         asset = body.asset
         return {
             "kind": "mesh", "mesh": asset.sha256, "name": asset.name,
-            "metres_per_unit": float(body.metres_per_unit),
+            "metres_per_unit": float(body.metres_per_unit), "counts": body.counts,
         }
     known: Data = {"mass": float(body.mass), "centre": _floats(body.centre), "source": body.source}
     if isinstance(body, KnownTensor):

@@ -21,9 +21,6 @@ if TYPE_CHECKING:
     from core.progress import Progress
     from core.quantity import Unit
 
-# Up to this many triangles, restoring curvature and counting shells takes no time that anybody notices.
-CHEAP_TRIANGLES: Final = 200_000
-_RESTORABLE: Final = frozenset({"closed", "hairline cracks", "inside out"})
 # A restored volume closer to the faceted one than this, relative, is the same: the form has no curved faces.
 _SAME: Final = 1e-12
 
@@ -232,10 +229,10 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
         Cancelled: progress was cancelled.
 
     """
-    from core.mesh import count_shells, survey_file
+    from core.mesh import AT_ONCE, count_shells, survey_file
 
     survey = survey_file(path, progress)
-    cheap = survey.triangles <= CHEAP_TRIANGLES
+    cheap = survey.triangles <= AT_ONCE
     reading = MeshReading(
         str(path),
         survey,
@@ -250,20 +247,18 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
         reading = replace(reading, shells=count_shells(path, progress))
     if cheap or request.count_restored:
         return _with_curvature(reading, path)
-    remark = f"Curvature was not restored, because the file has more than {CHEAP_TRIANGLES} triangles."
+    remark = f"Curvature was not restored, because the file has more than {AT_ONCE} triangles."
     return replace(reading, remarks=(*reading.remarks, remark))
 
 
 def _with_curvature(reading: MeshReading, path: str | Path) -> MeshReading:
     """Return the reading with its curvature restored, or with the reason why not."""
-    from core.mesh.curvature import restore
+    from core.mesh import can_restore, restored
     from core.mesh.stl import open_stl
     from core.mesh.survey import gathered
-    from core.mesh.weld import weld_exactly
 
-    if reading.survey.verdict not in _RESTORABLE or reading.survey.solid is None:
+    if not can_restore(reading.survey):
         remark = f"Curvature was not restored, because the mesh is {reading.survey.verdict}."
         return replace(reading, remarks=(*reading.remarks, remark)) if reading.counts_restored else reading
-    points, corners = weld_exactly(gathered(open_stl(path), reading.survey.triangles))
-    turned = corners[:, ::-1] if reading.survey.verdict == "inside out" else corners
-    return replace(reading, restored=restore(points, turned).moments)
+    body = restored(gathered(open_stl(path), reading.survey.triangles), reading.survey)
+    return replace(reading, restored=None if body is None else body.moments)

@@ -11,6 +11,7 @@ import numpy as np
 
 from core.facets import Facets
 from core.mesh.lighter import lighter_facets
+from core.mesh.restoring import restored
 from core.mesh.shells import shells_of
 from core.mesh.stl import BinaryStl, corners_of_records, is_packed, stl_of_bytes, unpacked
 from core.mesh.stl_faults import HEADER, reading, refuse_folder
@@ -20,6 +21,7 @@ from core.mesh.weld import weld_exactly
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
+    from core.mesh.curvature import Restored
     from core.progress import Progress
 
 
@@ -91,6 +93,24 @@ class MeshAsset:
             Cancelled: progress was cancelled.
         """
         return shells_of(stl_of_bytes(self.data, self.name), progress)
+
+    def restored(self, progress: Progress | None = None) -> Restored | None:
+        """Return the body with the curvature behind its facets restored; None where that cannot be done.
+
+        It is computed once; file units, unit density.
+
+        Raises:
+            Cancelled: progress was cancelled.
+        """
+        kept: dict[str, Restored | None] = self.__dict__.setdefault("_restored", {})
+        if "body" not in kept:
+            kept["body"] = restored(self.triangles, self.survey, progress)
+        return kept["body"]
+
+    @property
+    def restored_already(self) -> bool:
+        """Whether asking for the restored body costs nothing any more."""
+        return "body" in self.__dict__.get("_restored", {})
 
     def facets_for_view(self, most: int = 300_000) -> Facets:
         """Return the facets over shared points, in file units; of more than most, a lighter mesh of the same form.

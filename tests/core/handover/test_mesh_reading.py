@@ -10,9 +10,9 @@ from mesh_files import binary_stl, box, quartered
 
 from core.handover import SheetChoice, sheet_of_mesh
 from core.handover.answer import KEYS, answer_of_mesh, json_text
-from core.handover.mesh_reading import CHEAP_TRIANGLES, MeshReading, MeshRequest, read_mesh
+from core.handover.mesh_reading import MeshReading, MeshRequest, read_mesh
 from core.material import ByDensity, Weighed
-from core.mesh import survey_triangles
+from core.mesh import AT_ONCE, survey_triangles
 from core.quantity import UNIT_SETS, UNITS
 
 FACETS = Path(__file__).parents[2] / "facets"
@@ -105,7 +105,7 @@ def test_shells_and_curvature_of_a_small_mesh_come_unasked(tmp_path: Path):
     path = tmp_path / "two.stl"
     path.write_bytes(binary_stl(np.concatenate([box(), box(at=(3, 0, 0))])))
     reading = read_mesh(path, MeshRequest(UNITS["mm"]))
-    assert reading.survey.triangles < CHEAP_TRIANGLES
+    assert reading.survey.triangles < AT_ONCE
     assert reading.shells == 2
     assert reading.restored is not None
 
@@ -114,7 +114,7 @@ def test_a_large_mesh_is_answered_without_curvature_and_says_so(tmp_path: Path):
     path = tmp_path / "large.stl"
     path.write_bytes(binary_stl(quartered(box(), 8)))
     reading = read_mesh(path, MeshRequest(UNITS["mm"]))
-    assert reading.survey.triangles > CHEAP_TRIANGLES
+    assert reading.survey.triangles > AT_ONCE
     assert (reading.restored, reading.shells) == (None, None)
     assert any("not restored" in note for note in reading.notes)
     assert read_mesh(path, MeshRequest(UNITS["mm"], count_shells=True)).shells == 1
