@@ -192,6 +192,8 @@ class LedgerModel(QAbstractItemModel):
             return cell_text(self.session, line, column, role)
         if role == Qt.ItemDataRole.ToolTipRole and column == INDEX["material"] and line.basis:
             return f"Values: {line.basis}"
+        if role == Qt.ItemDataRole.ToolTipRole and column == INDEX["name"]:
+            return line.name
         if role == Qt.ItemDataRole.AccessibleTextRole:
             text = cell_text(self.session, line, column, Qt.ItemDataRole.DisplayRole)
             heading = COLUMNS[column].heading.format(axis=self.session.assembly.drive)

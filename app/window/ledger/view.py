@@ -6,7 +6,16 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QByteArray, QEvent, QItemSelectionModel, QModelIndex, QObject, QPoint, Qt, Signal
 from PySide6.QtGui import QGuiApplication, QKeyEvent, QMouseEvent
-from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QHeaderView, QMenu, QTreeView, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QAbstractItemDelegate,
+    QAbstractItemView,
+    QHBoxLayout,
+    QHeaderView,
+    QMenu,
+    QTreeView,
+    QVBoxLayout,
+    QWidget,
+)
 
 from app.window.ledger.columns import COLUMNS, INDEX
 from app.window.ledger.delegate import ROW_HEIGHT, LedgerDelegate
@@ -14,7 +23,7 @@ from app.window.ledger.model import COPY_ROLE, FootModel, LedgerModel
 from core.handover import tsv_of_block
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable
+    from collections.abc import Iterable, Iterator
 
     from app.window.session import Session
     from core.assembly import Assembly
@@ -60,8 +69,9 @@ class LedgerTree(QTreeView):
         session.selection_changed.connect(self._show_selection)
 
     def _restore(self) -> None:
+        closed = set(self._closed)  # expandAll tells that every group opens
         self.expandAll()
-        for key in list(self._closed):
+        for key in closed:
             index = self.lines.index_of(key)
             if index.isValid():
                 self.setExpanded(index, False)
@@ -106,6 +116,27 @@ class LedgerTree(QTreeView):
                 self.edit(self.currentIndex())
             return
         super().keyPressEvent(event)
+
+    def closeEditor(self, editor: QWidget, hint: QAbstractItemDelegate.EndEditHint) -> None:
+        """Go on with the next input on Tab, with the one before on Shift and Tab."""
+        hints = QAbstractItemDelegate.EndEditHint
+        steps = {hints.EditNextItem: 1, hints.EditPreviousItem: -1}
+        super().closeEditor(editor, hints.NoHint if hint in steps else hint)
+        if hint in steps:
+            inputs = [index for index in self.cells() if index.flags() & Qt.ItemFlag.ItemIsEditable]
+            here = [(at.internalId(), at.column()) for at in inputs]
+            current = (self.currentIndex().internalId(), self.currentIndex().column())
+            place = here.index(current) + steps[hint] if current in here else -1
+            if 0 <= place < len(inputs):
+                self.setCurrentIndex(inputs[place])
+                self.edit(inputs[place])
+
+    def cells(self) -> Iterator[QModelIndex]:
+        """Yield the cells in the order in which they are read."""
+        header = self.header()
+        columns = sorted((at for at in range(len(COLUMNS)) if not header.isSectionHidden(at)), key=header.visualIndex)
+        for line in _rows(self, QModelIndex()):
+            yield from (line.siblingAtColumn(at) for at in columns)
 
     def edit_name(self, key: str) -> None:
         """Start editing a line's name."""

@@ -209,7 +209,7 @@ def choice(window, name):
     ("words", "name", "text", "driver"),
     [
         ("a density", "density", "2700 kg/m3", ByDensity(2700.0)),
-        ("a weighed mass", "weighed mass", "1,2", Weighed(1.2)),
+        ("a weighed mass", "weighed mass of one", "1,2", Weighed(1.2)),
     ],
 )
 def test_choosing_what_says_the_mass_waits_for_the_value_and_makes_none_up(cover, words, name, text, driver):

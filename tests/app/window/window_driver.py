@@ -85,12 +85,18 @@ def type_cell(window: MainWindow, key: str, column: str, text: str, end: Qt.Key 
     """Type a text over a cell's and end with a key; return the editor, which stays where it was refused."""
     editor = open_editor(window, key, column)
     QTest.keyClicks(editor, text)
-    completer = editor.completer()
-    if completer is not None:
-        completer.popup().hide()
+    if editor.completer() is not None:
+        put_away(window, editor)
     QTest.keyClick(editor, end)
     QApplication.processEvents()
     return editor
+
+
+def put_away(window: MainWindow, editor: QLineEdit) -> None:
+    """Close the list of proposals below an editor, and give the keyboard back to the window."""
+    editor.completer().popup().hide()
+    window.activateWindow()
+    QApplication.processEvents()
 
 
 def field(page: QWidget, name: str) -> QLineEdit:
