@@ -33,7 +33,9 @@ class Task(QObject, Generic[Result]):
         failed: Callable[[str], None], moved: Callable[[float], None] | None = None,
     ) -> None:
         super().__init__(parent)
-        self.progress = Progress()
+        self.progress = progress = Progress()
+        # Whoever waited for the result may be gone before it comes.
+        self.destroyed.connect(progress.cancel)
         self._done, self._failed, self._moved = done, failed, moved
         self._pool = ThreadPoolExecutor(1)
         self._future: Future[Result] = self._pool.submit(work, self.progress)

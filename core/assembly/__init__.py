@@ -4,10 +4,11 @@ from core.assembly.assembly import Assembly, DriveAxis
 from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, six_of_tensor, tensor_of_six
 from core.assembly.findings import Finding, findings_of
 from core.assembly.ledger import Ledger, Line, ledger_of
+from core.assembly.mesh_part import MeshComparison, compare_mesh
 from core.assembly.nodes import DataSheet, Driver, Group, Node, Part, Table, walk
 
 __all__ = [
     "Assembly", "Body", "DataSheet", "DriveAxis", "Driver", "Finding", "Group", "KnownAxial", "KnownTensor", "Ledger",
-    "Line", "MeshBody", "Node", "Part", "ShapeBody", "Table", "findings_of", "ledger_of", "six_of_tensor",
+    "Line", "MeshBody", "MeshComparison", "Node", "Part", "ShapeBody", "Table", "compare_mesh", "findings_of", "ledger_of", "six_of_tensor",
     "tensor_of_six", "walk",
 ]

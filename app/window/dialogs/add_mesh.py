@@ -21,7 +21,7 @@ from app.window.dialogs.form import FormDialog
 from app.window.fields import Form, TextField
 from app.window.ledger.edits import driver_of
 from app.window.numbers import shown
-from app.window.pages.part_body import MESH_UNITS
+from app.window.pages.part_mesh import MESH_UNITS, SOUND
 from app.window.style import Words
 from app.window.tasks import Task
 from core.assembly import MeshBody, Part
@@ -36,7 +36,6 @@ if TYPE_CHECKING:
     from app.window.session import Session
 
 HEADINGS = ("If the file is in", "it measures", "and one weighs")
-SOUND = frozenset({"closed", "hairline cracks", "inside out"})
 
 
 class AddMeshDialog(FormDialog):

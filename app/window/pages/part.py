@@ -9,8 +9,9 @@ from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QApplication, QFrame, QScrollArea, QVBoxLayout, QWidget
 
 from app.window.fields import Form, QuantityField, TextField
-from app.window.pages.part_body import KnownSection, MeshSection, ShapeSection
+from app.window.pages.part_body import KnownSection, ShapeSection
 from app.window.pages.part_mass import MassSection
+from app.window.pages.part_mesh import MeshSection
 from app.window.pages.part_place import CopiesSection, PlaceSection
 from app.window.pages.section import Section
 from app.window.style import GRID, Words

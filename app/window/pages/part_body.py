@@ -1,14 +1,13 @@
-"""The fields for what a part is made of: the dimensions of a shape, a mesh's unit, a data sheet's values."""
+"""The fields for what a part is made of: the dimensions of a shape, or a data sheet's values."""
 
 from __future__ import annotations
 
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
-from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField
-from app.window.numbers import shown
+from app.window.fields import Form, QuantityField, TextField, TripleField
 from app.window.pages.section import NumberChange, Section, typed_for, with_component
-from core.assembly import KnownAxial, KnownTensor, MeshBody, Node, Part, ShapeBody
+from core.assembly import KnownAxial, KnownTensor, Node, Part, ShapeBody
 from core.errors import EditRefused
 from core.quantity import UNITS, Kind
 
@@ -16,7 +15,6 @@ if TYPE_CHECKING:
     from app.window.session import Session
     from core.shapes import Dimension, Shape
 
-MESH_UNITS = ("mm", "cm", "m", "in", "ft")
 TENSOR_LABELS = ("Ixx", "Iyy", "Izz", "Ixy", "Ixz", "Iyz")
 TENSOR_TIP = "Tensor elements: Ixy = −∫xy dm. Where the data sheet prints +∫xy dm, change the sign of the products."
 
@@ -60,47 +58,10 @@ def _kind(dimension: Dimension) -> Kind:
 def _resized(name: str) -> NumberChange:
     def change(node: Node, value: float) -> Node:
         shape = _shape(node)
-        resized = ShapeBody(type(shape).of({**shape.values(), name: value}))
+        resized = ShapeBody(shape.resized({name: value}))
         return replace(node, body=resized) if isinstance(node, Part) else node
 
     return change
-
-
-class MeshSection(Section):
-    """A mesh: the file it came from, what a look at it told, and its length unit."""
-
-    def __init__(self, session: Session, form: Form, part: Part) -> None:
-        super().__init__(session, form, part.key)
-        form.heading("Mesh")
-        self._file = form.say("", "text")
-        self._verdict = form.say("")
-        self._unit = ChoiceField("Length unit of the mesh", [(symbol, UNITS[symbol].factor) for symbol in MESH_UNITS])
-        form.add("length unit", self._unit, "A mesh file does not say what its numbers mean. J changes with length⁵.")
-        self._size = form.say("")
-        self._unit.chosen.connect(self._choose)
-
-    def show(self, node: Node) -> None:
-        """Show the mesh's file, verdict and size."""
-        if not (isinstance(node, Part) and isinstance(node.body, MeshBody)):
-            return
-        survey = node.body.asset.survey
-        self._file.setText(f"{node.body.asset.name}, {survey.triangles} facets, {survey.format}")
-        self._verdict.setText(f"Verdict: {survey.verdict}. " + " ".join(survey.notes))
-        sound = survey.verdict in {"closed", "inside out", "hairline cracks"}
-        self._verdict.set_role("text" if sound else "failed")
-        self._unit.set_value(node.body.metres_per_unit)
-        unit = self.session.units[Kind.LENGTH]
-        low, high = node.body.bounds
-        size = " × ".join(shown(self.session, float(extent), unit) for extent in high - low)
-        self._size.setText(f"Size {size} {unit.symbol}")
-
-    def _choose(self, factor: object) -> None:
-        def change(node: Node) -> Node:
-            if isinstance(node, Part) and isinstance(node.body, MeshBody) and isinstance(factor, float):
-                return replace(node, body=replace(node.body, metres_per_unit=factor))
-            return node
-
-        self.edit(f"Unit of {self.session.assembly.node(self.key).name}: {self._unit.currentText()}", change)
 
 
 class KnownSection(Section):
