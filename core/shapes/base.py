@@ -118,7 +118,7 @@ class Shape(ABC):
                     f"the {dimension.label} has to be {_limit(dimension)}",
                     where=self.title,
                     read=said(bad, dimension.kind),
-                    remedy="Give 0 or more" if dimension.may_be_zero else _REMEDY[dimension.kind],
+                    remedy=_remedy(dimension),
                 )
 
     def refuse_where(self, bad: ArrayLike, sentence: str, *lengths: ArrayLike, remedy: str) -> None:
@@ -228,11 +228,18 @@ def first_where(bad: BoolArray, *values: ArrayLike) -> tuple[float, ...]:
     return tuple(float(np.broadcast_to(value, np.shape(bad)).flat[place]) for value in values)
 
 
+_WANTED = {"length": "a length", "angle": "an angle", "count": "a whole number"}
 _REMEDY = {
     "length": "Give a positive length",
     "angle": "Give a positive angle",
     "count": "Give a whole number",
 }
+
+
+def _remedy(dimension: Dimension) -> str:
+    if dimension.least is not None or dimension.most is not None:
+        return f"Give {_WANTED[dimension.kind]} within these limits"
+    return "Give 0 or more" if dimension.may_be_zero else _REMEDY[dimension.kind]
 
 
 def _limit(dimension: Dimension) -> str:
