@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import io
 from pathlib import Path
-from typing import IO, TYPE_CHECKING, TypeVar
+from typing import IO, TYPE_CHECKING, TypeAlias, TypeVar
 
 from core.assembly import (
     Assembly,
@@ -29,7 +29,7 @@ from core.errors import DocumentError, MasswrightError
 from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed
 from core.mesh import MeshAsset
 from core.placement import Copies, Mirrored, Pose, Ring, Row, Several
-from core.shapes import SHAPES, Shape
+from core.shapes import SHAPES, Outline, OutlinedShape, Shape
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Sequence
@@ -46,6 +46,9 @@ if TYPE_CHECKING:
     )
 
 Built = TypeVar("Built")
+
+# x, y, rounding and arc of each point, loop by loop.
+_Loops: TypeAlias = tuple[tuple[tuple[float, float, float, float], ...], ...]
 
 _REMEDY = "Take the last good copy, or mend the entry where it was changed by hand"
 _REMEDY_NEWER = "It was written by a newer version of Masswright: open it with that one"
@@ -105,12 +108,13 @@ def _read(file: IO[bytes], name: str) -> Assembly:
 
 
 class _Builder:
-    """Makes the assembly from checked entries; parts share equal meshes and equal shapes."""
+    """Makes the assembly from checked entries; parts share equal meshes, shapes and outlines."""
 
     def __init__(self, archive: Archive) -> None:
         self._archive = archive
         self._assets: dict[tuple[str, str], MeshAsset] = {}
-        self._shapes: dict[tuple[str, tuple[tuple[str, float], ...]], ShapeBody] = {}
+        self._shapes: dict[tuple[str, tuple[tuple[str, float], ...], _Loops | None], ShapeBody] = {}
+        self._outlines: dict[_Loops, Outline] = {}
 
     def assembly(self, document: DocumentEntry) -> Assembly:
         """Return the assembly that the checked entries describe."""
@@ -151,10 +155,17 @@ class _Builder:
         return KnownAxial(entry.mass, entry.centre, entry.inertia_about_axis, entry.length, entry.source)
 
     def _shape(self, entry: ShapeEntry) -> ShapeBody:
-        same = (entry.shape, tuple(sorted(entry.dimensions.items())))
+        loops = None if entry.outline is None else tuple(tuple(loop.points) for loop in entry.outline)
+        same = (entry.shape, tuple(sorted(entry.dimensions.items())), loops)
         if same not in self._shapes:
-            self._shapes[same] = ShapeBody(_shape(entry))
+            outline = None if loops is None else self._outline(loops)
+            self._shapes[same] = ShapeBody(_shape(entry, outline))
         return self._shapes[same]
+
+    def _outline(self, loops: _Loops) -> Outline:
+        if loops not in self._outlines:
+            self._outlines[loops] = Outline.of(*loops)
+        return self._outlines[loops]
 
     def _asset(self, sha256: str, name: str) -> MeshAsset:
         if (sha256, name) not in self._assets:
@@ -212,7 +223,7 @@ def _driver(entry: DriverEntry) -> Driver:
     return DataSheet() if entry.kind == "data sheet" else NotSet()
 
 
-def _shape(entry: ShapeEntry) -> Shape:
+def _shape(entry: ShapeEntry, outline: Outline | None) -> Shape:
     if entry.shape not in SHAPES:
         raise DocumentError(
             "there is no such shape in this version", read=repr(entry.shape),
@@ -222,4 +233,10 @@ def _shape(entry: ShapeEntry) -> Shape:
     missing = [one.label for one in family.dimensions if one.name not in entry.dimensions]
     if missing:
         raise DocumentError(f"the {missing[0]} is missing", where=family.title, remedy=_REMEDY)
-    return family.of(entry.dimensions)
+    if not issubclass(family, OutlinedShape):
+        if outline is not None:
+            raise DocumentError("this shape has no outline", where=family.title, remedy=_REMEDY)
+        return family.of(entry.dimensions)
+    if outline is None:
+        raise DocumentError("the outline is missing", where=family.title, remedy=_REMEDY)
+    return family.of(entry.dimensions, outline)

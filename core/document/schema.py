@@ -10,6 +10,8 @@ from typing import Annotated, Literal, TypeAlias
 
 from pydantic import BaseModel, ConfigDict, Field, Strict
 
+from core.shapes.profile import MOST_LOOPS, MOST_POINTS
+
 # No length, mass or inertia of a machine comes near this; the fifth power of it is still a finite number.
 LARGEST_NUMBER = 1e30
 LONGEST_NAME = 500
@@ -21,6 +23,7 @@ Number: TypeAlias = Annotated[float, Field(ge=-LARGEST_NUMBER, le=LARGEST_NUMBER
 Positive: TypeAlias = Annotated[float, Field(gt=0, le=LARGEST_NUMBER, allow_inf_nan=False)]
 # A JSON list is the only way to write a tuple; what is in it stays strict.
 Three: TypeAlias = Annotated[tuple[Number, Number, Number], Strict(strict=False)]
+Four: TypeAlias = Annotated[tuple[Number, Number, Number, Number], Strict(strict=False)]
 Six: TypeAlias = Annotated[tuple[Number, Number, Number, Number, Number, Number], Strict(strict=False)]
 Name: TypeAlias = Annotated[str, Field(max_length=LONGEST_NAME)]
 Text: TypeAlias = Annotated[str, Field(max_length=LONGEST_TEXT)]
@@ -135,12 +138,19 @@ DriverEntry: TypeAlias = Annotated[
 ]
 
 
+class LoopEntry(_Entry):
+    """One loop of an outline: x, y, corner rounding and radius of the arc to the next point, of each point."""
+
+    points: Annotated[list[Four], Field(max_length=MOST_POINTS)]
+
+
 class ShapeEntry(_Entry):
-    """A body from dimensions; which shapes and dimensions there are, core.shapes.SHAPES says."""
+    """A body from dimensions, some from an outline too; which there are, core.shapes.SHAPES says."""
 
     kind: Literal["shape"]
     shape: Name
     dimensions: Annotated[dict[Name, Number], Field(max_length=MOST_ENTRIES)]
+    outline: Annotated[list[LoopEntry], Field(max_length=MOST_LOOPS)] | None = None
 
 
 class MeshEntry(_Entry):

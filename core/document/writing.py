@@ -21,6 +21,7 @@ from core.assembly import (
 from core.document.migration import MAJOR, MINOR, Data
 from core.material import ByDensity, ByMaterial, PerArea, PerLength, Weighed
 from core.placement import Copies, Mirrored, Pose, Ring, Row
+from core.shapes import OutlinedShape
 
 
 def data_of_assembly(assembly: Assembly) -> Data:
@@ -81,7 +82,11 @@ def _copies(copies: Copies) -> Data:
 
 def _body(body: Body) -> Data:
     if isinstance(body, ShapeBody):
-        return {"kind": "shape", "shape": body.shape.key, "dimensions": body.shape.values()}
+        entry: Data = {"kind": "shape", "shape": body.shape.key, "dimensions": body.shape.values()}
+        if isinstance(body.shape, OutlinedShape):
+            loops = body.shape.outline.loops
+            entry["outline"] = [{"points": [_floats(point) for point in loop]} for loop in loops]
+        return entry
     if isinstance(body, MeshBody):
         asset = body.asset
         return {

@@ -11,6 +11,7 @@ from core.shapes.cylinder import Cylinder, Tube
 from core.shapes.ellipsoid import Ellipsoid
 from core.shapes.point import PointMass
 from core.shapes.prism import RegularPrism
+from core.shapes.profile import Extruded, Outline, OutlinedShape, OutlinePoint, PlaneMoments, Turned
 from core.shapes.pyramid import Pyramid, Tetrahedron
 from core.shapes.sheet import ThinDisc, ThinSheet
 from core.shapes.shell import ConicalShell, CylindricalShell, DomedShell, SphericalShell, ToroidalShell
@@ -31,10 +32,15 @@ __all__ = [
     "Dimension",
     "DomedShell",
     "Ellipsoid",
+    "Extruded",
     "Frustum",
     "Hemisphere",
     "HollowFrustum",
     "HollowSphere",
+    "Outline",
+    "OutlinePoint",
+    "OutlinedShape",
+    "PlaneMoments",
     "PointMass",
     "Pyramid",
     "RegularPrism",
@@ -52,5 +58,6 @@ __all__ = [
     "ToroidalShell",
     "Torus",
     "Tube",
+    "Turned",
     "Wedge",
 ]

@@ -169,6 +169,24 @@ class Shape(ABC):
         Raises:
             ShapeError: an unknown name, or dimensions that make no body.
         """
+        cls.refuse_unknown(values)
+        return cls(**{one.name: values.get(one.name, one.default) for one in cls.dimensions})
+
+    def resized(self, values: Mapping[str, ArrayLike]) -> Self:
+        """Return a single shape with some dimensions changed, everything else as it is.
+
+        Raises:
+            ShapeError: an unknown name, or dimensions that make no body.
+        """
+        return type(self).of({**self.values(), **values})
+
+    @classmethod
+    def refuse_unknown(cls, values: Mapping[str, ArrayLike]) -> None:
+        """Refuse names that no dimension has.
+
+        Raises:
+            ShapeError: there is one.
+        """
         unknown = set(values) - {dimension.name for dimension in cls.dimensions}
         if unknown:
             known = ", ".join(dimension.name for dimension in cls.dimensions)
@@ -178,7 +196,6 @@ class Shape(ABC):
                 read=", ".join(sorted(unknown)),
                 remedy=f"Choose from {known}",
             )
-        return cls(**{one.name: values.get(one.name, one.default) for one in cls.dimensions})
 
 
 SHAPES: dict[str, type[Shape]] = {}
