@@ -16,7 +16,8 @@ from typing import TYPE_CHECKING, Final
 
 import numpy as np
 
-from core.mesh.curvature.frames import Frames, in_fan, patch_frames, straight_edges, tapered
+from core.mesh.curvature.frames import Frames, in_fan, patch_frames, straight_edges, tapered, with_taper
+from core.mesh.curvature.rulings import rulings, straight_rows
 from core.mesh.curvature.seams import COPLANAR, CORNER, CREASED
 from core.mesh.curvature.vectors import PAIRS, applied, cofactors, cross, determinant, dot, gathered, length
 
@@ -100,6 +101,9 @@ def fitted(surface: Surface, forms: PatchForms, seams: Seams, curved: IntArray, 
     fan_patches[surface.patches[fans]] = True
     strips = (certainty == 0) & ~surface.flat & (~surface.lone | fan_patches)
     frames = tapered(surface, forms, seams, frames, strips)
+    lines = rulings(surface, forms, seams, curved, leave=fan_patches)
+    frames = with_taper(frames, forms, lines.taper, lines.ruled)
+    pulls += straight_rows(forms, frames.axes, lines)
     again = curved[frames.tapered[surface.patches[curved]]]
     if len(again):
         _, anew, _ = _equations(surface, frames, seams, again, straight, progress=progress)
@@ -107,7 +111,7 @@ def fitted(surface: Surface, forms: PatchForms, seams: Seams, curved: IntArray, 
     progress.advance(len(curved) - len(again))
     mean, weight = _neighbours_mean(surface, seams, operators, certainty, curved)
     scaled = _solved(pulls, right, PULL_MEAN * weight, frames.scaled(mean))
-    open_ = surface.lone & (certainty == 0) & (weight < UNCERTAIN) & ~frames.tapered
+    open_ = surface.lone & (certainty == 0) & (weight < UNCERTAIN) & ~frames.tapered & ~lines.ruled
     scaled[:, open_] = _bent_one_way(normal[:, open_], scaled[:, open_])
     return Fit(frames, np.ascontiguousarray(scaled.T), frames.world(scaled))
 

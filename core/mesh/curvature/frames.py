@@ -126,8 +126,6 @@ def tapered(surface: Surface, forms: PatchForms, seams: Seams, frames: Frames, c
     """
     count = len(surface.flat)
     sides = np.flatnonzero(seams.peers & np.repeat(candidates[surface.patches], 3))
-    if not len(sides):
-        return frames
     out, lengths = conormals(surface, sides)
     patch = surface.patches[sides // 3]
     start = gathered(surface.points, surface.corners[sides // 3, (sides % 3 + 1) % 3])
@@ -138,6 +136,10 @@ def tapered(surface: Surface, forms: PatchForms, seams: Seams, frames: Frames, c
     together = np.bincount(patch, lengths, count)
     at_centroid = np.bincount(patch, lengths * offset, count)
     good = candidates & (length(gradient) < OPPOSITE * together) & (at_centroid > 0)
-    taper = np.where(good, gradient / np.where(good, at_centroid, 1.0), 0.0)
-    table = np.concatenate([taper, dot(taper, forms.centroids.T)[None]])
-    return replace(frames, taper=np.ascontiguousarray(table.T), tapered=good)
+    return with_taper(frames, forms, gradient / np.where(good, at_centroid, 1.0), good)
+
+
+def with_taper(frames: Frames, forms: PatchForms, taper: FloatArray, where: BoolArray) -> Frames:
+    """Return the frames with the gradient of −ω (3, p) set where (p,) is true."""
+    table = np.concatenate([taper, dot(taper, forms.centroids.T)[None]]).T
+    return replace(frames, taper=np.where(where[:, None], table, frames.taper), tapered=frames.tapered | where)
