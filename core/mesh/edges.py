@@ -38,6 +38,7 @@ class Leaks:
         fill: (m, 3, 3) triangles that close the surface, or None where it cannot be closed.
         gap: the widest crack, file units; 0 unless the verdict is "hairline cracks".
         reason: why fill is None, else "".
+        bulge: volume that flat caps may be wrong by, see bulge_of; 0 without caps.
     """
 
     verdict: str
@@ -46,6 +47,7 @@ class Leaks:
     fill: FloatArray | None
     gap: float
     reason: str
+    bulge: float = 0.0
 
 
 @dataclass(frozen=True, eq=False)
@@ -64,14 +66,17 @@ def find_leaks(triangles: NDArray[np.floating]) -> Leaks:
     ends = _directed(tally)
     count, edges = len(ends), points[ends]
     diagonal = float(np.linalg.norm(np.ptp(points, axis=0)))
-    welded, gap = _welded(points, ends, WELD * diagonal)
-    if _balances(welded.indices[ends]):
+    welded, gap = welded_edges(points, ends, WELD * diagonal)
+    if balances(welded.indices[ends]):
         return Leaks("hairline cracks", count, edges, _strips(points[ends], welded.places[ends]), gap, "")
     if not (tally.uses % 2).any():
         return Leaks("mixed winding", count, edges, None, 0.0, "facets wind both ways")
     if np.abs(tally.net).max() > 1:
         return Leaks("open", count, edges, None, 0.0, "open edges on which several facets end")
-    return Leaks("open", count, edges, _caps(points, loops_of(ends)), 0.0, "")
+    loops = loops_of(ends)
+    caps = caps_of(points, loops)
+    _, bulges = bulge_of(caps, np.repeat(np.arange(len(loops)), [len(loop) for loop in loops]))
+    return Leaks("open", count, edges, caps, 0.0, "", float(bulges.sum()))
 
 
 def unbalanced_edges(corners: IntArray) -> EdgeTally:
@@ -127,12 +132,14 @@ def _directed(tally: EdgeTally) -> IntArray:
 
 
 @dataclass(frozen=True, eq=False)
-class _Welded:
+class Welded:
+    """Points after a weld: the new index (n,) and place (n, 3) of each point."""
+
     indices: IntArray
     places: FloatArray
 
 
-def _welded(points: FloatArray, ends: IntArray, tolerance: float) -> tuple[_Welded, float]:
+def welded_edges(points: FloatArray, ends: IntArray, tolerance: float) -> tuple[Welded, float]:
     """Weld the vertices on open edges within tolerance; return new indices and places, and the widest gap."""
     on_edge = np.unique(ends)
     groups = clusters_within(points[on_edge], tolerance)
@@ -143,10 +150,10 @@ def _welded(points: FloatArray, ends: IntArray, tolerance: float) -> tuple[_Weld
     places = points.copy()
     places[on_edge] = middle[groups]
     gap = 2 * float(np.linalg.norm(places[on_edge] - points[on_edge], axis=1).max(initial=0.0))
-    return _Welded(indices, places), gap
+    return Welded(indices, places), gap
 
 
-def _balances(ends: IntArray) -> bool:
+def balances(ends: IntArray) -> bool:
     """Tell whether directed edges (k, 2) cancel one another."""
     proper = ends[ends[:, 0] != ends[:, 1]]
     if len(proper) == 0:
@@ -167,7 +174,7 @@ def _strips(edges: FloatArray, places: FloatArray) -> FloatArray:
     ])
 
 
-def _caps(points: FloatArray, loops: list[IntArray]) -> FloatArray:
+def caps_of(points: FloatArray, loops: list[IntArray]) -> FloatArray:
     """Return the fans (m, 3, 3) that close loops against their own direction, about their lines' centroids."""
     sizes = np.array([len(loop) for loop in loops])
     first = np.cumsum(sizes) - sizes
@@ -180,3 +187,17 @@ def _caps(points: FloatArray, loops: list[IntArray]) -> FloatArray:
     middles = np.add.reduceat(weights[:, None] * 0.5 * (start + stop), first)
     centres = middles / np.add.reduceat(weights, first)[:, None]
     return np.stack([stop, start, np.repeat(centres, sizes, axis=0)], axis=1)
+
+
+def bulge_of(caps: FloatArray, loop: IntArray) -> tuple[FloatArray, FloatArray]:
+    """Return the area of each loop's flat cap, and how much volume the surface that is missing there may hold.
+
+    What is missing is taken to bulge at most as far as a hemisphere on a round hole of equal area A:
+    2/3·A·√(A/π). That is an estimate, not a bound: it grows with the hole, as what nobody knows about it does.
+
+    Args:
+        caps: (m, 3, 3) triangles. loop: (m,) which loop each closes, from 0.
+    """
+    normal = np.cross(caps[:, 1] - caps[:, 0], caps[:, 2] - caps[:, 0])
+    area = np.bincount(loop, 0.5 * np.linalg.norm(normal, axis=1))
+    return area, 2 / 3 * area * np.sqrt(area / np.pi)

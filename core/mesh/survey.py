@@ -56,6 +56,11 @@ class MeshSurvey:
         crack_volume: how much hairline cracks can change the volume, at most; 0 without cracks.
         crack_centre: how far they can move the centre, at most.
         crack_inertia: how much they can change the inertia about any axis through the centre, at most.
+        open_volume: how much the volume of an open mesh may be off because its holes were closed flat: what would
+            bulge out of them like a hemisphere on a round hole of equal area A, the sum of 2/3·A·√(A/π). An
+            estimate, not a bound; 0 for other verdicts.
+        open_centre: how far that can move the centre.
+        open_inertia: how much it can change the inertia about any axis through the centre.
     """
 
     triangles: int
@@ -72,6 +77,9 @@ class MeshSurvey:
     crack_volume: float = 0.0
     crack_centre: float = 0.0
     crack_inertia: float = 0.0
+    open_volume: float = 0.0
+    open_centre: float = 0.0
+    open_inertia: float = 0.0
 
     @property
     def diagonal(self) -> float:
@@ -172,11 +180,11 @@ def _judged(source: TriangleSource, sums: Sums, reference: FloatArray, leaks: Le
             solid = -solid
             verdict = INSIDE_OUT if leaks is None else verdict
             notes.append("The facets faced inwards; they were turned to face outwards.")
-    volume, centre, inertia = _crack_bounds(leaks, sums, size)
+    crack = _bounds(leaks.gap * sums.area if leaks else 0.0, sums, size)
+    bulge = _bounds(leaks.bulge if leaks else 0.0, sums, size)
     return MeshSurvey(
-        triangles=sums.triangles, format=source.format, area=sums.area, solid=solid, verdict=verdict,
-        closed=leaks is None, open_edges=leaks.open_edges if leaks else 0, basis=basis, bounds=frozen(sums.bounds),
-        degenerate=sums.degenerate, notes=tuple(notes), crack_volume=volume, crack_centre=centre, crack_inertia=inertia,
+        sums.triangles, source.format, sums.area, solid, verdict, leaks is None, leaks.open_edges if leaks else 0,
+        basis, frozen(sums.bounds), sums.degenerate, tuple(notes), *crack, *bulge,
     )
 
 
@@ -189,13 +197,12 @@ def _far_note(bounds: FloatArray, size: float) -> Iterator[str]:
         )
 
 
-def _crack_bounds(leaks: Leaks | None, sums: Sums, size: float) -> tuple[float, float, float]:
-    """Return how much cracks can change volume, centre and inertia.
+def _bounds(volume: float, sums: Sums, size: float) -> tuple[float, float, float]:
+    """Return how much a volume whose place is not known can change volume, centre and inertia.
 
-    No point of the true surface is farther than the gap from the facets, so between both lies at most
-    gap × area, and none of it farther from the centre than the diagonal.
+    Of cracks it is gap × area: no point of the true surface is farther than the gap from the facets. None of it lies
+    farther from the centre than the diagonal.
     """
-    volume = leaks.gap * sums.area if leaks else 0.0
     if volume == 0 or sums.volume == 0:
         return 0.0, 0.0, 0.0
     return volume, volume * size / abs(sums.volume), volume * size**2

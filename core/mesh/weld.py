@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.mesh.closure import EdgeSum
+from core.mesh.grouping import group_equal
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -25,14 +26,23 @@ def weld_exactly(triangles: NDArray[np.floating]) -> tuple[FloatArray, IntArray]
         part = triangles[start : start + _CHUNK]
         columns = np.ascontiguousarray(part.reshape(len(part), 9).T, dtype=stored) + 0.0
         hashes[start : start + _CHUNK] = edges.vertex_hashes(columns).T
-    _, first, corners = np.unique(hashes.ravel(), return_index=True, return_inverse=True)
-    corners = corners.reshape(len(triangles), 3)
-    points = triangles.reshape(-1, 3)[first] + 0.0
-    if not np.array_equal(points[corners], triangles):
+    groups = group_equal(hashes.ravel())
+    # The first of each group, whatever its sign of zero: adding 0.0 makes both zeros one.
+    facet, corner = np.divmod(groups.order[groups.starts], 3)
+    points = triangles[facet, corner] + 0.0
+    corners = groups.of_elements().reshape(len(triangles), 3)
+    if not _same(points, corners, triangles):
         # Two vertices with one hash: never met, but then the slow way is the right one.
         points, corners = np.unique(triangles.reshape(-1, 3) + 0.0, axis=0, return_inverse=True)
         corners = corners.reshape(len(triangles), 3)
-    return points.astype(np.float64), corners.astype(np.int64)
+    return points.astype(np.float64), corners.astype(np.int64, copy=False)
+
+
+def _same(points: NDArray[np.floating], corners: IntArray, triangles: NDArray[np.floating]) -> bool:
+    return all(
+        np.array_equal(points.take(corners[start : start + _CHUNK], axis=0), triangles[start : start + _CHUNK])
+        for start in range(0, len(corners), _CHUNK)
+    )
 
 
 def clusters_within(points: FloatArray, tolerance: float) -> IntArray:
