@@ -5,11 +5,13 @@ from typing import ClassVar
 
 import numpy as np
 
-from core.arrays import ArrayLike, FloatArray
+from core.arrays import ArrayLike
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
 from core.shapes.round_surface import turned_surface
+
+NO_BORE = (0.0, 0.0)
 
 
 @register
@@ -29,7 +31,7 @@ class Cone(Shape):
 
     def moments(self) -> Moments:
         """Return the moments at unit density; the centre lies at h/4, J = 3·m·D²/40 about the axis."""
-        return _frustum_moments(self.array("base_diameter") / 2, np.zeros(()), self.array("height"))
+        return _hollow_moments((self.array("base_diameter") / 2, 0.0), NO_BORE, self.array("height"))
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a pyramid inscribed in the cone, in m."""
@@ -56,8 +58,8 @@ class Frustum(Shape):
 
     def moments(self) -> Moments:
         """Return the moments at unit density; equal diameters give the cylinder, a top of 0 the cone."""
-        base, top = self.array("base_diameter") / 2, self.array("top_diameter") / 2
-        return _frustum_moments(base, top, self.array("height"))
+        outer = self.array("base_diameter") / 2, self.array("top_diameter") / 2
+        return _hollow_moments(outer, NO_BORE, self.array("height"))
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a cut-off pyramid inscribed in the frustum, in m, its ends as fans."""
@@ -108,8 +110,8 @@ class HollowFrustum(Shape):
 
     def moments(self) -> Moments:
         """Return the moments at unit density; nothing cancels but the wall's own D − B and d − b."""
-        outer = np.stack(np.broadcast_arrays(self.array("base_diameter"), self.array("top_diameter"))) / 2
-        bore = np.stack(np.broadcast_arrays(self.array("base_bore"), self.array("top_bore"))) / 2
+        outer = self.array("base_diameter") / 2, self.array("top_diameter") / 2
+        bore = self.array("base_bore") / 2, self.array("top_bore") / 2
         return _hollow_moments(outer, bore, self.array("height"))
 
     def facets(self, steps: int = 48) -> Facets:
@@ -119,15 +121,17 @@ class HollowFrustum(Shape):
         return turned_surface(outline, steps)
 
 
-def _hollow_moments(outer: FloatArray, bore: FloatArray, height: FloatArray) -> Moments:
-    """Return the moments for radii outer and bore (2, ...) at base and top.
+def _hollow_moments(
+    outer: tuple[ArrayLike, ArrayLike], bore: tuple[ArrayLike, ArrayLike], height: ArrayLike
+) -> Moments:
+    """Return the moments for radii of outside and bore, each at base and top.
 
     The area of a slice is π·(A − i)·(A + i), and Σx² over it π/4·(A − i)·(A + i)·(A² + i²), with A and i straight
     lines over the height. As Bernstein polynomials all their coefficients are positive, and so is every term of
-    the integrals, which are means of these coefficients: a thin wall loses no digits.
+    the integrals, which are means of these coefficients: a thin wall loses no digits, and equal ends are nothing
+    special.
     """
-    outer, bore, h = np.broadcast_arrays(outer, bore, height)
-    (a, b), (i, j), h = outer, bore, h[0]
+    a, b, i, j, h = (np.asarray(length) for length in (*outer, *bore, height))
     c0, c2 = (a - i) * (a + i), (b - j) * (b + j)
     c1 = ((a - i) * (b + j) + (b - j) * (a + i)) / 2
     q0, q1, q2 = a**2 + i**2, a * b + i * j, b**2 + j**2
@@ -137,17 +141,3 @@ def _hollow_moments(outer: FloatArray, bore: FloatArray, height: FloatArray) -> 
     fourth = c0 * (6 * q0 + 3 * q1 + q2) + c1 * (3 * q0 + 4 * q1 + 3 * q2) + c2 * (q0 + 3 * q1 + 6 * q2)
     across = fourth / (40 * area)
     return upright_moments(np.pi * h * area / 3, centre, (across, across, along * h**2 / (80 * area**2)))
-
-
-def _frustum_moments(base: ArrayLike, top: ArrayLike, height: ArrayLike) -> Moments:
-    """Return the moments for end radii a (base) and b (top).
-
-    The usual formulas divide a⁵ − b⁵ by a³ − b³; here that division is carried out, so that equal radii are
-    nothing special. All integrals are ∫ tⁱ(1−t)ʲ dt over the height.
-    """
-    a, b, h = np.asarray(base), np.asarray(top), np.asarray(height)
-    squares = a**2 + a * b + b**2
-    centre = h * (a**2 + 2 * a * b + 3 * b**2) / (4 * squares)
-    across = 3 * (a**4 + a**3 * b + a**2 * b**2 + a * b**3 + b**4) / (20 * squares)
-    along = 3 * h**2 * (a**4 + 4 * a**3 * b + 10 * a**2 * b**2 + 4 * a * b**3 + b**4) / (80 * squares**2)
-    return upright_moments(np.pi * h * squares / 3, centre, (across, across, along))

@@ -122,12 +122,14 @@ class ToothedWheel(Shape):
         width, hole = self.array("width"), self.array("bore") / 2
         start, rise = form.root_roll, _rise(form)
         end = start + rise
-        cubes = rise * (end**2 + end * start + start**2) / 3
-        fifths = rise * (end**4 + end**3 * start + end**2 * start**2 + end * start**3 + start**4) / 5
+        high, low, mixed = end**2, start**2, end * start
+        cubes = rise * (high + mixed + low) / 3
+        fifths = rise * (high**2 + mixed * (high + low) + high * low + low**2) / 5
         space = np.pi / z - form.root_half
-        tip, root, base = form.tip, form.root, form.base
-        area = z * (tip**2 * form.tip_half + root**2 * space + base**2 * cubes) - np.pi * hole**2
-        polar = z / 2 * (tip**4 * form.tip_half + root**4 * space + base**4 * (cubes + fifths)) - np.pi / 2 * hole**4
+        tip, root, base, bore = form.tip**2, form.root**2, form.base**2, hole**2
+        area = z * (tip * form.tip_half + root * space + base * cubes) - np.pi * bore
+        fourths = tip**2 * form.tip_half + root**2 * space + base**2 * (cubes + fifths)
+        polar = z / 2 * fourths - np.pi / 2 * bore**2
         across = polar / (2 * area)
         return upright_moments(area * width, width / 2, (across, across, width**2 / 12))
 
