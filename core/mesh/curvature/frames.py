@@ -130,6 +130,9 @@ def tapered(surface: Surface, forms: PatchForms, seams: Seams, frames: Frames, c
     patch = surface.patches[sides // 3]
     start = gathered(surface.points, surface.corners[sides // 3, (sides % 3 + 1) % 3])
     offset = dot(out, start - gathered(forms.centroids, patch))
+    # A side may be cut into several edges, and one side may be longer than the other: each side counts once.
+    _, side = np.unique(patch * count + surface.patches[surface.mates[sides] // 3], return_inverse=True)
+    lengths /= np.bincount(side, lengths)[side] if len(side) else 1.0
     gradient = np.empty((3, count))
     for i in range(3):
         gradient[i] = np.bincount(patch, lengths * out[i], count)
