@@ -66,14 +66,8 @@ class ArraySource:
     format = "triangles"
 
     def __init__(self, triangles: ArrayLike, name: str = "mesh") -> None:
-        array = np.asarray(triangles)
-        if array.shape[1:] != (3, 3) or len(array) == 0:
-            raise ValueRefused(
-                "a mesh needs triangles of three points", where=name, read=f"an array of shape {array.shape}",
-                remedy="Give an array of shape (n, 3, 3) with n of at least 1",
-            )
         self.name = name
-        self._triangles = array if array.dtype == np.float32 else array.astype(np.float64)
+        self._triangles = triangles_of(triangles, name)
 
     @property
     def dtype(self) -> np.dtype[np.floating]:
@@ -90,3 +84,18 @@ class ArraySource:
         for start in range(0, len(self._triangles), most):
             part = self._triangles[start : start + most]
             yield part, len(part)
+
+
+def triangles_of(triangles: ArrayLike, name: str = "mesh") -> NDArray[np.floating]:
+    """Return triangles (n, 3, 3) as an array; float32 is kept, anything else becomes float64.
+
+    Raises:
+        ValueRefused: another shape, or no triangle.
+    """
+    array = np.asarray(triangles)
+    if array.shape[1:] != (3, 3) or len(array) == 0:
+        raise ValueRefused(
+            "a mesh needs triangles of three points", where=name, read=f"an array of shape {array.shape}",
+            remedy="Give an array of shape (n, 3, 3) with n of at least 1",
+        )
+    return array if array.dtype == np.float32 else array.astype(np.float64)

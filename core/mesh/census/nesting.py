@@ -1,0 +1,188 @@
+"""Which shells lie in which, and which only meet: by boxes first, then by rays.
+
+A point lies in a closed shell when a ray from it leaves the shell once more often than it enters. The rays run along
+z; whether a ray meets a facet is decided in the x-y plane, edge by edge, each edge seen from its lower end by both of its
+facets, so that no ray slips between two facets or meets both.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.mesh.boxes import BoxTree
+
+if TYPE_CHECKING:
+    from core.arrays import BoolArray, FloatArray, IntArray
+    from core.mesh.census.shells import Sizes
+    from core.mesh.grouping import Labels
+    from core.progress import Progress
+
+# Pairs of shells with meeting boxes beyond which nobody could read the findings, and memory would run out.
+MOST_PAIRS = 5_000_000
+# Points tried per shell: at least, at most, and for all shells together.
+_FEWEST, _MOST, _ALL = 3, 24, 20_000
+# Of a facet's corners: inside it, and never in line with other corners of a drawing made of round numbers.
+_WEIGHTS = np.array([0.4317, 0.3129, 0.2554])
+_RAY_BLOCK = 200_000
+_BOX_BLOCK = 1_000
+
+
+@dataclass(frozen=True, eq=False)
+class Nesting:
+    """How shells lie to one another.
+
+    Attributes:
+        inside: (k,) innermost shell around each, or −1.
+        depth: (k,) how many shells lie around each.
+        crossing: (p, 2) pairs of shells that may cut into each other: boxes overlap, neither lies in the other.
+        complete: False where too many boxes overlap to look at; nothing is then said about any pair.
+    """
+
+    inside: IntArray
+    depth: IntArray
+    crossing: IntArray
+    complete: bool
+
+
+def nesting_of(
+    points: FloatArray, corners: IntArray, label: Labels, sizes: Sizes, closed: BoolArray, progress: Progress | None
+) -> Nesting:
+    """Return how the shells lie to one another; only those that are closed (k,) take part."""
+    count = len(closed)
+    nobody = np.full(count, -1), np.zeros(count, np.int64)
+    nothing = np.empty((0, 2), np.int64)
+    shells = np.flatnonzero(closed)
+    if len(shells) < 2:
+        return Nesting(*nobody, nothing, complete=True)
+    pairs = _meeting(sizes.bounds[shells], progress)
+    if pairs is None:
+        return Nesting(*nobody, nothing, complete=False)
+    pairs = shells[pairs]
+    inner, outer = np.concatenate([pairs, pairs[:, ::-1]]).T
+    low, high = sizes.bounds[:, 0], sizes.bounds[:, 1]
+    fits = ((low[outer] <= low[inner]) & (high[inner] <= high[outer])).all(axis=1)
+    inner, outer = inner[fits], outer[fits]
+    share = _share_inside(points, corners, label, sizes, inner, outer, progress)
+    wholly = share == 1
+    depth = np.bincount(inner[wholly], minlength=count)
+    inside = _innermost(inner[wholly], outer[wholly], depth)
+    nested = np.concatenate([inner[wholly] * count + outer[wholly], outer[wholly] * count + inner[wholly]])
+    overlap = np.minimum(high[pairs[:, 0]], high[pairs[:, 1]]) - np.maximum(low[pairs[:, 0]], low[pairs[:, 1]])
+    crossing = (overlap > 0).all(axis=1) & ~np.isin(pairs[:, 0] * count + pairs[:, 1], nested)
+    return Nesting(inside, depth, pairs[crossing], complete=True)
+
+
+def _meeting(bounds: FloatArray, progress: Progress | None) -> IntArray | None:
+    """Return the pairs (p, 2), lower number first, of boxes (k, 2, 3) that meet; None where they are too many."""
+    low, high = bounds[:, 0], bounds[:, 1]
+    tree, found, total = BoxTree(low, high), [], 0
+    for start in range(0, len(bounds), _BOX_BLOCK):
+        askers, boxes = tree.meeting(low[start : start + _BOX_BLOCK], high[start : start + _BOX_BLOCK])
+        askers = askers + start
+        pairs = np.stack([askers, boxes], axis=1)[askers < boxes]
+        found.append(pairs)
+        total += len(pairs)
+        if total > MOST_PAIRS:
+            return None
+        if progress is not None:
+            progress.advance(0)
+    return np.concatenate(found)
+
+
+def _innermost(inner: IntArray, outer: IntArray, depth: IntArray) -> IntArray:
+    """Return the deepest of the shells around each (k,), or −1."""
+    result = np.full(len(depth), -1)
+    order = np.argsort(depth[outer], kind="stable")
+    # Of several values for one place the last one, the deepest, stays.
+    result[inner[order]] = outer[order]
+    return result
+
+
+def _share_inside(
+    points: FloatArray, corners: IntArray, label: Labels, sizes: Sizes, inner: IntArray, outer: IntArray,
+    progress: Progress | None,
+) -> FloatArray:
+    """Return which share of some points on shell inner (p,) lie in shell outer (p,)."""
+    if len(inner) == 0:
+        return np.empty(0)
+    asking, ask = np.unique(inner, return_inverse=True)
+    places, owner = _points_on(points, corners, sizes, asking)
+    around = np.zeros(len(sizes.area), dtype=bool)
+    around[outer] = True
+    facets = np.flatnonzero(around[label])
+    # Winding numbers by (point, pair of shells): only wanted pairs are kept.
+    wanted = ask * len(sizes.area) + outer
+    order = np.argsort(wanted)
+    sorted_wanted = wanted[order]
+    per_shell = np.bincount(owner, minlength=len(asking))
+    first_point = np.cumsum(per_shell) - per_shell
+    room = per_shell[ask[order]]
+    first_row = np.cumsum(room) - room
+    winding = np.zeros(int(room.sum()), np.int64)
+    tree = BoxTree(places, places)
+    for start in range(0, len(facets), _RAY_BLOCK):
+        chosen = facets[start : start + _RAY_BLOCK]
+        facet, point, turns = _stabs(points, corners[chosen], places, tree)
+        keys = owner[point] * len(sizes.area) + label[chosen[facet]]
+        place = np.minimum(np.searchsorted(sorted_wanted, keys), len(sorted_wanted) - 1)
+        hit = sorted_wanted[place] == keys
+        row = first_row[place[hit]] + point[hit] - first_point[owner[point[hit]]]
+        np.add.at(winding, row, turns[hit])
+        if progress is not None:
+            progress.advance(0)
+    share = np.add.reduceat((winding != 0).astype(float), first_row) / room
+    result = np.empty(len(inner))
+    result[order] = share
+    return result
+
+
+def _points_on(
+    points: FloatArray, corners: IntArray, sizes: Sizes, shells: IntArray
+) -> tuple[FloatArray, IntArray]:
+    """Return points (q, 3) on facets of shells (s,) spread over their lists, and which shell (of s) each is on."""
+    begin = sizes.starts[shells]
+    count = np.diff(sizes.starts, append=len(sizes.order))[shells]
+    tried = np.minimum(count, int(np.clip(_ALL // len(shells), _FEWEST, _MOST)))
+    owner = np.repeat(np.arange(len(shells)), tried)
+    step = np.arange(len(owner)) - np.repeat(np.cumsum(tried) - tried, tried)
+    facets = sizes.order[begin[owner] + step * count[owner] // tried[owner]]
+    return np.einsum("c,ncx->nx", _WEIGHTS, points[corners[facets]]), owner
+
+
+def _stabs(
+    points: FloatArray, corners: IntArray, places: FloatArray, tree: BoxTree
+) -> tuple[IntArray, IntArray, IntArray]:
+    """Return (facet, place, ±1) wherever the ray up from a place meets a facet; +1 where it leaves."""
+    triangles = points[corners]
+    low, high = triangles.min(axis=1), triangles.max(axis=1)
+    low[:, 2] = -np.inf
+    facet, place = tree.meeting(low, high)
+    at, corner = places[place], corners[facet]
+    turns = np.zeros(len(facet), np.int64)
+    for side in range(3):
+        turns += _crossing(points, corner[:, side], corner[:, (side + 1) % 3], at)
+    met = turns != 0
+    facet, place, turns, at = facet[met], place[met], turns[met], at[met]
+    a, b, c = np.moveaxis(triangles[facet], 1, 0)
+    normal = np.cross(b - a, c - a)
+    # Height of the facet's plane above the place, times the normal's z component, which is not 0 where a ray meets it.
+    above = np.einsum("ni,ni->n", a - at, normal) * np.sign(normal[:, 2]) > 0
+    return facet[above], place[above], turns[above]
+
+
+def _crossing(points: FloatArray, start: IntArray, stop: IntArray, at: FloatArray) -> IntArray:
+    """Return how the edges start→stop wind round places (n, 3) in the x-y plane: +1, −1 or 0.
+
+    An edge counts where it crosses the line from the place towards +x, its lower end included, its upper one not.
+    """
+    # Seen from the same end by both facets of the edge, so that rounding is the same for both.
+    swap = start > stop
+    one, other = points[np.where(swap, stop, start)], points[np.where(swap, start, stop)]
+    up = (one[:, 1] <= at[:, 1]) & (at[:, 1] < other[:, 1])
+    down = (other[:, 1] <= at[:, 1]) & (at[:, 1] < one[:, 1])
+    left = (other[:, 0] - one[:, 0]) * (at[:, 1] - one[:, 1]) - (at[:, 0] - one[:, 0]) * (other[:, 1] - one[:, 1])
+    winds = np.where(up & (left > 0), 1, 0) - np.where(down & (left < 0), 1, 0)
+    return np.where(swap, -winds, winds)

@@ -1,0 +1,144 @@
+"""Taking the census of a mesh."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.errors import MeshFileError
+from core.mesh.census.nesting import Nesting, nesting_of
+from core.mesh.census.openings import OpenLoop, Openings, openings_of
+from core.mesh.census.overlaps import Overlaps, overlaps_of
+from core.mesh.census.sheets import Doubles, Seams, doubles_of, facet_hashes, seams_of, sheets_of
+from core.mesh.census.shells import THIN, Shells, Sizes, roles_of, sizes_of
+from core.mesh.census.winding import Winding, winding_of
+from core.mesh.cracks import Cracks, cracks_of
+from core.mesh.grouping import group_equal
+from core.mesh.stl_faults import MEND
+from core.mesh.weld import weld_exactly
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from core.arrays import BoolArray, FloatArray, IntArray
+    from core.progress import Progress
+
+_STAGES = 8
+
+
+@dataclass(frozen=True, eq=False)
+class Evidence:
+    """Everything that was found out about a mesh; what it means, the findings say.
+
+    Attributes:
+        triangles: (n, 3, 3) as they came.
+        points, corners: the mesh over shared points; open edges closer than a crack are sewn.
+        doubles, seams, winding, openings, nesting, overlaps: see there.
+        cracks: what a weld would close, or None.
+        shells: see there.
+        twin: (k,) the first shell that is the very same as this one; its own number where there is none.
+        turned: whether the mesh as a whole faces inwards.
+        loops: the open edges.
+    """
+
+    triangles: NDArray[np.floating]
+    points: FloatArray
+    corners: IntArray
+    doubles: Doubles
+    seams: Seams
+    winding: Winding
+    cracks: Cracks | None
+    shells: Shells
+    twin: IntArray
+    nesting: Nesting
+    overlaps: Overlaps
+    turned: bool
+    loops: tuple[OpenLoop, ...]
+
+
+def evidence_of(triangles: NDArray[np.floating], progress: Progress | None) -> Evidence:
+    """Return what can be found out about triangles (n, 3, 3), n at least 1.
+
+    Raises:
+        MeshFileError: a coordinate that is not finite.
+        Cancelled: progress was cancelled.
+    """
+    step = _steps(progress)
+    points, corners = weld_exactly(triangles)
+    if not np.isfinite(points).all():
+        raise MeshFileError("a coordinate is not a finite number", where="the mesh", read="nan or inf", remedy=MEND)
+    step()
+    doubles = doubles_of(corners)
+    step()
+    seams = seams_of(corners, doubles.copy)
+    step()
+    cracks = cracks_of(points, corners, seams.open)
+    if cracks is not None:
+        points, corners = cracks.points, cracks.corners
+        doubles = doubles_of(corners)
+        seams = seams_of(corners, doubles.copy)
+    sheet = sheets_of(len(corners), seams)
+    step()
+    openings = openings_of(points, corners, seams.open)
+    winding = winding_of(seams, sheet, _areas(points, corners) if len(seams.against) else np.empty(0))
+    step()
+    cap_sheet = np.array([sheet[beside[0]] for beside in openings.facets], np.int64)[openings.cap_loop]
+    sizes = sizes_of(points, corners, sheet, openings.caps, cap_sheet)
+    step()
+    open_sheets = np.zeros(len(sizes.area), dtype=bool)
+    open_sheets[sheet[seams.open // 3]] = True
+    open_sheets[sheet[seams.against.ravel() // 3]] = True
+    twin = _twins(corners, sizes)
+    flat = _is_flat(sizes)
+    nesting = nesting_of(points, corners, sheet, sizes, _alone(twin) & ~open_sheets & ~flat, progress)
+    nesting = replace(nesting, inside=nesting.inside[twin], depth=nesting.depth[twin])
+    step()
+    volume = sizes.bodies.mass
+    turned = bool(volume[~open_sheets | (len(volume) == 1)].sum() < 0)
+    role = roles_of(-volume if turned else volume, open_sheets, flat, nesting.depth)
+    pairs = nesting.crossing
+    same_way = (volume[pairs[:, 0]] > 0) == (volume[pairs[:, 1]] > 0)
+    overlaps = overlaps_of(points, corners, sizes, pairs[same_way], progress)
+    step()
+    shells = Shells(sheet, sizes.bodies, sizes.area, sizes.bounds, nesting.inside, nesting.depth, role, sizes.order,
+                    sizes.starts)
+    return Evidence(triangles, points, corners, doubles, seams, winding, cracks, shells, twin, nesting, overlaps,
+                    turned, openings.described(sheet))
+
+
+class _steps:
+    def __init__(self, progress: Progress | None) -> None:
+        self._progress = progress
+        if progress is not None:
+            progress.begin(_STAGES)
+
+    def __call__(self) -> None:
+        if self._progress is not None:
+            self._progress.advance()
+
+
+def _areas(points: FloatArray, corners: IntArray) -> FloatArray:
+    a, b, c = (points[column] for column in corners.T)
+    return 0.5 * np.linalg.norm(np.cross(b - a, c - a), axis=1)
+
+
+def _is_flat(sizes: Sizes) -> BoolArray:
+    diagonal = np.linalg.norm(sizes.bounds[:, 1] - sizes.bounds[:, 0], axis=1)
+    return np.abs(sizes.bodies.mass) <= THIN * sizes.area * diagonal
+
+
+def _twins(corners: IntArray, sizes: Sizes) -> IntArray:
+    """Return for each shell the first one that consists of the very same facets."""
+    count = len(sizes.area)
+    if count == 1:
+        return np.zeros(1, np.int64)
+    hashes = np.add.reduceat(facet_hashes(corners)[sizes.order], sizes.starts)
+    groups = group_equal(hashes)
+    numbers = groups.of_elements()
+    return groups.order[groups.starts][numbers]
+
+
+def _alone(twin: IntArray) -> BoolArray:
+    return twin == np.arange(len(twin))
