@@ -13,12 +13,16 @@ from core.material import (
     ByDensity,
     ByMaterial,
     NotSet,
+    PerArea,
+    PerLength,
     Weighed,
     check_density,
+    check_measure,
     implied_density,
     material,
     search,
 )
+from core.measure import Measure
 from core.quantity import Kind, parse
 
 
@@ -93,8 +97,32 @@ def test_each_driver_says_its_mass_its_basis_and_its_label() -> None:
     assert [driver.label for driver in drivers] == ["aluminium EN AW-6082", "7200 kg/m³", "weighed", "not set"]
 
 
-def test_a_density_driver_shows_a_label_that_reads_back() -> None:
+def test_the_drivers_of_thin_bodies_say_their_mass_their_basis_and_their_label() -> None:
+    assert PerArea(12.0).mass_of(0.25) == 3.0
+    assert PerLength(0.8).mass_of(2.5) == 2.0
+    drivers = (PerArea(12.0), PerLength(0.8))
+    assert [(driver.basis, driver.label) for driver in drivers] == [("computed", "12 kg/m²"), ("computed", "0.8 kg/m")]
+
+
+def test_a_driver_that_multiplies_shows_a_label_that_reads_back() -> None:
     assert parse(ByDensity(1234.5).label, Kind.DENSITY).value == 1234.5
+    assert parse(PerArea(31.4).label, Kind.AREA_DENSITY).value == 31.4
+    assert parse(PerLength(0.617).label, Kind.LINEAR_DENSITY).value == 0.617
+
+
+DRIVERS = (ByMaterial("steel", 7850.0), ByDensity(7850.0), PerArea(12.0), PerLength(0.8))
+
+
+@pytest.mark.parametrize("measure", ["volume", "area", "length", "pieces"])
+def test_a_driver_is_taken_exactly_where_the_body_has_what_it_multiplies(measure: Measure) -> None:
+    for driver in (NotSet(), Weighed(1.2)):
+        check_measure(driver, measure, "cover")
+    for driver in DRIVERS:
+        if driver.measure == measure:
+            check_measure(driver, measure, "cover")
+        else:
+            with pytest.raises(MaterialError, match=f"cover: a .* read {driver.label}"):
+                check_measure(driver, measure, "cover")
 
 
 @given(st.floats(1e-3, 1e3), st.floats(1e-9, 1.0))
@@ -111,7 +139,7 @@ def test_no_volume_implies_no_density() -> None:
 
 @pytest.mark.parametrize("value", [0.0, -1.0, math.nan, math.inf])
 def test_a_mass_or_density_that_is_no_positive_number_is_refused(value: float) -> None:
-    for make in (ByDensity, Weighed, lambda density: ByMaterial("steel", density)):
+    for make in (ByDensity, Weighed, PerArea, PerLength, lambda density: ByMaterial("steel", density)):
         with pytest.raises(MaterialError, match="is a number greater than zero"):
             make(value)
 
