@@ -62,7 +62,7 @@ class Outline:
 
     >>> washer = Outline((circle_loop(0.05), circle_loop(0.02)))
     >>> round(float(washer.plane.area) / 3.141592653589793, 12)
-    0.0021
+    0.000525
     """
 
     loops: tuple[Loop, ...]
