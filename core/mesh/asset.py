@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from hashlib import sha256
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -21,25 +21,33 @@ from core.mesh.weld import weld_exactly
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
+    from core.arrays import IntArray
+    from core.mesh.census import Census
     from core.mesh.curvature import Restored
     from core.progress import Progress
 
 
 @dataclass(frozen=True, eq=False)
 class MeshAsset:
-    """An STL file as a value; two assets are equal where their bytes are.
+    """An STL file as a value; two assets are equal where their bytes and what was mended are.
 
     Attributes:
         data: the file's bytes; a gzip'ed file's are unpacked.
-        name: the file's name without its folder.
+        name: the file's name without its folder, of one body among several with that body's own name.
         sha256: of data, hexadecimal.
         survey: of the file, in its own length unit.
+        mends: what was mended since it was read, in words, one after the other.
+        source: SHA-256 of the data before the first mend; "" where nothing was mended.
+        metres_per_unit: the length unit that the file itself names, m; None where it names none.
     """
 
     data: bytes
     name: str
     sha256: str
     survey: MeshSurvey
+    mends: tuple[str, ...] = ()
+    source: str = ""
+    metres_per_unit: float | None = None
 
     @classmethod
     def read(cls, path: str | Path, progress: Progress | None = None) -> MeshAsset:
@@ -68,7 +76,9 @@ class MeshAsset:
         return cls(plain, name, sha256(plain).hexdigest(), survey)
 
     def __eq__(self, other: object) -> bool:
-        return isinstance(other, MeshAsset) and self.sha256 == other.sha256
+        return isinstance(other, MeshAsset) and (
+            (self.sha256, self.mends, self.source) == (other.sha256, other.mends, other.source)
+        )
 
     def __hash__(self) -> int:
         return hash(self.sha256)
@@ -85,6 +95,49 @@ class MeshAsset:
         triangles = gathered(source, self.survey.triangles)
         triangles.flags.writeable = False
         return triangles
+
+    def census(self, progress: Progress | None = None) -> Census:
+        """Return what the mesh consists of and all that is wrong with it; seconds per million facets.
+
+        Raises:
+            Cancelled: progress was cancelled.
+        """
+        from core.mesh.census import census
+
+        return census(self.triangles, progress)
+
+    def mended(
+        self, mend: str, facets: IntArray | None = None, progress: Progress | None = None
+    ) -> MeshAsset:
+        """Return a new asset with one mend done and listed; this one stays as it is.
+
+        The mended mesh is held as binary STL, so that coordinates of a text file are rounded to about seven digits.
+
+        Args:
+            mend: a key of core.mesh.mend.MENDS.
+            facets: (k,) those to turn, of the finding that the mend stands beside; None: all.
+            progress: to be cancelled by.
+
+        Raises:
+            EditRefused: the mend has nothing to do here, or would leave something worse.
+            Cancelled: progress was cancelled.
+        """
+        from core.mesh.mend import MENDS, without_collapsed
+        from core.mesh.stl_writing import stl_of_triangles
+
+        before = self.triangles
+        after = MENDS[mend].function(before, facets, progress)
+        if after.dtype != np.float32:
+            # Rounded, corners of a facet may fall together; what is dropped with it takes no edge out of balance.
+            after = without_collapsed(after.astype(np.float32))
+        how = f"{len(facets)} of {len(before)} facets" if facets is not None and mend == "turn" else (
+            f"{len(before)} facets" if len(before) == len(after) else f"{len(before)} facets became {len(after)}"
+        )
+        made = MeshAsset.of_bytes(stl_of_triangles(after, self.name), self.name, progress)
+        return replace(
+            made, mends=(*self.mends, f"{MENDS[mend].done} ({how})"), source=self.source or self.sha256,
+            metres_per_unit=self.metres_per_unit,
+        )
 
     def count_shells(self, progress: Progress | None = None) -> int:
         """Return of how many separate surfaces the mesh consists: facets that share no vertex with one another.

@@ -82,7 +82,7 @@ def evidence_of(triangles: NDArray[np.floating], progress: Progress | None) -> E
     sheet = sheets_of(len(corners), seams)
     step()
     openings = openings_of(points, corners, seams.open)
-    winding = winding_of(seams, sheet, _areas(points, corners) if len(seams.against) else np.empty(0))
+    winding = winding_of(seams, sheet, areas_of(points, corners) if len(seams.against) else np.empty(0))
     step()
     cap_sheet = np.array([sheet[beside[0]] for beside in openings.facets], np.int64)[openings.cap_loop]
     sizes = sizes_of(points, corners, sheet, openings.caps, cap_sheet)
@@ -119,7 +119,7 @@ class _steps:
             self._progress.advance()
 
 
-def _areas(points: FloatArray, corners: IntArray) -> FloatArray:
+def areas_of(points: FloatArray, corners: IntArray) -> FloatArray:
     a, b, c = (points[column] for column in corners.T)
     return 0.5 * np.linalg.norm(np.cross(b - a, c - a), axis=1)
 
