@@ -17,6 +17,7 @@ if TYPE_CHECKING:
     from collections.abc import Callable, Sequence
 
     from app.window.session import Session
+    from core.quantity import Unit
 
 Index = QModelIndex | QPersistentModelIndex
 MIME = "application/x-masswright-lines"
@@ -188,16 +189,21 @@ class LedgerModel(QAbstractItemModel):
         line, column = self.line(index), index.column()
         if role == LINE_ROLE:
             return line
-        if role in {Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.EditRole, COPY_ROLE}:
+        if role == COPY_ROLE:
+            return cell_to_copy(self.session, line, column)
+        if role in {Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.EditRole}:
             return cell_text(self.session, line, column, role)
-        if role == Qt.ItemDataRole.ToolTipRole and column == INDEX["material"] and line.basis:
-            return f"Values: {line.basis}"
-        if role == Qt.ItemDataRole.ToolTipRole and column == INDEX["name"]:
-            return line.name
+        return self._said(line, column, role)
+
+    def _said(self, line: Line, column: int, role: int) -> str | None:
+        """Return what is said about a cell: its tool tip, or what a screen reader says."""
+        if role == Qt.ItemDataRole.ToolTipRole:
+            tips = {INDEX["name"]: line.name, INDEX["material"]: f"{line.material}\nValues: {line.basis}".strip()}
+            return tips.get(column)
         if role == Qt.ItemDataRole.AccessibleTextRole:
             text = cell_text(self.session, line, column, Qt.ItemDataRole.DisplayRole)
             heading = COLUMNS[column].heading.format(axis=self.session.assembly.drive)
-            return f"{heading} {text} {self._unit_text(column)}"
+            return f"{heading} {text} {self._unit_text(column)}".strip()
         return None
 
     def setData(self, index: Index, value: object, role: int = Qt.ItemDataRole.EditRole) -> bool:
@@ -295,10 +301,12 @@ class FootModel(QAbstractTableModel):
             return total
         if role == Qt.ItemDataRole.ToolTipRole:
             return COLUMNS[index.column()].tip
-        if role not in {Qt.ItemDataRole.DisplayRole, COPY_ROLE}:
-            return None
         words = {INDEX["name"]: "TOTAL", INDEX["count"]: ""}
-        return words.get(index.column(), cell_text(self.session, total, index.column(), role))
+        if role == COPY_ROLE:
+            return words.get(index.column(), cell_to_copy(self.session, total, index.column()))
+        if role == Qt.ItemDataRole.DisplayRole:
+            return words.get(index.column(), cell_text(self.session, total, index.column(), role))
+        return None
 
 
 def moved_lines(assembly: Assembly, keys: list[str], group: str | None, row: int | None) -> Assembly:
@@ -317,8 +325,21 @@ def moved_lines(assembly: Assembly, keys: list[str], group: str | None, row: int
     return assembly
 
 
+def cell_to_copy(session: Session, line: Line, column: int) -> float | int | str:
+    """Return what a cell holds for a spreadsheet: a number in the unit shown, or a text; "" where there is none."""
+    value = COLUMNS[column].value(line)
+    if value is None or isinstance(value, (str, int)):
+        return "" if value is None else value
+    return float(_unit(session, column).from_si(value))
+
+
+def _unit(session: Session, column: int) -> Unit:
+    kind = COLUMNS[column].kind
+    return UNITS["%"] if kind in {None, Kind.NUMBER} else session.units[Kind(str(kind))]
+
+
 def cell_text(session: Session, line: Line, column: int, role: int) -> str:
-    """Return a cell's text: as shown, as edited, or as copied (full precision, for a spreadsheet)."""
+    """Return a cell's text: as shown, or as edited (full precision)."""
     spec = COLUMNS[column]
     value = spec.value(line)
     if value is None:
@@ -327,7 +348,7 @@ def cell_text(session: Session, line: Line, column: int, role: int) -> str:
         return value
     if isinstance(value, int):
         return str(value)
-    unit = UNITS["%"] if spec.kind in {None, Kind.NUMBER} else session.units[Kind(str(spec.kind))]
+    unit = _unit(session, column)
     if role != Qt.ItemDataRole.DisplayRole:
         return copied(session, value, unit)
     return shown(session, value, unit, spec.digits) + (" %" if unit.symbol == "%" else "")

@@ -27,6 +27,7 @@ if TYPE_CHECKING:
 
     from app.window.session import Session
     from core.assembly import Assembly
+    from core.handover.table import Cell
 
 # All columns fit into a window 1280 wide, with a scroll bar beside them.
 WIDTHS = {"name": 200, "count": 48, "material": 180, "mass": 90, "x": 76, "y": 76, "z": 80, "own": 104, "transfer": 104,
@@ -145,8 +146,8 @@ class LedgerTree(QTreeView):
             self.setCurrentIndex(index)
             self.edit(index)
 
-    def block(self) -> list[list[str]]:
-        """Return the selected cells as rows of texts to copy, in the order shown; cells between them are empty."""
+    def block(self) -> list[list[Cell]]:
+        """Return the selected cells as rows to copy, in the order shown; cells between them are empty."""
         header = self.header()
         shown = sorted(
             (at for at in range(len(COLUMNS)) if not header.isSectionHidden(at)), key=header.visualIndex
@@ -154,7 +155,7 @@ class LedgerTree(QTreeView):
         chosen = {(index.internalId(), index.column()): index for index in self.selectedIndexes()}
         columns = [at for at in shown if any(column == at for _, column in chosen)]
         rows = [row for row in _rows(self, QModelIndex()) if any(key[0] == row.internalId() for key in chosen)]
-        cells = {place: str(index.data(COPY_ROLE)) for place, index in chosen.items()}
+        cells: dict[tuple[int, int], Cell] = {place: index.data(COPY_ROLE) for place, index in chosen.items()}
         return [[cells.get((row.internalId(), at), "") for at in columns] for row in rows]
 
     def places_from(self, start: QModelIndex) -> tuple[list[QModelIndex], list[int]]:
@@ -165,7 +166,7 @@ class LedgerTree(QTreeView):
         columns = sorted((at for at in range(len(COLUMNS)) if not header.isSectionHidden(at)), key=header.visualIndex)
         return lines[first:], columns[columns.index(start.column()) :]
 
-    def headings(self, chosen: QTreeView) -> list[str]:
+    def headings(self, chosen: QTreeView) -> list[Cell]:
         """Return the headings of the columns in which a tree's cells are selected, with their units."""
         columns = sorted({index.column() for index in chosen.selectedIndexes()}, key=self.header().visualIndex)
         across, shown = Qt.Orientation.Horizontal, Qt.ItemDataRole.DisplayRole
@@ -225,6 +226,7 @@ class LedgerPane(QWidget):
 
     def _tie_columns(self) -> None:
         header, below = self.tree.header(), self.foot.header()
+        header.setAccessibleName("Columns of the ledger")
         header.setSectionsMovable(True)
         header.setSectionResizeMode(QHeaderView.ResizeMode.Interactive)
         header.setStretchLastSection(True)
@@ -272,12 +274,12 @@ class LedgerPane(QWidget):
 
     def copy_block(self) -> str:
         """Put the selected cells on the clipboard, tab-separated; return that text, "" where none are selected."""
-        return _to_clipboard(self._cells())
+        return self._to_clipboard(self._cells())
 
     def copy_block_with_headings(self) -> str:
         """Put the selected cells on the clipboard under their columns' headings; return that text."""
         rows = self._cells()
-        return _to_clipboard([self.tree.headings(self._copied_from()), *rows] if rows else rows)
+        return self._to_clipboard([self.tree.headings(self._copied_from()), *rows] if rows else rows)
 
     def paste(self) -> None:
         """Put the clipboard's cells into the inputs from the current cell on, all of them or none."""
@@ -303,18 +305,20 @@ class LedgerPane(QWidget):
         else:
             self._session.edit(f"Paste {count} cell{'s' if count > 1 else ''}", change)
 
-    def _cells(self) -> list[list[str]]:
+    def _cells(self) -> list[list[Cell]]:
         if self._copied_from() is self.foot:
             chosen = sorted(self.foot.selectedIndexes(), key=lambda at: self.foot.header().visualIndex(at.column()))
-            return [[str(index.data(COPY_ROLE)) for index in chosen]]
+            return [[index.data(COPY_ROLE) for index in chosen]]
         return self.tree.block()
 
     def _copied_from(self) -> QTreeView:
         return self.foot if self.foot.hasFocus() and self.foot.selectedIndexes() else self.tree
 
-
-def _to_clipboard(rows: list[list[str]]) -> str:
-    text = tsv_of_block(rows) if rows else ""
-    if text:
-        QGuiApplication.clipboard().setText(text)
-    return text
+    def _to_clipboard(self, rows: list[list[Cell]]) -> str:
+        text = tsv_of_block(rows, self._session.decimal_mark) if rows else ""
+        if len(rows) == 1:
+            # One row goes into a field of a form as well as into a spreadsheet.
+            text = text.rstrip("\n")
+        if text:
+            QGuiApplication.clipboard().setText(text)
+        return text

@@ -58,6 +58,7 @@ class ChecksPage(QWidget):
         self.list.setIndentation(2 * GRID)
         self.list.setItemDelegate(WrappedText(self.list))
         header = self.list.header()
+        header.setAccessibleName("Columns of the checks")
         header.setSectionResizeMode(WORD, QHeaderView.ResizeMode.ResizeToContents)
         header.setSectionResizeMode(PART, QHeaderView.ResizeMode.ResizeToContents)
         header.setSectionResizeMode(TEXT, QHeaderView.ResizeMode.Stretch)
