@@ -10,7 +10,8 @@ from core.mesh.curvature import Restored, restore_triangles
 from core.moments import Moments
 
 FOLDER = Path(__file__).parents[1] / "facets"
-EXACT = json.loads((FOLDER / "exact.json").read_text())["parts"]
+LISTS = ("exact.json", "exact_more.json")
+EXACT = {name: part for each in LISTS for name, part in json.loads((FOLDER / each).read_text())["parts"].items()}
 FACET = np.dtype([("normal", "<f4", 3), ("corners", "<f4", (3, 3)), ("attribute", "<u2")])
 
 
@@ -38,8 +39,13 @@ def test_the_files_hold_the_triangles_that_their_list_says():
 
 
 @pytest.mark.parametrize("name", EXACT)
-def test_volume_and_inertia_of_each_solid_gain_at_least_a_hundredfold(found, name):
-    assert (errors(found[name].faceted, exact(name)) > 100 * errors(found[name].moments, exact(name))).all()
+def test_volume_and_inertia_of_each_solid_gain_at_least_fiftyfold(found, name):
+    assert (errors(found[name].faceted, exact(name)) > 50 * errors(found[name].moments, exact(name))).all()
+
+
+def test_the_median_gain_is_two_hundredfold(found):
+    gains = [errors(found[name].faceted, exact(name)) / errors(found[name].moments, exact(name)) for name in EXACT]
+    assert (np.median(gains, axis=0) > 200).all()
 
 
 @pytest.mark.parametrize("name", EXACT)
@@ -50,6 +56,6 @@ def test_what_is_left_is_within_its_estimate(found, name):
 
 
 @pytest.mark.parametrize("name", EXACT)
-def test_the_centre_comes_within_a_hundred_thousandth_of_the_size(found, name):
+def test_the_centre_comes_within_two_hundred_thousandths_of_the_size(found, name):
     size = np.sqrt(np.trace(exact(name).spread) / exact(name).mass)
-    assert np.abs(found[name].moments.centre - exact(name).centre).max() < 1e-5 * size
+    assert np.abs(found[name].moments.centre - exact(name).centre).max() < 2e-5 * size

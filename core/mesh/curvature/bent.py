@@ -78,22 +78,28 @@ def _products(a: FloatArray, b: FloatArray) -> FloatArray:
     return found
 
 
-def _rule() -> tuple[FloatArray, FloatArray]:
-    """Return barycentric nodes (12, 3) and weights (12,) on a triangle of area 1/2, exact to degree 6.
+def _rule(orbits: tuple[tuple[float, float, float], ...]) -> list[tuple[tuple[float, ...], float]]:
+    """Return barycentric nodes with their weights on a triangle of area 1/2, from (weight, λ₁, λ₂) of each orbit."""
+    return [
+        (node, 0.5 * weight) for weight, a, b in orbits for node in sorted(set(permutations((a, b, 1 - a - b))))
+    ]
 
-    Dunavant 1985, "High degree efficient symmetrical Gaussian quadrature rules for the triangle" (from memory; the
-    tests integrate all monomials up to that degree).
-    """
-    nodes, weights = [], []
-    for weight, a, b in (
-        (0.116786275726379, 0.249286745170910, 0.249286745170910),
-        (0.050844906370207, 0.063089014491502, 0.063089014491502),
-        (0.082851075618374, 0.053145049844817, 0.310352451033784),
-    ):
-        orbit = sorted(set(permutations((a, b, 1 - a - b))))
-        nodes.extend(orbit)
-        weights.extend([0.5 * weight] * len(orbit))
-    return np.array(nodes), np.array(weights)
+
+# Dunavant 1985, "High degree efficient symmetrical Gaussian quadrature rules for the triangle", degrees 6 and 4 (from
+# memory; the tests integrate all monomials up to those degrees). Volumes need degree 4; second moments degree 4 to
+# first order in the bend and degree 6 to second order.
+FINE_RULE: Final = _rule((
+    (0.116786275726379, 0.249286745170910, 0.249286745170910),
+    (0.050844906370207, 0.063089014491502, 0.063089014491502),
+    (0.082851075618374, 0.053145049844817, 0.310352451033784),
+))
+GENTLE_RULE: Final = _rule((
+    (0.223381589678011, 0.445948490915965, 0.445948490915965),
+    (0.109951743655322, 0.091576213509771, 0.091576213509771),
+))
+
+# Bends by less than this share of the sides need first order only: turns below about 5°.
+GENTLE: Final = 5e-3
 
 
 def bent_sums(corners: list[FloatArray], moved: FloatArray) -> tuple[float, FloatArray, FloatArray]:
@@ -105,7 +111,8 @@ def bent_sums(corners: list[FloatArray], moved: FloatArray) -> tuple[float, Floa
     a, b, c = corners
     d = 4 * moved
     side_u, side_v = b - a, c - a
-    for (p, u, v), weight in zip(*_rule(), strict=True):
+    gentle = np.abs(moved).max() <= GENTLE * np.sqrt(min(dot(side_u, side_u).min(), dot(side_v, side_v).min()))
+    for (p, u, v), weight in GENTLE_RULE if gentle else FINE_RULE:
         r = p * a + u * b + v * c + (u * v) * d[0] + (v * p) * d[1] + (p * u) * d[2]
         along_u = side_u + v * (d[0] - d[1]) + (p - u) * d[2]
         along_v = side_v + u * (d[0] - d[2]) + (p - v) * d[1]
@@ -126,7 +133,7 @@ def dome_sums(corners: list[FloatArray], dome: Dome, heights: FloatArray) -> tup
     a, b, c = corners
     tapered = [0.5 * (dome.omegas[(k + 1) % 3] + dome.omegas[(k + 2) % 3]) * heights[k] for k in range(3)]
     area = 4 * length(cross(b - a, c - a))
-    for (p, u, v), weight in zip(*_rule(), strict=True):
+    for (p, u, v), weight in FINE_RULE:
         quadratic = u * v * heights[0] + v * p * heights[1] + p * u * heights[2]
         raised = u * v * tapered[0] + v * p * tapered[1] + p * u * tapered[2]
         omega = p * dome.omegas[0] + u * dome.omegas[1] + v * dome.omegas[2]

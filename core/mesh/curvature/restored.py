@@ -176,16 +176,19 @@ def _summed(surface: Surface, seams: Seams, found: Bulges, progress: Progress) -
     doubts, places = [], []
     for start in range(0, len(surface.corners), CHUNK):
         chunk = chunk_of(surface, np.arange(start, min(start + CHUNK, len(surface.corners))))
-        flat.add(flat_sums(_seen_from(reference, chunk)))
+        corners = _seen_from(reference, chunk)
+        as_it_is = flat_sums(corners)
+        flat.add(as_it_is)
         moved = displacements(surface, seams, found.heights, chunk)
         bent = (moved != 0).any(axis=(0, 1))
         progress.advance(len(bent))
         if not bent.all():
             chunk, moved = part_of(chunk, bent), moved.compress(bent, axis=2)
-        if len(chunk.triangles):
             corners = _seen_from(reference, chunk)
+            as_it_is = flat_sums(corners)
+        if len(chunk.triangles):
             more.add(bent_sums(corners, moved))
-            more.add(flat_sums(corners), -1.0)
+            more.add(as_it_is, -1.0)
             doubts.append(_doubts(surface, seams, found, chunk, moved))
             places.append((corners[0] + corners[1] + corners[2]) / 3)
     if flat.volume == 0:

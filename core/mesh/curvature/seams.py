@@ -58,7 +58,7 @@ ENOUGH: Final = 2
 OBLIQUE: Final = 0.3
 
 # Rim edges that are looked at together: they stay in the processor's cache.
-CHUNK: Final = 16_000
+CHUNK: Final = 8_000
 
 # Edges of one patch that are compared with each other; patches with more are flats in all but odd cases.
 MOST_COMPARED: Final = 24
@@ -118,15 +118,12 @@ class _Beyond:
     Attributes:
         share, bend: share of them that is smooth, and their mean curvature.
         strict_share, strict_bend: the same, from those that have no wide flat beyond.
-        turn: largest turn of the patch's other smooth edges, opposite or not. far_turn: of the opposite ones.
     """
 
     share: FloatArray
     bend: FloatArray
     strict_share: FloatArray
     strict_bend: FloatArray
-    turn: FloatArray
-    far_turn: FloatArray
 
 
 def classify(surface: Surface, forms: PatchForms) -> Seams:
@@ -193,10 +190,33 @@ def _spoken_for(surface: Surface, rim: _Rim) -> tuple[BoolArray, BoolArray]:
     miss = np.where(flat_beyond, half_miss, full_miss)
     ok = rim.smooth & (miss < np.interp(np.abs(rim.turn), TURNS, ALIKE)) & (share > FAR_SIDE)
     ok &= ~narrow & ~surface.flat[rim.patch]
-    # Where the curvature across the edge passes through zero, both turns are small and their ratio says nothing.
-    small = (np.abs(rim.turn) < SMALL_TURN * beyond.turn) & (beyond.far_turn < SMALL_TURN * beyond.turn)
-    small &= (beyond.share > 1 - FAR_SIDE) & (rim.count <= QUAD) & ~wide & ~narrow & rim.smooth
+    small = np.zeros_like(ok)
+    doubtful = rim.smooth & ~ok & (beyond.share > 1 - FAR_SIDE) & (rim.count <= QUAD) & ~wide & ~narrow
+    at = np.flatnonzero(doubtful)
+    small[at] = _small_turns(rim, at)
     return ok | (small & small[rim.mate]), flat_beyond & ok
+
+
+def _small_turns(rim: _Rim, at: IntArray) -> BoolArray:
+    """Say for the rim edges at (n,) whether they and those opposite turn little beside their patch's other edges.
+
+    There the curvature across the edge passes through zero, and the ratio of two small turns says nothing.
+    """
+    largest, opposite = np.zeros((2, len(at)))
+    for step in range(1, QUAD):
+        other, facing = _facing(rim, at, step)
+        turn = np.abs(rim.turn[other]) * (rim.smooth[other] & (rim.beyond[other] != rim.beyond[at]))
+        np.maximum(largest, turn, out=largest)
+        np.maximum(opposite, turn * (facing > 0), out=opposite)
+    return (np.abs(rim.turn[at]) < SMALL_TURN * largest) & (opposite < SMALL_TURN * largest)
+
+
+def _facing(rim: _Rim, at: IntArray, step: int) -> tuple[IntArray, FloatArray]:
+    """Return the step-th next rim edge of the same patch, and how squarely it faces: 1 opposite, 0 beside."""
+    start = rim.first[at]
+    other = start + (at - start + step) % rim.count[at]
+    facing = -dot(rim.out.take(at, axis=1), rim.out.take(other, axis=1))
+    return other, facing * (facing > OBLIQUE) * (rim.beyond[other] != rim.beyond[at])
 
 
 def _among_lone(surface: Surface, rim: _Rim) -> BoolArray:
@@ -227,9 +247,8 @@ def _carried(surface: Surface, rim: _Rim, ok: BoolArray, calm: BoolArray) -> Boo
     backed = np.zeros(len(ok), dtype=bool)
     for step in range(1, MOST_COMPARED):
         at = at[rim.count[at] > step]
-        other = rim.first[at] + (at - rim.first[at] + step) % rim.count[at]
-        facing = -dot(rim.out.take(at, axis=1), rim.out.take(other, axis=1))
-        backed[at] |= sure[other] & (facing > OBLIQUE) & (rim.beyond[other] != rim.beyond[at])
+        other, facing = _facing(rim, at, step)
+        backed[at] |= sure[other] & (facing > 0)
     return sure | backed | (either & backed[rim.mate])
 
 
@@ -276,38 +295,32 @@ def _miss(here: FloatArray, beyond: FloatArray) -> FloatArray:
 
 def _compare(rim: _Rim, bend: FloatArray, wide: BoolArray) -> _Beyond:
     """Look across every patch from each of its rim edges to all others, the opposite ones."""
-    sums = np.zeros((7, len(rim.patch)))
+    sums = np.zeros((5, len(rim.patch)))
     for start in range(0, len(rim.patch), CHUNK):
-        at = np.arange(start, min(start + CHUNK, len(rim.patch)))
+        at = start + np.flatnonzero(rim.smooth[start : start + CHUNK])
         at = at[rim.count[at] <= MOST_COMPARED]
         for step in range(1, MOST_COMPARED):
             at = at[rim.count[at] > step]
             if not len(at):
                 break
             _look_across(rim, bend, wide, at, step=step, sums=sums)
-    everything, lengths, bends, strict_lengths, strict_bends, turns, far_turns = sums
+    everything, lengths, bends, strict_lengths, strict_bends = sums
     everything[everything == 0] = 1.0
     some, strict_some = np.maximum(lengths, 1e-300), np.maximum(strict_lengths, 1e-300)
-    return _Beyond(lengths / everything, bends / some, strict_lengths / everything, strict_bends / strict_some,
-                   turns, far_turns)
+    return _Beyond(lengths / everything, bends / some, strict_lengths / everything, strict_bends / strict_some)
 
 
 def _look_across(
     rim: _Rim, bend: FloatArray, wide: BoolArray, at: IntArray, *, step: int, sums: FloatArray
 ) -> None:
     """Add to the sums of the rim edges at what the step-th next one of the same patch says."""
-    other = rim.first[at] + (at - rim.first[at] + step) % rim.count[at]
-    apart = rim.beyond[other] != rim.beyond[at]
-    facing = np.maximum(-dot(rim.out.take(at, axis=1), rim.out.take(other, axis=1)), 0.0) * apart
-    facing[facing < OBLIQUE] = 0.0
-    weight = facing**2 * rim.length[other]
+    other, facing = _facing(rim, at, step)
+    weight = facing * facing * rim.length[other]
     sums[0, at] += weight
     weight *= rim.smooth[other]
     sums[1, at] += weight
-    sums[2, at] += weight * bend[other]
-    weight *= ~wide[other]
-    sums[3, at] += weight
-    sums[4, at] += weight * bend[other]
-    turn = np.where(rim.smooth[other] & apart, np.abs(rim.turn[other]), 0.0)
-    sums[5, at] = np.maximum(sums[5, at], turn)
-    sums[6, at] = np.maximum(sums[6, at], turn * (facing > 0))
+    weighted = weight * bend[other]
+    sums[2, at] += weighted
+    strict = ~wide[other]
+    sums[3, at] += weight * strict
+    sums[4, at] += weighted * strict

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from math import factorial
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -24,6 +25,7 @@ from round_bodies import (
 
 from core.errors import Cancelled, ValueRefused
 from core.mesh.curvature import Restored, restore, restore_triangles
+from core.mesh.curvature.bent import FINE_RULE, GENTLE_RULE
 from core.progress import Progress
 
 if TYPE_CHECKING:
@@ -192,6 +194,15 @@ def test_triangles_without_area_do_no_harm():
     sliver = np.array([[a, b, b], [b, a, a]])
     found = restore_triangles(np.concatenate([body.triangles, sliver]))
     assert errors(found.moments, restore_triangles(body.triangles).moments) == pytest.approx((0, 0), abs=1e-3)
+
+
+@pytest.mark.parametrize(("rule", "degree"), [(FINE_RULE, 6), (GENTLE_RULE, 4)], ids=["fine", "gentle"])
+def test_the_quadrature_rules_are_exact_for_every_monomial_up_to_their_degree(rule, degree):
+    nodes, weights = np.array([node for node, _ in rule]), np.array([weight for _, weight in rule])
+    for i in range(degree + 1):
+        for j in range(degree + 1 - i):
+            exact = factorial(i) * factorial(j) / factorial(i + j + 2)
+            assert weights @ (nodes[:, 1] ** i * nodes[:, 2] ** j) == pytest.approx(exact, abs=1e-14)
 
 
 def test_a_mesh_of_another_shape_is_refused():
