@@ -149,3 +149,29 @@ def test_a_tooth_is_half_a_pitch_wide_on_the_pitch_circle_and_lies_over_x():
     ends = [angle[on_tooth & (radius == level)] for level in levels]
     assert np.interp(0.036, levels, [end.max() for end in ends]) == pytest.approx(np.pi / 2 / 24, rel=1e-3)
     assert np.interp(0.036, levels, [end.min() for end in ends]) == pytest.approx(-np.pi / 2 / 24, rel=1e-3)
+
+
+WANTED = (
+    "box, cylinder, tube, cone, frustum, hollow frustum, sphere, hollow sphere, hemisphere, spherical cap, ellipsoid, "
+    "torus, regular prism, pyramid, wedge, tetrahedron, spoked wheel, toothed wheel, thin rod, thin ring, thin disc, "
+    "thin sheet, cylindrical shell, conical shell, spherical shell, domed shell, toroidal shell, point mass"
+)
+
+
+def test_the_whole_family_is_there():
+    assert set(WANTED.split(", ")) <= set(SHAPES)
+
+
+@pytest.mark.parametrize("key", sorted(SHAPES))
+def test_a_shape_says_what_it_idealises_in_whole_sentences_and_starts_within_its_limits(key):
+    family = SHAPES[key]
+    assert family.key == key
+    assert not family.note or (family.note[0].isupper() and family.note.endswith("."))
+    for one in family.dimensions:
+        assert one.least is None or one.default >= one.least
+        assert one.most is None or one.default <= one.most
+
+
+def test_no_two_shapes_have_the_same_title():
+    titles = [family.title for family in SHAPES.values()]
+    assert len(set(titles)) == len(titles)
