@@ -1,6 +1,7 @@
 """Bodies given by a few dimensions: moments in closed form and a surface to draw.
 
-Importing this package enters every shape into SHAPES (key → class).
+Importing this package enters every shape into SHAPES (key → class). A new family is one file with classes marked
+`@register`, and its import below; everything else finds it in SHAPES.
 """
 
 from core.shapes.base import SHAPES, Dimension, Shape

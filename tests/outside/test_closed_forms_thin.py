@@ -74,7 +74,7 @@ columns = ("shape", "measure", "height", "point", "direction", "per_mass")
 
 
 @pytest.mark.parametrize(columns, FORMS.values(), ids=FORMS)
-def test_a_thin_body_has_the_published_inertia(shape, measure, height, point, direction, per_mass):  # noqa: PLR0917 - a table's columns
+def test_a_thin_body_has_the_published_inertia(shape, measure, height, point, direction, per_mass):
     body = shape.moments()
     assert float(body.mass) == pytest.approx(measure, rel=1e-14)
     np.testing.assert_allclose(body.centre, [0, 0, height], rtol=1e-14, atol=1e-17)
@@ -83,7 +83,7 @@ def test_a_thin_body_has_the_published_inertia(shape, measure, height, point, di
 
 
 @pytest.mark.parametrize(columns, FORMS.values(), ids=FORMS)
-def test_so_it_has_with_mass_turned_and_forty_metres_away(shape, measure, height, point, direction, per_mass):  # noqa: PLR0917 - a table's columns
+def test_so_it_has_with_mass_turned_and_forty_metres_away(shape, measure, height, point, direction, per_mass):
     body = FAR.place(shape.moments().times(MASS_PER_MEASURE))
     assert float(body.mass) == pytest.approx(MASS_PER_MEASURE * measure, rel=1e-14)
     np.testing.assert_allclose(body.centre, FAR.apply([0, 0, height]), rtol=1e-14)
