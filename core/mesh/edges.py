@@ -6,12 +6,13 @@ Vertices are one where their bits are equal. The directed edges that meet no rev
 - "hairline cracks": all of them vanish once their vertices are welded within WELD of the mesh's diagonal. Narrow
   strips from each open edge to its welded place close the surface.
 - "mixed winding": every edge is shared by pairs of facets, but some of these turn opposite ways.
-- "open": anything else. The open edges form loops, each of which a fan about its centroid closes.
+- "open": anything else. The open edges form loops, each of which a fan about its centroid closes. Where they are wider
+  cracks, and sewing them leaves less open than fans would, they are sewn.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -25,6 +26,8 @@ if TYPE_CHECKING:
 
 # Of the diagonal of the bounding box: cracks narrower than this come from rounding, not from a missing facet.
 WELD = 1e-6
+# Wider cracks are looked for within these, one after the other; what is wider still is a hole.
+WIDTHS = (WELD, 1e-5, 1e-4, 1e-3)
 
 
 @dataclass(frozen=True, eq=False)
@@ -36,7 +39,7 @@ class Leaks:
         open_edges: how many directed edges meet no reverse.
         edges: (k, 2, 3) their end points, each edge as often as it is unmatched.
         fill: (m, 3, 3) triangles that close the surface, or None where it cannot be closed.
-        gap: the widest crack, file units; 0 unless the verdict is "hairline cracks".
+        gap: the widest crack that was sewn, file units; 0 where none was.
         reason: why fill is None, else "".
         bulge: volume that flat caps may be wrong by, see bulge_of; 0 without caps.
     """
@@ -59,16 +62,15 @@ class EdgeTally:
     uses: IntArray
 
 
-def find_leaks(triangles: NDArray[np.floating]) -> Leaks:
-    """Return where triangles (n, 3, 3), file units, do not close, and the facets that would close them."""
+def find_leaks(triangles: NDArray[np.floating], area: float) -> Leaks:
+    """Return where triangles (n, 3, 3) of that area, file units, do not close, and the facets that would close them."""
     points, corners = weld_exactly(triangles)
     tally = unbalanced_edges(corners)
     ends = _directed(tally)
     count, edges = len(ends), points[ends]
-    diagonal = float(np.linalg.norm(np.ptp(points, axis=0)))
-    welded, gap = welded_edges(points, ends, WELD * diagonal)
-    if balances(welded.indices[ends]):
-        return Leaks("hairline cracks", count, edges, _strips(points[ends], welded.places[ends]), gap, "")
+    sewn = closing_weld(points, ends)
+    if sewn is not None and sewn.hairline:
+        return Leaks("hairline cracks", count, edges, _strips(edges, sewn.places[ends]), sewn.gap, "")
     if not (tally.uses % 2).any():
         return Leaks("mixed winding", count, edges, None, 0.0, "facets wind both ways")
     if np.abs(tally.net).max() > 1:
@@ -76,6 +78,8 @@ def find_leaks(triangles: NDArray[np.floating]) -> Leaks:
     loops = loops_of(ends)
     caps = caps_of(points, loops)
     _, bulges = bulge_of(caps, np.repeat(np.arange(len(loops)), [len(loop) for loop in loops]))
+    if sewn is not None and sewn.gap * area < bulges.sum():
+        return Leaks("open", count, edges, _strips(edges, sewn.places[ends]), sewn.gap, "")
     return Leaks("open", count, edges, caps, 0.0, "", float(bulges.sum()))
 
 
@@ -133,14 +137,44 @@ def _directed(tally: EdgeTally) -> IntArray:
 
 @dataclass(frozen=True, eq=False)
 class Welded:
-    """Points after a weld: the new index (n,) and place (n, 3) of each point."""
+    """Points after a weld of those on open edges.
+
+    Attributes:
+        indices: (n,) the new index of each point.
+        places: (n, 3) its new place.
+        tolerance: within which points were made one, file units.
+        gap: the farthest that two of them were apart, at most.
+        hairline: whether the tolerance is WELD of the diagonal.
+    """
 
     indices: IntArray
     places: FloatArray
+    tolerance: float
+    gap: float
+    hairline: bool = False
 
 
-def welded_edges(points: FloatArray, ends: IntArray, tolerance: float) -> tuple[Welded, float]:
-    """Weld the vertices on open edges within tolerance; return new indices and places, and the widest gap."""
+def closing_weld(points: FloatArray, ends: IntArray) -> Welded | None:
+    """Return the narrowest weld in which open edges (k, 2) vanish because others meet them; None where none does.
+
+    Beyond hairline cracks an edge has to meet another: a small hole drawn together into one point is no crack.
+    """
+    if len(ends) == 0:
+        return None
+    diagonal = float(np.linalg.norm(np.ptp(points, axis=0)))
+    for width in WIDTHS:
+        welded = welded_edges(points, ends, width * diagonal)
+        there = welded.indices[ends]
+        if balances(there):
+            if width == WELD:
+                return replace(welded, hairline=True)
+            collapsed = there[:, 0] == there[:, 1]
+            return welded if 2 * np.count_nonzero(collapsed) < len(ends) else None
+    return None
+
+
+def welded_edges(points: FloatArray, ends: IntArray, tolerance: float) -> Welded:
+    """Return points (n, 3) after those on open edges (k, 2) were made one within tolerance, at their mean."""
     on_edge = np.unique(ends)
     groups = clusters_within(points[on_edge], tolerance)
     sizes = np.bincount(groups)
@@ -150,7 +184,7 @@ def welded_edges(points: FloatArray, ends: IntArray, tolerance: float) -> tuple[
     places = points.copy()
     places[on_edge] = middle[groups]
     gap = 2 * float(np.linalg.norm(places[on_edge] - points[on_edge], axis=1).max(initial=0.0))
-    return Welded(indices, places), gap
+    return Welded(indices, places, tolerance, gap)
 
 
 def balances(ends: IntArray) -> bool:
@@ -196,8 +230,9 @@ def bulge_of(caps: FloatArray, loop: IntArray) -> tuple[FloatArray, FloatArray]:
     2/3·A·√(A/π). That is an estimate, not a bound: it grows with the hole, as what nobody knows about it does.
 
     Args:
-        caps: (m, 3, 3) triangles. loop: (m,) which loop each closes, from 0.
+        caps: (m, 3, 3) triangles.
+        loop: (m,) which loop each closes, from 0.
     """
     normal = np.cross(caps[:, 1] - caps[:, 0], caps[:, 2] - caps[:, 0])
-    area = np.bincount(loop, 0.5 * np.linalg.norm(normal, axis=1))
+    area: FloatArray = np.bincount(loop, 0.5 * np.linalg.norm(normal, axis=1)).astype(np.float64)
     return area, 2 / 3 * area * np.sqrt(area / np.pi)

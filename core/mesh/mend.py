@@ -55,7 +55,7 @@ class Mend:
 
 def turn(triangles: Triangles, facets: IntArray | None = None) -> Triangles:
     """Return the triangles with some facets (k,), or all of them, wound the other way round."""
-    turned = triangles.copy()
+    turned: Triangles = triangles.copy()
     rows = slice(None) if facets is None else facets
     turned[rows] = turned[rows][:, ::-1]
     return turned
@@ -74,7 +74,7 @@ def weld(triangles: Triangles, tolerance: float) -> Triangles:
     ends = np.stack([corners.ravel()[seams.open], corners[:, [1, 2, 0]].ravel()[seams.open]], axis=1)
     if len(ends) == 0:
         raise EditRefused("there are no open edges to weld", remedy="Look at the other findings")
-    welded, _ = welded_edges(points, ends, tolerance)
+    welded = welded_edges(points, ends, tolerance)
     if not balances(welded.indices[ends]):
         raise EditRefused(
             "a weld within this distance leaves edges open", read=f"{tolerance:.3g}", remedy="Close the holes flat"
@@ -122,7 +122,8 @@ def drop_duplicates(triangles: Triangles) -> Triangles:
         raise EditRefused("no facet occurs twice", remedy="Look at the other findings")
     if spare.all():
         raise EditRefused("all facets lie back to back, so that none would be left", remedy="Leave the part out")
-    return triangles[~spare]
+    kept: Triangles = triangles[~spare]
+    return kept
 
 
 def rewind(triangles: Triangles) -> Triangles:
@@ -172,14 +173,16 @@ def unite(triangles: Triangles, progress: Progress | None = None) -> Triangles:
         bodies.append(solid - united(voids) if voids else solid)
     if not bodies:
         raise EditRefused("no shell encloses anything", remedy="Leave the part out")
-    return (facets_of_solid(united(bodies)) + origin).astype(triangles.dtype)
+    made: Triangles = (facets_of_solid(united(bodies)) + origin).astype(triangles.dtype)
+    return made
 
 
 def without_collapsed(triangles: Triangles) -> Triangles:
     """Return the triangles without those that have two corners at one place; what was closed stays so."""
     a, b, c = np.moveaxis(triangles, 1, 0)
     collapsed = (a == b).all(axis=1) | (b == c).all(axis=1) | (c == a).all(axis=1)
-    return triangles[~collapsed]
+    kept: Triangles = triangles[~collapsed]
+    return kept
 
 
 def _seams(corners: IntArray) -> Seams:
@@ -214,11 +217,11 @@ def _solid(evidence: Evidence, shell: int, origin: FloatArray) -> Any:
 
 MENDS: Mapping[str, Mend] = MappingProxyType({
     mend.name: mend for mend in (
-        Mend("turn", "Turn", "turned", lambda triangles, facets, _: turn(triangles, facets)),
-        Mend("weld", "Weld", "welded", lambda triangles, _facets, _: weld_cracks(triangles)),
-        Mend("close flat", "Close flat", "holes closed flat", lambda triangles, _facets, _: close_flat(triangles)),
-        Mend("drop duplicates", "Drop duplicates", "duplicates dropped", lambda triangles, _facets, _: drop_duplicates(triangles)),
-        Mend("rewind", "Rewind", "rewound", lambda triangles, _facets, _: rewind(triangles)),
-        Mend("unite", "Unite", "shells united", lambda triangles, _facets, progress: unite(triangles, progress)),
+        Mend("turn", "Turn", "turned", lambda mesh, facets, _: turn(mesh, facets)),
+        Mend("weld", "Weld", "welded", lambda mesh, _facets, _: weld_cracks(mesh)),
+        Mend("close flat", "Close flat", "holes closed flat", lambda mesh, _facets, _: close_flat(mesh)),
+        Mend("drop duplicates", "Drop duplicates", "duplicates dropped", lambda mesh, _facets, _: drop_duplicates(mesh)),
+        Mend("rewind", "Rewind", "rewound", lambda mesh, _facets, _: rewind(mesh)),
+        Mend("unite", "Unite", "shells united", lambda mesh, _facets, progress: unite(mesh, progress)),
     )
 })

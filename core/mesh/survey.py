@@ -29,7 +29,7 @@ if TYPE_CHECKING:
     from core.progress import Progress
 
 CLOSED, CRACKED, OPEN, INSIDE_OUT, MIXED = "closed", "hairline cracks", "open", "inside out", "mixed winding"
-COMPUTED, ESTIMATED = "computed", "estimated: holes closed flat"
+COMPUTED, ESTIMATED, SEWN = "computed", "estimated: holes closed flat", "estimated: cracks closed"
 
 # Volume over area × diagonal below which a mesh encloses nothing but round-off.
 FLAT = 1e-13
@@ -49,11 +49,12 @@ class MeshSurvey:
         verdict: "closed", "hairline cracks", "open", "inside out" or "mixed winding".
         closed: whether every directed edge meets its reverse, bit for bit.
         open_edges: how many directed edges meet none.
-        basis: "computed", "estimated: holes closed flat", or "no volume: " and the reason.
+        basis: "computed", "estimated: holes closed flat", "estimated: cracks closed" (open edges too far apart for
+            hairline cracks that still meet), or "no volume: " and the reason.
         bounds: (2, 3) lowest and highest coordinates.
         degenerate: facets without area; they are harmless.
         notes: sentences that belong beside the numbers.
-        crack_volume: how much hairline cracks can change the volume, at most; 0 without cracks.
+        crack_volume: how much cracks can change the volume, at most; 0 without cracks.
         crack_centre: how far they can move the centre, at most.
         crack_inertia: how much they can change the inertia about any axis through the centre, at most.
         open_volume: how much the volume of an open mesh may be off because its holes were closed flat: what would
@@ -135,7 +136,7 @@ def survey_source(source: TriangleSource, progress: Progress | None = None) -> M
     sums, reference = sum_up(source, progress)
     if sums.edge_sum == 0:
         return _judged(source, sums, reference, leaks=None)
-    leaks = find_leaks(gathered(source, sums.triangles))
+    leaks = find_leaks(gathered(source, sums.triangles), sums.area)
     if leaks.fill is not None:
         sums = _closed_with(sums, reference, leaks.fill)
     return _judged(source, sums, reference, leaks)
@@ -168,7 +169,9 @@ def _judged(source: TriangleSource, sums: Sums, reference: FloatArray, leaks: Le
     size = float(np.linalg.norm(sums.bounds[1] - sums.bounds[0]))
     notes = list(_far_note(sums.bounds, size))
     verdict = leaks.verdict if leaks else CLOSED
-    basis = ESTIMATED if verdict == OPEN else COMPUTED
+    basis = COMPUTED
+    if verdict == OPEN:
+        basis = SEWN if leaks is not None and leaks.gap else ESTIMATED
     solid = None
     if leaks is not None and leaks.fill is None:
         basis = f"no volume: {leaks.reason}"

@@ -1,8 +1,8 @@
 """Which shells lie in which, and which only meet: by boxes first, then by rays.
 
 A point lies in a closed shell when a ray from it leaves the shell once more often than it enters. The rays run along
-z; whether a ray meets a facet is decided in the x-y plane, edge by edge, each edge seen from its lower end by both of its
-facets, so that no ray slips between two facets or meets both.
+z; whether a ray meets a facet is decided in the x-y plane, edge by edge, each edge seen from the same end by both
+of its facets, so that no ray slips between two facets or meets both.
 """
 
 from __future__ import annotations
@@ -55,7 +55,7 @@ def nesting_of(
     nobody = np.full(count, -1), np.zeros(count, np.int64)
     nothing = np.empty((0, 2), np.int64)
     shells = np.flatnonzero(closed)
-    if len(shells) < 2:
+    if len(shells) <= 1:
         return Nesting(*nobody, nothing, complete=True)
     pairs = _meeting(sizes.bounds[shells], progress)
     if pairs is None:

@@ -11,6 +11,7 @@ from core.mesh.edges import bulge_of, caps_of, loops_of
 
 if TYPE_CHECKING:
     from core.arrays import FloatArray, IntArray
+    from core.mesh.grouping import Labels
 
 
 @dataclass(frozen=True, eq=False)
@@ -44,7 +45,7 @@ class Openings:
     cap_loop: IntArray
     points: FloatArray
 
-    def described(self, shell_of_facet: IntArray) -> tuple[OpenLoop, ...]:
+    def described(self, shell_of_facet: Labels) -> tuple[OpenLoop, ...]:
         """Return the loops with their sizes."""
         if not self.loops:
             return ()

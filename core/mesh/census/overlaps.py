@@ -100,7 +100,8 @@ class _Cutter:
     def _reaching(self, shell: int, low: FloatArray, high: FloatArray) -> IntArray:
         facets = self._facets(shell)
         triangles = self._points[self._corners[facets]]
-        return facets[((triangles.min(axis=1) <= high) & (triangles.max(axis=1) >= low)).all(axis=1)]
+        meets = ((triangles.min(axis=1) <= high) & (triangles.max(axis=1) >= low)).all(axis=1)
+        return np.asarray(facets[meets])
 
 
 def overlaps_of(

@@ -128,7 +128,7 @@ def doubles_of(corners: IntArray) -> Doubles:
 def is_even(corners: IntArray) -> IntArray:
     """Return 1 where the corners (n, 3), turned until the lowest is first, ascend, else 0."""
     a, b, c = corners.T
-    return ((a < b).astype(np.int64) + (b < c) + (c < a)) // 2
+    return np.asarray(((a < b).astype(np.int64) + (b < c) + (c < a)) // 2)
 
 
 def sheets_of(count: int, seams: Seams) -> Labels:

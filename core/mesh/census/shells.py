@@ -33,8 +33,8 @@ class Shells:
         bounds: (k, 2, 3) lowest and highest corners.
         inside: (k,) the innermost shell around each, or −1.
         depth: (k,) how many shells lie around each.
-        role: what each is: "solid", "void", "void wound outward", "inside out", "open" (it has an edge) or "flat" (it
-            encloses nothing). Where the mesh as a whole is inside out, as if it were turned.
+        role: what each is: "solid", "void", "void wound outward", "inside out", "open" (its edges do not balance) or
+            "flat" (it encloses nothing). Where the mesh as a whole is inside out, as if it were turned.
         order, starts: facets shell by shell, and where each shell begins among them.
     """
 
@@ -81,7 +81,8 @@ def sizes_of(points: FloatArray, corners: IntArray, label: Labels, caps: FloatAr
     """Return what the shells enclose.
 
     Args:
-        points, corners: the mesh (m, 3), (n, 3).
+        points: (m, 3).
+        corners: (n, 3).
         label: (n,) shell of each facet; no number is left out.
         caps: (c, 3, 3) triangles that close open shells; they count for the volume, not for area and bounds.
         cap_label: (c,) their shells.
@@ -116,8 +117,7 @@ def _add(sums: FloatArray, triangles: FloatArray, label: IntArray | Labels) -> N
     for i, j in ((0, 0), (1, 1), (2, 2), (0, 1), (0, 2), (1, 2)):
         rows.append(d * (a[:, i] * a[:, j] + b[:, i] * b[:, j] + c[:, i] * c[:, j] + s[:, i] * s[:, j]) / 120)
     rows.append(0.5 * np.linalg.norm(normal, axis=1))
-    for total, row in zip(sums, rows, strict=True):
-        total += np.bincount(label, row, minlength=sums.shape[1])
+    sums += np.stack([np.bincount(label, row, minlength=sums.shape[1]) for row in rows])
 
 
 def _bodies(sums: FloatArray, reference: FloatArray) -> Moments:

@@ -9,7 +9,7 @@ import numpy as np
 
 from core.errors import MeshFileError
 from core.mesh.census.nesting import Nesting, nesting_of
-from core.mesh.census.openings import OpenLoop, Openings, openings_of
+from core.mesh.census.openings import OpenLoop, openings_of
 from core.mesh.census.overlaps import Overlaps, overlaps_of
 from core.mesh.census.sheets import Doubles, Seams, doubles_of, facet_hashes, seams_of, sheets_of
 from core.mesh.census.shells import THIN, Shells, Sizes, roles_of, sizes_of
@@ -65,7 +65,7 @@ def evidence_of(triangles: NDArray[np.floating], progress: Progress | None) -> E
         MeshFileError: a coordinate that is not finite.
         Cancelled: progress was cancelled.
     """
-    step = _steps(progress)
+    step = _Steps(progress)
     points, corners = weld_exactly(triangles)
     if not np.isfinite(points).all():
         raise MeshFileError("a coordinate is not a finite number", where="the mesh", read="nan or inf", remedy=MEND)
@@ -108,7 +108,9 @@ def evidence_of(triangles: NDArray[np.floating], progress: Progress | None) -> E
                     turned, openings.described(sheet))
 
 
-class _steps:
+class _Steps:
+    """Stages counted on a progress, if there is one."""
+
     def __init__(self, progress: Progress | None) -> None:
         self._progress = progress
         if progress is not None:
@@ -120,25 +122,24 @@ class _steps:
 
 
 def areas_of(points: FloatArray, corners: IntArray) -> FloatArray:
+    """Return the area (n,) of each facet."""
     a, b, c = (points[column] for column in corners.T)
-    return 0.5 * np.linalg.norm(np.cross(b - a, c - a), axis=1)
+    areas: FloatArray = 0.5 * np.linalg.norm(np.cross(b - a, c - a), axis=1)
+    return areas
 
 
 def _is_flat(sizes: Sizes) -> BoolArray:
     diagonal = np.linalg.norm(sizes.bounds[:, 1] - sizes.bounds[:, 0], axis=1)
-    return np.abs(sizes.bodies.mass) <= THIN * sizes.area * diagonal
+    return np.asarray(np.abs(sizes.bodies.mass) <= THIN * sizes.area * diagonal)
 
 
 def _twins(corners: IntArray, sizes: Sizes) -> IntArray:
     """Return for each shell the first one that consists of the very same facets."""
-    count = len(sizes.area)
-    if count == 1:
+    if len(sizes.area) == 1:
         return np.zeros(1, np.int64)
-    hashes = np.add.reduceat(facet_hashes(corners)[sizes.order], sizes.starts)
-    groups = group_equal(hashes)
-    numbers = groups.of_elements()
-    return groups.order[groups.starts][numbers]
+    groups = group_equal(np.add.reduceat(facet_hashes(corners)[sizes.order], sizes.starts))
+    return groups.order[groups.starts][groups.of_elements()]
 
 
 def _alone(twin: IntArray) -> BoolArray:
-    return twin == np.arange(len(twin))
+    return np.asarray(twin == np.arange(len(twin)))

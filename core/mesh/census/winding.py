@@ -45,7 +45,7 @@ def winding_of(seams: Seams, sheet: Labels, area: FloatArray) -> Winding:
     first = np.empty(sheets, np.int64)
     first[sheet[::-1]] = np.arange(len(sheet))[::-1]
     turned = label[:, 0] != label[first[sheet], 0]
-    share = np.bincount(sheet, area * turned, sheets) / np.maximum(np.bincount(sheet, area, sheets), 1e-300)
-    against = turned ^ (share > 0.5)[sheet]
+    turned_area, whole = np.bincount(sheet, area * turned, sheets), np.bincount(sheet, area, sheets)
+    against = turned ^ (2 * turned_area > whole)[sheet]
     against[np.isin(sheet, one_sided)] = False
     return Winding(np.flatnonzero(against), one_sided)

@@ -8,6 +8,7 @@ from core.mesh.edges import WELD, find_leaks, loops_of
 from core.mesh.weld import clusters_within, weld_exactly
 
 BOX = box(40, 30, 20)
+AREA = 5200.0
 
 
 def cracked(gap: float) -> np.ndarray:
@@ -47,7 +48,7 @@ def test_clusters_that_touch_only_in_projection_are_split():
 
 def test_cracks_that_a_weld_at_a_millionth_of_the_diagonal_closes_are_hairline():
     diagonal = np.sqrt(40**2 + 30**2 + 20**2)
-    leaks = find_leaks(cracked(0.9 * WELD * diagonal))
+    leaks = find_leaks(cracked(0.9 * WELD * diagonal), AREA)
     assert leaks.verdict == "hairline cracks"
     # Each of the four sides of the top is cut in four; both lips of the crack are open.
     assert leaks.open_edges == 2 * 16
@@ -56,19 +57,19 @@ def test_cracks_that_a_weld_at_a_millionth_of_the_diagonal_closes_are_hairline()
 
 def test_wider_cracks_are_holes():
     diagonal = np.sqrt(40**2 + 30**2 + 20**2)
-    assert find_leaks(cracked(1.1 * WELD * diagonal)).verdict == "open"
+    assert find_leaks(cracked(1.1 * WELD * diagonal), AREA).verdict == "open"
 
 
 def test_a_flipped_facet_is_mixed_winding():
     triangles = quartered(BOX)
     triangles[5] = triangles[5, ::-1]
-    leaks = find_leaks(triangles)
+    leaks = find_leaks(triangles, AREA)
     assert (leaks.verdict, leaks.open_edges, leaks.fill) == ("mixed winding", 6, None)
 
 
 def test_a_missing_facet_leaves_three_open_edges_which_are_shown():
     triangles = quartered(BOX)
-    leaks = find_leaks(triangles[1:])
+    leaks = find_leaks(triangles[1:], AREA)
     assert (leaks.verdict, leaks.open_edges) == ("open", 3)
     assert {tuple(point) for point in leaks.edges.reshape(-1, 3)} == {tuple(point) for point in triangles[0]}
 
@@ -76,7 +77,7 @@ def test_a_missing_facet_leaves_three_open_edges_which_are_shown():
 def test_facets_and_fill_together_are_closed():
     triangles = quartered(BOX, 2)
     for kept in (triangles[1:], triangles[20:], np.delete(triangles, [3, 50, 51, 100], axis=0), cracked(1e-5)):
-        whole = np.concatenate([kept, find_leaks(kept).fill])
+        whole = np.concatenate([kept, find_leaks(kept, AREA).fill])
         points, corners = weld_exactly(whole)
         ends = np.concatenate([corners[:, [0, 1]], corners[:, [1, 2]], corners[:, [2, 0]]])
         balance = np.zeros((len(points), len(points)), dtype=int)
@@ -86,7 +87,7 @@ def test_facets_and_fill_together_are_closed():
 
 def test_edges_on_which_several_facets_end_cannot_be_closed():
     fin = np.array([[[0, 0, 20], [40, 0, 20], [20, -9, 30]], [[0, 0, 20], [40, 0, 20], [20, -9, 40]]], dtype=float)
-    leaks = find_leaks(np.concatenate([BOX[1:], fin]))
+    leaks = find_leaks(np.concatenate([BOX[1:], fin]), AREA)
     assert (leaks.verdict, leaks.fill) == ("open", None)
     assert leaks.reason == "open edges on which several facets end"
 
