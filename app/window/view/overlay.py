@@ -9,7 +9,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 import numpy as np
-from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
 from PySide6.QtGui import QFont, QFontMetricsF, QPainter, QPainterPath, QPaintEvent, QPen, QPolygonF
 from PySide6.QtWidgets import QWidget
 
@@ -23,7 +23,7 @@ if TYPE_CHECKING:
 
 # ISO 128 chain line, narrow: long dash, gap, dot, gap, in line widths.
 CHAIN = (16.0, 3.0, 0.6, 3.0)
-_AXIS_WIDTH, _ARROW_WIDTH, _CASING = 1.4, 1.8, 3.0
+_AXIS_WIDTH, _ARROW_WIDTH, _FOUND_WIDTH, _CASING = 1.4, 1.8, 1.6, 3.0
 _HEAD_LENGTH, _HEAD_WIDTH = 11.0, 7.0
 _DISC = 7.0
 _TRIAD, _TRIAD_AT = 26.0, 44.0
@@ -66,6 +66,7 @@ class Overlay(QWidget):
             return
         painter = QPainter(self)
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+        self._draw_found(painter, picture)
         names = self._draw_axis(painter, picture)
         names += self._draw_principal(painter, picture)
         taken = [self._draw_centre(painter, picture)] if picture.scene.mass_centre is not None else []
@@ -93,6 +94,17 @@ class Overlay(QWidget):
             start, end = (cut, end) if depth[0] < near else (start, cut)
         spots = self._spots(picture, np.stack([start, end]))
         return QPointF(spots[0, 0], spots[0, 1]), QPointF(spots[1, 0], spots[1, 1])
+
+    def _draw_found(self, painter: QPainter, picture: Picture) -> None:
+        """Draw the edges that a finding is about over whatever hides them."""
+        if not len(picture.found):
+            return
+        spots = self._spots(picture, picture.found)
+        seen = spots[(spots[..., 2] > picture.depths()[0]).all(axis=1)]
+        lines = [QLineF(*ends) for ends in seen[:, :, :2].reshape(-1, 4).tolist()]
+        for colour, width in ((picture.theme.casing, _FOUND_WIDTH + _CASING), (picture.theme.found, _FOUND_WIDTH)):
+            painter.setPen(QPen(qcolor(colour), width))
+            painter.drawLines(lines)
 
     def _draw_axis(self, painter: QPainter, picture: Picture) -> list[_Name]:
         axis, theme = picture.scene.axis, picture.theme

@@ -29,6 +29,7 @@ class Theme:
         ghost: faces of a part that is not in the document yet.
         drive: the drive axis and its name.
         principal: the principal axes, the mark of the centre of mass, and the focus ring.
+        found: the edges that a finding is about.
         casing: beneath lines and text, so that they read over any part.
 
     """
@@ -44,6 +45,7 @@ class Theme:
     ghost: Colour
     drive: Colour
     principal: Colour
+    found: Colour
     casing: Colour
 
 
@@ -67,6 +69,7 @@ LIGHT = Theme(
     ghost=(0x56, 0xB4, 0xE9),
     drive=(0x9C, 0x3F, 0x74),
     principal=(0x00, 0x6C, 0xAA),
+    found=(0xC2, 0x4C, 0x00),
     casing=(0xFF, 0xFF, 0xFF),
 )
 
@@ -90,6 +93,7 @@ DARK = Theme(
     ghost=SKY_BLUE,
     drive=(0xE0, 0x95, 0xBD),
     principal=SKY_BLUE,
+    found=(0xF0, 0x80, 0x40),
     casing=(0x12, 0x15, 0x18),
 )
 

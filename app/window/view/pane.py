@@ -19,6 +19,7 @@ from app.window.view.scene import Scene, SurfaceStore, scene_of
 if TYPE_CHECKING:
     from PySide6.QtGui import QFocusEvent, QKeyEvent, QMouseEvent, QResizeEvent, QShowEvent, QWheelEvent
 
+    from core.arrays import FloatArray
     from core.assembly import Assembly, Part
 
 TOOL_TIP = (
@@ -159,6 +160,16 @@ class ViewPane(QWidget):
         self._picture = replace(self._picture, scene=scene_of(self._assembly, self.store, part, self.scene))
         self._fit_due |= was_empty
         self._redraw(moving=False)
+
+    def light_up(self, edges: FloatArray) -> None:
+        """Draw edges (k, 2, 3) m of the document frame over everything; none takes those shown away."""
+        self._picture = replace(self._picture, found=edges)
+        self._redraw(moving=False)
+
+    def go_to(self, points: FloatArray) -> None:
+        """Show these points (n, 3) m, as near as they allow, from where the camera looks."""
+        self._fit_due = self._stays_fitted = False
+        self._move_to(self.camera.fitted(points, self.frame_size, 0.25 * min(self.frame_size)), moving=False)
 
     def fit(self) -> None:
         """Show everything."""

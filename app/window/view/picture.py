@@ -18,6 +18,7 @@ if TYPE_CHECKING:
     from app.window.view.camera import Camera, Size
     from app.window.view.scene import Scene
     from app.window.view.surface import Float32Array
+    from core.arrays import FloatArray
 
 Opacity: TypeAlias = int
 
@@ -32,6 +33,7 @@ class Picture:
 
     Attributes:
         moving: the camera is on its way, so that a lighter drawing does.
+        found: edges (k, 2, 3) m in the document frame that a finding is about, drawn over everything.
 
     """
 
@@ -40,6 +42,7 @@ class Picture:
     emphasis: Emphasis = field(default_factory=Emphasis)
     theme: Theme = LIGHT
     moving: bool = False
+    found: FloatArray = field(default_factory=lambda: np.zeros((0, 2, 3)))
 
     def depths(self) -> tuple[float, float]:
         """Return the depths of the near and the far plane, m."""
