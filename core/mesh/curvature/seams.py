@@ -111,21 +111,6 @@ class _Rim:
     count: IntArray
 
 
-@dataclass(frozen=True, eq=False)
-class _Beyond:
-    """What the opposite edges of its patch say about each rim half-edge (r,).
-
-    Attributes:
-        share, bend: share of them that is smooth, and their mean curvature.
-        strict_share, strict_bend: the same, from those that have no wide flat beyond.
-    """
-
-    share: FloatArray
-    bend: FloatArray
-    strict_share: FloatArray
-    strict_bend: FloatArray
-
-
 def classify(surface: Surface, forms: PatchForms) -> Seams:
     """Return what every edge of a mesh says about the curvature of the triangles beside it."""
     kinds, slopes = np.zeros(len(surface.mates), dtype=np.int8), np.zeros(len(surface.mates))
@@ -175,26 +160,47 @@ def _rim(surface: Surface, forms: PatchForms) -> _Rim:
 
 def _spoken_for(surface: Surface, rim: _Rim) -> tuple[BoolArray, BoolArray]:
     """Say where the own patch bends on beyond its far side as it does here, and where it calls the other flat."""
-    floor = 1e-12 * surface.size
-    full = 2 * rim.turn / np.maximum(rim.width + rim.width_beyond, floor)
-    half = 2 * rim.turn / np.maximum(rim.width, floor)
-    wide, narrow = rim.width_beyond > WIDE * rim.width, rim.width > WIDE * rim.width_beyond
-    stepped = (rim.width_beyond > STEPPED * rim.width) & ~surface.lone[rim.beyond]
-    beyond = _compare(rim, np.where(wide | stepped, half, full), wide)
-    share = np.where(wide, beyond.strict_share, beyond.share)
-    bend = np.where(wide, beyond.strict_bend, beyond.bend)
-    full_miss, half_miss = _miss(full, bend), _miss(half, bend)
-    lone = surface.lone[rim.patch] & surface.lone[rim.beyond]
-    half_fits = (half_miss < HALF_STEP_FITS) & (full_miss > FULL_STEP_MISSES)
-    flat_beyond = (surface.flat[rim.beyond] | wide | half_fits) & ~surface.lone[rim.beyond] | (wide & ~lone)
-    miss = np.where(flat_beyond, half_miss, full_miss)
-    ok = rim.smooth & (miss < np.interp(np.abs(rim.turn), TURNS, ALIKE)) & (share > FAR_SIDE)
-    ok &= ~narrow & ~surface.flat[rim.patch]
+    count = len(rim.patch)
+    here, (wide, ok, flat_beyond, doubtful) = np.empty(count), np.zeros((4, count), dtype=bool)
+    for start in range(0, count, CHUNK):
+        part = slice(start, start + CHUNK)
+        full, half = _bends(surface, rim, part)
+        wide[part] = rim.width_beyond[part] > WIDE * rim.width[part]
+        stepped = (rim.width_beyond[part] > STEPPED * rim.width[part]) & ~surface.lone[rim.beyond[part]]
+        here[part] = np.where(wide[part] | stepped, half, full)
+    for start in range(0, count, CHUNK):
+        part = slice(start, start + CHUNK)
+        ok[part], flat_beyond[part], doubtful[part] = _verdicts(surface, rim, here, wide, part)
     small = np.zeros_like(ok)
-    doubtful = rim.smooth & ~ok & (beyond.share > 1 - FAR_SIDE) & (rim.count <= QUAD) & ~wide & ~narrow
     at = np.flatnonzero(doubtful)
     small[at] = _small_turns(rim, at)
     return ok | (small & small[rim.mate]), flat_beyond & ok
+
+
+def _bends(surface: Surface, rim: _Rim, part: slice) -> tuple[FloatArray, FloatArray]:
+    """Return the curvatures that the turns mean if both patches are steps of one round, and if the other is flat."""
+    floor = 1e-12 * surface.size
+    turn, width = 2 * rim.turn[part], rim.width[part]
+    return turn / np.maximum(width + rim.width_beyond[part], floor), turn / np.maximum(width, floor)
+
+
+def _verdicts(
+    surface: Surface, rim: _Rim, here: FloatArray, wide: BoolArray, part: slice
+) -> tuple[BoolArray, BoolArray, BoolArray]:
+    """Return for a part of the rim edges: spoken for; the other patch called flat; open, the far side being smooth."""
+    full, half = _bends(surface, rim, part)
+    patch, beyond = rim.patch[part], rim.beyond[part]
+    share, bend = _far_side(rim, here, wide, part)
+    full_miss, half_miss = _miss(full, bend), _miss(half, bend)
+    narrow = rim.width[part] > WIDE * rim.width_beyond[part]
+    lone = surface.lone[patch] & surface.lone[beyond]
+    half_fits = (half_miss < HALF_STEP_FITS) & (full_miss > FULL_STEP_MISSES)
+    flat_beyond = (surface.flat[beyond] | wide[part] | half_fits) & ~surface.lone[beyond] | (wide[part] & ~lone)
+    miss = np.where(flat_beyond, half_miss, full_miss)
+    smooth = rim.smooth[part]
+    ok = smooth & (miss < np.interp(np.abs(rim.turn[part]), TURNS, ALIKE)) & (share > FAR_SIDE)
+    ok &= ~narrow & ~surface.flat[patch]
+    return ok, flat_beyond, smooth & ~ok & ~wide[part] & ~narrow & (share > 1 - FAR_SIDE) & (rim.count[part] <= QUAD)
 
 
 def _small_turns(rim: _Rim, at: IntArray) -> BoolArray:
@@ -225,6 +231,8 @@ def _among_lone(surface: Surface, rim: _Rim) -> BoolArray:
     Those are the other edges of both triangles, and the edges of the triangles beyond those.
     """
     lone = surface.lone[rim.patch]
+    if not lone.any():
+        return lone
     at = np.arange(len(rim.patch))
     others = [np.where(lone, rim.first + (at - rim.first + step) % 3, at) for step in (1, 2)]
     turn = np.where(rim.smooth & lone, np.abs(rim.turn), 0.0)
@@ -293,34 +301,22 @@ def _miss(here: FloatArray, beyond: FloatArray) -> FloatArray:
     return np.abs(np.log(ratio, out=np.full_like(ratio, np.inf), where=ratio > 0))
 
 
-def _compare(rim: _Rim, bend: FloatArray, wide: BoolArray) -> _Beyond:
-    """Look across every patch from each of its rim edges to all others, the opposite ones."""
-    sums = np.zeros((5, len(rim.patch)))
-    for start in range(0, len(rim.patch), CHUNK):
-        at = start + np.flatnonzero(rim.smooth[start : start + CHUNK])
-        at = at[rim.count[at] <= MOST_COMPARED]
-        for step in range(1, MOST_COMPARED):
-            at = at[rim.count[at] > step]
-            if not len(at):
-                break
-            _look_across(rim, bend, wide, at, step=step, sums=sums)
-    everything, lengths, bends, strict_lengths, strict_bends = sums
-    everything[everything == 0] = 1.0
-    some, strict_some = np.maximum(lengths, 1e-300), np.maximum(strict_lengths, 1e-300)
-    return _Beyond(lengths / everything, bends / some, strict_lengths / everything, strict_bends / strict_some)
+def _far_side(rim: _Rim, here: FloatArray, wide: BoolArray, part: slice) -> tuple[FloatArray, FloatArray]:
+    """Return the share of its patch's opposite edges that is smooth, and their mean curvature.
 
-
-def _look_across(
-    rim: _Rim, bend: FloatArray, wide: BoolArray, at: IntArray, *, step: int, sums: FloatArray
-) -> None:
-    """Add to the sums of the rim edges at what the step-th next one of the same patch says."""
-    other, facing = _facing(rim, at, step)
-    weight = facing * facing * rim.length[other]
-    sums[0, at] += weight
-    weight *= rim.smooth[other]
-    sums[1, at] += weight
-    weighted = weight * bend[other]
-    sums[2, at] += weighted
-    strict = ~wide[other]
-    sums[3, at] += weight * strict
-    sums[4, at] += weighted * strict
+    An edge with a wide flat beyond hears only those that have none.
+    """
+    start, stop, _ = part.indices(len(rim.patch))
+    everything, lengths, bends = np.zeros((3, stop - start))
+    at = start + np.flatnonzero(rim.smooth[part] & (rim.count[part] <= MOST_COMPARED))
+    for step in range(1, MOST_COMPARED):
+        at = at[rim.count[at] > step]
+        if not len(at):
+            break
+        other, facing = _facing(rim, at, step)
+        weight = facing * facing * rim.length[other]
+        everything[at - start] += weight
+        weight *= rim.smooth[other] & ~(wide[at] & wide[other])
+        lengths[at - start] += weight
+        bends[at - start] += weight * here[other]
+    return lengths / np.where(everything > 0, everything, 1.0), bends / np.maximum(lengths, 1e-300)
