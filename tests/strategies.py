@@ -28,7 +28,21 @@ from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Wei
 from core.mesh import MeshAsset
 from core.moments import Moments
 from core.placement import Copies, Mirrored, Placement, Pose, Ring, Row, Several
-from core.shapes import SHAPES, Box, Cone, Cylinder, Frustum, Shape, Sphere, SpokedWheel, ToothedWheel, Tube
+from core.shapes import (
+    SHAPES,
+    Box,
+    Cone,
+    Cylinder,
+    Extruded,
+    Frustum,
+    Outline,
+    Shape,
+    Sphere,
+    SpokedWheel,
+    ToothedWheel,
+    Tube,
+    Turned,
+)
 
 # The first example of a test pays for lazy imports, and other jobs share the processor: time is no verdict.
 settings.register_profile("masswright", deadline=None)
@@ -113,9 +127,110 @@ def spoked_wheels(draw: st.DrawFn) -> SpokedWheel:
     return SpokedWheel(rim, inner, rim_width, hub, bore, hub_length, spokes, width, thickness)
 
 
+@st.composite
+def star_loops(draw: st.DrawFn, size: float) -> list[tuple[float, float, float, float]]:
+    """A loop around the origin: corners in the order of their angles, some rounded, some edges bent."""
+    number = draw(st.integers(3, 9))
+    turns = (np.arange(number) + np.array(draw(st.lists(st.floats(-0.3, 0.3), min_size=number, max_size=number))))
+    radii = size * np.array(draw(st.lists(st.floats(0.6, 1.0), min_size=number, max_size=number)))
+    angles = 2 * np.pi * turns / number
+    x, y = radii * np.cos(angles), radii * np.sin(angles)
+    chord = np.hypot(np.roll(x, -1) - x, np.roll(y, -1) - y)
+    bends = draw(st.lists(st.sampled_from([0, 0, 1, -1]), min_size=number, max_size=number))
+    widths = draw(st.lists(st.floats(0.7, 50.0), min_size=number, max_size=number))
+    arcs = np.array(bends) * np.array(widths) * chord
+    sharp = (arcs != 0) | (np.roll(arcs, 1) != 0)
+    shares = np.array(draw(st.lists(st.sampled_from([0.0, 0.05, 0.1]), min_size=number, max_size=number)))
+    roundings = np.where(sharp, 0.0, shares * np.minimum(chord, np.roll(chord, 1)))
+    return [tuple(map(float, point)) for point in zip(x, y, roundings, arcs, strict=True)]
+
+
+@st.composite
+def outlines(draw: st.DrawFn) -> Outline:
+    """An outline about the origin with straight, bent and rounded edges, with and without a hole."""
+    size = draw(LENGTHS)
+    loops = [draw(star_loops(size))]
+    if draw(st.booleans()):
+        loops.append(draw(star_loops(0.1 * size)))
+    try:
+        return Outline.of(*loops)
+    except ShapeError:
+        reject()
+
+
+@st.composite
+def turned_profiles(draw: st.DrawFn) -> Turned:
+    outline = draw(outlines())
+    inside = -min(float(edges.lowest_x().min()) for edges in outline.edges)
+    gap = outline.size * draw(st.floats(0.0, 2.0))
+    angle = draw(st.one_of(st.just(2 * np.pi), st.floats(0.01, 2 * np.pi)))
+    return Turned(outline.moved(inside + gap, draw(COORDINATES)), angle)
+
+
+SHARES = st.floats(0.0, 1.0)
+
+
+@st.composite
+def web_and_flanges(draw: st.DrawFn, key: str) -> Shape:
+    """An I, channel or T section whose roundings fit."""
+    height, width = draw(st.floats(0.01, 1.0)), draw(st.floats(0.01, 1.0))
+    web, flange = width * draw(st.floats(0.02, 0.3)), height * draw(st.floats(0.02, 0.2))
+    values = {"height": height, "width": width, "web": web, "flange": flange, "length": draw(LENGTHS)}
+    steepest = min(0.5 * flange / width, 0.2)
+    slope = steepest * draw(SHARES)
+    names = {dimension.name for dimension in SHAPES[key].dimensions}
+    values |= {"root_radius": 0.2 * min(width - web, height / 2 - 1.5 * flange) * draw(SHARES)}
+    values |= {"toe_radius": 0.5 * min(flange, width / 8) * draw(SHARES), "slope": float(np.arctan(slope))}
+    return SHAPES[key].of({name: value for name, value in values.items() if name in names})
+
+
+@st.composite
+def angle_sections(draw: st.DrawFn) -> Shape:
+    leg_y, leg_x = draw(st.floats(0.01, 1.0)), draw(st.floats(0.01, 1.0))
+    least = min(leg_x, leg_y)
+    thickness = least * draw(st.floats(0.02, 0.5))
+    root, toe = 0.4 * (least - thickness) * draw(SHARES), 0.5 * min(thickness, least - thickness) * draw(SHARES)
+    return SHAPES["angle section"].of(
+        {"leg_y": leg_y, "leg_x": leg_x, "thickness": thickness, "root_radius": root, "toe_radius": toe,
+         "length": draw(LENGTHS)}
+    )  # fmt: skip
+
+
+@st.composite
+def boxes_and_bars(draw: st.DrawFn, key: str) -> Shape:
+    """A hollow section or a bar whose corner radii fit."""
+    across = draw(st.floats(0.01, 1.0))
+    other = across * draw(st.floats(1.0, 4.0))
+    wall = across * draw(st.floats(0.01, 0.45))
+    inner = (across / 2 - wall) * draw(SHARES)
+    outer = min(inner + wall, across / 2) * draw(SHARES)
+    values = {
+        "height": other, "width": across, "side": across, "diameter": across, "thickness": other, "wall": wall,
+        "outer_radius": outer, "inner_radius": inner, "corner_radius": across / 2 * draw(SHARES),
+        "length": draw(LENGTHS),
+    }  # fmt: skip
+    names = {dimension.name for dimension in SHAPES[key].dimensions}
+    return SHAPES[key].of({name: value for name, value in values.items() if name in names})
+
+
+_BOXES_AND_BARS = (
+    "circular hollow section", "square hollow section", "rectangular hollow section",
+    "flat bar", "square bar", "round bar",
+)  # fmt: skip
+_WEB_AND_FLANGES = ("I section", "tapered I section", "channel section", "T section")
+
+SECTION_STRATEGIES: dict[str, st.SearchStrategy[Shape]] = {
+    **{key: web_and_flanges(key) for key in _WEB_AND_FLANGES},
+    **{key: boxes_and_bars(key) for key in _BOXES_AND_BARS},
+    "angle section": angle_sections(),
+}
+
 OWN_STRATEGIES: dict[str, st.SearchStrategy[Shape]] = {
     "toothed wheel": toothed_wheels(),
     "spoked wheel": spoked_wheels(),
+    "extruded profile": st.builds(Extruded, outlines(), LENGTHS),
+    "turned profile": turned_profiles(),
+    **SECTION_STRATEGIES,
 }
 
 

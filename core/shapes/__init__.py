@@ -14,6 +14,20 @@ from core.shapes.point import PointMass
 from core.shapes.prism import RegularPrism
 from core.shapes.profile import Extruded, Outline, OutlinedShape, OutlinePoint, PlaneMoments, Turned
 from core.shapes.pyramid import Pyramid, Tetrahedron
+from core.shapes.sections import (
+    AngleSection,
+    ChannelSection,
+    CircularHollowSection,
+    FlatBar,
+    ISection,
+    RectangularHollowSection,
+    RoundBar,
+    Section,
+    SquareBar,
+    SquareHollowSection,
+    TaperedISection,
+    TSection,
+)
 from core.shapes.sheet import ThinDisc, ThinSheet
 from core.shapes.shell import ConicalShell, CylindricalShell, DomedShell, SphericalShell, ToroidalShell
 from core.shapes.sphere import HollowSphere, Sphere
@@ -25,7 +39,10 @@ from core.shapes.wire import ThinRing, ThinRod
 
 __all__ = [
     "SHAPES",
+    "AngleSection",
     "Box",
+    "ChannelSection",
+    "CircularHollowSection",
     "Cone",
     "ConicalShell",
     "Cylinder",
@@ -34,22 +51,31 @@ __all__ = [
     "DomedShell",
     "Ellipsoid",
     "Extruded",
+    "FlatBar",
     "Frustum",
     "Hemisphere",
     "HollowFrustum",
     "HollowSphere",
+    "ISection",
     "Outline",
     "OutlinePoint",
     "OutlinedShape",
     "PlaneMoments",
     "PointMass",
     "Pyramid",
+    "RectangularHollowSection",
     "RegularPrism",
+    "RoundBar",
+    "Section",
     "Shape",
     "Sphere",
     "SphericalCap",
     "SphericalShell",
     "SpokedWheel",
+    "SquareBar",
+    "SquareHollowSection",
+    "TSection",
+    "TaperedISection",
     "Tetrahedron",
     "ThinDisc",
     "ThinRing",

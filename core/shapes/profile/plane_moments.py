@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.arrays import ArrayLike, FloatArray, frozen
+from core.arrays import ArrayLike, FloatArray, frozen, settled
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -79,8 +79,13 @@ def plane_moments(loops: Sequence[Edges]) -> PlaneMoments:
         ],
         axis=-1,
     )
+    square = np.maximum(uxx, uyy)
+    uxy = settled(uxy, square)
     second = np.stack([np.stack([uxx, uxy], axis=-1), np.stack([uxy, uyy], axis=-1)], axis=-2)
-    return PlaneMoments(frozen(a), frozen(near + np.stack([x, y], axis=-1)), frozen(second), frozen(third))
+    # What is 0 by symmetry comes out as 0, not as the round-off of the outline's own size.
+    size = np.sqrt(square / a)[..., None]
+    centre = settled(near + np.stack([x, y], axis=-1), size + np.abs(near))
+    return PlaneMoments(frozen(a), frozen(centre), frozen(second), frozen(settled(third, a[..., None] * size**3)))
 
 
 def signed_area(loop: Edges) -> FloatArray:
