@@ -44,7 +44,12 @@ def _entry_checks(part: Part) -> tuple[Check, ...]:
         return part.body.entry_checks
     if not isinstance(part.body, MeshBody):
         return ()
-    return (check_mesh(part.body.asset.survey, part.name),)
+    asset = part.body.asset
+    verdict = check_mesh(asset.survey, part.name)
+    if not asset.mends:
+        return (verdict,)
+    text = f"{part.name}: the mesh was mended after it was read: {', '.join(asset.mends)}."
+    return verdict, Check("mends", ok=True, text=text)
 
 
 def _reach(part: Part) -> float | None:

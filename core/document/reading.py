@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+from dataclasses import replace
 from pathlib import Path
 from typing import IO, TYPE_CHECKING, TypeAlias, TypeVar
 
@@ -40,6 +41,7 @@ if TYPE_CHECKING:
         CopiesEntry,
         DocumentEntry,
         DriverEntry,
+        MeshEntry,
         NodeEntry,
         PoseEntry,
         ShapeEntry,
@@ -112,7 +114,7 @@ class _Builder:
 
     def __init__(self, archive: Archive) -> None:
         self._archive = archive
-        self._assets: dict[tuple[str, str], MeshAsset] = {}
+        self._assets: dict[tuple[str, str, tuple[str, ...], str], MeshAsset] = {}
         self._shapes: dict[tuple[str, tuple[tuple[str, float], ...], _Loops | None], ShapeBody] = {}
         self._outlines: dict[_Loops, Outline] = {}
 
@@ -147,7 +149,7 @@ class _Builder:
         if entry.kind == "shape":
             return self._shape(entry)
         if entry.kind == "mesh":
-            return MeshBody(self._asset(entry.mesh, entry.name), entry.metres_per_unit, entry.counts)
+            return MeshBody(self._asset(entry), entry.metres_per_unit, entry.counts)
         if entry.kind == "known tensor":
             known = KnownTensor(entry.mass, entry.centre, entry.tensor, entry.about, entry.source)
             _ = known.own  # refuses a tensor that makes no moments
@@ -167,13 +169,14 @@ class _Builder:
             self._outlines[loops] = Outline.of(*loops)
         return self._outlines[loops]
 
-    def _asset(self, sha256: str, name: str) -> MeshAsset:
-        if (sha256, name) not in self._assets:
-            asset = MeshAsset.of_bytes(self._archive.mesh(sha256), name)
-            if asset.sha256 != sha256:
-                raise DocumentError("this mesh in the archive is packed twice", where=name, remedy=_REMEDY)
-            self._assets[sha256, name] = asset
-        return self._assets[sha256, name]
+    def _asset(self, entry: MeshEntry) -> MeshAsset:
+        same = (entry.mesh, entry.name, tuple(entry.mends), entry.source)
+        if same not in self._assets:
+            asset = MeshAsset.of_bytes(self._archive.mesh(entry.mesh), entry.name)
+            if asset.sha256 != entry.mesh:
+                raise DocumentError("this mesh in the archive is packed twice", where=entry.name, remedy=_REMEDY)
+            self._assets[same] = replace(asset, mends=tuple(entry.mends), source=entry.source)
+        return self._assets[same]
 
 
 def _made(place: str, make: Callable[[], Built]) -> Built:

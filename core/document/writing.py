@@ -89,8 +89,9 @@ def _body(body: Body) -> Data:
         return entry
     if isinstance(body, MeshBody):
         asset = body.asset
+        mended: Data = {"mends": list(asset.mends), "source": asset.source} if asset.mends else {}
         return {
-            "kind": "mesh", "mesh": asset.sha256, "name": asset.name,
+            **mended, "kind": "mesh", "mesh": asset.sha256, "name": asset.name,
             "metres_per_unit": float(body.metres_per_unit), "counts": body.counts,
         }
     known: Data = {"mass": float(body.mass), "centre": _floats(body.centre), "source": body.source}

@@ -1,4 +1,4 @@
-"""The verdict on a mesh as a check: whether its values can be trusted, in one sentence."""
+"""The verdict on a mesh, and what its census found, as checks: whether its values can be trusted."""
 
 from __future__ import annotations
 
@@ -7,9 +7,11 @@ from typing import TYPE_CHECKING
 from core.checks import Check
 
 if TYPE_CHECKING:
+    from core.mesh.census import Census
     from core.mesh.survey import MeshSurvey
 
 _SOUND = frozenset({"closed", "hairline cracks", "inside out"})
+_SAID_BY_THE_VERDICT = frozenset({"inside out", "hairline cracks", "open edges"})
 _MEND = "Mend it where it was made and export it again."
 
 
@@ -24,15 +26,32 @@ def check_mesh(survey: MeshSurvey, name: str) -> Check:
         found += f", with {edges}"
     if survey.basis != "computed":
         found += f"; {survey.basis}"
-    sentences = (f"{found}.{_crack_words(survey)}" if ok else f"{found}. {_MEND}", *survey.notes)
+    doubt = _doubt(survey)
+    sentences = (f"{found}.{doubt}" if ok else f"{found}.{doubt} {_MEND}", *survey.notes)
     return Check("mesh", ok, " ".join(sentences))
 
 
-def _crack_words(survey: MeshSurvey) -> str:
-    """Return how much the cracks can change the values, at most."""
-    if not survey.crack_volume or survey.solid is None:
+def check_census(census: Census, name: str) -> tuple[Check, ...]:
+    """Return what a census found that makes the values wrong or doubtful, beyond what the verdict says already."""
+    return tuple(
+        Check(finding.name, ok=False, text=f"{name}: {finding.text}")
+        for finding in census.findings
+        if not finding.harmless and finding.name not in _SAID_BY_THE_VERDICT
+    )
+
+
+def _doubt(survey: MeshSurvey) -> str:
+    """Return how much what is open can change the values."""
+    if survey.solid is None:
         return ""
-    volume = survey.crack_volume / float(survey.solid.mass)
+    if survey.crack_volume:
+        said, volume, inertia = "The cracks change the volume by at most", survey.crack_volume, survey.crack_inertia
+    elif survey.open_volume:
+        said = "What the flat caps leave out may change the volume by about"
+        volume, inertia = survey.open_volume, survey.open_inertia
+    else:
+        return ""
+    share = volume / float(survey.solid.mass)
     smallest = float(survey.solid.principal.moments[0])
-    inertia = f", the smallest moment of inertia by {survey.crack_inertia / smallest:.2g}" if smallest > 0 else ""
-    return f" The cracks change the volume by at most {volume:.2g} of it{inertia}."
+    beside = f", the smallest moment of inertia by {inertia / smallest:.2g}" if smallest > 0 else ""
+    return f" {said} {share:.2g} of it{beside}."
