@@ -84,6 +84,10 @@ def restore(points: ArrayLike, corners: ArrayLike, progress: Progress | None = N
     are. From ten sides on, a prism and a coarse cylinder are the same mesh; it is taken for the cylinder, and `left`
     holds the whole correction.
 
+    A smooth surface whose facets contradict each other (the hull of random points, a very coarse free form) stays
+    faceted too. In a body whose convex and concave rounds happen to balance, mending only some of them can leave the
+    total further off than it was; that was met once, on a coarse turned vase whose edges were mostly kept sharp.
+
     Args:
         points: (n, 3) in any length unit.
         corners: (m, 3) indices of each triangle's corners, consistently wound. An edge that is not shared by exactly
