@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.assembly.bodies import KnownAxial
+from core.assembly.mesh_findings import census_checks
 from core.checks import Check, check_body
 
 if TYPE_CHECKING:
@@ -33,7 +34,7 @@ def findings_of(assembly: Assembly) -> tuple[Finding, ...]:
     found += [
         Finding(part.key, part.name, check)
         for index, part in enumerate(assembly.table.parts)
-        for check in _oblique(assembly, part, index)
+        for check in (*census_checks(part), *_oblique(assembly, part, index))
     ]
     if assembly.table.parts and len(assembly.without_mass) < len(assembly.table.parts):
         found += [Finding("", assembly.name, check) for check in _total_checks(assembly)]

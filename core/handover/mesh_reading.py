@@ -245,10 +245,26 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
     )
     if cheap or request.count_shells:
         reading = replace(reading, shells=count_shells(path, progress))
+    if cheap:
+        reading = _with_census(reading, path, progress)
     if cheap or request.count_restored:
         return _with_curvature(reading, path)
-    remark = f"Curvature was not restored, because the file has more than {AT_ONCE} triangles."
+    remark = (
+        f"The file has more than {AT_ONCE} triangles: curvature was not restored, and nothing was looked for that is "
+        "counted twice."
+    )
     return replace(reading, remarks=(*reading.remarks, remark))
+
+
+def _with_census(reading: MeshReading, path: str | Path, progress: Progress | None) -> MeshReading:
+    """Return the reading with what the census of its shells found."""
+    from core.mesh.census import census
+    from core.mesh.mesh_check import check_census
+    from core.mesh.stl import open_stl
+    from core.mesh.survey import gathered
+
+    taken = census(gathered(open_stl(path), reading.survey.triangles), progress)
+    return replace(reading, findings=(*reading.findings, *check_census(taken, reading.name)))
 
 
 def _with_curvature(reading: MeshReading, path: str | Path) -> MeshReading:

@@ -97,14 +97,22 @@ class MeshAsset:
         return triangles
 
     def census(self, progress: Progress | None = None) -> Census:
-        """Return what the mesh consists of and all that is wrong with it; seconds per million facets.
+        """Return what the mesh consists of and all that is wrong with it; seconds per million facets, taken once.
 
         Raises:
             Cancelled: progress was cancelled.
         """
-        from core.mesh.census import census
+        if "_census" not in self.__dict__:
+            from core.mesh.census import census
 
-        return census(self.triangles, progress)
+            self.__dict__["_census"] = census(self.triangles, progress)
+        return self.census_at_hand  # type: ignore[return-value]  # just taken
+
+    @property
+    def census_at_hand(self) -> Census | None:
+        """The census where it was taken already; None where it was not."""
+        taken: Census | None = self.__dict__.get("_census")
+        return taken
 
     def mended(
         self, mend: str, facets: IntArray | None = None, progress: Progress | None = None

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 from mesh_files import binary_stl, box
 
-from core.assembly import Assembly, MeshBody, Part
+from core.assembly import Assembly, MeshBody, Part, findings_of
 from core.document import read_document, save_document
 from core.errors import ValueRefused
 from core.material import ByDensity
@@ -45,3 +45,11 @@ def test_the_document_keeps_which_values_of_a_mesh_count(tmp_path) -> None:
     path = tmp_path / "bar.masswright"
     save_document(Assembly("bar", (part,)), path)
     assert read_document(path).node("p1") == part
+
+
+def test_a_part_whose_mesh_holds_overlapping_bodies_has_a_failed_check() -> None:
+    twice = np.concatenate([box(40, 30, 20), box(40, 30, 20, at=(20, 0, 0))])
+    asset = MeshAsset.of_bytes(binary_stl(twice), "two.stl")
+    assembly = Assembly("two", (Part("p1", "two", MeshBody(asset, 1e-3), ByDensity(STEEL)),))
+    failed = [finding for finding in findings_of(assembly) if not finding.check.ok]
+    assert [(finding.key, finding.check.name) for finding in failed] == [("p1", "counted twice")]

@@ -130,3 +130,12 @@ def test_json_text_reads_back_as_the_same_object():
     assert json.loads(text)[0] == answer
     assert json.loads(text)[1]["path"] == 'a"b·.stl'
     assert text.isascii()
+
+
+def test_bodies_that_overlap_in_one_file_fail_the_check_of_what_is_counted_twice(tmp_path: Path) -> None:
+    path = tmp_path / "two.stl"
+    path.write_bytes(binary_stl(np.concatenate([box(40, 30, 20), box(40, 30, 20, at=(20, 0, 0))])))
+    reading = read_mesh(path, MeshRequest(UNITS["mm"]))
+    failed = [check for check in reading.checks if not check.ok]
+    assert [check.name for check in failed] == ["counted twice"]
+    assert "0.25 of the volume is counted twice" in failed[0].text  # 12,000 of 48,000 mm³
