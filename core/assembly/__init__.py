@@ -1,14 +1,16 @@
-"""The assembly: parts, groups and known parts on their axes, edited by making a new one; totals, ledger, findings."""
+"""The assembly: parts with their cuts, groups and known parts on axes; edits, totals, ledger, findings."""
 
 from core.assembly.assembly import Assembly, DriveAxis
 from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, six_of_tensor, tensor_of_six
+from core.assembly.cuts import MOST_CUT_COPIES, Cut
+from core.assembly.cutting import CUT_AT_ONCE, Cutting
 from core.assembly.findings import Finding, findings_of
 from core.assembly.ledger import Ledger, Line, ledger_of
 from core.assembly.mesh_part import MeshComparison, compare_mesh
 from core.assembly.nodes import DataSheet, Driver, Group, Node, Part, Table, walk
 
 __all__ = [
-    "Assembly", "Body", "DataSheet", "DriveAxis", "Driver", "Finding", "Group", "KnownAxial", "KnownTensor", "Ledger",
-    "Line", "MeshBody", "MeshComparison", "Node", "Part", "ShapeBody", "Table", "compare_mesh", "findings_of", "ledger_of", "six_of_tensor",
-    "tensor_of_six", "walk",
+    "CUT_AT_ONCE", "MOST_CUT_COPIES", "Assembly", "Body", "Cut", "Cutting", "DataSheet", "DriveAxis", "Driver",
+    "Finding", "Group", "KnownAxial", "KnownTensor", "Ledger", "Line", "MeshBody", "MeshComparison", "Node", "Part",
+    "ShapeBody", "Table", "compare_mesh", "findings_of", "ledger_of", "six_of_tensor", "tensor_of_six", "walk",
 ]

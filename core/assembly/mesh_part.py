@@ -58,13 +58,14 @@ def compare_mesh(part: Part, direction: FloatArray) -> MeshComparison | None:
     if not isinstance(body, MeshBody) or body.faceted is None or body.restored is None:
         return None
     restored = body.asset.restored()
-    if restored is None:
+    before, after = part.after_cuts(body.faceted), part.after_cuts(body.restored)
+    if restored is None or before is None or after is None:
         return None
     own = np.asarray(part.standing.turn)[0].T @ np.asarray(direction, dtype=float)
     left = restored.left
     return MeshComparison(
-        Comparison(float(body.faceted.mass), float(body.restored.mass), left.volume),
-        Comparison(_inertia(part, body.faceted, own), _inertia(part, body.restored, own), left.inertia),
+        Comparison(float(before.mass), float(after.mass), left.volume),
+        Comparison(_inertia(part, before, own), _inertia(part, after, own), left.inertia),
     )
 
 

@@ -10,6 +10,8 @@ from typing import TYPE_CHECKING, TypeAlias
 import numpy as np
 
 from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, bounds_of, equal_ellipsoid
+from core.assembly.cuts import Cut, check_cuts
+from core.assembly.cutting import CUT_AT_ONCE, Cutting, cutting_of, is_cut_already, surface_without
 from core.assembly.part_checks import checks_of_part
 from core.errors import EditRefused
 from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, check_measure
@@ -23,6 +25,7 @@ if TYPE_CHECKING:
     from core.checks import Check
     from core.facets import Facets
     from core.measure import Measure
+    from core.progress import Progress
 
 # A ledger of more bodies than this is refused: nested rings multiply, and nobody means ten million bolts.
 MOST_BODIES = 1_000_000
@@ -52,6 +55,12 @@ class Part:
         copies: how often it is there and where the copies stand.
         typed: what the user typed for a number, by field, where that says more than the number ("3/8 in + 2 mm").
         note: free text.
+        cuts: what is taken out of each copy, in the order of the ledger. A weighed mass is that of the finished part.
+
+    Whether a cut takes nothing out, or leaves nothing, is seen when its values are first asked for.
+
+    Raises:
+        EditRefused: the mass comes from what the body has not, or cuts are taken out of what cannot be cut.
     """
 
     key: str
@@ -62,6 +71,7 @@ class Part:
     copies: Copies = Several(1)
     typed: tuple[tuple[str, str], ...] = ()
     note: str = ""
+    cuts: tuple[Cut, ...] = ()
 
     def __post_init__(self) -> None:
         known = isinstance(self.body, KnownTensor | KnownAxial)
@@ -72,16 +82,56 @@ class Part:
             )
         if isinstance(self.body, ShapeBody | MeshBody) and not isinstance(self.driver, DataSheet):
             check_measure(self.driver, self.body.measure, self.name)
+        check_cuts(self.body, self.cuts, self.name)
+
+    @cached_property
+    def cutting(self) -> Cutting | None:
+        """What the cuts take out of one copy; None where there are none, and of a mesh that bounds no volume.
+
+        Raises:
+            EditRefused: a cut takes nothing out, nothing is left, or the body's surface cannot be cut.
+        """
+        return self.cut_with(None)
+
+    def cut_with(self, progress: Progress | None) -> Cutting | None:
+        """Return `cutting`; a worker that asks ahead of time can be watched and stopped.
+
+        Raises:
+            EditRefused: as `cutting`.
+            Cancelled: progress was cancelled.
+        """
+        if not self.cuts or not isinstance(self.body, ShapeBody | MeshBody) or self.body.solid is None:
+            return None
+        return cutting_of(self.body, self.cuts, self.name, progress)
+
+    @property
+    def cuts_take_long(self) -> bool:
+        """Whether somebody who asks for the values would have to wait: a large mesh, cut for the first time."""
+        if not self.cuts or not isinstance(self.body, MeshBody):
+            return False
+        return self.body.asset.survey.triangles > CUT_AT_ONCE and not is_cut_already(self.body, self.cuts)
+
+    def after_cuts(self, solid: Moments | None) -> Moments | None:
+        """Return what the cuts leave of the body's moments at unit density (or of another set of them); part frame."""
+        return solid if solid is None or self.cutting is None else solid - self.cutting.total
+
+    @cached_property
+    def solid(self) -> Moments | None:
+        """Moments of one copy after its cuts at unit mass per measure, part frame.
+
+        None for a known part, and for a mesh that bounds no volume.
+        """
+        return self.after_cuts(self.body.solid) if isinstance(self.body, ShapeBody | MeshBody) else None
 
     @cached_property
     def single(self) -> Moments | None:
         """Moments of one copy in the part frame; None while nothing says what it weighs, or it bounds no volume."""
         if isinstance(self.body, KnownTensor | KnownAxial):
             return self.body.own
-        if self.body.solid is None or isinstance(self.driver, DataSheet):
+        if self.solid is None or isinstance(self.driver, DataSheet):
             return None
-        mass = self.driver.mass_of(float(self.body.solid.mass))
-        return None if mass is None else self.body.solid.with_mass(mass)
+        mass = self.driver.mass_of(float(self.solid.mass))
+        return None if mass is None else self.solid.with_mass(mass)
 
     @cached_property
     def standing(self) -> Placement:
@@ -92,13 +142,18 @@ class Part:
     def surface(self) -> Facets:
         """What is drawn for one copy, in the part frame; a known part is drawn as the ellipsoid of equal moments."""
         if isinstance(self.body, ShapeBody | MeshBody):
-            return self.body.surface
+            return surface_without(self.body, self.cuts) if self.cuts else self.body.surface
         return equal_ellipsoid(self.body.own)
 
     @cached_property
     def bounds(self) -> FloatArray:
-        """Lowest and highest corner of the box around one copy, (2, 3) m in the part frame."""
-        return self.body.bounds if isinstance(self.body, ShapeBody | MeshBody) else bounds_of(self.surface)
+        """Lowest and highest corner of the box around one copy, (2, 3) m in the part frame.
+
+        Cuts in closed form lie inside the body and leave its box as it is.
+        """
+        if isinstance(self.body, ShapeBody | MeshBody) and (self.cutting is None or self.cutting.exact):
+            return self.body.bounds
+        return bounds_of(self.surface)
 
     @property
     def measure(self) -> Measure | None:
@@ -107,9 +162,8 @@ class Part:
 
     @property
     def extent(self) -> float | None:
-        """Its measure, of one copy: m³, m², m or 1; None for a known part and for a mesh that bounds no volume."""
-        solid = self.body.solid if isinstance(self.body, ShapeBody | MeshBody) else None
-        return None if solid is None else float(solid.mass)
+        """Its measure, of one copy after its cuts: m³, m², m or 1; None for a known part and a mesh without volume."""
+        return None if self.solid is None else float(self.solid.mass)
 
     @property
     def volume(self) -> float | None:
