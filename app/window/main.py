@@ -105,7 +105,7 @@ class MainWindow(QMainWindow):
         layout.addWidget(self.notice)
         layout.addWidget(self.halves, 1)
         self.setCentralWidget(middle)
-        for line, room in ((self.totals, 3), (self.told, 2)):
+        for line, room in ((self.totals, 1), (self.told, 1)):
             # A long name is cut off rather than making the window wide.
             line.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
             self.statusBar().addWidget(line, room)
@@ -129,6 +129,7 @@ class MainWindow(QMainWindow):
         application = QApplication.instance()
         if isinstance(application, QApplication):
             application.focusChanged.connect(self._note_place)
+        s.found.connect(self.view.light_up)
         self.view.picked.connect(self._pick)
         self.view.hovered.connect(self._hover)
         self.ledger.tree.hovered.connect(self._hover)
@@ -177,7 +178,7 @@ class MainWindow(QMainWindow):
 
     def _say(self, text: str) -> None:
         """Say what was done, beside the totals, for some seconds."""
-        self.told.setText(text)
+        self.told.setText(self.told.fontMetrics().elidedText(text, Qt.TextElideMode.ElideRight, self.told.width()))
         self.told.setToolTip(text)
         self._silence.start()
 
@@ -186,6 +187,9 @@ class MainWindow(QMainWindow):
             self.totals.setText("The ledger is empty: add a shape, drop a mesh, or open the sample.")
             return
         total, units = self.session.ledger.total, self.session.units
+        if total.mass is None:
+            self.totals.setText("No mass is known yet: choose a material, type a density or a weighed mass.")
+            return
         mass = f"{shown(self.session, total.mass, units[Kind.MASS])} {units[Kind.MASS].symbol}"
         inertia = f"{shown(self.session, total.inertia, units[Kind.INERTIA])} {units[Kind.INERTIA].symbol}"
         look = f"{counted(failed)} a look" if failed else "no check needs a look"

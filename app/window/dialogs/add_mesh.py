@@ -197,6 +197,7 @@ def _unit_table(parent: QWidget) -> QTableWidget:
     table.setTabKeyNavigation(False)
     header = table.horizontalHeader()
     header.setAccessibleName("Columns of the units")
+    header.setHighlightSections(False)
     header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
     header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
     header.setStretchLastSection(True)

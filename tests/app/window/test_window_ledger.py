@@ -491,6 +491,11 @@ def test_very_long_names_are_cut_off_and_read_whole_in_the_tool_tip(filled):
     assert filled.minimumSizeHint().width() <= 1280
 
 
+def test_a_part_without_mass_is_no_row_of_dashes_in_the_status_line(window):
+    window.add_shape("cylinder")
+    assert window.totals.text().startswith("No mass is known yet")
+
+
 def test_the_status_line_says_mass_inertia_and_checks_and_what_to_do_when_empty(window):
     assert "add a shape" in window.totals.text()
     window.session.take(dial(), None)
