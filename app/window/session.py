@@ -27,6 +27,7 @@ class Session(QObject):
         file_changed: the document has another path, or was saved.
         refused: an edit or a file could not be taken; the sentence that says why.
         said: something worth a line at the foot of the window.
+        found: edges (k, 2, 3) m of the document frame to light up in the view; none to take them away.
     """
 
     changed = Signal()
@@ -35,6 +36,7 @@ class Session(QObject):
     file_changed = Signal()
     refused = Signal(str)
     said = Signal(str)
+    found = Signal(object)
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
@@ -164,6 +166,11 @@ class Session(QObject):
         self._judge()
         self._after_change(None)
         self.said.emit(words)
+
+    def look_again(self) -> None:
+        """Judge the same assembly anew: what is known of its meshes has grown."""
+        self._judge()
+        self.changed.emit()
 
     def _judge(self) -> None:
         self.ledger = ledger_of(self.assembly)

@@ -9,6 +9,7 @@ from PySide6.QtWidgets import QGridLayout, QWidget
 
 from app.window.fields import ChoiceField, Form
 from app.window.numbers import shown
+from app.window.pages.mesh_findings import MeshFindings
 from app.window.pages.section import Section
 from app.window.style import GRID, Words
 from app.window.tasks import Task
@@ -51,6 +52,8 @@ class MeshSection(Section):
         )
         self._curved = CurvatureTable(session)
         form.add_row(self._curved)
+        self._findings = MeshFindings(session, self._put_in_place)
+        form.add_row(self._findings)
         self._unit.chosen.connect(self._choose_unit)
         self._counts.chosen.connect(self._choose_counts)
         self._task: Task[Restored | None] | None = None
@@ -60,7 +63,8 @@ class MeshSection(Section):
         if not (isinstance(node, Part) and isinstance(node.body, MeshBody)):
             return
         asset = node.body.asset
-        self._file.setText(f"{asset.name}, {asset.survey.triangles} facets, {asset.survey.format}")
+        mended = f" Mended: {', '.join(asset.mends)}." if asset.mends else ""
+        self._file.setText(f"{asset.name}, {asset.survey.triangles} facets, {asset.survey.format}.{mended}")
         self._verdict.setText(f"Verdict: {asset.survey.verdict}. " + " ".join(asset.survey.notes))
         self._verdict.set_role("text" if asset.survey.verdict in SOUND else "failed")
         self._unit.set_value(node.body.metres_per_unit)
@@ -68,6 +72,7 @@ class MeshSection(Section):
         low, high = node.body.bounds
         size = " × ".join(shown(self.session, float(extent), unit) for extent in high - low)
         self._size.setText(f"Size {size} {unit.symbol}")
+        self._findings.show_part(node, node.body)
         self._counts.set_value(node.body.counts)
         self._counts.setEnabled(can_restore(asset.survey))
         self._show_curvature(node, asset)
@@ -87,6 +92,16 @@ class MeshSection(Section):
     def _show_again(self) -> None:
         if self.key in self.session.assembly:
             self.show(self.session.assembly.node(self.key))
+
+    def _put_in_place(self, asset: MeshAsset, words: str) -> None:
+        """Put a mended mesh in the place of the one it was made from."""
+
+        def change(node: Node) -> Node:
+            if isinstance(node, Part) and isinstance(node.body, MeshBody):
+                return replace(node, body=replace(node.body, asset=asset))
+            return node
+
+        self.edit(f"{words} {self.session.assembly.node(self.key).name}", change)
 
     def _choose_unit(self, factor: object) -> None:
         def change(node: Node) -> Node:

@@ -5,6 +5,7 @@ import pytest
 from mesh_files import binary_stl, box
 
 from core.assembly import Assembly, MeshBody, Part, findings_of
+from core.assembly.mesh_findings import surplus_of
 from core.document import read_document, save_document
 from core.errors import ValueRefused
 from core.material import ByDensity
@@ -53,3 +54,15 @@ def test_a_part_whose_mesh_holds_overlapping_bodies_has_a_failed_check() -> None
     assembly = Assembly("two", (Part("p1", "two", MeshBody(asset, 1e-3), ByDensity(STEEL)),))
     failed = [finding for finding in findings_of(assembly) if not finding.check.ok]
     assert [(finding.key, finding.check.name) for finding in failed] == [("p1", "counted twice")]
+
+
+def test_what_overlapping_bodies_count_twice_is_told_as_volume_mass_and_share_of_own_inertia() -> None:
+    twice = np.concatenate([box(40, 30, 20), box(40, 30, 20, at=(20, 0, 0))])
+    part = Part("p1", "two", MeshBody(MeshAsset.of_bytes(binary_stl(twice), "two.stl"), 1e-3), ByDensity(STEEL))
+    finding = next(found for found in part.body.asset.census().findings if found.name == "counted twice")
+    surplus = surplus_of(Assembly("two", (part,)), part, finding)
+    assert surplus.volume == pytest.approx(20 * 30 * 20 * 1e-9, rel=1e-6)
+    assert surplus.mass == pytest.approx(STEEL * 20 * 30 * 20 * 1e-9, rel=1e-6)
+    # About z through x = 30, y = 15 mm: the middle box of 20 × 30 against two of 40 × 30, each 10 mm off.
+    shared, one = 12_000 * (20**2 + 30**2) / 12, 24_000 * ((40**2 + 30**2) / 12 + 10**2)
+    assert surplus.share == pytest.approx(shared / (2 * one), rel=1e-6)
