@@ -67,8 +67,10 @@ def surplus_of(assembly: Assembly, part: Part, finding: MeshFinding) -> Surplus 
     # The extra material turns about the whole part's centre of mass, along the drive axis as the part stands.
     along = part.standing.turn[0].T @ assembly.drive_axis.unit
     share = extra.inertia_about_axis(body.faceted.centre, along) / body.faceted.own_inertia_along(along)
-    density = None if part.single is None or part.basis == "weighed" else float(part.single.mass) / float(body.faceted.mass)
-    return Surplus(float(extra.mass), None if density is None else density * float(extra.mass), float(share))
+    mass = None
+    if part.single is not None and part.basis != "weighed":
+        mass = float(extra.mass) * float(part.single.mass / body.faceted.mass)
+    return Surplus(float(extra.mass), mass, float(share))
 
 
 def facet_edges(assembly: Assembly, key: str, facets: IntArray) -> FloatArray:
