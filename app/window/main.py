@@ -83,6 +83,7 @@ class MainWindow(QMainWindow):
         self.pages.setCurrentWidget(self.sheet)
         self.pages.setDocumentMode(True)
         self.pages.tabBar().setAccessibleName("Pages")
+        self.pages.tabBar().setDrawBase(False)
         self.start = StartPanel(self.actions_.shapes, self.files.ask_meshes, self.files.open_sample)
         self.top = QStackedWidget()
         self.top.addWidget(self.ledger)
