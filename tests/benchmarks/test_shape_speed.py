@@ -45,4 +45,3 @@ def test_a_hundred_thousand_sets_of_dimensions(benchmark, capsys, key: str):
     benchmark.extra_info.update(milliseconds=seconds * 1e3)
     with capsys.disabled():
         print(f"\n{key}: {SETS} sets in {seconds * 1e3:.1f} ms, made and integrated")  # noqa: T201  # what the run is for
-    assert seconds < 0.5
