@@ -7,7 +7,7 @@ gallery, the Part page, the document, the command line and the tests find it thr
 from abc import ABC, abstractmethod
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import ClassVar, Literal, Self, TypeAlias, TypeVar
+from typing import TYPE_CHECKING, ClassVar, Literal, Self, TypeAlias, TypeVar
 
 import numpy as np
 
@@ -16,6 +16,9 @@ from core.errors import ShapeError
 from core.facets import Facets
 from core.measure import Measure
 from core.moments import Moments
+
+if TYPE_CHECKING:
+    from core.shapes.marks import Mark
 
 DimensionKind: TypeAlias = Literal["length", "angle", "count"]
 
@@ -80,6 +83,10 @@ class Shape(ABC):
         It is closed around a solid. A sheet or shell is drawn as it is, open where it ends; a rod, a ring and
         a point mass as slender solids of a width of their own.
         """
+
+    @abstractmethod
+    def marks(self) -> tuple["Mark", ...]:
+        """Return where each dimension is measured on the body (part frame, m); for a single shape only."""
 
     def __post_init__(self) -> None:
         for dimension in self.dimensions:

@@ -9,6 +9,7 @@ from core.arrays import ArrayLike
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.marks import SIDE, Mark, along_x, along_y, span
 
 # The corners of the unit block in binary order (x fastest), and its faces seen from outside.
 _CORNERS = np.array([[x, y, z] for z in (0, 1) for y in (-0.5, 0.5) for x in (-0.5, 0.5)])
@@ -36,6 +37,15 @@ class Box(Shape):
         """Return the moments at unit density; mean square of each coordinate = length²/12."""
         x, y, z = self.array("length_x"), self.array("length_y"), self.array("length_z")
         return upright_moments(x * y * z, z / 2, (x**2 / 12, y**2 / 12, z**2 / 12))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, y, z = (self.single("length_x") / 2, self.single("length_y") / 2, self.single("length_z"))
+        return (
+            along_x("length_x", (-x, x), -y, 0),
+            along_y("length_y", (-y, y), x, 0),
+            span("length_z", (x, y, 0), (x, y, z), SIDE),
+        )
 
     def facets(self, steps: int = 48) -> Facets:  # noqa: ARG002 - a box has nothing round to divide
         """Return the twelve facets of the block, in m."""

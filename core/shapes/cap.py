@@ -9,6 +9,7 @@ from core.arrays import ArrayLike, FloatArray
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.marks import OTHER_SIDE, Mark, across, along_z, span
 from core.shapes.round_surface import check_steps, turned_surface
 
 
@@ -28,6 +29,10 @@ class Hemisphere(Shape):
         diameter = self.array("diameter")
         across, along = diameter**2 / 20, 19 * diameter**2 / 1280
         return upright_moments(np.pi / 12 * diameter**3, 3 * diameter / 16, (across, across, along))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return (across("diameter", self.single("diameter"), 0),)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return rings from the pole to the flat side, in m, all points on the true surface."""
@@ -75,6 +80,10 @@ class SphericalCap(Shape):
         along = h**2 * (10 * s**2 + 8 * s * h + h**2) / (20 * part**2)
         return upright_moments(np.pi * h**2 * part / 6, h * (2 * s + h) / (2 * part), (across, across, along))
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return cap_marks(self.single("sphere_diameter"), self.single("height"))
+
     def facets(self, steps: int = 48) -> Facets:
         """Return rings from the pole to the flat side, in m, all points on the true surface."""
         line = cap_line(self.single("sphere_diameter"), self.single("height"), steps)
@@ -109,3 +118,12 @@ def cap_line(diameter: float, height: float, steps: int) -> FloatArray:
     if height == diameter:
         radius[0] = 0.0
     return np.stack([radius, z], axis=-1)
+
+
+def cap_marks(diameter: float, height: float) -> tuple[Mark, ...]:
+    """Return the marks of a cap on z = 0: its sphere's diameter, m, from the pole down, and its height."""
+    pole = (0.0, 0.0, height)
+    return (
+        span("sphere_diameter", (0, 0, height - diameter), pole, OTHER_SIDE),
+        along_z("height", (0, height)),
+    )

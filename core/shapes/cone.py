@@ -9,6 +9,7 @@ from core.arrays import ArrayLike
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.marks import ABOVE, Mark, across, along_z
 from core.shapes.round_surface import turned_surface
 
 NO_BORE = (0.0, 0.0)
@@ -32,6 +33,11 @@ class Cone(Shape):
     def moments(self) -> Moments:
         """Return the moments at unit density; the centre lies at h/4, J = 3·m·D²/40 about the axis."""
         return _hollow_moments((self.array("base_diameter") / 2, 0.0), NO_BORE, self.array("height"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        diameter, height = self.values().values()
+        return across("base_diameter", diameter, 0), along_z("height", (0, height))
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a pyramid inscribed in the cone, in m."""
@@ -60,6 +66,15 @@ class Frustum(Shape):
         """Return the moments at unit density; equal diameters give the cylinder, a top of 0 the cone."""
         outer = self.array("base_diameter") / 2, self.array("top_diameter") / 2
         return _hollow_moments(outer, NO_BORE, self.array("height"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        base, top, height = self.values().values()
+        return (
+            across("base_diameter", base, 0),
+            across("top_diameter", top, height, ABOVE),
+            along_z("height", (0, height), top / 2),
+        )
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a cut-off pyramid inscribed in the frustum, in m, its ends as fans."""
@@ -113,6 +128,17 @@ class HollowFrustum(Shape):
         outer = self.array("base_diameter") / 2, self.array("top_diameter") / 2
         bore = self.array("base_bore") / 2, self.array("top_bore") / 2
         return _hollow_moments(outer, bore, self.array("height"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        base, top, base_bore, top_bore, height = self.values().values()
+        return (
+            across("base_diameter", base, 0),
+            across("top_diameter", top, height, ABOVE),
+            across("base_bore", base_bore, 0),
+            across("top_bore", top_bore, height, ABOVE),
+            along_z("height", (0, height), top / 2),
+        )
 
     def facets(self, steps: int = 48) -> Facets:
         """Return two nested pyramids with ring-shaped ends, in m, all points on the true surface."""

@@ -10,6 +10,7 @@ from core.errors import ShapeError
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, first_where, register, said, upright_moments
+from core.shapes.marks import ABOVE, Mark, across, along_z
 from core.shapes.round_surface import turned_surface
 
 
@@ -31,6 +32,11 @@ class Cylinder(Shape):
     def moments(self) -> Moments:
         """Return the moments at unit density; J = m·D²/8 about the axis."""
         return _ring_moments(self.array("diameter"), np.zeros(()), self.array("length"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        diameter, length = self.values().values()
+        return across("diameter", diameter, 0), along_z("length", (0, length), diameter / 2)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a prism inscribed in the bar, in m, its ends as fans."""
@@ -76,6 +82,15 @@ class Tube(Shape):
     def moments(self) -> Moments:
         """Return the moments at unit density; J = m·(D² + d²)/8 about the axis."""
         return _ring_moments(self.array("outer_diameter"), self.array("bore"), self.array("length"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        outer, bore, length = self.values().values()
+        return (
+            across("outer_diameter", outer, 0),
+            across("bore", bore, length, ABOVE),
+            along_z("length", (0, length), outer / 2),
+        )
 
     def facets(self, steps: int = 48) -> Facets:
         """Return two nested prisms with ring-shaped ends, in m, all points on the true surface."""

@@ -10,6 +10,7 @@ from core.facets import Facets
 from core.measure import Measure
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.marks import Mark, across
 from core.shapes.sphere import ball
 
 
@@ -22,7 +23,7 @@ class PointMass(Shape):
     title: ClassVar[str] = "point mass"
     measure: ClassVar[Measure] = "pieces"
     note: ClassVar[str] = "It has no size: about its own centre it has no inertia, whatever its mark is drawn like."
-    dimensions: ClassVar[tuple[Dimension, ...]] = (Dimension("mark", "diameter of its mark", 0.01),)
+    dimensions: ClassVar[tuple[Dimension, ...]] = (Dimension("mark", "diameter of its mark", 0.01, symbol="⌀"),)
 
     mark: ArrayLike
 
@@ -30,6 +31,10 @@ class PointMass(Shape):
         """Return the moments of 1 kg in the origin."""
         one, none = np.ones(np.shape(self.mark)), np.zeros(())
         return upright_moments(one, none, (none, none, none))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return (across("mark", self.single("mark"), 0),)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a ball to draw, in m; steps is rounded up to n × 4."""

@@ -9,6 +9,7 @@ from core.arrays import ArrayLike
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.marks import Mark, along_z, leader, span
 from core.shapes.round_surface import turned_surface
 
 
@@ -39,6 +40,19 @@ class RegularPrism(Shape):
         lean = np.tan(np.pi / n)
         across = width**2 * (3 + lean**2) / 48
         return upright_moments(n * lean * width**2 / 4 * length, length / 2, (across, across, length**2 / 12))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        n, width, length = self.values().values()
+        turn = np.pi / n
+        out, beside = (float(np.cos(turn)), float(np.sin(turn)), 0.0), (float(np.sin(turn)), -float(np.cos(turn)), 0.0)
+        flat = width / 2 * np.array(out)
+        facing = (out[0], -out[1], 0.0)
+        return (
+            leader("sides", width / 2 * np.array(facing) + [0, 0, length / 2], facing),
+            span("across_flats", -flat, flat, beside),
+            along_z("length", (0, length), width / 2),
+        )
 
     def facets(self, steps: int = 48) -> Facets:  # noqa: ARG002 - the sides are as many as they are
         """Return the sides, and the ends as fans, in m."""

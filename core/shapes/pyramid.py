@@ -9,6 +9,7 @@ from core.arrays import ArrayLike
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.marks import Mark, along_x, along_y, along_z, span
 from core.shapes.round_surface import turned_surface
 
 _CORNERS = np.array([[-0.5, -0.5, 0], [0.5, -0.5, 0], [0.5, 0.5, 0], [-0.5, 0.5, 0], [0, 0, 1]])
@@ -37,6 +38,15 @@ class Pyramid(Shape):
         x, y, h = self.array("length_x"), self.array("length_y"), self.array("height")
         return upright_moments(x * y * h / 3, h / 4, (x**2 / 20, y**2 / 20, 3 * h**2 / 80))
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, y, height = self.values().values()
+        return (
+            along_x("length_x", (-x / 2, x / 2), -y / 2, 0),
+            along_y("length_y", (-y / 2, y / 2), x / 2, 0),
+            along_z("height", (0, height)),
+        )
+
     def facets(self, steps: int = 48) -> Facets:  # noqa: ARG002 - a pyramid has nothing round to divide
         """Return the six facets of the pyramid, in m."""
         return Facets(_CORNERS * [self.single(name) for name in ("length_x", "length_y", "height")], _FACES)
@@ -59,6 +69,12 @@ class Tetrahedron(Shape):
         edge = self.array("edge")
         square = edge**2 / 40
         return upright_moments(edge**3 / 72**0.5, edge / 24**0.5, (square, square, square))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        edge = self.single("edge")
+        reach = edge / 3**0.5
+        return (span("edge", (-reach / 2, -edge / 2, 0), (reach, 0, 0), (0.5, -(0.75**0.5), 0)),)
 
     def facets(self, steps: int = 48) -> Facets:  # noqa: ARG002 - a tetrahedron has nothing round to divide
         """Return the surface, in m, its base as a fan about its middle."""

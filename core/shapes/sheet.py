@@ -10,6 +10,7 @@ from core.facets import Facets
 from core.measure import Measure
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.marks import ABOVE, Mark, across, along_x, along_y
 from core.shapes.round_surface import turned_sheet
 
 FLAT_NOTE = "Its thickness is neglected."
@@ -54,6 +55,11 @@ class ThinDisc(Shape):
         across, none = (outer**2 + bore**2) / 16, np.zeros(())
         return upright_moments(np.pi / 4 * (outer - bore) * (outer + bore), none, (across, across, none))
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        diameter, bore = self.values().values()
+        return across("diameter", diameter, 0), across("bore", bore, 0, ABOVE)
+
     def facets(self, steps: int = 48) -> Facets:
         """Return the disc seen from above, in m, its corners on the true circles."""
         return turned_sheet([(self.single("diameter") / 2, 0), (self.single("bore") / 2, 0)], steps)
@@ -80,6 +86,11 @@ class ThinSheet(Shape):
         """Return the moments at 1 kg/m²; mean square of each coordinate = length²/12."""
         x, y, none = self.array("length_x"), self.array("length_y"), np.zeros(())
         return upright_moments(x * y, none, (x**2 / 12, y**2 / 12, none))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, y = (length / 2 for length in self.values().values())
+        return along_x("length_x", (-x, x), -y, 0), along_y("length_y", (-y, y), x, 0)
 
     def facets(self, steps: int = 48) -> Facets:  # noqa: ARG002 - a sheet has nothing round to divide
         """Return the two facets of the sheet seen from above, in m."""

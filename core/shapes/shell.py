@@ -10,10 +10,11 @@ from core.facets import Facets
 from core.measure import Measure
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
-from core.shapes.cap import cap_line, refuse_high_cap
+from core.shapes.cap import cap_line, cap_marks, refuse_high_cap
+from core.shapes.marks import ABOVE, Mark, across, along_z
 from core.shapes.round_surface import turned_sheet
 from core.shapes.sphere import ball
-from core.shapes.torus import refuse_spindle, torus_surface
+from core.shapes.torus import refuse_spindle, torus_marks, torus_surface
 
 CLOSED_NOTE = "Its thickness is neglected."
 OPEN_NOTE = "Its thickness is neglected, and its ends are open."
@@ -41,6 +42,11 @@ class CylindricalShell(Shape):
         diameter, length = self.array("diameter"), self.array("length")
         across = diameter**2 / 8
         return upright_moments(np.pi * diameter * length, length / 2, (across, across, length**2 / 12))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        diameter, length = self.values().values()
+        return across("diameter", diameter, 0), along_z("length", (0, length), diameter / 2)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return the lateral surface of an inscribed prism, in m."""
@@ -79,6 +85,15 @@ class ConicalShell(Shape):
         along = h**2 * (a**2 + 4 * a * b + b**2) / (18 * (a + b) ** 2)
         return upright_moments(np.pi * (a + b) * slant, h * (a + 2 * b) / (3 * (a + b)), (across, across, along))
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        base, top, height = self.values().values()
+        return (
+            across("base_diameter", base, 0),
+            across("top_diameter", top, height, ABOVE),
+            along_z("height", (0, height), top / 2),
+        )
+
     def facets(self, steps: int = 48) -> Facets:
         """Return the lateral surface of an inscribed pyramid, in m."""
         base, top, height = self.values().values()
@@ -103,6 +118,10 @@ class SphericalShell(Shape):
         diameter = self.array("diameter")
         square = diameter**2 / 12
         return upright_moments(np.pi * diameter**2, np.zeros(()), (square, square, square))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return (across("diameter", self.single("diameter"), 0),)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return facets of similar size, in m, corners on the sphere; steps is rounded up to n × 4."""
@@ -148,6 +167,10 @@ class DomedShell(Shape):
         across = h * (3 * (d - h) + h) / 12
         return upright_moments(np.pi * d * h, h / 2, (across, across, h**2 / 12))
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return cap_marks(self.single("sphere_diameter"), self.single("height"))
+
     def facets(self, steps: int = 48) -> Facets:
         """Return rings from the rim to the pole, in m, all points on the true surface."""
         return turned_sheet(cap_line(self.single("sphere_diameter"), self.single("height"), steps), steps)
@@ -184,6 +207,10 @@ class ToroidalShell(Shape):
         a, b = self.array("mean_diameter") / 2, self.array("section_diameter") / 2
         across = (2 * a**2 + 3 * b**2) / 4
         return upright_moments(4 * np.pi**2 * a * b, np.zeros(()), (across, across, b**2 / 2))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return torus_marks(self.single("mean_diameter"), self.single("section_diameter"))
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a ring, in m, its section in half as many steps, all points on the true surface."""

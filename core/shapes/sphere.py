@@ -10,6 +10,7 @@ from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
 from core.shapes.joining import inside_out, together
+from core.shapes.marks import ABOVE, Mark, across
 from core.shapes.round_surface import check_steps
 
 
@@ -29,6 +30,10 @@ class Sphere(Shape):
         diameter = self.array("diameter")
         square = diameter**2 / 20
         return upright_moments(np.pi / 6 * diameter**3, np.zeros(()), (square, square, square))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return (across("diameter", self.single("diameter"), 0),)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return facets of similar size, in m, corners on the sphere; steps is rounded up to n × 4."""
@@ -70,6 +75,11 @@ class HollowSphere(Shape):
         cubes = a**2 + a * b + b**2
         square = (a**4 + a**3 * b + a**2 * b**2 + a * b**3 + b**4) / (20 * cubes)
         return upright_moments(np.pi / 6 * (a - b) * cubes, np.zeros(()), (square, square, square))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        outer, inner = self.values().values()
+        return across("outer_diameter", outer, 0), across("inner_diameter", inner, 0, ABOVE)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return the outer surface and that of the cavity, in m; steps is rounded up to n × 4."""

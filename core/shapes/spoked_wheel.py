@@ -10,6 +10,7 @@ from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
 from core.shapes.joining import together
+from core.shapes.marks import ABOVE, IN_PLACE, NEAR, OTHER_SIDE, Mark, across, along_z, leader, span
 from core.shapes.round_surface import turned_surface
 
 # Two opposite spokes are the only number whose second moments differ along x and y.
@@ -109,6 +110,27 @@ class SpokedWheel(Shape):
             (hub[2] + rim[2] + bars * w**2 / 16) / volume,
         )
         return upright_moments(volume, self._middle(), squares)
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        value, middle = self.values(), float(self._middle())
+        rim, hub = value["rim_width"] / 2, value["hub_length"] / 2
+        along, thick = value["spoke_width"] / 2, value["spoke_thickness"] / 2
+        out = (value["hub_diameter"] + value["rim_inner_diameter"]) / 4
+        turn = 2 * np.pi / value["spokes"]
+        outwards, sidewards = np.array([np.cos(turn), np.sin(turn), 0]), np.array([-np.sin(turn), np.cos(turn), 0])
+        second = out * outwards + np.array([0, 0, middle])
+        return (
+            across("rim_diameter", value["rim_diameter"], middle - rim),
+            across("rim_inner_diameter", value["rim_inner_diameter"], middle + rim, ABOVE),
+            along_z("rim_width", (middle - rim, middle + rim), value["rim_diameter"] / 2),
+            across("hub_diameter", value["hub_diameter"], middle + hub, ABOVE),
+            across("bore", value["bore"], middle + hub, ABOVE),
+            along_z("hub_length", (middle - hub, middle + hub), value["hub_diameter"] / 2, OTHER_SIDE),
+            leader("spokes", -second + [0, 0, 2 * middle + along], NEAR),
+            span("spoke_width", (out, 0, middle - along), (out, 0, middle + along), IN_PLACE),
+            span("spoke_thickness", second - thick * sidewards, second + thick * sidewards, IN_PLACE),
+        )
 
     def facets(self, steps: int = 48) -> Facets:
         """Return hub, rim and spokes as closed surfaces, in m, all points on the true surface."""

@@ -10,6 +10,7 @@ from core.errors import ShapeError
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, first_where, register, said, upright_moments
+from core.shapes.marks import ABOVE, FRONT, NEAR, Mark, across, along_x, along_z, leader
 from core.shapes.round_surface import check_steps
 from core.shapes.toothed_surface import toothed_surface
 
@@ -132,6 +133,20 @@ class ToothedWheel(Shape):
         polar = z / 2 * fourths - np.pi / 2 * bore**2
         across = polar / (2 * area)
         return upright_moments(area * width, width / 2, (across, across, width**2 / 12))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        form, value = self.form(), self.values()
+        tip, width, pitch = float(form.tip), value["width"], value["module"] * value["teeth"] / 2
+        counted, flank = (2 * np.pi / value["teeth"] * round(value["teeth"] * share) for share in (0.875, 0.7))
+        flank += np.pi / (2 * value["teeth"])
+        return (
+            along_x("module", (pitch, tip), 0, width, ABOVE),
+            leader("teeth", (tip * np.cos(counted), tip * np.sin(counted), width), NEAR),
+            leader("pressure_angle", (pitch * np.cos(flank), pitch * np.sin(flank), width), FRONT),
+            along_z("width", (0, width), tip),
+            across("bore", value["bore"], width, ABOVE),
+        )
 
     def facets(self, steps: int = 48) -> Facets:
         """Return the wheel, in m, all points on the true surface; a flank is divided into steps/8."""

@@ -9,6 +9,7 @@ from core.arrays import ArrayLike
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import FEWEST_STEPS, Dimension, Shape, register, upright_moments
+from core.shapes.marks import ABOVE, SIDE, Mark, across, span
 from core.shapes.round_surface import turned_surface
 
 
@@ -45,6 +46,10 @@ class Torus(Shape):
         across = (4 * a**2 + 3 * b**2) / 8
         return upright_moments(2 * np.pi**2 * a * b**2, np.zeros(()), (across, across, b**2 / 4))
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return torus_marks(self.single("mean_diameter"), self.single("section_diameter"))
+
     def facets(self, steps: int = 48) -> Facets:
         """Return a ring, in m, its section in half as many steps, all points on the true surface."""
         return torus_surface(self.single("mean_diameter"), self.single("section_diameter"), steps)
@@ -75,3 +80,9 @@ def torus_surface(mean_diameter: float, section_diameter: float, steps: int) -> 
     around = max(FEWEST_STEPS + 1, 2 * -(-steps // 4))
     angle = 2 * np.pi * np.arange(around) / around
     return turned_surface(np.stack([a + b * np.cos(angle), b * np.sin(angle)], axis=-1), steps)
+
+
+def torus_marks(mean_diameter: float, section_diameter: float) -> tuple[Mark, ...]:
+    """Return the marks of a torus about z, centred on the origin; diameters in m."""
+    ends = [tuple((mean_diameter + sign * section_diameter) / 2 * part for part in SIDE) for sign in (-1, 1)]
+    return across("mean_diameter", mean_diameter, 0), span("section_diameter", ends[0], ends[1], ABOVE)

@@ -9,6 +9,7 @@ from core.arrays import ArrayLike
 from core.facets import Facets
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register
+from core.shapes.marks import OTHER_SIDE, Mark, along_x, along_y, span
 
 # The base's corners, then the upper edge; the steep face looks to −x.
 _CORNERS = np.array([[-0.5, -0.5, 0], [0.5, -0.5, 0], [0.5, 0.5, 0], [-0.5, 0.5, 0], [-0.5, -0.5, 1], [-0.5, 0.5, 1]])
@@ -51,6 +52,15 @@ class Wedge(Shape):
             spread[..., axis, axis] = volume * square
         spread[..., 0, 2] = spread[..., 2, 0] = -volume * x * h / 36
         return Moments(volume, centre, spread)
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, y, height = self.single("length_x") / 2, self.single("length_y") / 2, self.single("height")
+        return (
+            along_x("length_x", (-x, x), -y, 0),
+            along_y("length_y", (-y, y), x, 0),
+            span("height", (-x, -y, 0), (-x, -y, height), OTHER_SIDE),
+        )
 
     def facets(self, steps: int = 48) -> Facets:  # noqa: ARG002 - a wedge has nothing round to divide
         """Return the eight facets of the wedge, in m."""

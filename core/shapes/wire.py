@@ -10,6 +10,7 @@ from core.facets import Facets
 from core.measure import Measure
 from core.moments import Moments
 from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.marks import Mark, across, along_z
 from core.shapes.round_surface import turned_surface
 from core.shapes.torus import torus_surface
 
@@ -35,6 +36,10 @@ class ThinRod(Shape):
         length, none = self.array("length"), np.zeros(())
         return upright_moments(length, length / 2, (none, none, length**2 / 12))
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return (along_z("length", (0, self.single("length"))),)
+
     def facets(self, steps: int = 48) -> Facets:
         """Return a bar to draw, in m, DRAWN_THICKNESS of its length thick."""
         length = self.single("length")
@@ -59,6 +64,10 @@ class ThinRing(Shape):
         """Return the moments at 1 kg/m; J = m·D²/4 about the axis, half of it about a diameter."""
         diameter, none = self.array("diameter"), np.zeros(())
         return upright_moments(np.pi * diameter, none, (diameter**2 / 8, diameter**2 / 8, none))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return (across("diameter", self.single("diameter"), 0),)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a torus to draw, in m, DRAWN_THICKNESS of its diameter thick."""

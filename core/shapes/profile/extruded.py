@@ -9,6 +9,7 @@ import numpy as np
 
 from core.moments import Moments
 from core.shapes.base import Dimension, register
+from core.shapes.marks import SIDE, span
 from core.shapes.profile.outline import Outline, circle_loop, rectangle_loop
 from core.shapes.profile.outlined import OutlinedShape
 from core.shapes.profile.surface import extruded_surface
@@ -19,6 +20,7 @@ if TYPE_CHECKING:
 
     from core.arrays import ArrayLike, FloatArray
     from core.facets import Facets
+    from core.shapes.marks import Mark
     from core.shapes.profile.plane_moments import PlaneMoments
 
 
@@ -41,6 +43,11 @@ class Extruded(OutlinedShape):
     def moments(self) -> Moments:
         """Return the moments at unit density, exactly."""
         return extruded_moments(self.outline.plane, self.array("length"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, y = self.outline.bounds[1]
+        return (span("length", (x, y, 0), (x, y, self.single("length")), SIDE),)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return sides and ends, in m, all points on the true surface."""

@@ -24,8 +24,9 @@ MOST_LOOPS = 1_000
 # Relative to the outline's size: points nearer than this are the same point, and what is this thin has no area.
 COINCIDENT = 1e-9
 
-# By how much, relative to half its chord, an arc's radius may fall short by round-off; it is then a half circle.
-HALF_CIRCLE = 1e-14
+# An arc whose radius differs from half its chord by the round-off of its ends' coordinates is a half circle: this
+# many units in their last place, and no less than so many in that of the radius.
+HALF_CIRCLE_UNITS = 40
 
 
 class OutlinePoint(NamedTuple):
@@ -264,7 +265,8 @@ def _bulges(x_y: FloatArray, arc: FloatArray) -> FloatArray:
     half = np.hypot(*(np.roll(x_y, -1, axis=0) - x_y).T) / 2
     with np.errstate(divide="ignore", invalid="ignore"):
         sine = np.where(arc == 0, 0.0, half / np.abs(arc))
-    full = sine > 1 - HALF_CIRCLE
+    last_place = np.spacing(np.abs(x_y).max(initial=0.0)) / np.where(half > 0, half, 1.0) + np.finfo(float).eps
+    full = sine > 1 - HALF_CIRCLE_UNITS * last_place
     sine = np.where(full, 1.0, sine)
     return np.asarray(np.sign(arc) * sine / (1 + np.sqrt((1 - sine) * (1 + sine))))
 

@@ -11,6 +11,7 @@ import numpy as np
 from core.errors import ShapeError
 from core.moments import Moments
 from core.shapes.base import Dimension, register
+from core.shapes.marks import NEAR, leader
 from core.shapes.profile.outline import COINCIDENT, Outline, OutlinePoint, place_of
 from core.shapes.profile.outlined import OutlinedShape
 from core.shapes.profile.surface import fully_turned_surface, partly_turned_surface
@@ -18,6 +19,7 @@ from core.shapes.profile.surface import fully_turned_surface, partly_turned_surf
 if TYPE_CHECKING:
     from core.arrays import ArrayLike, FloatArray
     from core.facets import Facets
+    from core.shapes.marks import Mark
     from core.shapes.profile.plane_moments import PlaneMoments
 
 FULL_TURN = 2 * np.pi
@@ -68,6 +70,14 @@ class Turned(OutlinedShape):
     def moments(self) -> Moments:
         """Return the moments at unit density, exactly; Pappus's rule for the volume, and its kin for the rest."""
         return turned_moments(self.outline.plane, self.array("angle"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        (_, low), (reach, high) = self.outline.bounds
+        angle = self.single("angle")
+        # Where it faces the eye; of a part of a turn in its middle.
+        at = 1.75 * np.pi if angle == FULL_TURN else angle / 2
+        return (leader("angle", (reach * np.cos(at), reach * np.sin(at), (low + high) / 2), NEAR),)
 
     def facets(self, steps: int = 48) -> Facets:
         """Return the turned faces, and the ends of a partial turn, in m, all points on the true surface."""

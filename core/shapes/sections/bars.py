@@ -8,12 +8,14 @@ from typing import TYPE_CHECKING, ClassVar
 import numpy as np
 
 from core.shapes.base import Dimension, register
+from core.shapes.marks import across, along_x, along_y, along_z
 from core.shapes.profile.edges import Edges
-from core.shapes.sections.hollow_sections import rounded_box
+from core.shapes.sections.hollow_sections import box_rounding, rounded_box
 from core.shapes.sections.section import LENGTH, Section
 
 if TYPE_CHECKING:
     from core.arrays import ArrayLike
+    from core.shapes.marks import Mark
 
 _CORNER = Dimension("corner_radius", "corner radius", 0.0, symbol="r", may_be_zero=True)
 
@@ -50,6 +52,16 @@ class FlatBar(Section):
             radius, across, remedy="Make the corner radius smaller",
         )
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, y, length = self.single("width") / 2, self.single("thickness") / 2, self.single("length")
+        return (
+            along_x("width", (-x, x), -y, 0),
+            along_y("thickness", (-y, y), x, 0),
+            box_rounding("corner_radius", 2 * x, 2 * y, self.single("corner_radius"), length),
+            self.length_mark(x, y),
+        )
+
     def loops(self) -> tuple[Edges, ...]:
         """Return the rounded rectangle, (..., 8) edges, m."""
         return (rounded_box(self.array("width"), self.array("thickness"), self.array("corner_radius")),)
@@ -81,6 +93,15 @@ class SquareBar(Section):
             radius, side, remedy="Make the corner radius smaller",
         )
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, length = self.single("side") / 2, self.single("length")
+        return (
+            along_x("side", (-x, x), -x, 0),
+            box_rounding("corner_radius", 2 * x, 2 * x, self.single("corner_radius"), length),
+            self.length_mark(x, x),
+        )
+
     def loops(self) -> tuple[Edges, ...]:
         """Return the rounded square, (..., 8) edges, m."""
         return (rounded_box(self.array("side"), self.array("side"), self.array("corner_radius")),)
@@ -97,6 +118,11 @@ class RoundBar(Section):
 
     diameter: ArrayLike
     length: ArrayLike
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        diameter, length = self.values().values()
+        return across("diameter", diameter, 0), along_z("length", (0, length), diameter / 2)
 
     def loops(self) -> tuple[Edges, ...]:
         """Return the circle, (..., 2) edges, m."""

@@ -8,11 +8,13 @@ from typing import TYPE_CHECKING, ClassVar
 import numpy as np
 
 from core.shapes.base import Dimension, register
+from core.shapes.marks import ABOVE, BACK, SIDE, across, along_x, along_y, along_z, radius, span
 from core.shapes.profile.edges import Edges
 from core.shapes.sections.section import LENGTH, Section, stacked
 
 if TYPE_CHECKING:
     from core.arrays import ArrayLike, FloatArray
+    from core.shapes.marks import Mark
 
 _RADII = (
     Dimension("outer_radius", "outer corner radius", 0.006, symbol="ro", may_be_zero=True),
@@ -45,6 +47,16 @@ class CircularHollowSection(Section):
         """
         super().check()
         refuse_wall(self, self.array("diameter"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        outer, wall, length = self.values().values()
+        ends = [(x * SIDE[0], x * SIDE[1], length) for x in (outer / 2 - wall, outer / 2)]
+        return (
+            across("diameter", outer, 0),
+            span("wall", ends[0], ends[1], ABOVE),
+            along_z("length", (0, length), outer / 2),
+        )
 
     def loops(self) -> tuple[Edges, ...]:
         """Return both circles, (..., 2) edges each, m."""
@@ -83,6 +95,11 @@ class RectangularHollowSection(Section):
         super().check()
         _refuse_hollow(self, np.minimum(self.array("height"), self.array("width")))
 
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, y = self.single("width") / 2, self.single("height") / 2
+        return along_y("height", (-y, y), x, 0), *_box_marks(self, "width", x, y)
+
     def loops(self) -> tuple[Edges, ...]:
         """Return both rounded rectangles, (..., 8) edges each, m."""
         return _box_loops(self, self.array("width"), self.array("height"))
@@ -116,6 +133,11 @@ class SquareHollowSection(Section):
         """
         super().check()
         _refuse_hollow(self, self.array("side"))
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x = self.single("side") / 2
+        return _box_marks(self, "side", x, x)
 
     def loops(self) -> tuple[Edges, ...]:
         """Return both rounded squares, (..., 8) edges each, m."""
@@ -165,3 +187,25 @@ def _box_loops(section: Section, width: FloatArray, height: FloatArray) -> tuple
     twice = 2 * section.array("wall")
     hole = rounded_box(width - twice, height - twice, section.array("inner_radius"))
     return rounded_box(width, height, section.array("outer_radius")), hole.reversed()
+
+
+def _box_marks(section: Section, width: str, x: float, y: float) -> tuple[Mark, ...]:
+    """Return the marks of a rectangular tube that is 2·x wide, under the name `width`, and 2·y high; m."""
+    wall, length = section.single("wall"), section.single("length")
+    inner = x - wall, y - wall
+    return (
+        along_x(width, (-x, x), -y, 0),
+        along_x("wall", (-x, wall - x), y, length, BACK),
+        box_rounding("outer_radius", 2 * x, 2 * y, section.single("outer_radius"), length),
+        box_rounding("inner_radius", 2 * inner[0], 2 * inner[1], section.single("inner_radius"), length, (1, 1)),
+        section.length_mark(x, y),
+    )
+
+
+def box_rounding(
+    name: str, width: float, height: float, length: float, z: float, corner: tuple[int, int] = (1, -1)
+) -> Mark:
+    """Return the mark of the radius `length` at one corner of a rectangle about z, at a height z; all in m."""
+    right, up = corner
+    centre = (right * (width / 2 - length), up * (height / 2 - length), z)
+    return radius(name, centre, (right, up, 0), length)

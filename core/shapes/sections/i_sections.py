@@ -8,10 +8,12 @@ from typing import TYPE_CHECKING, ClassVar
 import numpy as np
 
 from core.shapes.base import Dimension, register
+from core.shapes.marks import ABOVE, BACK, IN_PLACE, LEFT, along_x, along_y, leader, rounding
 from core.shapes.sections.section import LENGTH, CorneredSection, radii_of, stacked
 
 if TYPE_CHECKING:
     from core.arrays import ArrayLike, FloatArray
+    from core.shapes.marks import Mark
 
 # Flanges steeper than this are no flanges; standard ones taper by 5 to 14 %.
 STEEPEST = np.pi / 6
@@ -47,6 +49,10 @@ class ISection(CorneredSection):
             ShapeError: there are such.
         """
         refuse_no_web(self)
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        return i_marks(self, self.single("flange"), self.single("width") / 2)
 
     def corners(self) -> tuple[FloatArray, FloatArray]:
         """Return the twelve corners (..., 12, 2) and their radii (..., 12), m."""
@@ -96,6 +102,17 @@ class TaperedISection(CorneredSection):
         refuse_no_web(self)
         tip, root = self._tip_and_root()
         refuse_taper(self, tip, root)
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        corners, _ = self.corners()
+        length, half = self.single("length"), self.single("width") / 2
+        taper = (corners[4] + corners[5]) / 2
+        return (
+            *i_marks(self, self.single("flange"), half / 2),
+            rounding("toe_radius", corners, 5, self.single("toe_radius"), length),
+            leader("slope", (*taper, length), ABOVE),
+        )
 
     def corners(self) -> tuple[FloatArray, FloatArray]:
         """Return the twelve corners (..., 12, 2) and their radii (..., 12), m."""
@@ -152,3 +169,18 @@ def _i_corners(
     )
     r, toe, none = root_radius, toe_radius, np.zeros(())
     return points, radii_of(none, none, toe, r, r, toe, none, none, toe, r, r, toe)
+
+
+def i_marks(section: CorneredSection, flange: float, at: float) -> tuple[Mark, ...]:
+    """Return the marks of an I whose flanges are `flange` thick at the distance `at` from the web's middle; m."""
+    height, width, length = (section.single(name) for name in ("height", "width", "length"))
+    x, y, web = width / 2, height / 2, section.single("web") / 2
+    corners, _ = section.corners()
+    return (
+        along_y("height", (-y, y), -x, length, LEFT),
+        along_x("width", (-x, x), y, length, BACK),
+        along_x("web", (-web, web), 0, length, IN_PLACE),
+        along_y("flange", (y - flange, y), -at, length, LEFT if at == x else IN_PLACE),
+        rounding("root_radius", corners, 4, section.single("root_radius"), length),
+        section.length_mark(x, y),
+    )

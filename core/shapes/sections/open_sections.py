@@ -8,11 +8,13 @@ from typing import TYPE_CHECKING, ClassVar
 import numpy as np
 
 from core.shapes.base import Dimension, register
+from core.shapes.marks import ABOVE, BACK, IN_PLACE, LEFT, along_x, along_y, leader, rounding
 from core.shapes.sections.i_sections import STEEPEST, refuse_no_web, refuse_taper
 from core.shapes.sections.section import LENGTH, CorneredSection, radii_of, stacked
 
 if TYPE_CHECKING:
     from core.arrays import ArrayLike, FloatArray
+    from core.shapes.marks import Mark
 
 
 @register
@@ -58,6 +60,22 @@ class ChannelSection(CorneredSection):
         """
         refuse_no_web(self)
         refuse_taper(self, *self._tip_and_root())
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        height, width, length = (self.single(name) for name in ("height", "width", "length"))
+        corners, _ = self.corners()
+        y = height / 2
+        return (
+            along_y("height", (-y, y), 0, length, LEFT),
+            along_x("width", (0, width), y, length, BACK),
+            along_x("web", (0, self.single("web")), 0, length, IN_PLACE),
+            along_y("flange", (y - self.single("flange"), y), width / 2, length, IN_PLACE),
+            rounding("root_radius", corners, 3, self.single("root_radius"), length),
+            rounding("toe_radius", corners, 2, self.single("toe_radius"), length),
+            leader("slope", (*(0.3 * corners[4] + 0.7 * corners[5]), length), ABOVE),
+            self.length_mark(width, y),
+        )
 
     def corners(self) -> tuple[FloatArray, FloatArray]:
         """Return the eight corners (..., 8, 2) and their radii (..., 8), m."""
@@ -107,6 +125,19 @@ class AngleSection(CorneredSection):
         self.refuse_where(
             thickness >= leg, "the thickness {} leaves nothing of a leg of {}",
             thickness, leg, remedy="Make the thickness smaller, or the legs longer",
+        )
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        x, y, length = (self.single(name) for name in ("leg_x", "leg_y", "length"))
+        corners, _ = self.corners()
+        return (
+            along_y("leg_y", (0, y), 0, length, LEFT),
+            along_x("leg_x", (0, x), 0, 0),
+            along_x("thickness", (0, self.single("thickness")), y, length, BACK),
+            rounding("root_radius", corners, 3, self.single("root_radius"), length),
+            rounding("toe_radius", corners, 2, self.single("toe_radius"), length),
+            self.length_mark(x, 0),
         )
 
     def corners(self) -> tuple[FloatArray, FloatArray]:
@@ -161,6 +192,21 @@ class TSection(CorneredSection):
         self.refuse_where(
             flange >= height, "a flange of {} leaves no stem in a height of {}",
             flange, height, remedy="Make the flange thinner, or the section higher",
+        )
+
+    def marks(self) -> tuple[Mark, ...]:
+        """Return where the dimensions are measured."""
+        height, width, length = (self.single(name) for name in ("height", "width", "length"))
+        corners, _ = self.corners()
+        x, web, flange = width / 2, self.single("web") / 2, self.single("flange")
+        return (
+            along_y("height", (0, height), -x, length, LEFT),
+            along_x("width", (-x, x), 0, 0),
+            along_x("web", (-web, web), height, length, BACK),
+            along_y("flange", (0, flange), -x, length, LEFT),
+            rounding("root_radius", corners, 3, self.single("root_radius"), length),
+            rounding("toe_radius", corners, 2, self.single("toe_radius"), length),
+            self.length_mark(x, flange),
         )
 
     def corners(self) -> tuple[FloatArray, FloatArray]:

@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.shapes.base import Dimension, Shape
+from core.shapes.marks import SIDE, span
 from core.shapes.profile.edges import Edges, tangents
 from core.shapes.profile.extruded import extruded_facets, extruded_moments
 from core.shapes.profile.plane_moments import PlaneMoments, plane_moments
@@ -17,6 +18,7 @@ if TYPE_CHECKING:
     from core.arrays import ArrayLike, FloatArray
     from core.facets import Facets
     from core.moments import Moments
+    from core.shapes.marks import Mark
 
 LENGTH = Dimension("length", "length", 0.5, symbol="L")
 
@@ -36,6 +38,10 @@ class Section(Shape):
     def plane(self) -> PlaneMoments:
         """Area (...) m², centroid, second and third moments of area of the section, exactly, fillets included."""
         return plane_moments(self.loops())
+
+    def length_mark(self, x: float, y: float) -> Mark:
+        """Return the mark of the length along the edge at (x, y) m, the rightmost one of the picture."""
+        return span("length", (x, y, 0), (x, y, self.single("length")), SIDE)
 
     def moments(self) -> Moments:
         """Return the moments at unit density, exactly, fillets included."""
