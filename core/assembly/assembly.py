@@ -12,6 +12,7 @@ from core.errors import EditRefused
 from core.moments import Moments, unit_vector
 
 if TYPE_CHECKING:
+    from core.assembly.cuts import Cut
     from core.placement import Triple
 
 # Deeper nesting than this is refused: no machine has it, and a reader of the file must not be led into the ground.
@@ -61,6 +62,7 @@ class Assembly:
                 read=f"{self.drive!r} among {', '.join(names) or 'none'}",
             )
         self._paths  # noqa: B018  # refuses double keys, bottomless nesting and too many bodies at once
+        self._cut_homes  # noqa: B018  # refuses double keys
 
     @cached_property
     def _paths(self) -> dict[str, tuple[int, ...]]:
@@ -83,6 +85,19 @@ class Assembly:
                     remedy="Make a ring, row or quantity smaller",
                 )
         return paths
+
+    @cached_property
+    def _cut_homes(self) -> dict[str, Part]:
+        """The part that each cut is taken out of, by the cut's key."""
+        homes: dict[str, Part] = {}
+        for node, _ in walk(self.members):
+            if isinstance(node, Part):
+                for cut in node.cuts:
+                    if cut.key in self._paths or cut.key in homes:
+                        where = f"{node.name}, {cut.name}"
+                        raise EditRefused("two lines have the same key", where=where, read=cut.key)
+                    homes[cut.key] = node
+        return homes
 
     @property
     def drive_axis(self) -> DriveAxis:
@@ -120,30 +135,70 @@ class Assembly:
         return frozen([(centre - half).min(axis=0), (centre + half).max(axis=0)])
 
     def __contains__(self, key: object) -> bool:
-        return key in self._paths
+        """Return whether a line has this key: a part, a group or a cut."""
+        return key in self._paths or key in self._cut_homes
 
     def node(self, key: str) -> Node:
         """Return the part or group with this key.
 
         Raises:
-            EditRefused: there is none.
+            EditRefused: there is none; the key of a cut is not one.
         """
         return self._along(self._path(key))[-1]
+
+    def is_cut(self, key: str) -> bool:
+        """Return whether the line with this key is a cut."""
+        return key in self._cut_homes
+
+    def cut(self, key: str) -> Cut:
+        """Return the cut with this key.
+
+        Raises:
+            EditRefused: there is none.
+        """
+        return next(cut for cut in self.part_of_cut(key).cuts if cut.key == key)
+
+    def part_of_cut(self, key: str) -> Part:
+        """Return the part that the cut with this key is taken out of.
+
+        Raises:
+            EditRefused: there is no such cut.
+        """
+        if key not in self._cut_homes:
+            raise EditRefused("the assembly has no such cut", read=key)
+        return self._cut_homes[key]
+
+    def node_of_line(self, key: str) -> Node:
+        """Return the part or group with this key, or the part that the cut with this key is taken out of.
+
+        Raises:
+            EditRefused: no line has this key.
+        """
+        return self.part_of_cut(key) if self.is_cut(key) else self.node(key)
+
+    def name_of_line(self, key: str) -> str:
+        """Return the name of the part, group or cut with this key.
+
+        Raises:
+            EditRefused: no line has this key.
+        """
+        return self.cut(key).name if self.is_cut(key) else self.node(key).name
 
     def groups_above(self, key: str) -> tuple[Group, ...]:
         """Return the groups that hold this node, the outermost first."""
         return tuple(node for node in self._along(self._path(key))[:-1] if isinstance(node, Group))
 
     def fresh_key(self, stem: str = "p") -> str:
-        """Return a key that no node has."""
-        number = len(self._paths) + 1
-        while f"{stem}{number}" in self._paths:
+        """Return a key that no line has."""
+        number = len(self._paths) + len(self._cut_homes) + 1
+        while f"{stem}{number}" in self:
             number += 1
         return f"{stem}{number}"
 
     def fresh_name(self, stem: str) -> str:
-        """Return stem, or stem with the first number that makes it a name no node has."""
+        """Return stem, or stem with the first number that makes it a name no line has."""
         names = {node.name for node, _ in walk(self.members)}
+        names |= {self.cut(key).name for key in self._cut_homes}
         number = 2
         name = stem
         while name in names:
@@ -165,14 +220,43 @@ class Assembly:
         return self.replaced(replace(holder, members=_with(holder.members, node, index)))
 
     def removed(self, keys: tuple[str, ...]) -> Assembly:
-        """Return the assembly without these nodes and all they hold."""
+        """Return the assembly without these nodes and all they hold, and without these cuts."""
         left = self
         for key in keys:
-            if key in left:
-                left = replace(left, members=_rebuilt(left.members, left._path(key), ()))
-            else:
+            home = key
+            instead: tuple[Node, ...] = ()
+            if left.is_cut(key):
+                part = left.part_of_cut(key)
+                home, instead = part.key, (replace(part, cuts=tuple(cut for cut in part.cuts if cut.key != key)),)
+            if home in left:
+                left = replace(left, members=_rebuilt(left.members, left._path(home), instead))
+            elif not self.is_cut(key):
                 self._path(key)  # refused, unless it went with a group that held it
         return left
+
+    def replaced_cut(self, cut: Cut) -> Assembly:
+        """Return the assembly with the cut of the same key replaced by this one."""
+        part = self.part_of_cut(cut.key)
+        return self.replaced(replace(part, cuts=tuple(cut if one.key == cut.key else one for one in part.cuts)))
+
+    def inserted_cut(self, cut: Cut, part: str, index: int | None = None) -> Assembly:
+        """Return the assembly with a cut taken out of a part, before the cut at index (None: after all of them).
+
+        Raises:
+            EditRefused: the key is not that of a part, or nothing can be cut out of it.
+        """
+        holder = self.node(part)
+        if not isinstance(holder, Part):
+            raise EditRefused(
+                "a cut is taken out of a part, not of a group", where=holder.name, remedy="Choose one of its parts"
+            )
+        at = len(holder.cuts) if index is None else index
+        return self.replaced(replace(holder, cuts=(*holder.cuts[:at], cut, *holder.cuts[at:])))
+
+    def moved_cut(self, key: str, index: int) -> Assembly:
+        """Return the assembly with a cut put before the cut at index among the other cuts of its part."""
+        cut, part = self.cut(key), self.part_of_cut(key)
+        return self.removed((key,)).inserted_cut(cut, part.key, index)
 
     def moved(self, key: str, group: str | None = None, index: int | None = None) -> Assembly:
         """Return the assembly with a node taken out and put into a group before index, its pose as it was.
@@ -186,6 +270,11 @@ class Assembly:
         return self.removed((key,)).inserted(node, group, index)
 
     def _path(self, key: str) -> tuple[int, ...]:
+        if key in self._cut_homes:
+            raise EditRefused(
+                "a cut stays with the part that it is taken out of", where=self.cut(key).name,
+                remedy="Choose its part, or edit the cut itself",
+            )
         if key not in self._paths:
             raise EditRefused("the assembly has no such line", read=key)
         return self._paths[key]

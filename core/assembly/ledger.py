@@ -3,15 +3,20 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Literal
+from typing import TYPE_CHECKING, Literal, TypeAlias
 
 import numpy as np
 
 from core.arrays import FloatArray, IntArray, frozen, settled
 from core.assembly.nodes import Part, walk
+from core.moments import Moments
+from core.placement import Placement
 
 if TYPE_CHECKING:
     from core.assembly.assembly import Assembly, DriveAxis
+    from core.assembly.nodes import Table
+
+LineKind: TypeAlias = Literal["part", "cut", "group", "total"]
 
 # How the basis of a value begins that a reader must not take as computed.
 WEAK = ("estimated", "no volume", "not set")
@@ -19,14 +24,17 @@ WEAK = ("estimated", "no volume", "not set")
 
 @dataclass(frozen=True, eq=False)
 class Line:
-    """One line of the ledger; a group's line is the sum of the lines it holds.
+    """One line of the ledger; a group's line is the sum of the lines of the parts and groups it holds.
+
+    A part's line holds its values after its cuts. The lines of the cuts stand below it, one deeper, and say what of
+    that was taken out, with negative mass; they are in the part's line already and are not added again.
 
     Attributes:
-        key, name, kind: of the node; "" , the document's name and "total" at the foot.
-        depth: of the node in the tree, 0 outermost.
-        count: equal copies of it in the group that holds it.
+        key, name, kind: of the node or cut; "" , the document's name and "total" at the foot.
+        depth: of the node in the tree, 0 outermost; of a cut one more than of its part.
+        count: equal copies of it in the group that holds it; of a cut in its part.
         times: equal copies of it in the whole document, the copies of the groups around it multiplied in.
-        material: what says its mass, as shown; of a group or the total only what some of its parts lack.
+        material: what says its mass, as shown; of a group or the total only what some of its parts lack; "cut".
         basis: computed, weighed, data sheet, estimated …, not set.
         mass: kg, of all copies; None while it is not known.
         centre: (3,) m, of all copies together, document frame; None while the mass is not known.
@@ -38,7 +46,7 @@ class Line:
 
     key: str
     name: str
-    kind: Literal["part", "group", "total"]
+    kind: LineKind
     depth: int
     count: int
     times: int
@@ -65,7 +73,8 @@ def ledger_of(assembly: Assembly) -> Ledger:
     """Return the ledger about the assembly's drive axis."""
     heads: list[_Head] = []
     spans: list[tuple[int, int]] = []
-    at = 0
+    everything = assembly.table.parts
+    at, cut_at = 0, len(everything)
     above: list[int] = []
     for node, depth in walk(assembly.members):
         above[depth:] = [(above[depth - 1] if depth else 1) * node.copies.count]
@@ -77,13 +86,17 @@ def ledger_of(assembly: Assembly) -> Ledger:
             inside = node.table.parts
             words = (_warning(inside), _common_basis(inside))
             spans.append((at, at + len(inside)))
-        kind: Literal["part", "group"] = "part" if isinstance(node, Part) else "group"
+        kind: LineKind = "part" if isinstance(node, Part) else "group"
         heads.append(_Head(node.key, node.name, kind, depth, node.copies.count, above[depth], *words))
-    everything = assembly.table.parts
+        for cut in node.cuts if isinstance(node, Part) else ():
+            count, times = cut.copies.count, above[depth] * cut.copies.count
+            heads.append(_Head(cut.key, cut.name, "cut", depth + 1, count, times, "cut", words[1]))
+            spans.append((cut_at, cut_at + 1))
+            cut_at += 1
     spans.append((0, len(everything)))
     heads.append(_Head("", assembly.name, "total", 0, 1, 1, _warning(everything), _common_basis(everything)))
-    lines = _lines(heads, _sums(assembly).over(np.array(spans)))
-    return Ledger(tuple(lines[:-1]), lines[-1], assembly.drive_axis)
+    *lines, foot = _lines(heads, _sums(assembly).over(np.array(spans)))
+    return Ledger(tuple(lines), foot, assembly.drive_axis)
 
 
 @dataclass(frozen=True)
@@ -92,7 +105,7 @@ class _Head:
 
     key: str
     name: str
-    kind: Literal["part", "group", "total"]
+    kind: LineKind
     depth: int
     count: int
     times: int
@@ -102,7 +115,7 @@ class _Head:
 
 @dataclass(frozen=True, eq=False)
 class _Sums:
-    """Mass, first moment (n, 3), own inertia, transfer and number of known masses, of parts or of lines (n,).
+    """Mass, first moment (n, 3), own inertia, transfer and number of known masses, of lines or of parts and cuts (n,).
 
     `size` is how far out the farthest centre of mass is, m.
     """
@@ -115,11 +128,11 @@ class _Sums:
     size: float
 
     def over(self, spans: IntArray) -> _Sums:
-        """Return the sums over runs of parts: rows first, one behind the last, (m, 2)."""
+        """Return the sums over runs of rows: rows first, one behind the last, (m, 2)."""
         edges, empty = spans.ravel(), spans[:, 0] == spans[:, 1]
 
         def summed(values: FloatArray) -> FloatArray:
-            # One more row, so that a run may end behind the last part; every second sum is between the runs.
+            # One more row, so that a run may end behind the last; every second sum is between the runs.
             padded = np.concatenate([values, np.zeros((1, *values.shape[1:]))])
             runs = np.add.reduceat(padded, edges, axis=0)[::2]
             runs[empty] = 0
@@ -134,7 +147,7 @@ def _lines(heads: list[_Head], sums: _Sums) -> list[Line]:
     shown = (sums.known > 0) & (sums.mass != 0)
     with np.errstate(divide="ignore", invalid="ignore"):
         centres = frozen(settled(sums.first / sums.mass[:, None], sums.size))
-    transfer = settled(sums.transfer, sums.own + sums.mass * sums.size**2)
+    transfer = settled(sums.transfer, np.abs(sums.own) + np.abs(sums.mass) * sums.size**2)
     inertia = sums.own + transfer
     shares = (inertia / inertia[-1]).tolist() if inertia[-1] > 0 else [None] * len(heads)
     numbers = (column.tolist() for column in (sums.own, transfer, inertia))
@@ -162,18 +175,66 @@ def _warning(parts: tuple[Part, ...]) -> str:
 
 
 def _sums(assembly: Assembly) -> _Sums:
-    table, axis = assembly.table, assembly.drive_axis
-    rows, count = table.moments, len(table.parts)
+    """Return the sums of every part, then those of every cut, in the order of the ledger."""
+    table = assembly.table
+    known = np.array([part.single is not None for part in table.parts], dtype=float)
+    rows, owner = table.moments, table.owner
+    cuts = sum(len(part.cuts) for part in table.parts)
+    if cuts:
+        removed, cut_owner = _removed_rows(table)
+        rows, owner = _both(rows, removed), np.concatenate([owner, len(table.parts) + cut_owner])
+        known = np.concatenate([known, np.repeat(known, [len(part.cuts) for part in table.parts])])
+    axis, count = assembly.drive_axis, len(table.parts) + cuts
 
-    def per_part(values: FloatArray) -> FloatArray:
-        return np.asarray(np.bincount(table.owner, weights=values, minlength=count), dtype=np.float64)
+    def per_line(values: FloatArray) -> FloatArray:
+        return np.asarray(np.bincount(owner, weights=values, minlength=count), dtype=np.float64)
 
     weighted = rows.mass[:, None] * rows.centre
     return _Sums(
-        mass=per_part(rows.mass),
-        first=np.stack([per_part(weighted[:, i]) for i in range(3)], axis=1),
-        own=per_part(rows.own_inertia_along(axis.unit)),
-        transfer=per_part(rows.transfer_to_axis(axis.point, axis.unit)),
-        known=np.array([part.single is not None for part in table.parts], dtype=float),
+        mass=per_line(rows.mass),
+        first=np.stack([per_line(weighted[:, i]) for i in range(3)], axis=1),
+        own=per_line(rows.own_inertia_along(axis.unit)),
+        transfer=per_line(rows.transfer_to_axis(axis.point, axis.unit)),
+        known=known,
         size=float(np.abs(rows.centre).max(initial=0.0)),
+    )
+
+
+def _removed_rows(table: Table) -> tuple[Moments, IntArray]:
+    """Return what every copy of every cut takes out of every copy of its part, and which of the cuts it belongs to.
+
+    The moments (n,) are in the document frame, with negative mass; of a part whose mass is not known there are none.
+    """
+    copies = np.bincount(table.owner, minlength=len(table.parts))
+    first = np.cumsum(copies) - copies
+    taken: list[Moments] = []
+    lengths: list[tuple[int, int, int]] = []  # pieces of a cut, its part, its place among all cuts
+    at = 0
+    for place, part in enumerate(table.parts):
+        if part.single is not None and part.solid is not None and part.cutting is not None:
+            density = part.single.mass / part.solid.mass
+            taken += [removed.times(-density) for removed in part.cutting.removed]
+            pieces = [len(removed.mass) for removed in part.cutting.removed]
+            lengths += [(pieces[i], place, at + i) for i in range(len(pieces))]
+        at += len(part.cuts)
+    if not taken:
+        return Moments(np.zeros(0), np.zeros((0, 3)), np.zeros((0, 3, 3))), np.zeros(0, dtype=np.int64)
+    count, owner, cut = np.array(lengths).T
+    times = np.repeat(copies[owner], count)
+    # Each piece once for each copy of its part: its row, and how far down that part's rows.
+    piece = np.repeat(np.arange(len(times)), times)
+    down = np.arange(len(piece)) - np.repeat(np.cumsum(times) - times, times)
+    rows = np.argsort(table.owner, kind="stable")[first[np.repeat(owner, count)[piece]] + down]
+    batch = Moments(
+        np.concatenate([one.mass for one in taken])[piece], np.concatenate([one.centre for one in taken])[piece],
+        np.concatenate([one.spread for one in taken])[piece],
+    )
+    standing = Placement(table.standing.turn[rows], table.standing.shift[rows])
+    return standing.place(batch), np.repeat(cut, count)[piece]
+
+
+def _both(first: Moments, second: Moments) -> Moments:
+    return Moments(
+        np.concatenate([first.mass, second.mass]), np.concatenate([first.centre, second.centre]),
+        np.concatenate([first.spread, second.spread]),
     )

@@ -7,10 +7,13 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.assembly.bodies import KnownAxial, KnownTensor, MeshBody
+from core.assembly.cutting import WORTH_A_WORD
 from core.checks import Check, check_body
 from core.mesh.mesh_check import check_mesh
 
 if TYPE_CHECKING:
+    from collections.abc import Iterator
+
     from core.assembly.nodes import Part
     from core.measure import Measure
 
@@ -24,7 +27,7 @@ _WEIGHED_BY: dict[Measure, str] = {
 
 def checks_of_part(part: Part) -> tuple[Check, ...]:
     """Return the checks on one copy of a part, and on the mesh or the data sheet behind it."""
-    checks: list[Check] = list(_entry_checks(part))
+    checks: list[Check] = [*_entry_checks(part), *_cut_checks(part)]
     if part.single is None:
         if part.extent is not None and part.measure is not None:
             checks.append(
@@ -50,6 +53,21 @@ def _entry_checks(part: Part) -> tuple[Check, ...]:
         return (verdict,)
     text = f"{part.name}: the mesh was mended after it was read: {', '.join(asset.mends)}."
     return verdict, Check("mends", ok=True, text=text)
+
+
+def _cut_checks(part: Part) -> Iterator[Check]:
+    """Tell of the cuts that stick out of the body or overlap, and of which only a part is counted."""
+    cutting = part.cutting
+    if cutting is None:
+        return
+    for cut, outside, shared in zip(part.cuts, cutting.outside, cutting.shared, strict=True):
+        name = f"{part.name}, {cut.name}"
+        if outside > WORTH_A_WORD:
+            share = f"{100 * outside:.3g} % of it"
+            yield Check("cut", ok=True, text=f"{name}: {share} is outside the body; only what is inside is counted")
+        if shared > WORTH_A_WORD:
+            share = f"{100 * shared:.3g} % of it"
+            yield Check("cut", ok=True, text=f"{name}: {share} overlaps other cuts; what they share is counted once")
 
 
 def _reach(part: Part) -> float | None:

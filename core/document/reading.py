@@ -10,6 +10,7 @@ from typing import IO, TYPE_CHECKING, TypeAlias, TypeVar
 from core.assembly import (
     Assembly,
     Body,
+    Cut,
     DataSheet,
     DriveAxis,
     Driver,
@@ -39,6 +40,7 @@ if TYPE_CHECKING:
         AxisEntry,
         BodyEntry,
         CopiesEntry,
+        CutEntry,
         DocumentEntry,
         DriverEntry,
         MeshEntry,
@@ -140,9 +142,20 @@ class _Builder:
             return Group(entry.key, entry.name, members, pose, copies, typed, entry.note)
         driver = _made(f"{place}.driver {said}", lambda: _driver(entry.driver))
         body = _made(f"{place}.body {said}", lambda: self._body(entry.body))
+        cuts = tuple(self._cut(cut, f"{place}.cuts[{i}] ({cut.name})") for i, cut in enumerate(entry.cuts))
         return _made(
             f"{place} {said}",
-            lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note),
+            lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note, cuts),
+        )
+
+    def _cut(self, entry: CutEntry, place: str) -> Cut:
+        typed = tuple((field, text) for field, text in entry.typed)
+        pose = _pose(entry.pose)
+        return _made(
+            place,
+            lambda: Cut(
+                entry.key, entry.name, self._shape(entry.shape).shape, pose, _copies(entry.copies), typed, entry.note
+            ),
         )
 
     def _body(self, entry: BodyEntry) -> Body:

@@ -10,6 +10,7 @@ from typing import Annotated, Literal, TypeAlias
 
 from pydantic import BaseModel, ConfigDict, Field, Strict
 
+from core.assembly.cuts import MOST_CUT_COPIES
 from core.shapes.profile import MOST_LOOPS, MOST_POINTS
 
 # No length, mass or inertia of a machine comes near this; the fifth power of it is still a finite number.
@@ -192,6 +193,18 @@ BodyEntry: TypeAlias = Annotated[
 ]
 
 
+class CutEntry(_Entry):
+    """A solid that is taken out of a part; it stands in the part's frame."""
+
+    key: Name
+    name: Name
+    note: Text
+    typed: Typed
+    pose: PoseEntry
+    copies: CopiesEntry
+    shape: ShapeEntry
+
+
 class PartEntry(_Entry):
     """One line of the parts list."""
 
@@ -204,6 +217,7 @@ class PartEntry(_Entry):
     copies: CopiesEntry
     body: BodyEntry
     driver: DriverEntry
+    cuts: Annotated[list[CutEntry], Field(max_length=MOST_CUT_COPIES)] = []
 
 
 class GroupEntry(_Entry):

@@ -7,6 +7,7 @@ from typing import Any
 from core.assembly import (
     Assembly,
     Body,
+    Cut,
     DataSheet,
     DriveAxis,
     Driver,
@@ -21,7 +22,7 @@ from core.assembly import (
 from core.document.migration import MAJOR, MINOR, Data
 from core.material import ByDensity, ByMaterial, PerArea, PerLength, Weighed
 from core.placement import Copies, Mirrored, Pose, Ring, Row
-from core.shapes import OutlinedShape
+from core.shapes import OutlinedShape, Shape
 
 
 def data_of_assembly(assembly: Assembly) -> Data:
@@ -49,17 +50,21 @@ def _axis(axis: DriveAxis) -> Data:
 
 
 def _node(node: Node) -> Data:
-    common = {
-        "key": node.key,
-        "name": node.name,
-        "note": node.note,
-        "typed": [list(pair) for pair in node.typed],
-        "pose": _pose(node.pose),
-        "copies": _copies(node.copies),
-    }
     if isinstance(node, Group):
-        return {**common, "kind": "group", "members": [_node(member) for member in node.members]}
-    return {**common, "kind": "part", "body": _body(node.body), "driver": _driver(node.driver)}
+        return {**_common(node), "kind": "group", "members": [_node(member) for member in node.members]}
+    cuts = {"cuts": [{**_common(cut), "shape": _shape(cut.shape)} for cut in node.cuts]} if node.cuts else {}
+    return {**_common(node), **cuts, "kind": "part", "body": _body(node.body), "driver": _driver(node.driver)}
+
+
+def _common(line: Node | Cut) -> Data:
+    return {
+        "key": line.key,
+        "name": line.name,
+        "note": line.note,
+        "typed": [list(pair) for pair in line.typed],
+        "pose": _pose(line.pose),
+        "copies": _copies(line.copies),
+    }
 
 
 def _pose(pose: Pose) -> Data:
@@ -82,11 +87,7 @@ def _copies(copies: Copies) -> Data:
 
 def _body(body: Body) -> Data:
     if isinstance(body, ShapeBody):
-        entry: Data = {"kind": "shape", "shape": body.shape.key, "dimensions": body.shape.values()}
-        if isinstance(body.shape, OutlinedShape):
-            loops = body.shape.outline.loops
-            entry["outline"] = [{"points": [_floats(point) for point in loop]} for loop in loops]
-        return entry
+        return _shape(body.shape)
     if isinstance(body, MeshBody):
         asset = body.asset
         mended: Data = {"mends": list(asset.mends), "source": asset.source} if asset.mends else {}
@@ -101,6 +102,13 @@ def _body(body: Body) -> Data:
         **known, "kind": "known axial", "inertia_about_axis": float(body.inertia_about_axis),
         "length": float(body.length),
     }
+
+
+def _shape(shape: Shape) -> Data:
+    entry: Data = {"kind": "shape", "shape": shape.key, "dimensions": shape.values()}
+    if isinstance(shape, OutlinedShape):
+        entry["outline"] = [{"points": [_floats(point) for point in loop]} for loop in shape.outline.loops]
+    return entry
 
 
 def _driver(driver: Driver) -> Data:
