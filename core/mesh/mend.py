@@ -220,7 +220,7 @@ MENDS: Mapping[str, Mend] = MappingProxyType({
         Mend("turn", "Turn", "turned", lambda mesh, facets, _: turn(mesh, facets)),
         Mend("weld", "Weld", "welded", lambda mesh, _facets, _: weld_cracks(mesh)),
         Mend("close flat", "Close flat", "holes closed flat", lambda mesh, _facets, _: close_flat(mesh)),
-        Mend("drop duplicates", "Drop duplicates", "duplicates dropped", lambda mesh, _facets, _: drop_duplicates(mesh)),
+        Mend("drop duplicates", "Drop duplicates", "duplicates dropped", lambda mesh, _, __: drop_duplicates(mesh)),
         Mend("rewind", "Rewind", "rewound", lambda mesh, _facets, _: rewind(mesh)),
         Mend("unite", "Unite", "shells united", lambda mesh, _facets, progress: unite(mesh, progress)),
     )
