@@ -58,9 +58,19 @@ class Cutting:
     exact: bool
 
     @cached_property
+    def pieces(self) -> Moments:
+        """All that is taken out, piece by piece in the order of the cuts, a batch (n,)."""
+        return _joined(list(self.removed))
+
+    @cached_property
+    def owner(self) -> IntArray:
+        """Which of the cuts each of the pieces belongs to, (n,)."""
+        return np.repeat(np.arange(len(self.removed)), [len(each.mass) for each in self.removed])
+
+    @cached_property
     def total(self) -> Moments:
-        """All that is taken out, at unit density in the part frame."""
-        return _joined(list(self.removed)).total()
+        """All that is taken out together, at unit density in the part frame."""
+        return self.pieces.total()
 
 
 def cutting_of(

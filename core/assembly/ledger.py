@@ -206,31 +206,34 @@ def _removed_rows(table: Table) -> tuple[Moments, IntArray]:
     The moments (n,) are in the document frame, with negative mass; of a part whose mass is not known there are none.
     """
     copies = np.bincount(table.owner, minlength=len(table.parts))
-    first = np.cumsum(copies) - copies
+    first_row = np.cumsum(copies) - copies
+    first_cut = np.cumsum([0] + [len(part.cuts) for part in table.parts])
     taken: list[Moments] = []
-    lengths: list[tuple[int, int, int]] = []  # pieces of a cut, its part, its place among all cuts
-    at = 0
-    for place, part in enumerate(table.parts):
-        if part.single is not None and part.solid is not None and part.cutting is not None:
-            density = part.single.mass / part.solid.mass
-            taken += [removed.times(-density) for removed in part.cutting.removed]
-            pieces = [len(removed.mass) for removed in part.cutting.removed]
-            lengths += [(pieces[i], place, at + i) for i in range(len(pieces))]
-        at += len(part.cuts)
+    cut: list[IntArray] = []
+    densities: list[float] = []
+    owners: list[int] = []
+    for at, part in enumerate(table.parts):
+        if part.cuts and part.single is not None and part.solid is not None and part.cutting is not None:
+            taken.append(part.cutting.pieces)
+            cut.append(part.cutting.owner + first_cut[at])
+            densities.append(float(part.single.mass) / float(part.solid.mass))
+            owners.append(at)
     if not taken:
         return Moments(np.zeros(0), np.zeros((0, 3)), np.zeros((0, 3, 3))), np.zeros(0, dtype=np.int64)
-    count, owner, cut = np.array(lengths).T
-    times = np.repeat(copies[owner], count)
+    counts = [len(pieces.mass) for pieces in taken]
+    owner, density = np.repeat(owners, counts), np.repeat(densities, counts)
     # Each piece once for each copy of its part: its row, and how far down that part's rows.
+    times = copies[owner]
     piece = np.repeat(np.arange(len(times)), times)
     down = np.arange(len(piece)) - np.repeat(np.cumsum(times) - times, times)
-    rows = np.argsort(table.owner, kind="stable")[first[np.repeat(owner, count)[piece]] + down]
-    batch = Moments(
-        np.concatenate([one.mass for one in taken])[piece], np.concatenate([one.centre for one in taken])[piece],
-        np.concatenate([one.spread for one in taken])[piece],
-    )
+    rows = np.argsort(table.owner, kind="stable")[first_row[owner][piece] + down]
     standing = Placement(table.standing.turn[rows], table.standing.shift[rows])
-    return standing.place(batch), np.repeat(cut, count)[piece]
+    batch = Moments(
+        -(density * np.concatenate([one.mass for one in taken]))[piece],
+        np.concatenate([one.centre for one in taken])[piece],
+        (np.concatenate([one.spread for one in taken]) * -density[:, None, None])[piece],
+    )
+    return standing.place(batch), np.concatenate(cut)[piece]
 
 
 def _both(first: Moments, second: Moments) -> Moments:
