@@ -144,6 +144,7 @@ class ViewPane(QWidget):
         if assembly is not self._assembly:
             self._assembly = assembly
             self._picture = replace(self._picture, scene=scene_of(assembly, self.store, self._ghost, self.scene))
+            self._fit_due |= self._stays_fitted
         self._picture = replace(self._picture, emphasis=emphasis)
         if was_empty and self.scene.everybody:
             self._fit_due = self._stays_fitted = True
