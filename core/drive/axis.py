@@ -1,0 +1,169 @@
+"""Axes that things turn about, what turns about which, and the inertia about them in the forms that are in use."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from functools import cached_property
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.assembly import DriveAxis
+from core.drive.train import FIXED, LOAD
+from core.errors import ValueRefused
+from core.moments import Moments, unit_vector
+
+if TYPE_CHECKING:
+    from core.arrays import FloatArray
+    from core.assembly import Assembly
+    from core.placement import Triple
+
+
+def axis_through(name: str, first: Triple, second: Triple) -> DriveAxis:
+    """Return the axis through two points (m, document frame), directed from the first to the second.
+
+    Raises:
+        ValueRefused: the points are one and the same.
+    """
+    direction = tuple(b - a for a, b in zip(first, second, strict=True))
+    if not any(direction):
+        raise ValueRefused(
+            "an axis needs two points that differ", where=name, read=f"{first} twice", remedy="Move one of them"
+        )
+    return DriveAxis(name, first, (direction[0], direction[1], direction[2]))
+
+
+@dataclass(frozen=True)
+class AboutAxis:
+    """Inertia about an axis in the forms that are in use.
+
+    Attributes:
+        mass: kg.
+        inertia: J, kg·m².
+        own: kg·m², about the parallel axis through the centre of mass.
+        transfer: kg·m², m·d².
+        offset: d, m, of the centre of mass from the axis.
+        radius_of_gyration: √(J/m), m; nan where there is no mass.
+        flywheel_effect: GD² = 4·J, kg·m² (the same number in kgf·m²).
+        wr2: WR² = J, kg·m²; shown in lb·ft² or lb·in².
+    """
+
+    mass: float
+    inertia: float
+    own: float
+    transfer: float
+    offset: float
+    radius_of_gyration: float
+    flywheel_effect: float
+    wr2: float
+
+
+def about_axis(moments: Moments, axis: DriveAxis) -> AboutAxis:
+    """Return the inertia of a single body (no batch) about an axis of the same frame."""
+    mass, own = float(moments.mass), float(moments.own_inertia_along(axis.direction))
+    transfer = float(moments.transfer_to_axis(axis.point, axis.direction))
+    inertia = own + transfer
+    gyration = math.sqrt(max(inertia / mass, 0.0)) if mass else math.nan
+    offset = float(moments.offset_from_axis(axis.point, axis.direction))
+    return AboutAxis(mass, inertia, own, transfer, offset, gyration, 4 * inertia, inertia)
+
+
+def across(axis: DriveAxis) -> tuple[FloatArray, FloatArray]:
+    """Return two unit vectors (3,) across an axis: the zero mark of angles about it, and 90° on from it.
+
+    The zero mark is the document's x axis as seen along the axis; its z axis where the axis lies along x
+    (within 45°).
+    """
+    unit = axis.unit
+    mark = np.array([1.0, 0.0, 0.0]) if abs(unit[0]) < math.sqrt(0.5) else np.array([0.0, 0.0, 1.0])
+    first = unit_vector(mark - (mark @ unit) * unit)
+    return first, np.asarray(np.cross(unit, first))
+
+
+@dataclass(frozen=True)
+class TurnsWith:
+    """Which shaft a line of the ledger turns with.
+
+    Attributes:
+        key: of a part or group with all it holds; "" the whole document. The innermost entry counts.
+        shaft: name of a shaft, or "fixed" for what stands still.
+        axis: name of the axis it turns about; "" the drive axis.
+    """
+
+    key: str = ""
+    shaft: str = LOAD
+    axis: str = ""
+
+
+@dataclass(frozen=True, eq=False)
+class TurningBody:
+    """All that turns together about one axis with one shaft.
+
+    Attributes:
+        name: as shown.
+        moments: as the document stands, document frame.
+        axis: what it turns about; the shaft turning forwards turns it right-handed about the direction.
+        shaft: name of the shaft.
+    """
+
+    name: str
+    moments: Moments
+    axis: DriveAxis
+    shaft: str = LOAD
+
+    @cached_property
+    def inertia(self) -> float:
+        """J about its axis, kg·m²."""
+        return float(self.moments.inertia_about_axis(self.axis.point, self.axis.direction))
+
+
+def bodies_of(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[TurningBody, ...]:
+    """Return what turns with each entry, in their order; parts that no entry names, and fixed ones, are left out.
+
+    Raises:
+        ValueRefused: two entries name the same line, or one names an axis that is not there.
+        EditRefused: an entry names a line that is not there.
+    """
+    by_key = {entry.key: entry for entry in turning}
+    if len(by_key) != len(turning):
+        raise ValueRefused("a line turns with one shaft only", where="what turns", remedy="Keep one of the entries")
+    table = assembly.table
+    entries = [_entry_of(assembly, part.key, by_key) for part in table.parts]
+    bodies = []
+    for entry in turning:
+        name = assembly.node(entry.key).name if entry.key else assembly.name
+        if entry.shaft == FIXED:
+            continue
+        rows = np.array([one is entry for one in entries], dtype=bool)[table.owner]
+        moments = Moments(table.moments.mass[rows], table.moments.centre[rows], table.moments.spread[rows]).total()
+        bodies.append(TurningBody(name, moments, _axis_named(assembly, entry.axis), entry.shaft))
+    return tuple(bodies)
+
+
+def keys_turning(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[str, ...]:
+    """Return the keys of all parts that turn with some shaft."""
+    by_key = {entry.key: entry for entry in turning}
+    found = ((part.key, _entry_of(assembly, part.key, by_key)) for part in assembly.table.parts)
+    return tuple(key for key, entry in found if entry is not None and entry.shaft != FIXED)
+
+
+def _entry_of(assembly: Assembly, key: str, by_key: dict[str, TurnsWith]) -> TurnsWith | None:
+    # The document itself is what most turn with; then no group need be looked for.
+    if len(by_key) == 1 and "" in by_key:
+        return by_key[""]
+    above = [group.key for group in assembly.groups_above(key)]
+    for name in (key, *reversed(above), ""):
+        if name in by_key:
+            return by_key[name]
+    return None
+
+
+def _axis_named(assembly: Assembly, name: str) -> DriveAxis:
+    for axis in assembly.axes:
+        if axis.name == (name or assembly.drive):
+            return axis
+    raise ValueRefused(
+        "the document has no such axis", where="what turns", read=repr(name),
+        remedy=f"Choose one of {', '.join(axis.name for axis in assembly.axes)}",
+    )

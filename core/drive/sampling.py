@@ -1,0 +1,149 @@
+"""Where a duty is looked at: pieces in which nothing jumps, integrals over them with their error, and curves.
+
+Integrals are Gauss–Legendre sums over pieces that are halved until both answers agree; the sum of what they still
+differ by is the stated error.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from core.arrays import FloatArray, IntArray
+    from core.drive.motion import Timeline
+
+# rad: no piece turns any shaft on which a torque varies with the angle further than this.
+_PIECE_TURN = math.pi / 2
+
+# Pieces of a duty before halving; a duty of more turns gets longer pieces, and the stated error grows.
+MOST_PIECES = 20_000
+
+# Relative to the integral of the absolute value: where the halving stops, and the most times it is done.
+TOLERANCE = 1e-9
+_MOST_HALVINGS = 14
+
+_NODES, _WEIGHTS = np.polynomial.legendre.leggauss(8)
+# Halvings that bring a border of a range of angles to the last bit of the time.
+_BISECTIONS = 54
+
+# Points of a curve per piece, both ends among them.
+CURVE_POINTS = 9
+
+
+@dataclass(frozen=True, eq=False)
+class Pieces:
+    """Stretches of a timeline, (p,) each: the zone, and start and end in s from the zone's start."""
+
+    zone: IntArray
+    start: FloatArray
+    end: FloatArray
+
+    def points(self, fractions: FloatArray) -> tuple[IntArray, FloatArray]:
+        """Return zones and local times (p·f,) of points at these fractions (f,) of each piece."""
+        local = self.start[:, None] + (self.end - self.start)[:, None] * fractions
+        # The last point lies exactly on the end, whatever the rounding of the product.
+        local = np.where(fractions == 1.0, self.end[:, None], local)
+        return np.repeat(self.zone, len(fractions)), local.ravel()
+
+
+def pieces_of(timeline: Timeline, fastest: float, edges: FloatArray) -> Pieces:
+    """Return the pieces of a timeline.
+
+    Args:
+        timeline: the duty.
+        fastest: turns, per turn of the load, of the fastest shaft on which a torque varies with the angle; 0: none.
+        edges: (e,) rad, angles of the load at which a range begins or ends, in every turn.
+    """
+    duration = timeline.zones.duration
+    count = len(duration)
+    every = np.arange(count)
+    end = timeline.within(every, duration)
+    turned = np.abs(end.angle - timeline.angle)
+    parts = np.ceil(fastest * turned / _PIECE_TURN)
+    if parts.sum() > MOST_PIECES:
+        parts = np.ceil(parts * (MOST_PIECES / parts.sum()))
+    parts = np.maximum(parts, 1).astype(np.int64)
+    zone = np.repeat(every, parts)
+    number = np.arange(len(zone)) - np.repeat(np.cumsum(parts) - parts, parts)
+    step = (duration / parts)[zone]
+    cut_zone, cut = _crossings(timeline, end.angle, edges)
+    zones = np.concatenate([zone, cut_zone])
+    starts = np.concatenate([number * step, cut])
+    order = np.lexsort((starts, zones))
+    zones, starts = zones[order], starts[order]
+    last = np.concatenate([zones[1:] != zones[:-1], [True]])
+    ends = np.where(last, duration[zones], np.concatenate([starts[1:], [0.0]]))
+    kept = ends > starts
+    return Pieces(zones[kept], starts[kept], ends[kept])
+
+
+def _crossings(timeline: Timeline, end: FloatArray, edges: FloatArray) -> tuple[IntArray, FloatArray]:
+    """Return zones and local times at which the load passes an edge; it turns one way only within a zone."""
+    low, high = np.minimum(timeline.angle, end), np.maximum(timeline.angle, end)
+    zones: list[IntArray] = [np.zeros(0, dtype=np.int64)]
+    angles: list[FloatArray] = [np.zeros(0)]
+    turn = 2 * math.pi
+    for edge in edges:
+        first = np.ceil((low - edge) / turn)
+        times = np.maximum(np.floor((high - edge) / turn) - first + 1, 0).astype(np.int64)
+        if times.sum() > MOST_PIECES:
+            continue
+        zone = np.repeat(np.arange(len(low)), times)
+        number = np.arange(len(zone)) - np.repeat(np.cumsum(times) - times, times)
+        zones.append(zone)
+        angles.append(edge + turn * (first[zone] + number))
+    zone, target = np.concatenate(zones), np.concatenate(angles)
+    sense = timeline.direction[zone]
+    left, right = np.zeros(len(zone)), timeline.zones.duration[zone]
+    for _ in range(_BISECTIONS if len(zone) else 0):
+        middle = (left + right) / 2
+        before = (timeline.within(zone, middle).angle - target) * sense < 0
+        left, right = np.where(before, middle, left), np.where(before, right, middle)
+    return zone, right
+
+
+def integrate(
+    pieces: Pieces, integrand: Callable[[IntArray, FloatArray], FloatArray]
+) -> tuple[FloatArray, FloatArray]:
+    """Return the integrals (q,) of an integrand over all pieces, and how far each may be off (q,).
+
+    Args:
+        pieces: where to integrate.
+        integrand: gives (q, m) for zones (m,) and local times (m,).
+    """
+    whole = _gauss(pieces, integrand)
+    size = np.zeros(len(whole))
+    value, error = np.zeros(len(whole)), np.zeros(len(whole))
+    for _ in range(_MOST_HALVINGS):
+        middle = (pieces.start + pieces.end) / 2
+        halves = Pieces(
+            np.repeat(pieces.zone, 2), np.stack([pieces.start, middle], axis=1).ravel(),
+            np.stack([middle, pieces.end], axis=1).ravel(),
+        )
+        parts = _gauss(halves, integrand)
+        both = parts[:, ::2] + parts[:, 1::2]
+        apart = np.abs(both - whole)
+        size = np.maximum(size, np.abs(both).sum(axis=1) + np.abs(value))
+        good = (apart <= TOLERANCE * size[:, None] / len(pieces.zone)).all(axis=0)
+        value, error = value + both[:, good].sum(axis=1), error + apart[:, good].sum(axis=1)
+        if good.all():
+            return value, error
+        again = np.repeat(~good, 2)
+        whole, left = parts[:, again], both[:, ~good]
+        missing = apart[:, ~good]
+        pieces = Pieces(halves.zone[again], halves.start[again], halves.end[again])
+    return value + left.sum(axis=1), error + missing.sum(axis=1)
+
+
+def _gauss(pieces: Pieces, integrand: Callable[[IntArray, FloatArray], FloatArray]) -> FloatArray:
+    """Return the integral over each piece, (q, p)."""
+    zone, local = pieces.points((_NODES + 1) / 2)
+    values = integrand(zone, local)
+    shape = (len(values), len(pieces.zone), len(_NODES))
+    return np.asarray(values.reshape(shape) @ _WEIGHTS * (pieces.end - pieces.start) / 2)

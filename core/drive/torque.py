@@ -1,0 +1,225 @@
+"""What a duty asks of the drive at a shaft: curves term by term, peaks, RMS, power and energy.
+
+Torque is positive where it turns its shaft forwards; power T·ω is positive where the shaft is driven and negative
+where it is braked. Curves hold both sides of every jump: two points at one time.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from functools import cached_property
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.arrays import frozen
+from core.drive.sampling import CURVE_POINTS, Pieces, integrate, pieces_of
+from core.drive.train import LOAD, MOTOR
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from core.arrays import FloatArray, IntArray
+    from core.drive.demand import Demand
+    from core.drive.motion import Duty, Kinematics, Timeline
+
+# Times that a peak is closed in on, and the points around it, in steps of the last time.
+_CLOSER, _AROUND = 4, np.linspace(-1.0, 1.0, 33)
+
+# Among peaks equal to this, relative, the first one is named.
+_TIE = 1e-12
+
+
+@dataclass(frozen=True, eq=False)
+class Curves:
+    """A duty at one shaft, (m,) each.
+
+    Attributes:
+        shaft: its name.
+        time: s, never falling; the same time twice where something jumps.
+        angle: rad, of the load.
+        speed: rad/s, of the shaft.
+        terms: (5, m) N·m, the rows of TERMS.
+        torque: N·m, their sum.
+    """
+
+    shaft: str
+    time: FloatArray
+    angle: FloatArray
+    speed: FloatArray
+    terms: FloatArray
+    torque: FloatArray
+
+    @property
+    def power(self) -> FloatArray:
+        """Power at the shaft, W."""
+        return np.asarray(self.torque * self.speed)
+
+
+@dataclass(frozen=True)
+class Peak:
+    """One moment of the duty: time s, angle of the load rad, speed of the shaft rad/s, torque N·m with its terms, W."""
+
+    time: float
+    angle: float
+    speed: float
+    torque: float
+    terms: tuple[float, ...]
+    power: float
+
+
+@dataclass(frozen=True)
+class Energy:
+    """Over one cycle, J.
+
+    Attributes:
+        driving: ∫ of the power where the shaft is driven.
+        returned: ∫ of the power where it is braked, as a positive number: what braking gives back.
+        by_term: ∫ term·ω dt for each of TERMS; their sum is driving − returned.
+        error: how far any of these may be off.
+    """
+
+    driving: float
+    returned: float
+    by_term: tuple[float, ...]
+    error: float
+
+
+@dataclass(frozen=True)
+class Needs:
+    """What a duty asks at one shaft.
+
+    Attributes:
+        shaft: its name.
+        peak: where the torque is largest, whichever its sign.
+        highest, lowest: where it is highest and lowest.
+        rms: N·m, √(∫T² dt / cycle).
+        rms_error: N·m, how far it may be off.
+        mean_speed: rad/s, mean of |ω| over the cycle.
+        peak_speed: rad/s, largest |ω|.
+        mean_power: W, net over the cycle.
+        peak_power, peak_braking: where the power is highest and lowest.
+        energy: over the cycle.
+    """
+
+    shaft: str
+    peak: Peak
+    highest: Peak
+    lowest: Peak
+    rms: float
+    rms_error: float
+    mean_speed: float
+    peak_speed: float
+    mean_power: float
+    peak_power: Peak
+    peak_braking: Peak
+    energy: Energy
+
+
+@dataclass(frozen=True, eq=False)
+class Study:
+    """A demand over a duty; everything is worked out when it is first asked for.
+
+    >>> from core.drive.demand import Demand
+    >>> from core.drive.motion import ByTime, Duty, Law, Move
+    >>> from core.drive.train import ShaftInertia, Train
+    >>> from core.assembly import DriveAxis
+    >>> demand = Demand(Train(inertias=(ShaftInertia("dial", 2.0),)), (), DriveAxis())
+    >>> needs = Study(demand, Duty((Move(1.0, ByTime(1.0), Law.TRIANGULAR),))).needs("load")
+    >>> round(needs.peak.torque, 9), round(needs.rms, 9), round(needs.energy.returned, 9)
+    (8.0, 8.0, 4.0)
+    """
+
+    demand: Demand
+    duty: Duty
+
+    @cached_property
+    def timeline(self) -> Timeline:
+        """The duty laid out in time."""
+        return self.duty.timeline
+
+    @cached_property
+    def pieces(self) -> Pieces:
+        """Stretches in which nothing jumps and no unbalanced shaft turns far."""
+        waves, speeds = self.demand.waves, self.demand.train.speeds
+        varying = (waves.cosine != 0) | (waves.sine != 0)
+        fastest = float(np.abs(speeds[waves.shaft[varying]]).max(initial=0.0))
+        limited = np.isfinite(waves.span)
+        edges = np.unique(np.concatenate([waves.start[limited], (waves.start + waves.span)[limited]]))
+        return pieces_of(self.timeline, fastest, edges)
+
+    @cached_property
+    def _sampled(self) -> tuple[Kinematics, FloatArray]:
+        zone, local = self.pieces.points(np.linspace(0.0, 1.0, CURVE_POINTS))
+        motion = self.timeline.within(zone, local)
+        return motion, self.demand.terms(motion)
+
+    def curves(self, shaft: str = LOAD) -> Curves:
+        """Return the curves at a shaft, for drawing: 9 points a piece, both its ends among them."""
+        return self._seen_from(shaft, *self._sampled)
+
+    def needs(self, shaft: str = MOTOR) -> Needs:
+        """Return peaks, RMS, power and energy at a shaft."""
+        curves, length = self.curves(shaft), self.timeline.length
+
+        def integrand(zone: IntArray, local: FloatArray) -> FloatArray:
+            motion = self.timeline.within(zone, local)
+            at = self._seen_from(shaft, motion, self.demand.terms(motion))
+            power = at.power
+            rows = (at.torque**2, np.maximum(power, 0), np.maximum(-power, 0), np.abs(at.speed))
+            return np.vstack([*rows, at.terms * at.speed])
+
+        value, error = integrate(self.pieces, integrand)
+        rms = math.sqrt(value[0] / length)
+        highest, lowest = self._peak(curves, lambda at: at.torque), self._peak(curves, lambda at: -at.torque)
+        return Needs(
+            shaft, _larger(highest, lowest), highest, lowest,
+            rms, float(error[0] / (2 * length * rms)) if rms else 0.0,
+            float(value[3] / length), float(np.abs(curves.speed).max()), float((value[1] - value[2]) / length),
+            self._peak(curves, lambda at: at.power), self._peak(curves, lambda at: -at.power),
+            Energy(float(value[1]), float(value[2]), tuple(value[4:].tolist()), float(error[1:3].sum())),
+        )
+
+    def _seen_from(self, shaft: str, motion: Kinematics, terms: FloatArray) -> Curves:
+        train = self.demand.train
+        rows = self.demand.at_shaft(terms, motion.direction, shaft)
+        speed = motion.speed * train.speeds[train.index(shaft)]
+        return Curves(
+            shaft, frozen(motion.time), frozen(motion.angle), frozen(speed), frozen(rows), frozen(rows.sum(axis=0))
+        )
+
+    def _peak(self, curves: Curves, score: Callable[[Curves], FloatArray]) -> Peak:
+        """Return where a score is highest, closed in on between the points of the curves."""
+        values = score(curves)
+        best = int(np.argmax(values >= values.max() - _TIE * np.abs(values).max()))
+        found, top = _moment(curves, best), values[best]
+        piece, point = divmod(best, CURVE_POINTS)
+        start, end = self.pieces.start[piece], self.pieces.end[piece]
+        step = (end - start) / (CURVE_POINTS - 1)
+        middle = start + point * step
+        for _ in range(_CLOSER):
+            local = np.clip(middle + step * _AROUND, start, end)
+            motion = self.timeline.within(np.full(len(local), self.pieces.zone[piece]), local)
+            near = self._seen_from(curves.shaft, motion, self.demand.terms(motion))
+            values = score(near)
+            best = int(values.argmax())
+            if values[best] > top + _TIE * abs(top):
+                found, top = _moment(near, best), values[best]
+            middle, step = local[best], step / (len(local) // 2)
+        return found
+
+
+def _moment(curves: Curves, at: int) -> Peak:
+    return Peak(
+        float(curves.time[at]), float(curves.angle[at]), float(curves.speed[at]), float(curves.torque[at]),
+        tuple(curves.terms[:, at].tolist()), float(curves.power[at]),
+    )
+
+
+def _larger(highest: Peak, lowest: Peak) -> Peak:
+    """Return the one of larger size; of two that are equal, the first in time."""
+    apart = abs(highest.torque) - abs(lowest.torque)
+    if abs(apart) <= _TIE * abs(highest.torque):
+        return min(highest, lowest, key=lambda peak: peak.time)
+    return highest if apart > 0 else lowest
