@@ -142,11 +142,12 @@ def _hole_fault(outer: _Ring, hole: _Ring) -> ShapeError:
 
 
 def _meeting(one: Any, other: Any) -> str:
-    """Return where two geometries meet, as a sentence shows it: one point of what they share."""
+    """Return where two geometries meet, as a sentence shows it: the leftmost, lowest point of what they share."""
     import shapely
 
     lines = [shape.exterior if hasattr(shape, "exterior") else shape for shape in (one, other)]
     shared = shapely.intersection(*lines)
     if shapely.is_empty(shared):
         shared = shapely.intersection(one, other)
-    return place_of(*shapely.get_coordinates(shared)[0])
+    spots = shapely.get_coordinates(shared)
+    return place_of(*spots[np.lexsort(spots.T[::-1])[0]])

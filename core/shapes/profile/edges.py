@@ -17,6 +17,9 @@ from core.arrays import ArrayLike, BoolArray, FloatArray, frozen
 PIECE = np.pi / 12
 PIECES_PER_CIRCLE = 24
 
+# What two roundings leave of an edge, relative to it, is nothing but round-off below this.
+USED_UP = 1e-12
+
 # Round-off in an arc's angle: an arc this little over a whole number of pieces takes no further one.
 ANGLE_SLACK = 1e-9
 
@@ -56,6 +59,7 @@ class Edges:
         tangent, turn = tangents(points, np.broadcast_to(radii, size))
         first = points - tangent[..., None] * np.roll(out, 1, axis=-2)
         last = points + tangent[..., None] * out
+        first, last = _joined(points, tangent, first, last)
         start = np.stack([first, last], axis=-2).reshape(*size[:-1], -1, 2)
         end = np.stack([last, np.roll(first, -1, axis=-2)], axis=-2).reshape(*size[:-1], -1, 2)
         rounded = np.where(tangent == 0, 0.0, turn)
@@ -159,6 +163,18 @@ def tangents(corners: ArrayLike, radii: ArrayLike) -> tuple[FloatArray, FloatArr
         turn = np.where(dot > 0, cross / (1 + dot), (1 - dot) / cross)
     radius = np.asarray(radii, dtype=float)
     return radius * np.abs(np.where(radius == 0, 0.0, turn)), turn
+
+
+def _joined(
+    corners: FloatArray, tangent: FloatArray, first: FloatArray, last: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Return where each rounding begins and ends, (..., n, 2) m, roundings that meet on an edge in one point."""
+    chord = np.roll(corners, -1, axis=-2) - corners
+    length = np.hypot(chord[..., 0], chord[..., 1])
+    meets = (length - tangent - np.roll(tangent, -1, axis=-1) <= USED_UP * length)[..., None]
+    middle = (last + np.roll(first, -1, axis=-2)) / 2
+    first = np.where(np.roll(meets, 1, axis=-2), np.roll(middle, 1, axis=-2), first)
+    return first, np.where(meets, middle, last)
 
 
 def _directions(corners: FloatArray) -> FloatArray:
