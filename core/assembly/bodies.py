@@ -64,6 +64,7 @@ class MeshBody:
         asset: the file's bytes and what a survey of them found.
         metres_per_unit: the length unit of the file's coordinates.
         counts: whether the values of the facets count, or those with the curvature behind them restored.
+        origin: the path of the file it was read from; "" where that is not known.
 
     Raises:
         ValueRefused: the restored curvature is to count, and it cannot be restored.
@@ -72,6 +73,7 @@ class MeshBody:
     asset: MeshAsset
     metres_per_unit: float
     counts: Counts = "faceted"
+    origin: str = ""
     measure: ClassVar[Measure] = "volume"
 
     def __post_init__(self) -> None:

@@ -162,7 +162,7 @@ class _Builder:
         if entry.kind == "shape":
             return self._shape(entry)
         if entry.kind == "mesh":
-            return MeshBody(self._asset(entry), entry.metres_per_unit, entry.counts)
+            return MeshBody(self._asset(entry), entry.metres_per_unit, entry.counts, entry.origin)
         if entry.kind == "known tensor":
             known = KnownTensor(entry.mass, entry.centre, entry.tensor, entry.about, entry.source)
             _ = known.own  # refuses a tensor that makes no moments

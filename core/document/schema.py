@@ -162,6 +162,7 @@ class MeshEntry(_Entry):
     name: Name
     metres_per_unit: Positive
     counts: Literal["faceted", "restored"] = "faceted"
+    origin: Text = ""
     mends: Annotated[list[Name], Field(max_length=MOST_ENTRIES)] = []
     source: Annotated[str, Field(pattern=r"^([0-9a-f]{64})?$")] = ""
 

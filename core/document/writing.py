@@ -93,7 +93,7 @@ def _body(body: Body) -> Data:
         mended: Data = {"mends": list(asset.mends), "source": asset.source} if asset.mends else {}
         return {
             **mended, "kind": "mesh", "mesh": asset.sha256, "name": asset.name,
-            "metres_per_unit": float(body.metres_per_unit), "counts": body.counts,
+            "metres_per_unit": float(body.metres_per_unit), "counts": body.counts, "origin": body.origin,
         }
     known: Data = {"mass": float(body.mass), "centre": _floats(body.centre), "source": body.source}
     if isinstance(body, KnownTensor):
