@@ -7,11 +7,16 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 if TYPE_CHECKING:
+    from collections.abc import Iterator
+
     from core.arrays import FloatArray, IntArray
 
 # Children of a node: few levels, and little is looked at in vain.
 _FAN = 4
 _GRID_BITS = 20
+# Meetings that a block of askers should have, and pairs beyond which a block is cut smaller, for the sake of memory.
+_PER_BLOCK, _MOST_IN_BLOCK = 1_000_000, 8_000_000
+_SMALLEST_BLOCK, _LARGEST_BLOCK = 16, 100_000
 
 
 class BoxTree:
@@ -30,8 +35,27 @@ class BoxTree:
             low, high = np.minimum.reduceat(low, starts), np.maximum.reduceat(high, starts)
             self._levels.append((low, high))
 
-    def meeting(self, low: FloatArray, high: FloatArray) -> tuple[IntArray, IntArray]:
-        """Return (askers, boxes): which of the boxes low, high (m, 3) and the tree's have a point in common."""
+    def meeting(self, low: FloatArray, high: FloatArray) -> Iterator[tuple[IntArray, IntArray]]:
+        """Yield (askers, boxes), block by block: which boxes low, high (m, 3) and of the tree have a common point.
+
+        Blocks are made so small that each needs bounded memory, however many meetings there are in all.
+        """
+        start, size = 0, _SMALLEST_BLOCK
+        while start < len(low):
+            found = self._walk(low[start : start + size], high[start : start + size])
+            if found is None and size > 1:
+                size = max(1, size // 8)
+                continue
+            # A single asker meets each box at most once.
+            assert found is not None
+            askers, boxes = found
+            yield askers + start, boxes
+            start += size
+            each = max(1.0, len(askers) / size)
+            size = int(np.clip(_PER_BLOCK / each, 1, min(_LARGEST_BLOCK, 4 * max(size, _SMALLEST_BLOCK))))
+
+    def _walk(self, low: FloatArray, high: FloatArray) -> tuple[IntArray, IntArray] | None:
+        """Walk down with all askers side by side; None where their pairs become too many for several askers."""
         top = len(self._levels[-1][0])
         askers, nodes = np.repeat(np.arange(len(low)), top), np.tile(np.arange(top), len(low))
         for level in range(len(self._levels) - 1, -1, -1):
@@ -41,6 +65,8 @@ class BoxTree:
                 keep &= their_low[nodes, axis] <= high[askers, axis]
                 keep &= low[askers, axis] <= their_high[nodes, axis]
             askers, nodes = askers[keep], nodes[keep]
+            if len(low) > 1 and len(askers) > _MOST_IN_BLOCK // _FAN:
+                return None
             if level:
                 below = len(self._levels[level - 1][0])
                 nodes = (_FAN * nodes[:, None] + np.arange(_FAN)).ravel()

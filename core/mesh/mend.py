@@ -206,7 +206,7 @@ def _solid(evidence: Evidence, shell: int, origin: FloatArray) -> Any:
 
     corners = evidence.corners[evidence.shells.facets_of(shell)]
     outward = corners if evidence.shells.volume[shell] > 0 else corners[:, ::-1]
-    solid = solid_of(evidence.points - origin, outward)
+    solid = solid_of(evidence.points, outward, origin)
     if solid is None:
         raise EditRefused(
             f"shell {shell + 1} of {len(evidence.shells)} touches or cuts itself, so it cannot be united with others",

@@ -10,18 +10,19 @@ if TYPE_CHECKING:
     from core.arrays import FloatArray, IntArray
 
 
-def solid_of(points: FloatArray, corners: IntArray) -> Any | None:
+def solid_of(points: FloatArray, corners: IntArray, origin: FloatArray) -> Any | None:
     """Return a closed shell that faces outwards as a solid of the boolean library, or None where that refuses it.
 
     Args:
-        points: (m, 3), near the origin for the sake of their digits.
+        points: (m, 3).
         corners: (n, 3) indices into points.
+        origin: (3,) that the solid is seen from, near it for the sake of its digits.
     """
     import manifold3d
 
     used, local = np.unique(corners, return_inverse=True)
     mesh = manifold3d.Mesh64(
-        np.ascontiguousarray(points[used]), np.ascontiguousarray(local.reshape(corners.shape), dtype=np.uint64)
+        np.ascontiguousarray(points[used] - origin), np.ascontiguousarray(local.reshape(corners.shape), dtype=np.uint64)
     )
     solid = manifold3d.Manifold(mesh)
     return solid if solid.status() == manifold3d.Error.NoError and not solid.is_empty() else None

@@ -21,13 +21,13 @@ if TYPE_CHECKING:
     from core.progress import Progress
 
 # Pairs of shells with meeting boxes beyond which nobody could read the findings, and memory would run out.
-MOST_PAIRS = 5_000_000
+MOST_PAIRS = 2_000_000
 # Points tried per shell: at least, at most, and for all shells together.
 _FEWEST, _MOST, _ALL = 3, 24, 20_000
 # Of a facet's corners: inside it, and never in line with other corners of a drawing made of round numbers.
 _WEIGHTS = np.array([0.4317, 0.3129, 0.2554])
-_RAY_BLOCK = 200_000
-_BOX_BLOCK = 1_000
+# Facets that rays have to be held against, in all.
+MOST_RAYS = 20_000_000
 
 
 @dataclass(frozen=True, eq=False)
@@ -38,7 +38,7 @@ class Nesting:
         inside: (k,) innermost shell around each, or −1.
         depth: (k,) how many shells lie around each.
         crossing: (p, 2) pairs of shells that may cut into each other: boxes overlap, neither lies in the other.
-        complete: False where too many boxes overlap to look at; nothing is then said about any pair.
+        complete: False where too many shells share one room to look at; nothing is then said about any pair.
     """
 
     inside: IntArray
@@ -66,6 +66,8 @@ def nesting_of(
     fits = ((low[outer] <= low[inner]) & (high[inner] <= high[outer])).all(axis=1)
     inner, outer = inner[fits], outer[fits]
     share = _share_inside(points, corners, label, sizes, inner, outer, progress)
+    if share is None:
+        return Nesting(*nobody, nothing, complete=False)
     wholly = share == 1
     depth = np.bincount(inner[wholly], minlength=count)
     inside = _innermost(inner[wholly], outer[wholly], depth)
@@ -78,13 +80,10 @@ def nesting_of(
 def _meeting(bounds: FloatArray, progress: Progress | None) -> IntArray | None:
     """Return the pairs (p, 2), lower number first, of boxes (k, 2, 3) that meet; None where they are too many."""
     low, high = bounds[:, 0], bounds[:, 1]
-    tree, found, total = BoxTree(low, high), [], 0
-    for start in range(0, len(bounds), _BOX_BLOCK):
-        askers, boxes = tree.meeting(low[start : start + _BOX_BLOCK], high[start : start + _BOX_BLOCK])
-        askers = askers + start
-        pairs = np.stack([askers, boxes], axis=1)[askers < boxes]
-        found.append(pairs)
-        total += len(pairs)
+    found, total = [], 0
+    for askers, boxes in BoxTree(low, high).meeting(low, high):
+        found.append(np.stack([askers, boxes], axis=1)[askers < boxes])
+        total += len(found[-1])
         if total > MOST_PAIRS:
             return None
         if progress is not None:
@@ -104,8 +103,8 @@ def _innermost(inner: IntArray, outer: IntArray, depth: IntArray) -> IntArray:
 def _share_inside(
     points: FloatArray, corners: IntArray, label: Labels, sizes: Sizes, inner: IntArray, outer: IntArray,
     progress: Progress | None,
-) -> FloatArray:
-    """Return which share of some points on shell inner (p,) lie in shell outer (p,)."""
+) -> FloatArray | None:
+    """Return which share of some points on shell inner (p,) lie in shell outer (p,); None for too many rays."""
     if len(inner) == 0:
         return np.empty(0)
     asking, ask = np.unique(inner, return_inverse=True)
@@ -123,12 +122,18 @@ def _share_inside(
     first_row = np.cumsum(room) - room
     winding = np.zeros(int(room.sum()), np.int64)
     tree = BoxTree(places, places)
-    for start in range(0, len(facets), _RAY_BLOCK):
-        chosen = facets[start : start + _RAY_BLOCK]
-        facet, point, turns = _stabs(points, corners[chosen], places, tree)
-        keys = owner[point] * len(sizes.area) + label[chosen[facet]]
+    triangles = points[corners[facets]]
+    low, high = triangles.min(axis=1), triangles.max(axis=1)
+    low[:, 2] = -np.inf
+    rays = 0
+    for facet, point in tree.meeting(low, high):
+        rays += len(facet)
+        if rays > MOST_RAYS:
+            return None
+        turns = _stabs(points, corners[facets[facet]], places[point])
+        keys = owner[point] * len(sizes.area) + label[facets[facet]]
         place = np.minimum(np.searchsorted(sorted_wanted, keys), len(sorted_wanted) - 1)
-        hit = sorted_wanted[place] == keys
+        hit = (sorted_wanted[place] == keys) & (turns != 0)
         row = first_row[place[hit]] + point[hit] - first_point[owner[point[hit]]]
         np.add.at(winding, row, turns[hit])
         if progress is not None:
@@ -152,25 +157,18 @@ def _points_on(
     return np.einsum("c,ncx->nx", _WEIGHTS, points[corners[facets]]), owner
 
 
-def _stabs(
-    points: FloatArray, corners: IntArray, places: FloatArray, tree: BoxTree
-) -> tuple[IntArray, IntArray, IntArray]:
-    """Return (facet, place, ±1) wherever the ray up from a place meets a facet; +1 where it leaves."""
-    triangles = points[corners]
-    low, high = triangles.min(axis=1), triangles.max(axis=1)
-    low[:, 2] = -np.inf
-    facet, place = tree.meeting(low, high)
-    at, corner = places[place], corners[facet]
-    turns = np.zeros(len(facet), np.int64)
+def _stabs(points: FloatArray, corner: IntArray, at: FloatArray) -> IntArray:
+    """Return for facets corner (n, 3) whether the ray up from a place (n, 3) leaves (+1), enters (−1) or misses (0)."""
+    turns = np.zeros(len(at), np.int64)
     for side in range(3):
         turns += _crossing(points, corner[:, side], corner[:, (side + 1) % 3], at)
-    met = turns != 0
-    facet, place, turns, at = facet[met], place[met], turns[met], at[met]
-    a, b, c = np.moveaxis(triangles[facet], 1, 0)
+    met = np.flatnonzero(turns)
+    a, b, c = (points[corner[met, i]] for i in range(3))
     normal = np.cross(b - a, c - a)
     # Height of the facet's plane above the place, times the normal's z component, which is not 0 where a ray meets it.
-    above = np.einsum("ni,ni->n", a - at, normal) * np.sign(normal[:, 2]) > 0
-    return facet[above], place[above], turns[above]
+    below = np.einsum("ni,ni->n", a - at[met], normal) * np.sign(normal[:, 2]) <= 0
+    turns[met[below]] = 0
+    return turns
 
 
 def _crossing(points: FloatArray, start: IntArray, stop: IntArray, at: FloatArray) -> IntArray:

@@ -19,6 +19,8 @@ if TYPE_CHECKING:
 
 # Pairs that are cut with one another at most; each takes a millisecond or more.
 MOST_CUTS = 2_000
+# Of the largest coordinate: a few units in the last place of float32.
+ROUNDING = 2.0**-22
 
 
 @dataclass(frozen=True, eq=False)
@@ -55,7 +57,7 @@ class _Cutter:
     def __init__(self, points: FloatArray, corners: IntArray, sizes: Sizes) -> None:
         self._points, self._corners, self._sizes = points, corners, sizes
         self._origin = 0.5 * (points.min(axis=0) + points.max(axis=0))
-        self._least = WELD * float(np.linalg.norm(np.ptp(points, axis=0)))
+        self._rounding = ROUNDING * float(np.abs(points).max())
         self._solids: dict[int, Any] = {}
         self.refused: set[int] = set()
 
@@ -70,7 +72,7 @@ class _Cutter:
         if shell not in self._solids:
             corners = self._corners[self._facets(shell)]
             outward = corners if self._sizes.bodies.mass[shell] > 0 else corners[:, ::-1]
-            self._solids[shell] = solid_of(self._points - self._origin, outward)
+            self._solids[shell] = solid_of(self._points, outward, self._origin)
             if self._solids[shell] is None:
                 self.refused.add(shell)
         return self._solids[shell]
@@ -88,8 +90,10 @@ class _Cutter:
         if first is None or second is None:
             return None
         common = first ^ second
-        # A film no thicker than a crack, over all of the smaller surface, is touching and rounding.
-        if common.volume() <= self._least * self._sizes.area[[one, other]].min():
+        # A film no thicker than a crack or a coordinate's last digit, over all of the smaller surface, is touching.
+        smaller = min((one, other), key=lambda shell: float(self._sizes.area[shell]))
+        film = max(WELD * float(np.linalg.norm(bounds[smaller, 1] - bounds[smaller, 0])), self._rounding)
+        if common.volume() <= film * self._sizes.area[smaller]:
             return None
         from core.mesh.solids import facets_of_solid
 

@@ -97,7 +97,10 @@ def evidence_of(triangles: NDArray[np.floating], progress: Progress | None) -> E
     step()
     volume = sizes.bodies.mass
     turned = bool(volume[~open_sheets | (len(volume) == 1)].sum() < 0)
-    role = roles_of(-volume if turned else volume, open_sheets, flat, nesting.depth)
+    counted = -volume if turned else volume
+    # Where nobody knows what lies in what, a shell is what its winding says.
+    depth = nesting.depth if nesting.complete else (counted < 0).astype(np.int64)
+    role = roles_of(counted, open_sheets, flat, depth)
     pairs = nesting.crossing
     same_way = (volume[pairs[:, 0]] > 0) == (volume[pairs[:, 1]] > 0)
     overlaps = overlaps_of(points, corners, sizes, pairs[same_way], progress)
