@@ -18,7 +18,7 @@ def inserted_at(assembly: Assembly, node: Node, selected: frozenset[str]) -> Ass
     """Return the assembly with a new line: in the selected group, behind the selected line, or at the end."""
     if len(selected) != 1:
         return assembly.inserted(node)
-    key = next(iter(selected))
+    key = assembly.node_of_line(next(iter(selected))).key
     if isinstance(assembly.node(key), Group):
         return assembly.inserted(node, key)
     above = assembly.groups_above(key)
@@ -57,6 +57,10 @@ def grouped(assembly: Assembly, keys: frozenset[str], key: str) -> Assembly:
 
 def shifted(assembly: Assembly, key: str, step: int) -> Assembly:
     """Return the assembly with a line moved up (−1) or down (+1) among its siblings; the same at either end."""
+    if assembly.is_cut(key):
+        cuts = [cut.key for cut in assembly.part_of_cut(key).cuts]
+        target = cuts.index(key) + step
+        return assembly.moved_cut(key, target) if 0 <= target < len(cuts) else assembly
     above = assembly.groups_above(key)
     group = above[-1].key if above else None
     siblings = above[-1].members if above else assembly.members

@@ -39,7 +39,7 @@ from app.window.settings import Settings
 from app.window.start import Notice, StartPanel
 from app.window.style import Words, dress, icon
 from app.window.view import ViewPane, prepare_opengl
-from core.assembly import Part, walk
+from core.assembly import Node, Part, walk
 from core.quantity import UNIT_SETS, Kind
 
 if TYPE_CHECKING:
@@ -131,6 +131,7 @@ class MainWindow(QMainWindow):
         if isinstance(application, QApplication):
             application.focusChanged.connect(self._note_place)
         s.found.connect(self.view.light_up)
+        s.prepare = self._prepare
         self.view.picked.connect(self._pick)
         self.view.hovered.connect(self._hover)
         self.ledger.tree.hovered.connect(self._hover)
@@ -197,13 +198,20 @@ class MainWindow(QMainWindow):
         axis = self.session.assembly.drive
         self.totals.setText(f"{mass}   ·   J about {axis} {inertia}   ·   {look}")
 
+    def _prepare(self, node: Node) -> None:
+        """Make what is drawn of a line's parts, before it is shown; called from a worker."""
+        for inner, _ in walk((node,)):
+            if isinstance(inner, Part):
+                self.view.store.of(inner.surface)
+
     def _show_in_view(self) -> None:
         self.view.show_assembly(self.session.assembly, self._selected_parts(), self._hovered or None)
 
     def _selected_parts(self) -> frozenset[str]:
         inside: set[str] = set()
         for key in self.session.selected:
-            inside |= {node.key for node, _ in walk((self.session.assembly.node(key),)) if isinstance(node, Part)}
+            node = self.session.assembly.node_of_line(key)
+            inside |= {each.key for each, _ in walk((node,)) if isinstance(each, Part)}
         return frozenset(inside)
 
     def _pick(self, key: str, more: bool) -> None:
@@ -258,7 +266,7 @@ class MainWindow(QMainWindow):
         """Delete the selected lines."""
         keys = tuple(self.session.selected)
         if keys:
-            names = self.session.assembly.node(keys[0]).name if len(keys) == 1 else f"{len(keys)} lines"
+            names = self.session.assembly.name_of_line(keys[0]) if len(keys) == 1 else f"{len(keys)} lines"
             self.session.edit(f"Delete {names}", lambda before: before.removed(keys))
 
     def move_line(self, step: int) -> None:
@@ -272,7 +280,7 @@ class MainWindow(QMainWindow):
     def _rearrange(self, verb: str, change: Callable) -> None:  # type: ignore[type-arg]  # (assembly, key) to assembly
         if len(self.session.selected) == 1:
             key = next(iter(self.session.selected))
-            name = self.session.assembly.node(key).name
+            name = self.session.assembly.name_of_line(key)
             self.session.edit(f"{verb} {name}", lambda before: change(before, key))
 
     def edit_axis(self) -> None:

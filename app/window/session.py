@@ -16,6 +16,8 @@ if TYPE_CHECKING:
     from collections.abc import Callable
     from pathlib import Path
 
+    from core.assembly import Node
+
 
 class Session(QObject):
     """The one thing that the parts of the window share.
@@ -45,6 +47,8 @@ class Session(QObject):
         self.units: UnitSet = DEFAULT_UNITS
         self.decimal_mark = "."
         self.selected: frozenset[str] = frozenset()
+        # What makes a line ready to be shown before it is; the window puts the view's preparation here.
+        self.prepare: Callable[[Node], None] = lambda _node: None
         self._saved = self.history.present
         self.ledger: Ledger = ledger_of(self.assembly)
         self.findings: tuple[Finding, ...] = findings_of(self.assembly)
@@ -66,10 +70,10 @@ class Session(QObject):
 
     @property
     def selected_part(self) -> Part | None:
-        """The selected line, when exactly one is and it is a part."""
+        """The part of the selected line, when exactly one is: itself, or the one that a cut is taken out of."""
         if len(self.selected) != 1:
             return None
-        node = self.assembly.node(next(iter(self.selected)))
+        node = self.assembly.node_of_line(next(iter(self.selected)))
         return node if isinstance(node, Part) else None
 
     def attempt(self, name: str, change: Callable[[Assembly], Assembly], select: str | None = None) -> str:

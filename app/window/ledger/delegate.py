@@ -59,7 +59,7 @@ class LedgerDelegate(QStyledItemDelegate):
         painter.save()
         self._paint_ground(painter, option, line, c)
         font = QFont(option.font)
-        font.setBold(line.kind != "part")
+        font.setBold(line.kind in {"group", "total"})
         painter.setFont(font)
         painter.setPen(_pen(line, index.column(), c))
         text = str(index.data(Qt.ItemDataRole.DisplayRole) or "")
@@ -165,6 +165,8 @@ class CellEditor(QLineEdit):
 
 
 def _pen(line: Line, column: int, c: Colours) -> QColor:
+    if line.kind == "cut":
+        return QColor(c.quiet)
     if column == INDEX["material"]:
         if line.basis == "not set":
             return QColor(c.estimate)

@@ -6,7 +6,7 @@ from contextlib import suppress
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
-from core.assembly import Assembly, DataSheet, Driver, Group, Part
+from core.assembly import Assembly, Cut, DataSheet, Driver, Group, Part
 from core.errors import EditRefused, QuantityError
 from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, material
 from core.placement import Mirrored
@@ -22,7 +22,9 @@ def renamed(key: str, text: str) -> Callable[[Assembly], Assembly]:
 
     def change(assembly: Assembly) -> Assembly:
         if not name:
-            raise EditRefused("a line needs a name", where=assembly.node(key).name)
+            raise EditRefused("a line needs a name", where=assembly.name_of_line(key))
+        if assembly.is_cut(key):
+            return assembly.replaced_cut(replace(assembly.cut(key), name=name))
         return assembly.replaced(replace(assembly.node(key), name=name))
 
     return change
@@ -32,16 +34,19 @@ def counted(key: str, text: str) -> Callable[[Assembly], Assembly]:
     """Return the edit that changes how many equal copies a line stands for, the pattern staying what it is."""
 
     def change(assembly: Assembly) -> Assembly:
-        node = assembly.node(key)
+        line = assembly.cut(key) if assembly.is_cut(key) else assembly.node(key)
         if not text.strip().isascii() or not text.strip().isdigit():
             raise QuantityError(
-                "a quantity is a whole number", where=node.name, read=f'"{text}"', remedy="Type how many there are"
+                "a quantity is a whole number", where=line.name, read=f'"{text}"', remedy="Type how many there are"
             )
-        if isinstance(node.copies, Mirrored):
+        if isinstance(line.copies, Mirrored):
             raise EditRefused(
-                "a mirrored part is there twice", where=node.name, remedy="Change how it repeats on the Part page"
+                "a mirrored line is there twice", where=line.name, remedy="Change how it repeats on the Part page"
             )
-        return assembly.replaced(replace(node, copies=replace(node.copies, count=int(text))))
+        copies = replace(line.copies, count=int(text))
+        if isinstance(line, Cut):
+            return assembly.replaced_cut(replace(line, copies=copies))
+        return assembly.replaced(replace(line, copies=copies))
 
     return change
 

@@ -143,11 +143,13 @@ class LedgerModel(QAbstractItemModel):
         return len(COLUMNS)
 
     def flags(self, index: Index) -> Qt.ItemFlag:
-        """Return what may be done with a cell: inputs are edited, lines are dragged, groups take them."""
+        """Return what may be done with a cell: inputs are edited, parts and groups dragged, groups take them."""
         if not index.isValid():
             return Qt.ItemFlag.ItemIsDropEnabled
-        flags = Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable | Qt.ItemFlag.ItemIsDragEnabled
+        flags = Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable
         line = self.line(index)
+        if line.kind != "cut":
+            flags |= Qt.ItemFlag.ItemIsDragEnabled
         if line.kind == "group":
             flags |= Qt.ItemFlag.ItemIsDropEnabled
         if self.is_input(line, index.column()):
@@ -271,7 +273,7 @@ class LedgerModel(QAbstractItemModel):
         group = self.line(parent).key if parent.isValid() else None
         # Between two lines means something only where they stand in the document's order.
         place = None if row < 0 or self.by_share else row
-        words = self.session.assembly.node(keys[0]).name if len(keys) == 1 else f"{len(keys)} lines"
+        words = self.session.assembly.name_of_line(keys[0]) if len(keys) == 1 else f"{len(keys)} lines"
         self.session.edit(f"Move {words}", lambda assembly: moved_lines(assembly, keys, group, place))
         # The edit has already moved them; Qt is not to remove the rows it dragged.
         return False

@@ -90,7 +90,7 @@ class PartPage(QScrollArea):
     def _selected(self) -> Node | None:
         if len(self._session.selected) != 1:
             return None
-        return self._session.assembly.node(next(iter(self._session.selected)))
+        return self._session.assembly.node_of_line(next(iter(self._session.selected)))
 
     def _build(self, node: Node | None) -> None:
         page = QWidget()

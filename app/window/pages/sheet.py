@@ -216,7 +216,10 @@ class SheetPage(QWidget):
         return sheet_of_assembly(self._session.assembly, choice, self._session.units, key)
 
     def _key(self) -> str | None:
-        return next(iter(self._session.selected)) if len(self._session.selected) == 1 else None
+        """Return the key of the selected line, when exactly one is; of a cut that of its part."""
+        if len(self._session.selected) != 1:
+            return None
+        return self._session.assembly.node_of_line(next(iter(self._session.selected))).key
 
     def refresh(self) -> None:
         """Show the values as they are now."""
