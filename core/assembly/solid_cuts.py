@@ -15,8 +15,9 @@ import numpy as np
 from core.assembly.bodies import MeshBody, ShapeBody
 from core.errors import EditRefused
 from core.facets import Facets
-from core.mesh.integrals import CHUNK, Integrator, Sums
 from core.mesh.solids import facets_of_solid, solid_of, united
+from core.mesh.source import ArraySource
+from core.mesh.summing import sum_up
 from core.mesh.survey import INSIDE_OUT
 from core.mesh.weld import weld_exactly
 from core.moments import Moments
@@ -88,7 +89,7 @@ def drawn_without(body: ShapeBody | MeshBody, copies: Sequence[tuple[Shape, Plac
     """Return the surface of a body less cuts as it is drawn, m in the part frame; None where it cannot be made."""
     surface = body.surface
     middle = 0.5 * (surface.points.min(axis=0) + surface.points.max(axis=0))
-    solid = solid_of(surface.points - middle, surface.corners)
+    solid = solid_of(surface.points, surface.corners, middle)
     cuts = [_placed(shape.facets(DRAWN), standing, middle) for shape, standing in copies]
     if solid is None or any(cut is None for cut in cuts):
         return None
@@ -123,7 +124,7 @@ def _cut(
 def _solid_of_body(body: ShapeBody | MeshBody, middle: FloatArray, steps: int, where: str) -> Any:
     if isinstance(body, ShapeBody):
         facets = body.shape.facets(steps)
-        solid = solid_of(facets.points - middle, facets.corners)
+        solid = solid_of(facets.points, facets.corners, middle)
     else:
         kept: dict[str, Any] = body.__dict__.setdefault("_solid_to_cut", {})
         if "solid" not in kept:
@@ -140,7 +141,7 @@ def _solid_of_body(body: ShapeBody | MeshBody, middle: FloatArray, steps: int, w
 def _solid_of_mesh(body: MeshBody, middle: FloatArray) -> Any | None:
     points, corners = weld_exactly(np.ascontiguousarray(body.asset.triangles))
     turned = corners[:, ::-1] if body.asset.survey.verdict == INSIDE_OUT else corners
-    return solid_of(points.astype(np.float64) * body.metres_per_unit - middle, turned)
+    return solid_of(points.astype(np.float64) * body.metres_per_unit, turned, middle)
 
 
 def _solid_of_cut(shape: Shape, standing: Placement, middle: FloatArray, steps: int, where: str) -> Any:
@@ -155,7 +156,7 @@ def _solid_of_cut(shape: Shape, standing: Placement, middle: FloatArray, steps: 
 
 def _placed(facets: Facets, standing: Placement, middle: FloatArray) -> Any | None:
     corners = facets.corners[:, ::-1] if standing.mirrors else facets.corners
-    return solid_of(standing.apply(facets.points) - middle, corners)
+    return solid_of(standing.apply(facets.points), corners, middle)
 
 
 def _moments(solid: Any, middle: FloatArray) -> Moments:
@@ -163,10 +164,7 @@ def _moments(solid: Any, middle: FloatArray) -> Moments:
     triangles = facets_of_solid(solid)
     if not len(triangles):
         return Moments.nothing()
-    reference = triangles[0, 0]
-    integrator = Integrator(reference, triangles.dtype, min(CHUNK, len(triangles)))
-    parts = [integrator.sums_of(triangles[at : at + CHUNK]) for at in range(0, len(triangles), CHUNK)]
-    sums = Sums.total(part for part in parts if part is not None)
+    sums, reference = sum_up(ArraySource(triangles))
     return sums.moments(reference + middle) if sums.volume > 0 else Moments.nothing()
 
 
