@@ -11,6 +11,7 @@ from PySide6.QtWidgets import QFileDialog, QMenu, QMessageBox
 
 from app.window import autosave
 from app.window.start import SAMPLE
+from core.mesh.formats import FORMATS
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -23,7 +24,7 @@ if TYPE_CHECKING:
 
 DOCUMENT = ".masswright"
 DOCUMENTS = f"Masswright documents (*{DOCUMENT})"
-MESHES = "Meshes (*.stl *.STL *.stl.gz)"
+MESHES = f"Meshes ({' '.join(f'*.{suffix} *.{suffix.upper()}' for suffix in FORMATS)} *.stl.gz)"
 
 
 class Files(QObject):

@@ -2,40 +2,40 @@
 
 from __future__ import annotations
 
-from pathlib import Path
 from typing import TYPE_CHECKING
 
-import numpy as np
-from PySide6.QtCore import Qt
-from PySide6.QtWidgets import (
-    QAbstractItemView,
-    QCheckBox,
-    QHeaderView,
-    QProgressBar,
-    QTableWidget,
-    QTableWidgetItem,
-    QWidget,
-)
+from PySide6.QtWidgets import QCheckBox, QProgressBar, QWidget
 
 from app.window.dialogs.form import FormDialog
-from app.window.fields import Form, TextField
+from app.window.dialogs.unit_table import UnitTable
+from app.window.fields import ChoiceField, Form, TextField
 from app.window.ledger.edits import driver_of
-from app.window.numbers import shown
-from app.window.pages.part_mesh import MESH_UNITS, SOUND
+from app.window.pages.part_mesh import COUNTS, SOUND
 from app.window.style import Words
 from app.window.tasks import Task
-from core.assembly import MeshBody, Part
+from core.assembly import Import, imported
 from core.errors import MasswrightError
 from core.material import NotSet
-from core.mesh import MeshAsset
-from core.quantity import UNITS, Kind
+from core.mesh import AT_ONCE, can_restore
+from core.mesh.formats import read_bodies
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
+    from pathlib import Path
 
     from app.window.session import Session
+    from core.assembly import Driver, Node
+    from core.mesh import MeshAsset
+    from core.progress import Progress
 
-HEADINGS = ("If the file is in", "it measures", "and one weighs")
+STANDING: list[tuple[str, object]] = [
+    ("at the file's own origin", "file"),
+    ("with its middle on the drive axis", "middle"),
+    ("with its centre of mass on the drive axis", "mass"),
+]
+MOST_FINDINGS = 3
+# Above this many facets, making a mesh ready to be drawn takes long enough to be felt.
+DRAWN_AT_ONCE = 20_000
 
 
 class AddMeshDialog(FormDialog):
@@ -45,33 +45,43 @@ class AddMeshDialog(FormDialog):
         super().__init__("Add mesh", "Add part", 680, parent)
         self._session = session
         self._left = list(paths)
-        self._asset: MeshAsset | None = None
+        self._bodies: tuple[MeshAsset, ...] = ()
         self._skips = False
         self._alike = False
-        self._task: Task[MeshAsset] | None = None
+        self._task: Task[tuple[MeshAsset, ...]] | Task[None] | None = None
         self.file = Words()
         self.verdict = Words("", "quiet")
         self.verdict.setWordWrap(True)
         self.bar = QProgressBar()
         self.bar.setAccessibleName("Reading the mesh")
         self.bar.setRange(0, 100)
-        self.table = _unit_table(self)
         self.material = TextField("Material", "a material, a density (7850 kg/m³) or a weighed mass (1.2 kg)")
+        self.units = UnitTable(session, self._driver)
+        self.counts = ChoiceField("What counts", COUNTS)
+        self.standing = ChoiceField("Where it stands", STANDING)
         self.all_alike = QCheckBox()
         self._lay_out()
-        self.table.itemSelectionChanged.connect(self._allow)
-        self.material.textChanged.connect(lambda _text: self._show_table())
+        self.units.chosen.connect(self._allow)
+        self.material.textChanged.connect(lambda _text: self.units.refresh())
         self._next()
+
+    @property
+    def table(self) -> QWidget:
+        """The table in which the length unit is chosen."""
+        return self.units.table
 
     def _lay_out(self) -> None:
         form = Form()
         form.add("made of", self.material, "A material's name, a density, or the mass one piece was weighed at.")
-        unit = Words("A mesh file does not say its length unit. Choose the line whose size is right.", "quiet")
-        self.stack(self.file, self.bar, self.verdict, form, unit, self.table, self.all_alike)
+        below = Form()
+        below.add("values count", self.counts, "Facets of a round part are inscribed: too light, J too low.")
+        below.add("stands", self.standing, "It can be moved afterwards on the Part page.")
+        self.stack(self.file, self.bar, self.verdict, form, self.units, below, self.all_alike)
 
     def _next(self) -> None:
         """Read the next file, or close after the last one."""
-        self._asset, self._skips = None, False
+        self._bodies, self._skips = (), False
+        self.units.show_bodies(())
         if not self._left:
             self.accept()
             return
@@ -83,27 +93,28 @@ class AddMeshDialog(FormDialog):
         self.bar.show()
         if not self._alike:
             # A unit is never taken over from the file before without being asked for.
-            self.table.clearSelection()
+            self.units.clear()
         self._allow()
         self.all_alike.setVisible(len(self._left) > 1)
         others = len(self._left) - 1
         which = "other file" if others == 1 else f"other {others} files"
         self.all_alike.setText(f"Add the {which} with the same unit and material")
-        self._show_table()
         self._task = Task(
-            self, lambda progress: MeshAsset.read(path, progress), self._read, self._unreadable,
+            self, lambda progress: _read(path, progress), self._show, self._unreadable,
             lambda fraction: self.bar.setValue(round(100 * fraction)),
         )
 
-    def _read(self, asset: MeshAsset) -> None:
-        self._asset = asset
+    def _show(self, bodies: tuple[MeshAsset, ...]) -> None:
+        self._bodies = bodies
         self.bar.hide()
-        survey = asset.survey
-        self.file.setText(f"{asset.name}: {survey.triangles} facets, {survey.format}")
-        estimate = "" if survey.basis == "computed" else f" Its values are {survey.basis}."
-        self.verdict.setText(" ".join([f"Verdict: {survey.verdict}.{estimate}", *survey.notes]))
-        self.verdict.set_role("text" if survey.verdict in SOUND else "failed")
-        self._show_table()
+        facets = sum(body.survey.triangles for body in bodies)
+        several = "" if len(bodies) == 1 else f" in {len(bodies)} bodies, which become a group"
+        self.file.setText(f"{self._left[0].name}: {facets} facets{several}, {bodies[0].survey.format}")
+        sound = all(body.survey.verdict in SOUND for body in bodies)
+        self.verdict.setText(" ".join(_sentences(bodies)))
+        self.verdict.set_role("text" if sound else "failed")
+        self.counts.setEnabled(any(can_restore(body.survey) for body in bodies))
+        self.units.show_bodies(bodies)
         self._allow()
         if self._alike:
             self.take()
@@ -117,40 +128,13 @@ class AddMeshDialog(FormDialog):
         self.take_button.setText("Next file" if len(self._left) > 1 else "Close")
         self.take_button.setEnabled(True)
 
-    def _factor(self) -> float | None:
-        rows = self.table.selectionModel().selectedRows()
-        return UNITS[MESH_UNITS[rows[0].row()]].factor if rows else None
-
     def _allow(self) -> None:
-        self.take_button.setText("Add part")
-        self.take_button.setEnabled(self._asset is not None and self._factor() is not None)
+        self.take_button.setText("Add part" if len(self._bodies) < 2 else "Add group")  # noqa: PLR2004  # one or several
+        self.take_button.setEnabled(bool(self._bodies) and self.units.factor is not None)
 
-    def _show_table(self) -> None:
-        """Show the size in every unit, and the mass that follows from it."""
-        for row, symbol in enumerate(MESH_UNITS):
-            self.table.setItem(row, 0, _cell(symbol))
-            self.table.setItem(row, 1, _cell(self._size(UNITS[symbol].factor)))
-            self.table.setItem(row, 2, _cell(self._weight(UNITS[symbol].factor)))
-
-    def _size(self, factor: float) -> str:
-        if self._asset is None:
-            return ""
-        unit = self._session.units[Kind.LENGTH]
-        low, high = self._asset.survey.bounds * factor
-        sides = " × ".join(shown(self._session, float(extent), unit) for extent in np.subtract(high, low))
-        return f"{sides} {unit.symbol}"
-
-    def _weight(self, factor: float) -> str:
-        if self._asset is None or self._asset.survey.solid is None:
-            return ""
-        try:
-            driver = driver_of(self.material.text(), self._session.units, "made of")
-        except MasswrightError:
-            return ""
-        volume = float(self._asset.survey.solid.mass) * factor**3
-        mass = None if not hasattr(driver, "mass_of") else driver.mass_of(volume)
-        unit = self._session.units[Kind.MASS]
-        return "material not set" if mass is None else f"{shown(self._session, mass, unit)} {unit.symbol}"
+    def _driver(self) -> Driver:
+        text = self.material.text()
+        return driver_of(text, self._session.units, "made of") if text.strip() else NotSet()
 
     def take(self) -> None:
         """Add the file as a line, and go on with the next one; a file that could not be read is passed over."""
@@ -158,19 +142,34 @@ class AddMeshDialog(FormDialog):
             self._left.pop(0)
             self._next()
             return
-        factor = self._factor()
-        if self._asset is None or factor is None:
+        factor = self.units.factor
+        if not self._bodies or factor is None:
             return
+        path = self._left[0]
         try:
-            text = self.material.text()
-            driver = driver_of(text, self._session.units, "made of") if text.strip() else NotSet()
+            how = Import(
+                path.stem.removesuffix(".stl"), factor, self._driver(), self.counts.currentData(),
+                self.standing.currentData(), str(path.resolve()),
+            )
+            node = imported(self._session.assembly, self._bodies, how)
         except MasswrightError as error:
             self.refuse(str(error))
             return
-        assembly = self._session.assembly
-        key = assembly.fresh_key()
-        part = Part(key, assembly.fresh_name(Path(self._asset.name).stem), MeshBody(self._asset, factor), driver)
-        refusal = self._session.attempt(f"Add {part.name}", lambda before: before.inserted(part), select=key)
+        self._prepare(node)
+
+    def _prepare(self, node: Node) -> None:
+        """Make a large mesh ready to be drawn before it is shown, off the window's thread."""
+        if sum(body.survey.triangles for body in self._bodies) < DRAWN_AT_ONCE:
+            self._insert(node)
+            return
+        self.file.setText(f"Making {node.name} ready …")
+        self.take_button.setEnabled(False)
+        self._task = Task(
+            self, lambda _progress: self._session.prepare(node), lambda _done: self._insert(node), self.refuse
+        )
+
+    def _insert(self, node: Node) -> None:
+        refusal = self._session.attempt(f"Add {node.name}", lambda before: before.inserted(node), select=node.key)
         if refusal:
             self.refuse(refusal)
             return
@@ -185,25 +184,28 @@ class AddMeshDialog(FormDialog):
         super().done(result)
 
 
-def _unit_table(parent: QWidget) -> QTableWidget:
-    table = QTableWidget(len(MESH_UNITS), len(HEADINGS), parent)
-    table.setAccessibleName("Length unit of the mesh")
-    table.setHorizontalHeaderLabels(list(HEADINGS))
-    table.verticalHeader().hide()
-    table.setShowGrid(False)
-    table.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
-    table.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
-    table.setEditTriggers(QAbstractItemView.EditTrigger.NoEditTriggers)
-    table.setTabKeyNavigation(False)
-    header = table.horizontalHeader()
-    header.setAccessibleName("Columns of the units")
-    header.setHighlightSections(False)
-    header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
-    header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
-    header.setStretchLastSection(True)
-    table.setFixedHeight(header.sizeHint().height() + len(MESH_UNITS) * table.rowHeight(0) + 8)
-    return table
+def _read(path: Path, progress: Progress) -> tuple[MeshAsset, ...]:
+    """Read a file, and find out beforehand what the window will ask about meshes that are not huge."""
+    bodies = read_bodies(path, progress)
+    for body in bodies:
+        if body.survey.triangles <= AT_ONCE:
+            body.census(progress)
+            if can_restore(body.survey):
+                body.restored(progress)
+        body.facets_for_view()
+    return bodies
 
 
-def _cell(text: str) -> QTableWidgetItem:
-    return QTableWidgetItem(text)
+def _sentences(bodies: tuple[MeshAsset, ...]) -> list[str]:
+    """Return verdict, basis, notes and the first findings of each body."""
+    said = []
+    for body in bodies:
+        who = "" if len(bodies) == 1 else f"{body.name}: "
+        estimate = "" if body.survey.basis == "computed" else f" Its values are {body.survey.basis}."
+        said += [f"{who}Verdict: {body.survey.verdict}.{estimate}", *body.survey.notes]
+        census = body.census_at_hand
+        found = [] if census is None else [finding for finding in census.findings if not finding.harmless]
+        said += [finding.text for finding in found[:MOST_FINDINGS]]
+        if len(found) > MOST_FINDINGS:
+            said.append(f"{len(found) - MOST_FINDINGS} more findings are listed on the Part page.")
+    return said
