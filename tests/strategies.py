@@ -11,6 +11,7 @@ from hypothesis import strategies as st
 
 from core.assembly import (
     Assembly,
+    Cut,
     DataSheet,
     DriveAxis,
     Driver,
@@ -374,6 +375,10 @@ def parts(draw: st.DrawFn, drivers: st.SearchStrategy[Driver] = unset_or_mass_dr
         driver = draw(THIN_DRIVERS[body.measure])
     typed = draw(st.lists(st.tuples(TEXTS, TEXTS), max_size=2).map(tuple))
     return Part("", draw(TEXTS), body, driver, draw(poses), draw(several_copies), typed, draw(TEXTS))
+
+
+# Solids placed anywhere, to be taken out of a part; whether they meet it is not asked.
+cuts = st.builds(Cut, st.just(""), TEXTS, solids, poses, several_copies, note=TEXTS)
 
 
 def groups(members: st.SearchStrategy[Node]) -> st.SearchStrategy[Node]:
