@@ -24,11 +24,13 @@ from PySide6.QtWidgets import (
 
 from app.window import commands
 from app.window.actions import Actions
+from app.window.changed_files import ChangedFiles
 from app.window.crash import CrashReporter
 from app.window.dialogs.add_mesh import AddMeshDialog
 from app.window.dialogs.axis import AxisDialog
 from app.window.dialogs.known_part import KnownPartDialog
 from app.window.files import Files
+from app.window.gallery.panel import GalleryPanel
 from app.window.ledger.view import LedgerPane
 from app.window.numbers import copied, preview, shown
 from app.window.pages.checks import ChecksPage, counted
@@ -63,10 +65,12 @@ class MainWindow(QMainWindow):
         self.sheet = SheetPage(self.session)
         self.checks = ChecksPage(self.session)
         self.pages = QTabWidget()
+        self.gallery = GalleryPanel(self.session)
         self.notice = Notice()
         self.totals = Words()
         self.told = Words("", "quiet")
         self.files = Files(self, self.session, self.settings, self.notice)
+        self.changed_files = ChangedFiles(self.session, self.notice)
         self.actions_ = Actions(self)
         self._place: QWidget = self.ledger
         self._given_up = False
@@ -84,13 +88,16 @@ class MainWindow(QMainWindow):
         self.pages.setDocumentMode(True)
         self.pages.tabBar().setAccessibleName("Pages")
         self.pages.tabBar().setDrawBase(False)
-        self.start = StartPanel(self.actions_.shapes, self.files.ask_meshes, self.files.open_sample)
+        self.start = StartPanel(self.open_gallery, self.files.ask_meshes, self.files.open_sample)
         self.top = QStackedWidget()
         self.top.addWidget(self.ledger)
         self.top.addWidget(self.start)
         self.below = QSplitter(Qt.Orientation.Horizontal)
         self.below.addWidget(self.view)
-        self.below.addWidget(self.pages)
+        self.right = QStackedWidget()
+        self.right.addWidget(self.pages)
+        self.right.addWidget(self.gallery)
+        self.below.addWidget(self.right)
         self.below.setSizes([560, 800])
         self.halves = QSplitter(Qt.Orientation.Vertical)
         self.halves.addWidget(self.top)
@@ -132,6 +139,10 @@ class MainWindow(QMainWindow):
             application.focusChanged.connect(self._note_place)
         s.found.connect(self.view.light_up)
         s.prepare = self._prepare
+        s.file_changed.connect(self.changed_files.look)
+        self.gallery.previewed.connect(self.view.set_preview)
+        self.gallery.kept.connect(self._keep_shape)
+        self.gallery.closed.connect(self._close_gallery)
         self.view.picked.connect(self._pick)
         self.view.hovered.connect(self._hover)
         self.ledger.tree.hovered.connect(self._hover)
@@ -246,6 +257,25 @@ class MainWindow(QMainWindow):
         if self.session.edit(f"Add {part.name}", lambda before: commands.inserted_at(before, part, selected), part.key):
             self.pages.setCurrentWidget(self.part)
             QTimer.singleShot(0, self.part.edit_first_dimension)
+
+    def open_gallery(self) -> None:
+        """Show the gallery of shapes in the place of the pages."""
+        self._commit_typing()
+        self.right.setCurrentWidget(self.gallery)
+        self.gallery.open_gallery()
+
+    def _keep_shape(self, part: Part) -> None:
+        """Add a part that was made in the gallery."""
+        assembly, selected = self.session.assembly, self.session.selected
+        part = replace(part, key=assembly.fresh_key(), name=assembly.fresh_name(part.name))
+        self.session.edit(f"Add {part.name}", lambda before: commands.inserted_at(before, part, selected), part.key)
+
+    def _close_gallery(self) -> None:
+        """Show the pages again; the page of what is selected when something was added."""
+        self.right.setCurrentWidget(self.pages)
+        if self.session.selected:
+            self.pages.setCurrentWidget(self.part)
+        self.ledger.tree.setFocus(Qt.FocusReason.OtherFocusReason)
 
     def add_meshes(self, paths: list[Path]) -> None:
         """Read mesh files and ask for the unit of each."""
@@ -398,6 +428,7 @@ class MainWindow(QMainWindow):
     def _end(self) -> None:
         for name, (keep, _take) in self._states():
             self.settings.keep_state(name, keep())
+        self.changed_files.stop()
         self.files.autosave.stop()
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
@@ -413,8 +444,12 @@ class MainWindow(QMainWindow):
     def changeEvent(self, event: QEvent) -> None:
         """Follow a change of theme."""
         super().changeEvent(event)
-        if event.type() == QEvent.Type.PaletteChange and hasattr(self, "actions_"):
+        if not hasattr(self, "actions_"):
+            return
+        if event.type() == QEvent.Type.PaletteChange:
             self.actions_.redraw_icons()
+        if event.type() == QEvent.Type.ActivationChange and self.isActiveWindow():
+            self.changed_files.look()
 
 
 def _version() -> str:

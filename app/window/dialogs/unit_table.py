@@ -130,13 +130,14 @@ class UnitTable(QWidget):
     def _by_mass(self, mass: float) -> None:
         masses = self._masses(1.0)
         if not masses:
-            self.mass.refuse("Set a material or a density above; a mass alone does not tell the unit.")
+            self.mass.turn_down("Set a material or a density above; a mass alone does not tell the unit.")
             return
         self._pick(self.mass, unit_of_known_volume(sum(masses), mass, FACTORS), NO_MASS)
 
     def _pick(self, field: QuantityField, found: int | None, none_fits: str) -> None:
-        field.refuse(none_fits if found is None else "")
-        if found is not None:
+        if found is None:
+            field.turn_down(none_fits)
+        else:
             self.table.selectRow(found)
 
 
