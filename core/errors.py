@@ -7,6 +7,7 @@ MasswrightError
 │   └── MaterialError                 a material that is not in the table, a density that cannot be
 ├── FileRefused (ValueError)          a file that cannot be taken; nothing of it was
 │   ├── MeshFileError                 not a mesh, or a damaged one
+│   ├── OutlineFileError              a drawing without a closed outline, or a damaged one
 │   └── DocumentError                 not a document, a damaged one, or one from the future
 ├── EditRefused (ValueError)          an edit that the assembly cannot take; it is as it was
 └── Cancelled (RuntimeError)          a long task was told to stop
@@ -66,6 +67,26 @@ class FileRefused(MasswrightError, ValueError):
 
 class MeshFileError(FileRefused):
     """A file that is no mesh, or a damaged one."""
+
+
+class OutlineFileError(FileRefused):
+    """A drawing that holds no closed outline, or a damaged one.
+
+    Attributes:
+        spots: the places that the sentence is about, (x, y) in m, to show them; empty where it is about none.
+    """
+
+    def __init__(
+        self,
+        what: str,
+        *,
+        where: str = "",
+        read: str = "",
+        remedy: str = "",
+        spots: tuple[tuple[float, float], ...] = (),
+    ) -> None:
+        super().__init__(what, where=where, read=read, remedy=remedy)
+        self.spots = spots
 
 
 class DocumentError(FileRefused):
