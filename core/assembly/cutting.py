@@ -10,7 +10,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from functools import cached_property
 from itertools import pairwise
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TypeVar
 
 import numpy as np
 
@@ -21,6 +21,8 @@ from core.moments import Moments
 from core.placement import Placement
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from core.arrays import BoolArray, FloatArray, IntArray
     from core.assembly.bodies import GeometricBody
     from core.assembly.cuts import Cut
@@ -37,7 +39,9 @@ WORTH_A_WORD = 1e-4
 # Up to this many facets of a mesh a cut takes no time that anybody notices.
 CUT_AT_ONCE = 50_000
 # Outcomes that a body keeps: the present one, and some that undo may bring back.
-_KEPT = 8
+_MOST_KEPT = 8
+
+Made = TypeVar("Made")
 
 
 @dataclass(frozen=True, eq=False)
@@ -88,15 +92,13 @@ def cutting_of(
         EditRefused: a cut takes nothing out, nothing is left of the body, or its surface bounds no volume clearly.
         Cancelled: progress was cancelled.
     """
-    kept: dict[object, Cutting] = body.__dict__.setdefault("_cuttings", {})
-    asked = _asked(cuts)
-    if asked not in kept:
+
+    def computed() -> Cutting:
         cutting = _Cutter(body, cuts, where, progress).cutting()
         _refuse_all_or_nothing(body, cuts, cutting, where)
-        while len(kept) >= _KEPT:
-            kept.pop(next(iter(kept)))
-        kept[asked] = cutting
-    return kept[asked]
+        return cutting
+
+    return _kept(body, "_cuttings", cuts, computed)
 
 
 def is_cut_already(body: GeometricBody, cuts: tuple[Cut, ...]) -> bool:
@@ -105,11 +107,30 @@ def is_cut_already(body: GeometricBody, cuts: tuple[Cut, ...]) -> bool:
 
 
 def surface_without(body: GeometricBody, cuts: tuple[Cut, ...]) -> Facets:
-    """Return the surface to draw of a body less cuts, m in the part frame; the body's own where that fails."""
-    from core.assembly.solid_cuts import drawn_without
+    """Return the surface to draw of a body less cuts, m in the part frame; the body's own where that fails.
 
-    copies = [(cut.shape, one) for cut in cuts for one in _singles(cut.standing)]
-    return drawn_without(body, copies) or body.surface
+    The body keeps the last ones: equal parts are drawn from one surface.
+    """
+
+    def drawn() -> Facets:
+        from core.assembly.solid_cuts import drawn_without
+
+        copies = [(cut.shape, one) for cut in cuts for one in _singles(cut.standing)]
+        return drawn_without(body, copies) or body.surface
+
+    return _kept(body, "_cut_surfaces", cuts, drawn)
+
+
+def _kept(body: GeometricBody, kind: str, cuts: tuple[Cut, ...], make: Callable[[], Made]) -> Made:
+    """Return what make returns for these cuts, from the body where it was asked for a short while ago."""
+    kept: dict[object, Made] = body.__dict__.setdefault(kind, {})
+    asked = _asked(cuts)
+    if asked not in kept:
+        made = make()
+        while len(kept) >= _MOST_KEPT:
+            kept.pop(next(iter(kept)))
+        kept[asked] = made
+    return kept[asked]
 
 
 def _asked(cuts: tuple[Cut, ...]) -> object:
@@ -167,12 +188,13 @@ class _Cutter:
         """Return what the copies take out that are plainly bars along the body, inside it, or beside it."""
         low, high = box_of_body(self._body)
         beside = (self._corners.min(axis=1) > high).any(axis=1) | (self._corners.max(axis=1) < low).any(axis=1)
-        nothing = whole.times(np.zeros(len(self._owner)))
         if not isinstance(self._body, ShapeBody):
-            return nothing, beside
+            return whole.times(np.zeros(len(self._owner))), beside
         shape = self._body.shape
         found = [pieces_along(shape, cut.shape, cut.standing) for cut in self._cuts]
         pieces, along = _joined([each for each, _ in found]), np.concatenate([known for _, known in found])
+        if along.all():
+            return pieces, along
         inside = ~along & well_inside(shape, self._corners)
         return Moments(
             np.where(inside, whole.mass, pieces.mass),
