@@ -19,6 +19,8 @@ from core.quantity import UNITS, Kind
 if TYPE_CHECKING:
     from collections.abc import Callable
 
+    from PySide6.QtGui import QKeyEvent
+
     from app.window.session import Session
     from core.assembly import Driver
     from core.mesh import MeshAsset
@@ -45,8 +47,8 @@ class UnitTable(QWidget):
         self._bodies: tuple[MeshAsset, ...] = ()
         self.words = Words("", "quiet")
         self.words.setWordWrap(True)
-        self.length = QuantityField(session, "a known dimension", Kind.LENGTH)
-        self.mass = QuantityField(session, "a known mass", Kind.MASS)
+        self.length = _KnownField(session, "a known dimension", Kind.LENGTH)
+        self.mass = _KnownField(session, "a known mass", Kind.MASS)
         self.table = _table(self)
         form = Form()
         form.add("a known dimension", self.length, "Any side of the box around it: picks the unit in which it fits.")
@@ -139,6 +141,17 @@ class UnitTable(QWidget):
             field.turn_down(none_fits)
         else:
             self.table.selectRow(found)
+
+
+class _KnownField(QuantityField):
+    """A value that picks a unit: Return enters it, and does not take the dialog as well."""
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        """Keep Return from the dialog's own button."""
+        if event.key() in {Qt.Key.Key_Return, Qt.Key.Key_Enter}:
+            event.accept()
+            return
+        super().keyPressEvent(event)
 
 
 def _table(parent: QWidget) -> QTableWidget:
