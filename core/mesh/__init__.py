@@ -4,6 +4,9 @@ survey_file and survey_triangles give a MeshSurvey: verdict, volume, centre, sec
 length unit at unit density. restored gives the body behind the facets of a mesh for which can_restore holds (AT_ONCE:
 up to how many triangles without making anybody wait). count_shells says of how many separate surfaces a mesh consists.
 MeshAsset is a file's bytes with that survey, as a document holds it.
+
+In packages and modules of their own, so that a plain survey does not wait for them: core.mesh.census (shells, holes and
+all that is wrong with a mesh), core.mesh.mend (what can be done about it), core.mesh.formats (files other than STL).
 """
 
 from core.mesh.asset import MeshAsset

@@ -115,7 +115,8 @@ def loops_of(ends: IntArray) -> list[IntArray]:
         while leaving[root]:
             path, places = [root], {root: 0}
             while path:
-                if not leaving[path[-1]]:
+                # Edges that do not balance lead nowhere: what was walked of them is no loop.
+                if not leaving.get(path[-1]):
                     break
                 vertex = leaving[path[-1]].pop()
                 if vertex not in places:

@@ -1,8 +1,9 @@
 """Which shells lie in which, and which only meet: by boxes first, then by rays.
 
-A point lies in a closed shell when a ray from it leaves the shell once more often than it enters. The rays run along
-z; whether a ray meets a facet is decided in the x-y plane, edge by edge, each edge seen from the same end by both
-of its facets, so that no ray slips between two facets or meets both.
+A point lies in a closed shell when a ray from it leaves the shell once more often than it enters. All is turned askew
+first, so that no ray runs along the faces of a part; then the rays run along z. Whether a ray meets a facet is decided
+in the x-y plane, edge by edge, each edge seen from the same end by both of its facets, so that no ray slips between two
+facets or meets both.
 """
 
 from __future__ import annotations
@@ -13,6 +14,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.mesh.boxes import BoxTree
+from core.mesh.edges import WELD
 
 if TYPE_CHECKING:
     from core.arrays import BoolArray, FloatArray, IntArray
@@ -26,6 +28,8 @@ MOST_PAIRS = 2_000_000
 _FEWEST, _MOST, _ALL = 3, 24, 20_000
 # Of a facet's corners: inside it, and never in line with other corners of a drawing made of round numbers.
 _WEIGHTS = np.array([0.4317, 0.3129, 0.2554])
+# A rotation about no axis that a part has, so that rays do not run along its faces; columns are unit vectors.
+_TURN = np.linalg.qr(np.array([[0.81, -0.37, 0.23], [0.29, 0.73, -0.41], [-0.19, 0.47, 0.89]]))[0]
 # Facets that rays have to be held against, in all.
 MOST_RAYS = 20_000_000
 
@@ -107,6 +111,7 @@ def _share_inside(
     """Return which share of some points on shell inner (p,) lie in shell outer (p,); None for too many rays."""
     if len(inner) == 0:
         return np.empty(0)
+    points = points @ _TURN
     asking, ask = np.unique(inner, return_inverse=True)
     places, owner = _points_on(points, corners, sizes, asking)
     around = np.zeros(len(sizes.area), dtype=bool)
@@ -120,7 +125,8 @@ def _share_inside(
     first_point = np.cumsum(per_shell) - per_shell
     room = per_shell[ask[order]]
     first_row = np.cumsum(room) - room
-    winding = np.zeros(int(room.sum()), np.int64)
+    winding, touching = np.zeros(int(room.sum()), np.int64), np.zeros(int(room.sum()), dtype=bool)
+    film = WELD * float(np.linalg.norm(np.ptp(points, axis=0)))
     tree = BoxTree(places, places)
     triangles = points[corners[facets]]
     low, high = triangles.min(axis=1), triangles.max(axis=1)
@@ -130,15 +136,19 @@ def _share_inside(
         rays += len(facet)
         if rays > MOST_RAYS:
             return None
-        turns = _stabs(points, corners[facets[facet]], places[point])
+        turns, touches = _stabs(points, corners[facets[facet]], places[point], film)
         keys = owner[point] * len(sizes.area) + label[facets[facet]]
         place = np.minimum(np.searchsorted(sorted_wanted, keys), len(sorted_wanted) - 1)
-        hit = (sorted_wanted[place] == keys) & (turns != 0)
+        hit = (sorted_wanted[place] == keys) & ((turns != 0) | touches)
         row = first_row[place[hit]] + point[hit] - first_point[owner[point[hit]]]
         np.add.at(winding, row, turns[hit])
+        touching[row[touches[hit]]] = True
         if progress is not None:
             progress.advance(0)
-    share = np.add.reduceat((winding != 0).astype(float), first_row) / room
+    # A point on the other shell's surface says nothing; where no point says anything, half is as good a guess as any.
+    told = np.add.reduceat((~touching).astype(float), first_row)
+    within = np.add.reduceat(((winding != 0) & ~touching).astype(float), first_row)
+    share = np.divide(within, told, out=np.full(len(room), 0.5), where=told > 0)
     result = np.empty(len(inner))
     result[order] = share
     return result
@@ -157,18 +167,23 @@ def _points_on(
     return np.einsum("c,ncx->nx", _WEIGHTS, points[corners[facets]]), owner
 
 
-def _stabs(points: FloatArray, corner: IntArray, at: FloatArray) -> IntArray:
-    """Return for facets corner (n, 3) whether the ray up from a place (n, 3) leaves (+1), enters (−1) or misses (0)."""
+def _stabs(points: FloatArray, corner: IntArray, at: FloatArray, film: float) -> tuple[IntArray, BoolArray]:
+    """Return how rays up from places (n, 3) meet facets corner (n, 3): leaving +1, entering −1, missing 0.
+
+    With it comes whether a ray begins on its facet, no farther from it than film.
+    """
     turns = np.zeros(len(at), np.int64)
     for side in range(3):
         turns += _crossing(points, corner[:, side], corner[:, (side + 1) % 3], at)
     met = np.flatnonzero(turns)
     a, b, c = (points[corner[met, i]] for i in range(3))
     normal = np.cross(b - a, c - a)
-    # Height of the facet's plane above the place, times the normal's z component, which is not 0 where a ray meets it.
-    below = np.einsum("ni,ni->n", a - at[met], normal) * np.sign(normal[:, 2]) <= 0
-    turns[met[below]] = 0
-    return turns
+    # The distance to the facet's plane, times the normal's length and the sign of its z component.
+    above = np.einsum("ni,ni->n", a - at[met], normal) * np.sign(normal[:, 2])
+    touches = np.zeros(len(at), dtype=bool)
+    touches[met] = np.abs(above) <= film * np.linalg.norm(normal, axis=1)
+    turns[met[above <= 0]] = 0
+    return turns, touches
 
 
 def _crossing(points: FloatArray, start: IntArray, stop: IntArray, at: FloatArray) -> IntArray:

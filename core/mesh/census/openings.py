@@ -71,8 +71,13 @@ def openings_of(points: FloatArray, corners: IntArray, uses: IntArray) -> Openin
     most = int(corners.max()) + 1
     keys = start * most + stop
     order = np.argsort(keys)
-    sizes = np.array([len(loop) for loop in loops])
-    walked = np.concatenate([loop * most + np.roll(loop, -1) for loop in loops])
-    facets = uses[order[np.searchsorted(keys[order], walked)]] // 3
-    beside = tuple(np.unique(part) for part in np.split(facets, np.cumsum(sizes)[:-1]))
-    return Openings(tuple(loops), beside, caps_of(points, loops), np.repeat(np.arange(len(loops)), sizes), points)
+    loop_of = np.repeat(np.arange(len(loops)), [len(loop) for loop in loops])
+    caps = caps_of(points, loops)
+    joined = np.concatenate(loops)
+    last = np.flatnonzero(np.diff(loop_of, append=-1))
+    after = np.roll(joined, -1)
+    after[last] = joined[np.concatenate([[0], last[:-1] + 1])]
+    facets = uses[order[np.searchsorted(keys[order], joined * most + after)]] // 3
+    loop, beside = np.divmod(np.unique(loop_of * len(corners) + facets), len(corners))
+    parts = np.split(beside, np.flatnonzero(np.diff(loop)) + 1)
+    return Openings(tuple(loops), tuple(parts), caps, loop_of, points)

@@ -18,7 +18,7 @@ OPEN, FLAT = "open", "flat"
 
 # Volume over area × diagonal below which a shell encloses nothing but the round-off of stored coordinates.
 THIN = 1e-9
-_CHUNK = 100_000
+_CHUNK = 16_000
 
 
 @dataclass(frozen=True, eq=False)
@@ -93,31 +93,41 @@ def sizes_of(points: FloatArray, corners: IntArray, label: Labels, caps: FloatAr
     reference = points[corners[order[starts], 0]]
     sums = np.zeros((11, len(starts)))
     low, high = np.empty((len(corners), 3)), np.empty((len(corners), 3))
-    for start in range(0, len(corners), _CHUNK):
-        part = slice(start, start + _CHUNK)
-        triangles = points[corners[part]]
-        low[part], high[part] = triangles.min(axis=1), triangles.max(axis=1)
-        _add(sums, triangles - reference[label[part], None], label[part])
+    # Adding up costs as much as there are shells, so that a chunk has no fewer facets than that.
+    size = max(_CHUNK, len(starts))
+    for start in range(0, len(corners), size):
+        part = slice(start, start + size)
+        a, b, c = (points.take(column, axis=0) for column in corners[part].T)
+        low[part], high[part] = np.minimum(np.minimum(a, b), c), np.maximum(np.maximum(a, b), c)
+        seen_from = reference.take(label[part], axis=0)
+        _add(sums, a - seen_from, b - seen_from, c - seen_from, label[part])
     area = sums[10].copy()
     if len(caps):
-        _add(sums, caps - reference[cap_label, None], cap_label)
-    bounds = np.stack([
-        np.minimum.reduceat(low[order], starts, axis=0), np.maximum.reduceat(high[order], starts, axis=0)
-    ], axis=1)
+        seen_from = reference[cap_label]
+        _add(sums, caps[:, 0] - seen_from, caps[:, 1] - seen_from, caps[:, 2] - seen_from, cap_label)
+    if len(starts) > 1:
+        low, high = low[order], high[order]
+    bounds = np.stack([np.minimum.reduceat(low, starts, axis=0), np.maximum.reduceat(high, starts, axis=0)], axis=1)
     return Sizes(_bodies(sums, reference), area, bounds, order, starts)
 
 
-def _add(sums: FloatArray, triangles: FloatArray, label: IntArray | Labels) -> None:
-    """Add the integrals over the cones to triangles (n, 3, 3) to the rows of sums; see core.mesh.integrals."""
-    a, b, c = np.moveaxis(triangles, 1, 0)
-    normal = np.cross(b - a, c - a)
-    d = np.einsum("ni,ni->n", a, normal)
+def _add(sums: FloatArray, a: FloatArray, b: FloatArray, c: FloatArray, label: IntArray | Labels) -> None:
+    """Add the integrals over the cones to triangles with corners a, b, c (n, 3); see core.mesh.integrals."""
+    # Rows by axis: products of whole rows take half the time of products of columns.
+    a, b, c = (np.ascontiguousarray(corner.T) for corner in (a, b, c))
+    e, g = b - a, c - a
+    normal = np.stack([e[i] * g[j] - e[j] * g[i] for i, j in ((1, 2), (2, 0), (0, 1))])
+    d = (a * normal).sum(axis=0)
     s = a + b + c
-    rows = [d / 6, *(d * s.T / 24)]
+    weighted = d / 120
+    rows = [d / 6, *(5 * weighted * s)]
     for i, j in ((0, 0), (1, 1), (2, 2), (0, 1), (0, 2), (1, 2)):
-        rows.append(d * (a[:, i] * a[:, j] + b[:, i] * b[:, j] + c[:, i] * c[:, j] + s[:, i] * s[:, j]) / 120)
-    rows.append(0.5 * np.linalg.norm(normal, axis=1))
-    sums += np.stack([np.bincount(label, row, minlength=sums.shape[1]) for row in rows])
+        rows.append(weighted * (a[i] * a[j] + b[i] * b[j] + c[i] * c[j] + s[i] * s[j]))
+    rows.append(0.5 * np.sqrt((normal * normal).sum(axis=0)))
+    if sums.shape[1] == 1:
+        sums[:, 0] += [row.sum() for row in rows]
+    else:
+        sums += np.stack([np.bincount(label, row, minlength=sums.shape[1]) for row in rows])
 
 
 def _bodies(sums: FloatArray, reference: FloatArray) -> Moments:

@@ -71,5 +71,8 @@ def test_facets_for_view_keep_to_the_most_that_is_asked_for():
 
 
 def test_the_package_offers_what_its_list_says():
-    assert core.mesh.__all__ == ["MeshAsset", "MeshSurvey", "count_shells", "survey_file", "survey_triangles"]
+    assert core.mesh.__all__ == [
+        "AT_ONCE", "MeshAsset", "MeshSurvey", "can_restore", "count_shells", "restored", "survey_file",
+        "survey_triangles",
+    ]
     assert all(hasattr(core.mesh, name) for name in core.mesh.__all__)
