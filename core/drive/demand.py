@@ -184,6 +184,29 @@ class Demand:
         return total
 
 
+@dataclass(frozen=True)
+class GravityWave:
+    """The torque of gravity on a body that turns: amplitude·sin(θ − hangs_at) is asked of the drive.
+
+    Attributes:
+        amplitude: m·g·d N·m, g counted across the axis; 0 for an upright axis or a balanced body.
+        hangs_at: rad in −π…π, the angle θ at which the centre of mass is lowest; 0 where there is no torque.
+        offset: d, m, of the centre of mass from the axis.
+    """
+
+    amplitude: float
+    hangs_at: float
+    offset: float
+
+
+def gravity_wave(body: TurningBody, gravity: Triple = STANDARD_GRAVITY) -> GravityWave:
+    """Return the torque of gravity (m/s², document frame) on a body over the angle of its shaft."""
+    pull = float(body.moments.mass) * np.asarray(gravity)
+    _, cosine, sine = wave_of_force(body.axis, pull, body.moments.centre, "space", "part")
+    offset = float(body.moments.offset_from_axis(body.axis.point, body.axis.direction))
+    return GravityWave(math.hypot(cosine, sine), math.atan2(-cosine, sine), offset)
+
+
 def wave_of_force(
     axis: DriveAxis, force: ArrayLike, point: ArrayLike, direction_in: str, point_in: str
 ) -> tuple[float, float, float]:

@@ -72,6 +72,10 @@ class Shares:
     second: float
     between: bool
 
+    def of(self, whole: float) -> tuple[float, float]:
+        """Return what of a whole each plane gets."""
+        return whole * self.first, whole * self.second
+
 
 def shares(station: float, bearings: tuple[float, float]) -> Shares:
     """Return the split for a centre of mass at a station: by the lever rule, each kept within 0.3…0.7.
@@ -104,6 +108,10 @@ class Graded:
     def worst(self) -> float:
         """The grade that counts: the largest of them."""
         return max(self.static, *(self.planes or (0.0,)))
+
+    def keeps_to(self, grade: float) -> bool:
+        """Return whether the rotor keeps to a grade (mm/s), in whole and in each plane."""
+        return self.worst <= grade * (1 + _SLACK)
 
 
 def graded(

@@ -16,6 +16,9 @@ if TYPE_CHECKING:
     from core.drive.demand import Demand
     from core.drive.torque import Study
 
+# Angles that are tried at first, and how often the hardest push is closed in on.
+_ANGLES, _CLOSER = 1441, 4
+
 Drift: TypeAlias = Literal["stays", "turns forwards", "turns backwards"]
 
 
@@ -66,11 +69,17 @@ def standstills_of(study: Study) -> tuple[Standstill, ...]:
     return tuple(standstill(study.demand, angle) for angle in _different(angles))
 
 
-def worst_standstill(study: Study) -> Standstill:
-    """Return the standstill, at any angle that the duty passes, from which the load is pushed hardest."""
-    angles = study.curves().angle
-    push, _ = _push(study.demand, angles)
-    return standstill(study.demand, float(angles[int(np.abs(push).argmax())]))
+def worst_standstill(demand: Demand, lowest: float, highest: float) -> Standstill:
+    """Return the standstill between two angles (rad) from which the load is pushed hardest."""
+    angles = np.linspace(lowest, highest, _ANGLES)
+    step = angles[1] - angles[0]
+    for _ in range(_CLOSER):
+        push, size = _push(demand, angles)
+        # The first of equals, so that round-off does not choose.
+        best = float(angles[int(np.argmax(np.abs(push) >= np.abs(push).max() - ROUND_OFF * size))])
+        angles = np.clip(best + step * np.linspace(-1, 1, 65), lowest, highest)
+        step /= 32
+    return standstill(demand, best)
 
 
 def holding_torque(demand: Demand, angle: ArrayLike) -> FloatArray:

@@ -349,7 +349,7 @@ class ReflectedRow:
 
 @dataclass(frozen=True)
 class Reflected:
-    """J = Σ J_i·(ω_i/ω)² + Σ m·(v/ω)² at one shaft, row by row; `shaft` is its name, `inertia` the sum in kg·m²."""
+    """J = Σ J_i·(ω_i/ω)² + Σ m·(v/ω)² at the shaft of this name, row by row; `inertia` is the sum in kg·m²."""
 
     shaft: str
     rows: tuple[ReflectedRow, ...]
@@ -367,7 +367,7 @@ def reflected(train: Train, bodies: Sequence[TurningBody], shaft: str = MOTOR) -
     for name, on, inertia, mass, travel in _items(train, bodies):
         speed = float(train.speeds[on] / train.speeds[at])
         rows.append(ReflectedRow(name, _shown(train, on), inertia, mass, travel, speed, inertia * speed**2))
-    return Reflected(_shown(train, at), tuple(rows), math.fsum(row.reflected for row in rows))
+    return Reflected(shaft, tuple(rows), math.fsum(row.reflected for row in rows))
 
 
 def inertias_of_shafts(train: Train, bodies: Sequence[TurningBody]) -> FloatArray:
