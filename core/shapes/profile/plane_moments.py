@@ -14,11 +14,11 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.arrays import ArrayLike, FloatArray, frozen, settled
+from core.shapes.profile.edges import Edges
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
-    from core.shapes.profile.edges import Edges
 
 # Below this bulge the closed form of a circular segment loses digits, and its power series in b² is summed.
 FLAT_BULGE = 0.4
@@ -95,14 +95,16 @@ def signed_area(loop: Edges) -> FloatArray:
 
 def _raw_moments(loop: Edges, near: FloatArray) -> FloatArray:
     """Return A, Sx, Sy, ∫x², ∫xy, ∫y², ∫x³, ∫x²y, ∫xy², ∫y³ (..., 10) about the point near (..., 2)."""
-    polygon = _under_chords(loop.start - near[..., None, :], loop.end - near[..., None, :]).sum(axis=-2)
-    if not np.any(loop.bulge):
-        return np.asarray(polygon)
-    return np.asarray(polygon + _segments(loop, near).sum(axis=-2))
+    polygon = _under_chords(loop.start - near[..., None, :], loop.end - near[..., None, :])
+    bent = np.any(loop.bulge.reshape(-1, loop.bulge.shape[-1]) != 0, axis=0)
+    if not bent.any():
+        return polygon
+    arcs = Edges(loop.start[..., bent, :], loop.end[..., bent, :], loop.bulge[..., bent])
+    return np.asarray(polygon + _segments(arcs, near))
 
 
 def _under_chords(p: FloatArray, q: FloatArray) -> FloatArray:
-    """Return the ten moments (..., n, 10) of the triangles between the origin and each chord from p to q."""
+    """Return the ten moments (..., 10) of the triangles between the origin and the chords from p to q, (..., n, 2)."""
     (x1, y1), (x2, y2) = np.moveaxis(p, -1, 0), np.moveaxis(q, -1, 0)
     d = x1 * y2 - x2 * y1
     x, y = x1 + x2, y1 + y2
@@ -116,11 +118,11 @@ def _under_chords(p: FloatArray, q: FloatArray) -> FloatArray:
         d * (3 * (y1 * y1 * x1 + y2 * y2 * x2) + y1 * y1 * x2 + 2 * y1 * y2 * x + y2 * y2 * x1) / 60,
         d * y * (y1 * y1 + y2 * y2) / 20,
     )
-    return np.stack(np.broadcast_arrays(*moments), axis=-1)
+    return np.stack(np.broadcast_arrays(*(moment.sum(axis=-1) for moment in moments)), axis=-1)
 
 
 def _segments(loop: Edges, near: FloatArray) -> FloatArray:
-    """Return the ten moments (..., n, 10) of what lies between each arc and its chord, negative for right turns."""
+    """Return the ten moments (..., 10) of what lies between arcs and their chords, negative for right turns."""
     half = loop.chord / 2
     c = np.hypot(half[..., 0], half[..., 1])
     with np.errstate(invalid="ignore", divide="ignore"):
@@ -144,7 +146,7 @@ def _segments(loop: Edges, near: FloatArray) -> FloatArray:
         + j21 * ey * (ey * nx + 2 * ex * ny) + j03 * ny * ny * nx,
         a * my**3 + 3 * my * (my * fy + qyy) + 3 * j21 * ey * ey * ny + j03 * ny**3,
     )
-    return np.stack(np.broadcast_arrays(*moments), axis=-1)
+    return np.stack(np.broadcast_arrays(*(moment.sum(axis=-1) for moment in moments)), axis=-1)
 
 
 def _own_segment(bulge: FloatArray) -> FloatArray:
