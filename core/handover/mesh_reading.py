@@ -17,10 +17,13 @@ if TYPE_CHECKING:
 
     from core.arrays import FloatArray
     from core.mesh import MeshSurvey
+    from core.mesh.source import TriangleSource
     from core.moments import Moments
     from core.progress import Progress
     from core.quantity import Unit
 
+# Suffix → name of the formats beside STL, whose readers are imported only for them.
+_OTHER_FORMATS: Final = {"obj": "OBJ", "ply": "PLY", "off": "OFF", "3mf": "3MF", "glb": "GLB"}
 # A restored volume closer to the faceted one than this, relative, is the same: the form has no curved faces.
 _SAME: Final = 1e-12
 
@@ -229,26 +232,29 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
         Cancelled: progress was cancelled.
 
     """
-    from core.mesh import AT_ONCE, count_shells, survey_file
+    from core.mesh import AT_ONCE
+    from core.mesh.shells import shells_of
+    from core.mesh.survey import survey_source
 
-    survey = survey_file(path, progress)
+    source, named = _source_of(path, progress)
+    survey = survey_source(source, progress)
     cheap = survey.triangles <= AT_ONCE
     reading = MeshReading(
         str(path),
         survey,
-        request.unit,
-        request.unit_assumed,
+        named if request.unit_assumed and named is not None else request.unit,
+        request.unit_assumed and named is None,
         request.weighing,
         request.axis,
         counts_restored=request.count_restored,
         how_to_weigh=request.how_to_weigh,
     )
     if cheap or request.count_shells:
-        reading = replace(reading, shells=count_shells(path, progress))
+        reading = replace(reading, shells=shells_of(source, progress))
     if cheap:
-        reading = _with_census(reading, path, progress)
+        reading = _with_census(reading, source, progress)
     if cheap or request.count_restored:
-        return _with_curvature(reading, path)
+        return _with_curvature(reading, source)
     remark = (
         f"The file has more than {AT_ONCE} triangles: curvature was not restored, and nothing was looked for that is "
         "counted twice."
@@ -256,25 +262,41 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
     return replace(reading, remarks=(*reading.remarks, remark))
 
 
-def _with_census(reading: MeshReading, path: str | Path, progress: Progress | None) -> MeshReading:
+def _source_of(path: str | Path, progress: Progress | None) -> tuple[TriangleSource, Unit | None]:
+    """Return the triangles of a mesh file, and the length unit that it names itself, if it does."""
+    from core.mesh.stl import open_stl
+
+    suffix = str(path).lower().rpartition(".")[2]
+    if suffix not in _OTHER_FORMATS:
+        return open_stl(path), None
+    from core.mesh.formats import read_bodies
+    from core.mesh.source import ArraySource
+    from core.quantity import UNITS_BY_KIND, Kind
+
+    bodies = read_bodies(path, progress)
+    triangles = np.concatenate([body.triangles for body in bodies])
+    factors = {body.metres_per_unit for body in bodies}
+    units = [unit for unit in UNITS_BY_KIND[Kind.LENGTH] if factors == {unit.factor}]
+    return ArraySource(triangles, str(path), _OTHER_FORMATS[suffix]), units[0] if units else None
+
+
+def _with_census(reading: MeshReading, source: TriangleSource, progress: Progress | None) -> MeshReading:
     """Return the reading with what the census of its shells found."""
     from core.mesh.census import census
     from core.mesh.mesh_check import check_census
-    from core.mesh.stl import open_stl
     from core.mesh.survey import gathered
 
-    taken = census(gathered(open_stl(path), reading.survey.triangles), progress)
+    taken = census(gathered(source, reading.survey.triangles), progress)
     return replace(reading, findings=(*reading.findings, *check_census(taken, reading.name)))
 
 
-def _with_curvature(reading: MeshReading, path: str | Path) -> MeshReading:
+def _with_curvature(reading: MeshReading, source: TriangleSource) -> MeshReading:
     """Return the reading with its curvature restored, or with the reason why not."""
     from core.mesh import can_restore, restored
-    from core.mesh.stl import open_stl
     from core.mesh.survey import gathered
 
     if not can_restore(reading.survey):
         remark = f"Curvature was not restored, because the mesh is {reading.survey.verdict}."
         return replace(reading, remarks=(*reading.remarks, remark)) if reading.counts_restored else reading
-    body = restored(gathered(open_stl(path), reading.survey.triangles), reading.survey)
+    body = restored(gathered(source, reading.survey.triangles), reading.survey)
     return replace(reading, restored=None if body is None else body.moments)

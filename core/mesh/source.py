@@ -58,15 +58,15 @@ class ArraySource:
     Args:
         triangles: (n, 3, 3) corners; float32 is kept, anything else becomes float64.
         name: what messages call it.
+        kind: of file that they were read from.
 
     Raises:
         ValueRefused: another shape, or no triangle.
     """
 
-    format = "triangles"
-
-    def __init__(self, triangles: ArrayLike, name: str = "mesh") -> None:
+    def __init__(self, triangles: ArrayLike, name: str = "mesh", kind: str = "triangles") -> None:
         self.name = name
+        self.format = kind
         self._triangles = triangles_of(triangles, name)
 
     @property

@@ -139,3 +139,28 @@ def test_bodies_that_overlap_in_one_file_fail_the_check_of_what_is_counted_twice
     failed = [check for check in reading.checks if not check.ok]
     assert [check.name for check in failed] == ["counted twice"]
     assert "0.25 of the volume is counted twice" in failed[0].text  # 12,000 of 48,000 mm³
+
+
+def obj_text(triangles: np.ndarray) -> str:
+    points = "\n".join(f"v {x} {y} {z}" for x, y, z in triangles.reshape(-1, 3))
+    return points + "\n" + "\n".join(f"f {at} {at + 1} {at + 2}" for at in range(1, 3 * len(triangles), 3))
+
+
+def test_other_formats_than_stl_are_weighed_as_well(tmp_path: Path) -> None:
+    path = tmp_path / "brick.obj"
+    path.write_text(obj_text(box(40, 30, 20)))
+    reading = read_mesh(path, MeshRequest(UNITS["cm"], weighing=ByDensity(2000.0)))
+    assert (reading.survey.format, reading.survey.verdict) == ("OBJ", "closed")
+    assert float(reading.body.mass) == pytest.approx(2000 * 0.4 * 0.3 * 0.2, rel=1e-7)
+
+
+def test_a_unit_that_the_file_names_itself_needs_no_guess(tmp_path: Path) -> None:
+    import trimesh
+
+    path = tmp_path / "brick.glb"
+    path.write_bytes(trimesh.creation.box((0.4, 0.3, 0.2)).export(file_type="glb"))
+    guessed = read_mesh(path, MeshRequest(UNITS["mm"], unit_assumed=True))
+    assert (guessed.unit, guessed.unit_assumed) == (UNITS["m"], False)
+    assert guessed.volume == pytest.approx(0.024, rel=1e-6)
+    told = read_mesh(path, MeshRequest(UNITS["in"]))
+    assert told.unit == UNITS["in"]
