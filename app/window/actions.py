@@ -83,7 +83,7 @@ class Actions:
         return menu
 
     def _shapes_menu(self) -> QMenu:
-        menu = QMenu("Add shape", self._window)
+        menu = QMenu("Add shape of usual size", self._window)
         for key, shape in SHAPES.items():
             menu.addAction(self._action(Command(shape.title, lambda key=key: self._window.add_shape(key))))  # type: ignore[misc]  # bound now
         return menu
@@ -104,7 +104,8 @@ class Actions:
             self._delete_action(),
         ])
         self._fill(bar.addMenu("&Part"), [
-            self.shapes, Command("Add mesh…", w.files.ask_meshes, "Ctrl+M"),
+            Command("Add shape…", w.open_gallery, "Ctrl+B", tip="Opens the gallery of shapes."), self.shapes,
+            Command("Add mesh…", w.files.ask_meshes, "Ctrl+M"),
             Command("Add known part…", w.ask_known_part, "Ctrl+K"), None,
             Command("Add group", w.add_group, "Ctrl+G", tip="Puts the selected lines into a new group."),
             Command("Move up", lambda: w.move_line(-1), "Alt+Up"),
@@ -161,8 +162,8 @@ class Actions:
         shape.setText("Add shape")
         shape.setIcon(icon("shape"))
         shape.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextBesideIcon)
-        shape.setMenu(self.shapes)
-        shape.setPopupMode(QToolButton.ToolButtonPopupMode.InstantPopup)
+        shape.setToolTip("Opens the gallery of shapes (Ctrl+B)")
+        shape.clicked.connect(w.open_gallery)
         shape.setFocusPolicy(Qt.FocusPolicy.TabFocus)
         self.shape_button = shape
         bar.addWidget(shape)

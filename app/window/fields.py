@@ -40,9 +40,11 @@ class QuantityField(QWidget):
     Signals:
         entered: (SI value, text as typed) when a readable text that says something else was finished. A receiver
             that cannot take it calls `turn_down`.
+        typing: the SI value that the text means while it is being typed; None while it means nothing.
     """
 
     entered = Signal(float, str)
+    typing = Signal(object)
 
     def __init__(
         self, session: Session, label: str, kind: Kind, unit: Unit | None = None, width: int = FIELD_WIDTH
@@ -155,7 +157,9 @@ class QuantityField(QWidget):
             understood = parse(text, self._kind, self.unit)
         except MasswrightError:
             self.understood.setText("")
+            self.typing.emit(None)
             return
+        self.typing.emit(understood.value)
         plain = f"{text.strip()} {self.unit.symbol}".strip()
         self.understood.setText("" if understood.shown == plain else f"= {understood.shown}")
 

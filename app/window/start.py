@@ -7,7 +7,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QEvent, QSize, Qt
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QMenu, QPushButton, QToolButton, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QPushButton, QToolButton, QVBoxLayout, QWidget
 
 import app
 from app.window.style import GRID, Words, heading_font, icon
@@ -21,7 +21,9 @@ SAMPLE = Path(app.__file__).resolve().parents[1] / "sample_parts" / "indexing_di
 class StartPanel(QWidget):
     """Three big ways in."""
 
-    def __init__(self, shapes: QMenu, add_mesh: Callable[[], None], open_sample: Callable[[], None]) -> None:
+    def __init__(
+        self, add_shape: Callable[[], None], add_mesh: Callable[[], None], open_sample: Callable[[], None]
+    ) -> None:
         super().__init__()
         self.setObjectName("start")
         self.setAttribute(Qt.WidgetAttribute.WA_StyledBackground, True)
@@ -29,8 +31,7 @@ class StartPanel(QWidget):
         head.setFont(heading_font(head))
         words = Words("Put the parts into the ledger, one line each; the totals follow as you type.", "quiet")
         self.shape = _way("shape", "Add a shape", "from dimensions on a sketch")
-        self.shape.setMenu(shapes)
-        self.shape.setPopupMode(QToolButton.ToolButtonPopupMode.InstantPopup)
+        self.shape.clicked.connect(add_shape)
         self.mesh = _way("mesh", "Drop a mesh here", "or choose an STL file")
         self.mesh.clicked.connect(add_mesh)
         self.sample = _way("masswright", "Open the sample", "an indexing dial")

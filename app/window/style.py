@@ -133,6 +133,11 @@ def _sheet(c: Colours) -> str:
     QMenu::separator {{ height: 1px; background: {c.hairline}; margin: 4px 8px; }}
     QWidget#page, QWidget#page QScrollArea, QWidget#start {{ background: {c.ground}; }}
     QTreeView#foot {{ border-top: 1px solid {c.hairline}; background: {c.raised}; }}
+    QListView#pictures {{ background: {c.ground}; outline: 0; }}
+    QListView#pictures::item {{ border: 1px solid transparent; border-radius: 3px; color: {c.text}; }}
+    QListView#pictures::item:hover {{ border-color: {c.hairline}; }}
+    QListView#pictures::item:selected {{ background: {c.selection}; border-color: {c.blue}; }}
+    QListView#pictures::item:disabled {{ border: 0; color: {c.text}; }}
     QToolButton#way {{ border-color: {c.hairline}; }}
     QToolButton#way:hover, QToolButton#way:focus {{ border-color: {c.blue}; }}
     QLabel#refusal {{ background: {c.ground}; border: 1px solid {c.failed}; padding: 2px 6px; }}

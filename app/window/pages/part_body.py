@@ -5,44 +5,115 @@ from __future__ import annotations
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
-from app.window.fields import Form, QuantityField, TextField, TripleField
+from PySide6.QtCore import Qt
+from PySide6.QtWidgets import QHBoxLayout, QWidget
+
+from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField
+from app.window.gallery.families import size_named_for
+from app.window.gallery.picture import ShapePicture
 from app.window.pages.section import NumberChange, Section, typed_for, with_component
 from core.assembly import KnownAxial, KnownTensor, Node, Part, ShapeBody
-from core.errors import EditRefused
+from core.errors import EditRefused, MasswrightError
 from core.quantity import UNITS, Kind
+from core.shapes.sections import section_sizes
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from app.window.session import Session
     from core.shapes import Dimension, Shape
 
+OWN_SIZE = "own dimensions"
 TENSOR_LABELS = ("Ixx", "Iyy", "Izz", "Ixy", "Ixz", "Iyz")
 TENSOR_TIP = "Tensor elements: Ixy = −∫xy dm. Where the data sheet prints +∫xy dm, change the sign of the products."
 
 
 class ShapeSection(Section):
-    """The dimensions of a shape."""
+    """The dimensions of a shape, beside a picture that shows where each is measured.
+
+    Attributes:
+        tried: told of the shape that a text being typed would make, or of None and the sentence that refuses it.
+    """
 
     def __init__(self, session: Session, form: Form, part: Part) -> None:
         super().__init__(session, form, part.key)
         shape = _shape(part)
         form.heading(f"Dimensions of the {shape.title}")
+        self.tried: Callable[[Shape | None, str], None] = lambda _shape, _refusal: None
+        self._shown = shape
         self._fields: dict[str, QuantityField] = {}
+        self._picture = ShapePicture()
+        rows = Form()
+        self._size = self._size_field(rows, shape)
         for dimension in shape.dimensions:
-            unit = UNITS["°"] if dimension.kind == "angle" else None
-            field = QuantityField(session, dimension.label, _kind(dimension), unit)
-            form.add(f"{dimension.label} {dimension.symbol}".rstrip(), field)
-            self.bind(field, dimension.label, f"dimension.{dimension.name}", _resized(dimension.name))
-            self._fields[dimension.name] = field
+            self._add(rows, dimension)
+        beside = QWidget()
+        layout = QHBoxLayout(beside)
+        layout.setContentsMargins(0, 0, 0, 0)
+        layout.addWidget(rows, 3, Qt.AlignmentFlag.AlignTop)
+        layout.addWidget(self._picture, 2, Qt.AlignmentFlag.AlignTop)
+        form.add_row(beside)
+        if shape.note:
+            form.say(shape.note)
+
+    def _add(self, rows: Form, dimension: Dimension) -> None:
+        unit = UNITS["°"] if dimension.kind == "angle" else None
+        field = QuantityField(self.session, dimension.label, _kind(dimension), unit)
+        rows.add(f"{dimension.label} {dimension.symbol}".rstrip(), field)
+        self.bind(field, dimension.label, f"dimension.{dimension.name}", _resized(dimension.name))
+        field.typing.connect(lambda value: self._try(dimension.name, value))
+        self._picture.watch(field.line, dimension.name)
+        self._fields[dimension.name] = field
+
+    def _size_field(self, rows: Form, shape: Shape) -> ChoiceField | None:
+        sizes = [size for size in section_sizes().values() if size.shape == shape.key]
+        if not sizes:
+            return None
+        field = ChoiceField("Standard size", [(OWN_SIZE, ""), *((size.name, size.name) for size in sizes)])
+        for at, size in enumerate(sizes, start=1):
+            field.setItemData(at, size.source, Qt.ItemDataRole.ToolTipRole)
+        field.setSizeAdjustPolicy(ChoiceField.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
+        field.setMinimumContentsLength(14)
+        field.chosen.connect(self._choose_size)
+        rows.add("standard size", field)
+        return field
 
     def show(self, node: Node) -> None:
         """Show the dimensions."""
-        values = _shape(node).values()
+        self._shown = _shape(node)
+        values = self._shown.values()
         for name, field in self._fields.items():
             field.set_value(values[name], typed_for(node, f"dimension.{name}"))
+        if self._size is not None:
+            self._size.set_value(size_named_for(self._shown))
+        self._picture.show_shape(self._shown)
 
     def first_field(self) -> QuantityField:
-        """Return the field in which a new shape is made to measure first."""
-        return next(iter(self._fields.values()))
+        """Return the field in which a new shape is made to measure first: of a standard size its length."""
+        fields = list(self._fields.values())
+        return fields[-1] if self._size is not None and size_named_for(self._shown) else fields[0]
+
+    def _try(self, name: str, value: float | None) -> None:
+        if value is None:
+            return
+        try:
+            shape = self._shown.resized({name: value})
+        except MasswrightError as error:
+            self.tried(None, str(error))
+            return
+        self._picture.show_shape(shape)
+        self.tried(shape, "")
+
+    def _choose_size(self, name: object) -> None:
+        size = section_sizes().get(str(name))
+        if size is None:
+            return
+
+        def change(node: Node) -> Node:
+            resized = ShapeBody(_shape(node).resized(size.dimensions))
+            return replace(node, body=resized) if isinstance(node, Part) else node
+
+        self.edit(f"Size of {self.session.assembly.node(self.key).name}: {size.name}", change)
 
 
 def _shape(node: Node) -> Shape:

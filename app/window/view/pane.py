@@ -159,7 +159,7 @@ class ViewPane(QWidget):
             return
         was_empty = not self.scene.everybody
         self._picture = replace(self._picture, scene=scene_of(self._assembly, self.store, part, self.scene))
-        self._fit_due |= was_empty
+        self._fit_due |= was_empty or self._stays_fitted
         self._redraw(moving=False)
 
     def light_up(self, edges: FloatArray) -> None:
