@@ -15,10 +15,11 @@ import numpy as np
 from core.assembly.bodies import MeshBody, ShapeBody
 from core.errors import EditRefused
 from core.facets import Facets
+from core.mesh.mend import close_flat, weld_cracks
 from core.mesh.solids import facets_of_solid, solid_of, united
 from core.mesh.source import ArraySource
 from core.mesh.summing import sum_up
-from core.mesh.survey import INSIDE_OUT
+from core.mesh.survey import CRACKED, INSIDE_OUT, OPEN
 from core.mesh.weld import weld_exactly
 from core.moments import Moments
 
@@ -113,7 +114,7 @@ def _cut(
     for at, cut in enumerate(cuts):
         before = [cuts[other] for other in np.flatnonzero(meeting[at, :at])]
         inside = cut ^ solid
-        moments = _moments(inside - united(before) if before else inside, middle)
+        moments = moments_of_solid(inside - united(before) if before else inside, middle)
         volume, held, taken = cut.volume(), inside.volume(), float(moments.mass)
         whole = volume - taken <= INSIDE * volume
         pieces.append(Piece(moments, whole, max(volume - held, 0.0), max(held - taken, 0.0)))
@@ -132,14 +133,20 @@ def _solid_of_body(body: ShapeBody | MeshBody, middle: FloatArray, steps: int, w
         solid = kept["solid"]
     if solid is None:
         raise EditRefused(
-            "the surface is not closed edge to edge, so nothing can be taken out of it", where=where,
+            "the surface does not close edge to edge, so nothing can be taken out of it", where=where,
             remedy="Mend the mesh, or leave the cuts out",
         )
     return solid
 
 
 def _solid_of_mesh(body: MeshBody, middle: FloatArray) -> Any | None:
-    points, corners = weld_exactly(np.ascontiguousarray(body.asset.triangles))
+    """Return the body that is weighed: hairline cracks welded, holes closed flat, turned right side out."""
+    triangles = np.ascontiguousarray(body.asset.triangles)
+    close = {CRACKED: weld_cracks, OPEN: close_flat}.get(body.asset.survey.verdict)
+    try:
+        points, corners = weld_exactly(triangles if close is None else close(triangles))
+    except EditRefused:
+        return None  # refused below in words about the cut
     turned = corners[:, ::-1] if body.asset.survey.verdict == INSIDE_OUT else corners
     return solid_of(points.astype(np.float64) * body.metres_per_unit, turned, middle)
 
@@ -159,7 +166,7 @@ def _placed(facets: Facets, standing: Placement, middle: FloatArray) -> Any | No
     return solid_of(standing.apply(facets.points), corners, middle)
 
 
-def _moments(solid: Any, middle: FloatArray) -> Moments:
+def moments_of_solid(solid: Any, middle: FloatArray) -> Moments:
     """Return the moments of a solid at unit density, moved by middle (3,) m; those of nothing where it is empty."""
     triangles = facets_of_solid(solid)
     if not len(triangles):

@@ -11,7 +11,7 @@ from hypothesis import strategies as st
 from oracles import assert_same_body, directed_edges_cancel, moments_of_facets
 from strategies import ANGLES, LENGTHS, placements, poses
 
-from core.assembly import Cut, KnownAxial, MeshBody, Part, ShapeBody
+from core.assembly import Cut, KnownAxial, MeshBody, Part, ShapeBody, solid_cuts
 from core.assembly.nodes import DataSheet
 from core.errors import Cancelled, EditRefused, ShapeError
 from core.material import ByDensity, NotSet, PerArea, Weighed
@@ -405,12 +405,48 @@ def replace_corners(facets):
     return type(facets)(facets.points, facets.corners[:, ::-1])
 
 
-def test_an_open_mesh_is_not_cut():
+def test_a_mesh_with_hairline_cracks_or_a_hole_is_cut_as_it_is_weighed():
     facets = Box(0.1, 0.06, 0.02).facets()
-    body = mesh_of(type(facets)(facets.points, facets.corners[:-1]))
-    subject = Part("m", "open", body, ByDensity(DENSITY), cuts=(bore(0.02, 0.05),))
-    with pytest.raises(EditRefused, match=r"open: the surface is not closed edge to edge.* Mend the mesh"):
+    expected = 0.1 * 0.06 * 0.02 - np.pi * 0.01**2 * 0.02
+    cracked = facets.triangles.copy()
+    cracked[0, 0] += 2e-8
+    cracked = MeshBody(MeshAsset.of_bytes(stl_of_triangles(cracked * 1e3, "c.stl"), "c.stl"), 1e-3)
+    holed = mesh_of(type(facets)(facets.points, facets.corners[:-1]))
+    for body, verdict in ((cracked, "hairline cracks"), (holed, "open")):
+        assert body.asset.survey.verdict == verdict
+        subject = Part("m", "mesh", body, ByDensity(DENSITY), cuts=(bore(0.02, 0.05, (0.01, 0.0, -0.01)),))
+        assert float(subject.solid.mass) == pytest.approx(expected, rel=1e-5)
+
+
+def test_a_mesh_that_bounds_no_volume_is_not_cut():
+    facets = Box(0.1, 0.06, 0.02).facets()
+    mixed = facets.triangles.copy()
+    mixed[:2] = mixed[:2, ::-1]
+    body = MeshBody(MeshAsset.of_bytes(stl_of_triangles(mixed * 1e3, "m.stl"), "m.stl"), 1e-3)
+    subject = Part("m", "mixed", body, ByDensity(DENSITY), cuts=(bore(0.02, 0.05, (0, 0, -0.01)),))
+    assert subject.solid is None
+    assert subject.cutting is None
+    assert subject.surface.corners.shape[1] == 3
+
+
+def test_a_mesh_whose_edges_belong_to_four_facets_is_cut():
+    block = Box(0.1, 0.06, 0.02).facets()
+    touching = np.concatenate([block.triangles, block.triangles + np.array([0.1, 0.06, 0.0])]) * 1e3
+    body = MeshBody(MeshAsset.of_bytes(stl_of_triangles(touching, "t.stl"), "t.stl"), 1e-3)
+    subject = Part("m", "two", body, ByDensity(DENSITY), cuts=(bore(0.02, 0.05, (0, 0, -0.01)),))
+    assert float(subject.solid.mass) == pytest.approx(0.02 * (2 * 0.1 * 0.06 - np.pi * 0.01**2), rel=1e-6)
+
+
+def test_a_surface_that_the_solids_refuse_is_refused_in_a_whole_sentence(monkeypatch):
+    monkeypatch.setattr(solid_cuts, "solid_of", lambda *_: None)
+    subject = Part("m", "two", mesh_of(Box(0.1, 0.06, 0.02).facets()), ByDensity(DENSITY), cuts=(bore(0.02, 0.05),))
+    with pytest.raises(EditRefused) as refusal:
         _ = subject.solid
+    assert str(refusal.value) == (
+        "two: the surface does not close edge to edge, so nothing can be taken out of it. "
+        "Mend the mesh, or leave the cuts out."
+    )
+    np.testing.assert_array_equal(subject.surface.points, subject.body.surface.points)
 
 
 def test_both_values_of_a_mesh_lose_the_same_cut():
