@@ -37,6 +37,35 @@ class DriveAxis:
 
 
 @dataclass(frozen=True)
+class MeantOverlap:
+    """A mark that two parts penetrate each other on purpose, as a press fit or a thread drawn as two cylinders.
+
+    It is a mark only: the totals count the common volume twice as before, and the overlap is listed with it.
+
+    Attributes:
+        key_a, key_b: of the parts, in any order; twice the same for copies of one part.
+        carried_by: key of the part that the common volume belongs to in truth; "" where nobody said.
+        note: free text.
+    """
+
+    key_a: str
+    key_b: str
+    carried_by: str = ""
+    note: str = ""
+
+    def __post_init__(self) -> None:
+        if self.carried_by and self.carried_by not in {self.key_a, self.key_b}:
+            raise EditRefused(
+                "a common volume is carried by one of the two parts", read=self.carried_by,
+                remedy="Choose one of them, or none",
+            )
+
+    def is_about(self, one: str, other: str) -> bool:
+        """Return whether the parts with these keys are the two."""
+        return {self.key_a, self.key_b} == {one, other}
+
+
+@dataclass(frozen=True)
 class Assembly:
     """Everything a document says.
 
@@ -45,6 +74,7 @@ class Assembly:
         members: the outermost parts and groups, in the order of the ledger.
         axes: at least one, names all different.
         drive: the name of the one that is driven.
+        meant: marks of overlaps that are as they should be.
 
     Every edit returns a new assembly that shares all it can with the old one; keys are unique.
     """
@@ -53,6 +83,7 @@ class Assembly:
     members: tuple[Node, ...] = ()
     axes: tuple[DriveAxis, ...] = (DriveAxis(),)
     drive: str = "Spindle"
+    meant: tuple[MeantOverlap, ...] = ()
 
     def __post_init__(self) -> None:
         names = [axis.name for axis in self.axes]
@@ -137,6 +168,24 @@ class Assembly:
     def __contains__(self, key: object) -> bool:
         """Return whether a line has this key: a part, a group or a cut."""
         return key in self._paths or key in self._cut_homes
+
+    def meant_overlap(self, one: str, other: str) -> MeantOverlap | None:
+        """Return the mark that these two parts overlap on purpose, or None."""
+        return next((mark for mark in self.meant if mark.is_about(one, other)), None)
+
+    def with_meant(self, mark: MeantOverlap) -> Assembly:
+        """Return the assembly with this mark, in the place of any other on the same two parts.
+
+        Raises:
+            EditRefused: one of the two is no part of it.
+        """
+        for key in (mark.key_a, mark.key_b):
+            self.node(key)
+        return replace(self, meant=(*self.without_meant(mark.key_a, mark.key_b).meant, mark))
+
+    def without_meant(self, one: str, other: str) -> Assembly:
+        """Return the assembly without the mark that these two parts overlap on purpose."""
+        return replace(self, meant=tuple(mark for mark in self.meant if not mark.is_about(one, other)))
 
     def node(self, key: str) -> Node:
         """Return the part or group with this key.
@@ -232,7 +281,9 @@ class Assembly:
                 left = replace(left, members=_rebuilt(left.members, left._path(home), instead))
             elif not self.is_cut(key):
                 self._path(key)  # refused, unless it went with a group that held it
-        return left
+        # A key may be given again, and its new bearer is not meant.
+        kept = tuple(mark for mark in left.meant if mark.key_a in left and mark.key_b in left)
+        return left if kept == left.meant else replace(left, meant=kept)
 
     def replaced_cut(self, cut: Cut) -> Assembly:
         """Return the assembly with the cut of the same key replaced by this one."""
@@ -267,7 +318,7 @@ class Assembly:
         node = self.node(key)
         if group is not None and (group == key or key in {above.key for above in self.groups_above(group)}):
             raise EditRefused("a group cannot be put into itself", where=node.name)
-        return self.removed((key,)).inserted(node, group, index)
+        return replace(self.removed((key,)).inserted(node, group, index), meant=self.meant)
 
     def _path(self, key: str) -> tuple[int, ...]:
         if key in self._cut_homes:

@@ -22,7 +22,7 @@ from core.assembly import (
     Part,
     ShapeBody,
 )
-from core.assembly.assembly import DEEPEST
+from core.assembly.assembly import DEEPEST, MeantOverlap
 from core.document.archive import Archive
 from core.document.layout import data_of
 from core.document.migration import MAJOR, MINOR, Data, migrated
@@ -43,6 +43,7 @@ if TYPE_CHECKING:
         CutEntry,
         DocumentEntry,
         DriverEntry,
+        MeantOverlapEntry,
         MeshEntry,
         NodeEntry,
         PoseEntry,
@@ -124,7 +125,8 @@ class _Builder:
         """Return the assembly that the checked entries describe."""
         axes = tuple(_axis(entry, f"axes[{i}] ({entry.name})") for i, entry in enumerate(document.axes))
         members = self._nodes(document.members, "", 0)
-        return _made("", lambda: Assembly(document.name, members, axes, document.drive))
+        meant = tuple(_meant(entry, f"meant[{i}]") for i, entry in enumerate(document.meant))
+        return _made("", lambda: Assembly(document.name, members, axes, document.drive, meant))
 
     def _nodes(self, entries: Sequence[NodeEntry], above: str, depth: int) -> tuple[Node, ...]:
         if depth >= DEEPEST:
@@ -190,6 +192,10 @@ class _Builder:
                 raise DocumentError("this mesh in the archive is packed twice", where=entry.name, remedy=_REMEDY)
             self._assets[same] = replace(asset, mends=tuple(entry.mends), source=entry.source)
         return self._assets[same]
+
+
+def _meant(entry: MeantOverlapEntry, place: str) -> MeantOverlap:
+    return _made(place, lambda: MeantOverlap(entry.key_a, entry.key_b, entry.carried_by, entry.note))
 
 
 def _made(place: str, make: Callable[[], Built]) -> Built:

@@ -245,6 +245,15 @@ class AxisEntry(_Entry):
     direction: Three
 
 
+class MeantOverlapEntry(_Entry):
+    """A mark that two parts penetrate each other on purpose."""
+
+    key_a: Name
+    key_b: Name
+    carried_by: Name
+    note: Text
+
+
 class VersionEntry(_Entry):
     """Of the schema: a new minor version only adds entries, a new major version changes what entries mean."""
 
@@ -260,6 +269,7 @@ class DocumentEntry(_Entry):
     drive: Name
     axes: Annotated[list[AxisEntry], Field(min_length=1, max_length=MOST_ENTRIES)]
     members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
+    meant: Annotated[list[MeantOverlapEntry], Field(max_length=MOST_NODES)] = []
 
 
 GroupEntry.model_rebuild()

@@ -27,7 +27,12 @@ from core.shapes import OutlinedShape, Shape
 
 def data_of_assembly(assembly: Assembly) -> Data:
     """Return everything that the assembly says, as the schema has it; meshes by their SHA-256."""
+    meant = [
+        {"key_a": mark.key_a, "key_b": mark.key_b, "carried_by": mark.carried_by, "note": mark.note}
+        for mark in assembly.meant
+    ]
     return {
+        **({"meant": meant} if meant else {}),
         "version": {"major": MAJOR, "minor": MINOR},
         "name": assembly.name,
         "drive": assembly.drive,
