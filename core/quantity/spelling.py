@@ -121,6 +121,11 @@ def meaning_of(name: str) -> Meaning | None:
     return _BY_SPELLING.get(name) or _from_pint(name)
 
 
+def is_unit_spelling(name: str) -> bool:
+    """Return whether people write a unit like this: one in the list above, or one with two meanings."""
+    return name in _BY_SPELLING or name in RUN_TOGETHER or name in TWO_MEANINGS
+
+
 def nearest(name: str) -> str:
     """Return the known spelling that looks most like name, or nothing."""
     import difflib  # only for an error

@@ -5,9 +5,12 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass
 from fractions import Fraction
-from typing import Final
+from typing import TYPE_CHECKING, Final
 
 from core.errors import QuantityError
+
+if TYPE_CHECKING:
+    from collections.abc import Collection
 
 LONGEST_TEXT: Final = 200
 # Of a power of ten: beyond the range of a double, and still quick to hold exactly.
@@ -27,17 +30,22 @@ _TOKEN: Final = re.compile(
     | (?P<number>(?:[0-9][0-9.,]*|[.,][0-9][0-9.,]*)(?:{_TEN})?)
     | (?P<name>[A-Za-zµμₙ_]+|[°"'′″%])
     | (?P<exponent>(?:\^|\*\*)\s*[-−]?[0-9]+|⁻?[{_DIGITS}]+)
-    | (?P<sign>[-+−*/·⋅×()])
+    | (?P<sign>[-+−*/·⋅×();])
     """,
     re.VERBOSE,
 )
+# A letter, and then letters, digits and "_"; a raised digit is an exponent and no part of it.
+IDENTIFIER: Final = re.compile(rf"[^\W\d{_DIGITS}][^\W{_DIGITS}]*")
 _SIGNS: Final = str.maketrans("−·⋅×", "-***")
 _DIAMETER_SIGNS: Final = "⌀Øø∅"
 
 
 @dataclass(frozen=True)
 class Token:
-    """A piece of typed text and where it lies; `what` is "number", "name", "exponent", "sign" or "end"."""
+    """A piece of typed text and where it lies; `what` is "number", "name", "reference", "exponent", "sign" or "end".
+
+    A reference is the name of a value that is known beside the text; any other name may be a unit.
+    """
 
     what: str
     text: str
@@ -58,8 +66,8 @@ def refusal(what: str, text: str, *, where: str, remedy: str) -> QuantityError:
     return QuantityError(what, where=where, read=quoted(text), remedy=remedy)
 
 
-def tokens_of(text: str, *, where: str = "") -> tuple[Token, ...]:
-    """Cut text into tokens, without blanks, with one "end" token behind them.
+def tokens_of(text: str, *, where: str = "", names: Collection[str] = ()) -> tuple[Token, ...]:
+    """Cut text into tokens, without blanks, with one "end" token behind them; names become references.
 
     Raises:
         QuantityError: the text is empty, too long, holds a sign that means nothing here, or a number with
@@ -74,6 +82,11 @@ def tokens_of(text: str, *, where: str = "") -> tuple[Token, ...]:
     found: list[Token] = []
     place = 0
     while place < len(text):
+        named = IDENTIFIER.match(text, place)
+        if named is not None and named.group() in names:
+            place = named.end()
+            found.append(Token("reference", named.group(), named.start(), place))
+            continue
         match = _TOKEN.match(text, place)
         if match is None:
             raise _strange_sign(text, text[place], where)

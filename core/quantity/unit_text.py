@@ -74,6 +74,11 @@ def unit_named(text: str, kind: Kind, *, where: str = "") -> Unit:
     return Unit(read.symbol, kind, read.ratio, FLYWHEEL if read.relation else PLAIN)
 
 
+def is_effect(name: str) -> bool:
+    """Return whether a name, with its square or without, is that of a flywheel effect."""
+    return name.removesuffix("2") in _EFFECTS
+
+
 def read_unit(tokens: tuple[Token, ...], start: int, text: str, *, where: str) -> ReadUnit:
     """Read the unit that begins at token start.
 
@@ -106,9 +111,17 @@ def read_unit(tokens: tuple[Token, ...], start: int, text: str, *, where: str) -
 
 
 def check_dimension(
-    dimension: Dimension, kind: Kind, text: str, *, where: str, read: ReadUnit | None = None
+    dimension: Dimension, kind: Kind, text: str, *, where: str, read: ReadUnit | None = None, named: str = ""
 ) -> None:
     """Refuse a dimension that is not that of kind, and name what a loose spelling may have meant.
+
+    Args:
+        dimension: what was read.
+        kind: what is wanted.
+        text: what was typed.
+        where: the field, for the error's sentence.
+        read: the one unit in the text, where it is only one.
+        named: the one named value in the text, where it says the dimension.
 
     Raises:
         QuantityError: it is another dimension.
@@ -120,7 +133,7 @@ def check_dimension(
         loose = _loose_spelling(read, kind, text, where)
         if loose is not None:
             raise loose
-    symbol = f'"{read.symbol}"' if read is not None else "this"
+    symbol = f'"{read.symbol}"' if read is not None else f'"{named}"' if named else "this"
     what = f"{symbol} measures {_with_article(found)}" if found else f"{symbol} is another kind of quantity"
     examples = " or ".join(f'"{offered.symbol}"' for offered in UNITS_BY_KIND[kind][:2] if offered.symbol)
     remedy = f"Use a unit such as {examples}" if kind is not Kind.NUMBER else "Leave the unit out"
