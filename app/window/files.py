@@ -10,7 +10,9 @@ from PySide6.QtCore import QObject, Qt, Signal
 from PySide6.QtWidgets import QFileDialog, QMenu, QMessageBox
 
 from app.window import autosave
+from app.window.session import judged_document
 from app.window.start import SAMPLE
+from app.window.tasks import Task
 from core.mesh.formats import FORMATS
 
 if TYPE_CHECKING:
@@ -21,9 +23,12 @@ if TYPE_CHECKING:
     from app.window.session import Session
     from app.window.settings import Settings
     from app.window.start import Notice
+    from core.assembly import Assembly
 
 DOCUMENT = ".masswright"
 DOCUMENTS = f"Masswright documents (*{DOCUMENT})"
+# A larger document takes long enough to be felt.
+OPENED_AT_ONCE = 500_000
 MESHES = f"Meshes ({' '.join(f'*.{suffix} *.{suffix.upper()}' for suffix in FORMATS)} *.stl.gz)"
 
 
@@ -84,9 +89,27 @@ class Files(QObject):
             self.opened.emit()
 
     def _open(self, path: Path) -> None:
-        if self._session.open(path):
+        if path.is_file() and path.stat().st_size > OPENED_AT_ONCE:
+            self._open_off_thread(path)
+        elif self._session.open(path):
             self._settings.add_recent(path)
             self.opened.emit()
+
+    def _open_off_thread(self, path: Path) -> None:
+        """Read a large document in a worker; the one that is open stays until that is done."""
+
+        def take(assembly: Assembly) -> None:
+            self._session.take(assembly, path)
+            self._settings.add_recent(path)
+            self.opened.emit()
+
+        def done(assembly: Assembly) -> None:
+            self._notice.hide()
+            # Whatever was typed since the question about unsaved work is asked about once more.
+            self.when_safe(lambda: take(assembly))
+
+        task = Task(self, lambda _progress: judged_document(path), done, self._session.refused.emit)
+        self._notice.say(f"Opening {path.name} …", {"Leave it": task.leave})
 
     def fill_recent(self, menu: QMenu) -> None:
         """Put the documents used last into a menu."""

@@ -132,8 +132,7 @@ class Session(QObject):
     def open(self, path: Path) -> bool:
         """Open a document; return whether it could be read. What was open stays where it could not."""
         try:
-            assembly = read_document(path)
-            ledger_of(assembly)
+            assembly = judged_document(path)
         except MasswrightError as error:
             self.refused.emit(str(error))
             return False
@@ -188,3 +187,15 @@ class Session(QObject):
         self.changed.emit()
         if moved:
             self.selection_changed.emit()
+
+
+def judged_document(path: Path) -> Assembly:
+    """Return the assembly in a document, added up and checked; what that found is kept with its parts.
+
+    Raises:
+        MasswrightError: it cannot be read, or not be added up.
+    """
+    assembly = read_document(path)
+    ledger_of(assembly)
+    findings_of(assembly)
+    return assembly

@@ -49,6 +49,12 @@ class Task(QObject, Generic[Result]):
         self._timer.stop()
         self._pool.shutdown(wait=True, cancel_futures=True)
 
+    def leave(self) -> None:
+        """Let the work end by itself, wait for nothing, and tell nobody."""
+        self.progress.cancel()
+        self._timer.stop()
+        self._pool.shutdown(wait=False, cancel_futures=True)
+
     def _poll(self) -> None:
         if not self._future.done():
             if self._moved is not None:

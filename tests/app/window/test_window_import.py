@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import pytest
 from PySide6.QtWidgets import QPushButton
-from window_driver import box_facets, dialog, enter, names, write_stl
+from window_driver import box_facets, dial, dialog, enter, names, write_stl
 
 from core.assembly import Group, MeshBody
+from core.document import save_document
 
 pytestmark = pytest.mark.gui
 MM, INCH = 1e-3, 0.0254
@@ -113,3 +114,25 @@ def test_a_part_whose_file_is_gone_is_left_alone(window, qtbot, tmp_path):
     qtbot.waitUntil(lambda: not window.changed_files.busy)
     assert not window.notice.isVisible()
     assert isinstance(only_part(window).body, MeshBody)
+
+
+def test_a_large_document_is_opened_off_the_windows_thread(window, qtbot, tmp_path, monkeypatch):
+    monkeypatch.setattr("app.window.files.OPENED_AT_ONCE", 100)
+    path = tmp_path / "dial.masswright"
+    save_document(dial(), path)
+    window.files.open_path(path)
+    assert names(window) == []
+    assert window.notice.words.text() == "Opening dial.masswright …"
+    qtbot.waitUntil(lambda: names(window) != [])
+    assert window.session.path == path
+    assert not window.session.unsaved
+    assert not window.notice.isVisible()
+
+
+def test_a_large_document_that_cannot_be_read_is_refused_in_one_sentence(window, qtbot, tmp_path, monkeypatch):
+    monkeypatch.setattr("app.window.files.OPENED_AT_ONCE", 100)
+    path = tmp_path / "broken.masswright"
+    path.write_bytes(b"x" * 1000)
+    window.files.open_path(path)
+    qtbot.waitUntil(lambda: "broken.masswright" in window.notice.words.text() and "Opening" not in window.notice.words.text())
+    assert names(window) == []
