@@ -25,7 +25,11 @@ if TYPE_CHECKING:
     from core.drive.motion import Duty, Kinematics, Timeline
 
 # Times that a peak is closed in on, and the points around it, in steps of the last time.
-_CLOSER, _AROUND = 4, np.linspace(-1.0, 1.0, 33)
+_CLOSER, _AROUND = 5, np.linspace(-1.0, 1.0, 17)
+
+# How far the points of a curve may lie below a peak between them, relative to the largest value: half a wave in
+# 9 points misses its top by 2 %. At most so many pieces are closed in on.
+_NEAR, _MOST_NEAR = 0.03, 100
 
 # Among peaks equal to this, relative, the first one is named.
 _TIE = 1e-12
@@ -190,23 +194,31 @@ class Study:
         )
 
     def _peak(self, curves: Curves, score: Callable[[Curves], FloatArray]) -> Peak:
-        """Return where a score is highest, closed in on between the points of the curves."""
-        values = score(curves)
-        best = int(np.argmax(values >= values.max() - _TIE * np.abs(values).max()))
-        found, top = _moment(curves, best), values[best]
-        piece, point = divmod(best, CURVE_POINTS)
-        start, end = self.pieces.start[piece], self.pieces.end[piece]
+        """Return where a score is highest, closed in on between the points of the curves.
+
+        A peak may lie between the points of a piece whose own points are not the highest, so all pieces that come
+        near are closed in on together.
+        """
+        values = score(curves).reshape(-1, CURVE_POINTS)
+        of_piece, size = values.max(axis=1), np.abs(values).max()
+        near = np.flatnonzero(of_piece >= of_piece.max() - _NEAR * size)
+        near = np.sort(near[np.argsort(-of_piece[near], kind="stable")[:_MOST_NEAR]])
+        pieces, point = self.pieces, values[near].argmax(axis=1)
+        start, end = pieces.start[near, None], pieces.end[near, None]
         step = (end - start) / (CURVE_POINTS - 1)
-        middle = start + point * step
+        middle = start + point[:, None] * step
+        found, top = _moment(curves, int(near[0] * CURVE_POINTS + point[0])), -math.inf
         for _ in range(_CLOSER):
+            # The ends are hit exactly, so that a peak at a jump is the height of the jump.
             local = np.clip(middle + step * _AROUND, start, end)
-            motion = self.timeline.within(np.full(len(local), self.pieces.zone[piece]), local)
-            near = self._seen_from(curves.shaft, motion, self.demand.terms(motion))
-            values = score(near)
-            best = int(values.argmax())
-            if values[best] > top + _TIE * abs(top):
-                found, top = _moment(near, best), values[best]
-            middle, step = local[best], step / (len(local) // 2)
+            motion = self.timeline.within(np.repeat(pieces.zone[near], len(_AROUND)), local.ravel())
+            closer = self._seen_from(curves.shaft, motion, self.demand.terms(motion))
+            values = score(closer).reshape(local.shape)
+            best = int(np.argmax(values >= values.max() - _TIE * size))
+            if values.flat[best] > top + _TIE * size:
+                found, top = _moment(closer, best), float(values.flat[best])
+            middle = np.take_along_axis(local, values.argmax(axis=1)[:, None], axis=1)
+            step = step / (len(_AROUND) // 2)
         return found
 
 
