@@ -145,10 +145,13 @@ class _Builder:
         driver = _made(f"{place}.driver {said}", lambda: _driver(entry.driver))
         body = _made(f"{place}.body {said}", lambda: self._body(entry.body))
         cuts = tuple(self._cut(cut, f"{place}.cuts[{i}] ({cut.name})") for i, cut in enumerate(entry.cuts))
-        return _made(
+        part = _made(
             f"{place} {said}",
             lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note, cuts),
         )
+        # What cannot be cut out is refused here, where its place in the file is known; the part keeps what it cost.
+        _ = _made(f"{place}.cuts", lambda: part.cutting)
+        return part
 
     def _cut(self, entry: CutEntry, place: str) -> Cut:
         typed = tuple((field, text) for field, text in entry.typed)

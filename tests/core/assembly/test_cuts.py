@@ -11,7 +11,7 @@ from hypothesis import strategies as st
 from oracles import assert_same_body, directed_edges_cancel, moments_of_facets
 from strategies import ANGLES, LENGTHS, placements, poses
 
-from core.assembly import Cut, KnownAxial, MeshBody, Part, ShapeBody, solid_cuts
+from core.assembly import Cut, KnownAxial, MeshBody, Part, ShapeBody, compare_mesh, solid_cuts
 from core.assembly.nodes import DataSheet
 from core.errors import Cancelled, EditRefused, ShapeError
 from core.material import ByDensity, NotSet, PerArea, Weighed
@@ -538,3 +538,14 @@ def test_a_mirrored_cut_is_its_mirror_image():
     first, image = (Moments(*(each[i] for each in (subject.cutting.removed[0].mass, subject.cutting.removed[0].centre,
                                                    subject.cutting.removed[0].spread))) for i in (0, 1))
     assert_same_body(image, Placement(np.diag([-1.0, 1.0, 1.0]), np.zeros(3)).place(first), rel=1e-12)
+
+
+def test_the_comparison_of_a_meshs_two_sets_of_values_is_of_what_its_cuts_leave():
+    body = mesh_of(Cylinder(0.1, 0.02).facets(48))
+    subject = Part("m", "mesh", body, ByDensity(DENSITY), cuts=(bore(0.05, 0.05, (0.0, 0.0, -0.01)),))
+    compared = compare_mesh(subject, np.array([0.0, 0.0, 1.0]))
+    removed = np.pi * 0.025**2 * 0.02
+    assert compared.volume.faceted == pytest.approx(float(body.faceted.mass) - removed, rel=1e-6)
+    assert compared.volume.restored == pytest.approx(np.pi * 0.05**2 * 0.02 - removed, rel=1e-4)
+    outer, inner = 0.05**4, 0.025**4
+    assert compared.inertia.restored == pytest.approx(DENSITY * np.pi / 2 * (outer - inner) * 0.02, rel=1e-4)
