@@ -1,9 +1,10 @@
 """Which facets join on to which over their edges, and the sheets that they form.
 
-The uses of an edge one way are paired with its uses the other way, in the order of the facets. A facet that occurs
-again comes after all that occur for the first time, so that a mesh that lies in the file twice falls into its two
-copies, and bodies that share an edge stay apart where their facets follow each other in the file. A sheet in which
-every edge is paired is closed.
+An edge with one use each way joins its two facets. What hangs together by such edges alone is a patch. On an edge with
+more uses those one way are paired with those the other way: first within a patch, so that bodies that share an edge or
+cut through each other's edges stay apart; then in the order of the facets, where one that occurs again comes after all
+that occur for the first time, so that a mesh that lies in the file twice falls into its two copies. A sheet in which
+every edge is paired is closed, however the pairs were chosen, and the sheets together add up to the mesh.
 """
 
 from __future__ import annotations
@@ -17,7 +18,7 @@ from core.mesh.grouping import group_equal, hang_together
 
 if TYPE_CHECKING:
     from core.arrays import BoolArray, IntArray
-    from core.mesh.grouping import Keys, Labels
+    from core.mesh.grouping import Groups, Keys, Labels
 
 _KEYS = tuple(np.uint64(key) for key in (0xD6E8FEB86659FD93, 0xA0761D6478BD642F, 0xE7037ED1A0B428DB))
 _FOLD = np.uint64(29)
@@ -70,7 +71,12 @@ def seams_of(corners: IntArray, copy: IntArray) -> Seams:
     if _all_simple(groups.first, upward):
         pairs = uses.reshape(-1, 2)
         return Seams(pairs, np.empty((0, 2), np.int64), np.empty(0, np.int64))
-    return _paired(uses, upward, groups.numbers)
+    simple = _simple(groups, upward)
+    joined = uses[simple].reshape(-1, 2)
+    patch = hang_together(len(corners), joined[:, 0] // 3, joined[:, 1] // 3)
+    rest = ~simple
+    more = _paired(uses[rest], upward[rest], groups.numbers[rest], patch)
+    return Seams(np.concatenate([joined, more.along]), more.against, more.open)
 
 
 def _all_simple(first: BoolArray, upward: BoolArray) -> bool:
@@ -80,20 +86,52 @@ def _all_simple(first: BoolArray, upward: BoolArray) -> bool:
     )
 
 
-def _paired(uses: IntArray, upward: BoolArray, edge: IntArray) -> Seams:
-    edges = int(edge[-1]) + 1
+def _simple(groups: Groups, upward: BoolArray) -> BoolArray:
+    """Return which places (n,) belong to edges with two uses, one each way."""
+    starts = groups.starts
+    two = starts[groups.sizes == 2]  # noqa: PLR2004  # one each way
+    two = two[upward[two] != upward[two + 1]]
+    simple = np.zeros(len(upward), dtype=bool)
+    simple[two] = simple[two + 1] = True
+    return simple
+
+
+def _paired(uses: IntArray, upward: BoolArray, edge: IntArray, patch: Labels) -> Seams:
+    """Pair uses (n,) of edges (n,) that have more than two, or both the same way."""
+    if len(uses) == 0:
+        return Seams(np.empty((0, 2), np.int64), np.empty((0, 2), np.int64), np.empty(0, np.int64))
+    edge = np.unique(edge, return_inverse=True)[1]
+    within = edge * (int(patch.max()) + 1) + patch[uses // 3]
     up, down = np.flatnonzero(upward), np.flatnonzero(~upward)
-    ups, downs = np.bincount(edge[up], minlength=edges), np.bincount(edge[down], minlength=edges)
-    both = np.minimum(ups, downs)
-    up_rank = np.arange(len(up)) - (np.cumsum(ups) - ups)[edge[up]]
-    down_rank = np.arange(len(down)) - (np.cumsum(downs) - downs)[edge[down]]
-    up_taken, down_taken = up_rank < both[edge[up]], down_rank < both[edge[down]]
-    along = np.stack([uses[up[up_taken]], uses[down[down_taken]]], axis=1)
-    left = np.sort(np.concatenate([up[~up_taken], down[~down_taken]]))
+    pairs = []
+    for group in (within, edge):
+        one, other = _matched(group[up], group[down])
+        pairs.append(np.stack([uses[up[one]], uses[down[other]]], axis=1))
+        up, down = np.delete(up, one), np.delete(down, other)
+    left = np.sort(np.concatenate([up, down]))
     # Of what is left on an edge all runs one way: two and two of it join, if there is an even number.
-    size = np.bincount(edge[left], minlength=edges)
-    even = size[edge[left]] % 2 == 0
-    return Seams(along, uses[left[even]].reshape(-1, 2), uses[left[~even]])
+    even = np.bincount(edge[left], minlength=int(edge[-1]) + 1)[edge[left]] % 2 == 0
+    return Seams(np.concatenate(pairs), uses[left[even]].reshape(-1, 2), uses[left[~even]])
+
+
+def _matched(some: IntArray, others: IntArray) -> tuple[IntArray, IntArray]:
+    """Return which of some go with which of others: in each group the first with the first, and so on."""
+    both = np.union1d(some, others)
+    places = [np.searchsorted(both, groups) for groups in (some, others)]
+    least = np.minimum(*(np.bincount(place, minlength=len(both)) for place in places))
+    found = []
+    for place in places:
+        order, rank = _ranked(place)
+        found.append(order[rank < least[place[order]]])
+    return found[0], found[1]
+
+
+def _ranked(groups: IntArray) -> tuple[IntArray, IntArray]:
+    """Return an order by group that keeps the members' own, and how many of its group stand before each."""
+    order = np.argsort(groups, kind="stable")
+    first = np.flatnonzero(np.diff(groups[order], prepend=-1))
+    sizes = np.diff(first, append=len(groups))
+    return order, np.arange(len(groups)) - np.repeat(first, sizes)
 
 
 def doubles_of(corners: IntArray) -> Doubles:

@@ -127,6 +127,19 @@ def test_bodies_that_touch_in_a_face_an_edge_or_a_corner_are_shells_of_their_own
     assert (finding.name, len(finding.facets), finding.harmless) == ("back to back facets", 4, True)
 
 
+def test_bodies_that_share_an_edge_are_told_apart_in_any_order_of_facets():
+    both = np.concatenate([quartered(BOX, 2), quartered(box(40, 30, 20, at=(40, 30, 0)), 2)])
+    found = census(np.random.default_rng(6).permutation(both))
+    assert found.shells.volume.tolist() == pytest.approx([24_000, 24_000])
+    assert found.findings == ()
+
+
+def test_overlapping_bodies_with_facets_in_common_and_mixed_order_are_not_called_sound():
+    # The facets in common can belong to either body, so that the two may come out as one shell.
+    both = np.concatenate([quartered(BOX, 2), quartered(box(40, 30, 20, at=(20, 15, 0)), 2)])
+    assert "duplicate facets" in names(np.random.default_rng(6).permutation(both))
+
+
 def test_an_open_top_is_a_loop_with_its_length_and_the_facets_beside_it():
     found = census(BOX[~(BOX[..., 2] == 20).all(axis=1)])
     (loop,) = found.loops
