@@ -40,6 +40,8 @@ WORTH_A_WORD = 1e-4
 CUT_AT_ONCE = 50_000
 # Outcomes that a body keeps: the present one, and some that undo may bring back.
 _MOST_KEPT = 8
+# Copies that are held against all others at once, for the sake of memory.
+_ROWS = 128
 
 Made = TypeVar("Made")
 
@@ -205,20 +207,22 @@ class _Cutter:
     def _meeting(self) -> BoolArray:
         """Return (n, n) which copies may have something in common; none with itself."""
         low, high = self._corners.min(axis=1), self._corners.max(axis=1)
+        meeting = np.zeros((len(low), len(low)), dtype=bool)
         if len(low) == 1:
-            return np.zeros((1, 1), dtype=bool)
+            return meeting
         slack = FLUSH * float(np.ptp(self._corners.reshape(-1, 3), axis=0).max())
-        meeting = (low[:, None] < high[None] - slack).all(axis=2) & (low[None] < high[:, None] - slack).all(axis=2)
-        turn = np.concatenate([cut.standing.turn for cut in self._cuts])
+        axis = np.concatenate([cut.standing.turn[:, :, 2] for cut in self._cuts])
         shift = np.concatenate([cut.standing.shift for cut in self._cuts])
-        axis = turn[:, :, 2]
-        lever = shift[:, None] - shift[None]
-        across = lever - np.einsum("nmi,ni->nm", lever, axis)[..., None] * axis[:, None]
-        parallel = np.linalg.norm(np.cross(axis[:, None], axis[None]), axis=2) <= FLUSH
-        apart = np.linalg.norm(across, axis=2) >= self._radii[:, None] + self._radii[None] - slack
-        meeting &= ~(parallel & apart)
+        for start in range(0, len(low), _ROWS):
+            rows = slice(start, start + _ROWS)
+            boxes = (low[rows, None] < high - slack).all(axis=2) & (low < high[rows, None] - slack).all(axis=2)
+            lever = shift[rows, None] - shift
+            across = lever - np.einsum("nmi,ni->nm", lever, axis[rows])[..., None] * axis[rows, None]
+            parallel = np.linalg.norm(np.cross(axis[rows, None], axis), axis=2) <= FLUSH
+            apart = np.linalg.norm(across, axis=2) >= self._radii[rows, None] + self._radii - slack
+            meeting[rows] = boxes & ~(parallel & apart)
         np.fill_diagonal(meeting, val=False)
-        return np.asarray(meeting)
+        return meeting
 
     def _from_solids(self, rows: IntArray, meeting: BoolArray) -> list[Piece]:
         from core.assembly.solid_cuts import pieces_of_solids
