@@ -8,7 +8,7 @@ from PySide6.QtCore import QEvent, QObject, QSize, Qt, QTimer, Signal
 from PySide6.QtGui import QIcon, QKeyEvent, QPixmap, QResizeEvent, QShowEvent
 from PySide6.QtWidgets import QLineEdit, QListView, QListWidget, QListWidgetItem, QVBoxLayout, QWidget
 
-from app.window.gallery.families import Choice, choices
+from app.window.gallery.families import Choice, best_of, choices
 from app.window.gallery.picture import Wanted, image_of
 from app.window.style import GRID, Words, colours, heading_font
 
@@ -56,7 +56,7 @@ class Chooser(QWidget):
     def fill(self, text: str) -> None:
         """Show what is found."""
         found = choices(text)
-        self.pictures.show_choices(found)
+        self.pictures.show_choices(found, best_of(found, text) if found else 0)
         self.nothing.setVisible(not found)
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
@@ -97,8 +97,8 @@ class Pictures(QListWidget):
         self._painting = QTimer(self, interval=0)
         self._painting.timeout.connect(self._paint_next)
 
-    def show_choices(self, found: list[Choice]) -> None:
-        """Show these, the first one current."""
+    def show_choices(self, found: list[Choice], current: int = 0) -> None:
+        """Show these, one of them current."""
         self.clear()
         group = ""
         for choice in found:
@@ -110,7 +110,8 @@ class Pictures(QListWidget):
             item.setSizeHint(CELL)
             item.setTextAlignment(Qt.AlignmentFlag.AlignHCenter | Qt.AlignmentFlag.AlignTop)
             item.setIcon(_clear())
-        self._choose_first()
+        if found:
+            self.setCurrentItem(self.shown()[current])
         self._paint_all()
 
     def shown(self) -> list[QListWidgetItem]:
@@ -126,11 +127,6 @@ class Pictures(QListWidget):
 
     def _heading_size(self) -> QSize:
         return QSize(max(CELL.width(), self.viewport().width() - GRID), HEADING_HEIGHT)
-
-    def _choose_first(self) -> None:
-        found = self.shown()
-        if found:
-            self.setCurrentItem(found[0])
 
     def _paint_all(self) -> None:
         self._waiting = iter(self.shown())

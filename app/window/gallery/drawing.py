@@ -23,8 +23,10 @@ UP = np.array([-1.0, 1.0, 2.0]) / np.sqrt(6)
 
 # A bar longer than so many times its width is drawn shorter: what is marked stays the same.
 LONGEST, SHORTENED = 2.2, 1.5
-# Facets around, edges per picture's width, and the cells in which what hides a place is looked up.
+# Facets around, and edges per picture's width, and the cells in which what hides a place is looked up.
 STEPS = 64
+# Lengths in m that are drawn; what is typed may pass through any number on its way.
+SMALLEST, LARGEST = 1e-7, 1e5
 _PIECES = 48
 _CELLS = 14
 # What lies less than this in front, relative to the body's size, is the edge's own face.
@@ -89,6 +91,12 @@ def drawing_of(shape: Shape) -> Drawing:
     faces = flat(corners[facing] if surface.closed else corners)
     marks = tuple(_flat_mark(mark, middle, cover, size) for mark in shown.marks())
     return Drawing(seen, hidden, soft, faces, marks, _spots(seen, size))
+
+
+def can_be_drawn(shape: Shape) -> bool:
+    """Tell whether a shape's lengths are such that a drawing of it can be worked out."""
+    lengths = [shape.single(one.name) for one in shape.dimensions if one.kind == "length"]
+    return all(length == 0 or SMALLEST <= length <= LARGEST for length in lengths)
 
 
 def shortened(shape: Shape) -> Shape:

@@ -56,6 +56,14 @@ def choices(search: str = "") -> list[Choice]:
     return sorted(found, key=lambda one: GROUPS.index(one.group))
 
 
+def best_of(found: list[Choice], search: str) -> int:
+    """Return which of some choices a search means most likely: the same name, then one that begins so."""
+    text = search.casefold().strip()
+    titles = [one.title.casefold() for one in found]
+    ranks = [(title != text, not title.startswith(text), at) for at, title in enumerate(titles)]
+    return min(ranks)[-1]
+
+
 def group_of(kind: type[Shape]) -> str:
     """Return the group that a family stands in."""
     if issubclass(kind, OutlinedShape):

@@ -12,7 +12,7 @@ from PySide6.QtGui import QColor, QFont, QFontMetricsF, QImage, QPainter, QPaint
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from app.window.gallery.dimensioning import ARROW, Layout, Placed, laid_out
-from app.window.gallery.drawing import Drawing, drawing_of
+from app.window.gallery.drawing import Drawing, can_be_drawn, drawing_of
 from app.window.style import Colours, colours
 
 if TYPE_CHECKING:
@@ -147,8 +147,11 @@ def image_of(wanted: Wanted) -> QImage:
     image.fill(Qt.GlobalColor.transparent)
     painter = QPainter(image)
     room = QRectF(0, 0, wanted.width, wanted.height)
-    paint_shape(painter, room, wanted.shape, wanted.family, wanted.theme, wanted.focused)
-    painter.end()
+    try:
+        paint_shape(painter, room, wanted.shape, wanted.family, wanted.theme, wanted.focused)
+    finally:
+        # A painter left open on its image takes the process down.
+        painter.end()
     return image
 
 
@@ -207,7 +210,7 @@ class ShapePicture(QWidget):
 
     def paintEvent(self, event: QPaintEvent) -> None:
         """Paint the picture in the middle."""
-        if self._shape is None or self.width() < SMALLEST_PX:
+        if self._shape is None or self.width() < SMALLEST_PX or not can_be_drawn(self._shape):
             return
         width, height = min(self.width(), round(1.3 * self._side)), self.height()
         family, ratio = self.font().family(), self.devicePixelRatioF()

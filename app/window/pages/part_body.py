@@ -9,6 +9,7 @@ from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QHBoxLayout, QWidget
 
 from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField
+from app.window.gallery.drawing import can_be_drawn
 from app.window.gallery.families import size_named_for
 from app.window.gallery.picture import ShapePicture
 from app.window.pages.section import NumberChange, Section, typed_for, with_component
@@ -101,8 +102,9 @@ class ShapeSection(Section):
         except MasswrightError as error:
             self.tried(None, str(error))
             return
-        self._picture.show_shape(shape)
-        self.tried(shape, "")
+        if can_be_drawn(shape):
+            self._picture.show_shape(shape)
+            self.tried(shape, "")
 
     def _choose_size(self, name: object) -> None:
         size = section_sizes().get(str(name))

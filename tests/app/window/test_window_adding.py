@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 
 import pytest
-from PySide6.QtCore import Qt, QTimer
+from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QToolButton
 from window_driver import (
@@ -49,20 +49,6 @@ def test_each_shape_of_the_menu_becomes_a_line_that_is_undone_by_its_name(window
         trigger(window, "Edit", "Redo")
         assert names(window) == [kind.title]
         trigger(window, "Edit", "Undo")
-
-
-def choose_first_of_popup() -> None:
-    popup = QApplication.activePopupWidget()
-    popup.setActiveAction(popup.actions()[0])
-    QTest.keyClick(popup, Qt.Key.Key_Return)
-
-
-@pytest.mark.parametrize("where", ["toolbar", "start"])
-def test_the_buttons_open_the_menu_of_shapes(window, where):
-    button = window.actions_.shape_button if where == "toolbar" else window.start.shape
-    QTimer.singleShot(100, choose_first_of_popup)
-    QTest.mouseClick(button, Qt.MouseButton.LeftButton)
-    assert len(names(window)) == 1
 
 
 def test_a_new_shape_waits_with_the_keyboard_in_its_first_dimension(window, qtbot):
