@@ -7,12 +7,14 @@ from functools import cached_property
 from typing import TYPE_CHECKING
 
 from core.arrays import FloatArray, frozen
+from core.assembly.membership import check_membership, check_variants, members_in
 from core.assembly.nodes import MOST_BODIES, Group, Node, Part, Table, table_of, walk
 from core.errors import EditRefused
 from core.moments import Moments, unit_vector
 
 if TYPE_CHECKING:
     from core.assembly.cuts import Cut
+    from core.assembly.names import NamedDimension
     from core.placement import Triple
 
 # Deeper nesting than this is refused: no machine has it, and a reader of the file must not be led into the ground.
@@ -75,6 +77,9 @@ class Assembly:
         axes: at least one, names all different.
         drive: the name of the one that is driven.
         meant: marks of overlaps that are as they should be.
+        names: named dimensions that number fields use; in the order of their table, names all different.
+        variants: of the machine, such as "payload empty"; names all different.
+        variant: the one whose values count; "" for all lines, whatever variants they belong to.
 
     Every edit returns a new assembly that shares all it can with the old one; keys are unique.
     """
@@ -84,6 +89,9 @@ class Assembly:
     axes: tuple[DriveAxis, ...] = (DriveAxis(),)
     drive: str = "Spindle"
     meant: tuple[MeantOverlap, ...] = ()
+    names: tuple[NamedDimension, ...] = ()
+    variants: tuple[str, ...] = ()
+    variant: str = ""
 
     def __post_init__(self) -> None:
         names = [axis.name for axis in self.axes]
@@ -92,6 +100,7 @@ class Assembly:
                 "one of the axes has to be the drive axis, and each needs a name of its own",
                 read=f"{self.drive!r} among {', '.join(names) or 'none'}",
             )
+        check_variants(self.variants, self.variant)
         self._paths  # noqa: B018  # refuses double keys, bottomless nesting and too many bodies at once
         self._cut_homes  # noqa: B018  # refuses double keys
 
@@ -105,6 +114,7 @@ class Assembly:
             if depth >= DEEPEST:
                 raise EditRefused(f"groups nest at most {DEEPEST} deep", where=node.name)
             trail[depth:] = [trail[depth] + 1 if depth < len(trail) else 0]
+            check_membership(node, self.variants)
             if node.key in paths:
                 raise EditRefused("two lines have the same key", where=node.name, read=node.key)
             paths[node.key] = tuple(trail)
@@ -136,13 +146,19 @@ class Assembly:
         return next(axis for axis in self.axes if axis.name == self.drive)
 
     @cached_property
+    def counted(self) -> Assembly:
+        """The assembly with only the lines of the chosen variant; itself where that leaves nothing out."""
+        members = members_in(self.members, self.variant) if self.variant else self.members
+        return self if members is self.members else replace(self, members=members)
+
+    @cached_property
     def table(self) -> Table:
-        """Every body as a row, in the document frame."""
-        return table_of(self.members)
+        """Every body of the chosen variant as a row, in the document frame."""
+        return table_of(self.counted.members)
 
     @cached_property
     def total(self) -> Moments:
-        """Moments of everything whose mass is known, in the document frame."""
+        """Moments of everything in the chosen variant whose mass is known, in the document frame."""
         return self.table.moments.total()
 
     @cached_property

@@ -42,6 +42,7 @@ class Line:
         transfer: kg·m², Σ m·d² over the copies, d from the copy's centre to the drive axis.
         inertia: kg·m², the sum of both: J about the drive axis.
         share: of the total's J, 0…1; None while there is no total.
+        counts: whether it is in the chosen variant; where it is not, it has no values.
     """
 
     key: str
@@ -58,6 +59,7 @@ class Line:
     transfer: float | None
     inertia: float | None
     share: float | None
+    counts: bool = True
 
 
 @dataclass(frozen=True, eq=False)
@@ -76,25 +78,34 @@ def ledger_of(assembly: Assembly) -> Ledger:
     everything = assembly.table.parts
     at, cut_at = 0, len(everything)
     above: list[int] = []
+    counting = {node.key: node for node, _ in walk(assembly.counted.members)}
     for node, depth in walk(assembly.members):
         above[depth:] = [(above[depth - 1] if depth else 1) * node.copies.count]
+        counted = counting.get(node.key)
+        inside = 0
         if isinstance(node, Part):
             words = (node.driver.label, node.basis)
-            spans.append((at, at + 1))
-            at += 1
+            inside = 0 if counted is None else 1
+        elif counted is None:
+            words = ("", "")
         else:
-            inside = node.table.parts
-            words = (_warning(inside), _common_basis(inside))
-            spans.append((at, at + len(inside)))
+            parts = counted.table.parts
+            words = (_warning(parts), _common_basis(parts))
+            inside = len(parts)
+        spans.append((at, at + inside))
         kind: LineKind = "part" if isinstance(node, Part) else "group"
-        heads.append(_Head(node.key, node.name, kind, depth, node.copies.count, above[depth], *words))
-        for cut in node.cuts if isinstance(node, Part) else ():
+        here = counted is not None
+        heads.append(_Head(node.key, node.name, kind, depth, node.copies.count, above[depth], *words, here))
+        if not isinstance(node, Part):
+            continue
+        at += inside
+        for cut in node.cuts:
             count, times = cut.copies.count, above[depth] * cut.copies.count
-            heads.append(_Head(cut.key, cut.name, "cut", depth + 1, count, times, "cut", words[1]))
-            spans.append((cut_at, cut_at + 1))
-            cut_at += 1
+            heads.append(_Head(cut.key, cut.name, "cut", depth + 1, count, times, "cut", words[1], here))
+            spans.append((cut_at, cut_at + inside))
+            cut_at += inside
     spans.append((0, len(everything)))
-    heads.append(_Head("", assembly.name, "total", 0, 1, 1, _warning(everything), _common_basis(everything)))
+    heads.append(_Head("", assembly.name, "total", 0, 1, 1, _warning(everything), _common_basis(everything), True))
     *lines, foot = _lines(heads, _sums(assembly).over(np.array(spans)))
     return Ledger(tuple(lines), foot, assembly.drive_axis)
 
@@ -111,6 +122,7 @@ class _Head:
     times: int
     material: str
     basis: str
+    counts: bool
 
 
 @dataclass(frozen=True, eq=False)
@@ -155,7 +167,8 @@ def _lines(heads: list[_Head], sums: _Sums) -> list[Line]:
     lines = []
     for head, known, *values in rows:
         words = (head.key, head.name, head.kind, head.depth, head.count, head.times, head.material, head.basis)
-        lines.append(Line(*words, *(values if known else (None,) * len(values))))
+        cells = [*(values if known else [None] * len(values)), head.counts]
+        lines.append(Line(*words, *cells))
     return lines
 
 

@@ -56,6 +56,7 @@ class Part:
         typed: what the user typed for a number, by field, where that says more than the number ("3/8 in + 2 mm").
         note: free text.
         cuts: what is taken out of each copy, in the order of the ledger. A weighed mass is that of the finished part.
+        only_in: the variants of the document that it belongs to; none named: all of them.
 
     Whether a cut takes nothing out, or leaves nothing, is seen when its values are first asked for.
 
@@ -72,6 +73,7 @@ class Part:
     typed: tuple[tuple[str, str], ...] = ()
     note: str = ""
     cuts: tuple[Cut, ...] = ()
+    only_in: tuple[str, ...] = ()
 
     def __post_init__(self) -> None:
         known = isinstance(self.body, KnownTensor | KnownAxial)
@@ -193,7 +195,7 @@ class Group:
     """Parts and groups that belong together and move as one.
 
     Attributes:
-        key, name, pose, copies, note: as of a Part.
+        key, name, pose, copies, typed, note, only_in: as of a Part.
         members: in the order of the ledger.
     """
 
@@ -204,6 +206,7 @@ class Group:
     copies: Copies = Several(1)
     typed: tuple[tuple[str, str], ...] = ()
     note: str = ""
+    only_in: tuple[str, ...] = ()
 
     @cached_property
     def table(self) -> Table:

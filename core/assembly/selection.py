@@ -5,6 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
+from core.assembly.nodes import table_of
+
 if TYPE_CHECKING:
     from core.assembly.assembly import Assembly
     from core.assembly.nodes import Part, Table
@@ -42,14 +44,19 @@ class Selection:
 def selected(assembly: Assembly, key: str | None = None) -> Selection:
     """Return all copies of the node with this key as they stand in the document frame; None: everything.
 
+    Of a node only what is in the chosen variant counts; that may be nothing.
+
     Raises:
         EditRefused: no node has this key.
 
     """
     if key is None:
         return Selection(assembly.name, assembly.table)
-    node = assembly.node(key)
-    table = node.table
+    name = assembly.node(key).name
+    counted = assembly.counted
+    if key not in counted:
+        return Selection(name, table_of(()))
+    table = counted.node(key).table
     for group in reversed(assembly.groups_above(key)):
         table = table.repeated(group.copies.placements(group.pose.placement))
-    return Selection(node.name, table)
+    return Selection(name, table)

@@ -5,7 +5,7 @@ from __future__ import annotations
 import io
 from dataclasses import replace
 from pathlib import Path
-from typing import IO, TYPE_CHECKING, TypeAlias, TypeVar
+from typing import IO, TYPE_CHECKING, Any, TypeAlias, TypeVar
 
 from core.assembly import (
     Assembly,
@@ -23,6 +23,7 @@ from core.assembly import (
     ShapeBody,
 )
 from core.assembly.assembly import DEEPEST, MeantOverlap
+from core.assembly.names import NameEntry, evaluated
 from core.document.archive import Archive
 from core.document.layout import data_of
 from core.document.migration import MAJOR, MINOR, Data, migrated
@@ -126,7 +127,8 @@ class _Builder:
         axes = tuple(_axis(entry, f"axes[{i}] ({entry.name})") for i, entry in enumerate(document.axes))
         members = self._nodes(document.members, "", 0)
         meant = tuple(_meant(entry, f"meant[{i}]") for i, entry in enumerate(document.meant))
-        return _made("", lambda: Assembly(document.name, members, axes, document.drive, meant))
+        more = _names_and_variants(document)
+        return _made("", lambda: Assembly(document.name, members, axes, document.drive, meant, **more))
 
     def _nodes(self, entries: Sequence[NodeEntry], above: str, depth: int) -> tuple[Node, ...]:
         if depth >= DEEPEST:
@@ -141,13 +143,14 @@ class _Builder:
         copies = _made(f"{place}.copies {said}", lambda: _copies(entry.copies))
         if entry.kind == "group":
             members = self._nodes(entry.members, f"{place}.", depth + 1)
-            return Group(entry.key, entry.name, members, pose, copies, typed, entry.note)
+            return Group(entry.key, entry.name, members, pose, copies, typed, entry.note, tuple(entry.only_in))
         driver = _made(f"{place}.driver {said}", lambda: _driver(entry.driver))
         body = _made(f"{place}.body {said}", lambda: self._body(entry.body))
         cuts = tuple(self._cut(cut, f"{place}.cuts[{i}] ({cut.name})") for i, cut in enumerate(entry.cuts))
+        only_in = tuple(entry.only_in)
         part = _made(
             f"{place} {said}",
-            lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note, cuts),
+            lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note, cuts, only_in),
         )
         # What cannot be cut out is refused here, where its place in the file is known; the part keeps what it cost.
         _ = _made(f"{place}.cuts", lambda: part.cutting)
@@ -199,6 +202,12 @@ class _Builder:
 
 def _meant(entry: MeantOverlapEntry, place: str) -> MeantOverlap:
     return _made(place, lambda: MeantOverlap(entry.key_a, entry.key_b, entry.carried_by, entry.note))
+
+
+def _names_and_variants(document: DocumentEntry) -> dict[str, Any]:
+    entries = [NameEntry(one.name, one.text, one.note) for one in document.names]
+    names = _made("names", lambda: evaluated(entries))
+    return {"names": names, "variants": tuple(document.variants), "variant": document.variant}
 
 
 def _made(place: str, make: Callable[[], Built]) -> Built:

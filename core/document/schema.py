@@ -11,6 +11,7 @@ from typing import Annotated, Literal, TypeAlias
 from pydantic import BaseModel, ConfigDict, Field, Strict
 
 from core.assembly.cuts import MOST_CUT_COPIES
+from core.assembly.membership import MOST_VARIANTS
 from core.shapes.profile import MOST_LOOPS, MOST_POINTS
 
 # No length, mass or inertia of a machine comes near this; the fifth power of it is still a finite number.
@@ -30,6 +31,7 @@ Name: TypeAlias = Annotated[str, Field(max_length=LONGEST_NAME)]
 Text: TypeAlias = Annotated[str, Field(max_length=LONGEST_TEXT)]
 TypedField: TypeAlias = Annotated[tuple[Name, Text], Strict(strict=False)]
 Typed: TypeAlias = Annotated[list[TypedField], Field(max_length=MOST_ENTRIES)]
+OnlyIn: TypeAlias = Annotated[list[Name], Field(max_length=MOST_VARIANTS)]
 
 
 class _Entry(BaseModel):
@@ -206,6 +208,14 @@ class CutEntry(_Entry):
     shape: ShapeEntry
 
 
+class NamedEntry(_Entry):
+    """A named dimension: its value follows from its text."""
+
+    name: Name
+    text: Text
+    note: Text
+
+
 class PartEntry(_Entry):
     """One line of the parts list."""
 
@@ -219,6 +229,7 @@ class PartEntry(_Entry):
     body: BodyEntry
     driver: DriverEntry
     cuts: Annotated[list[CutEntry], Field(max_length=MOST_CUT_COPIES)] = []
+    only_in: OnlyIn = []
 
 
 class GroupEntry(_Entry):
@@ -232,6 +243,7 @@ class GroupEntry(_Entry):
     pose: PoseEntry
     copies: CopiesEntry
     members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
+    only_in: OnlyIn = []
 
 
 NodeEntry: TypeAlias = Annotated[PartEntry | GroupEntry, Field(discriminator="kind")]
@@ -269,6 +281,9 @@ class DocumentEntry(_Entry):
     drive: Name
     axes: Annotated[list[AxisEntry], Field(min_length=1, max_length=MOST_ENTRIES)]
     members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
+    names: Annotated[list[NamedEntry], Field(max_length=MOST_ENTRIES)] = []
+    variants: Annotated[list[Name], Field(max_length=MOST_VARIANTS)] = []
+    variant: Name = ""
     meant: Annotated[list[MeantOverlapEntry], Field(max_length=MOST_NODES)] = []
 
 

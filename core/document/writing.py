@@ -33,12 +33,23 @@ def data_of_assembly(assembly: Assembly) -> Data:
     ]
     return {
         **({"meant": meant} if meant else {}),
+        **_names_and_variants(assembly),
         "version": {"major": MAJOR, "minor": MINOR},
         "name": assembly.name,
         "drive": assembly.drive,
         "axes": [_axis(axis) for axis in assembly.axes],
         "members": [_node(node) for node in assembly.members],
     }
+
+
+def _names_and_variants(assembly: Assembly) -> Data:
+    """Return the entries that most documents do without."""
+    entries: Data = {}
+    if assembly.names:
+        entries["names"] = [{"name": one.name, "text": one.text, "note": one.note} for one in assembly.names]
+    if assembly.variants:
+        entries |= {"variants": list(assembly.variants), "variant": assembly.variant}
+    return entries
 
 
 def meshes_of(assembly: Assembly) -> dict[str, bytes]:
@@ -62,7 +73,9 @@ def _node(node: Node) -> Data:
 
 
 def _common(line: Node | Cut) -> Data:
+    only_in = {} if isinstance(line, Cut) or not line.only_in else {"only_in": list(line.only_in)}
     return {
+        **only_in,
         "key": line.key,
         "name": line.name,
         "note": line.note,

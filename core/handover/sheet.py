@@ -109,7 +109,7 @@ def sheet_of_assembly(assembly: Assembly, choice: SheetChoice, unit_set: UnitSet
         basis=subject.basis,
         sources=_sources(selection),
         checks=failed_first(checks),
-        notes=tie_note(subject),
+        notes=(*_variant_note(assembly), *tie_note(subject)),
         cautions=(*_left_out(selection), MARGIN_CAUTION),
     )
 
@@ -158,6 +158,15 @@ def _joint_basis(selection: Selection) -> str:
     """Return the one basis, or "mixed" with all that is in it."""
     bases = selection.bases
     return bases[0] if len(bases) == 1 else f"mixed: {', '.join(bases)}" if bases else "empty"
+
+
+def _variant_note(assembly: Assembly) -> tuple[str, ...]:
+    """Return which of the variants the values are of; nothing where there are none."""
+    if not assembly.variants:
+        return ()
+    if assembly.variant:
+        return (f'Values of the variant "{assembly.variant}": lines that are not in it are left out.',)
+    return ("All lines count, whichever variants they belong to.",)
 
 
 def _left_out(selection: Selection) -> tuple[str, ...]:
