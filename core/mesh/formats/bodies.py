@@ -39,9 +39,9 @@ class RawBody:
 
     def moved(self, linear: FloatArray, shift: FloatArray) -> RawBody:
         """Return the body after every point r has become linear·r + shift; facets of a mirrored one are turned."""
-        corners = self.corners[:, ::-1] if np.linalg.det(linear) < 0 else self.corners
         # What overflows is refused when it is stored.
         with np.errstate(over="ignore", invalid="ignore"):
+            corners = self.corners[:, ::-1] if np.linalg.det(linear) < 0 else self.corners
             return RawBody(self.name, self.points @ linear.T + shift, corners)
 
 

@@ -116,7 +116,8 @@ class _Scene:
         if depth >= DEEPEST * 4 or self._visits > 10 * MOST_BODIES:
             raise fault("the nodes nest too deep, or are too many", self._name, f"{self._visits} nodes", _PLAIN)
         node = self._all["nodes"][_index(index)]
-        here = above @ _matrix(node)
+        with np.errstate(over="ignore", invalid="ignore"):
+            here = above @ _matrix(node)
         if not np.isfinite(here).all():
             raise self._wrong("a node's place is not finite", index)
         if "mesh" in node:
@@ -197,17 +198,25 @@ def _index(value: Any) -> int:
     return value
 
 
+def _numbers(values: Any, count: int) -> FloatArray:
+    """Return a list of so many numbers."""
+    if not isinstance(values, list) or len(values) != count or not all(isinstance(one, int | float) for one in values):
+        raise TypeError(f"{values!r} in place of {count} numbers")
+    return np.array([float(one) for one in values])
+
+
 def _matrix(node: Any) -> FloatArray:
     """Return where a node stands, (4, 4), columns as in r' = M·r."""
     if "matrix" in node:
-        return np.array(node["matrix"], dtype=np.float64).reshape(4, 4).T
+        return _numbers(node["matrix"], 16).reshape(4, 4).T
     matrix = np.eye(4)
-    x, y, z, w = (float(value) for value in node.get("rotation", (0, 0, 0, 1)))
+    x, y, z, w = _numbers(node.get("rotation", [0, 0, 0, 1]), 4).tolist()
     matrix[:3, :3] = [
         [1 - 2 * (y * y + z * z), 2 * (x * y - w * z), 2 * (x * z + w * y)],
         [2 * (x * y + w * z), 1 - 2 * (x * x + z * z), 2 * (y * z - w * x)],
         [2 * (x * z - w * y), 2 * (y * z + w * x), 1 - 2 * (x * x + y * y)],
     ]
-    matrix[:3, :3] *= np.array(node.get("scale", (1, 1, 1)), dtype=np.float64)
-    matrix[:3, 3] = node.get("translation", (0, 0, 0))
+    with np.errstate(over="ignore", invalid="ignore"):
+        matrix[:3, :3] *= _numbers(node.get("scale", [1, 1, 1]), 3)
+    matrix[:3, 3] = _numbers(node.get("translation", [0, 0, 0]), 3)
     return matrix

@@ -258,7 +258,8 @@ class _Build:
         made = home.objects[target.key]
         called = made.name or called
         own_linear, own_shift = _transform(target.transform, where)
-        linear, shift = frame[0] @ own_linear, frame[0] @ own_shift + frame[1]
+        with np.errstate(over="ignore", invalid="ignore"):
+            linear, shift = frame[0] @ own_linear, frame[0] @ own_shift + frame[1]
         if made.body is not None and len(made.body.corners):
             self._facets += len(made.body.corners)
             refuse_count(self._facets, where)
