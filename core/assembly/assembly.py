@@ -211,6 +211,14 @@ class Assembly:
         """
         return self._along(self._path(key))[-1]
 
+    def line(self, key: str) -> Node | Cut:
+        """Return the part, group or cut with this key.
+
+        Raises:
+            EditRefused: there is none.
+        """
+        return self.cut(key) if self.is_cut(key) else self.node(key)
+
     def is_cut(self, key: str) -> bool:
         """Return whether the line with this key is a cut."""
         return key in self._cut_homes
@@ -269,6 +277,10 @@ class Assembly:
         while name in names:
             name, number = f"{stem} {number}", number + 1
         return name
+
+    def with_line(self, line: Node | Cut) -> Assembly:
+        """Return the assembly with the part, group or cut of the same key replaced by this one."""
+        return self.replaced(line) if isinstance(line, Part | Group) else self.replaced_cut(line)
 
     def replaced(self, node: Node) -> Assembly:
         """Return the assembly with the node of the same key replaced by this one."""

@@ -11,7 +11,7 @@ from hypothesis import strategies as st
 from oracles import assert_same_body, directed_edges_cancel, moments_of_facets
 from strategies import ANGLES, LENGTHS, placements, poses
 
-from core.assembly import Cut, KnownAxial, MeshBody, Part, ShapeBody, compare_mesh, solid_cuts
+from core.assembly import Assembly, Cut, Group, KnownAxial, MeshBody, Part, ShapeBody, compare_mesh, solid_cuts
 from core.assembly.nodes import DataSheet
 from core.errors import Cancelled, EditRefused, ShapeError
 from core.material import ByDensity, NotSet, PerArea, Weighed
@@ -549,3 +549,14 @@ def test_the_comparison_of_a_meshs_two_sets_of_values_is_of_what_its_cuts_leave(
     assert compared.volume.restored == pytest.approx(np.pi * 0.05**2 * 0.02 - removed, rel=1e-4)
     outer, inner = 0.05**4, 0.025**4
     assert compared.inertia.restored == pytest.approx(DENSITY * np.pi / 2 * (outer - inner) * 0.02, rel=1e-4)
+
+
+def test_a_line_is_found_and_replaced_by_its_key_whatever_it_is() -> None:
+    bore = Cut("c1", "bore", Cylinder(diameter=0.02, length=0.05))
+    plate = Part("p1", "plate", ShapeBody(Box(0.1, 0.1, 0.02)), ByDensity(7850.0), cuts=(bore,))
+    assembly = Assembly("a", (Group("g1", "top", (plate,)),))
+    assert [assembly.line(key).name for key in ("g1", "p1", "c1")] == ["top", "plate", "bore"]
+    for key in ("g1", "p1", "c1"):
+        renamed = assembly.with_line(replace(assembly.line(key), name="other"))
+        assert renamed.line(key).name == "other"
+        assert [renamed.line(other).name for other in ("g1", "p1", "c1") if other != key].count("other") == 0
