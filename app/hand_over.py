@@ -10,7 +10,7 @@ from core.errors import FileRefused, ValueRefused
 from core.handover import csv_of_sheet, sheet_of_assembly, tsv_of_sheet
 
 if TYPE_CHECKING:
-    from core.assembly import Assembly
+    from core.assembly import Assembly, Finding
     from core.handover import SheetChoice
     from core.quantity import UnitSet
 
@@ -35,25 +35,27 @@ def hand_over(document: str, target: str, choice: SheetChoice, units: UnitSet, d
             read=form or "no ending",
             remedy=f"Choose one of {', '.join(FORMS)}",
         )
+    from core.assembly.overlap_findings import overlaps_looked_for
     from core.document import read_document
 
     assembly = read_document(document)
-    sheet = sheet_of_assembly(assembly, choice, units)
+    sheet, overlaps = sheet_of_assembly(assembly, choice, units), overlaps_looked_for(assembly)
     if form == ".json":
-        _write(target, _json_text(assembly, document), "utf-8")
+        _write(target, _json_text(assembly, document, overlaps), "utf-8")
     elif form == ".csv":
         _write(target, csv_of_sheet(sheet, decimal_mark), _MARKED)
     else:
         _write(target, tsv_of_sheet(sheet, decimal_mark), "utf-8")
-    for check in sheet.failed:
+    failed = [*sheet.failed, *(finding.check for finding in overlaps if not finding.check.ok)]
+    for check in failed:
         complain(f"check failed: {check.name}: {check.text}")
-    return 1 if sheet.failed else 0
+    return 1 if failed else 0
 
 
-def _json_text(assembly: Assembly, document: str) -> str:
+def _json_text(assembly: Assembly, document: str, overlaps: tuple[Finding, ...]) -> str:
     from core.handover.answer import answer_of_assembly, json_text
 
-    return json_text(answer_of_assembly(assembly, document)) + "\n"
+    return json_text(answer_of_assembly(assembly, document, overlaps)) + "\n"
 
 
 def _write(target: str, text: str, encoding: str) -> None:

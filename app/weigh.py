@@ -131,19 +131,21 @@ def _document(path: str, task: Task) -> Outcome:
             remedy="Leave the option out, or set it in the document",
         )
     from core.assembly import findings_of, ledger_of
+    from core.assembly.overlap_findings import overlaps_looked_for
     from core.document import read_document
 
     assembly = _about_asked_axis(read_document(path), task)
+    overlaps = overlaps_looked_for(assembly)
     complaints = tuple(
         f"check failed: {finding.check.name}: {finding.check.text}"
-        for finding in findings_of(assembly)
+        for finding in (*findings_of(assembly), *overlaps)
         if not finding.check.ok
     )
     status = CHECK_FAILED if complaints else SOUND
     if task.format == "json":
         from core.handover.answer import answer_of_assembly
 
-        return Outcome(status, answer=answer_of_assembly(assembly, path), complaints=complaints)
+        return Outcome(status, answer=answer_of_assembly(assembly, path, overlaps), complaints=complaints)
     text = sheet_text(sheet_of_assembly(assembly, task.choice, task.units), task)
     if task.format == "text":
         from core.handover.text import text_of_ledger

@@ -15,6 +15,7 @@ import sys
 from pathlib import Path
 
 from core.assembly import Assembly, DataSheet, DriveAxis, Group, KnownAxial, MeshBody, Part, ShapeBody
+from core.assembly.assembly import MeantOverlap
 from core.document import save_document
 from core.material import ByMaterial, Weighed
 from core.mesh import MeshAsset
@@ -85,7 +86,8 @@ def indexing_dial(fixture: MeshAsset) -> Assembly:
         Pose((0.0, 0.0, -0.22)),
     )
     dial = Group("dial", "dial", (plate, hub, shaft, _screws(), _stations(fixture), _flag()))
-    return Assembly("indexing dial", (dial, _rotor()), (DriveAxis("Spindle"),))
+    edge = MeantOverlap("fixture", "tin", "fixture", "The tin's lower edge is round in truth, like the pocket's floor.")
+    return Assembly("indexing dial", (dial, _rotor()), (DriveAxis("Spindle"),), meant=(edge,))
 
 
 def _screws() -> Group:

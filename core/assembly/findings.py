@@ -21,11 +21,12 @@ OBLIQUE = 1e-6
 
 @dataclass(frozen=True)
 class Finding:
-    """A check and the line it is about; key "" is the whole assembly."""
+    """A check and the line it is about; key "" is the whole assembly. also: key of a second line it is about."""
 
     key: str
     name: str
     check: Check
+    also: str = ""
 
 
 def findings_of(assembly: Assembly) -> tuple[Finding, ...]:

@@ -17,7 +17,7 @@ if TYPE_CHECKING:
     from collections.abc import Iterable
 
     from core.arrays import FloatArray
-    from core.assembly import Assembly, Line
+    from core.assembly import Assembly, Finding, Line
     from core.checks import Check
     from core.handover.lines import AxisLine
     from core.handover.mesh_reading import MeshReading
@@ -78,8 +78,10 @@ def answer_of_mesh(reading: MeshReading) -> Answer:
     return values
 
 
-def answer_of_assembly(assembly: Assembly, path: str) -> Answer:
+def answer_of_assembly(assembly: Assembly, path: str, overlaps: tuple[Finding, ...] = ()) -> Answer:
     """Return the answer on a document: its totals, its ledger, and every check with the part it is about.
+
+    Findings on overlaps, where somebody has looked for them, stand behind the others.
 
     `axis` is the drive axis, with its name, point and direction. `volume_m3` is None where a part has none.
     """
@@ -95,7 +97,8 @@ def answer_of_assembly(assembly: Assembly, path: str) -> Answer:
         **_values(subject.body, subject.form, _volume(assembly)),
         "axis": {**(_axis(subject.body, subject.form, subject.axis) or {}), **spot},
         "checks": [
-            {**_check(finding.check), "part": finding.name, "key": finding.key} for finding in findings_of(assembly)
+            {**_check(finding.check), "part": finding.name, "key": finding.key}
+            for finding in (*findings_of(assembly), *overlaps)
         ],
         "ledger": [_line(line) for line in (*ledger.lines, ledger.total)],
     }

@@ -3,6 +3,7 @@ from __future__ import annotations
 import csv
 import json
 import re
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
@@ -12,6 +13,7 @@ from app.cli import main
 from app.progress_bar import bar_text
 from app.terminal import in_signs_of
 from core.assembly import Assembly, DataSheet, Group, KnownAxial, MeshBody, Part, ShapeBody, ledger_of
+from core.assembly.assembly import MeantOverlap
 from core.document import save_document
 from core.handover.answer import KEYS
 from core.material import ByDensity, ByMaterial
@@ -26,7 +28,8 @@ def assembly() -> Assembly:
         "q", "=pin", ShapeBody(SHAPES["cylinder"].of({"diameter": 0.02, "length": 0.05})), ByDensity(2700.0),
         Pose((0.1, 0.0, 0.02)), Ring(6),
     )  # fmt: skip
-    cube = Part("c", "cube", MeshBody(MeshAsset.of_bytes(binary_stl(box(20, 20, 20)), "cube.stl"), 1e-3), ByDensity(7850.0))
+    mesh = MeshBody(MeshAsset.of_bytes(binary_stl(box(20, 20, 20)), "cube.stl"), 1e-3)
+    cube = Part("c", "cube", mesh, ByDensity(7850.0), Pose((0.0, 0.0, 0.02)))
     rotor = Part("r", "rotor", KnownAxial(1.9, (0, 0, 0), 0.0021, 0.05, "catalogue 7, page 3"), DataSheet())
     return Assembly("dial", (Group("g", "table", (plate, pin)), cube, rotor))
 
@@ -70,6 +73,32 @@ def test_a_document_is_answered_with_its_total_its_ledger_and_its_checks(run):
         assert line["own_inertia_kgm2"] + line["transfer_kgm2"] == pytest.approx(line["inertia_kgm2"], rel=1e-12)
     assert {"plate", "cube", "rotor"} <= {check["part"] for check in found["checks"]}
     assert [found[key] for key in ("triangles", "unit", "verdict", "curved", "volume_m3")] == [None] * 5
+
+
+def test_an_overlap_is_named_and_fails_unless_it_is_meant(run, folder):
+    cube = assembly().node("c")
+    sunk = assembly().replaced(replace(cube, pose=Pose((0.0, 0.0, 0.015))))
+    save_document(sunk, folder / "sunk.masswright")
+    save_document(sunk.with_meant(MeantOverlap("c", "p", "c")), folder / "meant.masswright")
+    status, out, err = run("weigh", "sunk.masswright", "--format", "json")
+    # 5 mm of a cube of 20 mm: 2000 mm³ of steel, 0.0157 kg.
+    sentence = "plate: cube penetrates it, 2000 mm³; counted twice: 0.0157 kg"
+    assert status == 1
+    assert f"check failed: overlap: {sentence}" in err
+    (found,) = (check for check in json.loads(out)["checks"] if check["name"] == "overlap" and not check["ok"])
+    assert found["text"].startswith(sentence)
+    assert (found["part"], found["key"]) == ("plate", "p")
+    assert run("handover", "sunk.masswright", "--to", "sunk.csv")[0] == 1
+    assert run("weigh", "meant.masswright")[0] == 0
+
+
+def test_overlaps_are_not_looked_for_in_a_document_of_very_many_bodies(run, folder):
+    many = assembly().node("q")
+    save_document(assembly().replaced(replace(many, copies=Ring(2001))), folder / "many.masswright")
+    status, out, _ = run("weigh", "many.masswright", "--format", "json")
+    texts = [check["text"] for check in json.loads(out)["checks"] if check["name"] == "overlap"]
+    assert status == 0
+    assert texts == ["dial: overlaps are not looked for here among more than 2000 bodies"]
 
 
 def test_the_text_of_a_document_holds_a_line_for_every_part(run):
