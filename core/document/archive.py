@@ -104,7 +104,8 @@ class Archive:
         try:
             # zipfile yields no more than the size just checked, and holds the bytes against their CRC.
             data = self._zip.read(info)
-        except (zipfile.BadZipFile, zlib.error, EOFError, NotImplementedError) as error:
+        # ValueError: the place that the archive's list gives lies before the file's start.
+        except (zipfile.BadZipFile, zlib.error, EOFError, NotImplementedError, ValueError) as error:
             raise DocumentError(
                 "this file in the archive is damaged or cut off", where=name, remedy=_DAMAGED
             ) from error

@@ -279,3 +279,12 @@ def test_a_version_that_never_was_is_refused(tmp_path):
         "dial.masswright, version: there never was a document of this version; read version 0. "
         "Look for a copy of the document that was saved by Masswright."
     )
+
+
+def test_a_list_of_contents_that_points_before_the_file_is_refused(tmp_path):
+    document = saved(tmp_path)
+    # The last field but one of the archive's end is where its list begins.
+    moved = int.from_bytes(document[-6:-2], "little") + 100
+    assert refusal_of(document[:-6] + moved.to_bytes(4, "little") + document[-2:]) == (
+        f"dial.masswright, assembly.json: this file in the archive is damaged or cut off. {GOOD_COPY}"
+    )
