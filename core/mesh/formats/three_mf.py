@@ -92,6 +92,9 @@ class _Model:
         except expat.ExpatError as error:
             where = f"{self._name}, {self._path}, line {error.lineno}"
             raise fault("the XML of the model is damaged", where, expat.ErrorString(error.code)) from error
+        except LookupError as error:
+            where = f"{self._name}, {self._path}"
+            raise fault("the XML of the model is in an encoding that nobody knows", where, str(error)) from error
         for key, made in self.objects.items():
             if made.vertices or made.triangles:
                 made.body = self._body(key, made)
@@ -184,7 +187,7 @@ class _Package:
             parser.StartElementHandler = start
             try:
                 parser.Parse(self._bytes(_RELATIONS), True)
-            except expat.ExpatError as error:
+            except (expat.ExpatError, LookupError) as error:
                 raise fault("the XML of the archive's list is damaged", f"{self._name}, {_RELATIONS}") from error
             if found:
                 return posixpath.normpath(found[0].lstrip("/"))
@@ -212,7 +215,7 @@ class _Package:
             raise fault("the model is packed tighter than any real one", where, read)
         try:
             return self._zip.read(info)
-        except (zipfile.BadZipFile, zlib.error, EOFError, NotImplementedError, RuntimeError) as error:
+        except (zipfile.BadZipFile, zlib.error, EOFError, NotImplementedError, RuntimeError, ValueError) as error:
             raise fault("the model in the archive is damaged, cut short or encrypted", where) from error
 
 

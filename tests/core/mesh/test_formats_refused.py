@@ -118,6 +118,9 @@ REFUSED = {
     ("a.3mf", "no model"): (three_mf("x").replace(b"3D/part.model", b"3D/part.other"), "the archive holds no such model"),
     ("a.3mf", "broken XML"): (three_mf("<model><resources>"), "the XML of the model is damaged"),
     ("a.3mf", "broken bytes"): (three_mf("<model/>" * 9), "the XML of the model is damaged"),
+    ("a.3mf", "unknown encoding"): (three_mf(model_xml(OBJECT, ITEM).replace("UTF-8", "UTX-8")), "an encoding that nobody knows"),
+    ("a.3mf", "moved contents"): (
+        plain_3mf(BOX)[:-6] + (2**20).to_bytes(4, "little") + bytes(2), "damaged, cut short or encrypted|no ZIP archive"),
     ("a.3mf", "document type"): (
         three_mf('<!DOCTYPE m [<!ENTITY a "b">]>' + model_xml(OBJECT, ITEM)[38:]), "a document type is declared"),
     ("a.3mf", "unknown unit"): (model(OBJECT, attributes='unit="cubit"'), "the unit is none that a 3MF file can have"),
