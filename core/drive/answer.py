@@ -27,6 +27,7 @@ from core.drive.standstill import Standstill, standstill, standstills_of, worst_
 from core.drive.stopping import Stop, stop
 from core.drive.torque import Curves, Needs, Study
 from core.drive.train import LOAD, MOTOR, InertiaRatio, Reflected, inertia_ratio, reflected
+from core.errors import ValueRefused
 from core.moments import Moments
 
 if TYPE_CHECKING:
@@ -55,7 +56,7 @@ class DriveAnswer:
         stops: the stops asked for.
         judged: the motor's limits kept or not.
         stored_energy: J, ½·J·ω² of everything at the highest speed of the duty.
-        checks: a rotor counted twice, limits not kept.
+        checks: parts without mass, a rotor counted twice, limits kept or not.
         cautions: the sentences that belong in every output.
     """
 
@@ -114,7 +115,8 @@ def drive_answer(assembly: Assembly, settings: DriveSettings) -> DriveAnswer:
         demand.bodies, about_axis(_moments_on(demand.bodies, LOAD, settings), assembly.drive_axis),
         reflected(train, demand.bodies, MOTOR), reflected(train, demand.bodies, LOAD),
         tuple(gravity_wave(body, settings.gravity) for body in demand.bodies), ratio, study, load, motor, rests,
-        worst, stops, judged, energy, (*_rotor_checks(assembly, settings), *_limit_checks(ratio, judged)),
+        worst, stops, judged, energy,
+        (*_weightless(assembly, settings), *_rotor_checks(assembly, settings), *_limit_checks(ratio, judged)),
         cautions(energy, load_can_move=worst.drift != "stays"),
     )
 
@@ -164,7 +166,13 @@ def balance_answer(assembly: Assembly, settings: DriveSettings) -> BalanceAnswer
     if float(moments.mass) <= 0:
         return None
     at = settings.train.index(wanted.shaft)
-    axis = next(body.axis for body in bodies if settings.train.index(body.shaft) == at)
+    axes = [body.axis for body in bodies if settings.train.index(body.shaft) == at]
+    if any(one != axes[0] for one in axes):
+        raise ValueRefused(
+            "what turns with one shaft turns about different axes, so it is no one rotor", where="balance",
+            read=" and ".join(one.name for one in axes), remedy="Choose another shaft, or one axis for all of it",
+        )
+    axis = axes[0]
     found = unbalance(moments, axis)
     made = corrections(found, wanted.planes, wanted.by) if wanted.planes else ()
     left = unbalance(corrected(moments, axis, made), axis) if made else found
@@ -235,6 +243,18 @@ def _limit_checks(ratio: InertiaRatio, judged: tuple[Judged, ...]) -> list[Check
     return checks
 
 
+def _weightless(assembly: Assembly, settings: DriveSettings) -> list[Check]:
+    """Tell of parts that turn and of which nothing says what they weigh."""
+    turning = set(keys_turning(assembly, settings.turning))
+    return [
+        Check(
+            "mass of what turns", ok=False,
+            text=f"{part.name}: nothing says what it weighs; torque and balance leave it out",
+        )
+        for part in assembly.without_mass if part.key in turning
+    ]
+
+
 def _rotor_checks(assembly: Assembly, settings: DriveSettings) -> list[Check]:
     """Tell of a rotor that is in the motor's data and also among what turns."""
     motor = settings.train.motor
@@ -249,10 +269,10 @@ def _rotor_checks(assembly: Assembly, settings: DriveSettings) -> list[Check]:
             return [Check("rotor counted twice", ok=False, text=text)]
     checks = []
     table = assembly.table
-    inertia = table.moments.inertia_about_axis(assembly.drive_axis.point, assembly.drive_axis.direction)
-    for index, part in enumerate(table.parts):
-        own = float(inertia[table.owner == index].sum())
-        if part.key in turning and math.isclose(own, motor.inertia, rel_tol=SAME_INERTIA):
-            text = f"{part.name}: its J {own:.4g} kg·m² is that of the motor's rotor; is the rotor counted twice?"
+    # About its own centre: the rotor may stand beside the drive axis.
+    own = np.bincount(table.owner, table.moments.own_inertia_along(assembly.drive_axis.direction), len(table.parts))
+    for part, inertia in zip(table.parts, own.tolist(), strict=True):
+        if part.key in turning and math.isclose(inertia, motor.inertia, rel_tol=SAME_INERTIA):
+            text = f"{part.name}: its J {inertia:.4g} kg·m² is that of the motor's rotor; is the rotor counted twice?"
             checks.append(Check("rotor counted twice", ok=False, text=text))
     return checks

@@ -13,7 +13,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 from enum import StrEnum
-from functools import lru_cache
+from functools import cached_property, lru_cache
 from typing import TypeAlias
 
 import numpy as np
@@ -59,6 +59,11 @@ class Zones:
     frequency: FloatArray
     phase: FloatArray
 
+    @cached_property
+    def _used(self) -> int:
+        """How many of the polynomials' coefficients are used: most laws need two, and time is spent on each."""
+        return int(np.flatnonzero(self.polynomial.any(axis=0)).max(initial=0)) + 1
+
     @classmethod
     def of_rows(cls, rows: list[_Row]) -> Zones:
         """Return the zones of these rows; those of no duration are left out."""
@@ -92,9 +97,10 @@ class Zones:
         c, amplitude, k, phase = (
             self.polynomial[zone], self.amplitude[zone], self.frequency[zone], self.phase[zone]
         )
-        last, jerk = c[:, -1], 0.0 * local
-        acceleration, speed, angle = last, last / DEGREES, last / (DEGREES * (DEGREES + 1))
-        for n in range(DEGREES - 2, -1, -1):
+        used = self._used
+        last, jerk = c[:, used - 1], 0.0 * local
+        acceleration, speed, angle = last, last / used, last / (used * (used + 1))
+        for n in range(used - 2, -1, -1):
             jerk = jerk * local + (n + 1) * c[:, n + 1]
             acceleration = acceleration * local + c[:, n]
             speed = speed * local + c[:, n] / (n + 1)

@@ -122,6 +122,11 @@ class Move:
         part = self.smoothing / 2 if self.law == Law.S_CURVE else 0.0
         return ramped_zones(speed, (up, part * up), max(time - up - down, 0.0), (down, part * down))
 
+    @cached_property
+    def starts(self) -> tuple[FloatArray, FloatArray, FloatArray]:
+        """Time, angle and speed at the start of its zones and at its end, from a start at rest."""
+        return self.zones.starts()
+
     @property
     def time(self) -> float:
         """How long it takes, s."""
@@ -136,6 +141,16 @@ class Rest:
 
     def __post_init__(self) -> None:
         refuse_unless_positive(self.time, "time of a rest", "rest")
+
+    @cached_property
+    def zones(self) -> Zones:
+        """One zone in which nothing happens."""
+        return Zones.of_rows([(self.time, [0.0], (0.0, 1.0, 0.0))])
+
+    @cached_property
+    def starts(self) -> tuple[FloatArray, FloatArray, FloatArray]:
+        """Time, angle and speed at its start and at its end."""
+        return self.zones.starts()
 
 
 @dataclass(frozen=True)
@@ -260,33 +275,25 @@ class Timeline:
 def _timeline(duty: Duty) -> Timeline:
     if not duty.flat:
         raise ValueRefused("the duty is empty", where="duty", remedy="Add a move")
-    tables = [_laid_out(step) for step in duty.flat]
-    counts = [len(table[0].duration) for table in tables]
-    steps = np.repeat(np.arange(len(tables)), counts)
-    joined = [table[0] for table in tables]
+    steps = duty.flat
+    times, angles, speeds = zip(*(step.starts for step in steps), strict=True)
+    senses = [math.copysign(1.0, step.angle) if isinstance(step, Move) else 0.0 for step in steps]
+    owner = np.repeat(np.arange(len(steps)), [len(time) - 1 for time in times])
     zones = Zones(*(
-        frozen(np.concatenate([getattr(one, name) for one in joined]))
+        frozen(np.concatenate([getattr(step.zones, name) for step in steps]))
         for name in ("duration", "polynomial", "amplitude", "frequency", "phase")
     ))
-    ends = np.cumsum([table[3] for table in tables])
+    ends = np.cumsum([time[-1] for time in times])
     first = np.concatenate([[0.0], ends[:-1]])
     return Timeline(
         zones,
-        frozen(np.concatenate([table[1][0][:-1] for table in tables]) + first[steps]),
-        frozen(np.concatenate([table[1][1][:-1] for table in tables]) + np.array(duty.positions)[steps]),
-        frozen(np.concatenate([table[1][2][:-1] for table in tables])),
-        frozen(np.repeat([table[2] for table in tables], counts)),
-        steps,
+        frozen(np.concatenate([time[:-1] for time in times]) + first[owner]),
+        frozen(np.concatenate([angle[:-1] for angle in angles]) + np.array(duty.positions)[owner]),
+        frozen(np.concatenate([speed[:-1] for speed in speeds])),
+        frozen(np.array(senses)[owner]),
+        owner,
         float(ends[-1]),
     )
-
-
-def _laid_out(step: Move | Rest) -> tuple[Zones, tuple[FloatArray, FloatArray, FloatArray], float, float]:
-    """Return a step's zones, their starts, its sense and its time."""
-    if isinstance(step, Rest):
-        zones = Zones.of_rows([(step.time, [0.0], (0.0, 1.0, 0.0))])
-        return zones, zones.starts(), 0.0, step.time
-    return step.zones, step.zones.starts(), math.copysign(1.0, step.angle), step.time
 
 
 def _refuse_limits(law: Law, limits: ByLimits) -> None:

@@ -29,8 +29,8 @@ TOLERANCE = 1e-9
 _MOST_HALVINGS = 14
 
 _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(8)
-# Halvings that bring a border of a range of angles to the last bit of the time.
-_BISECTIONS = 54
+# Steps to a border of a range of angles at most, and where they end, relative to the zone.
+_MOST_NEWTON, _CLOSE = 60, 1e-14
 
 # Points of a curve per piece, both ends among them.
 CURVE_POINTS = 9
@@ -99,13 +99,26 @@ def _crossings(timeline: Timeline, end: FloatArray, edges: FloatArray) -> tuple[
         zones.append(zone)
         angles.append(edge + turn * (first[zone] + number))
     zone, target = np.concatenate(zones), np.concatenate(angles)
+    return zone, _reached(timeline, zone, target)
+
+
+def _reached(timeline: Timeline, zone: IntArray, target: FloatArray) -> FloatArray:
+    """Return the local times (m,) at which zones (m,) come to angles (m,): Newton's steps kept between two bounds."""
     sense = timeline.direction[zone]
-    left, right = np.zeros(len(zone)), timeline.zones.duration[zone]
-    for _ in range(_BISECTIONS if len(zone) else 0):
-        middle = (left + right) / 2
-        before = (timeline.within(zone, middle).angle - target) * sense < 0
-        left, right = np.where(before, middle, left), np.where(before, right, middle)
-    return zone, right
+    left, right = np.zeros(len(zone)), timeline.zones.duration[zone].copy()
+    at = (left + right) / 2
+    for _ in range(_MOST_NEWTON if len(zone) else 0):
+        motion = timeline.within(zone, at)
+        behind = (motion.angle - target) * sense
+        left, right = np.where(behind < 0, at, left), np.where(behind < 0, right, at)
+        with np.errstate(divide="ignore", invalid="ignore"):
+            step = at - behind / (motion.speed * sense)
+        following = np.where((step > left) & (step < right), step, (left + right) / 2)
+        moved = np.abs(following - at)
+        at = following
+        if (moved <= _CLOSE * timeline.zones.duration[zone]).all():
+            break
+    return at
 
 
 def integrate(

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from typing import TYPE_CHECKING
+from dataclasses import dataclass, replace
+from types import MappingProxyType
+from typing import TYPE_CHECKING, TypeVar
 
 import numpy as np
 
@@ -13,14 +14,22 @@ from core.drive.demand import STANDARD_GRAVITY
 from core.drive.limits import MotorLimits
 from core.drive.motion import Duty
 from core.drive.refusals import refuse_unless_finite, refuse_unless_positive
-from core.drive.train import FIXED, LOAD, Train
+from core.drive.train import FIXED, LOAD, MOTOR, Train
 from core.errors import ValueRefused
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from core.drive.balance import By, CorrectionPlane
     from core.drive.loads import AppliedForce, AppliedTorque, Friction
     from core.drive.stopping import StopCase
+    from core.drive.train import LeadScrew, RackOrDrum, ShaftInertia, Stage
     from core.placement import Triple
+
+_OnShaft = TypeVar(
+    "_OnShaft", "TurnsWith", "RackOrDrum", "LeadScrew", "ShaftInertia", "AppliedTorque", "Friction", "StopCase",
+    "BalanceSettings", "RackOrDrum | LeadScrew",
+)
 
 
 @dataclass(frozen=True)
@@ -108,3 +117,31 @@ class DriveSettings:
         for entry in self.turning:
             if entry.shaft != FIXED:
                 self.train.index(entry.shaft, "what turns")
+
+    def with_stages(
+        self, stages: tuple[Stage, ...], renamed: Mapping[str, str] = MappingProxyType({})
+    ) -> DriveSettings:
+        """Return the settings with other stages; what was on a shaft that is gone is on the load shaft.
+
+        Args:
+            stages: from the motor to the load.
+            renamed: new names of stages by their old ones.
+
+        Raises:
+            ValueRefused: the stages make no train.
+        """
+        known = {MOTOR, LOAD, FIXED, *(stage.name for stage in stages)}
+
+        def hung(item: _OnShaft) -> _OnShaft:
+            shaft = renamed.get(item.shaft, item.shaft)
+            return replace(item, shaft=shaft if shaft in known else LOAD)
+
+        train = replace(
+            self.train, stages=stages, linear=tuple(hung(one) for one in self.train.linear),
+            inertias=tuple(hung(one) for one in self.train.inertias),
+        )
+        return replace(
+            self, train=train, turning=tuple(hung(one) for one in self.turning),
+            torques=tuple(hung(one) for one in self.torques), frictions=tuple(hung(one) for one in self.frictions),
+            stops=tuple(hung(one) for one in self.stops), balance=hung(self.balance),
+        )

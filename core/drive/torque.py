@@ -7,9 +7,9 @@ where it is braked. Curves hold both sides of every jump: two points at one time
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Self
 
 import numpy as np
 
@@ -25,7 +25,7 @@ if TYPE_CHECKING:
     from core.drive.motion import Duty, Kinematics, Timeline
 
 # Times that a peak is closed in on, and the points around it, in steps of the last time.
-_CLOSER, _AROUND = 5, np.linspace(-1.0, 1.0, 17)
+_CLOSER, _AROUND = 4, np.linspace(-1.0, 1.0, 17)
 
 # How far the points of a curve may lie below a peak between them, relative to the largest value: half a wave in
 # 9 points misses its top by 2 %. At most so many pieces are closed in on.
@@ -159,6 +159,11 @@ class Study:
         motion = self.timeline.within(zone, local)
         return motion, self.demand.terms(motion)
 
+    @property
+    def motion(self) -> Kinematics:
+        """The motion of the load at the times of the curves, for drawing."""
+        return self._sampled[0]
+
     def curves(self, shaft: str = LOAD) -> Curves:
         """Return the curves at a shaft, for drawing: 9 points a piece, both its ends among them."""
         return self._seen_from(shaft, *self._sampled)
@@ -166,24 +171,28 @@ class Study:
     def needs(self, shaft: str = MOTOR) -> Needs:
         """Return peaks, RMS, power and energy at a shaft."""
         curves, length = self.curves(shaft), self.timeline.length
-
-        def integrand(zone: IntArray, local: FloatArray) -> FloatArray:
-            motion = self.timeline.within(zone, local)
-            at = self._seen_from(shaft, motion, self.demand.terms(motion))
-            power = at.power
-            rows = (at.torque**2, np.maximum(power, 0), np.maximum(-power, 0), np.abs(at.speed))
-            return np.vstack([*rows, at.terms * at.speed])
-
-        value, error = integrate(self.pieces, integrand)
+        value, error = self._integrals[self.demand.train.index(shaft)]
         rms = math.sqrt(value[0] / length)
-        highest, lowest = self._peak(curves, lambda at: at.torque), self._peak(curves, lambda at: -at.torque)
+        highest, lowest, most, least = self._peaks(curves)
         return Needs(
             shaft, _larger(highest, lowest), highest, lowest,
             rms, float(error[0] / (2 * length * rms)) if rms else 0.0,
             float(value[3] / length), float(np.abs(curves.speed).max()), float((value[1] - value[2]) / length),
-            self._peak(curves, lambda at: at.power), self._peak(curves, lambda at: -at.power),
-            Energy(float(value[1]), float(value[2]), tuple(value[4:].tolist()), float(error[1:3].sum())),
+            most, least, Energy(float(value[1]), float(value[2]), tuple(value[4:].tolist()), float(error[1:3].sum())),
         )
+
+    @cached_property
+    def _integrals(self) -> tuple[tuple[FloatArray, FloatArray], ...]:
+        """Integrals (9,) and their errors of each shaft, the motor's first: all shafts take one pass."""
+        shafts = self.demand.train.shafts
+
+        def integrand(zone: IntArray, local: FloatArray) -> FloatArray:
+            motion = self.timeline.within(zone, local)
+            terms = self.demand.terms(motion)
+            return np.vstack([_rows(self._seen_from(shaft, motion, terms)) for shaft in shafts])
+
+        value, error = integrate(self.pieces, integrand)
+        return tuple(zip(value.reshape(len(shafts), -1), error.reshape(len(shafts), -1), strict=True))
 
     def _seen_from(self, shaft: str, motion: Kinematics, terms: FloatArray) -> Curves:
         train = self.demand.train
@@ -193,33 +202,86 @@ class Study:
             shaft, frozen(motion.time), frozen(motion.angle), frozen(speed), frozen(rows), frozen(rows.sum(axis=0))
         )
 
-    def _peak(self, curves: Curves, score: Callable[[Curves], FloatArray]) -> Peak:
-        """Return where a score is highest, closed in on between the points of the curves.
+    def _peaks(self, curves: Curves) -> list[Peak]:
+        """Return where torque is highest and lowest and power highest and lowest, closed in on between the points.
 
         A peak may lie between the points of a piece whose own points are not the highest, so all pieces that come
         near are closed in on together.
         """
+        searches = [_Search.begun(score, curves, self.pieces) for score in _SCORES]
+        for _ in range(_CLOSER):
+            locals_ = [search.around for search in searches]
+            zones = [np.repeat(self.pieces.zone[search.near], len(_AROUND)) for search in searches]
+            motion = self.timeline.within(np.concatenate(zones), np.concatenate([one.ravel() for one in locals_]))
+            closer = self._seen_from(curves.shaft, motion, self.demand.terms(motion))
+            edges = np.cumsum([0, *(one.size for one in locals_)])
+            searches = [search.closer(closer, int(edge)) for search, edge in zip(searches, edges[:-1], strict=True)]
+        return [search.found for search in searches]
+
+
+_SCORES: tuple[Callable[[Curves], FloatArray], ...] = (
+    lambda at: at.torque, lambda at: -at.torque, lambda at: at.power, lambda at: -at.power
+)
+
+
+def _rows(at: Curves) -> FloatArray:
+    """Return what is integrated: T², power of driving and of braking, speed, and the power of each term."""
+    power = at.power
+    return np.vstack([
+        at.torque**2, np.maximum(power, 0), np.maximum(-power, 0), np.abs(at.speed), at.terms * at.speed
+    ])
+
+
+@dataclass(frozen=True, eq=False)
+class _Search:
+    """A peak that is being closed in on, in the pieces near (c,) that may hold it.
+
+    Attributes:
+        score: what is to be highest.
+        size: the largest value of the score, whichever its sign.
+        near: (c,) the pieces.
+        start, end, middle, step: (c, 1) s, of the pieces, and where each is looked at next.
+        found, top: the best moment so far, and its score.
+    """
+
+    score: Callable[[Curves], FloatArray]
+    size: float
+    near: IntArray
+    start: FloatArray
+    end: FloatArray
+    middle: FloatArray
+    step: FloatArray
+    found: Peak
+    top: float
+
+    @classmethod
+    def begun(cls, score: Callable[[Curves], FloatArray], curves: Curves, pieces: Pieces) -> Self:
+        """Return the search that starts from the points of the curves."""
         values = score(curves).reshape(-1, CURVE_POINTS)
-        of_piece, size = values.max(axis=1), np.abs(values).max()
+        of_piece, size = values.max(axis=1), float(np.abs(values).max())
         near = np.flatnonzero(of_piece >= of_piece.max() - _NEAR * size)
         near = np.sort(near[np.argsort(-of_piece[near], kind="stable")[:_MOST_NEAR]])
-        pieces, point = self.pieces, values[near].argmax(axis=1)
+        point = values[near].argmax(axis=1)
         start, end = pieces.start[near, None], pieces.end[near, None]
         step = (end - start) / (CURVE_POINTS - 1)
-        middle = start + point[:, None] * step
-        found, top = _moment(curves, int(near[0] * CURVE_POINTS + point[0])), -math.inf
-        for _ in range(_CLOSER):
-            # The ends are hit exactly, so that a peak at a jump is the height of the jump.
-            local = np.clip(middle + step * _AROUND, start, end)
-            motion = self.timeline.within(np.repeat(pieces.zone[near], len(_AROUND)), local.ravel())
-            closer = self._seen_from(curves.shaft, motion, self.demand.terms(motion))
-            values = score(closer).reshape(local.shape)
-            best = int(np.argmax(values >= values.max() - _TIE * size))
-            if values.flat[best] > top + _TIE * size:
-                found, top = _moment(closer, best), float(values.flat[best])
-            middle = np.take_along_axis(local, values.argmax(axis=1)[:, None], axis=1)
-            step = step / (len(_AROUND) // 2)
-        return found
+        first = _moment(curves, int(near[0] * CURVE_POINTS + point[0]))
+        return cls(score, size, near, start, end, start + point[:, None] * step, step, first, -math.inf)
+
+    @property
+    def around(self) -> FloatArray:
+        """Local times (c, 17) to look at; the ends are hit exactly, so that a peak at a jump is as high as the jump."""
+        return np.clip(self.middle + self.step * _AROUND, self.start, self.end)
+
+    def closer(self, curves: Curves, first: int) -> Self:
+        """Return the search one step on; curves hold what is around from index first on."""
+        local = self.around
+        values = self.score(curves)[first : first + local.size].reshape(local.shape)
+        best = int(np.argmax(values >= values.max() - _TIE * self.size))
+        middle = np.take_along_axis(local, values.argmax(axis=1)[:, None], axis=1)
+        ahead = replace(self, middle=middle, step=self.step / (len(_AROUND) // 2))
+        if values.flat[best] <= self.top + _TIE * self.size:
+            return ahead
+        return replace(ahead, found=_moment(curves, first + best), top=float(values.flat[best]))
 
 
 def _moment(curves: Curves, at: int) -> Peak:

@@ -287,7 +287,7 @@ def test_the_peak_of_a_turning_weight_is_found_between_the_points_of_the_curve()
     assert sum(peak.terms) == pytest.approx(peak.torque, rel=1e-14)
     around = study.timeline.at(peak.time + np.linspace(-0.5, 0.5, 100_001))
     torque = demand.at_shaft(demand.terms(around), around.direction, "load").sum(axis=0)
-    assert torque.min() == pytest.approx(peak.torque, rel=1e-10)
+    assert torque.min() == pytest.approx(peak.torque, rel=1e-9)
     assert around.time[torque.argmin()] == pytest.approx(peak.time, abs=1e-4)
 
 
