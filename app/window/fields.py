@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt, Signal
@@ -32,6 +33,7 @@ LABEL_WIDTH = 148
 FIELD_WIDTH = 134
 NARROW_WIDTH = 88
 SAME_VALUE = 1e-12
+BARE_NUMBER = re.compile(r"[-+−]*[0-9.,]*([0-9.,][eE][-+−]?[0-9]+)?")
 
 
 class QuantityField(QWidget):
@@ -118,7 +120,7 @@ class QuantityField(QWidget):
         if self._value is not None and not self.line.isModified():
             return Understood(self._value, self._typed or self._plain(), self._plain())
         try:
-            understood = parse(self.line.text(), self._kind, self.unit, where=self._label)
+            understood = parse(self.line.text(), self._kind, self.unit, where=self._label, names=self._session.names)
         except MasswrightError as error:
             self.refuse(str(error))
             return None
@@ -140,7 +142,8 @@ class QuantityField(QWidget):
         if not self._typed or self._value is None:
             return False
         try:
-            return math.isclose(parse(self._typed, self._kind, self.unit).value, self._value, rel_tol=SAME_VALUE)
+            read = parse(self._typed, self._kind, self.unit, names=self._session.names).value
+            return math.isclose(read, self._value, rel_tol=SAME_VALUE)
         except MasswrightError:
             return False
 
@@ -154,7 +157,7 @@ class QuantityField(QWidget):
 
     def _preview(self, text: str) -> None:
         try:
-            understood = parse(text, self._kind, self.unit)
+            understood = parse(text, self._kind, self.unit, names=self._session.names)
         except MasswrightError:
             self.understood.setText("")
             self.typing.emit(None)
@@ -184,9 +187,9 @@ class QuantityField(QWidget):
 
 
 def kept_text(text: str) -> str:
-    """Return the text where it says more than its number: arithmetic or a unit; "" for a bare number."""
+    """Return the text where it says more than its number: arithmetic, a unit or a name; "" for a bare number."""
     bare = text.strip()
-    return "" if all(mark in "0123456789.,-+eE−" for mark in bare) else bare
+    return "" if BARE_NUMBER.fullmatch(bare) else bare
 
 
 class TextField(QLineEdit):

@@ -7,6 +7,8 @@ from typing import TYPE_CHECKING
 from PySide6.QtCore import QObject, Signal
 
 from core.assembly import Assembly, Finding, Ledger, Part, findings_of, ledger_of
+from core.assembly.names import values_of
+from core.assembly.overlap_findings import overlap_findings
 from core.document import read_document, save_document
 from core.errors import MasswrightError
 from core.history import History
@@ -16,7 +18,9 @@ if TYPE_CHECKING:
     from collections.abc import Callable
     from pathlib import Path
 
+    from core.assembly.overlaps import Overlaps
     from core.assembly import Node
+    from core.quantity import Names
 
 
 class Session(QObject):
@@ -52,11 +56,18 @@ class Session(QObject):
         self._saved = self.history.present
         self.ledger: Ledger = ledger_of(self.assembly)
         self.findings: tuple[Finding, ...] = findings_of(self.assembly)
+        # Of the assembly as it is now; None until somebody has looked.
+        self.overlaps: Overlaps | None = None
 
     @property
     def assembly(self) -> Assembly:
         """The assembly as it is now."""
         return self.history.present
+
+    @property
+    def names(self) -> Names:
+        """The named dimensions that number fields may use."""
+        return values_of(self.assembly.names)
 
     @property
     def unsaved(self) -> bool:
@@ -89,7 +100,7 @@ class Session(QObject):
             return str(error)
         if after is not self.assembly:
             self.history = self.history.edited(name, after)
-            self.ledger, self.findings = ledger, findings
+            self.ledger, self.findings, self.overlaps = ledger, findings, None
             self._after_change(select)
         return ""
 
@@ -145,6 +156,7 @@ class Session(QObject):
         self.path = path
         self._saved = assembly if saved else Assembly()
         self.selected = frozenset()
+        self.overlaps = None
         self._judge()
         self._after_change(None)
         self.file_changed.emit()
@@ -165,7 +177,7 @@ class Session(QObject):
     def _step(self, history: History, words: str) -> None:
         if history is self.history:
             return
-        self.history = history
+        self.history, self.overlaps = history, None
         self._judge()
         self._after_change(None)
         self.said.emit(words)
@@ -175,9 +187,15 @@ class Session(QObject):
         self._judge()
         self.changed.emit()
 
+    def show_overlaps(self, overlaps: Overlaps) -> None:
+        """Count what a search of this assembly for overlaps found among the findings."""
+        self.overlaps = overlaps
+        self.look_again()
+
     def _judge(self) -> None:
         self.ledger = ledger_of(self.assembly)
-        self.findings = findings_of(self.assembly)
+        overlaps = () if self.overlaps is None else overlap_findings(self.assembly, self.overlaps)
+        self.findings = (*findings_of(self.assembly), *overlaps)
 
     def _after_change(self, select: str | None) -> None:
         wanted = self.selected if select is None else frozenset({select})

@@ -12,8 +12,9 @@ from app.window.fields import ChoiceField, Form, QuantityField, TextField, Tripl
 from app.window.gallery.drawing import can_be_drawn
 from app.window.gallery.families import size_named_for
 from app.window.gallery.picture import ShapePicture
-from app.window.pages.section import NumberChange, Section, typed_for, with_component
+from app.window.pages.section import Section
 from core.assembly import KnownAxial, KnownTensor, Node, Part, ShapeBody
+from core.assembly.fields import kind_of, typed_for
 from core.errors import EditRefused, MasswrightError
 from core.quantity import UNITS, Kind
 from core.shapes.sections import section_sizes
@@ -47,7 +48,7 @@ class ShapeSection(Section):
         rows = Form()
         self._size = self._size_field(rows, shape)
         for dimension in shape.dimensions:
-            self._add(rows, dimension)
+            self._add(rows, part, dimension)
         beside = QWidget()
         layout = QHBoxLayout(beside)
         layout.setContentsMargins(0, 0, 0, 0)
@@ -57,11 +58,12 @@ class ShapeSection(Section):
         if shape.note:
             form.say(shape.note)
 
-    def _add(self, rows: Form, dimension: Dimension) -> None:
+    def _add(self, rows: Form, part: Part, dimension: Dimension) -> None:
         unit = UNITS["°"] if dimension.kind == "angle" else None
-        field = QuantityField(self.session, dimension.label, _kind(dimension), unit)
+        kind = kind_of(part, f"dimension.{dimension.name}")
+        field = QuantityField(self.session, dimension.label, kind, unit)
         rows.add(f"{dimension.label} {dimension.symbol}".rstrip(), field)
-        self.bind(field, dimension.label, f"dimension.{dimension.name}", _resized(dimension.name))
+        self.bind(field, dimension.label, f"dimension.{dimension.name}")
         field.typing.connect(lambda value: self._try(dimension.name, value))
         self._picture.watch(field.line, dimension.name)
         self._fields[dimension.name] = field
@@ -124,19 +126,6 @@ def _shape(node: Node) -> Shape:
     raise EditRefused("this line is no shape", where=node.name)
 
 
-def _kind(dimension: Dimension) -> Kind:
-    return {"length": Kind.LENGTH, "angle": Kind.ANGLE, "count": Kind.NUMBER}[dimension.kind]
-
-
-def _resized(name: str) -> NumberChange:
-    def change(node: Node, value: float) -> Node:
-        shape = _shape(node)
-        resized = ShapeBody(shape.resized({name: value}))
-        return replace(node, body=resized) if isinstance(node, Part) else node
-
-    return change
-
-
 class KnownSection(Section):
     """The values of a data sheet, and where they come from."""
 
@@ -145,11 +134,11 @@ class KnownSection(Section):
         form.heading("Data sheet")
         self._mass = QuantityField(session, "mass", Kind.MASS)
         form.add("mass m", self._mass)
-        self.bind(self._mass, "Mass", "known.mass", lambda node, value: _known(node, mass=value))
+        self.bind(self._mass, "Mass", "known.mass")
         self._centre = TripleField(session, "centre of mass", Kind.LENGTH)
         form.add("centre of mass", self._centre, "From the part's own origin.")
         for at, field in enumerate(self._centre.fields):
-            self.bind(field, "Centre", f"known.centre.{at}", _known_centre(at))
+            self.bind(field, "Centre", f"known.centre.{at}")
         self._inertia = self._inertia_fields(part)
         self._source = TextField("source", "document, page, date")
         form.add("source", self._source)
@@ -165,16 +154,16 @@ class KnownSection(Section):
             for at, label in enumerate(TENSOR_LABELS):
                 field = QuantityField(self.session, label, Kind.INERTIA)
                 self.form.add(label, field, TENSOR_TIP)
-                self.bind(field, label, f"known.tensor.{at}", _known_tensor(at))
+                self.bind(field, label, f"known.tensor.{at}")
                 fields.append(field)
             return fields
         self.form.say("Inertia about the part's own z axis, through its origin.")
         inertia = QuantityField(self.session, "J about the part's axis", Kind.INERTIA)
         self.form.add("J about its axis", inertia)
-        self.bind(inertia, "J", "known.axial", lambda node, value: _known(node, inertia_about_axis=value))
+        self.bind(inertia, "J", "known.axial")
         length = QuantityField(self.session, "length", Kind.LENGTH)
         self.form.add("length L", length, "Stands in for the inertia across the axis: ½ J + m·L²/12.")
-        self.bind(length, "Length", "known.length", lambda node, value: _known(node, length=value))
+        self.bind(length, "Length", "known.length")
         return [inertia, length]
 
     def show(self, node: Node) -> None:
@@ -197,23 +186,3 @@ def _known(node: Node, **values: object) -> Node:
     if isinstance(node, Part) and isinstance(node.body, KnownTensor | KnownAxial):
         return replace(node, body=replace(node.body, **values))  # type: ignore[arg-type]  # fields of either class
     raise EditRefused("this line has no data sheet", where=node.name)
-
-
-def _known_centre(at: int) -> NumberChange:
-    def change(node: Node, value: float) -> Node:
-        if isinstance(node, Part) and isinstance(node.body, KnownTensor | KnownAxial):
-            return _known(node, centre=with_component(node.body.centre, at, value))
-        return node
-
-    return change
-
-
-def _known_tensor(at: int) -> NumberChange:
-    def change(node: Node, value: float) -> Node:
-        if isinstance(node, Part) and isinstance(node.body, KnownTensor):
-            six = [*node.body.tensor]
-            six[at] = value
-            return _known(node, tensor=tuple(six))
-        return node
-
-    return change

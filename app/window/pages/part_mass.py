@@ -3,14 +3,15 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
-from typing import TYPE_CHECKING, TypeAlias
+from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt
 
 from app.window.fields import ChoiceField, Form, QuantityField
 from app.window.numbers import shown
-from app.window.pages.section import Section, typed_for
+from app.window.pages.section import Section
 from core.assembly import Driver, Node, Part
+from core.assembly.fields import Numbered, typed_for, value_of
 from core.errors import EditRefused
 from core.material import MATERIALS, ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, material
 from core.quantity import Kind
@@ -20,8 +21,6 @@ if TYPE_CHECKING:
 
     from app.window.session import Session
     from core.measure import Measure
-
-Numbered: TypeAlias = ByDensity | PerArea | PerLength | Weighed
 
 # What can say the mass of a body, by what the body has; a point mass has nothing to multiply.
 DRIVERS: dict[Measure, list[tuple[str, object]]] = {
@@ -42,7 +41,6 @@ class Entry:
         kind: what it measures.
         label, spoken, words: before its field, as a screen reader says it, and in the name of an edit.
         path: under which the text as typed is kept.
-        attribute: of the driver.
 
     """
 
@@ -51,16 +49,13 @@ class Entry:
     spoken: str
     words: str
     path: str
-    attribute: str
 
 
 ENTRIES: dict[type[Numbered], Entry] = {
-    ByDensity: Entry(Kind.DENSITY, "density ρ", "density", "Density", "density", "density"),
-    PerArea: Entry(Kind.AREA_DENSITY, "mass per area", "mass per area", "Mass per area", "per area", "mass_per_area"),
-    PerLength: Entry(
-        Kind.LINEAR_DENSITY, "mass per length", "mass per length", "Mass per length", "per length", "mass_per_length"
-    ),
-    Weighed: Entry(Kind.MASS, "weighed, one piece", "weighed mass of one", "Weighed mass", "weighed", "mass"),
+    ByDensity: Entry(Kind.DENSITY, "density ρ", "density", "Density", "density"),
+    PerArea: Entry(Kind.AREA_DENSITY, "mass per area", "mass per area", "Mass per area", "per area"),
+    PerLength: Entry(Kind.LINEAR_DENSITY, "mass per length", "mass per length", "Mass per length", "per length"),
+    Weighed: Entry(Kind.MASS, "weighed, one piece", "weighed mass of one", "Weighed mass", "weighed"),
 }
 # How much of what a body has: its name, its kind, and the driver that goes with it.
 EXTENTS: dict[Measure, tuple[str, Kind, type[ByDensity | PerArea | PerLength]]] = {
@@ -95,7 +90,7 @@ class MassSection(Section):
         entry = ENTRIES[kind]
         field = QuantityField(self.session, entry.spoken, entry.kind)
         self.form.add(entry.label, field)
-        self.bind(field, entry.words, entry.path, lambda node, value: _driven(node, kind(value)))
+        self.bind(field, entry.words, entry.path)
         return field
 
     def show(self, node: Node) -> None:
@@ -178,9 +173,9 @@ class MassSection(Section):
 
 def _entered(part: Part, kind: type[Numbered]) -> tuple[float | None, str]:
     """Return the number that counts, with its text as typed; None where another thing counts."""
-    if not isinstance(part.driver, kind):
-        return None, ""
-    return getattr(part.driver, ENTRIES[kind].attribute), typed_for(part, ENTRIES[kind].path)
+    path = ENTRIES[kind].path
+    value = value_of(part, path)
+    return (None, "") if value is None else (value, typed_for(part, path))
 
 
 def _same_mass(kind: type, part: Part) -> Driver | None:

@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-import math
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from app.window.fields import ChoiceField, Form, QuantityField, TripleField
-from app.window.pages.section import NumberChange, Section, typed_for, with_component
-from core.errors import QuantityError
+from app.window.pages.section import Section
+from core.assembly.fields import typed_for
 from core.placement import Copies, Mirrored, Ring, Row, Several
 from core.quantity import UNITS, Kind
 
@@ -35,23 +34,13 @@ class PlaceSection(Section):
         self._turns = TripleField(session, "turn about", Kind.ANGLE, UNITS["°"])
         form.add("turn about", self._turns, "About the group's fixed axes: x first, then y, then z.")
         for at, (here, turn) in enumerate(zip(self._position.fields, self._turns.fields, strict=True)):
-            self.bind(here, f"Position {'xyz'[at]}", f"position.{at}", _moved(at))
-            self.bind(turn, f"Turn about {'xyz'[at]}", f"turn.{at}", _turned(at))
+            self.bind(here, f"Position {'xyz'[at]}", f"position.{at}")
+            self.bind(turn, f"Turn about {'xyz'[at]}", f"turn.{at}")
 
     def show(self, node: Node) -> None:
         """Show position and turns."""
         self._position.set_values(node.pose.position, lambda at: typed_for(node, f"position.{at}"))
         self._turns.set_values(node.pose.turns, lambda at: typed_for(node, f"turn.{at}"))
-
-
-def _moved(at: int) -> NumberChange:
-    return lambda node, value: replace(
-        node, pose=replace(node.pose, position=with_component(node.pose.position, at, value))
-    )
-
-
-def _turned(at: int) -> NumberChange:
-    return lambda node, value: replace(node, pose=replace(node.pose, turns=with_component(node.pose.turns, at, value)))
 
 
 class CopiesSection(Section):
@@ -70,7 +59,7 @@ class CopiesSection(Section):
         if not isinstance(node.copies, Mirrored):
             self._count = QuantityField(session, "quantity", Kind.NUMBER)
             form.add("quantity ×", self._count)
-            self.bind(self._count, "Quantity", "copies.count", _counted)
+            self.bind(self._count, "Quantity", "copies.count")
         self._pattern_fields(node.copies)
 
     def _pattern_fields(self, copies: Copies) -> None:
@@ -92,14 +81,14 @@ class CopiesSection(Section):
     def _angle(self, name: str, label: str, tip: str) -> None:
         field = QuantityField(self.session, label, Kind.ANGLE, UNITS["°"])
         self.form.add(label, field, tip)
-        self.bind(field, label, f"copies.{name}", lambda node, value: _copies_with(node, **{name: value}))
+        self.bind(field, label, f"copies.{name}")
         self._angles.append((name, field))
 
     def _triple(self, name: str, label: str, kind: Kind, tip: str) -> None:
         triple = TripleField(self.session, label, kind)
         self.form.add(label, triple, tip)
         for at, field in enumerate(triple.fields):
-            self.bind(field, label, f"copies.{name}.{at}", _component_changed(name, at))
+            self.bind(field, label, f"copies.{name}.{at}")
         self._triples.append((name, triple))
 
     def show(self, node: Node) -> None:
@@ -133,15 +122,3 @@ class CopiesSection(Section):
 
 def _copies_with(node: Node, **values: object) -> Node:
     return replace(node, copies=replace(node.copies, **values))  # type: ignore[arg-type]  # fields of one of the patterns
-
-
-def _component_changed(name: str, at: int) -> NumberChange:
-    return lambda node, value: _copies_with(node, **{name: with_component(getattr(node.copies, name), at, value)})
-
-
-def _counted(node: Node, value: float) -> Node:
-    if not math.isclose(value, round(value)):
-        raise QuantityError(
-            "a quantity is a whole number", where=node.name, read=f"{value:g}", remedy="Type how many there are"
-        )
-    return _copies_with(node, count=round(value))

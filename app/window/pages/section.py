@@ -3,10 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from core.assembly import Assembly, Node
+from core.assembly.fields import with_typed, with_value
 
 if TYPE_CHECKING:
     from app.window.fields import Form, QuantityField
@@ -14,8 +14,6 @@ if TYPE_CHECKING:
 
 # A change to one line: the line as it is in, the line as it is to be out.
 Change = Callable[[Node], Node]
-# The same with the number that was entered.
-NumberChange = Callable[[Node, float], Node]
 
 
 class Section:
@@ -45,34 +43,16 @@ class Section:
             self.session.refused.emit(refusal)
             self.show(self.session.assembly.node(self.key))
 
-    def bind(self, field: QuantityField, words: str, path: str, change: NumberChange) -> None:
-        """Let a field edit one number of the line; the text as typed is kept under its path."""
+    def bind(self, field: QuantityField, words: str, path: str) -> None:
+        """Let a field edit the number under a path of the line; the text as typed is kept there, too."""
 
         def entered(value: float, text: str) -> None:
             name = self.session.assembly.node(self.key).name
             shown = field.line.text().strip()
             refusal = self.attempt(
-                f"{words} of {name}: {shown}", lambda node: with_typed(change(node, value), path, text)
+                f"{words} of {name}: {shown}", lambda node: with_typed(with_value(node, path, value), path, text)
             )
             if refusal:
                 field.turn_down(refusal)
 
         field.entered.connect(entered)
-
-
-def with_typed(node: Node, path: str, text: str) -> Node:
-    """Return the line with the text that was typed for one of its numbers kept, or dropped where it is ""."""
-    typed = {**dict(node.typed), path: text}
-    return replace(node, typed=tuple(sorted((key, value) for key, value in typed.items() if value)))
-
-
-def typed_for(node: Node, path: str) -> str:
-    """Return what was typed for a number of the line; "" where the number says it all."""
-    return dict(node.typed).get(path, "")
-
-
-def with_component(values: tuple[float, float, float], at: int, value: float) -> tuple[float, float, float]:
-    """Return three numbers with one of them replaced."""
-    changed = [*values]
-    changed[at] = value
-    return (changed[0], changed[1], changed[2])
