@@ -103,6 +103,8 @@ def _sheet(c: Colours) -> str:
     QTreeView:focus {{ border: 0; outline: 0; }}
     QHeaderView::section {{ background: {c.ground}; color: {c.quiet}; border: 0; border-bottom: 1px solid {c.hairline};
                             padding: 2px 8px; }}
+    QTableCornerButton::section {{ background: {c.ground}; border: 0; border-bottom: 1px solid {c.hairline}; }}
+    QHeaderView {{ background: {c.ground}; }}
     QTabWidget::pane {{ border: 0; }}
     QTabBar::tab {{ padding: 8px 16px; border: 0; border-bottom: 2px solid transparent; color: {c.quiet}; }}
     QTabBar::tab:selected {{ color: {c.text}; border-bottom-color: {c.blue}; }}

@@ -23,6 +23,7 @@ from PySide6.QtWidgets import (
 from app.window.fields import Form, QuantityField
 from app.window.gallery.chooser import Chooser
 from app.window.numbers import shown
+from app.window.outline.section import OutlineSection, is_profile
 from app.window.pages.part_body import ShapeSection
 from app.window.pages.part_mass import MassSection
 from app.window.session import Session
@@ -34,6 +35,7 @@ from core.quantity import Kind
 
 if TYPE_CHECKING:
     from app.window.gallery.families import Choice
+    from app.window.pages.section import Section
     from core.shapes import Shape
 
 DRAFT = "draft"
@@ -136,7 +138,7 @@ class Maker(QWidget):
         self.setObjectName("page")
         self._session = session
         self._draft: Session | None = None
-        self._sections: list[ShapeSection | MassSection] = []
+        self._sections: list[Section] = []
         self._driver: Driver = NotSet()
         self.back = QPushButton("All shapes")
         self.keep = QPushButton("Keep")
@@ -181,7 +183,7 @@ class Maker(QWidget):
         draft = Session(self)
         draft.units, draft.decimal_mark = self._session.units, self._session.decimal_mark
         real = self._session.assembly
-        draft.take(Assembly(real.name, (part,), real.axes, real.drive), None)
+        draft.take(Assembly(real.name, (part,), real.axes, real.drive, names=real.names), None)
         draft.select(frozenset({DRAFT}))
         draft.changed.connect(self._show)
         draft.refused.connect(self._refuse)
@@ -192,9 +194,16 @@ class Maker(QWidget):
         form.setAttribute(Qt.WidgetAttribute.WA_StyledBackground, on=True)
         body = ShapeSection(draft, form, part)
         body.tried = self._try
-        self._sections = [body, MassSection(draft, form, part)]
+        self._sections = [body, *self._outline(draft, form, part), MassSection(draft, form, part)]
         self._page.setWidget(form)
         self.go_on()
+
+    def _outline(self, draft: Session, form: Form, part: Part) -> list[Section]:
+        if not is_profile(part):
+            return []
+        section = OutlineSection(draft, form, part)
+        section.tried = self._try
+        return [section]
 
     def go_on(self) -> None:
         """Put the keyboard into the first dimension, its text selected."""
@@ -221,7 +230,8 @@ class Maker(QWidget):
         """Return the part as its fields say it; None where a field says why it cannot be."""
         part = self._part()
         wrong = [field for field in self._page.findChildren(QuantityField) if not field.wrong.isHidden()]
-        if part is None or wrong:
+        mending = any(isinstance(each, OutlineSection) and each.refusal for each in self._sections)
+        if part is None or wrong or mending:
             for field in wrong[:1]:
                 field.line.setFocus(Qt.FocusReason.OtherFocusReason)
             return None

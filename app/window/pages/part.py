@@ -9,6 +9,7 @@ from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QApplication, QFrame, QScrollArea, QVBoxLayout, QWidget
 
 from app.window.fields import Form, QuantityField, TextField
+from app.window.outline.section import OutlineSection, is_profile
 from app.window.pages.part_body import KnownSection, ShapeSection
 from app.window.pages.part_mass import MassSection
 from app.window.pages.part_mesh import MeshSection
@@ -138,6 +139,8 @@ def _sections(session: Session, form: Form, node: Node) -> list[Section]:
     if isinstance(node, Part):
         if isinstance(node.body, ShapeBody):
             sections.append(ShapeSection(session, form, node))
+            if is_profile(node):
+                sections.append(OutlineSection(session, form, node))
         elif isinstance(node.body, MeshBody):
             sections.append(MeshSection(session, form, node))
         else:

@@ -17,6 +17,7 @@ from core.assembly import KnownAxial, KnownTensor, Node, Part, ShapeBody
 from core.assembly.fields import kind_of, typed_for
 from core.errors import EditRefused, MasswrightError
 from core.quantity import UNITS, Kind
+from core.shapes import OutlinedShape
 from core.shapes.sections import section_sizes
 
 if TYPE_CHECKING:
@@ -26,6 +27,8 @@ if TYPE_CHECKING:
     from core.shapes import Dimension, Shape
 
 OWN_SIZE = "own dimensions"
+# Height of the picture, px, where a canvas stands below it.
+BESIDE_AN_OUTLINE = 112
 TENSOR_LABELS = ("Ixx", "Iyy", "Izz", "Ixy", "Ixz", "Iyz")
 TENSOR_TIP = "Tensor elements: Ixy = −∫xy dm. Where the data sheet prints +∫xy dm, change the sign of the products."
 
@@ -44,7 +47,8 @@ class ShapeSection(Section):
         self.tried: Callable[[Shape | None, str], None] = lambda _shape, _refusal: None
         self._shown = shape
         self._fields: dict[str, QuantityField] = {}
-        self._picture = ShapePicture()
+        # A profile has its outline below, and one dimension.
+        self._picture = ShapePicture(BESIDE_AN_OUTLINE) if isinstance(shape, OutlinedShape) else ShapePicture()
         rows = Form()
         self._size = self._size_field(rows, shape)
         for dimension in shape.dimensions:
