@@ -47,6 +47,8 @@ class Actions:
         self.recent = QMenu("Open recent", window)
         self.axes = ChoiceField("Drive axis", [])
         self.units = ChoiceField("Units", [(name, name) for name in UNIT_SETS])
+        self.variants = ChoiceField("Variant", [])
+        self._variant_shown: list[QAction] = []
         self._menus()
         self._toolbar()
 
@@ -101,7 +103,9 @@ class Actions:
             Command("Copy with headings", w.copy_with_headings, "Ctrl+Shift+C"),
             Command("Copy sheet", w.copy_sheet, "Ctrl+Alt+C"),
             Command("Paste into the ledger", w.ledger.paste, Keys.Paste), None,
-            self._delete_action(),
+            self._delete_action(), None,
+            Command("Named dimensions…", w.edit_names, "Ctrl+D", tip="Values that number fields use by their names."),
+            Command("Variants…", w.edit_variants, tip="Lines that are in some variants of the machine only."),
         ])
         self._fill(bar.addMenu("&Part"), [
             Command("Add shape…", w.open_gallery, "Ctrl+B", tip="Opens the gallery of shapes."), self.shapes,
@@ -179,12 +183,22 @@ class Actions:
         stretch = QWidget()
         stretch.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Preferred)
         bar.addWidget(stretch)
-        for words, field in (("Drive axis", self.axes), ("Units", self.units)):
+        for words, field in (("Variant", self.variants), ("Drive axis", self.axes), ("Units", self.units)):
             label = Words(words, "quiet")
             label.setContentsMargins(GRID, 0, GRID // 2, 0)
-            bar.addWidget(label)
-            bar.addWidget(field)
+            shown = [bar.addWidget(label), bar.addWidget(field)]
+            if field is self.variants:
+                self._variant_shown = shown
         w.addToolBar(bar)
+
+    def show_variants(self, variants: tuple[str, ...], chosen: str) -> None:
+        """Offer the variants of the document, and all lines at once; a document without any offers no choice."""
+        self.variants.clear()
+        for name, words in (("", "all lines"), *((name, name) for name in variants)):
+            self.variants.addItem(words, name)
+        self.variants.set_value(chosen)
+        for action in self._variant_shown:
+            action.setVisible(bool(variants))
 
     def redraw_icons(self) -> None:
         """Draw the icons again, in the colours of another theme."""

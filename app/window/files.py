@@ -161,6 +161,11 @@ class Files(QObject):
         dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         dialog.open()
 
+    def show_beside(self, dialog: QDialog) -> None:
+        """Show a dialog that lets the window be used meanwhile; it goes when it is closed."""
+        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        dialog.show()
+
     def when_safe(self, go_on: Callable[[], object]) -> None:
         """Go on at once, or once the user has decided about unsaved work; never ask twice at the same time."""
         if not self._session.unsaved:

@@ -29,6 +29,8 @@ from app.window.crash import CrashReporter
 from app.window.dialogs.add_mesh import AddMeshDialog
 from app.window.dialogs.axis import AxisDialog
 from app.window.dialogs.known_part import KnownPartDialog
+from app.window.dialogs.names import NamesDialog
+from app.window.dialogs.variants import VariantsDialog
 from app.window.files import Files
 from app.window.gallery.panel import GalleryPanel
 from app.window.ledger.view import LedgerPane
@@ -148,6 +150,7 @@ class MainWindow(QMainWindow):
         self.ledger.tree.hovered.connect(self._hover)
         a.axes.chosen.connect(self._choose_axis)
         a.units.chosen.connect(self._choose_units)
+        a.variants.chosen.connect(self._choose_variant)
         a.recent.aboutToShow.connect(lambda: self.files.fill_recent(a.recent))
 
     def _restore(self) -> None:
@@ -180,6 +183,7 @@ class MainWindow(QMainWindow):
         for axis in s.assembly.axes:
             a.axes.addItem(axis.name, axis.name)
         a.axes.set_value(s.assembly.drive)
+        a.show_variants(s.assembly.variants, s.assembly.variant)
         if a.units.findData(s.units.name) < 0:
             a.units.addItem(s.units.name, s.units.name)
         a.units.set_value(s.units.name)
@@ -237,6 +241,10 @@ class MainWindow(QMainWindow):
 
     def _choose_axis(self, name: object) -> None:
         self.session.edit(f"Drive axis {name}", lambda before: replace(before, drive=str(name)))
+
+    def _choose_variant(self, name: object) -> None:
+        words = f"Variant {name}" if name else "All lines count"
+        self.session.edit(words, lambda before: replace(before, variant=str(name)))
 
     def _choose_units(self, name: object) -> None:
         if str(name) in UNIT_SETS:
@@ -316,6 +324,14 @@ class MainWindow(QMainWindow):
     def edit_axis(self) -> None:
         """Edit the drive axis."""
         self.files.show_dialog(AxisDialog(self.session, self.session.assembly.drive_axis, self))
+
+    def edit_names(self) -> None:
+        """Show the table of named dimensions beside the window."""
+        self.files.show_beside(NamesDialog(self.session, self))
+
+    def edit_variants(self) -> None:
+        """Show the list of variants beside the window."""
+        self.files.show_beside(VariantsDialog(self.session, self))
 
     def new_axis(self) -> None:
         """Add an axis; it becomes the drive axis."""

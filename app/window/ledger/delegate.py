@@ -165,7 +165,7 @@ class CellEditor(QLineEdit):
 
 
 def _pen(line: Line, column: int, c: Colours) -> QColor:
-    if line.kind == "cut":
+    if line.kind == "cut" or not line.counts:
         return QColor(c.quiet)
     if column == INDEX["material"]:
         if line.basis == "not set":
@@ -180,7 +180,8 @@ def _pen(line: Line, column: int, c: Colours) -> QColor:
 def _paint_figure(painter: QPainter, rect: QRect, text: str, mark: str, room: int) -> None:
     """Draw a number with room pixels from its decimal mark to the edge, so that all marks of a column line up."""
     whole, point, part = text.partition(mark)
-    middle = rect.right() - room
+    # A number too long for its column leaves the line of the marks rather than its first digits.
+    middle = max(rect.right() - room, rect.left() - GRID + painter.fontMetrics().horizontalAdvance(whole))
     flags = int(Qt.AlignmentFlag.AlignVCenter)
     painter.drawText(QRect(rect.left() - GRID, rect.top(), middle - rect.left() + GRID, rect.height()),
                      flags | int(Qt.AlignmentFlag.AlignRight), whole)

@@ -14,6 +14,7 @@ from app.window.pages.part_body import KnownSection, ShapeSection
 from app.window.pages.part_mass import MassSection
 from app.window.pages.part_mesh import MeshSection
 from app.window.pages.part_place import CopiesSection, PlaceSection
+from app.window.pages.part_variants import VariantsSection
 from app.window.pages.section import Section
 from app.window.style import GRID, Words
 from core.assembly import Group, MeshBody, Node, Part, ShapeBody
@@ -71,7 +72,8 @@ class PartPage(QScrollArea):
     def refresh(self) -> None:
         """Show the selected line as it is now."""
         node = self._selected()
-        signature = _signature(node) if node else len(self._session.selected)
+        inside = _signature(node) if node else len(self._session.selected)
+        signature = (inside, self._session.assembly.variants)
         if signature != self._signature:
             self._signature = signature
             self._build(node)
@@ -148,4 +150,6 @@ def _sections(session: Session, form: Form, node: Node) -> list[Section]:
         if isinstance(node.body, ShapeBody | MeshBody):
             sections.append(MassSection(session, form, node))
     sections += [PlaceSection(session, form, node), CopiesSection(session, form, node)]
+    if session.assembly.variants:
+        sections.append(VariantsSection(session, form, node))
     return sections

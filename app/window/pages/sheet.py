@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QHeaderView, QPush
 
 from app.window.fields import ChoiceField
 from app.window.numbers import copied, preview, shown
+from app.window.pages.variant_totals import VariantTotals
 from app.window.style import GRID, Words, colours, icon
 from core.handover import Entry, Sheet, SheetChoice, sheet_of_assembly, tsv_of_sheet
 from core.quantity import UNITS
@@ -180,11 +181,14 @@ class SheetPage(QWidget):
         self.copy_all = QPushButton(icon("copy"), "Copy sheet")
         self.copy_all.setToolTip("Copies name, value and unit of every line, tab-separated, for a spreadsheet.")
         self.copy_all.clicked.connect(self.copy_sheet)
+        self.variants = VariantTotals(session)
         self.told = Words("", "quiet")
         self.told.setWordWrap(True)
         self.told.setAlignment(Qt.AlignmentFlag.AlignTop)
         self._lay_out()
         self.table.copy_wanted.connect(self.copy_row)
+        self.variants.itemSelectionChanged.connect(self._leave_sheet)
+        self.table.selectionModel().selectionChanged.connect(lambda *_: self._leave_variants())
         for field in (self.of, self.about, self.along, self.products):
             field.chosen.connect(lambda _value: self.refresh())
         for signal in (session.changed, session.selection_changed, session.shown_differently):
@@ -204,6 +208,7 @@ class SheetPage(QWidget):
         layout.setSpacing(GRID)
         layout.addLayout(choices)
         layout.addWidget(self.table, 1)
+        layout.addWidget(self.variants)
         layout.addWidget(self.told)
 
     @property
@@ -214,6 +219,15 @@ class SheetPage(QWidget):
         )
         key = self._key() if self.of.currentData() == "selected" else None
         return sheet_of_assembly(self._session.assembly, choice, self._session.units, key)
+
+    def _leave_sheet(self) -> None:
+        """Select in one of the two tables only, so that it is clear what is copied."""
+        if self.variants.selectedItems():
+            self.table.clearSelection()
+
+    def _leave_variants(self) -> None:
+        if self.table.selectionModel().hasSelection():
+            self.variants.clearSelection()
 
     def _key(self) -> str | None:
         """Return the key of the selected line, when exactly one is; of a cut that of its part."""
@@ -227,6 +241,7 @@ class SheetPage(QWidget):
         for widget in (self.table, self.of, self.about, self.along, self.products, self.copy_all):
             widget.setVisible(not empty)
         sheet = self.sheet
+        self.variants.refresh()
         self.model.show(sheet)
         header = self.table.horizontalHeader()
         self.table.clearSpans()
@@ -264,6 +279,9 @@ class SheetPage(QWidget):
 
     def copy_selection(self) -> None:
         """Put the selected values on the clipboard, one below the other; nothing selected: the sheet."""
+        if self.variants.selectedItems():
+            self.variants.copy_table()
+            return
         rows = sorted({index.row() for index in self.table.selectedIndexes()})
         values = [entry for entry in (self.model.rows[row] for row in rows) if isinstance(entry, Entry)]
         if not values:
