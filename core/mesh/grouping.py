@@ -44,7 +44,7 @@ class Groups:
     @property
     def numbers(self) -> IntArray:
         """The group number of each place (n,)."""
-        return np.cumsum(self.first) - 1
+        return np.repeat(np.arange(len(self.starts)), self.sizes)
 
     @property
     def ranks(self) -> IntArray:
@@ -89,14 +89,15 @@ def group_equal(keys: Keys) -> Groups:
 
 
 def _told_apart(keys: Keys, order: IntArray, new_run: BoolArray, clash: BoolArray) -> IntArray:
-    """Sort those runs by key in which different keys stand mixed."""
-    run = np.concatenate([[0], np.cumsum(new_run)])
-    mixed = np.zeros(run[-1] + 1, dtype=bool)
-    mixed[run[1:][clash]] = True
-    places = np.flatnonzero(mixed[run])
+    """Sort those runs by key in which different keys stand mixed; they are few."""
+    starts = np.concatenate([[0], np.flatnonzero(new_run) + 1, [len(order)]])
+    runs = np.unique(np.searchsorted(starts, np.flatnonzero(clash) + 1, side="right")) - 1
+    sizes = starts[runs + 1] - starts[runs]
+    run = np.repeat(runs, sizes)
+    places = np.repeat(starts[runs] - (np.cumsum(sizes) - sizes), sizes) + np.arange(len(run))
     members = order[places]
     result = order.copy()
-    result[places] = members[np.lexsort((members, keys[members], run[places]))]
+    result[places] = members[np.lexsort((members, keys[members], run))]
     return result
 
 

@@ -70,6 +70,14 @@ def test_facets_for_view_keep_to_the_most_that_is_asked_for():
         assert len(asset.facets_for_view(most).corners) <= most
 
 
+def test_a_mesh_that_is_drawn_lighter_says_so_and_is_computed_whole():
+    asset = MeshAsset.of_bytes(binary_stl(ring_grid(500, 310)), "ring.stl")
+    assert asset.survey.triangles == 310_000
+    assert asset.drawn_lighter
+    assert len(asset.facets_for_view().corners) <= 300_000
+    assert not MeshAsset.of_bytes(binary_stl(BOX), "box.stl").drawn_lighter
+
+
 def test_the_package_offers_what_its_list_says():
     assert core.mesh.__all__ == [
         "AT_ONCE", "MeshAsset", "MeshSurvey", "can_restore", "count_shells", "restored", "survey_file",

@@ -242,3 +242,43 @@ def test_a_triangle_that_is_not_finite_is_refused():
     broken[3, 0, 1] = np.nan
     with pytest.raises(MeshFileError, match=r"bracket, facet 4: a coordinate is not a finite number; read y of corner 1 = nan"):
         survey_triangles(broken, name="bracket")
+
+
+def test_what_flat_caps_may_leave_out_grows_with_the_hole():
+    # 2/3·A·√(A/π): a hemisphere on a round hole of the same area.
+    triangles = quartered(BOX, 3)
+    top = (triangles[..., 2] == 20).all(axis=1)
+    hole = top & (triangles[..., 0] <= 20).all(axis=1) & (triangles[..., 1] <= 15).all(axis=1)
+    for missing, area in ((hole, 300.0), (top, 1200.0)):
+        survey = survey_triangles(triangles[~missing])
+        bulge = 2 / 3 * area * np.sqrt(area / np.pi)
+        assert survey.basis == "estimated: holes closed flat"
+        assert survey.open_volume == pytest.approx(bulge, rel=1e-12)
+        assert survey.open_centre == pytest.approx(bulge * DIAGONAL / VOLUME, rel=1e-12)
+        assert survey.open_inertia == pytest.approx(bulge * DIAGONAL**2, rel=1e-12)
+    assert survey_triangles(BOX).open_volume == 0
+
+
+def test_a_missing_half_of_a_ball_is_within_what_the_flat_cap_may_leave_out():
+    # Circles of latitude, the equator among them, so that the edge of the hole is a circle.
+    latitude, longitude = np.meshgrid(np.linspace(-np.pi / 2, np.pi / 2, 41), np.linspace(0, 2 * np.pi, 120, endpoint=False))
+    around = np.stack([np.cos(latitude) * np.cos(longitude), np.cos(latitude) * np.sin(longitude), np.sin(latitude)], axis=-1)
+    ball = hull(np.unique(around.reshape(-1, 3).round(9), axis=0))
+    open_ball = ball[~(ball[..., 2] >= 0).all(axis=1)]
+    survey = survey_triangles(open_ball)
+    left_out = float(survey_triangles(ball).solid.mass) - float(survey.solid.mass)
+    assert survey.verdict == "open"
+    assert survey.open_volume == pytest.approx(2 / 3 * np.pi, rel=2e-3)
+    assert left_out == pytest.approx(survey.open_volume, rel=5e-3)
+
+
+@pytest.mark.parametrize("width", [1e-5, 1e-4])
+def test_cracks_wider_than_a_hairline_are_sewn_and_bounded(width):
+    # Every facet's corners are moved on their own: caps over each facet's own edge would enclose nothing.
+    rng = np.random.default_rng(8)
+    survey = survey_triangles(quartered(BOX, 2) + rng.uniform(-1, 1, (192, 3, 3)) * width * DIAGONAL)
+    assert (survey.verdict, survey.basis, survey.closed) == ("open", "estimated: cracks closed", False)
+    assert abs(float(survey.solid.mass) - VOLUME) <= survey.crack_volume < 100 * width * VOLUME
+    worst = np.abs(np.linalg.eigvalsh(survey.solid.inertia_about_centre - exact_box().inertia_about_centre)).max()
+    assert worst <= survey.crack_inertia
+    assert survey.open_volume == 0
