@@ -146,6 +146,7 @@ def _sheet(c: Colours) -> str:
     QFrame#notice {{ background: {c.ground}; border-bottom: 1px solid {c.hairline}; }}
     QToolButton::menu-indicator {{ image: url({(ICONS / "open.svg").as_posix()}); width: 10px; height: 10px;
                                    subcontrol-position: right center; subcontrol-origin: padding; right: 2px; }}
+    QWidget#page QToolButton[popupMode="2"] {{ border-color: {c.hairline}; background: {c.ground}; }}
     QToolButton[popupMode="2"] {{ padding-right: 20px; }}
     QProgressBar {{ border: 1px solid {c.hairline}; border-radius: 2px; background: {c.ground}; text-align: center;
                     max-height: 16px; }}

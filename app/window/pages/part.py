@@ -11,16 +11,18 @@ from PySide6.QtWidgets import QApplication, QFrame, QScrollArea, QVBoxLayout, QW
 from app.window.fields import Form, QuantityField, TextField
 from app.window.outline.section import OutlineSection, is_profile
 from app.window.pages.part_body import KnownSection, ShapeSection
+from app.window.pages.part_cuts import CutHead, CutsSection
 from app.window.pages.part_mass import MassSection
 from app.window.pages.part_mesh import MeshSection
 from app.window.pages.part_place import CopiesSection, PlaceSection
 from app.window.pages.part_variants import VariantsSection
 from app.window.pages.section import Section
 from app.window.style import GRID, Words
-from core.assembly import Group, MeshBody, Node, Part, ShapeBody
+from core.assembly import Cut, Group, MeshBody, Part, ShapeBody
 
 if TYPE_CHECKING:
     from app.window.session import Session
+    from core.assembly.fields import AnyLine
 
 NOTHING = (
     "Select a line of the ledger, or click a part in the view, to edit it here.\n"
@@ -31,7 +33,7 @@ NOTHING = (
 class NameSection(Section):
     """The name of the line, and a note on it."""
 
-    def __init__(self, session: Session, form: Form, node: Node) -> None:
+    def __init__(self, session: Session, form: Form, node: AnyLine) -> None:
         super().__init__(session, form, node.key)
         self._name = TextField("Name")
         form.add("name", self._name)
@@ -40,7 +42,7 @@ class NameSection(Section):
         self._name.entered.connect(self._rename)
         self._note.entered.connect(lambda text: self.edit("Note", lambda line: replace(line, note=text)))
 
-    def show(self, node: Node) -> None:
+    def show(self, node: AnyLine) -> None:
         """Show name and note."""
         self._name.set_value(node.name)
         self._note.set_value(node.note)
@@ -49,7 +51,7 @@ class NameSection(Section):
         if text.strip():
             self.edit(f"Rename to {text.strip()}", lambda node: replace(node, name=text.strip()))
         else:
-            self._name.set_value(self.session.assembly.node(self.key).name)
+            self._name.set_value(self.session.assembly.line(self.key).name)
 
 
 class PartPage(QScrollArea):
@@ -90,12 +92,12 @@ class PartPage(QScrollArea):
                 field.line.selectAll()
                 return
 
-    def _selected(self) -> Node | None:
+    def _selected(self) -> AnyLine | None:
         if len(self._session.selected) != 1:
             return None
-        return self._session.assembly.node_of_line(next(iter(self._session.selected)))
+        return self._session.assembly.line(next(iter(self._session.selected)))
 
-    def _build(self, node: Node | None) -> None:
+    def _build(self, node: AnyLine | None) -> None:
         page = QWidget()
         page.setObjectName("page")
         layout = QVBoxLayout(page)
@@ -128,16 +130,22 @@ class PartPage(QScrollArea):
             old.deleteLater()
 
 
-def _signature(node: Node) -> tuple[object, ...]:
+def _signature(node: AnyLine) -> tuple[object, ...]:
     """Return what decides which fields a line has."""
     if isinstance(node, Group):
         return (node.key, Group, type(node.copies))
+    if isinstance(node, Cut):
+        return (node.key, Cut, type(node.shape), type(node.copies))
     inner = type(node.body.shape) if isinstance(node.body, ShapeBody) else getattr(node.body, "about", "")
     return (node.key, type(node.body), inner, type(node.copies))
 
 
-def _sections(session: Session, form: Form, node: Node) -> list[Section]:
+def _sections(session: Session, form: Form, node: AnyLine) -> list[Section]:
     sections: list[Section] = [NameSection(session, form, node)]
+    if isinstance(node, Cut):
+        sections += [CutHead(session, form, node), ShapeSection(session, form, node)]
+        if is_profile(node):
+            sections.append(OutlineSection(session, form, node))
     if isinstance(node, Part):
         if isinstance(node.body, ShapeBody):
             sections.append(ShapeSection(session, form, node))
@@ -148,8 +156,8 @@ def _sections(session: Session, form: Form, node: Node) -> list[Section]:
         else:
             sections.append(KnownSection(session, form, node))
         if isinstance(node.body, ShapeBody | MeshBody):
-            sections.append(MassSection(session, form, node))
+            sections += [MassSection(session, form, node), CutsSection(session, form, node)]
     sections += [PlaceSection(session, form, node), CopiesSection(session, form, node)]
-    if session.assembly.variants:
+    if session.assembly.variants and not isinstance(node, Cut):
         sections.append(VariantsSection(session, form, node))
     return sections

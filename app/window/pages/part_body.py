@@ -13,8 +13,8 @@ from app.window.gallery.drawing import can_be_drawn
 from app.window.gallery.families import size_named_for
 from app.window.gallery.picture import ShapePicture
 from app.window.pages.section import Section
-from core.assembly import KnownAxial, KnownTensor, Node, Part, ShapeBody
-from core.assembly.fields import kind_of, typed_for
+from core.assembly import Cut, KnownAxial, KnownTensor, Part, ShapeBody
+from core.assembly.fields import AnyLine, kind_of, typed_for
 from core.errors import EditRefused, MasswrightError
 from core.quantity import UNITS, Kind
 from core.shapes import OutlinedShape
@@ -40,7 +40,7 @@ class ShapeSection(Section):
         tried: told of the shape that a text being typed would make, or of None and the sentence that refuses it.
     """
 
-    def __init__(self, session: Session, form: Form, part: Part) -> None:
+    def __init__(self, session: Session, form: Form, part: Part | Cut) -> None:
         super().__init__(session, form, part.key)
         shape = _shape(part)
         form.heading(f"Dimensions of the {shape.title}")
@@ -62,7 +62,7 @@ class ShapeSection(Section):
         if shape.note:
             form.say(shape.note)
 
-    def _add(self, rows: Form, part: Part, dimension: Dimension) -> None:
+    def _add(self, rows: Form, part: Part | Cut, dimension: Dimension) -> None:
         unit = UNITS["°"] if dimension.kind == "angle" else None
         kind = kind_of(part, f"dimension.{dimension.name}")
         field = QuantityField(self.session, dimension.label, kind, unit)
@@ -85,7 +85,7 @@ class ShapeSection(Section):
         rows.add("standard size", field)
         return field
 
-    def show(self, node: Node) -> None:
+    def show(self, node: AnyLine) -> None:
         """Show the dimensions."""
         self._shown = _shape(node)
         values = self._shown.values()
@@ -117,14 +117,21 @@ class ShapeSection(Section):
         if size is None:
             return
 
-        def change(node: Node) -> Node:
-            resized = ShapeBody(_shape(node).resized(size.dimensions))
-            return replace(node, body=resized) if isinstance(node, Part) else node
+        def change(node: AnyLine) -> AnyLine:
+            return _with_shape(node, _shape(node).resized(size.dimensions))
 
-        self.edit(f"Size of {self.session.assembly.node(self.key).name}: {size.name}", change)
+        self.edit(f"Size of {self.session.assembly.line(self.key).name}: {size.name}", change)
 
 
-def _shape(node: Node) -> Shape:
+def _with_shape(line: AnyLine, shape: Shape) -> AnyLine:
+    if isinstance(line, Cut):
+        return replace(line, shape=shape)
+    return replace(line, body=ShapeBody(shape)) if isinstance(line, Part) else line
+
+
+def _shape(node: AnyLine) -> Shape:
+    if isinstance(node, Cut):
+        return node.shape
     if isinstance(node, Part) and isinstance(node.body, ShapeBody):
         return node.body.shape
     raise EditRefused("this line is no shape", where=node.name)
@@ -170,7 +177,7 @@ class KnownSection(Section):
         self.bind(length, "Length", "known.length")
         return [inertia, length]
 
-    def show(self, node: Node) -> None:
+    def show(self, node: AnyLine) -> None:
         """Show the data sheet's values."""
         if not (isinstance(node, Part) and isinstance(node.body, KnownTensor | KnownAxial)):
             return
@@ -186,7 +193,7 @@ class KnownSection(Section):
             self._inertia[1].set_value(body.length, typed_for(node, "known.length"))
 
 
-def _known(node: Node, **values: object) -> Node:
+def _known(node: AnyLine, **values: object) -> AnyLine:
     if isinstance(node, Part) and isinstance(node.body, KnownTensor | KnownAxial):
         return replace(node, body=replace(node.body, **values))  # type: ignore[arg-type]  # fields of either class
     raise EditRefused("this line has no data sheet", where=node.name)

@@ -10,8 +10,8 @@ from PySide6.QtCore import Qt
 from app.window.fields import ChoiceField, Form, QuantityField
 from app.window.numbers import shown
 from app.window.pages.section import Section
-from core.assembly import Driver, Node, Part
-from core.assembly.fields import Numbered, typed_for, value_of
+from core.assembly import Driver, Part
+from core.assembly.fields import AnyLine, Numbered, typed_for, value_of
 from core.errors import EditRefused
 from core.material import MATERIALS, ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, material
 from core.quantity import Kind
@@ -93,7 +93,7 @@ class MassSection(Section):
         self.bind(field, entry.words, entry.path)
         return field
 
-    def show(self, node: Node) -> None:
+    def show(self, node: AnyLine) -> None:
         """Show what says the mass, and what follows from it."""
         if not isinstance(node, Part):
             return
@@ -160,7 +160,7 @@ class MassSection(Section):
             self._refuse("")
             return
 
-        def change(line: Node) -> Node:
+        def change(line: AnyLine) -> AnyLine:
             found = material(text)
             return _driven(line, ByMaterial(found.name, found.density))
 
@@ -191,7 +191,7 @@ def _same_mass(kind: type, part: Part) -> Driver | None:
     return fitting[2](mass / part.extent) if fitting is not None and kind is fitting[2] else None
 
 
-def _driven(node: Node, driver: Driver) -> Node:
+def _driven(node: AnyLine, driver: Driver) -> AnyLine:
     if not isinstance(node, Part):
         raise EditRefused("a group has no material of its own", where=node.name)
     return replace(node, driver=driver)

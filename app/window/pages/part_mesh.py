@@ -13,12 +13,13 @@ from app.window.pages.mesh_findings import MeshFindings
 from app.window.pages.section import Section
 from app.window.style import GRID, Words
 from app.window.tasks import Task
-from core.assembly import MeshBody, Node, Part, compare_mesh
+from core.assembly import MeshBody, Part, compare_mesh
 from core.mesh import MeshAsset, can_restore
 from core.quantity import UNITS, Kind
 
 if TYPE_CHECKING:
     from app.window.session import Session
+    from core.assembly.fields import AnyLine
     from core.assembly.mesh_part import Comparison
     from core.mesh.curvature import Restored
 
@@ -58,7 +59,7 @@ class MeshSection(Section):
         self._counts.chosen.connect(self._choose_counts)
         self._task: Task[Restored | None] | None = None
 
-    def show(self, node: Node) -> None:
+    def show(self, node: AnyLine) -> None:
         """Show the mesh's file, verdict, size and both sets of values."""
         if not (isinstance(node, Part) and isinstance(node.body, MeshBody)):
             return
@@ -96,7 +97,7 @@ class MeshSection(Section):
     def _put_in_place(self, asset: MeshAsset, words: str) -> None:
         """Put a mended mesh in the place of the one it was made from."""
 
-        def change(node: Node) -> Node:
+        def change(node: AnyLine) -> AnyLine:
             if isinstance(node, Part) and isinstance(node.body, MeshBody):
                 return replace(node, body=replace(node.body, asset=asset))
             return node
@@ -104,7 +105,7 @@ class MeshSection(Section):
         self.edit(f"{words} {self.session.assembly.node(self.key).name}", change)
 
     def _choose_unit(self, factor: object) -> None:
-        def change(node: Node) -> Node:
+        def change(node: AnyLine) -> AnyLine:
             if isinstance(node, Part) and isinstance(node.body, MeshBody) and isinstance(factor, float):
                 return replace(node, body=replace(node.body, metres_per_unit=factor))
             return node
@@ -112,7 +113,7 @@ class MeshSection(Section):
         self.edit(f"Unit of {self.session.assembly.node(self.key).name}: {self._unit.currentText()}", change)
 
     def _choose_counts(self, counts: object) -> None:
-        def change(node: Node) -> Node:
+        def change(node: AnyLine) -> AnyLine:
             if isinstance(node, Part) and isinstance(node.body, MeshBody):
                 return replace(node, body=replace(node.body, counts="restored" if counts == "restored" else "faceted"))
             return node

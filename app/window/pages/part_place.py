@@ -13,7 +13,7 @@ from core.quantity import UNITS, Kind
 
 if TYPE_CHECKING:
     from app.window.session import Session
-    from core.assembly import Node
+    from core.assembly.fields import AnyLine
 
 PATTERNS: list[tuple[str, object]] = [
     ("at one place", Several),
@@ -26,7 +26,7 @@ PATTERNS: list[tuple[str, object]] = [
 class PlaceSection(Section):
     """Position and turns in the frame that holds the line."""
 
-    def __init__(self, session: Session, form: Form, node: Node) -> None:
+    def __init__(self, session: Session, form: Form, node: AnyLine) -> None:
         super().__init__(session, form, node.key)
         form.heading("Placement")
         self._position = TripleField(session, "position", Kind.LENGTH)
@@ -37,7 +37,7 @@ class PlaceSection(Section):
             self.bind(here, f"Position {'xyz'[at]}", f"position.{at}")
             self.bind(turn, f"Turn about {'xyz'[at]}", f"turn.{at}")
 
-    def show(self, node: Node) -> None:
+    def show(self, node: AnyLine) -> None:
         """Show position and turns."""
         self._position.set_values(node.pose.position, lambda at: typed_for(node, f"position.{at}"))
         self._turns.set_values(node.pose.turns, lambda at: typed_for(node, f"turn.{at}"))
@@ -46,7 +46,7 @@ class PlaceSection(Section):
 class CopiesSection(Section):
     """How often the line is there, and where its copies stand."""
 
-    def __init__(self, session: Session, form: Form, node: Node) -> None:
+    def __init__(self, session: Session, form: Form, node: AnyLine) -> None:
         super().__init__(session, form, node.key)
         form.heading("Repeats")
         self._pattern = ChoiceField("How it repeats", PATTERNS)
@@ -91,7 +91,7 @@ class CopiesSection(Section):
             self.bind(field, label, f"copies.{name}.{at}")
         self._triples.append((name, triple))
 
-    def show(self, node: Node) -> None:
+    def show(self, node: AnyLine) -> None:
         """Show how the line repeats."""
         self._pattern.set_value(type(node.copies))
         if self._count is not None:
@@ -106,19 +106,19 @@ class CopiesSection(Section):
             self._turning.set_value(node.copies.turning)
 
     def _choose(self, pattern: object) -> None:
-        def change(node: Node) -> Node:
+        def change(node: AnyLine) -> AnyLine:
             count = node.copies.count
             fresh: dict[object, Copies] = {
                 Several: Several(count), Ring: Ring(max(count, 2)), Row: Row(max(count, 2)), Mirrored: Mirrored(),
             }
             return node if isinstance(node.copies, type(fresh[pattern])) else replace(node, copies=fresh[pattern])
 
-        name = self.session.assembly.node(self.key).name
+        name = self.session.assembly.line(self.key).name
         self.edit(f"{name} repeats {self._pattern.currentText()}", change)
 
     def _choose_turning(self, turning: object) -> None:
         self.edit("Orientation of the copies", lambda node: _copies_with(node, turning=bool(turning)))
 
 
-def _copies_with(node: Node, **values: object) -> Node:
+def _copies_with(node: AnyLine, **values: object) -> AnyLine:
     return replace(node, copies=replace(node.copies, **values))  # type: ignore[arg-type]  # fields of one of the patterns

@@ -5,15 +5,15 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import TYPE_CHECKING
 
-from core.assembly import Assembly, Node
-from core.assembly.fields import with_typed, with_value
+from core.assembly.fields import AnyLine, with_typed, with_value
 
 if TYPE_CHECKING:
     from app.window.fields import Form, QuantityField
     from app.window.session import Session
+    from core.assembly import Assembly
 
 # A change to one line: the line as it is in, the line as it is to be out.
-Change = Callable[[Node], Node]
+Change = Callable[[AnyLine], AnyLine]
 
 
 class Section:
@@ -24,7 +24,7 @@ class Section:
         self.form = form
         self.key = key
 
-    def show(self, node: Node) -> None:
+    def show(self, node: AnyLine) -> None:
         """Show the values of the line as it is now."""
         raise NotImplementedError
 
@@ -32,7 +32,7 @@ class Section:
         """Try an edit of the line; return "" or the sentence that refuses it."""
 
         def on_assembly(assembly: Assembly) -> Assembly:
-            return assembly.replaced(change(assembly.node(self.key)))
+            return assembly.with_line(change(assembly.line(self.key)))
 
         return self.session.attempt(name, on_assembly)
 
@@ -41,13 +41,13 @@ class Section:
         refusal = self.attempt(name, change)
         if refusal:
             self.session.refused.emit(refusal)
-            self.show(self.session.assembly.node(self.key))
+            self.show(self.session.assembly.line(self.key))
 
     def bind(self, field: QuantityField, words: str, path: str) -> None:
         """Let a field edit the number under a path of the line; the text as typed is kept there, too."""
 
         def entered(value: float, text: str) -> None:
-            name = self.session.assembly.node(self.key).name
+            name = self.session.assembly.line(self.key).name
             shown = field.line.text().strip()
             refusal = self.attempt(
                 f"{words} of {name}: {shown}", lambda node: with_typed(with_value(node, path, value), path, text)
