@@ -7,7 +7,7 @@ ledger) has let go of its text.
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, TypeVar
 
 from core.assembly.fields import AnyLine, kind_of, value_of, with_values, words_of
@@ -17,10 +17,10 @@ from core.errors import EditRefused, QuantityError, ValueRefused
 from core.quantity import check_name, names_in, parse, with_names_changed
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
+    from collections.abc import Callable, Collection, Iterable, Iterator, Mapping, Sequence
 
     from core.assembly.assembly import Assembly
-    from core.quantity import Names
+    from core.quantity import Kind, Names
 
 Each = TypeVar("Each", bound=AnyLine)
 
@@ -68,7 +68,7 @@ def with_entries(assembly: Assembly, entries: Iterable[NameEntry]) -> Assembly:
         return edited
     old = {entry.name: entry for entry in entries_of(assembly)}
     changed = {entry.name for entry in kept if old.get(entry.name) != entry}
-    reader = _Reader(moved, before, after, {entry.name: entry for entry in kept}, changed)
+    reader = _Reader(_Readings(before, moved), after, {entry.name: entry for entry in kept}, changed)
     return replace(edited, members=_mapped(assembly.members, reader.read_again))
 
 
@@ -119,27 +119,46 @@ def with_name_changed(assembly: Assembly, name: str, new: str) -> Assembly:
 
 def uses_of(assembly: Assembly, name: str) -> tuple[Use, ...]:
     """Return every named dimension and every number of a line that a name says, in the order of the ledger."""
-    names = values_of(assembly.names)
-    found = [Use("", one.name, one.text) for one in assembly.names if name in names_in(one.text, names)]
+    readings = _Readings(values_of(assembly.names), {name})
+    found = [Use("", one.name, one.text) for one in assembly.names if readings.uses(one.text)]
     for line in _lines(assembly.members):
         found += [
             Use(line.key, f"{line.name}, {words_of(line, path)}", text)
             for path, text in line.typed
-            if name in names_in(text, names) and is_meant(line, path, text, names)
+            if readings.uses(text) and readings.is_meant(line, path, text)
         ]
     return tuple(found)
 
 
-def is_meant(line: AnyLine, path: str, text: str, names: Names) -> bool:
-    """Return whether a text that was typed for a number of a line still means that number."""
-    value = value_of(line, path)
-    if value is None:
-        return False
-    try:
-        read = parse(text, kind_of(line, path), names=names).value
-    except QuantityError:
-        return False
-    return math.isclose(read, value, rel_tol=SAME_VALUE)
+class _Readings:
+    """Texts read with the same names, each text once: a machine has thousands of lines with the same few."""
+
+    def __init__(self, names: Names, wanted: Collection[str]) -> None:
+        self._names = names
+        self._wanted = wanted
+        self._uses: dict[str, bool] = {}
+        self._values: dict[tuple[str, Kind], float | None] = {}
+
+    def uses(self, text: str) -> bool:
+        """Return whether a text uses one of the names that are wanted."""
+        if text not in self._uses:
+            self._uses[text] = bool(names_in(text, self._wanted))
+        return self._uses[text]
+
+    def is_meant(self, line: AnyLine, path: str, text: str) -> bool:
+        """Return whether a text that was typed for a number of a line still means that number."""
+        value = value_of(line, path)
+        read = None if value is None else self._value(text, kind_of(line, path))
+        return value is not None and read is not None and math.isclose(read, value, rel_tol=SAME_VALUE)
+
+    def _value(self, text: str, kind: Kind) -> float | None:
+        if (text, kind) not in self._values:
+            try:
+                self._values[text, kind] = parse(text, kind, names=self._names).value
+            except QuantityError:
+                # What means nothing with these names is no longer what says the number.
+                self._values[text, kind] = None
+        return self._values[text, kind]
 
 
 @dataclass(frozen=True)
@@ -147,23 +166,24 @@ class _Reader:
     """Reads the typed texts of lines again after names have changed.
 
     Attributes:
-        moved: the names that have another value, are new, or are gone.
-        before, after: all names with their values.
+        before: the texts as they were, told by the names that have another value now, are new, or are gone.
+        after: all names with their values now.
         entries: the texts of the names as they are now.
         edited: the names whose text or note is another one.
+        known: values of texts that were read already.
     """
 
-    moved: set[str]
-    before: Names
+    before: _Readings
     after: Names
     entries: Mapping[str, NameEntry]
     edited: set[str]
+    known: dict[tuple[str, Kind], float] = field(default_factory=dict)
 
     def read_again(self, line: Each) -> Each:
         """Return a line with the numbers that its texts mean now."""
         values: dict[str, float] = {}
         for path, text in line.typed:
-            if names_in(text, self.moved) and is_meant(line, path, text, self.before):
+            if self.before.uses(text) and self.before.is_meant(line, path, text):
                 values[path] = self._value(line, path, text)
         if not values:
             return line
@@ -176,8 +196,14 @@ class _Reader:
             raise EditRefused(error.what, where=where, read=error.read, remedy=error.remedy) from error
 
     def _value(self, line: AnyLine, path: str, text: str) -> float:
-        where = USES.join([f"{line.name}, {words_of(line, path)}", *self._chain(text)])
-        return parse(text, kind_of(line, path), names=self.after, where=where).value
+        kind = kind_of(line, path)
+        try:
+            if (text, kind) not in self.known:
+                self.known[text, kind] = parse(text, kind, names=self.after).value
+            return self.known[text, kind]
+        except QuantityError as error:
+            where = USES.join([f"{line.name}, {words_of(line, path)}", *self._chain(text)])
+            raise QuantityError(error.what, where=where, read=error.read, remedy=error.remedy) from error
 
     def _chain(self, text: str) -> list[str]:
         """Return names from one in a text down to one whose own text was edited."""
