@@ -41,8 +41,8 @@ if TYPE_CHECKING:
     from core.shapes import Shape
 
 Mark = Literal[".", ","]
-# Steps of the grid that are offered, in mm; 0 is one that suits the outline.
-GRID_STEPS = (0.0, 0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0, 20.0, 50.0)
+# Steps of the grid that are offered, in mm, beside one that suits the outline.
+GRID_STEPS = (0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0, 20.0, 50.0)
 FILE_UNITS = ("mm", "cm", "m", "in", "ft")
 FIELDS = ("x", "y", "rounding", "arc")
 
@@ -108,7 +108,8 @@ class OutlineSection(Section):
             "Paste": lambda: self._paste_text(QGuiApplication.clipboard().text()),
             "Import…": self._ask_file,
         }
-        steps: list[tuple[str, object]] = [("fitting", 0.0), *((f"{step:g} mm", step / 1e3) for step in GRID_STEPS[1:])]
+        steps: list[tuple[str, object]] = [("grid: fitting", 0.0)]
+        steps += [(f"grid: {step:g} mm", step / 1e3) for step in GRID_STEPS]
         self._grid = ChoiceField("Step of the grid", steps)
         self._grid.setToolTip("Points snap to this grid while they are dragged; with Shift they move freely.")
         self._grid.chosen.connect(self._choose_grid)

@@ -11,7 +11,7 @@ from PySide6.QtCore import QPoint, Qt
 from PySide6.QtGui import QGuiApplication
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QPushButton, QWidget
-from window_driver import choose, clipboard, field, keys, names, trigger
+from window_driver import choose, clipboard, dialog, field, keys, names, trigger
 
 from app.window.outline.draft import (
     fault_place,
@@ -167,7 +167,7 @@ def test_what_is_refused_is_mended_point_by_point_and_then_counts(plate):
 def test_a_point_is_dragged_and_snaps_to_the_grid(plate):
     block = section(plate.part)
     box = next(one for one in plate.part.findChildren(QWidget) if one.accessibleName() == "Step of the grid")
-    choose(box, "5 mm")
+    choose(box, "grid: 5 mm")
     drag(plate, (0, 2), (71.3, 46.2))
     assert points(plate)[2] == (70, 45)
     assert plate.session.history.undo_name == "point 3 to 70 | 45 mm of extruded profile"
@@ -311,15 +311,15 @@ SVG = '<svg xmlns="http://www.w3.org/2000/svg"><path d="M0 0 H40 V30 H0 Z"/></sv
 
 
 def test_a_drawing_is_imported_after_its_unit_was_asked(plate, tmp_path):
-    pytest.importorskip("svgelements")
+    pytest.importorskip("svgpathtools")
     file = tmp_path / "plate.svg"
     file.write_text(SVG, encoding="utf-8")
     block = section(plate.part)
     block.ask_unit(str(file))
-    dialog = QApplication.activeWindow()
-    assert not dialog._ok.isEnabled()
-    choose(dialog.unit, "in")
-    dialog._ok.click()
+    asking = dialog(plate)
+    assert not asking._ok.isEnabled()
+    choose(asking.unit, "in")
+    asking._ok.click()
     QApplication.processEvents()
     # An SVG file's y points down.
     extent = np.ptp(outline(plate).bounds, axis=0)
