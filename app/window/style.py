@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import asdict, dataclass
 from pathlib import Path
+from string import Template
 
 from PySide6.QtCore import QByteArray, QEvent, QRectF, QSize, Qt
 from PySide6.QtGui import QColor, QFont, QGuiApplication, QIcon, QPainter, QPalette, QPixmap
@@ -90,71 +91,8 @@ def _repaint(application: QApplication) -> None:
 
 
 def _sheet(c: Colours) -> str:
-    return f"""
-    * {{ dialogbuttonbox-buttons-have-icons: 0; }}
-    QToolTip {{ background: {c.ground}; color: {c.text}; border: 1px solid {c.hairline}; padding: 4px; }}
-    QToolBar {{ background: {c.raised}; border: 0; border-bottom: 1px solid {c.hairline}; spacing: 4px;
-                padding: 4px 8px; }}
-    QToolButton {{ padding: 4px 8px; border: 1px solid transparent; border-radius: 3px; min-height: 24px; }}
-    QToolButton:hover, QToolButton:focus {{ border-color: {c.blue}; }}
-    QToolButton:pressed {{ background: {c.selection}; }}
-    QMenuBar {{ background: {c.raised}; }}
-    QTreeView, QTableView, QScrollArea {{ border: 0; }}
-    QTreeView:focus {{ border: 0; outline: 0; }}
-    QHeaderView::section {{ background: {c.ground}; color: {c.quiet}; border: 0; border-bottom: 1px solid {c.hairline};
-                            padding: 2px 8px; }}
-    QTableCornerButton::section {{ background: {c.ground}; border: 0; border-bottom: 1px solid {c.hairline}; }}
-    QHeaderView {{ background: {c.ground}; }}
-    QTabWidget::pane {{ border: 0; }}
-    QTabBar::tab {{ padding: 8px 16px; border: 0; border-bottom: 2px solid transparent; color: {c.quiet}; }}
-    QTabBar::tab:selected {{ color: {c.text}; border-bottom-color: {c.blue}; }}
-    QTabBar::tab:focus {{ color: {c.blue}; }}
-    QLineEdit, QComboBox, QPlainTextEdit {{ background: {c.ground}; border: 1px solid {c.hairline}; border-radius: 2px;
-                            padding: 2px 6px; min-height: 22px; }}
-    QLineEdit:focus, QComboBox:focus, QPlainTextEdit:focus {{ border-color: {c.blue}; }}
-    QLineEdit[wrong="true"] {{ border-color: {c.failed}; }}
-    QPushButton {{ padding: 4px 16px; min-height: 24px; border: 1px solid {c.hairline}; border-radius: 3px;
-                   background: {c.ground}; }}
-    QPushButton:hover, QPushButton:focus, QPushButton:default {{ border-color: {c.blue}; }}
-    QPushButton:pressed {{ background: {c.selection}; }}
-    QPushButton:disabled {{ color: {c.quiet}; background: {c.raised}; }}
-    QComboBox::drop-down {{ border: 0; width: 20px; }}
-    QComboBox::down-arrow {{ image: url({(ICONS / "open.svg").as_posix()}); width: 12px; height: 12px; }}
-    QComboBox QAbstractItemView {{ background: {c.ground}; border: 1px solid {c.hairline}; padding: 2px; }}
-    QScrollBar:vertical {{ background: transparent; width: 12px; margin: 0; }}
-    QScrollBar:horizontal {{ background: transparent; height: 12px; margin: 0; }}
-    QScrollBar::handle {{ background: {c.hairline}; border: 3px solid transparent; border-radius: 3px; min-height: 32px;
-                          min-width: 32px; margin: 2px; }}
-    QScrollBar::handle:hover {{ background: {c.quiet}; }}
-    QScrollBar::add-line, QScrollBar::sub-line {{ width: 0; height: 0; }}
-    QScrollBar::add-page, QScrollBar::sub-page {{ background: transparent; }}
-    QMenu {{ background: {c.ground}; border: 1px solid {c.hairline}; padding: 4px; }}
-    QMenu::item {{ padding: 4px 32px 4px 24px; }}
-    QMenu::item:selected {{ background: {c.selection}; color: {c.text}; }}
-    QMenu::item:disabled {{ color: {c.quiet}; }}
-    QMenu::separator {{ height: 1px; background: {c.hairline}; margin: 4px 8px; }}
-    QWidget#page, QWidget#page QScrollArea, QWidget#start {{ background: {c.ground}; }}
-    QTreeView#foot {{ border-top: 1px solid {c.hairline}; background: {c.raised}; }}
-    QListView#pictures {{ background: {c.ground}; outline: 0; }}
-    QListView#pictures::item {{ border: 1px solid transparent; border-radius: 3px; color: {c.text}; }}
-    QListView#pictures::item:hover {{ border-color: {c.hairline}; }}
-    QListView#pictures::item:selected {{ background: {c.selection}; border-color: {c.blue}; }}
-    QListView#pictures::item:disabled {{ border: 0; color: {c.text}; }}
-    QToolButton#way {{ border-color: {c.hairline}; }}
-    QToolButton#way:hover, QToolButton#way:focus {{ border-color: {c.blue}; }}
-    QLabel#refusal {{ background: {c.ground}; border: 1px solid {c.failed}; padding: 2px 6px; }}
-    QFrame#notice {{ background: {c.ground}; border-bottom: 1px solid {c.hairline}; }}
-    QToolButton::menu-indicator {{ image: url({(ICONS / "open.svg").as_posix()}); width: 10px; height: 10px;
-                                   subcontrol-position: right center; subcontrol-origin: padding; right: 2px; }}
-    QWidget#page QToolButton[popupMode="2"] {{ border-color: {c.hairline}; background: {c.ground}; }}
-    QToolButton[popupMode="2"] {{ padding-right: 20px; }}
-    QProgressBar {{ border: 1px solid {c.hairline}; border-radius: 2px; background: {c.ground}; text-align: center;
-                    max-height: 16px; }}
-    QProgressBar::chunk {{ background: {c.blue}; }}
-    QSplitter::handle {{ background: {c.hairline}; }}
-    QStatusBar {{ background: {c.raised}; border-top: 1px solid {c.hairline}; padding-left: 8px; }}
-    QStatusBar::item {{ border: 0; }}
-    """
+    template = Template((Path(__file__).parent / "look.qss").read_text(encoding="utf-8"))
+    return template.substitute(asdict(c), icons=ICONS.as_posix())
 
 
 def heading_font(widget: QWidget) -> QFont:
