@@ -84,6 +84,7 @@ def answer_of_assembly(assembly: Assembly, path: str, overlaps: tuple[Finding, .
     Findings on overlaps, where somebody has looked for them, stand behind the others.
 
     `axis` is the drive axis, with its name, point and direction. `volume_m3` is None where a part has none.
+    A document with variants says which one the values are of ("": all lines), and the totals of each.
     """
     from core.assembly import findings_of, ledger_of
     from core.handover.sheet import subject_of_assembly
@@ -101,6 +102,7 @@ def answer_of_assembly(assembly: Assembly, path: str, overlaps: tuple[Finding, .
             for finding in (*findings_of(assembly), *overlaps)
         ],
         "ledger": [_line(line) for line in (*ledger.lines, ledger.total)],
+        **(_variants(assembly) if assembly.variants else {}),
     }
 
 
@@ -168,6 +170,24 @@ def _line(line: Line) -> Answer:
         "transfer_kgm2": line.transfer,
         "inertia_kgm2": line.inertia,
         "share": line.share,
+        "counts": line.counts,
+    }
+
+
+def _variants(assembly: Assembly) -> Answer:
+    from core.assembly.variants import totals_by_variant
+
+    totals = [(each, float(each.moments.mass)) for each in totals_by_variant(assembly)]
+    return {
+        "variant": assembly.variant,
+        "variants": [
+            {
+                "name": each.variant, "mass_kg": mass or None, "parts_without_mass": each.without_mass,
+                "centre_m": _listed(each.moments.centre) if mass else None,
+                "axis_inertia_kgm2": each.inertia if mass else None,
+            }
+            for each, mass in totals
+        ],
     }
 
 
