@@ -13,6 +13,7 @@ from app.window.numbers import copied, preview, shown
 from app.window.pages.variant_totals import VariantTotals
 from app.window.style import GRID, Words, colours, icon
 from core.handover import Entry, Sheet, SheetChoice, sheet_of_assembly, tsv_of_sheet
+from core.handover.lines import FOR_THE_DRIVE
 from core.quantity import UNITS
 
 if TYPE_CHECKING:
@@ -129,8 +130,12 @@ def _name(row: Entry | str) -> str:
 
 
 def short_label(entry: Entry) -> str:
-    """Return the label without the point and axes that the heading above it already says."""
-    return entry.label.split(" about ")[0] if entry.section.startswith("Tensor") else entry.label
+    """Return the label without what the heading above says already, and what only the tool tip has room for."""
+    if entry.section.startswith("Tensor"):
+        return entry.label.split(" about ")[0]
+    if entry.section == FOR_THE_DRIVE:
+        return entry.label.split(": ")[0].split(" of the whole, from ")[0]
+    return entry.label
 
 
 class SheetTable(QTableView):
