@@ -279,8 +279,9 @@ class ChoiceField(QComboBox):
 class Form(QWidget):
     """Labelled fields under headings, in one column on one grid."""
 
-    def __init__(self) -> None:
+    def __init__(self, label_width: int = LABEL_WIDTH) -> None:
         super().__init__()
+        self._label_width = label_width
         self._layout = QFormLayout(self)
         self._layout.setContentsMargins(0, 0, 0, 0)
         self._layout.setHorizontalSpacing(GRID)
@@ -299,7 +300,7 @@ class Form(QWidget):
     def add(self, text: str, field: QWidget, tip: str = "") -> None:
         """Add a field behind its label."""
         label = Words(text, "quiet")
-        label.setFixedWidth(LABEL_WIDTH)
+        label.setFixedWidth(self._label_width)
         label.setContentsMargins(0, 3, 0, 0)
         label.setToolTip(tip)
         field.setToolTip(tip)

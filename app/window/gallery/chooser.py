@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
-
 from PySide6.QtCore import QEvent, QObject, QSize, Qt, QTimer, Signal
 from PySide6.QtGui import QIcon, QKeyEvent, QPixmap, QResizeEvent, QShowEvent
 from PySide6.QtWidgets import QLineEdit, QListView, QListWidget, QListWidgetItem, QVBoxLayout, QWidget
@@ -12,11 +10,9 @@ from app.window.gallery.families import Choice, best_of, choices
 from app.window.gallery.picture import Wanted, image_of
 from app.window.style import GRID, Words, colours, heading_font
 
-if TYPE_CHECKING:
-    from collections.abc import Iterator
-
 PICTURE = 112
-CELL = QSize(PICTURE + 24, PICTURE + 28)
+# Room for a picture and two lines of its name.
+CELL = QSize(PICTURE + 24, PICTURE + 46)
 HEADING_HEIGHT = 32
 CHOICE = Qt.ItemDataRole.UserRole
 
@@ -93,12 +89,13 @@ class Pictures(QListWidget):
         self.setVerticalScrollMode(QListWidget.ScrollMode.ScrollPerPixel)
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOn)
-        self._waiting: Iterator[QListWidgetItem] = iter(())
+        self._waiting: list[QListWidgetItem] = []
         self._painting = QTimer(self, interval=0)
         self._painting.timeout.connect(self._paint_next)
 
     def show_choices(self, found: list[Choice], current: int = 0) -> None:
         """Show these, one of them current."""
+        self._waiting = []
         self.clear()
         group = ""
         for choice in found:
@@ -129,14 +126,17 @@ class Pictures(QListWidget):
         return QSize(max(CELL.width(), self.viewport().width() - GRID), HEADING_HEIGHT)
 
     def _paint_all(self) -> None:
-        self._waiting = iter(self.shown())
+        self._waiting = self.shown()
         self._painting.start()
 
     def _paint_next(self) -> None:
-        item = next(self._waiting, None)
-        if item is None or not self.isVisible():
+        if not self._waiting or not self.isVisible():
             self._painting.stop()
             return
+        # Those in sight first.
+        sight = self.viewport().rect()
+        seen = (at for at, item in enumerate(self._waiting) if self.visualItemRect(item).intersects(sight))
+        item = self._waiting.pop(next(seen, 0))
         choice = item.data(CHOICE)
         wanted = Wanted(
             choice.shape, PICTURE, PICTURE, self.devicePixelRatioF(), self.font().family(), colours()

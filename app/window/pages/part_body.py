@@ -8,11 +8,12 @@ from typing import TYPE_CHECKING
 from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QHBoxLayout, QWidget
 
-from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField
+from app.window.fields import LABEL_WIDTH, ChoiceField, Form, QuantityField, TextField, TripleField
 from app.window.gallery.drawing import can_be_drawn
 from app.window.gallery.families import size_named_for
-from app.window.gallery.picture import ShapePicture
+from app.window.gallery.picture import SIDE_PX, ShapePicture
 from app.window.pages.section import Section
+from app.window.style import GRID
 from core.assembly import Cut, KnownAxial, KnownTensor, Part, ShapeBody
 from core.assembly.fields import AnyLine, kind_of, typed_for
 from core.errors import EditRefused, MasswrightError
@@ -29,6 +30,8 @@ if TYPE_CHECKING:
 OWN_SIZE = "own dimensions"
 # Height of the picture, px, where a canvas stands below it.
 BESIDE_AN_OUTLINE = 112
+# A field with its gap, and the highest picture, px.
+FIELD_HEIGHT, LARGEST_PX = 32, 272
 TENSOR_LABELS = ("Ixx", "Iyy", "Izz", "Ixy", "Ixz", "Iyz")
 TENSOR_TIP = "Tensor elements: Ixy = −∫xy dm. Where the data sheet prints +∫xy dm, change the sign of the products."
 
@@ -47,9 +50,10 @@ class ShapeSection(Section):
         self.tried: Callable[[Shape | None, str], None] = lambda _shape, _refusal: None
         self._shown = shape
         self._fields: dict[str, QuantityField] = {}
-        # A profile has its outline below, and one dimension.
-        self._picture = ShapePicture(BESIDE_AN_OUTLINE) if isinstance(shape, OutlinedShape) else ShapePicture()
-        rows = Form()
+        self._picture = ShapePicture(_picture_height(shape))
+        labels = [_label(dimension) for dimension in shape.dimensions]
+        metrics = form.fontMetrics()
+        rows = Form(max(LABEL_WIDTH, *(metrics.horizontalAdvance(label) + GRID for label in labels)))
         self._size = self._size_field(rows, shape)
         for dimension in shape.dimensions:
             self._add(rows, part, dimension)
@@ -66,7 +70,7 @@ class ShapeSection(Section):
         unit = UNITS["°"] if dimension.kind == "angle" else None
         kind = kind_of(part, f"dimension.{dimension.name}")
         field = QuantityField(self.session, dimension.label, kind, unit)
-        rows.add(f"{dimension.label} {dimension.symbol}".rstrip(), field)
+        rows.add(_label(dimension), field)
         self.bind(field, dimension.label, f"dimension.{dimension.name}")
         field.typing.connect(lambda value: self._try(dimension.name, value))
         self._picture.watch(field.line, dimension.name)
@@ -121,6 +125,17 @@ class ShapeSection(Section):
             return _with_shape(node, _shape(node).resized(size.dimensions))
 
         self.edit(f"Size of {self.session.assembly.line(self.key).name}: {size.name}", change)
+
+
+def _picture_height(shape: Shape) -> int:
+    """Return how high (px) the picture is: about as high as the fields; a profile has its outline below."""
+    if isinstance(shape, OutlinedShape):
+        return BESIDE_AN_OUTLINE
+    return min(max(SIDE_PX, FIELD_HEIGHT * len(shape.dimensions)), LARGEST_PX)
+
+
+def _label(dimension: Dimension) -> str:
+    return f"{dimension.label} {dimension.symbol}".rstrip()
 
 
 def _with_shape(line: AnyLine, shape: Shape) -> AnyLine:
