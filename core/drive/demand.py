@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.arrays import FloatArray, IntArray, frozen
+from core.arrays import FloatArray, IntArray, frozen, settled
 from core.drive.train import LOAD, LinearLoad, Stage, Train, inertias_of_shafts
 
 if TYPE_CHECKING:
@@ -216,9 +216,10 @@ def wave_of_force(
     what turns with the part turns by θ.
     """
     unit, pull = axis.unit, np.asarray(force, dtype=float)
+    # Taken from the axis, a lever or force along it leaves round-off, which is no torque.
     lever = np.asarray(point, dtype=float) - np.asarray(axis.point)
-    lever = lever - (lever @ unit) * unit
-    pull = pull - (pull @ unit) * unit
+    lever = settled(lever - (lever @ unit) * unit, np.linalg.norm(point) + np.linalg.norm(axis.point))
+    pull = settled(pull - (pull @ unit) * unit, np.linalg.norm(pull))
     aligned = -float(unit @ np.cross(lever, pull))
     if direction_in == point_in:
         return aligned, 0.0, 0.0

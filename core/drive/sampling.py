@@ -21,8 +21,9 @@ if TYPE_CHECKING:
 # rad: no piece turns any shaft on which a torque varies with the angle further than this.
 _PIECE_TURN = math.pi / 2
 
-# Pieces of a duty before halving; a duty of more turns gets longer pieces, and the stated error grows.
-MOST_PIECES = 20_000
+# Pieces of a duty before halving and while it is done; a duty of more turns gets longer pieces, and the stated error
+# grows.
+MOST_PIECES, _MOST_HALVES = 8_000, 32_000
 
 # Relative to the integral of the absolute value: where the halving stops, and the most times it is done.
 TOLERANCE = 1e-9
@@ -147,6 +148,8 @@ def integrate(
         value, error = value + both[:, good].sum(axis=1), error + apart[:, good].sum(axis=1)
         if good.all():
             return value, error
+        if 2 * int((~good).sum()) > _MOST_HALVES:
+            return value + both[:, ~good].sum(axis=1), error + apart[:, ~good].sum(axis=1)
         again = np.repeat(~good, 2)
         whole, left = parts[:, again], both[:, ~good]
         missing = apart[:, ~good]

@@ -273,6 +273,12 @@ def test_flywheel_effect_is_the_one_of_the_trade():
     assert forms.wr2 / (POUND * INCH**2) == pytest.approx(1527.49, rel=1e-5)
     assert forms.wr2 / (POUND * INCH**2) == printed(1527.476, 0.001)
     assert forms.radius_of_gyration == pytest.approx(math.sqrt(0.0447), rel=1e-14)
+    # The same post: WR² in lb·ft² is 5.933 times GD² in kgf·m² (exact 5.93259), and back 0.16856.
+    ratio = forms.wr2 / (POUND * FOOT**2) / forms.flywheel_effect
+    assert ratio == printed(5.93259, 1e-5)
+    assert 1 / ratio == printed(0.16856, 1e-5)
+    # From memory: GD² of a solid cylinder is half its weight by its diameter squared.
+    assert about_axis(disc(7.0, 0.15), UPRIGHT).flywheel_effect == pytest.approx(0.5 * 7.0 * 0.3**2, rel=1e-14)
 
 
 # --- common practice, no source ------------------------------------------------------------------------------------

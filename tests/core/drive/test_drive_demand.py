@@ -154,6 +154,14 @@ def test_friction_hinders_a_move_from_its_first_moment():
     assert demand.terms(starting)[FRICTION, 0, 0] == -0.3
 
 
+@pytest.mark.parametrize("speed", [2.0, -2.0])
+def test_friction_on_a_shaft_that_turns_the_other_way_still_hinders(speed):
+    train = plain(1.0, 0.0, (Gear("gear", -5.0),))
+    demand = demand_of(train, frictions=(Friction("seal", 0.3, 0.02, shaft="motor"),))
+    turning = -5.0 * speed
+    assert torque_at(demand, "motor", moving(speed)) == pytest.approx(math.copysign(0.3, turning) + 0.02 * turning, rel=1e-14)
+
+
 # --- efficiency ------------------------------------------------------------------------------------------------------
 
 
@@ -325,6 +333,12 @@ def test_the_motor_sees_the_load_at_its_own_speed_and_the_same_power_without_los
     study = Study(demand_of(train), Duty((Move(3.0, ByTime(0.7), Law.MODIFIED_SINE),)))
     np.testing.assert_allclose(study.curves("motor").power, study.curves("load").power, rtol=1e-12, atol=1e-12)
     assert study.needs("motor").peak_speed == pytest.approx(15 * study.needs("load").peak_speed, rel=1e-14)
+
+
+def test_the_motion_for_drawing_is_at_the_times_of_the_curves():
+    study = Study(demand_of(plain(2.0)), Duty((Move(1.0, ByTime(1.0), Law.CYCLOIDAL), Rest(0.5))))
+    np.testing.assert_array_equal(study.motion.time, study.curves("load").time)
+    np.testing.assert_allclose(study.curves("load").torque, 2.0 * study.motion.acceleration, rtol=1e-14)
 
 
 def test_a_duty_of_very_many_turns_is_still_answered_with_its_error_said():

@@ -170,6 +170,8 @@ def test_a_brake_weaker_than_the_weight_stops_the_load_on_its_way_up_but_does_no
     assert found.angle < 0
     assert not found.holds
     assert stop(flap_with(), StopCase(-1.0, 1.5 * WEIGHT)).holds
+    # Friction holds with the brake.
+    assert stop(flap_with(frictions=(Friction("seal", 0.6 * WEIGHT),)), StopCase(-1.0, 0.5 * WEIGHT)).holds
 
 
 @pytest.mark.parametrize(
