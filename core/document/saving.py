@@ -56,6 +56,7 @@ def _replace(target: Path, write: Callable[[IO[bytes]], None]) -> None:
     if target.exists() and not os.access(target, os.W_OK):
         raise PermissionError(errno.EACCES, os.strerror(errno.EACCES))
     beside = target.with_name(f".masswright-{secrets.token_hex(8)}.saving")
+    done = False
     try:
         with beside.open("xb") as file:
             write(file)
@@ -64,11 +65,12 @@ def _replace(target: Path, write: Callable[[IO[bytes]], None]) -> None:
                 beside.chmod(target.stat().st_mode & 0o7777)
             os.fsync(file.fileno())
         beside.replace(target)
-    except BaseException:
+        done = True
+    finally:
         # Whatever stopped it, an interrupt included, is passed on; only the half-written file does not stay.
-        with contextlib.suppress(OSError):
-            beside.unlink(missing_ok=True)
-        raise
+        if not done:
+            with contextlib.suppress(OSError):
+                beside.unlink(missing_ok=True)
     _sync_folder(target.parent)
 
 
