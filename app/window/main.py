@@ -35,6 +35,7 @@ from app.window.files import Files
 from app.window.gallery.panel import GalleryPanel
 from app.window.ledger.view import LedgerPane
 from app.window.numbers import copied, preview, shown
+from app.window.overlap_watch import OverlapWatch
 from app.window.pages.checks import ChecksPage, counted
 from app.window.pages.part import PartPage
 from app.window.pages.sheet import SheetPage
@@ -66,6 +67,7 @@ class MainWindow(QMainWindow):
         self.part = PartPage(self.session)
         self.sheet = SheetPage(self.session)
         self.checks = ChecksPage(self.session)
+        self.overlap_watch = OverlapWatch(self.session, self)
         self.pages = QTabWidget()
         self.gallery = GalleryPanel(self.session)
         self.notice = Notice()
@@ -446,6 +448,7 @@ class MainWindow(QMainWindow):
             self.settings.keep_state(name, keep())
         self.changed_files.stop()
         self.files.autosave.stop()
+        self.overlap_watch.stop()
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
         """Take files."""

@@ -18,8 +18,8 @@ if TYPE_CHECKING:
     from collections.abc import Callable
     from pathlib import Path
 
-    from core.assembly.overlaps import Overlaps
     from core.assembly import Node
+    from core.assembly.overlaps import Overlaps
     from core.quantity import Names
 
 

@@ -74,7 +74,7 @@ def _twice(assembly: Assembly, one: Overlap) -> str:
 
 
 def _looked_at(assembly: Assembly, overlaps: Overlaps) -> str:
-    bodies = "1 body was" if overlaps.bodies == 1 else f"{overlaps.bodies} bodies were"
+    bodies = {0: "no body was", 1: "1 body was"}.get(overlaps.bodies, f"{overlaps.bodies} bodies were")
     text = f"{assembly.name}: {bodies} looked at for overlap"
     if overlaps.left_out:
         named = [f"{one.name} ({one.why})" for one in overlaps.left_out[:_MOST_NAMED]]

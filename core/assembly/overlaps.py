@@ -130,6 +130,8 @@ def overlaps_of(assembly: Assembly, progress: Progress | None = None) -> Overlap
     """
     parts, left_out = [], []
     for part in assembly.table.parts:
+        if progress is not None:
+            progress.advance(0)
         why = _why_left_out(part)
         if why:
             left_out.append(LeftOut(part.key, part.name, why))

@@ -16,6 +16,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from app.window.pages.overlap_row import OverlapRow
 from app.window.style import GRID, Words, colours, icon
 
 if TYPE_CHECKING:
@@ -67,6 +68,9 @@ class ChecksPage(QWidget):
         layout.setContentsMargins(2 * GRID, GRID, 2 * GRID, GRID)
         layout.addWidget(self.head)
         layout.addWidget(self.list, 1)
+        self.overlap = OverlapRow(session, self)
+        layout.addWidget(self.overlap)
+        self.list.currentItemChanged.connect(lambda item, _before: self._offer(item))
         self.list.itemClicked.connect(self._go)
         self.list.itemActivated.connect(self._go)
         self.list.itemExpanded.connect(lambda _item: self._keep_fold(unfolded=True))
@@ -80,6 +84,7 @@ class ChecksPage(QWidget):
         failed = [finding for finding in findings if not finding.check.ok]
         sound = [finding for finding in findings if finding.check.ok]
         self.list.clear()
+        self._offer(None)
         for finding in failed:
             self.list.addTopLevelItem(_item(finding, "look", "failed"))
         if sound:
@@ -112,6 +117,11 @@ class ChecksPage(QWidget):
     def _keep_fold(self, *, unfolded: bool) -> None:
         self._unfolded = unfolded
 
+    def _offer(self, item: QTreeWidgetItem | None) -> None:
+        """Offer what can be done about an overlap, while one is chosen."""
+        keys = ("", "") if item is None else tuple(str(item.data(column, KEY) or "") for column in (WORD, PART))
+        self.overlap.show_pair(keys[0], keys[1])
+
     def _go(self, item: QTreeWidgetItem) -> None:
         key = str(item.data(WORD, KEY) or "")
         if key:
@@ -129,6 +139,7 @@ def _item(finding: Finding, word: str, role: str) -> QTreeWidgetItem:
     item.setIcon(WORD, icon(role, role))
     item.setForeground(WORD, QColor(getattr(colours(), role)))
     item.setData(WORD, KEY, finding.key)
+    item.setData(PART, KEY, finding.also)
     for column in range(3):
         item.setTextAlignment(column, Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
     return item
