@@ -17,6 +17,7 @@ Labels: TypeAlias = NDArray[np.int32]
 # Odd, without a pattern: its product brings what the low bits of a key say into the high ones.
 _MIX = np.uint64(0x9E3779B97F4A7C15)
 _HALF = np.uint64(32)
+_PIECE = 500_000
 
 
 @dataclass(frozen=True, eq=False)
@@ -44,13 +45,13 @@ class Groups:
     @property
     def numbers(self) -> IntArray:
         """The group number of each place (n,)."""
-        return np.repeat(np.arange(len(self.starts)), self.sizes)
+        return running_count(self.first).astype(np.int64) - 1
 
     @property
     def ranks(self) -> IntArray:
         """How many elements of its group stand before each place (n,)."""
         places = np.arange(len(self.order))
-        return places - np.repeat(self.starts, self.sizes)
+        return places - self.starts.take(self.numbers)
 
     def of_elements(self) -> IntArray:
         """Return the group number of each element (n,), in the elements' own order."""
@@ -116,5 +117,18 @@ def hang_together(count: int, some: IntArray, others: IntArray) -> Labels:
         roots[np.maximum(a, b)] = np.minimum(a, b)
         while not np.array_equal(above := roots.take(roots), roots):
             roots = above
-    numbers = np.cumsum(roots == np.arange(count, dtype=np.int32), dtype=np.int32) - np.int32(1)
+    numbers = running_count(roots == np.arange(count, dtype=np.int32)) - np.int32(1)
     return numbers.take(roots)
+
+
+def running_count(flags: BoolArray) -> Labels:
+    """Return how many of flags (n,) are set up to each place, itself included; n below 2³¹."""
+    # In pieces: a running sum holds the interpreter's lock, and a window would stand still for a second.
+    result = np.empty(len(flags), np.int32)
+    total = np.int32(0)
+    for start in range(0, len(flags), _PIECE):
+        piece = result[start : start + _PIECE]
+        np.cumsum(flags[start : start + _PIECE], dtype=np.int32, out=piece)
+        piece += total
+        total = piece[-1]
+    return result

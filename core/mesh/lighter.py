@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.facets import Facets
+from core.mesh.grouping import running_count
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -56,7 +57,7 @@ def _clustered(
             key = key * (cells + 1) + np.clip(place, 0, cells)
         keys[start : start + _CHUNK] = key.reshape(-1, 3)
         used[key] = True
-    number = np.cumsum(used, dtype=np.int32) - 1
+    number = running_count(used) - np.int32(1)
     count = int(number[-1]) + 1
     sums, weights = np.zeros((3, count)), np.zeros(count)
     for start in range(0, len(triangles), _CHUNK):

@@ -134,7 +134,7 @@ def rewind(triangles: Triangles) -> Triangles:
     """
     points, corners = weld_exactly(triangles)
     seams = _seams(corners)
-    winding = winding_of(seams, sheets_of(len(corners), seams), areas_of(points, corners))
+    winding = winding_of(seams, sheets_of(corners, seams), areas_of(points, corners))
     if len(winding.against) == 0:
         why = "the surface has only one side" if len(winding.one_sided) else "all facets wind alike"
         raise EditRefused(why, remedy="Mend the part where it was made" if len(winding.one_sided) else "")

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.mesh.census.overlaps import MOST_CUTS
-from core.mesh.census.sheets import seams_of
+from core.mesh.census.sheets import collapsed_of, seams_of
 from core.mesh.census.shells import INSIDE_OUT, VOID_OUTWARD
 from core.mesh.source import ArraySource
 from core.mesh.summing import sum_up
@@ -260,8 +260,7 @@ def _opposed(evidence: Evidence) -> Iterator[MeshFinding]:
 
 
 def _without_area(evidence: Evidence) -> Iterator[MeshFinding]:
-    a, b, c = evidence.corners.T
-    facets = np.flatnonzero((a == b) | (b == c) | (c == a))
+    facets = np.flatnonzero(collapsed_of(evidence.corners))
     if len(facets):
         text = f"{_number(len(facets), 'facet')} with coinciding corners, which change no value."
         yield MeshFinding("facets without area", text, facets, harmless=True)

@@ -60,11 +60,15 @@ def seams_of(corners: IntArray, copy: IntArray) -> Seams:
     listed = corners if by_copy is None else corners[by_copy]
     uses = np.arange(3 * len(corners)) if by_copy is None else (3 * by_copy[:, None] + np.arange(3)).ravel()
     starts, stops = listed.ravel(), listed[:, [1, 2, 0]].ravel()
-    proper = starts != stops
-    if not proper.all():
+    collapsed = collapsed_of(listed)
+    if collapsed.any():
+        # Their edges cancel one another, whatever lies beside them.
+        proper = (~collapsed[:, None] & np.ones(3, dtype=bool)).ravel()
         starts, stops, uses = starts[proper], stops[proper], uses[proper]
     most = np.uint64(int(corners.max()) + 1)
     keys = np.minimum(starts, stops).astype(np.uint64) * most + np.maximum(starts, stops).astype(np.uint64)
+    if len(keys) == 0:
+        return Seams(np.empty((0, 2), np.int64), np.empty((0, 2), np.int64), np.empty(0, np.int64))
     groups = group_equal(keys)
     upward = (starts < stops).take(groups.order)
     uses = uses.take(groups.order)
@@ -169,10 +173,30 @@ def is_even(corners: IntArray) -> IntArray:
     return np.asarray(((a < b).astype(np.int64) + (b < c) + (c < a)) // 2)
 
 
-def sheets_of(count: int, seams: Seams) -> Labels:
-    """Return the sheet number (count,) of each facet; facets belong together where they meet over an edge."""
+def sheets_of(corners: IntArray, seams: Seams) -> Labels:
+    """Return the sheet number (n,) of each facet; facets belong together where they meet over an edge.
+
+    A facet with coinciding corners belongs to a sheet that has one of its corners.
+    """
     joined = np.concatenate([seams.along, seams.against]) // 3
-    return hang_together(count, joined[:, 0], joined[:, 1])
+    collapsed = np.flatnonzero(collapsed_of(corners))
+    if len(collapsed):
+        owner = np.empty(int(corners.max()) + 1, np.int64)
+        owner[corners[collapsed].ravel()] = np.repeat(collapsed, 3)
+        whole = np.flatnonzero(~collapsed_of(corners))
+        owner[corners[whole].ravel()] = np.repeat(whole, 3)
+        # The corner that all of a sheet's facets would most likely share: any of the three will do.
+        beside = owner[corners[collapsed]]
+        is_whole = ~collapsed_of(corners[beside])
+        best = np.where(is_whole[:, 0], beside[:, 0], np.where(is_whole[:, 1], beside[:, 1], beside[:, 2]))
+        joined = np.concatenate([joined, np.stack([collapsed, best], axis=1)])
+    return hang_together(len(corners), joined[:, 0], joined[:, 1])
+
+
+def collapsed_of(corners: IntArray) -> BoolArray:
+    """Return which facets (n, 3) have two corners in one place."""
+    a, b, c = (corners[..., i] for i in range(3))
+    return np.asarray((a == b) | (b == c) | (c == a))
 
 
 def facet_hashes(corners: IntArray) -> Keys:

@@ -79,7 +79,7 @@ def evidence_of(triangles: NDArray[np.floating], progress: Progress | None) -> E
         points, corners = cracks.points, cracks.corners
         doubles = doubles_of(corners)
         seams = seams_of(corners, doubles.copy)
-    sheet = sheets_of(len(corners), seams)
+    sheet = sheets_of(corners, seams)
     step()
     openings = openings_of(points, corners, seams.open)
     winding = winding_of(seams, sheet, areas_of(points, corners) if len(seams.against) else np.empty(0))

@@ -204,7 +204,11 @@ def test_a_small_missing_facet_is_a_hole_and_no_crack():
 
 
 def test_facets_with_coinciding_corners_are_harmless():
-    found = census(np.concatenate([BOX, [[[0, 0, 0], [40, 0, 0], [0, 0, 0]]]]))
+    needles = np.array([[[0, 0, 0], [40, 0, 0], [0, 0, 0]], [[1, 1, 1], [40, 0, 0], [1, 1, 1]], [[7, 7, 7]] * 3], dtype=float)
+    found = census(np.concatenate([BOX, needles[:1]]))
+    assert (len(found.shells), len(census(np.concatenate([needles[1:2], BOX])).shells)) == (1, 1)
+    assert census(np.concatenate([BOX, needles[2:]])).sound
+    assert set(census(needles).shells.role) == {"flat"}
     assert [(finding.name, finding.facets.tolist()) for finding in found.findings] == [("facets without area", [12])]
     assert found.sound
 
