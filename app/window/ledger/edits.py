@@ -6,14 +6,19 @@ from contextlib import suppress
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
+from app.window.fields import kept_text
 from core.assembly import Assembly, Cut, DataSheet, Driver, Group, Part
+from core.assembly.fields import DRIVER_PATHS, with_typed, with_value
+from core.assembly.names import values_of
 from core.errors import EditRefused, QuantityError
 from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, material
 from core.placement import Mirrored
-from core.quantity import UNITS, Kind, UnitSet, parse
+from core.quantity import UNITS, Kind, UnitSet, names_in, parse
 
 if TYPE_CHECKING:
     from collections.abc import Callable
+
+    from core.quantity import Names
 
 
 def renamed(key: str, text: str) -> Callable[[Assembly], Assembly]:
@@ -35,20 +40,27 @@ def counted(key: str, text: str) -> Callable[[Assembly], Assembly]:
 
     def change(assembly: Assembly) -> Assembly:
         line = assembly.cut(key) if assembly.is_cut(key) else assembly.node(key)
-        if not text.strip().isascii() or not text.strip().isdigit():
-            raise QuantityError(
-                "a quantity is a whole number", where=line.name, read=f'"{text}"', remedy="Type how many there are"
-            )
+        count = _count(assembly, text, line.name)
         if isinstance(line.copies, Mirrored):
             raise EditRefused(
                 "a mirrored line is there twice", where=line.name, remedy="Change how it repeats on the Part page"
             )
-        copies = replace(line.copies, count=int(text))
-        if isinstance(line, Cut):
-            return assembly.replaced_cut(replace(line, copies=copies))
-        return assembly.replaced(replace(line, copies=copies))
+        changed = with_typed(with_value(line, "copies.count", count), "copies.count", kept_text(text))
+        return assembly.replaced_cut(changed) if isinstance(changed, Cut) else assembly.replaced(changed)
 
     return change
+
+
+def _count(assembly: Assembly, text: str, where: str) -> float:
+    """Return how many are meant: a whole number as it is, or one that follows from named dimensions."""
+    names = values_of(assembly.names)
+    if names_in(text, names):
+        return parse(text, Kind.NUMBER, where=where, names=names).value
+    if not text.strip().isascii() or not text.strip().isdigit():
+        raise QuantityError(
+            "a quantity is a whole number", where=where, read=f'"{text}"', remedy="Type how many there are"
+        )
+    return float(text)
 
 
 def made_of(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assembly]:
@@ -60,7 +72,10 @@ def made_of(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assembl
             raise EditRefused(
                 "a known part takes its mass from its data sheet", where=part.name, remedy="Edit it on the Part page"
             )
-        return assembly.replaced(replace(part, driver=driver_of(text, units, part.name)))
+        driver = driver_of(text, units, part.name, values_of(assembly.names))
+        path = next((path for path, kind in DRIVER_PATHS.items() if isinstance(driver, kind)), "")
+        made = replace(part, driver=driver)
+        return assembly.replaced(with_typed(made, path, kept_text(text)) if path else made)
 
     return change
 
@@ -74,16 +89,16 @@ def weighing(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assemb
             raise EditRefused(
                 "a known part takes its mass from its data sheet", where=part.name, remedy="Edit it on the Part page"
             )
-        mass = parse(text, Kind.MASS, units[Kind.MASS]).value
-        return assembly.replaced(replace(part, driver=Weighed(mass)))
+        mass = parse(text, Kind.MASS, units[Kind.MASS], names=values_of(assembly.names)).value
+        return assembly.replaced(with_typed(with_value(part, "weighed", mass), "weighed", kept_text(text)))
 
     return change
 
 
-def driver_of(text: str, units: UnitSet, where: str) -> Driver:
+def driver_of(text: str, units: UnitSet, where: str, names: Names | None = None) -> Driver:
     """Return what says a mass: of text that starts with a number its unit tells which, other text is a material.
 
-    A bare number is a weighed mass.
+    A bare number is a weighed mass. A text with one of the names counts as a number.
 
     Raises:
         MaterialError, QuantityError: neither.
@@ -92,15 +107,15 @@ def driver_of(text: str, units: UnitSet, where: str) -> Driver:
     words = text.strip()
     if not words:
         return NotSet()
-    if not (words[0].isdigit() or words[0] in ".,-+("):
+    if not (words[0].isdigit() or words[0] in ".,-+(" or names_in(words, names or ())):
         found = material(words)
         return ByMaterial(found.name, found.density)
     try:
-        return Weighed(parse(words, Kind.MASS, units[Kind.MASS]).value)
+        return Weighed(parse(words, Kind.MASS, units[Kind.MASS], names=names).value)
     except QuantityError as not_a_mass:
         for kind, unit, driver in _MASS_PER:
             with suppress(QuantityError):
-                return driver(parse(words, kind, UNITS[unit]).value)
+                return driver(parse(words, kind, UNITS[unit], names=names).value)
         raise QuantityError(
             "this is no material, density or mass", where=where, read=f'"{text}"',
             remedy='Type a material\'s name, a density like "7850 kg/m³", a weighed mass like "1.2 kg", or of a thin '

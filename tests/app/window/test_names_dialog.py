@@ -14,8 +14,12 @@ from window_driver import dialog, enter, field, trigger
 
 from app.window.dialogs.names import NAME, NOTE, TEXT, USED, VALUE
 from app.window.fields import QuantityField, kept_text
+from app.window.ledger.edits import counted, made_of, weighing
 from core.assembly.fields import value_of
+from core.assembly.names import NameEntry
+from core.assembly.naming import with_entry
 from core.document import read_document
+from core.material import ByDensity, Weighed
 
 if TYPE_CHECKING:
     from app.window.dialogs.names import NamesDialog
@@ -172,3 +176,22 @@ def test_names_are_saved_with_the_document_and_there_again_when_it_is_opened(fil
 @pytest.mark.parametrize(("text", "kept"), [("12", ""), (" -1,5e-3 ", ""), ("", ""), ("e", "e"), ("e5", "e5"), ("2*3", "2*3"), ("1 in", "1 in")])
 def test_a_bare_number_is_not_kept_as_text_and_a_name_is(text, kept):
     assert kept_text(text) == kept
+
+
+def test_the_cells_of_the_ledger_take_names_too(filled):
+    names = opened(filled)
+    for name, text in (("n", "4"), ("rho", "2700 kg/m^3"), ("ring_m", "1.5 kg")):
+        add(names, name, text)
+    names.reject()
+    filled.activateWindow()
+    assert filled.session.edit("", counted("pins", "2*n"))
+    assert filled.session.edit("", made_of("plate", "rho", filled.session.units))
+    assert filled.session.edit("", weighing("ring", "2*ring_m", filled.session.units))
+    assert filled.session.edit("", lambda before: with_entry(before, NameEntry("n", "5")))
+    assert filled.session.edit("", lambda before: with_entry(before, NameEntry("rho", "7850 kg/m^3")))
+    assert filled.session.edit("", lambda before: with_entry(before, NameEntry("ring_m", "2 kg")))
+    node = filled.session.assembly.node
+    assert (node("pins").copies.count, node("plate").driver, node("ring").driver) == (10, ByDensity(7850.0), Weighed(4.0))
+    assert filled.session.edit("", counted("pins", "3"))
+    assert node("pins").typed != filled.session.assembly.node("pins").typed == ()
+    assert "a quantity is a whole number" in filled.session.attempt("", counted("pins", "n/2"))
