@@ -46,6 +46,7 @@ _ARROWS: dict[int, tuple[float, float]] = {
 _ARROW_STEP = np.radians(7.5)
 _TURN_PER_PIXEL = np.radians(0.45)
 _ZOOM_STEP = 1.2
+_ROUND_OFF = 1e-9
 # A press that moves less than this many pixels is a click.
 _CLICK = 4.0
 # Room left around a fitted scene, px: names beside the marks need some.
@@ -208,7 +209,8 @@ class ViewPane(QWidget):
         if self._fit_due and self.isVisible():
             self._fit_due = False
             camera = self.camera.fitted(self.scene.fit_points, self.frame_size, _INSET)
-            self._picture = replace(self._picture, camera=camera)
+            if not _same_place(camera, self.camera):
+                self._picture = replace(self._picture, camera=camera)
         self._picture = replace(self._picture, moving=moving)
         cast("Canvas", self.canvas).show_picture(self._picture)
         self._overlay.show_picture(self._picture)
@@ -316,3 +318,9 @@ class ViewPane(QWidget):
         if event.type() == QEvent.Type.PaletteChange and hasattr(self, "_picture"):
             self._picture = replace(self._picture, theme=theme_of(self.palette()))
             self._redraw(moving=self._picture.moving)
+
+
+def _same_place(one: Camera, other: Camera) -> bool:
+    """Tell whether a fitted camera stands where the other one of the same direction does, but for round-off."""
+    near = np.allclose(one.target, other.target, rtol=0, atol=_ROUND_OFF * one.distance)
+    return bool(near and abs(one.distance - other.distance) <= _ROUND_OFF * one.distance)
