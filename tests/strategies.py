@@ -407,3 +407,21 @@ def assemblies(draw: st.DrawFn, drivers: st.SearchStrategy[Driver] = unset_or_ma
     names = draw(st.lists(TEXTS, min_size=1, max_size=3, unique=True))
     axes = tuple(DriveAxis(name, draw(TRIPLES), draw(DIRECTIONS)) for name in names)
     return Assembly(draw(TEXTS), with_own_keys(members), axes, draw(st.sampled_from(names)))
+
+
+@st.composite
+def varied_assemblies(draw: st.DrawFn) -> Assembly:
+    """A document with variants, lines and groups that are in some of them only, and one of them or none chosen."""
+    whole = draw(assemblies(mass_drivers))
+    variants = tuple(draw(st.lists(TEXTS.filter(str.strip), min_size=1, max_size=3, unique=True)))
+
+    def put(members: tuple[Node, ...]) -> tuple[Node, ...]:
+        made: list[Node] = []
+        for node in members:
+            only_in = tuple(draw(st.lists(st.sampled_from(variants), max_size=2, unique=True)))
+            inner = {"members": put(node.members)} if isinstance(node, Group) else {}
+            made.append(replace(node, only_in=only_in, **inner))
+        return tuple(made)
+
+    chosen = draw(st.sampled_from(("", *variants)))
+    return replace(whole, members=put(whole.members), variants=variants, variant=chosen)

@@ -3,10 +3,14 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from pathlib import Path
+from tempfile import TemporaryDirectory
+from typing import TYPE_CHECKING
 
 import pytest
-from hypothesis import given
+from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
+from strategies import varied_assemblies
 
 from core.assembly import Assembly, Cut, Group, Part, ShapeBody, findings_of, ledger_of
 from core.assembly.selection import selected
@@ -25,6 +29,9 @@ from core.material import ByDensity, NotSet
 from core.placement import Pose, Ring
 from core.quantity import DEFAULT_UNITS
 from core.shapes import Cylinder
+
+if TYPE_CHECKING:
+    from core.assembly import Node
 
 EMPTY, FULL = "payload empty", "payload full"
 
@@ -179,3 +186,38 @@ def test_the_answer_for_programs_says_the_variant_and_the_totals_of_each():
     assert answer["variants"][1]["axis_inertia_kgm2"] == pytest.approx(answer["axis"]["inertia_kgm2"], rel=1e-12)
     assert {line["key"]: line["counts"] for line in answer["ledger"]}["d"] is False
     assert "variants" not in answer_of_assembly(Assembly("plain", (disc("a"),)), "p.masswright")
+
+
+PROPERTY = settings(deadline=None, max_examples=30, suppress_health_check=list(HealthCheck))
+
+
+def left_out(members: tuple[Node, ...], variant: str) -> list[str]:
+    """Return the keys of the outermost lines that name variants, and not this one."""
+    keys = []
+    for node in members:
+        if variant and node.only_in and variant not in node.only_in:
+            keys.append(node.key)
+        elif isinstance(node, Group):
+            keys += left_out(node.members, variant)
+    return keys
+
+
+@PROPERTY
+@given(varied_assemblies())
+def test_any_variant_is_the_document_with_the_other_lines_taken_out(assembly):
+    pruned = replace(assembly.removed(tuple(left_out(assembly.members, assembly.variant))), variant="")
+    size = max(float(abs(assembly.table.moments.centre).max(initial=0.0)), 1.0)
+    assert float(assembly.total.mass) == pytest.approx(float(pruned.total.mass), rel=1e-12)
+    assert assembly.total.centre == pytest.approx(pruned.total.centre, abs=1e-12 * size)
+    counting = {line.key: line for line in ledger_of(assembly).lines if line.counts}
+    for line in ledger_of(pruned).lines:
+        assert counting[line.key].mass == (None if line.mass is None else pytest.approx(line.mass, rel=1e-12))
+    assert set(counting) == {line.key for line in ledger_of(pruned).lines}
+
+
+@PROPERTY
+@given(varied_assemblies())
+def test_any_document_with_variants_is_read_as_it_was_saved(assembly):
+    with TemporaryDirectory() as folder:
+        save_document(assembly, Path(folder) / "m.masswright")
+        assert read_document_bytes((Path(folder) / "m.masswright").read_bytes()) == assembly
