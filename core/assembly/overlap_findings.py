@@ -81,5 +81,5 @@ def _looked_at(assembly: Assembly, overlaps: Overlaps) -> str:
         more = len(overlaps.left_out) - len(named)
         text += f"; left out: {', '.join(named)}" + (f" and {more} more" if more else "")
     if overlaps.skipped:
-        text += "; some pairs were not looked at, because there are too many"
+        text += "; there are more pairs than are told here" if overlaps.bodies else ": there are too many"
     return text

@@ -36,6 +36,8 @@ MESH_STRAY: Final = 1e-3
 STEADY: Final = 0.2
 # Kinds of pairs that are cut with one another, at most; each takes about a millisecond.
 MOST_KINDS: Final = 20_000
+# Overlaps that are told, at most; more than that is a heap that nobody has laid out yet.
+MOST_TOLD: Final = 200
 # Facets of the common volume that are kept to be lit up, at most.
 MOST_SHOWN: Final = 20_000
 
@@ -101,7 +103,7 @@ class Overlaps:
         found: by the order of the ledger.
         bodies: how many were looked at.
         left_out: the parts that were not.
-        skipped: some pairs were not looked at, because there are too many.
+        skipped: some pairs were not looked at, or are not told, because there are too many.
     """
 
     found: tuple[Overlap, ...]
@@ -143,9 +145,14 @@ def overlaps_of(assembly: Assembly, progress: Progress | None = None) -> Overlap
     left_out += [
         LeftOut(parts[at].key, parts[at].name, "its surface does not bound a volume clearly") for at in refused
     ]
-    found = _gathered(assembly, bodies, pairs, commons)
-    skipped = pairs.skipped or (len(pairs.kind) > 0 and int(pairs.kind.max()) >= MOST_KINDS)
-    return Overlaps(found, len(bodies.owner), tuple(left_out), skipped)
+    sums = _gathered(bodies, pairs, commons)
+    found = []
+    for two in sorted(sums)[:MOST_TOLD]:
+        found.append(_overlap(assembly, bodies, pairs, two, sums[two]))
+        if progress is not None:
+            progress.advance(0)
+    skipped = pairs.skipped or (len(pairs.kind) > 0 and int(pairs.kind.max()) >= MOST_KINDS) or len(sums) > MOST_TOLD
+    return Overlaps(tuple(found), len(bodies.owner), tuple(left_out), skipped)
 
 
 def _why_left_out(part: Part) -> str:
@@ -304,18 +311,21 @@ def _placed(solid: Any, standing: Placement, origin: FloatArray, middle: FloatAr
 
 
 def _gathered(
-    assembly: Assembly, bodies: Bodies, pairs: Pairs, commons: dict[int, _Common]
-) -> tuple[Overlap, ...]:
-    """Return the overlaps, one for every two parts, of what the pairs of each kind have in common."""
+    bodies: Bodies, pairs: Pairs, commons: dict[int, _Common]
+) -> dict[tuple[int, int], list[tuple[IntArray, _Common]]]:
+    """Return for every two parts that overlap the rows of their pairs, kind by kind, with what these have in common."""
     sums: dict[tuple[int, int], list[tuple[IntArray, _Common]]] = {}
     order = np.argsort(pairs.kind, kind="stable")
     starts = np.searchsorted(pairs.kind[order], np.arange(max(commons, default=-1) + 2))
     for kind, common in commons.items():
         rows = order[starts[kind] : starts[kind + 1]]
         owners = np.sort(np.stack([bodies.owner[pairs.first[rows]], bodies.owner[pairs.second[rows]]], axis=1), axis=1)
-        for two in np.unique(owners, axis=0).tolist():
-            sums.setdefault((two[0], two[1]), []).append((rows[(owners == two).all(axis=1)], common))
-    return tuple(_overlap(assembly, bodies, pairs, two, sums[two]) for two in sorted(sums))
+        two_parts, number = np.unique(owners, axis=0, return_inverse=True)
+        sorted_rows = rows[np.argsort(number.reshape(-1), kind="stable")]
+        edges = np.cumsum(np.bincount(number.reshape(-1)))[:-1]
+        for two, some in zip(two_parts.tolist(), np.split(sorted_rows, edges), strict=True):
+            sums.setdefault((two[0], two[1]), []).append((some, common))
+    return sums
 
 
 def _overlap(

@@ -11,7 +11,7 @@ import numpy as np
 import pytest
 
 from core.assembly import Assembly, Part, ShapeBody
-from core.assembly.overlaps import overlaps_of
+from core.assembly.overlaps import MOST_TOLD, overlaps_of
 from core.material import ByMaterial
 from core.placement import Pose, Ring, Several
 from core.shapes import Box, Cylinder, Tube
@@ -58,7 +58,7 @@ def heap_of(parts: int, seed: int = 5) -> Assembly:
 @pytest.mark.parametrize("parts", [100, 1000, 10_000])
 def test_overlaps_in_a_machine(benchmark, parts):
     found = benchmark.pedantic(lambda: overlaps_of(machine_of(parts)), rounds=1)
-    assert len(found.found) == -(-(parts // IN_A_CELL) // 10)
+    assert len(found.found) == min(-(-(parts // IN_A_CELL) // 10), MOST_TOLD)
     benchmark.extra_info.update({"aim": "5 s for 1,000 parts", "bodies": found.bodies, "overlaps": len(found.found)})
 
 

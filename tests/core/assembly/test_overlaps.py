@@ -13,7 +13,7 @@ from strategies import placements
 
 from core.assembly import Assembly, Cut, DataSheet, Group, KnownAxial, MeshBody, Part, ShapeBody
 from core.assembly.assembly import MeantOverlap
-from core.assembly.overlaps import overlaps_of
+from core.assembly.overlaps import MOST_TOLD, overlaps_of
 from core.document import read_document, save_document
 from core.errors import Cancelled, EditRefused
 from core.material import ByDensity, NotSet, PerArea, Weighed
@@ -205,6 +205,13 @@ def test_what_a_mirrored_body_shares_is_that_of_its_image():
     both = only(wall, replace(leaning, copies=Mirrored()))
     assert both.count == 2
     assert both.volume == pytest.approx(2 * one.volume, rel=1e-9)
+
+
+def test_of_a_heap_of_bodies_at_one_place_some_overlaps_are_told_and_that_there_are_more():
+    heap = [part(f"p{at}", Box(0.1, 0.1, 0.1)) for at in range(40)]
+    result = overlaps_of(assembly(*heap))
+    assert len(result.found) == MOST_TOLD
+    assert result.skipped
 
 
 def test_a_search_can_be_stopped():
