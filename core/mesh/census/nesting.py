@@ -117,41 +117,60 @@ def _share_inside(
     around = np.zeros(len(sizes.area), dtype=bool)
     around[outer] = True
     facets = np.flatnonzero(around[label])
-    # Winding numbers by (point, pair of shells): only wanted pairs are kept.
-    wanted = ask * len(sizes.area) + outer
-    order = np.argsort(wanted)
-    sorted_wanted = wanted[order]
-    per_shell = np.bincount(owner, minlength=len(asking))
-    first_point = np.cumsum(per_shell) - per_shell
-    room = per_shell[ask[order]]
-    first_row = np.cumsum(room) - room
-    winding, touching = np.zeros(int(room.sum()), np.int64), np.zeros(int(room.sum()), dtype=bool)
+    tally = _Tally(ask * len(sizes.area) + outer, owner, ask)
     film = WELD * float(np.linalg.norm(np.ptp(points, axis=0)))
-    tree = BoxTree(places, places)
     triangles = points[corners[facets]]
     low, high = triangles.min(axis=1), triangles.max(axis=1)
     low[:, 2] = -np.inf
     rays = 0
-    for facet, point in tree.meeting(low, high):
+    for facet, point in BoxTree(places, places).meeting(low, high):
         rays += len(facet)
         if rays > MOST_RAYS:
             return None
         turns, touches = _stabs(points, corners[facets[facet]], places[point], film)
-        keys = owner[point] * len(sizes.area) + label[facets[facet]]
-        place = np.minimum(np.searchsorted(sorted_wanted, keys), len(sorted_wanted) - 1)
-        hit = (sorted_wanted[place] == keys) & ((turns != 0) | touches)
-        row = first_row[place[hit]] + point[hit] - first_point[owner[point[hit]]]
-        np.add.at(winding, row, turns[hit])
-        touching[row[touches[hit]]] = True
+        tally.add(owner[point] * len(sizes.area) + label[facets[facet]], point, turns, touches)
         if progress is not None:
             progress.advance(0)
-    # A point on the other shell's surface says nothing; where no point says anything, half is as good a guess as any.
-    told = np.add.reduceat((~touching).astype(float), first_row)
-    within = np.add.reduceat(((winding != 0) & ~touching).astype(float), first_row)
-    share = np.divide(within, told, out=np.full(len(room), 0.5), where=told > 0)
-    result = np.empty(len(inner))
-    result[order] = share
-    return result
+    return tally.share()
+
+
+class _Tally:
+    """Winding numbers, one for each point of a shell and each other shell that it is held against.
+
+    Args:
+        wanted: (p,) a number for each pair of shells.
+        owner: (q,) which asking shell each point is on, ascending.
+        ask: (p,) the asking shell of each pair.
+    """
+
+    def __init__(self, wanted: IntArray, owner: IntArray, ask: IntArray) -> None:
+        self._order = np.argsort(wanted)
+        self._wanted = wanted[self._order]
+        per_shell = np.bincount(owner)
+        self._first_point = (np.cumsum(per_shell) - per_shell)[owner]
+        self._room = per_shell[ask[self._order]]
+        self._first_row = np.cumsum(self._room) - self._room
+        self._winding = np.zeros(int(self._room.sum()), np.int64)
+        self._touching = np.zeros(len(self._winding), dtype=bool)
+
+    def add(self, keys: IntArray, point: IntArray, turns: IntArray, touches: BoolArray) -> None:
+        """Count rays from points that meet a facet of the other shell of a pair; pairs not wanted are passed over."""
+        place = np.minimum(np.searchsorted(self._wanted, keys), len(self._wanted) - 1)
+        hit = (self._wanted[place] == keys) & ((turns != 0) | touches)
+        row = self._first_row[place[hit]] + point[hit] - self._first_point[point[hit]]
+        np.add.at(self._winding, row, turns[hit])
+        self._touching[row[touches[hit]]] = True
+
+    def share(self) -> FloatArray:
+        """Return which share of the points of each pair (p,) lie inside.
+
+        A point on the other shell's surface says nothing; where no point says anything, half is as good a guess as any.
+        """
+        told = np.add.reduceat((~self._touching).astype(float), self._first_row)
+        within = np.add.reduceat(((self._winding != 0) & ~self._touching).astype(float), self._first_row)
+        result = np.empty(len(told))
+        result[self._order] = np.divide(within, told, out=np.full(len(told), 0.5), where=told > 0)
+        return result
 
 
 def _points_on(

@@ -66,6 +66,47 @@ def evidence_of(triangles: NDArray[np.floating], progress: Progress | None) -> E
         Cancelled: progress was cancelled.
     """
     step = _Steps(progress)
+    surface = _surface(triangles, step)
+    points, corners, seams = surface.points, surface.corners, surface.seams
+    sheet = sheets_of(corners, seams)
+    step()
+    openings = openings_of(points, corners, seams.open)
+    winding = winding_of(seams, sheet, areas_of(points, corners) if len(seams.against) else np.empty(0))
+    step()
+    cap_sheet = np.array([sheet[beside[0]] for beside in openings.facets], np.int64)[openings.cap_loop]
+    sizes = sizes_of(points, corners, sheet, openings.caps, cap_sheet)
+    step()
+    is_open = np.zeros(len(sizes.area), dtype=bool)
+    is_open[sheet[np.concatenate([seams.open, seams.against.ravel()]) // 3]] = True
+    twin, is_flat = _twins(corners, sizes), _is_flat(sizes)
+    nesting = nesting_of(points, corners, sheet, sizes, _alone(twin) & ~is_open & ~is_flat, progress)
+    nesting = replace(nesting, inside=nesting.inside[twin], depth=nesting.depth[twin])
+    step()
+    volume, pairs = sizes.bodies.mass, nesting.crossing
+    turned = bool(volume[~is_open | (len(volume) == 1)].sum() < 0)
+    counted = -volume if turned else volume
+    # Where nobody knows what lies in what, a shell is what its winding says.
+    role = roles_of(counted, is_open, is_flat, nesting.depth if nesting.complete else (counted < 0).astype(np.int64))
+    same_way = (volume[pairs[:, 0]] > 0) == (volume[pairs[:, 1]] > 0)
+    overlaps = overlaps_of(points, corners, sizes, pairs[same_way], progress)
+    step()
+    shells = Shells(sheet, sizes.bodies, sizes.area, sizes.bounds, nesting.inside, nesting.depth, role, sizes.order,
+                    sizes.starts)
+    return Evidence(triangles, points, corners, surface.doubles, seams, winding, surface.cracks, shells, twin, nesting,
+                    overlaps, turned, openings.described(sheet))
+
+
+@dataclass(frozen=True, eq=False)
+class _Surface:
+    points: FloatArray
+    corners: IntArray
+    doubles: Doubles
+    seams: Seams
+    cracks: Cracks | None
+
+
+def _surface(triangles: NDArray[np.floating], step: _Steps) -> _Surface:
+    """Return the mesh over shared points, its cracks sewn, and how its facets meet; three steps."""
     points, corners = weld_exactly(triangles)
     if not np.isfinite(points).all():
         raise MeshFileError("a coordinate is not a finite number", where="the mesh", read="nan or inf", remedy=MEND)
@@ -75,40 +116,10 @@ def evidence_of(triangles: NDArray[np.floating], progress: Progress | None) -> E
     seams = seams_of(corners, doubles.copy)
     step()
     cracks = cracks_of(points, corners, seams.open)
-    if cracks is not None:
-        points, corners = cracks.points, cracks.corners
-        doubles = doubles_of(corners)
-        seams = seams_of(corners, doubles.copy)
-    sheet = sheets_of(corners, seams)
-    step()
-    openings = openings_of(points, corners, seams.open)
-    winding = winding_of(seams, sheet, areas_of(points, corners) if len(seams.against) else np.empty(0))
-    step()
-    cap_sheet = np.array([sheet[beside[0]] for beside in openings.facets], np.int64)[openings.cap_loop]
-    sizes = sizes_of(points, corners, sheet, openings.caps, cap_sheet)
-    step()
-    open_sheets = np.zeros(len(sizes.area), dtype=bool)
-    open_sheets[sheet[seams.open // 3]] = True
-    open_sheets[sheet[seams.against.ravel() // 3]] = True
-    twin = _twins(corners, sizes)
-    flat = _is_flat(sizes)
-    nesting = nesting_of(points, corners, sheet, sizes, _alone(twin) & ~open_sheets & ~flat, progress)
-    nesting = replace(nesting, inside=nesting.inside[twin], depth=nesting.depth[twin])
-    step()
-    volume = sizes.bodies.mass
-    turned = bool(volume[~open_sheets | (len(volume) == 1)].sum() < 0)
-    counted = -volume if turned else volume
-    # Where nobody knows what lies in what, a shell is what its winding says.
-    depth = nesting.depth if nesting.complete else (counted < 0).astype(np.int64)
-    role = roles_of(counted, open_sheets, flat, depth)
-    pairs = nesting.crossing
-    same_way = (volume[pairs[:, 0]] > 0) == (volume[pairs[:, 1]] > 0)
-    overlaps = overlaps_of(points, corners, sizes, pairs[same_way], progress)
-    step()
-    shells = Shells(sheet, sizes.bodies, sizes.area, sizes.bounds, nesting.inside, nesting.depth, role, sizes.order,
-                    sizes.starts)
-    return Evidence(triangles, points, corners, doubles, seams, winding, cracks, shells, twin, nesting, overlaps,
-                    turned, openings.described(sheet))
+    if cracks is None:
+        return _Surface(points, corners, doubles, seams, None)
+    doubles = doubles_of(cracks.corners)
+    return _Surface(cracks.points, cracks.corners, doubles, seams_of(cracks.corners, doubles.copy), cracks)
 
 
 class _Steps:
