@@ -22,7 +22,7 @@ if TYPE_CHECKING:
     from core.assembly.fields import AnyLine
 
 # In the order in which a workshop takes material away; the other solids follow.
-USUAL = ("cylinder", "box", "tube", "cone", "regular_prism", "extruded")
+USUAL = ("cylinder", "box", "tube", "cone", "regular prism", "extruded profile")
 
 
 class CutsSection(Section):

@@ -251,3 +251,11 @@ def test_a_length_beyond_any_drawing_is_typed_through_without_harm(window):
         QApplication.processEvents()
     press(Qt.Key.Key_Escape)
     assert names(window) == []
+
+
+def test_the_view_fits_what_is_being_made_until_its_camera_is_moved(window):
+    making(window, "cylinder")
+    near = window.view.camera.distance
+    type_text("5000")
+    assert window.view.camera.distance > 10 * near
+    press(Qt.Key.Key_Escape)

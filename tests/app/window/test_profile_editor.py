@@ -24,6 +24,7 @@ from app.window.outline.draft import (
     without_point,
 )
 from app.window.outline.section import OutlineSection
+from app.window.pages.part_cuts import CutsSection
 from core.errors import ShapeError
 from core.quantity import UNITS
 from core.shapes import Outline, OutlinePoint
@@ -54,6 +55,10 @@ def plate(window):
     window.add_shape("extruded profile")
     paste(window, "0\t0\n80\t0\n80\t50\n0\t50\n\n50\t25\t0\t10\n30\t25\t0\t10")
     return window
+
+
+def last_cut(window):
+    return window.session.assembly.members[0].cuts[-1]
 
 
 def paste(window, text: str) -> None:
@@ -368,3 +373,19 @@ def test_the_place_of_a_fault_is_read_from_the_sentence():
         Outline((tuple(SQUARE[0][k] for k in (0, 1, 3, 2)),))
     assert fault_place(refusal.value) == pytest.approx((0.02, 0.015))
     assert fault_place(ShapeError("an outline needs points")) is None
+
+
+def test_the_outline_of_a_cut_is_edited_like_that_of_a_part(window):
+    window.add_shape("box")
+    QApplication.processEvents()
+    cuts = next(each for each in window.part._sections if isinstance(each, CutsSection))
+    action = next(each for each in cuts.add.menu().actions() if each.text() == "extruded profile")
+    action.trigger()
+    before = last_cut(window).shape.outline
+    block = section(window.part)
+    point = before.loops[0][1]
+    block._move((0, 1), (point.x * 1.1, point.y))
+    assert last_cut(window).shape.outline.loops[0][1].x == pytest.approx(point.x * 1.1, rel=1e-12)
+    assert window.session.history.undo_name.startswith("point 2 to ")
+    trigger(window, "Edit", "Undo")
+    assert last_cut(window).shape.outline == before
