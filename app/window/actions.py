@@ -9,6 +9,7 @@ from PySide6.QtCore import QSize, Qt
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 from PySide6.QtWidgets import QMenu, QSizePolicy, QToolBar, QToolButton, QWidget
 
+from app.window.dialogs.take_apart import TakeApartDialog
 from app.window.fields import ChoiceField
 from app.window.style import GRID, Words, icon
 from core.quantity import UNIT_SETS
@@ -114,7 +115,8 @@ class Actions:
             Command("Add group", w.add_group, "Ctrl+G", tip="Puts the selected lines into a new group."),
             Command("Move up", lambda: w.move_line(-1), "Alt+Up"),
             Command("Move down", lambda: w.move_line(1), "Alt+Down"),
-            Command("Move out of its group", w.move_out, "Alt+Left"),
+            Command("Move out of its group", w.move_out, "Alt+Left"), None,
+            Command("Take one copy apart…", lambda: w.files.show_dialog(TakeApartDialog(w.session, w))),
         ])
         self._fill(bar.addMenu("&Axis"), [
             Command("Edit drive axis…", w.edit_axis), Command("New axis…", w.new_axis),

@@ -1,0 +1,32 @@
+"""One copy of a ring is taken apart from the Part menu, in one undo step."""
+
+from __future__ import annotations
+
+import pytest
+from window_driver import dialog, names, trigger
+
+pytestmark = pytest.mark.gui
+
+
+def test_a_copy_of_a_ring_becomes_a_part_of_its_own_and_undo_puts_it_back(filled):
+    mass = float(filled.session.assembly.total.mass)
+    filled.session.select(frozenset({"pins"}))
+    trigger(filled, "Part", "Take one copy apart…")
+    box = dialog(filled)
+    assert box.labelText() == "Copy of pins that becomes a part of its own, 1 to 6:"
+    box.setIntValue(2)
+    box.accept()
+    assert names(filled)[:5] == ["top", ".plate", ".hub", ".pins", ".pins 2"]
+    assert filled.session.assembly.node("pins").copies.count == 5
+    assert float(filled.session.assembly.total.mass) == pytest.approx(mass, rel=1e-12)
+    assert filled.session.history.undo_name == "Take copy 2 of pins apart"
+    filled.undo()
+    assert names(filled)[:5] == ["top", ".plate", ".hub", ".pins", "below"]
+
+
+def test_without_a_part_selected_it_says_what_to_do(filled, qtbot):
+    filled.session.select(frozenset({"top"}))
+    trigger(filled, "Part", "Take one copy apart…")
+    with qtbot.waitSignal(filled.session.refused) as told:
+        dialog(filled).accept()
+    assert told.args == ["Select one part with several copies first."]
