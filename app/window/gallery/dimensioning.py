@@ -22,9 +22,11 @@ TAILS, TAILS_BESIDE = (1.2, 1.8, 2.6, 3.5, 4.5), (0.0, 0.5, 1.0)
 _STEP, _MOST_STEPS = 0.4, 24
 # A span must be so long for its arrows to stand between its ends.
 _ROOMY = 2.2
-_ROUNDS = 12
-# A layout that leaves less than this part of the body's size free is large enough; the body shrinks no faster.
-_LOOSE, _LEAST = 0.05, 0.4
+# How often a smaller scale, then a larger one is tried; the first one, and how slowly and how fast it becomes smaller.
+_ROUNDS, _GROWING = 12, 2
+_FIRST, _SLOWEST, _FASTEST = 0.85, 0.95, 0.85
+# A body within this part of its size of the largest one that fits is large enough.
+_LOOSE = 0.06
 _ALMOST = 1e-9
 
 
@@ -72,23 +74,42 @@ def laid_out(
     """
     body = np.concatenate([drawing.spots, drawing.faces.reshape(-1, 2)])
     extent = np.maximum(np.ptp(body, axis=0), _ALMOST)
-    scale = float(min(room[0] / extent[0], room[1] / extent[1])) * 0.7
-    best, best_fits = None, False
-    for _ in range(_ROUNDS):
+    most = float(np.min(np.array(room) / extent))
+
+    def at(scale: float) -> tuple[Layout, FloatArray]:
         placed = _Placing(drawing, scale, height, width_of).all_of(symbols)
         low, high = _bounds(placed, body * scale, height, width_of)
-        around = (high - low) - extent * scale
-        spare = np.array(room) - (high - low)
-        fits = bool(spare.min() >= 0)
-        found = Layout(scale, -(low + high) / 2, placed)
-        if best is None or (fits and (not best_fits or scale > best.scale)):
-            best, best_fits = found, fits
-        if fits and np.min(spare / (extent * scale)) < _LOOSE:
+        return Layout(scale, -(low + high) / 2, placed), np.array(room) - (high - low)
+
+    best, too_large = None, most
+    scale = _FIRST * most
+    for _ in range(_ROUNDS):
+        found, spare = at(scale)
+        if spare.min() >= 0:
+            best = found
             break
-        # Where things stand changes by leaps with the scale, so it is not asked to fit exactly.
-        wanted = float(np.min((np.array(room) - around) / extent))
-        scale = max(wanted * (1 - _LOOSE / 2), _LEAST * scale)
-    return found if best is None else best
+        too_large = scale
+        # Where things stand changes by leaps with the scale, so what it seems to allow is taken with care.
+        scale = max(min(scale + float(np.min(spare / extent)), _SLOWEST * scale), _FASTEST * scale)
+    if best is None:
+        return found
+    return _grown(best, too_large, at)
+
+
+def _grown(
+    best: Layout, too_large: float, at: Callable[[float], tuple[Layout, FloatArray]]
+) -> Layout:
+    """Return a layout that fits, larger than one that does where there is one below a scale that does not."""
+    for _ in range(_GROWING):
+        if too_large - best.scale < _LOOSE * too_large:
+            break
+        scale = 0.5 * (best.scale + too_large)
+        found, spare = at(scale)
+        if spare.min() >= 0:
+            best = found
+        else:
+            too_large = scale
+    return best
 
 
 def _bounds(
