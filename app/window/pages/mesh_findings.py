@@ -26,6 +26,8 @@ if TYPE_CHECKING:
 
 # More facets than this light up nothing but a blot.
 MOST_LIT = 20_000
+# Above this many facets, looking closely takes gigabytes and most of a minute: it is done when asked.
+UNASKED = 3_000_000
 
 
 class MeshFindings(QWidget):
@@ -43,12 +45,17 @@ class MeshFindings(QWidget):
         self.cancel = QPushButton("Stop looking")
         self.cancel.clicked.connect(self._stop)
         self.cancel.hide()
+        self.look = QPushButton("Look closely")
+        self.look.setToolTip("Finds shells, voids and what is counted twice; needs about 250 bytes a facet.")
+        self.look.clicked.connect(self._asked)
+        self.look.hide()
         self._rows = QVBoxLayout()
         self._rows.setSpacing(GRID // 2)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.addWidget(self.said)
         layout.addWidget(self.cancel)
+        layout.addWidget(self.look)
         layout.addLayout(self._rows)
 
     def show_part(self, part: Part, body: MeshBody) -> None:
@@ -56,10 +63,19 @@ class MeshFindings(QWidget):
         self._part = part
         asset = body.asset
         if asset.census_at_hand is None and asset.survey.triangles > CENSUS_AT_ONCE:
-            if self._task is None:
+            if asset.survey.triangles > UNASKED:
+                self.said.setText("So large a mesh is looked at closely only when asked.")
+                self.look.setVisible(self._task is None)
+            elif self._task is None:
                 self._take(asset)
             return
         self._list(asset.census())
+
+    def _asked(self) -> None:
+        asset = self._asset()
+        self.look.hide()
+        if asset is not None and self._task is None:
+            self._take(asset)
 
     def _take(self, asset: MeshAsset) -> None:
         self.said.setText("Looking for what the mesh consists of …")

@@ -9,7 +9,7 @@ from PySide6.QtWidgets import QGridLayout, QWidget
 
 from app.window.fields import ChoiceField, Form
 from app.window.numbers import shown
-from app.window.pages.mesh_findings import MeshFindings
+from app.window.pages.mesh_findings import UNASKED, MeshFindings
 from app.window.pages.section import Section
 from app.window.style import GRID, Words
 from app.window.tasks import Task
@@ -83,6 +83,10 @@ class MeshSection(Section):
             self._curved.say(f"The curvature behind the facets cannot be restored: the mesh is {asset.survey.verdict}.")
         elif asset.restored_already or asset.survey.triangles <= AT_ONCE:
             self._curved.show_part(part)
+        elif asset.survey.triangles > UNASKED:
+            self._curved.say(
+                "The curvature behind so many facets changes next to nothing; choose that it counts to have it restored."
+            )
         elif self._task is None:
             self._curved.say("Restoring the curvature behind the facets …")
             self._task = Task(
