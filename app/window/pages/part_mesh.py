@@ -18,6 +18,8 @@ from core.mesh import MeshAsset, can_restore
 from core.quantity import UNITS, Kind
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from app.window.session import Session
     from core.assembly.fields import AnyLine
     from core.assembly.mesh_part import Comparison
@@ -85,14 +87,17 @@ class MeshSection(Section):
             self._curved.show_part(part)
         elif asset.survey.triangles > UNASKED:
             self._curved.say(
-                "The curvature behind so many facets changes next to nothing; choose that it counts to have it restored."
+                "The curvature behind so many facets changes next to nothing; let it count to have it restored."
             )
         elif self._task is None:
-            self._curved.say("Restoring the curvature behind the facets …")
-            self._task = Task(
-                self._curved, asset.restored, lambda _body: self._show_again(), self._curved.say,
-                lambda fraction: self._curved.say(f"Restoring the curvature behind the facets … {fraction:.0%}"),
-            )
+            self._restore(asset, self._show_again)
+
+    def _restore(self, asset: MeshAsset, then: Callable[[], None]) -> None:
+        self._curved.say("Restoring the curvature behind the facets …")
+        self._task = Task(
+            self._curved, asset.restored, lambda _body: then(), self._curved.say,
+            lambda fraction: self._curved.say(f"Restoring the curvature behind the facets … {fraction:.0%}"),
+        )
 
     def _show_again(self) -> None:
         if self.key in self.session.assembly:
@@ -117,6 +122,16 @@ class MeshSection(Section):
         self.edit(f"Unit of {self.session.assembly.node(self.key).name}: {self._unit.currentText()}", change)
 
     def _choose_counts(self, counts: object) -> None:
+        """Let the chosen values count, once they are there."""
+        part = self.session.assembly.node(self.key)
+        asset = part.body.asset if isinstance(part, Part) and isinstance(part.body, MeshBody) else None
+        slow = asset is not None and asset.survey.triangles > AT_ONCE and not asset.restored_already
+        if asset is not None and counts == "restored" and slow:
+            self._restore(asset, lambda: self._count(counts))
+        else:
+            self._count(counts)
+
+    def _count(self, counts: object) -> None:
         def change(node: AnyLine) -> AnyLine:
             if isinstance(node, Part) and isinstance(node.body, MeshBody):
                 return replace(node, body=replace(node.body, counts="restored" if counts == "restored" else "faceted"))
