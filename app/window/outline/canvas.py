@@ -56,7 +56,7 @@ class OutlineCanvas(QWidget):
         self.setMinimumWidth(160)
         self.step = 0.0
         self.shows_axis = False
-        self.fault: tuple[float, float] | None = None
+        self.faults: tuple[tuple[float, float], ...] = ()
         self.current: Place | None = None
         self._loops: Loops = ()
         self._bounds: FloatArray = np.zeros((2, 2))
@@ -68,10 +68,11 @@ class OutlineCanvas(QWidget):
         return QSize(280, HEIGHT)
 
     def show_loops(self, loops: Loops) -> None:
-        """Show these loops; the picture is fitted to them unless a point is being dragged."""
+        """Show these loops; the picture is fitted to them, and what is at fault, unless a point is being dragged."""
         self._loops = loops
         if self._held is None and loops:
-            self._bounds = bounds_of(loops)
+            spots = np.concatenate([bounds_of(loops), np.reshape(self.faults, (-1, 2))])
+            self._bounds = np.stack([spots.min(axis=0), spots.max(axis=0)])
         self.update()
 
     @property
@@ -192,8 +193,8 @@ class OutlineCanvas(QWidget):
             self._draw_axis(painter, theme)
             self._draw_outline(painter, theme)
             self._draw_points(painter, theme)
-        if self.fault is not None:
-            self._draw_fault(painter, theme)
+        for fault in self.faults:
+            self._draw_fault(painter, theme, fault)
         painter.setBrush(Qt.BrushStyle.NoBrush)
         painter.setPen(QColor(theme.blue if self.hasFocus() else theme.hairline))
         painter.drawRect(QRectF(self.rect()).adjusted(0.5, 0.5, -0.5, -0.5))
@@ -245,9 +246,8 @@ class OutlineCanvas(QWidget):
             spot = self.spot_of(point.x, point.y)
             painter.drawRect(QRectF(spot.x() - half, spot.y() - half, 2 * half, 2 * half))
 
-    def _draw_fault(self, painter: QPainter, theme: Colours) -> None:
-        x, y = self.fault or (0.0, 0.0)
-        spot = self.spot_of(x, y)
+    def _draw_fault(self, painter: QPainter, theme: Colours, fault: tuple[float, float]) -> None:
+        spot = self.spot_of(*fault)
         painter.setBrush(Qt.BrushStyle.NoBrush)
         painter.setPen(QPen(QColor(theme.failed), 2.0))
         painter.drawEllipse(spot, _FAULT, _FAULT)

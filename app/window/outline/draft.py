@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, TypeAlias
 
 import numpy as np
 
+from core.errors import OutlineFileError
 from core.shapes import Outline, OutlinePoint
 from core.shapes.profile import circle_loop
 from core.shapes.profile.edges import tangents
@@ -125,10 +126,12 @@ def outline_of(loops: Loops) -> Outline:
     return Outline(loops)
 
 
-def fault_place(error: MasswrightError) -> tuple[float, float] | None:
-    """Return where (x, y) m a refusal says that an outline is at fault; None where it names no place."""
+def fault_places(error: MasswrightError) -> tuple[tuple[float, float], ...]:
+    """Return the places (x, y) m that a refusal says an outline is at fault; none where it names none."""
+    if isinstance(error, OutlineFileError) and error.spots:
+        return error.spots
     found = _PLACE.search(error.what)
-    return (float(found["x"]) / 1e3, float(found["y"]) / 1e3) if found else None
+    return ((float(found["x"]) / 1e3, float(found["y"]) / 1e3),) if found else ()
 
 
 def grid_step(size: float) -> float:

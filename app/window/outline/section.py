@@ -15,7 +15,7 @@ from app.window.outline.canvas import OutlineCanvas
 from app.window.outline.draft import (
     Loops,
     Place,
-    fault_place,
+    fault_places,
     name_of_point,
     outline_of,
     with_hole,
@@ -27,7 +27,7 @@ from app.window.outline.table import OutlineTable
 from app.window.pages.section import Section
 from app.window.style import GRID
 from core.assembly import Cut, Part, ShapeBody
-from core.errors import EditRefused, MasswrightError, OutlineFileError, QuantityError
+from core.errors import EditRefused, MasswrightError, QuantityError
 from core.quantity import UNITS, Kind, compact, parse
 from core.shapes import Outline, OutlinedShape
 from core.shapes.profile import outline_of_text, text_of_outline
@@ -159,9 +159,7 @@ class OutlineSection(Section):
     def _refuse(self, error: MasswrightError | None, *, ask_mark: bool = False) -> None:
         """Say in place why what is shown is no outline, and mark where; None says that it is one."""
         self.refusal = str(error) if error is not None else ""
-        self.canvas.fault = fault_place(error) if error is not None else None
-        if isinstance(error, OutlineFileError) and error.spots:
-            self.canvas.fault = error.spots[0]
+        self.canvas.faults = fault_places(error) if error is not None else ()
         self.canvas.update()
         self._wrong.setText(self.refusal)
         self.form.show_row(self._wrong, wanted=bool(self.refusal))
@@ -218,9 +216,9 @@ class OutlineSection(Section):
         try:
             shape = outlined(self.session.assembly.line(self.key)).with_outline(outline_of(self._loops))
         except MasswrightError as error:
-            self.canvas.fault = fault_place(error)
+            self.canvas.faults = fault_places(error)
         else:
-            self.canvas.fault = None
+            self.canvas.faults = ()
             self.tried(shape, "")
         self._show()
 

@@ -14,7 +14,7 @@ from PySide6.QtWidgets import QApplication, QPushButton, QWidget
 from window_driver import choose, clipboard, dialog, field, keys, names, trigger
 
 from app.window.outline.draft import (
-    fault_place,
+    fault_places,
     grid_step,
     lines_of,
     places,
@@ -139,13 +139,13 @@ def test_a_line_that_crosses_itself_is_named_and_marked_and_the_old_outline_coun
     type_cell(plate, 2, 0, "-20")
     type_cell(plate, 3, 0, "60")
     assert "crosses or touches itself at" in block.refusal or "crosses or touches the outer line" in block.refusal
-    assert block.canvas.fault is not None
+    assert len(block.canvas.faults) == 1
     assert plate.session.assembly is before
     # The old one comes back, and nothing is left to mend.
     button = next(each for each in block._mend.findChildren(QPushButton) if each.text() == "Back to the outline that counts")
     button.click()
     assert block.refusal == ""
-    assert block.canvas.fault is None
+    assert block.canvas.faults == ()
     assert block.table.item(2, 0).text() == "80"
 
 
@@ -158,7 +158,7 @@ def test_the_mark_stands_where_two_edges_cross(window):
     block = section(window.part)
     block._take(SQUARE, "Square")
     block._take((tuple(SQUARE[0][k] for k in (0, 1, 3, 2)),), "Bow")
-    assert block.canvas.fault == pytest.approx((0.02, 0.015))
+    assert block.canvas.faults[0] == pytest.approx((0.02, 0.015))
 
 
 def test_what_is_refused_is_mended_point_by_point_and_then_counts(plate):
@@ -263,7 +263,7 @@ def test_a_turned_profile_has_its_own_columns_and_refuses_to_cross_its_axis(wind
     assert heads == ["radius r\nmm", "height z\nmm", "rounding\nmm", "arc\nmm"]
     type_cell(window, 0, 0, "-3")
     assert "the outline crosses the axis" in block.refusal
-    assert block.canvas.fault == pytest.approx((-0.003, 0))
+    assert block.canvas.faults[0] == pytest.approx((-0.003, 0))
 
 
 def test_a_profile_is_made_in_the_gallery_live_and_kept_as_one_step(window):
@@ -332,6 +332,23 @@ def test_a_drawing_is_imported_after_its_unit_was_asked(plate, tmp_path):
     assert plate.session.history.undo_name == "Import plate.svg as outline of extruded profile"
 
 
+OPEN = '<svg xmlns="http://www.w3.org/2000/svg"><path d="M0 0 H400 V300"/></svg>'
+
+
+def test_the_open_ends_of_a_drawing_are_shown_on_the_canvas(plate, tmp_path):
+    pytest.importorskip("svgpathtools")
+    before = plate.session.assembly
+    file = tmp_path / "open.svg"
+    file.write_text(OPEN, encoding="utf-8")
+    block = section(plate.part)
+    block.import_file(file, UNITS["mm"])
+    assert block.refusal.startswith("open.svg: ")
+    assert len(block.canvas.faults) == 2
+    for fault in block.canvas.faults:
+        assert block.canvas.rect().contains(block.canvas.spot_of(*fault).toPoint())
+    assert plate.session.assembly is before
+
+
 def test_a_file_that_is_no_drawing_is_refused_in_place(plate, tmp_path):
     before = plate.session.assembly
     file = tmp_path / "notes.txt"
@@ -371,8 +388,8 @@ def test_a_draft_whose_radii_do_not_fit_is_drawn_straight():
 def test_the_place_of_a_fault_is_read_from_the_sentence():
     with pytest.raises(ShapeError) as refusal:
         Outline((tuple(SQUARE[0][k] for k in (0, 1, 3, 2)),))
-    assert fault_place(refusal.value) == pytest.approx((0.02, 0.015))
-    assert fault_place(ShapeError("an outline needs points")) is None
+    assert fault_places(refusal.value)[0] == pytest.approx((0.02, 0.015))
+    assert fault_places(ShapeError("an outline needs points")) == ()
 
 
 def test_the_outline_of_a_cut_is_edited_like_that_of_a_part(window):
