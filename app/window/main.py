@@ -13,16 +13,15 @@ from PySide6.QtWidgets import (
     QApplication,
     QLineEdit,
     QMainWindow,
-    QMessageBox,
     QSizePolicy,
     QSplitter,
     QStackedWidget,
     QTabWidget,
-    QVBoxLayout,
     QWidget,
 )
 
 from app.window import commands
+from app.window.about import about_box
 from app.window.actions import Actions
 from app.window.changed_files import ChangedFiles
 from app.window.crash import CrashReporter
@@ -41,7 +40,7 @@ from app.window.pages.part import PartPage
 from app.window.pages.sheet import SheetPage
 from app.window.session import Session
 from app.window.settings import Settings
-from app.window.start import Notice, StartPanel
+from app.window.start import Notice, StartPanel, stacked
 from app.window.style import Words, dress, icon
 from app.window.view import ViewPane, prepare_opengl
 from core.assembly import Node, Part, walk
@@ -110,13 +109,7 @@ class MainWindow(QMainWindow):
         for splitter in (self.below, self.halves):
             splitter.setHandleWidth(1)
             splitter.setChildrenCollapsible(False)
-        middle = QWidget()
-        layout = QVBoxLayout(middle)
-        layout.setContentsMargins(0, 0, 0, 0)
-        layout.setSpacing(0)
-        layout.addWidget(self.notice)
-        layout.addWidget(self.halves, 1)
-        self.setCentralWidget(middle)
+        self.setCentralWidget(stacked(self.notice, self.halves))
         for line, room in ((self.totals, 1), (self.told, 1)):
             # A long name is cut off rather than making the window wide.
             line.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
@@ -418,14 +411,7 @@ class MainWindow(QMainWindow):
 
     def show_about(self) -> None:
         """Say what this is, which version, and what its numbers are not."""
-        words = f"Masswright {_version()}".strip()
-        box = QMessageBox(QMessageBox.Icon.NoIcon, "About Masswright", words, parent=self)
-        box.setInformativeText(
-            "Mass, centre of mass and inertia of what a drive has to move.\n\n"
-            "Values carry no margin. Rotating and lifted masses hurt people: the applicable machine-safety standards, "
-            "local codes and a responsible engineer decide."
-        )
-        self.files.show_dialog(box)
+        self.files.show_dialog(about_box(self))
 
     # Qt's events
 
@@ -469,15 +455,6 @@ class MainWindow(QMainWindow):
             self.actions_.redraw_icons()
         if event.type() == QEvent.Type.ActivationChange and self.isActiveWindow():
             self.changed_files.look()
-
-
-def _version() -> str:
-    from importlib.metadata import PackageNotFoundError, version
-
-    try:
-        return version("masswright")
-    except PackageNotFoundError:  # run from a checkout
-        return ""
 
 
 def open_window(path: str | Path | None) -> int:

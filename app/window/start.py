@@ -121,3 +121,14 @@ class Notice(QFrame):
         """Go where the sentence was a refusal: something else was done since. An offer stays."""
         if not self._offers:
             self.hide()
+
+
+def stacked(above: QWidget, below: QWidget) -> QWidget:
+    """Return a widget with one above the other, without a gap; the lower one takes the room."""
+    both = QWidget()
+    layout = QVBoxLayout(both)
+    layout.setContentsMargins(0, 0, 0, 0)
+    layout.setSpacing(0)
+    layout.addWidget(above)
+    layout.addWidget(below, 1)
+    return both
