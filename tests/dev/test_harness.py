@@ -72,54 +72,55 @@ def test_recording_writes_what_ran_unless_a_test_failed(suite: pytest.Pytester) 
     assert json.loads((suite.path / "gui_count.json").read_text()) == {"gui": 3, "opengl": 0}
 
 
+LEFTOVERS = """
+import threading, time
+import pytest
+from PySide6.QtCore import QThread, QThreadPool, QTimer
+from PySide6.QtWidgets import QWidget
+
+kept = []
+
+def test_leaves_a_window(qtbot):
+    kept.append(QWidget())
+    kept[-1].show()
+
+def test_leaves_a_timer(qtbot):
+    kept.append(QTimer())
+    kept[-1].start(1000)
+
+def test_leaves_a_thread(qtbot):
+    kept.append(QThread())
+    kept[-1].start()
+
+def test_leaves_a_python_thread(qtbot):
+    kept.append(threading.Thread(target=time.sleep, args=(0.5,)))
+    kept[-1].start()
+
+def test_leaves_pool_work(qtbot):
+    QThreadPool.globalInstance().start(lambda: time.sleep(0.5))
+
+def test_tidy(qtbot):
+    QThreadPool.globalInstance().waitForDone()
+    window = QWidget()
+    qtbot.addWidget(window)
+    window.show()
+    timer = QTimer(window)
+    timer.start(1000)
+    thread = QThread()
+    thread.start()
+    thread.quit()
+    thread.wait()
+
+def test_lets_go_of_a_cycle(qtbot):
+    window = QWidget()
+    window.itself = window
+    window.timer = QTimer()
+    window.timer.start(1000)
+"""
+
+
 def test_every_kind_of_leftover_fails_the_test_that_left_it_and_no_other(suite: pytest.Pytester) -> None:
-    suite.makepyfile(
-        """
-        import threading, time
-        import pytest
-        from PySide6.QtCore import QThread, QThreadPool, QTimer
-        from PySide6.QtWidgets import QWidget
-
-        kept = []
-
-        def test_leaves_a_window(qtbot):
-            kept.append(QWidget())
-            kept[-1].show()
-
-        def test_leaves_a_timer(qtbot):
-            kept.append(QTimer())
-            kept[-1].start(1000)
-
-        def test_leaves_a_thread(qtbot):
-            kept.append(QThread())
-            kept[-1].start()
-
-        def test_leaves_a_python_thread(qtbot):
-            kept.append(threading.Thread(target=time.sleep, args=(0.5,)))
-            kept[-1].start()
-
-        def test_leaves_pool_work(qtbot):
-            QThreadPool.globalInstance().start(lambda: time.sleep(0.5))
-
-        def test_tidy(qtbot):
-            QThreadPool.globalInstance().waitForDone()
-            window = QWidget()
-            qtbot.addWidget(window)
-            window.show()
-            timer = QTimer(window)
-            timer.start(1000)
-            thread = QThread()
-            thread.start()
-            thread.quit()
-            thread.wait()
-
-        def test_lets_go_of_a_cycle(qtbot):
-            window = QWidget()
-            window.itself = window
-            window.timer = QTimer()
-            window.timer.start(1000)
-        """
-    )
+    suite.makepyfile(LEFTOVERS)
     result = suite.runpytest_subprocess()
     result.assert_outcomes(passed=7, errors=5)
     for what in ("a_window", "a_timer", "a_thread", "a_python_thread", "pool_work"):
