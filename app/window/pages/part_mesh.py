@@ -67,7 +67,8 @@ class MeshSection(Section):
             return
         asset = node.body.asset
         mended = f" Mended: {', '.join(asset.mends)}." if asset.mends else ""
-        self._file.setText(f"{asset.name}, {asset.survey.triangles} facets, {asset.survey.format}.{mended}")
+        lighter = " The view draws a lighter mesh of it; all values count every facet." if asset.drawn_lighter else ""
+        self._file.setText(f"{asset.name}, {asset.survey.triangles} facets, {asset.survey.format}.{mended}{lighter}")
         self._verdict.setText(f"Verdict: {asset.survey.verdict}. " + " ".join(asset.survey.notes))
         self._verdict.set_role("text" if asset.survey.verdict in SOUND else "failed")
         self._unit.set_value(node.body.metres_per_unit)
