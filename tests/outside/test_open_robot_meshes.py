@@ -285,6 +285,17 @@ def test_links_of_the_biped_declare_the_box_or_cylinder_of_their_collisions():
         assert_same_body(stand_in(solid[name]).with_mass(told.mass), told, rel=1e-14)
 
 
+def test_inertial_turned_a_quarter_about_y_lies_along_x_as_its_mesh_does():
+    root = folder_of(UPKIE)
+    link, shown = uses_of(root)["mjbots/qdd100_horn"][0]
+    told, inertia = declared(link), link.find("inertial/inertia")
+    along, across = float(inertia.get("izz")), float(inertia.get("ixx"))
+    np.testing.assert_allclose(told.inertia_about_centre, np.diag([along, across, across]), rtol=1e-14, atol=1e-14 * across)
+    mesh = weighed(survey_of(root / "meshes" / "mjbots" / "qdd100_horn.stl"), shown, float(told.mass))
+    assert np.argmin(np.diag(mesh.inertia_about_centre)) == 0
+    assert along < across
+
+
 def test_camera_support_of_the_biped_is_declared_as_the_box_of_its_handle():
     folder = folder_of(UPKIE) / "urdf"
     told = declared(links_of(folder / "upkie_camera.urdf")["camera_support"])
