@@ -20,6 +20,7 @@ if TYPE_CHECKING:
     from core.handover.mesh_reading import Weighing
     from core.quantity import Unit, UnitSet
 
+_LARGEST: Final = 1e15  # kg, kg/m³ or m
 INTERRUPTED, NO_READER = 130, 141  # what a shell reports for a program ended by Ctrl-C, or by a closed pipe
 
 _WIDTH: Final = 100
@@ -29,7 +30,8 @@ masswright weigh PATH...        print the mass properties of meshes and document
 masswright handover DOC --to F  write a document's sheet to a file
 """
 _ABOUT_WEIGH: Final = """\
-Prints volume, mass, centre of mass, inertia tensor and principal axes of STL meshes and of documents.
+Prints volume, mass, centre of mass, inertia tensor and principal axes of meshes and of documents.
+Meshes are STL (also gzip'ed), OBJ, PLY, OFF, 3MF and GLB files.
 
 Exit status: 0 all answered and sound; 1 answered, but a check failed; 2 wrong usage; 3 a file that cannot
 be read. With several paths one bad file does not stop the others, and the highest status is returned.
@@ -178,7 +180,7 @@ def _add_shown(parser: argparse.ArgumentParser) -> None:
         default="tensor",
         help="products of inertia as tensor elements, Ixy = -∫xy dm (default), or integrals, Pxy = +∫xy dm",
     )
-    shown.add_argument("--show-units", default="", metavar="UNITS", help='such as "mm kg kg*cm^2" or "in lb lb*in^2"')
+    shown.add_argument("--show-units", metavar="UNITS", help='such as "mm kg kg*cm^2" or "in lb lb*in^2"')
     shown.add_argument(
         "--decimal",
         choices=(".", ","),
@@ -210,6 +212,8 @@ def _task(chosen: argparse.Namespace) -> Task:
     axis = None
     if chosen.axis is not None:
         point, direction = parse_axis(chosen.axis, unit, where="--axis")
+        for part in point:
+            _within(part, "--axis")
         axis = AxisLine(f"the axis {axis_words(point, direction, unit)}", point, direction)
     request = MeshRequest(
         unit,
@@ -221,7 +225,7 @@ def _task(chosen: argparse.Namespace) -> Task:
         how_to_weigh="give --material, --density or --mass",
     )
     options = ("unit", "material", "density", "mass", "curved")
-    mesh_only = tuple(f"--{name}" for name in options if getattr(chosen, name))
+    mesh_only = tuple(f"--{name}" for name in options if getattr(chosen, name) not in {None, False})
     choice, units = _shown(chosen, unit)
     return Task(request, choice, units, chosen.format, chosen.decimal, mesh_only)
 
@@ -232,21 +236,34 @@ def _shown(chosen: argparse.Namespace, unit: Unit) -> tuple[SheetChoice, UnitSet
 
     words: dict[str, About] = {"centre": "centre", "center": "centre", "origin": "origin"}
     about = words.get(chosen.about) or parse_triple(chosen.about, unit, where="--about")
-    units = parse_unit_set(chosen.show_units, where="--show-units") if chosen.show_units else DEFAULT_UNITS
+    asked = chosen.show_units
+    units = DEFAULT_UNITS if asked is None else parse_unit_set(asked, where="--show-units")
     return SheetChoice(about, "document", chosen.products), units
 
 
 def _weighing(chosen: argparse.Namespace) -> Weighing | None:
-    if not (chosen.material or chosen.density or chosen.mass):
+    if chosen.material is None and chosen.density is None and chosen.mass is None:
         return None
     from core.material import ByDensity, ByMaterial, Weighed
     from core.quantity import Kind, parse
 
-    if chosen.material:
+    if chosen.material is not None:
         return ByMaterial.named(chosen.material)
-    if chosen.density:
-        return ByDensity(parse(chosen.density, Kind.DENSITY, where="--density").value)
-    return Weighed(parse(chosen.mass, Kind.MASS, where="--mass").value)
+    if chosen.density is not None:
+        return ByDensity(_within(parse(chosen.density, Kind.DENSITY, where="--density").value, "--density"))
+    return Weighed(_within(parse(chosen.mass, Kind.MASS, where="--mass").value, "--mass"))
+
+
+def _within(value: float, option: str) -> float:
+    """Return a value in SI that moments of inertia can be formed with."""
+    from core.errors import ValueRefused
+
+    if abs(value) > _LARGEST:
+        raise ValueRefused(
+            "the value is too large for any machine", where=option, read=f"{value:.3g} in SI units",
+            remedy="Correct the number or its unit",
+        )
+    return value
 
 
 def _hand_over(given: list[str]) -> int:

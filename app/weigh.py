@@ -12,7 +12,7 @@ from app.progress_bar import progress_shown
 from app.terminal import complain, show
 from core.errors import FileRefused, MasswrightError, ValueRefused
 from core.handover import csv_of_sheet, sheet_of_assembly, sheet_of_mesh, tsv_of_sheet
-from core.handover.mesh_reading import MeshRequest, read_mesh
+from core.handover.mesh_reading import OTHER_FORMATS, MeshRequest, read_mesh
 from core.progress import Progress
 
 if TYPE_CHECKING:
@@ -26,6 +26,7 @@ SOUND, CHECK_FAILED, WRONG_USAGE, UNREADABLE = 0, 1, 2, 3
 Format = Literal["text", "json", "tsv", "csv"]
 
 # How a ZIP file begins, as every document is one; an STL file may begin with any two of these.
+DOCUMENT_SUFFIX: Final = ".masswright"
 _ARCHIVE_START: Final = b"PK\x03\x04"
 _LOST: Final = "{}: the process that read it ended before it was done. Try it again with --jobs 1."
 
@@ -105,8 +106,11 @@ def _refusal(path: str, task: Task, said: str, status: int) -> Outcome:
 
 
 def is_document(path: str) -> bool:
-    """Return whether a file is an archive, as every document is, and no mesh."""
-    if not Path(path).is_file():
+    """Return whether a file is a document: by its ending, otherwise an archive whose ending names no mesh format."""
+    suffix = Path(path).suffix.lower()
+    if suffix == DOCUMENT_SUFFIX:
+        return True
+    if suffix.removeprefix(".") in OTHER_FORMATS or not Path(path).is_file():
         return False
     with Path(path).open("rb") as file:
         return file.read(len(_ARCHIVE_START)) == _ARCHIVE_START
@@ -137,7 +141,7 @@ def _document(path: str, task: Task) -> Outcome:
     assembly = _about_asked_axis(read_document(path), task)
     overlaps = overlaps_looked_for(assembly)
     complaints = tuple(
-        f"check failed: {finding.check.name}: {finding.check.text}"
+        f"check failed: {finding.check.name}: {path}: {finding.check.text}"
         for finding in (*findings_of(assembly), *overlaps)
         if not finding.check.ok
     )

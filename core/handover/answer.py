@@ -75,6 +75,8 @@ def answer_of_mesh(reading: MeshReading) -> Answer:
         body = reading.weighed(reading.curved)
         values["curved"] = _values(body, reading.curved, float(reading.curved.mass))
         values["curved"]["axis"] = _axis(body, reading.curved, reading.axis)
+        if reading.left is not None:
+            values["curved"]["left"] = {"volume": reading.left.volume, "inertia": reading.left.inertia}
     return values
 
 

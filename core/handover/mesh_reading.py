@@ -17,13 +17,17 @@ if TYPE_CHECKING:
 
     from core.arrays import FloatArray
     from core.mesh import MeshSurvey
+    from core.mesh.curvature import Left
     from core.mesh.source import TriangleSource
     from core.moments import Moments
     from core.progress import Progress
     from core.quantity import Unit
 
+# Up to this many triangles the shells are looked at in passing, and up to the other one for an answer to a program.
+MOST_LOOKED_AT: Final = 1_000_000
+MOST_ASKED: Final = 3_000_000
 # Suffix → name of the formats beside STL, whose readers are imported only for them.
-_OTHER_FORMATS: Final = {"obj": "OBJ", "ply": "PLY", "off": "OFF", "3mf": "3MF", "glb": "GLB"}
+OTHER_FORMATS: Final = {"obj": "OBJ", "ply": "PLY", "off": "OFF", "3mf": "3MF", "glb": "GLB"}
 # A restored volume closer to the faceted one than this, relative, is the same: the form has no curved faces.
 _SAME: Final = 1e-12
 
@@ -58,6 +62,7 @@ class MeshReading:
         weighing: what says its mass; None: nothing.
         axis: that J is asked about, m in the file's frame.
         restored: moments with curvature restored, file units, unit density; None where that was not done.
+        left: how far the restored values may still be off, relative; None where that was not done.
         counts_restored: whether the restored values are the ones that count.
         shells: how many connected shells; None where they were not counted.
         findings: further checks on the file.
@@ -73,6 +78,7 @@ class MeshReading:
     weighing: Weighing | None = None
     axis: AxisLine | None = None
     restored: Moments | None = None
+    left: Left | None = None
     counts_restored: bool = False
     shells: int | None = None
     findings: tuple[Check, ...] = ()
@@ -201,6 +207,9 @@ class MeshReading:
             f"principal moments at equal density by {moments.min():+.3%} to {moments.max():+.3%}; "
             f"the values count the form {counted}."
         )
+        if self.left is not None:
+            volume, inertia = self.left.volume, self.left.inertia
+            said += f" What it leaves is estimated at {volume:.1g} of the volume and {inertia:.1g} of J."
         return (said,)
 
 
@@ -238,7 +247,6 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
 
     source, named = _source_of(path, progress)
     survey = survey_source(source, progress)
-    cheap = survey.triangles <= AT_ONCE
     reading = MeshReading(
         str(path),
         survey,
@@ -249,17 +257,25 @@ def read_mesh(path: str | Path, request: MeshRequest, progress: Progress | None 
         counts_restored=request.count_restored,
         how_to_weigh=request.how_to_weigh,
     )
-    if cheap or request.count_shells:
-        reading = replace(reading, shells=shells_of(source, progress))
-    if cheap:
+    if survey.triangles <= (MOST_ASKED if request.count_shells else MOST_LOOKED_AT):
         reading = _with_census(reading, source, progress)
-    if cheap or request.count_restored:
+    elif request.count_shells:
+        reading = replace(_not_looked_at(reading), shells=shells_of(source, progress))
+    else:
+        reading = _not_looked_at(reading)
+    asked = request.count_restored or (request.count_shells and survey.triangles <= MOST_LOOKED_AT)
+    if survey.triangles <= AT_ONCE or asked:
         return _with_curvature(reading, source)
-    remark = (
-        f"The file has more than {AT_ONCE} triangles: curvature was not restored, and nothing was looked for that is "
-        "counted twice."
-    )
+    remark = f"Curvature was not restored, because the file has more than {AT_ONCE} triangles."
     return replace(reading, remarks=(*reading.remarks, remark))
+
+
+def _not_looked_at(reading: MeshReading) -> MeshReading:
+    text = (
+        f"{reading.name}: with {reading.survey.triangles} triangles, nothing was looked for that is counted twice; "
+        "the window does it when asked."
+    )
+    return replace(reading, findings=(*reading.findings, Check("counted twice", ok=True, text=text)))
 
 
 def _source_of(path: str | Path, progress: Progress | None) -> tuple[TriangleSource, Unit | None]:
@@ -267,7 +283,7 @@ def _source_of(path: str | Path, progress: Progress | None) -> tuple[TriangleSou
     from core.mesh.stl import open_stl
 
     suffix = str(path).lower().rpartition(".")[2]
-    if suffix not in _OTHER_FORMATS:
+    if suffix not in OTHER_FORMATS:
         return open_stl(path), None
     from core.mesh.formats import read_bodies
     from core.mesh.source import ArraySource
@@ -277,17 +293,36 @@ def _source_of(path: str | Path, progress: Progress | None) -> tuple[TriangleSou
     triangles = np.concatenate([body.triangles for body in bodies])
     factors = {body.metres_per_unit for body in bodies}
     units = [unit for unit in UNITS_BY_KIND[Kind.LENGTH] if factors == {unit.factor}]
-    return ArraySource(triangles, str(path), _OTHER_FORMATS[suffix]), units[0] if units else None
+    return ArraySource(triangles, str(path), OTHER_FORMATS[suffix]), units[0] if units else None
 
 
 def _with_census(reading: MeshReading, source: TriangleSource, progress: Progress | None) -> MeshReading:
-    """Return the reading with what the census of its shells found."""
+    """Return the reading with its shells counted, and what the census of them found."""
     from core.mesh.census import census
     from core.mesh.mesh_check import check_census
     from core.mesh.survey import gathered
 
     taken = census(gathered(source, reading.survey.triangles), progress)
-    return replace(reading, findings=(*reading.findings, *check_census(taken, reading.name)))
+    found = check_census(taken, reading.name, lambda finding: _surplus(reading, finding.extra))
+    return replace(reading, shells=len(taken.shells.area), findings=(*reading.findings, *found))
+
+
+def _surplus(reading: MeshReading, extra: Moments | None) -> str:
+    """Return volume, mass and share of J that are counted too much, as a sentence; "" where nobody can tell."""
+    whole = reading.faceted
+    if extra is None or whole is None or float(extra.mass) <= 0:
+        return ""
+    more = extra.enlarged(reading.unit.factor)
+    dense = reading.weighing is not None and reading.weighing.basis != "weighed"
+    mass = reading.weighing.mass_of(float(more.mass)) if reading.weighing is not None and dense else None
+    axis, weighed = reading.axis, "" if mass is None else f", {mass:.4g} kg"
+    if axis is None:
+        point, direction, name = whole.centre, whole.principal.axes[2], "the largest principal moment"
+    else:
+        point, direction = np.asarray(axis.point), np.asarray(axis.direction)
+        name = f"J about {axis.name}"
+    share = float(more.inertia_about_axis(point, direction) / whole.inertia_about_axis(point, direction))
+    return f" Too much: {float(more.mass) * 1e6:.4g} cm³{weighed}, {share:.3%} of {name}."
 
 
 def _with_curvature(reading: MeshReading, source: TriangleSource) -> MeshReading:
@@ -299,4 +334,4 @@ def _with_curvature(reading: MeshReading, source: TriangleSource) -> MeshReading
         remark = f"Curvature was not restored, because the mesh is {reading.survey.verdict}."
         return replace(reading, remarks=(*reading.remarks, remark)) if reading.counts_restored else reading
     body = restored(gathered(source, reading.survey.triangles), reading.survey)
-    return replace(reading, restored=None if body is None else body.moments)
+    return reading if body is None else replace(reading, restored=body.moments, left=body.left)

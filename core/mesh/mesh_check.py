@@ -7,7 +7,9 @@ from typing import TYPE_CHECKING
 from core.checks import Check
 
 if TYPE_CHECKING:
-    from core.mesh.census import Census
+    from collections.abc import Callable
+
+    from core.mesh.census import Census, MeshFinding
     from core.mesh.survey import MeshSurvey
 
 _SOUND = frozenset({"closed", "hairline cracks", "inside out"})
@@ -20,8 +22,8 @@ def check_mesh(survey: MeshSurvey, name: str) -> Check:
     ok = survey.verdict in _SOUND and survey.solid is not None
     edges = f"{survey.open_edges} open edge{'' if survey.open_edges == 1 else 's'}"
     found = f"{name}: the mesh is {survey.verdict}"
-    if survey.verdict == "hairline cracks":
-        found = f"{name}: the mesh has hairline cracks"
+    if survey.verdict in {"hairline cracks", "mixed winding"}:
+        found = f"{name}: the mesh has {survey.verdict}"
     if survey.open_edges:
         found += f", with {edges}"
     if survey.basis != "computed":
@@ -31,10 +33,15 @@ def check_mesh(survey: MeshSurvey, name: str) -> Check:
     return Check("mesh", ok, " ".join(sentences))
 
 
-def check_census(census: Census, name: str) -> tuple[Check, ...]:
-    """Return what a census found that makes the values wrong or doubtful, beyond what the verdict says already."""
+def check_census(
+    census: Census, name: str, more: Callable[[MeshFinding], str] = lambda _finding: ""
+) -> tuple[Check, ...]:
+    """Return what a census found that makes the values wrong or doubtful, beyond what the verdict says already.
+
+    What `more` says of a finding, as a sentence with a blank before it, is put behind its text.
+    """
     return tuple(
-        Check(finding.name, ok=False, text=f"{name}: {finding.text}")
+        Check(finding.name, ok=False, text=f"{name}: {finding.text}{more(finding)}")
         for finding in census.findings
         if not finding.harmless and finding.name not in _SAID_BY_THE_VERDICT
     )

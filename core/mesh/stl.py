@@ -103,6 +103,12 @@ class AsciiStl:
                 for start in range(0, len(corners), most):
                     yield corners[start : start + most], 0 if start else steps
 
+    def ends_as_it_should(self) -> bool:
+        """Return whether the last solid has its end: a text that was cut short between two facets has none."""
+        with reading(self.name), closing(self._opener()) as file:
+            file.seek(max(self._size - _SNIFF, 0))
+            return b"endsolid" in file.read().lower()
+
 
 def open_stl(path: str | Path) -> BinaryStl | AsciiStl:
     """Return the facets of an STL file, after its head and size have been judged.
@@ -142,11 +148,14 @@ def unpacked(data: bytes, name: str) -> bytes:
     """Return gzip'ed bytes unpacked.
 
     Raises:
-        MeshFileError: damaged, or too large once unpacked.
+        MeshFileError: damaged, packed twice, or too large once unpacked.
     """
     with reading(name), gzip.open(io.BytesIO(data)) as file:
         content = file.read(MOST_BYTES + 1)
     refuse_size(name, len(content))
+    # Kept as it is, it would be unpacked for the survey and taken for facets everywhere else.
+    if is_packed(content):
+        raise no_stl(name, content[:_SNIFF], len(content))
     return content
 
 
@@ -155,6 +164,8 @@ def _judge(name: str, opener: _Opener, head: bytes, size: int) -> BinaryStl | As
         opener = partial(_Packed, opener)
         with reading(name), closing(opener()) as file:
             head, size = _measure(file, name)
+        if is_packed(head):
+            raise no_stl(name, head, size)
     if size >= HEADER and size == HEADER + RECORD * (count := int.from_bytes(head[80:HEADER], "little")):
         refuse_count(name, count)
         return BinaryStl(name, opener, count)

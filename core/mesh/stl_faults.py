@@ -29,6 +29,7 @@ _OTHER_FORMATS = (
     (b"pk\x03\x04", "a ZIP archive"), (b"ply\n", "a PLY file"), (b"ply\r", "a PLY file"), (b"off\n", "an OFF file"),
     (b"iso-10303-21", "a STEP file"), (b"%pdf", "a PDF file"), (b"\x89png", "a picture"), (b"gltf", "a glTF file"),
     (b"{", "a JSON file"),
+    (b"\x1f\x8b", "a file packed twice with gzip"),
 )
 _TEXT_BYTES = frozenset((*range(9, 14), *range(32, 127)))
 
@@ -51,13 +52,15 @@ def reading(name: str) -> Iterator[None]:
 
 
 def refuse_folder(path: Path) -> None:
-    """Refuse a folder.
+    """Refuse a folder, and what is there but no file: a pipe can be read only once.
 
     Raises:
-        MeshFileError: path is a folder.
+        MeshFileError: path is one of these.
     """
     if path.is_dir():
         raise MeshFileError("this is a folder, not a mesh file", where=str(path), remedy="Name an STL file in it")
+    if path.exists() and not path.is_file():
+        raise MeshFileError("this is a pipe or a device, not a file", where=str(path), remedy="Save it as a file first")
 
 
 def refuse_size(name: str, size: int) -> None:

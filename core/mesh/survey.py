@@ -12,11 +12,13 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.arrays import FloatArray, frozen
+from core.errors import MeshFileError
 from core.mesh.edges import Leaks, find_leaks
 from core.mesh.integrals import CHUNK, Integrator, Sums
 from core.mesh.shells import shells_of
 from core.mesh.source import ArraySource, TriangleSource
-from core.mesh.stl import open_stl
+from core.mesh.stl import AsciiStl, open_stl
+from core.mesh.stl_faults import AGAIN
 from core.mesh.summing import sum_up
 
 if TYPE_CHECKING:
@@ -136,6 +138,11 @@ def survey_source(source: TriangleSource, progress: Progress | None = None) -> M
     sums, reference = sum_up(source, progress)
     if sums.edge_sum == 0:
         return _judged(source, sums, reference, leaks=None)
+    if isinstance(source, AsciiStl) and not source.ends_as_it_should():
+        raise MeshFileError(
+            'the text ends without "endsolid", and edges are open: it is cut short', where=source.name,
+            read=f"{sums.triangles} facets", remedy=f"It was not copied or written to its end. {AGAIN}",
+        )
     leaks = find_leaks(gathered(source, sums.triangles), sums.area)
     if leaks.fill is not None:
         sums = _closed_with(sums, reference, leaks.fill)

@@ -7,6 +7,7 @@ from dataclasses import replace
 from pathlib import Path
 
 import pytest
+from format_files import glb_bytes, glb_scene, obj_text, off_text, plain_3mf, ply_bytes
 from mesh_files import binary_stl, box
 
 from app.cli import main
@@ -84,7 +85,7 @@ def test_an_overlap_is_named_and_fails_unless_it_is_meant(run, folder):
     # 5 mm of a cube of 20 mm: 2000 mm³ of steel, 0.0157 kg.
     sentence = "plate: cube penetrates it, 2000 mm³; counted twice: 0.0157 kg"
     assert status == 1
-    assert f"check failed: overlap: {sentence}" in err
+    assert f"check failed: overlap: sunk.masswright: {sentence}" in err
     (found,) = (check for check in json.loads(out)["checks"] if check["name"] == "overlap" and not check["ok"])
     assert found["text"].startswith(sentence)
     assert (found["part"], found["key"]) == ("plate", "p")
@@ -124,7 +125,7 @@ def test_a_document_with_a_part_without_mass_is_answered_with_status_1(run):
     status, out, err = run("weigh", "blank.masswright")
     assert status == 1
     assert "1 part is left out of every value because no mass is set: not weighed" in out
-    assert err.startswith("masswright: check failed: mass: not weighed: ")
+    assert err.startswith("masswright: check failed: mass: blank.masswright: not weighed: ")
 
 
 @pytest.mark.parametrize("words", [
@@ -280,3 +281,43 @@ def test_the_progress_bar_fills_from_left_to_right():
 def test_a_file_named_like_a_command_is_weighed(run, folder):
     Path("weigh").write_bytes((folder / "cube.stl").read_bytes())
     assert run("weigh", "weigh")[0] == 0
+
+
+@pytest.mark.parametrize("suffix", ["obj", "ply", "off", "glb", "stl", "3mf"])
+def test_a_mesh_of_every_format_is_weighed(run, folder, suffix):
+    # A box of 0.4 × 0.3 × 0.2 in the file's unit: m where the file can say so.
+    path, brick = folder / f"brick.{suffix}", box(0.4, 0.3, 0.2)
+    path.write_bytes({
+        "obj": lambda: obj_text(("brick", brick)).encode(), "ply": lambda: ply_bytes(brick),
+        "off": lambda: off_text(brick).encode(), "glb": lambda: glb_bytes(*glb_scene(brick)),
+        "stl": lambda: binary_stl(brick), "3mf": lambda: plain_3mf(brick, unit="meter"),
+    }[suffix]())
+    status, out, err = run("weigh", path.name, "--unit", "m", "--density", "1000 kg/m^3", "--format", "json")
+    assert (status, err) == (0, "")
+    assert json.loads(out)["mass_kg"] == pytest.approx(24.0, rel=1e-6)
+
+
+def test_an_empty_option_is_refused(run):
+    for option in ("--density", "--mass", "--material", "--show-units"):
+        assert run("weigh", "cube.stl", option, "")[0] == 2, option
+
+
+@pytest.mark.parametrize("options", [
+    ("--mass", "1e308 kg"), ("--density", "1e300 kg/m3"), ("--mass", "1 kg", "--axis", "1e300,0,0;0,0,1"),
+])
+def test_a_number_too_large_for_any_machine_is_refused_in_one_line(run, options):
+    status, out, err = run("weigh", "cube.stl", *options)
+    assert (status, out) == (2, "")
+    assert "too large for any machine" in err
+    assert err.count("\n") == 1
+
+
+def test_what_is_named_like_a_document_is_read_as_one(run, folder):
+    (folder / "fake.masswright").write_text("no archive at all")
+    status, _, err = run("weigh", "fake.masswright")
+    assert status == 3
+    assert "STL" not in err
+
+
+def test_a_steel_is_found_by_its_number_alone(run):
+    assert run("weigh", "cube.stl", "--material", "1.4301")[0] == 0

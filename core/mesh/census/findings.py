@@ -223,7 +223,8 @@ def _holes(evidence: Evidence) -> Iterator[MeshFinding]:
 def _reversed(evidence: Evidence) -> Iterator[MeshFinding]:
     against, one_sided = evidence.winding.against, evidence.winding.one_sided
     if len(against):
-        text = f"{_number(len(against), 'facet')} wind against their neighbours. Rewinding turns them."
+        verb = "winds against its neighbours" if len(against) == 1 else "wind against their neighbours"
+        text = f"{_number(len(against), 'facet')} {verb}. Rewinding turns what is reversed."
         yield MeshFinding("reversed facets", text, against, ("rewind",), (None,))
     if len(one_sided):
         text = "The surface has only one side, like a twisted band, so that no facet can be said to face outwards."
@@ -236,7 +237,8 @@ def _doubled(evidence: Evidence) -> Iterator[MeshFinding]:
     copies = copies[~in_twin[evidence.shells.label[copies]]]
     if not len(copies):
         return
-    said = f"{_number(len(copies), 'facet')} of {len(evidence.corners)} occur again, with the same corners and winding"
+    verb = "occurs" if len(copies) == 1 else "occur"
+    said = f"{_number(len(copies), 'facet')} of {len(evidence.corners)} {verb} again, with the same corners and winding"
     kept = evidence.corners[~evidence.doubles.spare]
     left = seams_of(kept, np.zeros(len(kept), np.int64)) if len(kept) else None
     if left is None or len(left.open) or len(left.against):

@@ -214,3 +214,25 @@ def test_a_file_that_shrinks_while_it_is_read_is_refused(tmp_path):
 def test_helper_files_are_as_long_as_the_format_says():
     assert len(records(BOX)) == 12 * 50
     assert len(SOUND) == 684
+
+
+def test_a_text_cut_short_between_two_facets_is_refused_and_one_that_only_lacks_its_last_line_is_not(tmp_path):
+    whole = ascii_stl(box(20, 20, 20))
+    lacking = tmp_path / "lacking.stl"
+    lacking.write_text(whole.replace("endsolid part\n", ""))
+    assert survey_file(lacking).verdict == "closed"
+    short = tmp_path / "short.stl"
+    short.write_text(whole[: whole.rindex("  facet")])
+    with pytest.raises(MeshFileError) as refused:
+        survey_file(short)
+    assert str(refused.value) == (
+        f'{short}: the text ends without "endsolid", and edges are open: it is cut short; read 11 facets. '
+        "It was not copied or written to its end. Export or copy the file again."
+    )
+
+
+def test_a_pipe_is_refused_instead_of_waited_for(tmp_path):
+    pipe = tmp_path / "pipe.stl"
+    os.mkfifo(pipe)
+    with pytest.raises(MeshFileError, match=r"this is a pipe or a device, not a file"):
+        survey_file(pipe)
