@@ -199,6 +199,10 @@ def tab_round(start, steps=80):
     seen = []
     for _ in range(steps):
         now = QApplication.focusWidget()
+        if now is None:
+            # A row of a list that was just made anew had it; QTest ends the process when handed no widget.
+            start.setFocus()
+            continue
         if now in seen:
             break
         seen.append(now)
