@@ -219,6 +219,9 @@ def caps_of(points: FloatArray, loops: list[IntArray]) -> FloatArray:
     stop = start[after]
     # Weighted by length, so that a side split into many edges draws the centroid no nearer.
     weights = np.linalg.norm(stop - start, axis=1)
+    # Sides below about 1e-162 units have squares too small for a number: all of them count alike.
+    lost = np.add.reduceat(weights, first) == 0
+    weights[np.repeat(lost, sizes)] = 1.0
     middles = np.add.reduceat(weights[:, None] * 0.5 * (start + stop), first)
     centres = middles / np.add.reduceat(weights, first)[:, None]
     return np.stack([stop, start, np.repeat(centres, sizes, axis=0)], axis=1)

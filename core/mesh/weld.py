@@ -15,6 +15,8 @@ if TYPE_CHECKING:
     from core.arrays import FloatArray, IntArray
 
 _CHUNK = 16_000
+# Real meshes need two or three; points laid out on purpose could ask for one round per two points.
+_MOST_ROUNDS = 30
 
 
 def weld_exactly(triangles: NDArray[np.floating]) -> tuple[FloatArray, IntArray]:
@@ -48,17 +50,19 @@ def _same(points: NDArray[np.floating], corners: IntArray, triangles: NDArray[np
 def clusters_within(points: FloatArray, tolerance: float) -> IntArray:
     """Return a group number (n,) for points (n, 3): groups are apart by more than tolerance along some axis.
 
-    A group is split wherever its points leave a gap wider than tolerance along x, y or z, until none can be.
+    A group is split wherever its points leave a gap wider than tolerance along x, y or z, until none can be, or
+    after _MOST_ROUNDS: what then still hangs together stays one group.
     """
     groups = np.zeros(len(points), dtype=np.int64)
     count = 0
-    while True:
+    for _ in range(_MOST_ROUNDS):
         for axis in range(3):
             groups = _split_along(points[:, axis], groups, tolerance)
         now = int(groups.max(initial=-1)) + 1
         if now == count:
-            return groups
+            break
         count = now
+    return groups
 
 
 def _split_along(values: FloatArray, groups: IntArray, tolerance: float) -> IntArray:
