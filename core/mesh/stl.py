@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import gzip
 import io
+import re
 from contextlib import closing
 from functools import partial
 from pathlib import Path
@@ -36,6 +37,9 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
 
 _SNIFF = 1024
+# The end of the last solid may have a name, and blank lines after it.
+_TAIL = 1 << 16
+_SOLID_END = re.compile(rb"end[ \t]*solid", re.IGNORECASE)
 _GZIP_MARK = b"\x1f\x8b"
 # A read of this size fills the buffer of gzip's own reader a few times over.
 _COUNTING_BLOCK = 1 << 20
@@ -106,8 +110,8 @@ class AsciiStl:
     def ends_as_it_should(self) -> bool:
         """Return whether the last solid has its end: a text that was cut short between two facets has none."""
         with reading(self.name), closing(self._opener()) as file:
-            file.seek(max(self._size - _SNIFF, 0))
-            return b"endsolid" in file.read().lower()
+            file.seek(max(self._size - _TAIL, 0))
+            return _SOLID_END.search(file.read()) is not None
 
 
 def open_stl(path: str | Path) -> BinaryStl | AsciiStl:

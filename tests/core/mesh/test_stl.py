@@ -7,7 +7,7 @@ import pytest
 from mesh_files import ascii_stl, binary_stl, box
 
 from core.errors import Cancelled
-from core.mesh import survey_file
+from core.mesh import MeshAsset, survey_file
 from core.mesh.stl import open_stl, stl_of_bytes
 from core.progress import Progress
 
@@ -110,3 +110,9 @@ def test_cancelled_reading_stops_and_says_how_far_it_came(tmp_path):
     with pytest.raises(Cancelled) as stopped:
         survey_file(tmp_path / "part.stl", progress)
     assert str(stopped.value) == "reading part.stl was stopped before it was done; read 0 of 12."
+
+
+@pytest.mark.parametrize("ending", ["endsolid part\n", "END  SOLID part\n", "endsolid " + "n" * 2000, "endsolid" + " \r\n" * 2000])
+def test_an_open_text_file_is_read_however_its_solid_ends(ending):
+    text = ascii_stl(box()[1:]).replace("endsolid part\n", ending)
+    assert MeshAsset.of_bytes(text.encode(), "part.stl").survey.open_edges == 3
