@@ -31,6 +31,7 @@ MARGIN_CAUTION: Final = (
 )
 NOTHING_WEIGHS: Final = "no part in it has a mass; set a material, a density or a weighed mass"
 _MOST_NAMES: Final = 8
+_SAID: Final = frozenset({"cut", "mends"})
 
 
 @dataclass(frozen=True)
@@ -109,7 +110,7 @@ def sheet_of_assembly(assembly: Assembly, choice: SheetChoice, unit_set: UnitSet
         basis=subject.basis,
         sources=_sources(selection),
         checks=failed_first(checks),
-        notes=(*_variant_note(assembly), *tie_note(subject)),
+        notes=(*_variant_note(assembly), *_remarks(checks), *tie_note(subject)),
         cautions=(*_left_out(selection), MARGIN_CAUTION),
     )
 
@@ -147,6 +148,11 @@ def sheet_of_mesh(reading: MeshReading, choice: SheetChoice, unit_set: UnitSet) 
         notes=(*reading.notes, *tie_note(subject)),
         cautions=(*reading.cautions, MARGIN_CAUTION),
     )
+
+
+def _remarks(checks: list[Check]) -> tuple[str, ...]:
+    """Return what is right but has to be said: a cut that is not all inside, a mesh that was mended."""
+    return tuple(check.text for check in checks if check.ok and check.name in _SAID)
 
 
 def failed_first(checks: list[Check]) -> tuple[Check, ...]:

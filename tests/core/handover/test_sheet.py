@@ -6,7 +6,7 @@ from hypothesis import given
 from oracles import points_like, tensor_of_points
 from strategies import assemblies, mass_drivers
 
-from core.assembly import Assembly, DataSheet, DriveAxis, Group, KnownTensor, Part, ShapeBody, ledger_of
+from core.assembly import Assembly, Cut, DataSheet, DriveAxis, Group, KnownTensor, Part, ShapeBody, ledger_of
 from core.assembly.selection import selected
 from core.errors import EditRefused
 from core.handover import SheetChoice, sheet_of_assembly
@@ -14,7 +14,7 @@ from core.handover.lines import FOR_THE_DRIVE
 from core.material import ByDensity
 from core.placement import Pose, Ring, Row
 from core.quantity import UNIT_SETS, Kind
-from core.shapes import SHAPES
+from core.shapes import SHAPES, Box, Cylinder
 
 METRIC = UNIT_SETS["mm kg kg·m²"]
 SI = UNIT_SETS["SI"]
@@ -179,3 +179,10 @@ def test_the_drive_section_follows_the_drive_axis():
     assert all("Tilt" in entry.label for entry in drive)
     # A cylinder that stands on the axis: m(3r² + L²)/12 and the transfer of half its length.
     assert drive[0].si == pytest.approx(mass * (3 * 0.2**2 + 0.02**2) / 12 + mass * 0.01**2, rel=1e-12)
+
+
+def test_a_cut_that_sticks_out_of_its_part_is_said_on_the_sheet():
+    hole = Cut("c1", "edge hole", Cylinder(0.02, 0.05), Pose((0.05, 0.0, -0.01)))
+    plate = Part("p1", "plate", ShapeBody(Box(0.1, 0.1, 0.02)), ByDensity(7850.0), cuts=(hole,))
+    sheet = sheet_of_assembly(Assembly("a", (plate,)), SheetChoice(), UNIT_SETS["mm kg kg·m²"])
+    assert any("edge hole" in note and "outside" in note for note in sheet.notes)
