@@ -174,7 +174,10 @@ class Actions:
         self.shape_button = shape
         bar.addWidget(shape)
         for command in (
-            Command("Add mesh", w.files.ask_meshes, None, "mesh", "Adds mesh files (STL, OBJ, PLY, OFF, 3MF, GLB); they can be dropped, too."),
+            Command(
+                "Add mesh", w.files.ask_meshes, None, "mesh",
+                "Adds mesh files (STL, OBJ, PLY, OFF, 3MF, GLB); they can be dropped, too.",
+            ),
             Command("Add known part", w.ask_known_part, None, "known", "Adds a bought-in part from its data sheet."),
             Command("Add group", w.add_group, None, "group", "Puts the selected lines into a new group."),
         ):
