@@ -18,7 +18,7 @@ from core.handover.answer import KEYS
 
 ROOT = Path(__file__).parents[2]
 SLOW = """
-import sys, time
+import signal, sys, time
 import app.cli, app.weigh
 
 def slow(path, task, progress=None):
@@ -26,6 +26,8 @@ def slow(path, task, progress=None):
     time.sleep(60)
 
 if __name__ == "__main__":
+    # A shell starts what runs in its background with Ctrl-C ignored.
+    signal.signal(signal.SIGINT, signal.default_int_handler)
     app.weigh.outcome_of = slow
     sys.exit(app.cli.main(["weigh", "cube.stl", "cube.stl", "--jobs", "2"]))
 """
