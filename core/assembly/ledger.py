@@ -129,7 +129,7 @@ class _Head:
 class _Sums:
     """Mass, first moment (n, 3), own inertia, transfer and number of known masses, of lines or of parts and cuts (n,).
 
-    `size` is how far out the farthest centre of mass is, m.
+    `size` is how far the material reaches, m: below its round-off, a coordinate is 0.
     """
 
     mass: FloatArray
@@ -187,6 +187,13 @@ def _warning(parts: tuple[Part, ...]) -> str:
     return f"{weak} of {len(parts)} not computed" if weak else ""
 
 
+def _size(rows: Moments) -> float:
+    """Return how far the material of a batch of bodies (n,) reaches, m: its centres and radii of gyration."""
+    with np.errstate(divide="ignore", invalid="ignore"):
+        spread = np.sqrt(np.abs(np.trace(rows.spread, axis1=-2, axis2=-1) / rows.mass))
+    return float((np.abs(rows.centre).max(axis=-1, initial=0.0) + np.nan_to_num(spread, posinf=0.0)).max(initial=0.0))
+
+
 def _sums(assembly: Assembly) -> _Sums:
     """Return the sums of every part, then those of every cut, in the order of the ledger."""
     table = assembly.table
@@ -209,7 +216,7 @@ def _sums(assembly: Assembly) -> _Sums:
         own=per_line(rows.own_inertia_along(axis.unit)),
         transfer=per_line(rows.transfer_to_axis(axis.point, axis.unit)),
         known=known,
-        size=float(np.abs(rows.centre).max(initial=0.0)),
+        size=_size(rows),
     )
 
 

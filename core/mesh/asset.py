@@ -27,7 +27,7 @@ if TYPE_CHECKING:
     from core.progress import Progress
 
 # Facets that are drawn of one mesh at most; of more, a lighter mesh is made.
-MOST_DRAWN = 300_000
+MOST_DRAWN = 150_000
 
 
 @dataclass(frozen=True, eq=False)

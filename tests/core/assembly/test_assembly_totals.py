@@ -7,15 +7,17 @@ from dataclasses import replace
 import numpy as np
 import pytest
 from hypothesis import HealthCheck, given, settings
+from mesh_files import binary_stl, ring_grid
 from oracles import points_like, tensor_of_points
 from scipy.spatial.transform import Rotation
 from strategies import assemblies, mass_drivers, mesh_body
 
-from core.assembly import Assembly, DriveAxis, Group, Part, ShapeBody, findings_of, ledger_of, walk
+from core.assembly import Assembly, DriveAxis, Group, MeshBody, Part, ShapeBody, findings_of, ledger_of, walk
 from core.assembly.bodies import KnownAxial
 from core.assembly.nodes import DataSheet
 from core.assembly.selection import selected
 from core.material import ByDensity, ByMaterial, NotSet, Weighed
+from core.mesh import MeshAsset
 from core.placement import Mirrored, Pose, Ring, Row, Several
 from core.shapes import Box, Cylinder, Sphere
 
@@ -264,3 +266,12 @@ def test_a_rotor_whose_axis_is_not_the_drive_axis_is_pointed_out():
         ("rotor: its data sheet gives J about its own axis only, which is not parallel to Spindle; "
         "across the axis it stands in as a cylinder 80 mm long")
     ]
+
+
+def test_round_off_of_a_body_about_the_origin_is_shown_as_zero() -> None:
+    ring = MeshAsset.of_bytes(binary_stl(ring_grid(120, 60)), "ring.stl")
+    part = Part("p1", "ring", MeshBody(ring, 1e-3), ByDensity(7850.0))
+    assert float(np.abs(part.single.centre).max()) < 1e-15
+    line = ledger_of(Assembly("a", (part,))).total
+    assert line.centre.tolist() == [0.0, 0.0, 0.0]
+    assert line.transfer == 0.0
