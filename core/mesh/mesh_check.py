@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from core.checks import Check
+from core.mesh.survey import SOUND
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -12,14 +13,13 @@ if TYPE_CHECKING:
     from core.mesh.census import Census, MeshFinding
     from core.mesh.survey import MeshSurvey
 
-_SOUND = frozenset({"closed", "hairline cracks", "inside out"})
 _SAID_BY_THE_VERDICT = frozenset({"inside out", "hairline cracks", "open edges"})
 _MEND = "Mend it where it was made and export it again."
 
 
 def check_mesh(survey: MeshSurvey, name: str) -> Check:
     """Return whether a mesh bounds a volume that is known, exactly or within what its cracks leave open."""
-    ok = survey.verdict in _SOUND and survey.solid is not None
+    ok = survey.verdict in SOUND and survey.solid is not None
     edges = f"{survey.open_edges} open edge{'' if survey.open_edges == 1 else 's'}"
     found = f"{name}: the mesh is {survey.verdict}"
     if survey.verdict in {"hairline cracks", "mixed winding"}:

@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING, Final
 
 import numpy as np
 
-from core.mesh.survey import CLOSED, CRACKED, INSIDE_OUT
+from core.mesh.survey import INSIDE_OUT, SOUND
 from core.mesh.weld import weld_exactly
 
 if TYPE_CHECKING:
@@ -16,16 +16,16 @@ if TYPE_CHECKING:
     from core.mesh.survey import MeshSurvey
     from core.progress import Progress
 
-# An open mesh has edges that nothing is known beyond, and facets that wind both ways have no outside.
-RESTORABLE: Final = frozenset({CLOSED, CRACKED, INSIDE_OUT})
-
 # Up to this many triangles it takes no time that anybody notices.
 AT_ONCE: Final = 200_000
 
 
 def can_restore(survey: MeshSurvey) -> bool:
-    """Return whether the curvature behind the facets of a surveyed mesh can be restored."""
-    return survey.verdict in RESTORABLE and survey.solid is not None
+    """Return whether the curvature behind the facets of a surveyed mesh can be restored.
+
+    An open mesh has edges that nothing is known beyond, and facets that wind both ways have no outside.
+    """
+    return survey.verdict in SOUND and survey.solid is not None
 
 
 def restored(

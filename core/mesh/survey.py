@@ -31,6 +31,8 @@ if TYPE_CHECKING:
     from core.progress import Progress
 
 CLOSED, CRACKED, OPEN, INSIDE_OUT, MIXED = "closed", "hairline cracks", "open", "inside out", "mixed winding"
+# Verdicts on a surface that bounds a volume, exactly or within what its cracks leave open.
+SOUND = frozenset({CLOSED, CRACKED, INSIDE_OUT})
 COMPUTED, ESTIMATED, SEWN = "computed", "estimated: holes closed flat", "estimated: cracks closed"
 
 # Volume over area × diagonal below which a mesh encloses nothing but round-off.

@@ -10,7 +10,7 @@ from app.window.dialogs.form import FormDialog
 from app.window.dialogs.unit_table import UnitTable
 from app.window.fields import ChoiceField, Form, TextField
 from app.window.ledger.edits import driver_of
-from app.window.pages.part_mesh import COUNTS, SOUND
+from app.window.pages.part_mesh import COUNTS
 from app.window.style import Words
 from app.window.tasks import Task
 from core.assembly import Import, imported
@@ -18,6 +18,7 @@ from core.errors import MasswrightError
 from core.material import NotSet
 from core.mesh import AT_ONCE, can_restore
 from core.mesh.formats import read_bodies
+from core.mesh.survey import SOUND
 
 if TYPE_CHECKING:
     from collections.abc import Sequence

@@ -15,6 +15,7 @@ from app.window.style import GRID, Words
 from app.window.tasks import Task
 from core.assembly import MeshBody, Part, compare_mesh
 from core.mesh import MeshAsset, can_restore
+from core.mesh.survey import SOUND
 from core.quantity import UNITS, Kind
 
 if TYPE_CHECKING:
@@ -26,7 +27,6 @@ if TYPE_CHECKING:
     from core.mesh.curvature import Restored
 
 MESH_UNITS = ("mm", "cm", "m", "in", "ft")
-SOUND = frozenset({"closed", "inside out", "hairline cracks"})
 COUNTS: list[tuple[str, object]] = [
     ("the facets as they are", "faceted"),
     ("the curvature restored behind them", "restored"),

@@ -15,6 +15,7 @@ from core.mesh.curvature.fit import CHUNK, Chunk, chunk_of, part_of
 from core.mesh.curvature.seams import CREASED, FLAT_BESIDE_ROUND, ROUND_BESIDE_FLAT, Seams, classify
 from core.mesh.curvature.surface import Surface, patch_forms, survey
 from core.mesh.curvature.vectors import dot, gathered
+from core.mesh.weld import weld_exactly
 from core.moments import Moments
 from core.progress import Progress
 
@@ -30,10 +31,6 @@ LEFT_OF_DISPUTE: Final = 0.2
 
 # From the first turn on, a facet may belong to a true prism; at the second one nothing speaks for the round any more.
 DOUBT_FROM, DOUBT_FULL = np.radians(20.0), np.radians(30.0)
-
-# For hashing coordinates: an odd multiplier, and half the bits.
-HASH: Final = np.uint64(0x9E3779B97F4A7C15)
-FOLD: Final = np.uint64(32)
 
 # An edge that turns by less than this and was kept sharp is worth a look: a coarse round of up to 6 facets a turn.
 NEARLY_SHARP: Final = np.radians(61.0)
@@ -131,31 +128,7 @@ def restore_triangles(triangles: ArrayLike, progress: Progress | None = None) ->
     array = np.asarray(triangles, dtype=np.float64)
     if array.shape[1:] != (3, 3):
         raise ValueRefused("a mesh needs triangles of three points", read=f"an array of shape {array.shape}")
-    points, corners = weld_exactly(array.reshape(-1, 3))
-    return restore(points, corners.reshape(-1, 3), progress)
-
-
-def weld_exactly(points: FloatArray) -> tuple[FloatArray, IntArray]:
-    """Return the distinct points (n, 3) and for every given one its index there."""
-    clean = points + 0.0
-    # One 64-bit hash per point sorts much faster than three columns; equal hashes of different points are seen below.
-    # Coordinates that were float32 have 29 zero bits at the end, so each is folded before it is multiplied.
-    hashes = np.zeros(len(clean), dtype=np.uint64)
-    for column in np.ascontiguousarray(clean.T).view(np.uint64):
-        hashes = (hashes ^ column ^ (column >> FOLD)) * HASH
-        hashes ^= hashes >> FOLD
-    order = np.argsort(hashes)
-    same_hash = hashes[order[1:]] == hashes[order[:-1]]
-    ordered = clean[order]
-    differs = (ordered[1:] != ordered[:-1]).any(axis=1)
-    if (same_hash & differs).any():
-        order = np.lexsort((clean[:, 2], clean[:, 1], clean[:, 0]))
-        ordered = clean[order]
-        differs = (ordered[1:] != ordered[:-1]).any(axis=1)
-    new = np.concatenate([[True], differs])
-    index = np.empty(len(order), dtype=np.int64)
-    index[order] = np.cumsum(new) - 1
-    return ordered[new], index
+    return restore(*weld_exactly(array), progress)
 
 
 def _checked(points: ArrayLike, corners: ArrayLike) -> tuple[FloatArray, IntArray]:
