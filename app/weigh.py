@@ -134,15 +134,17 @@ def _document(path: str, task: Task) -> Outcome:
             where=path,
             remedy="Leave the option out, or set it in the document",
         )
-    from core.assembly import findings_of, ledger_of
+    from core.assembly import ledger_of
     from core.assembly.overlap_findings import overlaps_looked_for
     from core.document import read_document
 
-    assembly = _about_asked_axis(read_document(path), task)
+    machine = read_document(path)
+    machine = machine.with_assembly(_about_asked_axis(machine.assembly, task))
+    assembly = machine.assembly
     overlaps = overlaps_looked_for(assembly)
     complaints = tuple(
         f"check failed: {finding.check.name}: {path}: {finding.check.text}"
-        for finding in (*findings_of(assembly), *overlaps)
+        for finding in (*machine.findings(), *overlaps)
         if not finding.check.ok
     )
     status = CHECK_FAILED if complaints else SOUND

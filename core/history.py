@@ -1,4 +1,4 @@
-"""Undo and redo: keeping the assemblies that were, each with the name of the edit that left it."""
+"""Undo and redo: keeping the machines that were, each with the name of the edit that left it."""
 
 from __future__ import annotations
 
@@ -6,24 +6,24 @@ from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from core.assembly import Assembly
+    from core.machine import Machine
 
 
 @dataclass(frozen=True)
 class History:
-    """The assembly as it is, and the ones before and after it.
+    """The document as it is, and the ones before and after it.
 
     Attributes:
         present: what is shown.
-        past: (name of the edit, assembly before it), the oldest first.
-        future: (name of the edit, assembly after it), the next one last.
+        past: (name of the edit, machine before it), the oldest first.
+        future: (name of the edit, machine after it), the next one last.
     """
 
-    present: Assembly
-    past: tuple[tuple[str, Assembly], ...] = ()
-    future: tuple[tuple[str, Assembly], ...] = ()
+    present: Machine
+    past: tuple[tuple[str, Machine], ...] = ()
+    future: tuple[tuple[str, Machine], ...] = ()
 
-    def edited(self, name: str, after: Assembly) -> History:
+    def edited(self, name: str, after: Machine) -> History:
         """Return the history with an edit done; what had been undone is gone."""
         return History(after, (*self.past, (name, self.present)))
 
@@ -41,7 +41,7 @@ class History:
         name, after = self.future[-1]
         return History(after, (*self.past, (name, self.present)), self.future[:-1])
 
-    def merged(self, after: Assembly) -> History:
+    def merged(self, after: Machine) -> History:
         """Return the history with the last edit's result replaced: one undo step for a value typed in one go."""
         return replace(self, present=after, future=())
 

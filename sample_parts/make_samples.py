@@ -17,6 +17,7 @@ from pathlib import Path
 from core.assembly import Assembly, DataSheet, DriveAxis, Group, KnownAxial, MeshBody, Part, ShapeBody
 from core.assembly.assembly import MeantOverlap
 from core.document import save_document
+from core.machine import Machine
 from core.material import ByMaterial, Weighed
 from core.mesh import MeshAsset
 from core.placement import Pose, Ring
@@ -178,7 +179,7 @@ def main(folder: Path) -> None:
     """Write the samples into a folder."""
     stl = fixture_stl()
     (folder / FIXTURE).write_bytes(stl)
-    save_document(indexing_dial(MeshAsset.of_bytes(stl, FIXTURE)), folder / DIAL)
+    save_document(Machine(indexing_dial(MeshAsset.of_bytes(stl, FIXTURE))), folder / DIAL)
     print(f"{FIXTURE} and {DIAL} are in {folder}")
 
 

@@ -13,6 +13,7 @@ from strategies import mesh_body
 from core.assembly import Assembly, DataSheet, DriveAxis, Group, KnownTensor, Part, ShapeBody
 from core.document import read_document_bytes, save_document
 from core.errors import DocumentError
+from core.machine import Machine
 from core.material import ByMaterial
 from core.placement import Pose, Ring
 from core.shapes import Cylinder, Tube
@@ -37,7 +38,7 @@ def dial() -> Assembly:
 
 
 def saved(tmp_path: Path, assembly: Assembly | None = None) -> bytes:
-    save_document(assembly or dial(), tmp_path / "start.masswright")
+    save_document(Machine(assembly or dial()), tmp_path / "start.masswright")
     return (tmp_path / "start.masswright").read_bytes()
 
 

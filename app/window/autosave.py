@@ -16,7 +16,7 @@ if TYPE_CHECKING:
     from pathlib import Path
 
     from app.window.session import Session
-    from core.assembly import Assembly
+    from core.machine import Machine
 
 DELAY_MS = 5000
 SUFFIX = ".masswright"
@@ -65,7 +65,7 @@ class Autosave(QObject):
             self._timer.start()
             return
         if self._session.unsaved:
-            self._running = self._pool.submit(save_document, self._session.assembly, self._path)
+            self._running = self._pool.submit(save_document, self._session.machine, self._path)
             self._running.add_done_callback(self._look_at)
 
     def take_over(self, old: Path) -> None:
@@ -93,7 +93,7 @@ def left_behind() -> list[Path]:
     return sorted(found, key=lambda path: -path.stat().st_mtime)
 
 
-def recovered(path: Path) -> Assembly | None:
+def recovered(path: Path) -> Machine | None:
     """Return the unsaved work in a file; None where it cannot be read."""
     try:
         return read_document(path)

@@ -23,7 +23,7 @@ if TYPE_CHECKING:
     from app.window.session import Session
     from app.window.settings import Settings
     from app.window.start import Notice
-    from core.assembly import Assembly
+    from core.machine import Machine
 
 DOCUMENT = ".masswright"
 DOCUMENTS = f"Masswright documents (*{DOCUMENT})"
@@ -85,7 +85,7 @@ class Files(QObject):
 
     def _open_sample(self) -> None:
         if self._session.open(SAMPLE):
-            self._session.take(self._session.assembly, None)
+            self._session.take(self._session.machine, None)
             self.opened.emit()
 
     def _open(self, path: Path) -> None:
@@ -98,15 +98,15 @@ class Files(QObject):
     def _open_off_thread(self, path: Path) -> None:
         """Read a large document in a worker; the one that is open stays until that is done."""
 
-        def take(assembly: Assembly) -> None:
-            self._session.take(assembly, path)
+        def take(machine: Machine) -> None:
+            self._session.take(machine, path)
             self._settings.add_recent(path)
             self.opened.emit()
 
-        def done(assembly: Assembly) -> None:
+        def done(machine: Machine) -> None:
             self._notice.hide()
             # Whatever was typed since the question about unsaved work is asked about once more.
-            self.when_safe(lambda: take(assembly))
+            self.when_safe(lambda: take(machine))
 
         task = Task(self, lambda _progress: judged_document(path), done, self._session.refused.emit)
         self._notice.say(f"Opening {path.name} …", {"Leave it": task.leave})
@@ -206,14 +206,14 @@ class Files(QObject):
             )
 
     def _recover(self, path: Path) -> None:
-        assembly = autosave.recovered(path)
-        if assembly is None:
+        machine = autosave.recovered(path)
+        if machine is None:
             self._notice.say(
                 f"The unsaved work in {path} could not be read; it was left where it is.",
                 {"Discard it": lambda: path.unlink(missing_ok=True)},
             )
             return
-        self._session.take(assembly, None, saved=False)
+        self._session.take(machine, None, saved=False)
         self.autosave.take_over(path)
         self.opened.emit()
 

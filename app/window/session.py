@@ -6,12 +6,13 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, Signal
 
-from core.assembly import Assembly, Finding, Ledger, Part, findings_of, ledger_of
+from core.assembly import Assembly, Finding, Ledger, Part, ledger_of
 from core.assembly.names import values_of
 from core.assembly.overlap_findings import overlap_findings
 from core.document import read_document, save_document
 from core.errors import MasswrightError
 from core.history import History
+from core.machine import Machine
 from core.quantity import DEFAULT_UNITS, UnitSet
 
 if TYPE_CHECKING:
@@ -20,6 +21,7 @@ if TYPE_CHECKING:
 
     from core.assembly import Node
     from core.assembly.overlaps import Overlaps
+    from core.drive import DriveSettings
     from core.quantity import Names
 
 
@@ -27,7 +29,7 @@ class Session(QObject):
     """The one thing that the parts of the window share.
 
     Signals:
-        changed: the assembly is another one; ledger and findings are those of the new one.
+        changed: the document is another one; ledger and findings are those of the new one.
         selection_changed: other lines are selected.
         shown_differently: the same assembly in other units or with another decimal mark.
         file_changed: the document has another path, or was saved.
@@ -46,7 +48,7 @@ class Session(QObject):
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
-        self.history = History(Assembly())
+        self.history = History(Machine())
         self.path: Path | None = None
         self.units: UnitSet = DEFAULT_UNITS
         self.decimal_mark = "."
@@ -55,14 +57,24 @@ class Session(QObject):
         self.prepare: Callable[[Node], None] = lambda _node: None
         self._saved = self.history.present
         self.ledger: Ledger = ledger_of(self.assembly)
-        self.findings: tuple[Finding, ...] = findings_of(self.assembly)
+        self.findings: tuple[Finding, ...] = self.machine.findings()
         # Of the assembly as it is now; None until somebody has looked.
         self.overlaps: Overlaps | None = None
 
     @property
+    def machine(self) -> Machine:
+        """The document as it is now: the assembly and its drive, with what follows from both."""
+        return self.history.present
+
+    @property
     def assembly(self) -> Assembly:
         """The assembly as it is now."""
-        return self.history.present
+        return self.machine.assembly
+
+    @property
+    def drive(self) -> DriveSettings:
+        """What is entered about the drive."""
+        return self.machine.drive
 
     @property
     def names(self) -> Names:
@@ -88,28 +100,57 @@ class Session(QObject):
         return node if isinstance(node, Part) else None
 
     def attempt(self, name: str, change: Callable[[Assembly], Assembly], select: str | None = None) -> str:
-        """Do one edit under a name for undo; return "" or the sentence that refuses it.
+        """Do one edit of the assembly under a name for undo; return "" or the sentence that refuses it.
 
         A refused edit leaves everything as it was.
         """
         try:
-            after = change(self.assembly)
+            after = self.machine.with_assembly(change(self.assembly))
             # Evaluated before it counts: an assembly that cannot be added up is refused as a whole.
-            ledger, findings = ledger_of(after), findings_of(after)
+            ledger, findings = ledger_of(after.assembly), after.findings()
         except MasswrightError as error:
             return str(error)
-        if after is not self.assembly:
-            self.history = self.history.edited(name, after)
-            self.ledger, self.findings, self.overlaps = ledger, findings, None
-            self._after_change(select)
+        self._take_edit(name, after, ledger, findings, select)
+        return ""
+
+    def attempt_drive(self, name: str, change: Callable[[DriveSettings], DriveSettings]) -> str:
+        """Do one edit of the drive's settings under a name for undo; return "" or the sentence that refuses it.
+
+        What cannot be worked out is refused, unless that was so before: then entries are mended one by one.
+        """
+        try:
+            after = self.machine.with_drive(change(self.drive))
+        except MasswrightError as error:
+            return str(error)
+        refusal = _refusal_of_drive(after)
+        if refusal and not _refusal_of_drive(self.machine):
+            return refusal
+        self._take_edit(name, after, self.ledger, after.findings(), None)
         return ""
 
     def edit(self, name: str, change: Callable[[Assembly], Assembly], select: str | None = None) -> bool:
         """Do one edit as `attempt` does; tell a refusal through `refused`, and return whether it was taken."""
-        refusal = self.attempt(name, change, select)
+        return self._told(self.attempt(name, change, select))
+
+    def edit_drive(self, name: str, change: Callable[[DriveSettings], DriveSettings]) -> bool:
+        """Do one edit as `attempt_drive` does; tell a refusal through `refused`, and return whether it was taken."""
+        return self._told(self.attempt_drive(name, change))
+
+    def _told(self, refusal: str) -> bool:
         if refusal:
             self.refused.emit(refusal)
         return not refusal
+
+    def _take_edit(
+        self, name: str, after: Machine, ledger: Ledger, findings: tuple[Finding, ...], select: str | None
+    ) -> None:
+        if after is self.machine:
+            return
+        if after.assembly is not self.assembly:
+            self.overlaps = None
+        self.history = self.history.edited(name, after)
+        self.ledger, self.findings = ledger, (*findings, *self._overlap_findings())
+        self._after_change(select)
 
     def undo(self) -> None:
         """Take the last edit back."""
@@ -138,23 +179,23 @@ class Session(QObject):
 
     def start_new(self) -> None:
         """Start an empty document."""
-        self.take(Assembly(), None)
+        self.take(Machine(), None)
 
     def open(self, path: Path) -> bool:
         """Open a document; return whether it could be read. What was open stays where it could not."""
         try:
-            assembly = judged_document(path)
+            machine = judged_document(path)
         except MasswrightError as error:
             self.refused.emit(str(error))
             return False
-        self.take(assembly, path)
+        self.take(machine, path)
         return True
 
-    def take(self, assembly: Assembly, path: Path | None, *, saved: bool = True) -> None:
+    def take(self, machine: Machine, path: Path | None, *, saved: bool = True) -> None:
         """Show another document, with a history of its own; a recovered one is not saved yet."""
-        self.history = History(assembly)
+        self.history = History(machine)
         self.path = path
-        self._saved = assembly if saved else Assembly()
+        self._saved = machine if saved else Machine()
         self.selected = frozenset()
         self.overlaps = None
         self._judge()
@@ -163,13 +204,13 @@ class Session(QObject):
 
     def save(self, path: Path) -> bool:
         """Save the document under a path and go on with it there; return whether that worked."""
-        assembly = self.assembly
+        machine = self.machine
         try:
-            save_document(assembly, path)
+            save_document(machine, path)
         except MasswrightError as error:
             self.refused.emit(str(error))
             return False
-        self.path, self._saved = path, assembly
+        self.path, self._saved = path, machine
         self.file_changed.emit()
         self.said.emit(f"Saved {path.name}")
         return True
@@ -177,7 +218,9 @@ class Session(QObject):
     def _step(self, history: History, words: str) -> None:
         if history is self.history:
             return
-        self.history, self.overlaps = history, None
+        if history.present.assembly is not self.assembly:
+            self.overlaps = None
+        self.history = history
         self._judge()
         self._after_change(None)
         self.said.emit(words)
@@ -194,8 +237,10 @@ class Session(QObject):
 
     def _judge(self) -> None:
         self.ledger = ledger_of(self.assembly)
-        overlaps = () if self.overlaps is None else overlap_findings(self.assembly, self.overlaps)
-        self.findings = (*findings_of(self.assembly), *overlaps)
+        self.findings = (*self.machine.findings(), *self._overlap_findings())
+
+    def _overlap_findings(self) -> tuple[Finding, ...]:
+        return () if self.overlaps is None else overlap_findings(self.assembly, self.overlaps)
 
     def _after_change(self, select: str | None) -> None:
         wanted = self.selected if select is None else frozenset({select})
@@ -207,13 +252,22 @@ class Session(QObject):
             self.selection_changed.emit()
 
 
-def judged_document(path: Path) -> Assembly:
-    """Return the assembly in a document, added up and checked; what that found is kept with its parts.
+def judged_document(path: Path) -> Machine:
+    """Return what a document holds, added up and checked; what that found is kept with its parts.
 
     Raises:
         MasswrightError: it cannot be read, or not be added up.
     """
-    assembly = read_document(path)
-    ledger_of(assembly)
-    findings_of(assembly)
-    return assembly
+    machine = read_document(path)
+    ledger_of(machine.assembly)
+    _ = machine.findings()
+    return machine
+
+
+def _refusal_of_drive(machine: Machine) -> str:
+    """Return the sentence that says why a drive cannot be worked out; "" where it can."""
+    try:
+        _ = machine.drive_answer, machine.balance_answer
+    except MasswrightError as error:
+        return str(error)
+    return ""

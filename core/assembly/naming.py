@@ -6,7 +6,6 @@ ledger) has let go of its text.
 
 from __future__ import annotations
 
-import math
 from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, TypeVar
 
@@ -14,18 +13,16 @@ from core.assembly.fields import AnyLine, kind_of, value_of, with_values, words_
 from core.assembly.names import USES, NameEntry, evaluated, in_order, values_of
 from core.assembly.nodes import Group, Node, Part, walk
 from core.errors import EditRefused, QuantityError, ValueRefused
-from core.quantity import check_name, names_in, parse, with_names_changed
+from core.quantity import Readings, check_name, names_in, parse, with_names_changed
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Collection, Iterable, Iterator, Mapping, Sequence
+    from collections.abc import Callable, Iterable, Iterator, Mapping, Sequence
 
     from core.assembly.assembly import Assembly
     from core.quantity import Kind, Names
 
 Each = TypeVar("Each", bound=AnyLine)
 
-# Relative: a text read again gives the number that was kept, but for the last bits.
-SAME_VALUE = 1e-12
 _MOST_SHOWN = 6
 
 
@@ -68,7 +65,7 @@ def with_entries(assembly: Assembly, entries: Iterable[NameEntry]) -> Assembly:
         return edited
     old = {entry.name: entry for entry in entries_of(assembly)}
     changed = {entry.name for entry in kept if old.get(entry.name) != entry}
-    reader = _Reader(_Readings(before, moved), after, {entry.name: entry for entry in kept}, changed)
+    reader = _Reader(Readings(before, moved), after, {entry.name: entry for entry in kept}, changed)
     return replace(edited, members=_mapped(assembly.members, reader.read_again))
 
 
@@ -119,46 +116,21 @@ def with_name_changed(assembly: Assembly, name: str, new: str) -> Assembly:
 
 def uses_of(assembly: Assembly, name: str) -> tuple[Use, ...]:
     """Return every named dimension and every number of a line that a name says, in the order of the ledger."""
-    readings = _Readings(values_of(assembly.names), {name})
+    readings = Readings(values_of(assembly.names), {name})
     found = [Use("", one.name, one.text) for one in assembly.names if readings.uses(one.text)]
     for line in _lines(assembly.members):
         found += [
             Use(line.key, f"{line.name}, {words_of(line, path)}", text)
             for path, text in line.typed
-            if readings.uses(text) and readings.is_meant(line, path, text)
+            if readings.uses(text) and _is_meant(readings, line, path, text)
         ]
     return tuple(found)
 
 
-class _Readings:
-    """Texts read with the same names, each text once: a machine has thousands of lines with the same few."""
-
-    def __init__(self, names: Names, wanted: Collection[str]) -> None:
-        self._names = names
-        self._wanted = wanted
-        self._uses: dict[str, bool] = {}
-        self._values: dict[tuple[str, Kind], float | None] = {}
-
-    def uses(self, text: str) -> bool:
-        """Return whether a text uses one of the names that are wanted."""
-        if text not in self._uses:
-            self._uses[text] = bool(names_in(text, self._wanted))
-        return self._uses[text]
-
-    def is_meant(self, line: AnyLine, path: str, text: str) -> bool:
-        """Return whether a text that was typed for a number of a line still means that number."""
-        value = value_of(line, path)
-        read = None if value is None else self._value(text, kind_of(line, path))
-        return value is not None and read is not None and math.isclose(read, value, rel_tol=SAME_VALUE)
-
-    def _value(self, text: str, kind: Kind) -> float | None:
-        if (text, kind) not in self._values:
-            try:
-                self._values[text, kind] = parse(text, kind, names=self._names).value
-            except QuantityError:
-                # What means nothing with these names is no longer what says the number.
-                self._values[text, kind] = None
-        return self._values[text, kind]
+def _is_meant(readings: Readings, line: AnyLine, path: str, text: str) -> bool:
+    """Return whether a text that was typed for a number of a line still means that number."""
+    value = value_of(line, path)
+    return value is not None and readings.means(text, kind_of(line, path), value)
 
 
 @dataclass(frozen=True)
@@ -173,7 +145,7 @@ class _Reader:
         known: values of texts that were read already.
     """
 
-    before: _Readings
+    before: Readings
     after: Names
     entries: Mapping[str, NameEntry]
     edited: set[str]
@@ -183,7 +155,7 @@ class _Reader:
         """Return a line with the numbers that its texts mean now."""
         values: dict[str, float] = {}
         for path, text in line.typed:
-            if self.before.uses(text) and self.before.is_meant(line, path, text):
+            if self.before.uses(text) and _is_meant(self.before, line, path, text):
                 values[path] = self._value(line, path, text)
         if not values:
             return line

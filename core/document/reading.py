@@ -5,7 +5,7 @@ from __future__ import annotations
 import io
 from dataclasses import replace
 from pathlib import Path
-from typing import IO, TYPE_CHECKING, Any, TypeAlias, TypeVar
+from typing import IO, TYPE_CHECKING, Any, TypeAlias
 
 from core.assembly import (
     Assembly,
@@ -25,17 +25,19 @@ from core.assembly import (
 from core.assembly.assembly import DEEPEST, MeantOverlap
 from core.assembly.names import NameEntry, evaluated
 from core.document.archive import Archive
+from core.document.drive_data import machine_with
 from core.document.layout import data_of
 from core.document.migration import MAJOR, MINOR, Data, migrated
+from core.document.refusing import made_at
 from core.document.validation import checked, short_place
-from core.errors import DocumentError, MasswrightError
+from core.errors import DocumentError
 from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed
 from core.mesh import MeshAsset
 from core.placement import Copies, Mirrored, Pose, Ring, Row, Several
 from core.shapes import SHAPES, Outline, OutlinedShape, Shape
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Sequence
+    from collections.abc import Sequence
 
     from core.document.schema import (
         AxisEntry,
@@ -50,8 +52,7 @@ if TYPE_CHECKING:
         PoseEntry,
         ShapeEntry,
     )
-
-Built = TypeVar("Built")
+    from core.machine import Machine
 
 # x, y, rounding and arc of each point, loop by loop.
 _Loops: TypeAlias = tuple[tuple[tuple[float, float, float, float], ...], ...]
@@ -60,8 +61,8 @@ _REMEDY = "Take the last good copy, or mend the entry where it was changed by ha
 _REMEDY_NEWER = "It was written by a newer version of Masswright: open it with that one"
 
 
-def read_document(path: str | Path) -> Assembly:
-    """Return the assembly that a document file holds; nothing of it is taken if anything in it is wrong.
+def read_document(path: str | Path) -> Machine:
+    """Return the machine that a document file holds; nothing of it is taken if anything in it is wrong.
 
     Raises:
         DocumentError: the file cannot be opened, is no document, is damaged, or is of a newer version.
@@ -90,8 +91,8 @@ def read_document(path: str | Path) -> Assembly:
         ) from error
 
 
-def read_document_bytes(data: bytes, name: str = "document") -> Assembly:
-    """Return the assembly that a document's bytes hold; name stands for the file in an error's sentence.
+def read_document_bytes(data: bytes, name: str = "document") -> Machine:
+    """Return the machine that a document's bytes hold; name stands for the file in an error's sentence.
 
     Raises:
         DocumentError: they are no document, a damaged one, or one of a newer version.
@@ -100,13 +101,13 @@ def read_document_bytes(data: bytes, name: str = "document") -> Assembly:
     return _read(io.BytesIO(data), name)
 
 
-def _read(file: IO[bytes], name: str) -> Assembly:
+def _read(file: IO[bytes], name: str) -> Machine:
     try:
         archive = Archive(file)
         data = migrated(data_of(archive.json()))
         document = checked(data, _REMEDY_NEWER if _is_newer(data) else _REMEDY)
         del data  # as large as what is built from it, and not needed for that
-        return _Builder(archive).assembly(document)
+        return machine_with(_Builder(archive).assembly(document), document.drive_settings)
     except DocumentError as error:
         # Everything below knows the place in the file, and only here is the file's own name known.
         where = f"{name}, {error.where}" if error.where else name
@@ -128,7 +129,7 @@ class _Builder:
         members = self._nodes(document.members, "", 0)
         meant = tuple(_meant(entry, f"meant[{i}]") for i, entry in enumerate(document.meant))
         more = _names_and_variants(document)
-        return _made("", lambda: Assembly(document.name, members, axes, document.drive, meant, **more))
+        return made_at("", lambda: Assembly(document.name, members, axes, document.drive, meant, **more))
 
     def _nodes(self, entries: Sequence[NodeEntry], above: str, depth: int) -> tuple[Node, ...]:
         if depth >= DEEPEST:
@@ -140,26 +141,26 @@ class _Builder:
         said = f"({entry.name})"
         typed = tuple((field, text) for field, text in entry.typed)
         pose = _pose(entry.pose)
-        copies = _made(f"{place}.copies {said}", lambda: _copies(entry.copies))
+        copies = made_at(f"{place}.copies {said}", lambda: _copies(entry.copies))
         if entry.kind == "group":
             members = self._nodes(entry.members, f"{place}.", depth + 1)
             return Group(entry.key, entry.name, members, pose, copies, typed, entry.note, tuple(entry.only_in))
-        driver = _made(f"{place}.driver {said}", lambda: _driver(entry.driver))
-        body = _made(f"{place}.body {said}", lambda: self._body(entry.body))
+        driver = made_at(f"{place}.driver {said}", lambda: _driver(entry.driver))
+        body = made_at(f"{place}.body {said}", lambda: self._body(entry.body))
         cuts = tuple(self._cut(cut, f"{place}.cuts[{i}] ({cut.name})") for i, cut in enumerate(entry.cuts))
         only_in = tuple(entry.only_in)
-        part = _made(
+        part = made_at(
             f"{place} {said}",
             lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note, cuts, only_in),
         )
         # What cannot be cut out is refused here, where its place in the file is known; the part keeps what it cost.
-        _ = _made(f"{place}.cuts", lambda: part.cutting)
+        _ = made_at(f"{place}.cuts", lambda: part.cutting)
         return part
 
     def _cut(self, entry: CutEntry, place: str) -> Cut:
         typed = tuple((field, text) for field, text in entry.typed)
         pose = _pose(entry.pose)
-        return _made(
+        return made_at(
             place,
             lambda: Cut(
                 entry.key, entry.name, self._shape(entry.shape).shape, pose, _copies(entry.copies), typed, entry.note
@@ -201,22 +202,13 @@ class _Builder:
 
 
 def _meant(entry: MeantOverlapEntry, place: str) -> MeantOverlap:
-    return _made(place, lambda: MeantOverlap(entry.key_a, entry.key_b, entry.carried_by, entry.note))
+    return made_at(place, lambda: MeantOverlap(entry.key_a, entry.key_b, entry.carried_by, entry.note))
 
 
 def _names_and_variants(document: DocumentEntry) -> dict[str, Any]:
     entries = [NameEntry(one.name, one.text, one.note) for one in document.names]
-    names = _made("names", lambda: evaluated(entries))
+    names = made_at("names", lambda: evaluated(entries))
     return {"names": names, "variants": tuple(document.variants), "variant": document.variant}
-
-
-def _made(place: str, make: Callable[[], Built]) -> Built:
-    """Return what make returns; a refusal says the place in the document before its own sentence."""
-    try:
-        return make()
-    except MasswrightError as error:
-        where = ", ".join(said for said in (short_place(place), error.where) if said)
-        raise DocumentError(error.what, where=where, read=error.read, remedy=error.remedy) from error
 
 
 def _is_newer(data: Data) -> bool:
@@ -226,7 +218,7 @@ def _is_newer(data: Data) -> bool:
 
 
 def _axis(entry: AxisEntry, place: str) -> DriveAxis:
-    return _made(place, lambda: DriveAxis(entry.name, entry.point, entry.direction))
+    return made_at(place, lambda: DriveAxis(entry.name, entry.point, entry.direction))
 
 
 def _pose(entry: PoseEntry) -> Pose:

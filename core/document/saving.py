@@ -12,37 +12,37 @@ from typing import IO, TYPE_CHECKING
 from core.document.archive import write_archive
 from core.document.layout import json_of
 from core.document.validation import checked
-from core.document.writing import data_of_assembly, meshes_of
+from core.document.writing import data_of_machine, meshes_of
 from core.errors import DocumentError
 
 if TYPE_CHECKING:
     from collections.abc import Callable
 
-    from core.assembly import Assembly
+    from core.machine import Machine
 
 _FULL = {errno.ENOSPC, errno.EDQUOT, errno.EFBIG}
 _REMEDY = "Change it and save again; the file is as it was"
 
 
-def save_document(assembly: Assembly, path: str | Path) -> None:
-    """Save the assembly; the same assembly always gives the same bytes.
+def save_document(machine: Machine, path: str | Path) -> None:
+    """Save the machine; the same machine always gives the same bytes.
 
     What is written is first held against the schema, so that whatever was saved can be read. A link is
     followed, and a file that is replaced keeps its permissions.
 
     Raises:
-        DocumentError: the assembly holds something that a document cannot, or the file cannot be written.
+        DocumentError: the machine holds something that a document cannot, or the file cannot be written.
             The old file is then as it was, and nothing is left beside it.
 
     """
     target = Path(path)
     try:
-        data = data_of_assembly(assembly)
+        data = data_of_machine(machine)
         checked(data, _REMEDY)
     except DocumentError as error:
         where = f"{target.name}, {error.where}"
         raise DocumentError(error.what, where=where, read=error.read, remedy=error.remedy) from error
-    json, meshes = json_of(data), meshes_of(assembly)
+    json, meshes = json_of(data), meshes_of(machine.assembly)
     try:
         _replace(target.resolve(), lambda file: write_archive(file, json, meshes))
     except OSError as error:

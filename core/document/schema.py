@@ -8,53 +8,45 @@ from __future__ import annotations
 
 from typing import Annotated, Literal, TypeAlias
 
-from pydantic import BaseModel, ConfigDict, Field, Strict
+from pydantic import Field
 
 from core.assembly.cuts import MOST_CUT_COPIES
 from core.assembly.membership import MOST_VARIANTS
+from core.document.drive_schema import DriveSettingsEntry
+from core.document.schema_base import (
+    MOST_ENTRIES,
+    Entry,
+    Four,
+    Name,
+    Number,
+    Positive,
+    Six,
+    Text,
+    Three,
+    Typed,
+)
 from core.shapes.profile import MOST_LOOPS, MOST_POINTS
 
-# No length, mass or inertia of a machine comes near this; the fifth power of it is still a finite number.
-LARGEST_NUMBER = 1e30
-LONGEST_NAME = 500
-LONGEST_TEXT = 20_000
-MOST_ENTRIES = 1_000
 MOST_NODES = 200_000
 
-Number: TypeAlias = Annotated[float, Field(ge=-LARGEST_NUMBER, le=LARGEST_NUMBER, allow_inf_nan=False)]
-Positive: TypeAlias = Annotated[float, Field(gt=0, le=LARGEST_NUMBER, allow_inf_nan=False)]
-# A JSON list is the only way to write a tuple; what is in it stays strict.
-Three: TypeAlias = Annotated[tuple[Number, Number, Number], Strict(strict=False)]
-Four: TypeAlias = Annotated[tuple[Number, Number, Number, Number], Strict(strict=False)]
-Six: TypeAlias = Annotated[tuple[Number, Number, Number, Number, Number, Number], Strict(strict=False)]
-Name: TypeAlias = Annotated[str, Field(max_length=LONGEST_NAME)]
-Text: TypeAlias = Annotated[str, Field(max_length=LONGEST_TEXT)]
-TypedField: TypeAlias = Annotated[tuple[Name, Text], Strict(strict=False)]
-Typed: TypeAlias = Annotated[list[TypedField], Field(max_length=MOST_ENTRIES)]
 OnlyIn: TypeAlias = Annotated[list[Name], Field(max_length=MOST_VARIANTS)]
 
 
-class _Entry(BaseModel):
-    """Values of exactly the kind that is named, and no entries beside them."""
-
-    model_config = ConfigDict(strict=True, extra="forbid", frozen=True)
-
-
-class PoseEntry(_Entry):
+class PoseEntry(Entry):
     """Where a node stands in the frame of the group that holds it."""
 
     position: Three
     turns: Three
 
 
-class SeveralEntry(_Entry):
+class SeveralEntry(Entry):
     """So many at one place."""
 
     kind: Literal["several"]
     count: int
 
 
-class RingEntry(_Entry):
+class RingEntry(Entry):
     """Copies on a pitch circle."""
 
     kind: Literal["ring"]
@@ -66,7 +58,7 @@ class RingEntry(_Entry):
     turning: bool
 
 
-class RowEntry(_Entry):
+class RowEntry(Entry):
     """Copies in a straight row."""
 
     kind: Literal["row"]
@@ -74,7 +66,7 @@ class RowEntry(_Entry):
     step: Three
 
 
-class MirroredEntry(_Entry):
+class MirroredEntry(Entry):
     """A body and its mirror image."""
 
     kind: Literal["mirrored"]
@@ -87,7 +79,7 @@ CopiesEntry: TypeAlias = Annotated[
 ]
 
 
-class MaterialEntry(_Entry):
+class MaterialEntry(Entry):
     """A material by name, with the density that it had when it was chosen."""
 
     kind: Literal["material"]
@@ -95,41 +87,41 @@ class MaterialEntry(_Entry):
     density: Number
 
 
-class DensityEntry(_Entry):
+class DensityEntry(Entry):
     """A density that was typed."""
 
     kind: Literal["density"]
     density: Number
 
 
-class PerAreaEntry(_Entry):
+class PerAreaEntry(Entry):
     """The mass per area of a body without thickness, kg/m²."""
 
     kind: Literal["per area"]
     mass_per_area: Number
 
 
-class PerLengthEntry(_Entry):
+class PerLengthEntry(Entry):
     """The mass per length of a rod or ring, kg/m."""
 
     kind: Literal["per length"]
     mass_per_length: Number
 
 
-class WeighedEntry(_Entry):
+class WeighedEntry(Entry):
     """The mass of one copy, weighed."""
 
     kind: Literal["weighed"]
     mass: Number
 
 
-class NotSetEntry(_Entry):
+class NotSetEntry(Entry):
     """Nothing says what it weighs."""
 
     kind: Literal["not set"]
 
 
-class DataSheetEntry(_Entry):
+class DataSheetEntry(Entry):
     """The data sheet says it, with the inertia."""
 
     kind: Literal["data sheet"]
@@ -141,13 +133,13 @@ DriverEntry: TypeAlias = Annotated[
 ]
 
 
-class LoopEntry(_Entry):
+class LoopEntry(Entry):
     """One loop of an outline: x, y, corner rounding and radius of the arc to the next point, of each point."""
 
     points: Annotated[list[Four], Field(max_length=MOST_POINTS)]
 
 
-class ShapeEntry(_Entry):
+class ShapeEntry(Entry):
     """A body from dimensions, some from an outline too; which there are, core.shapes.SHAPES says."""
 
     kind: Literal["shape"]
@@ -156,7 +148,7 @@ class ShapeEntry(_Entry):
     outline: Annotated[list[LoopEntry], Field(max_length=MOST_LOOPS)] | None = None
 
 
-class MeshEntry(_Entry):
+class MeshEntry(Entry):
     """A body from a mesh file, which lies in the archive under its SHA-256."""
 
     kind: Literal["mesh"]
@@ -165,11 +157,11 @@ class MeshEntry(_Entry):
     metres_per_unit: Positive
     counts: Literal["faceted", "restored"] = "faceted"
     origin: Text = ""
-    mends: Annotated[list[Name], Field(max_length=MOST_ENTRIES)] = []
+    mends: Annotated[list[Name], Field(max_length=MOST_ENTRIES)] = Field(default_factory=list)
     source: Annotated[str, Field(pattern=r"^([0-9a-f]{64})?$")] = ""
 
 
-class KnownTensorEntry(_Entry):
+class KnownTensorEntry(Entry):
     """A bought-in part with its full tensor."""
 
     kind: Literal["known tensor"]
@@ -180,7 +172,7 @@ class KnownTensorEntry(_Entry):
     source: Text
 
 
-class KnownAxialEntry(_Entry):
+class KnownAxialEntry(Entry):
     """A bought-in part with the inertia about its own axis."""
 
     kind: Literal["known axial"]
@@ -196,7 +188,7 @@ BodyEntry: TypeAlias = Annotated[
 ]
 
 
-class CutEntry(_Entry):
+class CutEntry(Entry):
     """A solid that is taken out of a part; it stands in the part's frame."""
 
     key: Name
@@ -208,7 +200,7 @@ class CutEntry(_Entry):
     shape: ShapeEntry
 
 
-class NamedEntry(_Entry):
+class NamedEntry(Entry):
     """A named dimension: its value follows from its text."""
 
     name: Name
@@ -216,7 +208,7 @@ class NamedEntry(_Entry):
     note: Text
 
 
-class PartEntry(_Entry):
+class PartEntry(Entry):
     """One line of the parts list."""
 
     kind: Literal["part"]
@@ -228,11 +220,11 @@ class PartEntry(_Entry):
     copies: CopiesEntry
     body: BodyEntry
     driver: DriverEntry
-    cuts: Annotated[list[CutEntry], Field(max_length=MOST_CUT_COPIES)] = []
-    only_in: OnlyIn = []
+    cuts: Annotated[list[CutEntry], Field(max_length=MOST_CUT_COPIES)] = Field(default_factory=list)
+    only_in: OnlyIn = Field(default_factory=list)
 
 
-class GroupEntry(_Entry):
+class GroupEntry(Entry):
     """Lines that move as one."""
 
     kind: Literal["group"]
@@ -243,13 +235,13 @@ class GroupEntry(_Entry):
     pose: PoseEntry
     copies: CopiesEntry
     members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
-    only_in: OnlyIn = []
+    only_in: OnlyIn = Field(default_factory=list)
 
 
 NodeEntry: TypeAlias = Annotated[PartEntry | GroupEntry, Field(discriminator="kind")]
 
 
-class AxisEntry(_Entry):
+class AxisEntry(Entry):
     """An axis that something turns about."""
 
     name: Name
@@ -257,7 +249,7 @@ class AxisEntry(_Entry):
     direction: Three
 
 
-class MeantOverlapEntry(_Entry):
+class MeantOverlapEntry(Entry):
     """A mark that two parts penetrate each other on purpose."""
 
     key_a: Name
@@ -266,14 +258,14 @@ class MeantOverlapEntry(_Entry):
     note: Text
 
 
-class VersionEntry(_Entry):
+class VersionEntry(Entry):
     """Of the schema: a new minor version only adds entries, a new major version changes what entries mean."""
 
     major: int
     minor: Annotated[int, Field(ge=0)]
 
 
-class DocumentEntry(_Entry):
+class DocumentEntry(Entry):
     """All of assembly.json."""
 
     version: VersionEntry
@@ -281,10 +273,11 @@ class DocumentEntry(_Entry):
     drive: Name
     axes: Annotated[list[AxisEntry], Field(min_length=1, max_length=MOST_ENTRIES)]
     members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
-    names: Annotated[list[NamedEntry], Field(max_length=MOST_ENTRIES)] = []
-    variants: Annotated[list[Name], Field(max_length=MOST_VARIANTS)] = []
+    names: Annotated[list[NamedEntry], Field(max_length=MOST_ENTRIES)] = Field(default_factory=list)
+    variants: Annotated[list[Name], Field(max_length=MOST_VARIANTS)] = Field(default_factory=list)
     variant: Name = ""
-    meant: Annotated[list[MeantOverlapEntry], Field(max_length=MOST_NODES)] = []
+    meant: Annotated[list[MeantOverlapEntry], Field(max_length=MOST_NODES)] = Field(default_factory=list)
+    drive_settings: DriveSettingsEntry | None = None
 
 
 GroupEntry.model_rebuild()

@@ -41,7 +41,9 @@ _SAID = {
     "union_tag_not_found": ("its kind is missing", ""),
 }
 _READ_NOTHING = {"missing", "union_tag_not_found", "recursion_depth_exceeded"}
-_UNIONS = {"body", "driver", "copies"}
+# Entries, and lists of entries, that are of several kinds.
+_UNIONS = {"body", "driver", "copies", "timing"}
+_LISTS_OF_UNIONS = {"members", "stages", "linear", "steps"}
 
 
 def checked(data: object, remedy: str = "") -> DocumentEntry:
@@ -74,13 +76,13 @@ def place_of(location: tuple[int | str, ...]) -> str:
     """
     kept: list[str] = []
     before: int | str = ""
-    under_members = False
+    in_list = False
     for step in location:
-        is_tag = before in _UNIONS or (isinstance(before, int) and under_members)
+        is_tag = before in _UNIONS or (isinstance(before, int) and in_list)
         if not is_tag:
             kept.append(f"[{step}]" if isinstance(step, int) else f".{step}")
             if isinstance(step, str):
-                under_members = step == "members"
+                in_list = step in _LISTS_OF_UNIONS
         before = "" if is_tag else step
     return short_place("".join(kept).lstrip("."))
 

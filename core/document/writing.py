@@ -1,8 +1,8 @@
-"""An assembly as plain data for assembly.json."""
+"""A machine as plain data for assembly.json."""
 
 from __future__ import annotations
 
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from core.assembly import (
     Assembly,
@@ -19,14 +19,23 @@ from core.assembly import (
     ShapeBody,
     walk,
 )
+from core.document.drive_data import data_of_drive
 from core.document.migration import MAJOR, MINOR, Data
 from core.material import ByDensity, ByMaterial, PerArea, PerLength, Weighed
 from core.placement import Copies, Mirrored, Pose, Ring, Row
 from core.shapes import OutlinedShape, Shape
 
+if TYPE_CHECKING:
+    from core.machine import Machine
 
-def data_of_assembly(assembly: Assembly) -> Data:
-    """Return everything that the assembly says, as the schema has it; meshes by their SHA-256."""
+
+def data_of_machine(machine: Machine) -> Data:
+    """Return everything that the machine says, as the schema has it; meshes by their SHA-256."""
+    drive = {"drive_settings": data_of_drive(machine.drive)} if machine.has_drive else {}
+    return {**_data_of_assembly(machine.assembly), **drive}
+
+
+def _data_of_assembly(assembly: Assembly) -> Data:
     meant = [
         {"key_a": mark.key_a, "key_b": mark.key_b, "carried_by": mark.carried_by, "note": mark.note}
         for mark in assembly.meant

@@ -125,9 +125,8 @@ def bodies_of(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[Turni
         ValueRefused: two entries name the same line, or one names an axis that is not there.
         EditRefused: an entry names a line that is not there.
     """
+    refuse_unless_there(assembly, turning)
     by_key = {entry.key: entry for entry in turning}
-    if len(by_key) != len(turning):
-        raise ValueRefused("a line turns with one shaft only", where="what turns", remedy="Keep one of the entries")
     table = assembly.table
     entries = [_entry_of(assembly, part.key, by_key) for part in table.parts]
     bodies = []
@@ -139,6 +138,21 @@ def bodies_of(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[Turni
         moments = Moments(table.moments.mass[rows], table.moments.centre[rows], table.moments.spread[rows]).total()
         bodies.append(TurningBody(name, moments, _axis_named(assembly, entry.axis), entry.shaft))
     return tuple(bodies)
+
+
+def refuse_unless_there(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> None:
+    """Refuse entries that do not go with an assembly.
+
+    Raises:
+        ValueRefused: two entries name the same line, or one names an axis that is not there.
+        EditRefused: an entry names a line that is not there.
+    """
+    if len({entry.key for entry in turning}) != len(turning):
+        raise ValueRefused("a line turns with one shaft only", where="what turns", remedy="Keep one of the entries")
+    for entry in turning:
+        if entry.key:
+            assembly.node(entry.key)
+        _axis_named(assembly, entry.axis)
 
 
 def keys_turning(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[str, ...]:

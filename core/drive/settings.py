@@ -88,6 +88,7 @@ class DriveSettings:
         limits: of the motor.
         stops: stops to work out.
         balance: what balance is judged by.
+        typed: what a person typed for a number, by its path in core.drive.fields, where that says more than it.
 
     Raises:
         ValueRefused: gravity that is not finite, or something on a shaft that the train has not.
@@ -103,6 +104,7 @@ class DriveSettings:
     limits: MotorLimits = MotorLimits()
     stops: tuple[StopCase, ...] = ()
     balance: BalanceSettings = BalanceSettings()
+    typed: tuple[tuple[str, str], ...] = ()
 
     def __post_init__(self) -> None:
         for value in np.asarray(self.gravity, dtype=float).tolist():

@@ -16,6 +16,7 @@ from core.quantity.coordinates import Triple, parse_axis, parse_triple
 from core.quantity.expression import Names, Understood, measure, parse, parse_number
 from core.quantity.formatting import MINUS, NO_VALUE, compact, decimals_for, fixed, for_clipboard, significant
 from core.quantity.names import check_name, names_in, with_names_changed
+from core.quantity.readings import Readings
 from core.quantity.unit_sets import DEFAULT_UNITS, UNIT_SETS, UnitSet, parse_unit_set
 from core.quantity.unit_text import unit_named
 from core.quantity.units import GRAVITY, UNITS, UNITS_BY_KIND, Kind, Unit, families
@@ -30,6 +31,7 @@ __all__ = [
     "UNIT_SETS",
     "Kind",
     "Names",
+    "Readings",
     "Triple",
     "Understood",
     "Unit",

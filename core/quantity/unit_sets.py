@@ -50,10 +50,12 @@ class UnitSet:
 _NAMED_BY: Final = (Kind.LENGTH, Kind.MASS, Kind.INERTIA)
 
 _METRIC: Final = (
-    "mm mm² cm³ kg kg/m³ kg/m² kg/m kg·m² g·mm N N·m J W ° rpm rad/s² m/s m/s² s",
-    "m m² m³ kg kg/m³ kg/m² kg/m kg·m² kg·m N N·m J W ° rad/s rad/s² m/s m/s² s",
+    "mm mm² cm³ kg kg/m³ kg/m² kg/m kg·m² g·mm N N·m J W ° rpm rad/s² rad/s³ N·m·s/rad m/s m/s² s",
+    "m m² m³ kg kg/m³ kg/m² kg/m kg·m² kg·m N N·m J W ° rad/s rad/s² rad/s³ N·m·s/rad m/s m/s² s",
 )
-_INCH: Final = "in in² in³ lb lb/in³ lb/ft² lb/ft lb·in² oz·in lbf lbf·in ft·lbf hp ° rpm rad/s² in/s in/s² s"
+_INCH: Final = (
+    "in in² in³ lb lb/in³ lb/ft² lb/ft lb·in² oz·in lbf lbf·in ft·lbf hp ° rpm rad/s² rad/s³ lbf·in·s/rad in/s in/s² s"
+)
 
 
 def _set(name: str, symbols: str, **changed: str) -> UnitSet:

@@ -58,6 +58,8 @@ class Kind(StrEnum):
     ANGLE = "angle"
     SPEED = "speed of rotation"
     ANGULAR_ACCELERATION = "angular acceleration"
+    ANGULAR_JERK = "angular jerk"
+    VISCOUS_FRICTION = "viscous friction"
     VELOCITY = "velocity"
     ACCELERATION = "acceleration"
     TIME = "time"
@@ -81,6 +83,8 @@ DIMENSIONS: Final[Mapping[Kind, Dimension]] = MappingProxyType({
     Kind.ANGLE: (0, 0, 0, 1),
     Kind.SPEED: (0, 0, -1, 1),
     Kind.ANGULAR_ACCELERATION: (0, 0, -2, 1),
+    Kind.ANGULAR_JERK: (0, 0, -3, 1),
+    Kind.VISCOUS_FRICTION: (2, 1, -1, -1),
     Kind.VELOCITY: (1, 0, -1, 0),
     Kind.ACCELERATION: (1, 0, -2, 0),
     Kind.TIME: (0, 0, 1, 0),
@@ -251,6 +255,16 @@ _ROWS: Final[Mapping[Kind, _Rows]] = MappingProxyType({
         ("rad/s²", PLAIN, ONE),
         ("°/s²", PLAIN, DEGREE),
         ("rev/s²", PLAIN, TURN),
+    ),
+    Kind.ANGULAR_JERK: (
+        ("rad/s³", PLAIN, ONE),
+        ("°/s³", PLAIN, DEGREE),
+        ("rev/s³", PLAIN, TURN),
+    ),
+    Kind.VISCOUS_FRICTION: (
+        ("N·m·s/rad", METRIC, ONE),
+        ("N·m/rpm", METRIC, 60 / TURN),
+        ("lbf·in·s/rad", INCH_POUND, POUND_FORCE * INCH),
     ),
     Kind.VELOCITY: (
         ("m/s", METRIC, ONE),

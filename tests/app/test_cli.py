@@ -17,6 +17,7 @@ from core.assembly import Assembly, DataSheet, Group, KnownAxial, MeshBody, Part
 from core.assembly.assembly import MeantOverlap
 from core.document import save_document
 from core.handover.answer import KEYS
+from core.machine import Machine
 from core.material import ByDensity, ByMaterial
 from core.mesh import MeshAsset
 from core.placement import Pose, Ring
@@ -41,9 +42,9 @@ def folder(tmp_path, monkeypatch):
     monkeypatch.chdir(tmp_path)
     for name in ("DISPLAY", "WAYLAND_DISPLAY", "QT_QPA_PLATFORM"):
         monkeypatch.delenv(name, raising=False)
-    save_document(assembly(), tmp_path / "dial.masswright")
+    save_document(Machine(assembly()), tmp_path / "dial.masswright")
     blank = Part("n", "not weighed", ShapeBody(SHAPES["sphere"].of({"diameter": 0.1})))
-    save_document(assembly().inserted(blank), tmp_path / "blank.masswright")
+    save_document(Machine(assembly().inserted(blank)), tmp_path / "blank.masswright")
     (tmp_path / "cube.stl").write_bytes(binary_stl(box(20, 20, 20)))
     return tmp_path
 
@@ -79,8 +80,8 @@ def test_a_document_is_answered_with_its_total_its_ledger_and_its_checks(run):
 def test_an_overlap_is_named_and_fails_unless_it_is_meant(run, folder):
     cube = assembly().node("c")
     sunk = assembly().replaced(replace(cube, pose=Pose((0.0, 0.0, 0.015))))
-    save_document(sunk, folder / "sunk.masswright")
-    save_document(sunk.with_meant(MeantOverlap("c", "p", "c")), folder / "meant.masswright")
+    save_document(Machine(sunk), folder / "sunk.masswright")
+    save_document(Machine(sunk.with_meant(MeantOverlap("c", "p", "c"))), folder / "meant.masswright")
     status, out, err = run("weigh", "sunk.masswright", "--format", "json")
     # 5 mm of a cube of 20 mm: 2000 mm³ of steel, 0.0157 kg.
     sentence = "plate: cube penetrates it, 2000 mm³; counted twice: 0.0157 kg"
@@ -95,7 +96,7 @@ def test_an_overlap_is_named_and_fails_unless_it_is_meant(run, folder):
 
 def test_overlaps_are_not_looked_for_in_a_document_of_very_many_bodies(run, folder):
     many = assembly().node("q")
-    save_document(assembly().replaced(replace(many, copies=Ring(2001))), folder / "many.masswright")
+    save_document(Machine(assembly().replaced(replace(many, copies=Ring(2001)))), folder / "many.masswright")
     status, out, _ = run("weigh", "many.masswright", "--format", "json")
     texts = [check["text"] for check in json.loads(out)["checks"] if check["name"] == "overlap"]
     assert status == 0

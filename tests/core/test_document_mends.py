@@ -9,6 +9,7 @@ from mesh_files import binary_stl, box
 
 from core.assembly import Assembly, MeshBody, Part
 from core.document import read_document, save_document
+from core.machine import Machine
 from core.mesh import MeshAsset
 
 OVERLAPPING = binary_stl(np.concatenate([box(40, 30, 20), box(40, 30, 20, at=(20, 0, 0))]))
@@ -16,8 +17,8 @@ OVERLAPPING = binary_stl(np.concatenate([box(40, 30, 20), box(40, 30, 20, at=(20
 
 def saved_and_read(asset: MeshAsset, path) -> MeshAsset:
     part = Part("a", "bracket", MeshBody(asset, 1e-3))
-    save_document(Assembly("dial", (part,)), path)
-    return read_document(path).members[0].body.asset
+    save_document(Machine(Assembly("dial", (part,))), path)
+    return read_document(path).assembly.members[0].body.asset
 
 
 def test_mends_and_the_source_of_a_mesh_come_back(tmp_path):
@@ -45,8 +46,8 @@ def test_equal_bytes_with_and_without_mends_stay_two_meshes(tmp_path):
     assert turned_twice != asset
     parts = tuple(Part(key, key, MeshBody(one, 1e-3)) for key, one in (("a", asset), ("b", turned_twice)))
     path = tmp_path / "dial.masswright"
-    save_document(Assembly("dial", parts), path)
-    assert [part.body.asset for part in read_document(path).members] == [asset, turned_twice]
+    save_document(Machine(Assembly("dial", parts)), path)
+    assert [part.body.asset for part in read_document(path).assembly.members] == [asset, turned_twice]
 
 
 def test_a_part_says_what_was_mended():

@@ -14,6 +14,7 @@ from documents import dial, saved
 from core.assembly import Assembly, Part, ShapeBody
 from core.document import read_document, save_document
 from core.errors import DocumentError, FileRefused
+from core.machine import Machine
 from core.placement import Pose
 from core.shapes import Cylinder
 
@@ -30,7 +31,7 @@ def test_a_folder_is_refused_on_reading_and_on_saving(tmp_path):
         read_document(tmp_path)
     assert str(refusal.value) == f"{tmp_path}: this is a folder, not a document. Choose a .masswright file."
     with pytest.raises(DocumentError) as refusal:
-        save_document(dial(), tmp_path)
+        save_document(Machine(dial()), tmp_path)
     assert str(refusal.value) == (
         f"{tmp_path}: not saved, because a folder has this name; read Is a directory. Choose another name."
     )
@@ -79,7 +80,7 @@ def test_a_failed_save_says_why_and_leaves_the_old_file_as_it_was(tmp_path, monk
     with monkeypatch.context() as patch:
         refuse(patch, step, number)
         with pytest.raises(DocumentError) as refusal:
-            save_document(Assembly("another"), path)
+            save_document(Machine(Assembly("another")), path)
     assert str(refusal.value) == f"{path}: {sentence}"
     assert path.read_bytes() == before
     assert [entry.name for entry in tmp_path.iterdir()] == ["start.masswright"]
@@ -94,7 +95,7 @@ def test_an_interrupt_leaves_the_old_file_and_nothing_beside_it(tmp_path, monkey
     with monkeypatch.context() as patch:
         patch.setattr("os.fsync", interrupted)
         with pytest.raises(KeyboardInterrupt):
-            save_document(Assembly("another"), tmp_path / "start.masswright")
+            save_document(Machine(Assembly("another")), tmp_path / "start.masswright")
     assert (tmp_path / "start.masswright").read_bytes() == before
     assert len(list(tmp_path.iterdir())) == 1
 
@@ -110,7 +111,7 @@ def test_the_old_file_stays_in_place_until_the_new_one_lies_on_the_disk(tmp_path
         real(handle)
 
     monkeypatch.setattr("os.fsync", watched)
-    save_document(Assembly("another"), path)
+    save_document(Machine(Assembly("another")), path)
     # First the new file, beside the old one; then the folder, once the new one has its name.
     assert seen == [(True, False), (False, True)]
 
@@ -118,7 +119,7 @@ def test_the_old_file_stays_in_place_until_the_new_one_lies_on_the_disk(tmp_path
 def test_a_folder_that_is_not_there_is_refused(tmp_path):
     path = tmp_path / "no" / "dial.masswright"
     with pytest.raises(DocumentError) as refusal:
-        save_document(dial(), path)
+        save_document(Machine(dial()), path)
     assert str(refusal.value) == (
         f"{path}: not saved, because there is no such folder; read No such file or directory. Choose another folder."
     )
@@ -130,7 +131,7 @@ def test_a_write_protected_file_is_not_replaced(tmp_path, monkeypatch):
     # The super-user may write everything, so the answer is given for the user.
     monkeypatch.setattr("os.access", lambda _path, mode: mode != os.W_OK)
     with pytest.raises(DocumentError) as refusal:
-        save_document(Assembly("another"), path)
+        save_document(Machine(Assembly("another")), path)
     assert str(refusal.value) == (
         f"{path}: not saved, because it may not be written there; read Permission denied. Save it somewhere else."
     )
@@ -141,7 +142,7 @@ def test_saving_keeps_the_permissions_of_the_file_it_replaces(tmp_path):
     saved(tmp_path)
     path = tmp_path / "start.masswright"
     path.chmod(0o640)
-    save_document(Assembly("another"), path)
+    save_document(Machine(Assembly("another")), path)
     assert stat.S_IMODE(path.stat().st_mode) == 0o640
 
 
@@ -154,12 +155,12 @@ def test_a_new_file_has_the_permissions_that_the_user_gives_new_files(tmp_path):
 
 def test_saving_through_a_link_keeps_the_link(tmp_path):
     (tmp_path / "deep").mkdir()
-    save_document(dial(), tmp_path / "deep" / "real.masswright")
+    save_document(Machine(dial()), tmp_path / "deep" / "real.masswright")
     link = tmp_path / "link.masswright"
     link.symlink_to(tmp_path / "deep" / "real.masswright")
-    save_document(Assembly("another"), link)
+    save_document(Machine(Assembly("another")), link)
     assert link.is_symlink()
-    assert read_document(tmp_path / "deep" / "real.masswright") == Assembly("another")
+    assert read_document(tmp_path / "deep" / "real.masswright").assembly == Assembly("another")
 
 
 @pytest.mark.parametrize(
@@ -179,7 +180,7 @@ def test_what_could_not_be_read_again_is_not_saved(tmp_path, assembly, sentence)
     before = saved(tmp_path)
     path = tmp_path / "start.masswright"
     with pytest.raises(DocumentError) as refusal:
-        save_document(assembly, path)
+        save_document(Machine(assembly), path)
     assert str(refusal.value) == f"start.masswright, {sentence}"
     assert path.read_bytes() == before
 

@@ -16,6 +16,7 @@ import pytest
 
 from core.assembly import Assembly, DriveAxis, Group, Line, Part, ShapeBody, ledger_of
 from core.document import read_document, save_document
+from core.machine import Machine
 from core.material import ByDensity, PerArea, PerLength, Weighed
 from core.placement import Copies, Mirrored, Pose, Ring, Row, Several
 from core.shapes import SHAPES
@@ -38,8 +39,8 @@ def read_off(tmp_path: Path) -> Callable[..., dict[str, Line]]:
 
     def lines_of(*members: Node, point: tuple = (0.0, 0.0, 0.0), direction: tuple = (0.0, 0.0, 1.0)) -> dict[str, Line]:
         assembly = Assembly("example", members, (DriveAxis("Axis", point, direction),), "Axis")
-        save_document(assembly, tmp_path / "example.masswright")
-        back = read_document(tmp_path / "example.masswright")
+        save_document(Machine(assembly), tmp_path / "example.masswright")
+        back = read_document(tmp_path / "example.masswright").assembly
         assert back == assembly
         ledger = ledger_of(back)
         return {**{line.name: line for line in ledger.lines}, "total": ledger.total}
@@ -241,8 +242,8 @@ def test_a_plate_bent_at_a_right_angle_has_all_three_products_of_inertia(tmp_pat
     metal = PerArea(70.0)
     a = part("A", "thin sheet", metal, (0.0, 0.0625, 0.050), (0.0, QUARTER, 0.0), length_x=0.100, length_y=0.125)
     b = part("B", "thin sheet", metal, (0.0375, 0.125, 0.075), (QUARTER, 0.0, 0.0), length_x=0.075, length_y=0.150)
-    save_document(Assembly("bent plate", (Group("p", "plate", (a, b)),)), tmp_path / "bent.masswright")
-    back = read_document(tmp_path / "bent.masswright")
+    save_document(Machine(Assembly("bent plate", (Group("p", "plate", (a, b)),))), tmp_path / "bent.masswright")
+    back = read_document(tmp_path / "bent.masswright").assembly
     lines = {line.name: line for line in ledger_of(back).lines}
     assert (lines["A"].mass, lines["B"].mass) == (pytest.approx(0.875), pytest.approx(0.7875))
     tensor = back.total.inertia_about_point((0, 0, 0))

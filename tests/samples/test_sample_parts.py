@@ -31,7 +31,7 @@ def script():
 
 @pytest.fixture(scope="module")
 def dial():
-    return read_document(FOLDER / "indexing_dial.masswright")
+    return read_document(FOLDER / "indexing_dial.masswright").assembly
 
 
 @pytest.fixture(scope="module")

@@ -30,6 +30,7 @@ from app.window.session import Session
 from app.window.style import GRID, Words, heading_font
 from core.assembly import Assembly, Driver, Part, ShapeBody, ledger_of
 from core.errors import MasswrightError
+from core.machine import Machine
 from core.material import NotSet
 from core.quantity import Kind
 
@@ -183,7 +184,7 @@ class Maker(QWidget):
         draft = Session(self)
         draft.units, draft.decimal_mark = self._session.units, self._session.decimal_mark
         real = self._session.assembly
-        draft.take(Assembly(real.name, (part,), real.axes, real.drive, names=real.names), None)
+        draft.take(Machine(Assembly(real.name, (part,), real.axes, real.drive, names=real.names)), None)
         draft.select(frozenset({DRAFT}))
         draft.changed.connect(self._show)
         draft.refused.connect(self._refuse)

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 import pytest
 
 pytest.importorskip("PySide6.QtWidgets")
+from core.machine import Machine
 
 if TYPE_CHECKING:
     from PySide6.QtWidgets import QApplication
@@ -43,7 +44,7 @@ def filled(window: MainWindow) -> MainWindow:
     """Show a window with the dial in it, saved as far as it knows."""
     from window_driver import dial
 
-    window.session.take(dial(), None)
+    window.session.take(Machine(dial()), None)
     return window
 
 

@@ -167,7 +167,7 @@ def test_names_are_saved_with_the_document_and_there_again_when_it_is_opened(fil
     select(filled, "plate")
     enter(field(filled.part, "diameter"), "plate_d")
     assert filled.session.save(tmp_path / "dial.masswright")
-    assert read_document(tmp_path / "dial.masswright") == filled.session.assembly
+    assert read_document(tmp_path / "dial.masswright").assembly == filled.session.assembly
     filled.session.start_new()
     assert filled.session.open(tmp_path / "dial.masswright")
     assert [row[:3] for row in shown(opened(filled))] == [["plate_d", "400 mm", "400 mm"]]

@@ -10,6 +10,7 @@ from window_driver import dial, enter
 
 from app.window.fields import QuantityField
 from app.window.pages.part_cuts import CutsSection
+from core.machine import Machine
 
 pytestmark = pytest.mark.gui
 ALUMINIUM_OR_STEEL = 7850.0
@@ -18,7 +19,7 @@ ALUMINIUM_OR_STEEL = 7850.0
 @pytest.fixture
 def plate(window):
     """Show the dial with its plate selected, and return the section of its cuts."""
-    window.session.take(dial(), None)
+    window.session.take(Machine(dial()), None)
     window.session.select(frozenset({"plate"}))
     window.pages.setCurrentWidget(window.part)
     return lambda: next(section for section in window.part._sections if isinstance(section, CutsSection))

@@ -23,6 +23,7 @@ from window_driver import (
 )
 
 from core.assembly import Assembly, DataSheet, KnownAxial, KnownTensor
+from core.machine import Machine
 from core.material import ByDensity, ByMaterial, NotSet, Weighed, material
 from core.placement import Mirrored, Ring, Row
 from core.shapes import SHAPES
@@ -155,7 +156,7 @@ def test_typed_arithmetic_without_a_unit_does_not_change_its_meaning_with_the_un
 
 
 def test_an_edit_that_the_shape_cannot_take_leaves_the_old_value(window):
-    window.session.take(Assembly("one", (solid("tube", "tube", outer_diameter=50, bore=30, length=10),)), None)
+    window.session.take(Machine(Assembly("one", (solid("tube", "tube", outer_diameter=50, bore=30, length=10),))), None)
     window.session.select(frozenset({"tube"}))
     window.pages.setCurrentWidget(window.part)
     line = field(window.part, "bore")
@@ -172,7 +173,7 @@ def test_a_text_still_being_typed_is_saved_with_the_document(plate, tmp_path):
     plate.session.path = tmp_path / "dial.masswright"
     enter(field(plate.part, "diameter"), "310", end=None)
     trigger(plate, "File", "Save")
-    assert read_document(tmp_path / "dial.masswright").node("plate").body.shape.values()["diameter"] == pytest.approx(0.31)
+    assert read_document(tmp_path / "dial.masswright").assembly.node("plate").body.shape.values()["diameter"] == pytest.approx(0.31)
 
 
 # --- what says the mass ----------------------------------------------------------------------------------------
@@ -243,7 +244,7 @@ def test_position_and_turn_are_edits_with_their_names(plate):
 
 
 def test_six_bolts_on_a_pitch_circle_weigh_six_times_one_and_carry_their_transfer_term(window):
-    window.session.take(Assembly("one", (solid("bolt", "cylinder", (0.15, 0, 0), diameter=20, length=30),)), None)
+    window.session.take(Machine(Assembly("one", (solid("bolt", "cylinder", (0.15, 0, 0), diameter=20, length=30),))), None)
     window.session.select(frozenset({"bolt"}))
     choose(choice(window, "How it repeats"), "ring, on a pitch circle")
     assert isinstance(window.session.assembly.node("bolt").copies, Ring)

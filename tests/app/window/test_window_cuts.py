@@ -10,6 +10,7 @@ from window_driver import cell, choose, keys, text_of, type_cell
 
 from core.assembly import Assembly, Cut, Part, ShapeBody
 from core.errors import EditRefused
+from core.machine import Machine
 from core.material import ByDensity
 from core.placement import Mirrored, Pose, Ring
 from core.shapes import Cylinder
@@ -24,7 +25,7 @@ def cut(window):
     holes = Cut("holes", "holes", Cylinder(0.01, 0.04), Pose((0.2, 0.0, -0.01)), Ring(6))
     plate = Part("plate", "plate", ShapeBody(Cylinder(0.5, 0.02)), ByDensity(2700.0), cuts=(bore, holes))
     pin = Part("pin", "pin", ShapeBody(Cylinder(0.01, 0.05)), ByDensity(7850.0), Pose((0.1, 0.0, 0.0)))
-    window.session.take(Assembly("dial", (plate, pin)), None)
+    window.session.take(Machine(Assembly("dial", (plate, pin))), None)
     return window
 
 

@@ -19,6 +19,7 @@ from app.window import autosave
 from app.window.settings import Settings
 from app.window.start import SAMPLE
 from core.document import read_document, save_document
+from core.machine import Machine
 
 if TYPE_CHECKING:
     from pathlib import Path
@@ -29,7 +30,7 @@ pytestmark = pytest.mark.gui
 @pytest.fixture
 def saved(tmp_path):
     path = tmp_path / "dial & co.masswright"
-    save_document(dial(), path)
+    save_document(Machine(dial()), path)
     return path
 
 
@@ -67,7 +68,7 @@ def test_saving_writes_where_the_document_is_and_clears_the_mark(dirty, saved):
     assert dirty.isWindowModified()
     QTest.keyClick(dirty, Qt.Key.Key_S, Qt.KeyboardModifier.ControlModifier)
     assert not dirty.isWindowModified()
-    assert "hub" not in read_document(saved)
+    assert "hub" not in read_document(saved).assembly
     assert dirty.told.text() == "Saved dial & co.masswright"
     dirty.undo()
     assert dirty.isWindowModified()
@@ -84,7 +85,7 @@ def test_a_new_document_asks_where_and_gets_the_ending(window, tmp_path):
     box.fileSelected.emit(str(tmp_path / "dial v1.2"))
     box.reject()
     assert window.session.path == tmp_path / "dial v1.2.masswright"
-    assert len(read_document(window.session.path).members) == 1
+    assert len(read_document(window.session.path).assembly.members) == 1
 
 
 def test_a_file_that_the_user_did_not_choose_is_not_replaced(window, saved):
@@ -123,14 +124,14 @@ def test_do_not_save_leaves_the_file_and_goes_on(dirty, saved):
     trigger(dirty, "File", "New")
     press(dialog(dirty), "Do not save")
     assert names(dirty) == []
-    assert "hub" in read_document(saved)
+    assert "hub" in read_document(saved).assembly
 
 
 def test_save_saves_and_goes_on(dirty, saved):
     trigger(dirty, "File", "New")
     press(dialog(dirty), "Save")
     assert names(dirty) == []
-    assert "hub" not in read_document(saved)
+    assert "hub" not in read_document(saved).assembly
 
 
 def test_save_of_a_new_document_goes_on_only_once_a_place_was_chosen(window, tmp_path):
@@ -161,7 +162,7 @@ def test_closing_with_unsaved_work_asks_once(dirty, saved, answer, closes):
     press(box, answer)
     assert dirty.isVisible() is not closes
     assert no_dialog(dirty)
-    assert ("hub" in read_document(saved)) is (answer != "Save")
+    assert ("hub" in read_document(saved).assembly) is (answer != "Save")
 
 
 def test_closing_without_changes_asks_nothing_and_remembers_how_the_window_stood(window):
@@ -184,17 +185,17 @@ def test_text_still_being_typed_counts_as_unsaved_work_on_closing(window, saved)
     enter(field(window.part, "diameter"), "77", end=None)
     window.close()
     press(dialog(window), "Save")
-    assert read_document(saved).node("hub").body.shape.values()["diameter"] == pytest.approx(0.077)
+    assert read_document(saved).assembly.node("hub").body.shape.values()["diameter"] == pytest.approx(0.077)
 
 
 def damaged(path: Path, how: str) -> Path:
     if how == "no document":
         path.write_text("a letter")
     elif how == "damaged":
-        save_document(dial(), path)
+        save_document(Machine(dial()), path)
         path.write_bytes(path.read_bytes()[:-200])
     elif how == "from the future":
-        save_document(dial(), path)
+        save_document(Machine(dial()), path)
         with zipfile.ZipFile(path) as archive:
             text = archive.read("assembly.json").decode()
         import json
@@ -289,7 +290,7 @@ def test_the_work_is_written_within_ten_seconds_and_removed_once_it_is_saved(win
     path = autosave.folder() / f"{os.getpid()}.masswright"
     qtbot.waitUntil(path.is_file)
     qtbot.waitUntil(window.files.autosave._running.done)
-    assert len(read_document(path).members) == 2
+    assert len(read_document(path).assembly.members) == 2
     window.files.save_under(tmp_path / "two.masswright")
     qtbot.waitUntil(lambda: not path.exists())
 
@@ -306,7 +307,7 @@ def left_by_a_crash():
     ended = subprocess.Popen([sys.executable, "-c", ""])
     ended.wait()
     path = autosave.folder() / f"{ended.pid}.masswright"
-    save_document(dial(), path)
+    save_document(Machine(dial()), path)
     return path
 
 
@@ -325,7 +326,7 @@ def test_work_left_by_a_crash_is_offered_and_opened_as_unsaved(left_by_a_crash, 
     assert window.session.unsaved
     assert not window.notice.isVisible()
     qtbot.waitUntil(lambda: not left_by_a_crash.exists())
-    assert read_document(autosave.folder() / f"{os.getpid()}.masswright").node("plate")
+    assert read_document(autosave.folder() / f"{os.getpid()}.masswright").assembly.node("plate")
 
 
 def test_recovery_asks_before_it_takes_the_place_of_unsaved_work(left_by_a_crash, window):

@@ -8,6 +8,7 @@ from window_driver import box_facets, dial, dialog, enter, names, write_stl
 
 from core.assembly import Group, MeshBody
 from core.document import save_document
+from core.machine import Machine
 
 pytestmark = pytest.mark.gui
 MM, INCH = 1e-3, 0.0254
@@ -119,7 +120,7 @@ def test_a_part_whose_file_is_gone_is_left_alone(window, qtbot, tmp_path):
 def test_a_large_document_is_opened_off_the_windows_thread(window, qtbot, tmp_path, monkeypatch):
     monkeypatch.setattr("app.window.files.OPENED_AT_ONCE", 100)
     path = tmp_path / "dial.masswright"
-    save_document(dial(), path)
+    save_document(Machine(dial()), path)
     window.files.open_path(path)
     assert names(window) == []
     assert window.notice.words.text() == "Opening dial.masswright …"

@@ -20,6 +20,7 @@ from window_driver import (
 from app.window.ledger.columns import COLUMNS, INDEX
 from app.window.style import Words
 from core.assembly import Assembly
+from core.machine import Machine
 
 pytestmark = pytest.mark.gui
 MOVE = Qt.DropAction.MoveAction
@@ -90,7 +91,7 @@ def test_columns_are_chosen_moved_and_remembered_with_their_foot(filled):
 
 
 def test_every_figure_of_the_foot_stands_below_its_column_beside_a_scroll_bar(window, qtbot):
-    window.session.take(Assembly("long", tuple(solid(f"pin {at}", "cylinder", diameter=9, length=9) for at in range(300))), None)
+    window.session.take(Machine(Assembly("long", tuple(solid(f"pin {at}", "cylinder", diameter=9, length=9) for at in range(300)))), None)
     window.resize(1280, 720)
     qtbot.waitUntil(window.ledger.tree.verticalScrollBar().isVisible)
     QApplication.processEvents()
@@ -104,7 +105,7 @@ def test_every_figure_of_the_foot_stands_below_its_column_beside_a_scroll_bar(wi
 
 
 def test_three_hundred_lines_are_edited_at_once(window):
-    window.session.take(Assembly("long", tuple(solid(f"pin {at}", "cylinder", diameter=9, length=9) for at in range(300))), None)
+    window.session.take(Machine(Assembly("long", tuple(solid(f"pin {at}", "cylinder", diameter=9, length=9) for at in range(300)))), None)
     type_cell(window, "pin 250", "count", "3")
     assert window.session.ledger.total.mass == pytest.approx(302 * 7850 * math.pi * 0.0045**2 * 0.009, rel=1e-12)
 
@@ -123,7 +124,7 @@ def test_a_part_without_mass_is_no_row_of_dashes_in_the_status_line(window):
 
 def test_the_status_line_says_mass_inertia_and_checks_and_what_to_do_when_empty(window):
     assert "add a shape" in window.totals.text()
-    window.session.take(dial(), None)
+    window.session.take(Machine(dial()), None)
     total = window.session.ledger.total
     said = window.totals.text().split("   ·   ")
     assert float(said[0].split()[0]) == pytest.approx(total.mass, rel=1e-3)

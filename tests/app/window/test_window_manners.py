@@ -37,6 +37,7 @@ from window_driver import (
 
 from app.window.crash import CrashReporter, log_path
 from app.window.style import Words
+from core.machine import Machine
 
 pytestmark = pytest.mark.gui
 
@@ -133,7 +134,7 @@ def test_the_view_is_drawn_in_software_when_asked_for_and_says_so(qtbot, monkeyp
 
     made = MainWindow()
     qtbot.addWidget(made, before_close_func=lambda each: setattr(each, "_given_up", True))
-    made.session.take(dial(), None)
+    made.session.take(Machine(dial()), None)
     made.show()
     qtbot.waitExposed(made)
     assert isinstance(made.view.canvas, SoftView)

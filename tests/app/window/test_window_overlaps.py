@@ -12,6 +12,7 @@ from window_driver import solid
 from app.window import overlap_watch
 from core.assembly import Assembly
 from core.errors import Cancelled
+from core.machine import Machine
 from core.placement import Pose
 
 pytestmark = pytest.mark.gui
@@ -32,7 +33,7 @@ def soon(monkeypatch):
 
 @pytest.fixture
 def searched(soon, window, qtbot):  # noqa: ARG001  (it is made before the window)
-    window.session.take(pressed(), None)
+    window.session.take(Machine(pressed()), None)
     qtbot.waitUntil(lambda: window.session.overlaps is not None)
     return window
 
@@ -110,7 +111,7 @@ def test_a_search_that_is_overtaken_by_a_change_is_stopped(soon, window, qtbot, 
                 raise
 
     monkeypatch.setattr(overlap_watch, "overlaps_of", endless)
-    window.session.take(pressed(), None)
+    window.session.take(Machine(pressed()), None)
     QTest.qWait(100)
     monkeypatch.undo()
     window.session.edit("Delete", lambda before: before.removed(("aside",)))

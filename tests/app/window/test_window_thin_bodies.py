@@ -13,6 +13,7 @@ from window_driver import choose, enter, field
 
 from app.window.pages.part_mass import DRIVERS
 from core.assembly import Assembly, Part, ShapeBody
+from core.machine import Machine
 from core.material import NotSet, PerArea, PerLength, Weighed
 from core.shapes import SHAPES
 
@@ -22,7 +23,7 @@ if TYPE_CHECKING:
 
 def show(window: MainWindow, shape: str, driver: object = None) -> None:
     part = Part("k", "cover", ShapeBody(SHAPES[shape].of({})), driver or NotSet())
-    window.session.take(Assembly("a", (part,)), None)
+    window.session.take(Machine(Assembly("a", (part,))), None)
     window.session.select(frozenset({"k"}))
     window.pages.setCurrentWidget(window.part)
 

@@ -16,6 +16,7 @@ from core.assembly import Assembly, Cut, DriveAxis, Group, Part, ShapeBody, find
 from core.document import read_document, read_document_bytes, save_document
 from core.errors import DocumentError, EditRefused
 from core.handover.answer import answer_of_assembly
+from core.machine import Machine
 from core.material import ByDensity, NotSet, Weighed
 from core.placement import Pose, Ring, Several
 from core.shapes import Box, Cylinder, Extruded
@@ -201,23 +202,23 @@ def test_cuts_of_any_kind_are_read_back_as_they_were_saved(tmp_path_factory, ass
     except EditRefused:
         assume(False)
     before = replace(assembly, members=(*assembly.members, box))
-    save_document(before, path)
-    assert read_document(path) == before
+    save_document(Machine(before), path)
+    assert read_document(path).assembly == before
 
 
 def test_an_outline_that_is_cut_out_is_read_back(tmp_path):
     before = Assembly("a", (plate(cuts=(Cut("s", "slot", Extruded.of({}), Pose((0.05, 0, 0))),)),))
-    save_document(before, tmp_path / "a.masswright")
-    assert read_document(tmp_path / "a.masswright") == before
+    save_document(Machine(before), tmp_path / "a.masswright")
+    assert read_document(tmp_path / "a.masswright").assembly == before
 
 
 def test_a_document_from_before_cuts_is_read_and_one_without_them_says_nothing_of_them(tmp_path):
     path = tmp_path / "a.masswright"
     before = Assembly("a", (plate(cuts=()),))
-    save_document(before, path)
+    save_document(Machine(before), path)
     with zipfile.ZipFile(path) as archive:
         assert b"cuts" not in archive.read("assembly.json")
-    assert read_document(path) == before
+    assert read_document(path).assembly == before
 
 
 @pytest.mark.parametrize(
@@ -234,7 +235,7 @@ def test_a_document_from_before_cuts_is_read_and_one_without_them_says_nothing_o
 )
 def test_a_damaged_cut_is_refused_with_its_place(tmp_path, change, words):
     path = tmp_path / "a.masswright"
-    save_document(Assembly("a", (plate(),)), path)
+    save_document(Machine(Assembly("a", (plate(),))), path)
     data = changed(path, lambda data: change(data["members"][0]["cuts"][1]))
     with pytest.raises(DocumentError) as refusal:
         read_document_bytes(data, "a.masswright")
@@ -243,7 +244,7 @@ def test_a_damaged_cut_is_refused_with_its_place(tmp_path, change, words):
 
 def test_a_cut_that_misses_its_part_is_refused_while_reading(tmp_path):
     path = tmp_path / "a.masswright"
-    save_document(Assembly("a", (plate(),)), path)
+    save_document(Machine(Assembly("a", (plate(),))), path)
     data = changed(path, lambda data: data["members"][0]["cuts"][0]["pose"].update(position=[3.0, 0.0, 0.0]))
     with pytest.raises(DocumentError) as refusal:
         read_document_bytes(data, "a.masswright")
@@ -255,7 +256,7 @@ def test_a_cut_that_misses_its_part_is_refused_while_reading(tmp_path):
 
 def test_more_cuts_than_are_taken_are_refused_while_reading(tmp_path):
     path = tmp_path / "a.masswright"
-    save_document(Assembly("a", (plate(),)), path)
+    save_document(Machine(Assembly("a", (plate(),))), path)
 
     def multiply(data):
         one = data["members"][0]["cuts"][0]

@@ -8,6 +8,7 @@ from mesh_files import binary_stl, box
 
 from core.assembly import Assembly, DriveAxis, Group, Import, MeshBody, Part, change_of, imported, taken_anew
 from core.document import read_document, save_document
+from core.machine import Machine
 from core.material import ByDensity
 from core.mesh import MeshAsset
 
@@ -60,8 +61,8 @@ def test_a_changed_file_is_told_in_numbers_and_taken_anew_on_request() -> None:
 def test_the_document_keeps_where_a_mesh_came_from(tmp_path) -> None:
     body = MeshBody(brick(), 1e-3, origin=str(tmp_path / "brick.stl"))
     path = tmp_path / "a.masswright"
-    save_document(Assembly("a", (Part("p1", "brick", body, STEEL),)), path)
-    assert read_document(path).node("p1").body.origin == body.origin
+    save_document(Machine(Assembly("a", (Part("p1", "brick", body, STEEL),))), path)
+    assert read_document(path).assembly.node("p1").body.origin == body.origin
 
 
 def test_a_mended_mesh_is_still_held_against_the_file_it_came_from() -> None:

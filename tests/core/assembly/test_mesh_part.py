@@ -8,6 +8,7 @@ from core.assembly import Assembly, MeshBody, Part, findings_of
 from core.assembly.mesh_findings import surplus_of
 from core.document import read_document, save_document
 from core.errors import ValueRefused
+from core.machine import Machine
 from core.material import ByDensity
 from core.mesh import MeshAsset
 from core.shapes import Cylinder
@@ -44,8 +45,8 @@ def test_an_open_mesh_cannot_count_as_restored() -> None:
 def test_the_document_keeps_which_values_of_a_mesh_count(tmp_path) -> None:
     part = Part("p1", "bar", MeshBody(bar_mesh(), 1e-3, "restored"), ByDensity(STEEL))
     path = tmp_path / "bar.masswright"
-    save_document(Assembly("bar", (part,)), path)
-    assert read_document(path).node("p1") == part
+    save_document(Machine(Assembly("bar", (part,))), path)
+    assert read_document(path).assembly.node("p1") == part
 
 
 def test_a_part_whose_mesh_holds_overlapping_bodies_has_a_failed_check() -> None:

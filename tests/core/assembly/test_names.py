@@ -16,6 +16,7 @@ from core.assembly.naming import entries_of, uses_of, with_entries, with_entry, 
 from core.document import read_document_bytes, save_document
 from core.errors import DocumentError, EditRefused, MasswrightError, QuantityError
 from core.history import History
+from core.machine import Machine
 from core.material import ByDensity
 from core.placement import Pose, Ring
 from core.quantity import Kind, parse
@@ -135,10 +136,11 @@ def test_a_number_changed_in_another_way_has_let_go_of_its_text():
 
 
 def test_a_change_is_one_step_of_the_history_and_undone_in_one():
-    before = dial()
-    history = History(before).edited("plate_d", with_entry(before, NameEntry("plate_d", "600 mm")))
+    before = Machine(dial())
+    after = before.with_assembly(with_entry(before.assembly, NameEntry("plate_d", "600 mm")))
+    history = History(before).edited("plate_d", after)
     assert history.undone().present is before
-    assert value_of(history.undone().redone().present.node("b"), "dimension.outer_diameter") == 0.6
+    assert value_of(history.undone().redone().present.assembly.node("b"), "dimension.outer_diameter") == 0.6
 
 
 @pytest.mark.parametrize(
@@ -196,14 +198,14 @@ def test_a_name_that_cannot_be_is_no_new_name(old, new, sentence):
 
 
 def test_a_document_keeps_its_names_and_reads_their_values_from_their_texts(tmp_path):
-    save_document(dial(), tmp_path / "dial.masswright")
-    read = read_document_bytes((tmp_path / "dial.masswright").read_bytes())
+    save_document(Machine(dial()), tmp_path / "dial.masswright")
+    read = read_document_bytes((tmp_path / "dial.masswright").read_bytes()).assembly
     assert read == dial()
     assert with_entry(read, NameEntry("plate_d", "500 mm")) == with_entry(dial(), NameEntry("plate_d", "500 mm"))
 
 
 def test_a_document_with_names_that_depend_on_themselves_is_refused(tmp_path):
-    save_document(dial(), tmp_path / "dial.masswright")
+    save_document(Machine(dial()), tmp_path / "dial.masswright")
     entries = unpacked((tmp_path / "dial.masswright").read_bytes())
     entries["assembly.json"] = entries["assembly.json"].replace(b'"text": "400 mm"', b'"text": "rim_d"')
     with pytest.raises(DocumentError, match="plate_d → rim_d → plate_d"):

@@ -25,6 +25,7 @@ from core.document import read_document_bytes, save_document
 from core.errors import EditRefused
 from core.handover import SheetChoice, sheet_of_assembly
 from core.handover.answer import answer_of_assembly
+from core.machine import Machine
 from core.material import ByDensity, NotSet
 from core.placement import Pose, Ring
 from core.quantity import DEFAULT_UNITS
@@ -171,9 +172,9 @@ def test_what_cannot_be_a_variant_is_refused(make, sentence):
 
 
 def test_a_document_keeps_its_variants_and_one_without_them_has_no_such_entries(tmp_path):
-    save_document(machine(FULL), tmp_path / "m.masswright")
-    assert read_document_bytes((tmp_path / "m.masswright").read_bytes()) == machine(FULL)
-    save_document(Assembly("plain", (disc("a"),)), tmp_path / "p.masswright")
+    save_document(Machine(machine(FULL)), tmp_path / "m.masswright")
+    assert read_document_bytes((tmp_path / "m.masswright").read_bytes()).assembly == machine(FULL)
+    save_document(Machine(Assembly("plain", (disc("a"),))), tmp_path / "p.masswright")
     text = (tmp_path / "p.masswright").read_bytes()
     assert not any(word in text for word in (b"variant", b"only_in", b'"names"'))
 
@@ -219,5 +220,5 @@ def test_any_variant_is_the_document_with_the_other_lines_taken_out(assembly):
 @given(varied_assemblies())
 def test_any_document_with_variants_is_read_as_it_was_saved(assembly):
     with TemporaryDirectory() as folder:
-        save_document(assembly, Path(folder) / "m.masswright")
-        assert read_document_bytes((Path(folder) / "m.masswright").read_bytes()) == assembly
+        save_document(Machine(assembly), Path(folder) / "m.masswright")
+        assert read_document_bytes((Path(folder) / "m.masswright").read_bytes()).assembly == assembly

@@ -1,0 +1,136 @@
+"""The document as one value: the assembly, and what is entered about its drive."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from functools import cached_property
+from typing import TYPE_CHECKING
+
+from core.assembly import Assembly, Finding, findings_of
+from core.assembly.names import values_of
+from core.checks import Check
+from core.drive import BalanceAnswer, DriveAnswer, DriveSettings, balance_answer, drive_answer
+from core.drive.naming import drive_uses_of, with_names_read_again, with_names_written_anew
+from core.errors import MasswrightError
+
+if TYPE_CHECKING:
+    from core.drive.naming import DriveUse
+
+_EMPTY = Assembly()
+_NOTHING_ENTERED = DriveSettings()
+
+
+@dataclass(frozen=True)
+class Machine:
+    """Everything a document says.
+
+    Attributes:
+        assembly: the parts, and the axes they turn about.
+        drive: what is entered about the drive; it names lines and axes of the assembly.
+    """
+
+    assembly: Assembly = _EMPTY
+    drive: DriveSettings = _NOTHING_ENTERED
+
+    @property
+    def has_drive(self) -> bool:
+        """Whether anything was entered about the drive."""
+        return self.drive != _NOTHING_ENTERED
+
+    @cached_property
+    def drive_answer(self) -> DriveAnswer:
+        """Everything about torque.
+
+        Raises:
+            ValueRefused, EditRefused: as drive_answer.
+        """
+        return drive_answer(self.assembly, self.drive)
+
+    @cached_property
+    def balance_answer(self) -> BalanceAnswer | None:
+        """Everything about balance; None where nothing that has mass turns with the shaft.
+
+        Raises:
+            ValueRefused, EditRefused: as balance_answer.
+        """
+        return balance_answer(self.assembly, self.drive)
+
+    def findings(self) -> tuple[Finding, ...]:
+        """Return every check on the assembly, and then those on the drive where anything is entered about it.
+
+        Looked for anew each time: what is known of a mesh grows.
+        """
+        found = findings_of(self.assembly)
+        if not self.has_drive:
+            return found
+        return (*found, *(Finding("", "drive", check) for check in self._drive_checks))
+
+    @property
+    def _drive_checks(self) -> tuple[Check, ...]:
+        try:
+            return self.drive_answer.checks
+        except MasswrightError as error:
+            # A part that grew may be too much for a brake: that is found, and does not forbid the part.
+            return (Check("drive", ok=False, text=str(error)),)
+
+    def with_assembly(self, assembly: Assembly) -> Machine:
+        """Return the machine with another assembly; what the drive says of lines, axes and names follows.
+
+        Raises:
+            EditRefused, QuantityError: a named dimension that the drive uses is gone, or has a value it cannot take.
+        """
+        if assembly is self.assembly:
+            return self
+        drive = _following_names(self.drive, self.assembly, assembly)
+        drive = _following_axes(drive, self.assembly, assembly)
+        return Machine(assembly, _without_gone_lines(drive, assembly))
+
+    def with_drive(self, drive: DriveSettings) -> Machine:
+        """Return the machine with other settings of its drive."""
+        return self if drive is self.drive else replace(self, drive=drive)
+
+    def drive_uses_of(self, name: str) -> tuple[DriveUse, ...]:
+        """Return every number of the drive that a named dimension says."""
+        return drive_uses_of(self.drive, values_of(self.assembly.names), {name})
+
+
+def _following_names(drive: DriveSettings, before: Assembly, after: Assembly) -> DriveSettings:
+    if before.names is after.names:
+        return drive
+    changes = _renamed([one.name for one in before.names], [one.name for one in after.names])
+    drive = with_names_written_anew(drive, changes)
+    old = {changes.get(name, name): value for name, value in values_of(before.names).items()}
+    return with_names_read_again(drive, old, values_of(after.names))
+
+
+def _following_axes(drive: DriveSettings, before: Assembly, after: Assembly) -> DriveSettings:
+    """Return the settings about the axes as they are called now; about the drive axis what turned about a gone one."""
+    if before.axes is after.axes:
+        return drive
+    there = [axis.name for axis in after.axes]
+    changes = _renamed([axis.name for axis in before.axes], there)
+    turning = tuple(
+        entry if not entry.axis or (entry.axis in there and entry.axis not in changes)
+        else replace(entry, axis=changes.get(entry.axis, ""))
+        for entry in drive.turning
+    )
+    return drive if turning == drive.turning else replace(drive, turning=turning)
+
+
+def _without_gone_lines(drive: DriveSettings, assembly: Assembly) -> DriveSettings:
+    turning = tuple(entry for entry in drive.turning if not entry.key or entry.key in assembly)
+    if len(turning) != len(drive.turning):
+        drive = replace(drive, turning=turning)
+    motor = drive.train.motor
+    if motor.rotor and motor.rotor not in assembly:
+        drive = replace(drive, train=replace(drive.train, motor=replace(motor, rotor="")))
+    return drive
+
+
+def _renamed(before: list[str], after: list[str]) -> dict[str, str]:
+    """Return the new name by the old one where one entry of a list is called otherwise, at the place it had."""
+    if len(before) != len(after):
+        return {}
+    changed = {old: new for old, new in zip(before, after, strict=True) if old != new}
+    gone, come = set(before) - set(after), set(after) - set(before)
+    return changed if len(changed) == 1 and gone == set(changed) and come == set(changed.values()) else {}
