@@ -36,9 +36,10 @@ def hand_over(document: str, target: str, choice: SheetChoice, units: UnitSet, d
             remedy=f"Choose one of {', '.join(FORMS)}",
         )
     from core.assembly.overlap_findings import overlaps_looked_for
-    from core.document import read_document
+    from core.document import look_at_links, read_document
 
     assembly = read_document(document).assembly
+    look_at_links(assembly)
     sheet, overlaps = sheet_of_assembly(assembly, choice, units), overlaps_looked_for(assembly)
     if form == ".json":
         _write(target, _json_text(assembly, document, overlaps), "utf-8")

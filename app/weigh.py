@@ -136,11 +136,12 @@ def _document(path: str, task: Task) -> Outcome:
         )
     from core.assembly import ledger_of
     from core.assembly.overlap_findings import overlaps_looked_for
-    from core.document import read_document
+    from core.document import look_at_links, read_document
 
     machine = read_document(path)
     machine = machine.with_assembly(_about_asked_axis(machine.assembly, task))
     assembly = machine.assembly
+    look_at_links(assembly)
     overlaps = overlaps_looked_for(assembly)
     complaints = tuple(
         f"check failed: {finding.check.name}: {path}: {finding.check.text}"

@@ -24,6 +24,7 @@ from core.assembly import (
     ShapeBody,
     six_of_tensor,
 )
+from core.assembly.link import Link
 from core.errors import ShapeError
 from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed
 from core.mesh import MeshAsset
@@ -381,10 +382,17 @@ def parts(draw: st.DrawFn, drivers: st.SearchStrategy[Driver] = unset_or_mass_dr
 cuts = st.builds(Cut, st.just(""), TEXTS, solids, poses, several_copies, note=TEXTS)
 
 
+# A step of a path, as a file system takes it and as no shorter way to the same place.
+STEPS = TEXTS.filter(lambda text: text not in {"", ".", ".."} and not set("/\\\0") & set(text))
+absolute_paths = st.lists(STEPS, min_size=1, max_size=4).map(lambda steps: "/" + "/".join(steps))
+links = st.builds(Link, absolute_paths, st.text("0123456789abcdef", min_size=64, max_size=64))
+
+
 def groups(members: st.SearchStrategy[Node]) -> st.SearchStrategy[Node]:
-    """A group that holds up to three of the members."""
+    """A group that holds up to three of the members; now and then as another document's lines."""
     held = st.lists(members, max_size=3).map(tuple)
-    return st.builds(Group, st.just(""), TEXTS, held, poses, several_copies, note=TEXTS)
+    link = st.one_of(st.none(), st.none(), links)
+    return st.builds(Group, st.just(""), TEXTS, held, poses, several_copies, note=TEXTS, link=link)
 
 
 def with_own_keys(members: tuple[Node, ...], stem: str = "n") -> tuple[Node, ...]:

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.assembly.bodies import KnownAxial
+from core.assembly.linked_groups import link_checks
 from core.assembly.mesh_findings import census_checks
 from core.checks import Check, check_body
 
@@ -30,13 +31,14 @@ class Finding:
 
 
 def findings_of(assembly: Assembly) -> tuple[Finding, ...]:
-    """Return every check on every part, in the order of the ledger, and then those on the total."""
+    """Return every check on every part, in the order of the ledger, then on linked files, and those on the total."""
     found = [Finding(part.key, part.name, check) for part in assembly.table.parts for check in part.checks]
     found += [
         Finding(part.key, part.name, check)
         for index, part in enumerate(assembly.table.parts)
         for check in (*census_checks(part), *_oblique(assembly, part, index))
     ]
+    found += [Finding(group.key, group.name, check) for group, check in link_checks(assembly)]
     if assembly.table.parts and len(assembly.without_mass) < len(assembly.table.parts):
         found += [Finding("", assembly.name, check) for check in _total_checks(assembly)]
     return tuple(found)

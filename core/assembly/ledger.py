@@ -8,7 +8,9 @@ from typing import TYPE_CHECKING, Literal, TypeAlias
 import numpy as np
 
 from core.arrays import FloatArray, IntArray, frozen, settled
-from core.assembly.nodes import Part, walk
+from core.assembly.link import LAST_VALUES
+from core.assembly.linked_groups import bases_of
+from core.assembly.nodes import Group, Part, walk
 from core.moments import Moments
 from core.placement import Placement
 
@@ -19,7 +21,7 @@ if TYPE_CHECKING:
 LineKind: TypeAlias = Literal["part", "cut", "group", "total"]
 
 # How the basis of a value begins that a reader must not take as computed.
-WEAK = ("estimated", "no volume", "not set")
+WEAK = ("estimated", "no volume", "not set", LAST_VALUES)
 
 
 @dataclass(frozen=True, eq=False)
@@ -34,8 +36,9 @@ class Line:
         depth: of the node in the tree, 0 outermost; of a cut one more than of its part.
         count: equal copies of it in the group that holds it; of a cut in its part.
         times: equal copies of it in the whole document, the copies of the groups around it multiplied in.
-        material: what says its mass, as shown; of a group or the total only what some of its parts lack; "cut".
-        basis: computed, weighed, data sheet, estimated …, not set.
+        material: what says its mass, as shown; of a group or the total only what some of its parts lack, or the file of
+            a linked group; "cut".
+        basis: computed, weighed, data sheet, estimated …, last values …, not set.
         mass: kg, of all copies; None while it is not known.
         centre: (3,) m, of all copies together, document frame; None while the mass is not known.
         own_inertia: kg·m², Σ over the copies about their own centres, parallel to the drive axis.
@@ -43,6 +46,7 @@ class Line:
         inertia: kg·m², the sum of both: J about the drive axis.
         share: of the total's J, 0…1; None while there is no total.
         counts: whether it is in the chosen variant; where it is not, it has no values.
+        read_only: whether it belongs to the document of a linked group around it.
     """
 
     key: str
@@ -60,6 +64,12 @@ class Line:
     inertia: float | None
     share: float | None
     counts: bool = True
+    read_only: bool = False
+
+    @property
+    def doubtful(self) -> bool:
+        """Whether its values, or some of them, must not be taken as computed."""
+        return self.basis.removeprefix("some ").startswith(WEAK)
 
 
 @dataclass(frozen=True, eq=False)
@@ -73,41 +83,49 @@ class Ledger:
 
 def ledger_of(assembly: Assembly) -> Ledger:
     """Return the ledger about the assembly's drive axis."""
+    heads, spans = _heads(assembly)
+    *lines, foot = _lines(heads, _sums(assembly).over(np.array(spans)))
+    return Ledger(tuple(lines), foot, assembly.drive_axis)
+
+
+def _heads(assembly: Assembly) -> tuple[list[_Head], list[tuple[int, int]]]:
+    """Return the words of every line and of the foot, and the run of rows of `_sums` that each adds up."""
     heads: list[_Head] = []
     spans: list[tuple[int, int]] = []
-    everything = assembly.table.parts
+    known = bases_of(assembly)
+    everything = tuple(known[part.key] for part in assembly.table.parts)
     at, cut_at = 0, len(everything)
     above: list[int] = []
+    linked: list[bool] = []
     counting = {node.key: node for node, _ in walk(assembly.counted.members)}
     for node, depth in walk(assembly.members):
         above[depth:] = [(above[depth - 1] if depth else 1) * node.copies.count]
+        held = depth > 0 and linked[depth - 1]
         counted = counting.get(node.key)
-        inside = 0
+        here, inside = counted is not None, 0
         if isinstance(node, Part):
-            words = (node.driver.label, node.basis)
-            inside = 0 if counted is None else 1
-        elif counted is None:
-            words = ("", "")
+            linked[depth:] = [held]
+            kind: LineKind = "part"
+            words = (node.driver.label, known.get(node.key, node.basis))
+            inside = 1 if here else 0
         else:
-            parts = counted.table.parts
-            words = (_warning(parts), _common_basis(parts))
-            inside = len(parts)
+            linked[depth:] = [held or node.link is not None]
+            kind = "group"
+            inside = 0 if counted is None else len(counted.table.parts)
+            bases = everything[at : at + inside]
+            words = (_link_words(node) or _warning(bases), _common_basis(bases))
         spans.append((at, at + inside))
-        kind: LineKind = "part" if isinstance(node, Part) else "group"
-        here = counted is not None
-        heads.append(_Head(node.key, node.name, kind, depth, node.copies.count, above[depth], *words, here))
+        heads.append(_Head(node.key, node.name, kind, depth, node.copies.count, above[depth], *words, here, held))
         if not isinstance(node, Part):
             continue
         at += inside
         for cut in node.cuts:
             count, times = cut.copies.count, above[depth] * cut.copies.count
-            heads.append(_Head(cut.key, cut.name, "cut", depth + 1, count, times, "cut", words[1], here))
+            heads.append(_Head(cut.key, cut.name, "cut", depth + 1, count, times, "cut", words[1], here, held))
             spans.append((cut_at, cut_at + inside))
             cut_at += inside
-    spans.append((0, len(everything)))
-    heads.append(_Head("", assembly.name, "total", 0, 1, 1, _warning(everything), _common_basis(everything), True))
-    *lines, foot = _lines(heads, _sums(assembly).over(np.array(spans)))
-    return Ledger(tuple(lines), foot, assembly.drive_axis)
+    foot = (_warning(everything), _common_basis(everything))
+    return [*heads, _Head("", assembly.name, "total", 0, 1, 1, *foot, True, False)], [*spans, (0, len(everything))]
 
 
 @dataclass(frozen=True)
@@ -123,6 +141,7 @@ class _Head:
     material: str
     basis: str
     counts: bool
+    read_only: bool
 
 
 @dataclass(frozen=True, eq=False)
@@ -167,24 +186,34 @@ def _lines(heads: list[_Head], sums: _Sums) -> list[Line]:
     lines = []
     for head, known, *values in rows:
         words = (head.key, head.name, head.kind, head.depth, head.count, head.times, head.material, head.basis)
-        cells = [*(values if known else [None] * len(values)), head.counts]
+        cells = [*(values if known else [None] * len(values)), head.counts, head.read_only]
         lines.append(Line(*words, *cells))
     return lines
 
 
-def _common_basis(parts: tuple[Part, ...]) -> str:
-    """Return the basis of the parts when all have the same one, otherwise the weakest kind among them."""
-    bases = {part.basis for part in parts}
-    if len(bases) <= 1:
-        return bases.pop() if bases else ""
-    weak = sorted(basis for basis in bases if basis.startswith(WEAK))
+def _common_basis(bases: tuple[str, ...]) -> str:
+    """Return the basis of parts when all have the same one, otherwise the weakest kind among them."""
+    kinds = set(bases)
+    if len(kinds) <= 1:
+        return kinds.pop() if kinds else ""
+    weak = sorted(basis for basis in kinds if basis.startswith(WEAK))
     return f"some {weak[0]}" if weak else "mixed"
 
 
-def _warning(parts: tuple[Part, ...]) -> str:
+def _warning(bases: tuple[str, ...]) -> str:
     """Return what some of the parts lack, as shown where a single part names its material."""
-    weak = sum(part.basis.startswith(WEAK) for part in parts)
-    return f"{weak} of {len(parts)} not computed" if weak else ""
+    last = sum(basis.startswith(LAST_VALUES) for basis in bases)
+    weak = sum(basis.startswith(WEAK) for basis in bases) - last
+    words = [f"{weak} of {len(bases)} not computed"] if weak else []
+    return ", ".join([*words, f"{last} of {len(bases)} {LAST_VALUES}"] if last else words)
+
+
+def _link_words(group: Group) -> str:
+    """Return what is said of the file of a linked group; nothing of another group."""
+    if group.link is None:
+        return ""
+    words = {"missing": "missing", "changed": "has changed"}.get(group.link.state)
+    return f"linked: {group.link.file_name}" if words is None else f"{LAST_VALUES}: {group.link.file_name} {words}"
 
 
 def _size(rows: Moments) -> float:

@@ -22,6 +22,7 @@ if TYPE_CHECKING:
     from collections.abc import Iterator
 
     from core.arrays import FloatArray, IntArray
+    from core.assembly.link import Link
     from core.checks import Check
     from core.facets import Facets
     from core.measure import Measure
@@ -197,6 +198,7 @@ class Group:
     Attributes:
         key, name, pose, copies, typed, note, only_in: as of a Part.
         members: in the order of the ledger.
+        link: of a linked group, the document that its members were read from; they are the last values of it.
     """
 
     key: str
@@ -207,6 +209,7 @@ class Group:
     typed: tuple[tuple[str, str], ...] = ()
     note: str = ""
     only_in: tuple[str, ...] = ()
+    link: Link | None = None
 
     @cached_property
     def table(self) -> Table:

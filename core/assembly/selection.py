@@ -5,9 +5,12 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
+from core.assembly.linked_groups import bases_of
 from core.assembly.nodes import table_of
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from core.assembly.assembly import Assembly
     from core.assembly.nodes import Part, Table
 
@@ -19,11 +22,13 @@ class Selection:
     Attributes:
         name: of the node, or of the document.
         table: their bodies as rows, in the document frame.
+        basis_of: where the values of each part come from, by its key; of parts beside the node too.
 
     """
 
     name: str
     table: Table
+    basis_of: Mapping[str, str]
 
     @property
     def parts(self) -> tuple[Part, ...]:
@@ -38,7 +43,7 @@ class Selection:
     @property
     def bases(self) -> tuple[str, ...]:
         """The different bases of its parts, in the order of the ledger."""
-        return tuple(dict.fromkeys(part.basis for part in self.parts))
+        return tuple(dict.fromkeys(self.basis_of[part.key] for part in self.parts))
 
 
 def selected(assembly: Assembly, key: str | None = None) -> Selection:
@@ -50,13 +55,14 @@ def selected(assembly: Assembly, key: str | None = None) -> Selection:
         EditRefused: no node has this key.
 
     """
+    basis_of = bases_of(assembly)
     if key is None:
-        return Selection(assembly.name, assembly.table)
+        return Selection(assembly.name, assembly.table, basis_of)
     name = assembly.node(key).name
     counted = assembly.counted
     if key not in counted:
-        return Selection(name, table_of(()))
+        return Selection(name, table_of(()), basis_of)
     table = counted.node(key).table
     for group in reversed(assembly.groups_above(key)):
         table = table.repeated(group.copies.placements(group.pose.placement))
-    return Selection(name, table)
+    return Selection(name, table, basis_of)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import io
+from contextlib import contextmanager
 from dataclasses import replace
 from pathlib import Path
 from typing import IO, TYPE_CHECKING, Any, TypeAlias
@@ -23,10 +24,12 @@ from core.assembly import (
     ShapeBody,
 )
 from core.assembly.assembly import DEEPEST, MeantOverlap
+from core.assembly.link import Link
 from core.assembly.names import NameEntry, evaluated
 from core.document.archive import Archive
 from core.document.drive_data import machine_with
 from core.document.layout import data_of
+from core.document.link_path import path_of
 from core.document.migration import MAJOR, MINOR, Data, migrated
 from core.document.refusing import made_at
 from core.document.validation import checked, short_place
@@ -37,7 +40,7 @@ from core.placement import Copies, Mirrored, Pose, Ring, Row, Several
 from core.shapes import SHAPES, Outline, OutlinedShape, Shape
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Iterator, Sequence
 
     from core.document.schema import (
         AxisEntry,
@@ -69,9 +72,21 @@ def read_document(path: str | Path) -> Machine:
 
     """
     file_path = Path(path)
+    with opened(file_path) as file:
+        return read_document_file(file, file_path)
+
+
+@contextmanager
+def opened(path: Path) -> Iterator[io.BufferedReader]:
+    """Open a document file to be read; what the system refuses then or later is told in a sentence.
+
+    Raises:
+        DocumentError: it cannot be opened or read.
+
+    """
     try:
-        with file_path.open("rb") as file:
-            return _read(file, file_path.name)
+        with path.open("rb") as file:
+            yield file
     except FileNotFoundError as error:
         raise DocumentError(
             "there is no such file", where=str(path), remedy="Look at the name and the folder"
@@ -98,16 +113,39 @@ def read_document_bytes(data: bytes, name: str = "document") -> Machine:
         DocumentError: they are no document, a damaged one, or one of a newer version.
 
     """
-    return _read(io.BytesIO(data), name)
+    return _read(io.BytesIO(data), name, "")
 
 
-def _read(file: IO[bytes], name: str) -> Machine:
+def read_document_file(file: IO[bytes], path: Path) -> Machine:
+    """Return what an open document file holds; linked files are told from the folder of its path.
+
+    Raises:
+        DocumentError: as `read_document_bytes`.
+
+    """
+    return _read(file, path.name, str(path.resolve().parent))
+
+
+def entries_of_document(file: IO[bytes]) -> DocumentEntry:
+    """Return the checked entries of an open document file, without what they describe.
+
+    Raises:
+        DocumentError: it is no document, a damaged one, or one of a newer version.
+
+    """
+    return _entries(Archive(file))
+
+
+def _entries(archive: Archive) -> DocumentEntry:
+    data = migrated(data_of(archive.json()))
+    return checked(data, _REMEDY_NEWER if _is_newer(data) else _REMEDY)
+
+
+def _read(file: IO[bytes], name: str, folder: str) -> Machine:
     try:
         archive = Archive(file)
-        data = migrated(data_of(archive.json()))
-        document = checked(data, _REMEDY_NEWER if _is_newer(data) else _REMEDY)
-        del data  # as large as what is built from it, and not needed for that
-        return machine_with(_Builder(archive).assembly(document), document.drive_settings)
+        document = _entries(archive)
+        return machine_with(_Builder(archive, folder).assembly(document), document.drive_settings)
     except DocumentError as error:
         # Everything below knows the place in the file, and only here is the file's own name known.
         where = f"{name}, {error.where}" if error.where else name
@@ -117,8 +155,9 @@ def _read(file: IO[bytes], name: str) -> Machine:
 class _Builder:
     """Makes the assembly from checked entries; parts share equal meshes, shapes and outlines."""
 
-    def __init__(self, archive: Archive) -> None:
+    def __init__(self, archive: Archive, folder: str) -> None:
         self._archive = archive
+        self._folder = folder
         self._assets: dict[tuple[str, str, tuple[str, ...], str], MeshAsset] = {}
         self._shapes: dict[tuple[str, tuple[tuple[str, float], ...], _Loops | None], ShapeBody] = {}
         self._outlines: dict[_Loops, Outline] = {}
@@ -144,7 +183,9 @@ class _Builder:
         copies = made_at(f"{place}.copies {said}", lambda: _copies(entry.copies))
         if entry.kind == "group":
             members = self._nodes(entry.members, f"{place}.", depth + 1)
-            return Group(entry.key, entry.name, members, pose, copies, typed, entry.note, tuple(entry.only_in))
+            only_in = tuple(entry.only_in)
+            link = None if entry.link is None else Link(path_of(self._folder, entry.link.path), entry.link.sha256)
+            return Group(entry.key, entry.name, members, pose, copies, typed, entry.note, only_in, link)
         driver = made_at(f"{place}.driver {said}", lambda: _driver(entry.driver))
         body = made_at(f"{place}.body {said}", lambda: self._body(entry.body))
         cuts = tuple(self._cut(cut, f"{place}.cuts[{i}] ({cut.name})") for i, cut in enumerate(entry.cuts))

@@ -11,6 +11,7 @@ from typing import IO, TYPE_CHECKING
 
 from core.document.archive import write_archive
 from core.document.layout import json_of
+from core.document.link_path import refuse_to_hold_itself
 from core.document.validation import checked
 from core.document.writing import data_of_machine, meshes_of
 from core.errors import DocumentError
@@ -37,10 +38,11 @@ def save_document(machine: Machine, path: str | Path) -> None:
     """
     target = Path(path)
     try:
-        data = data_of_machine(machine)
+        refuse_to_hold_itself(machine.assembly, target)
+        data = data_of_machine(machine, str(target.resolve().parent))
         checked(data, _REMEDY)
     except DocumentError as error:
-        where = f"{target.name}, {error.where}"
+        where = f"{target.name}, {error.where}" if error.where else target.name
         raise DocumentError(error.what, where=where, read=error.read, remedy=error.remedy) from error
     json, meshes = json_of(data), meshes_of(machine.assembly)
     try:

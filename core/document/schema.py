@@ -224,6 +224,13 @@ class PartEntry(Entry):
     only_in: OnlyIn = Field(default_factory=list)
 
 
+class LinkEntry(Entry):
+    """The document that a linked group was read from: relative to this document's folder, or absolute."""
+
+    path: Text
+    sha256: Annotated[str, Field(pattern=r"^[0-9a-f]{64}$")]
+
+
 class GroupEntry(Entry):
     """Lines that move as one."""
 
@@ -236,6 +243,7 @@ class GroupEntry(Entry):
     copies: CopiesEntry
     members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
     only_in: OnlyIn = Field(default_factory=list)
+    link: LinkEntry | None = None
 
 
 NodeEntry: TypeAlias = Annotated[PartEntry | GroupEntry, Field(discriminator="kind")]

@@ -20,6 +20,7 @@ from core.assembly import (
     walk,
 )
 from core.document.drive_data import data_of_drive
+from core.document.link_path import path_from
 from core.document.migration import MAJOR, MINOR, Data
 from core.material import ByDensity, ByMaterial, PerArea, PerLength, Weighed
 from core.placement import Copies, Mirrored, Pose, Ring, Row
@@ -29,13 +30,18 @@ if TYPE_CHECKING:
     from core.machine import Machine
 
 
-def data_of_machine(machine: Machine) -> Data:
-    """Return everything that the machine says, as the schema has it; meshes by their SHA-256."""
+def data_of_machine(machine: Machine, folder: str) -> Data:
+    """Return everything that the machine says, as the schema has it; meshes by their SHA-256.
+
+    Args:
+        machine: to be written.
+        folder: of the document's file, absolute; linked files are told from there.
+    """
     drive = {"drive_settings": data_of_drive(machine.drive)} if machine.has_drive else {}
-    return {**_data_of_assembly(machine.assembly), **drive}
+    return {**_data_of_assembly(machine.assembly, folder), **drive}
 
 
-def _data_of_assembly(assembly: Assembly) -> Data:
+def _data_of_assembly(assembly: Assembly, folder: str) -> Data:
     meant = [
         {"key_a": mark.key_a, "key_b": mark.key_b, "carried_by": mark.carried_by, "note": mark.note}
         for mark in assembly.meant
@@ -47,7 +53,7 @@ def _data_of_assembly(assembly: Assembly) -> Data:
         "name": assembly.name,
         "drive": assembly.drive,
         "axes": [_axis(axis) for axis in assembly.axes],
-        "members": [_node(node) for node in assembly.members],
+        "members": [_node(node, folder) for node in assembly.members],
     }
 
 
@@ -74,11 +80,18 @@ def _axis(axis: DriveAxis) -> Data:
     return {"name": axis.name, "point": _floats(axis.point), "direction": _floats(axis.direction)}
 
 
-def _node(node: Node) -> Data:
+def _node(node: Node, folder: str) -> Data:
     if isinstance(node, Group):
-        return {**_common(node), "kind": "group", "members": [_node(member) for member in node.members]}
+        members = [_node(member, folder) for member in node.members]
+        return {**_common(node), **_link(node, folder), "kind": "group", "members": members}
     cuts = {"cuts": [{**_common(cut), "shape": _shape(cut.shape)} for cut in node.cuts]} if node.cuts else {}
     return {**_common(node), **cuts, "kind": "part", "body": _body(node.body), "driver": _driver(node.driver)}
+
+
+def _link(group: Group, folder: str) -> Data:
+    if group.link is None:
+        return {}
+    return {"link": {"path": path_from(folder, group.link.path), "sha256": group.link.sha256}}
 
 
 def _common(line: Node | Cut) -> Data:

@@ -96,13 +96,13 @@ def sheet_of_assembly(assembly: Assembly, choice: SheetChoice, unit_set: UnitSet
         EditRefused: no part or group has this key.
 
     """
-    from core.assembly import findings_of
+    from core.assembly import findings_of, walk
     from core.assembly.selection import selected
 
     selection = selected(assembly, key)
     subject = subject_of_assembly(assembly, key)
-    keys = {part.key for part in selection.parts} | ({""} if key is None else {key})
-    checks = [finding.check for finding in findings_of(assembly) if finding.key in keys]
+    keys = {""} if key is None else {node.key for node, _ in walk((assembly.node(key),))}
+    checks = [finding.check for finding in findings_of(assembly) if key is None or finding.key in keys]
     return Sheet(
         title=selection.name,
         entries=lines_of(subject, choice, unit_set),
@@ -187,7 +187,7 @@ def _sources(selection: Selection) -> tuple[Source, ...]:
     by_basis: dict[tuple[str, str], list[Part]] = {}
     for part in selection.parts:
         source = getattr(part.body, "source", "")
-        by_basis.setdefault((part.basis, source or part.driver.label), []).append(part)
+        by_basis.setdefault((selection.basis_of[part.key], source or part.driver.label), []).append(part)
     return tuple(
         Source(basis, f"{source}: {_names(tuple(parts))}" if source else _names(tuple(parts)))
         for (basis, source), parts in by_basis.items()
