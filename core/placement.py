@@ -12,7 +12,7 @@ from typing import ClassVar, TypeAlias
 
 import numpy as np
 
-from core.arrays import ArrayLike, FloatArray, frozen
+from core.arrays import ArrayLike, FloatArray, frozen, settled
 from core.errors import ValueRefused
 from core.moments import Moments, unit_vector
 
@@ -26,6 +26,10 @@ _FULL_TURN_GAP = 1e-9
 
 # Cosine of the turn about y below which y counts as ±90°.
 _UPRIGHT = 1e-12
+
+# Cosine of half the angle below which a turn counts as half a turn, and sine below which directions are parallel.
+_HALF_TURN_GAP = 1e-15
+_PARALLEL = 1e-15
 
 
 @dataclass(frozen=True, eq=False)
@@ -48,6 +52,12 @@ class Placement:
     def identity(cls) -> Placement:
         """Return the placement that leaves every point where it is."""
         return cls(np.eye(3), np.zeros(3))
+
+    @classmethod
+    def about(cls, point: ArrayLike, direction: ArrayLike, angle: ArrayLike) -> Placement:
+        """Return the turns by angles (...) rad about the axis through point (3,) m along direction (3,)."""
+        turns, fixed = turn_about(direction, angle), np.asarray(point, dtype=float)
+        return cls(turns, fixed - turns @ fixed)
 
     def __matmul__(self, inner: Placement) -> Placement:
         """Return the placement that does inner first: tf_a_c = tf_a_b @ tf_b_c."""
@@ -117,6 +127,53 @@ def turns_of_matrix(turn: ArrayLike) -> Triple:
     return float(about_x), float(about_y), float(about_z)
 
 
+def axis_and_angle_of(turn: ArrayLike) -> tuple[FloatArray, float]:
+    """Return the axis (3,), of length one, and the angle from 0 to π rad of a rotation matrix (3, 3).
+
+    Of no turn the axis is z; of half a turn its largest component is positive. Read from the unit quaternion, which
+    is as exact near no turn and near half a turn as anywhere (Shepperd, J. Guidance and Control 1 (1978) 223).
+    """
+    matrix = np.asarray(turn, dtype=float)
+    # Rows: 4·q·(w, x, y, z) for each component q of the quaternion; the row of the largest one is read.
+    xx, yy, zz = matrix.diagonal()
+    wx, wy, wz = matrix[2, 1] - matrix[1, 2], matrix[0, 2] - matrix[2, 0], matrix[1, 0] - matrix[0, 1]
+    xy, xz, yz = matrix[0, 1] + matrix[1, 0], matrix[0, 2] + matrix[2, 0], matrix[1, 2] + matrix[2, 1]
+    rows = np.array([
+        [1 + xx + yy + zz, wx, wy, wz],
+        [wx, 1 + xx - yy - zz, xy, xz],
+        [wy, xy, 1 - xx + yy - zz, yz],
+        [wz, xz, yz, 1 - xx - yy + zz],
+    ])
+    row = rows[rows.diagonal().argmax()]
+    quaternion = row / np.linalg.norm(row)
+    if quaternion[0] < 0:
+        quaternion = -quaternion
+    length = float(np.linalg.norm(quaternion[1:]))
+    if length == 0:
+        return np.array([0.0, 0.0, 1.0]), 0.0
+    axis = quaternion[1:] / length
+    angle = 2 * math.atan2(length, float(quaternion[0]))
+    if quaternion[0] <= _HALF_TURN_GAP and axis[np.abs(axis).argmax()] < 0:
+        axis = -axis
+    return axis, angle
+
+
+def smallest_turn(start: ArrayLike, end: ArrayLike) -> FloatArray:
+    """Return the rotation matrix (3, 3) of the smallest turn that carries one direction (3,) to another, any lengths.
+
+    From a direction to its opposite it is half a turn about the axis, square to it, that is nearest to x, y or z.
+    """
+    one, other = unit_vector(start), unit_vector(end)
+    normal, cosine = np.cross(one, other), float(one @ other)
+    sine = float(np.linalg.norm(normal))
+    if sine > _PARALLEL:
+        return turn_about(normal, math.atan2(sine, cosine))
+    if cosine > 0:
+        return np.eye(3)
+    helper = np.eye(3)[np.abs(one).argmin()]
+    return turn_about(helper - (helper @ one) * one, math.pi)
+
+
 @dataclass(frozen=True)
 class Pose:
     """Where a part or group stands in the frame that holds it, as typed numbers.
@@ -128,6 +185,13 @@ class Pose:
 
     position: Triple = (0.0, 0.0, 0.0)
     turns: Triple = (0.0, 0.0, 0.0)
+
+    @classmethod
+    def of(cls, placement: Placement) -> Pose:
+        """Return the pose that stands as a single placement does, which does not mirror; round-off is left out."""
+        x, y, z = settled(placement.shift, np.abs(placement.shift).max()).tolist()
+        a, b, c = settled(turns_of_matrix(placement.turn), np.pi).tolist()
+        return cls((x, y, z), (a, b, c))
 
     @property
     def placement(self) -> Placement:
@@ -176,9 +240,7 @@ class Ring:
         """Return the placements of all copies, a batch (count,)."""
         closed = abs(abs(self.span) - 2 * np.pi) < _FULL_TURN_GAP
         pitch = self.span / (self.count if closed else max(self.count - 1, 1))
-        turns = turn_about(self.direction, self.start + pitch * np.arange(self.count))
-        point = np.asarray(self.point)
-        round_axis = Placement(turns, point - turns @ point)
+        round_axis = Placement.about(self.point, self.direction, self.start + pitch * np.arange(self.count))
         if self.turning:
             return round_axis @ tf_outer_first
         return Placement(_batch(tf_outer_first, self.count).turn, round_axis.apply(tf_outer_first.shift))

@@ -10,7 +10,7 @@ import numpy as np
 from core.assembly.meeting import is_round
 from core.assembly.nodes import Part
 from core.errors import EditRefused
-from core.placement import Mirrored, Placement, Pose, Ring, Row, Several, turns_of_matrix
+from core.placement import Mirrored, Placement, Pose, Ring, Row, Several
 
 if TYPE_CHECKING:
     from core.assembly.assembly import Assembly
@@ -75,7 +75,7 @@ def _alone(part: Part, index: int) -> Part:
             )
         # A body that is round about z is its own mirror image in x.
         turn = turn @ np.diag([-1.0, 1.0, 1.0])
-    pose = _pose_of(Placement(turn, shift))
+    pose = Pose.of(Placement(turn, shift))
     typed = tuple(pair for pair in part.typed if not pair[0].startswith(("position", "turn", "copies")))
     return replace(part, pose=pose, copies=Several(1), typed=typed)
 
@@ -111,11 +111,6 @@ def _run(part: Part, start: float, pitch: float, first: int, times: int) -> Part
 def _with_copies(part: Part, copies: Copies) -> Part:
     typed = tuple(pair for pair in part.typed if not pair[0].startswith("copies"))
     return replace(part, copies=copies, typed=typed)
-
-
-def _pose_of(standing: Placement) -> Pose:
-    x, y, z = standing.shift.tolist()
-    return Pose((x, y, z), turns_of_matrix(standing.turn))
 
 
 def _meant_too(assembly: Assembly, key: str, fresh: str) -> Assembly:

@@ -22,6 +22,7 @@ if TYPE_CHECKING:
 
     from core.arrays import BoolArray, FloatArray, IntArray
     from core.assembly.assembly import Assembly
+    from core.shapes import Shape
 
 # Relative to the size of the two bodies, and rad: positions nearer than this are one.
 ALIKE = 1e-7
@@ -100,7 +101,12 @@ class Pairs:
 
 def is_round(part: Part) -> bool:
     """Return whether a part looks the same however it is turned about its z axis."""
-    return isinstance(part.body, ShapeBody) and part.body.shape.key in _ROUND and not part.cuts
+    return isinstance(part.body, ShapeBody) and is_round_shape(part.body.shape) and not part.cuts
+
+
+def is_round_shape(shape: Shape) -> bool:
+    """Return whether a shape looks the same however it is turned about its z axis."""
+    return shape.key in _ROUND
 
 
 def bodies_of(assembly: Assembly, parts: tuple[Part, ...]) -> Bodies:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
-from itertools import groupby
+from itertools import groupby, pairwise
 from typing import TYPE_CHECKING, TypeAlias
 
 import numpy as np
@@ -235,6 +235,13 @@ class Table:
     owner: IntArray
     standing: Placement
     moments: Moments
+
+    @cached_property
+    def rows_by_part(self) -> tuple[IntArray, ...]:
+        """The rows of each part's copies, in their order."""
+        order = np.argsort(self.owner, kind="stable")
+        ends = np.searchsorted(self.owner[order], np.arange(len(self.parts) + 1))
+        return tuple(order[first:last] for first, last in pairwise(ends))
 
     def repeated(self, placements: Placement) -> Table:
         """Return the rows as they stand in the outer frame, once for each of the placements, a batch (k,)."""

@@ -20,7 +20,9 @@ from core.placement import (
     Ring,
     Row,
     Several,
+    axis_and_angle_of,
     matrix_of_turns,
+    smallest_turn,
     turn_about,
     turns_of_matrix,
 )
@@ -70,6 +72,84 @@ def test_in_the_upright_position_the_turn_about_x_is_read_as_none():
     about_x, about_y, about_z = turns_of_matrix(matrix_of_turns((0.25, np.pi / 2, 1.0)))
     assert (about_x, about_y) == (0.0, pytest.approx(np.pi / 2, rel=1e-15))
     assert about_z == pytest.approx(0.75, rel=1e-14)
+
+
+@given(directions, st.one_of(ANGLES, st.sampled_from([0.0, 1e-12, 1e-9, 1e-6, 1.0]).map(lambda gap: np.pi - gap)))
+def test_axis_and_angle_are_those_of_the_rotation_vector(direction, angle):
+    matrix = Rotation.from_rotvec(angle * direction / np.linalg.norm(direction)).as_matrix()
+    axis, found = axis_and_angle_of(matrix)
+    assert 0 <= found <= np.pi
+    assert np.linalg.norm(axis) == pytest.approx(1, rel=1e-15)
+    np.testing.assert_allclose(Rotation.from_rotvec(found * axis).as_matrix(), matrix, rtol=0, atol=2e-15)
+
+
+@pytest.mark.parametrize("angle", [1e-15, 1e-12, 1e-9, 1e-6, 1e-3])
+def test_a_tiny_angle_is_read_to_its_last_digits(angle):
+    axis, found = axis_and_angle_of(turn_about([3, 0, -4], angle))
+    assert found == pytest.approx(angle, rel=1e-15)
+    np.testing.assert_allclose(axis, [0.6, 0, -0.8], **CLOSE)
+
+
+@pytest.mark.parametrize("gap", [1e-12, 1e-9, 1e-6])
+def test_an_angle_just_short_of_half_a_turn_keeps_its_gap(gap):
+    axis, found = axis_and_angle_of(turn_about([-1, 2, 2], np.pi - gap))
+    assert np.pi - found == pytest.approx(gap, abs=2e-15)
+    np.testing.assert_allclose(axis, [-1 / 3, 2 / 3, 2 / 3], rtol=0, atol=1e-14)
+
+
+@pytest.mark.parametrize("direction", [(1, 0, 0), (0, -1, 0), (0, 0, -5), (1, -1, 0), (-1, -2, -2), (0, 3, -4)])
+def test_of_half_a_turn_the_axis_has_its_largest_component_positive(direction):
+    unit = np.array(direction) / np.linalg.norm(direction)
+    axis, angle = axis_and_angle_of(2 * np.outer(unit, unit) - np.eye(3))
+    assert angle == pytest.approx(np.pi, rel=1e-15)
+    assert axis[np.abs(axis).argmax()] > 0
+    np.testing.assert_allclose(np.outer(axis, axis), np.outer(unit, unit), **CLOSE)
+
+
+def test_no_turn_is_about_z():
+    axis, angle = axis_and_angle_of(np.eye(3))
+    assert (axis.tolist(), angle) == ([0, 0, 1], 0)
+
+
+@given(directions, directions)
+def test_the_smallest_turn_carries_one_direction_to_another_and_turns_no_further_than_between_them(one, other):
+    turn = smallest_turn(one, other)
+    units = [vector / np.linalg.norm(vector) for vector in (one, other)]
+    np.testing.assert_allclose(turn @ units[0], units[1], rtol=0, atol=5e-15)
+    between = np.arctan2(np.linalg.norm(np.cross(*units)), units[0] @ units[1])
+    assert Rotation.from_matrix(turn).magnitude() == pytest.approx(between, abs=5e-15)
+    assert np.linalg.det(turn) == pytest.approx(1, rel=1e-14)
+
+
+@given(directions)
+def test_the_smallest_turn_to_the_opposite_direction_is_half_a_turn(direction):
+    turn = smallest_turn(direction, -3 * direction)
+    np.testing.assert_allclose(turn @ direction, -direction, **CLOSE)
+    assert Rotation.from_matrix(turn).magnitude() == pytest.approx(np.pi, rel=1e-14)
+
+
+def test_a_direction_needs_no_turn_to_itself():
+    np.testing.assert_array_equal(smallest_turn([1, 2, 3], [2, 4, 6]), np.eye(3))
+
+
+@given(points, directions, ANGLES, points)
+def test_a_turn_about_an_axis_in_space_leaves_the_axis_and_turns_the_rest(point, direction, angle, other):
+    about = Placement.about(point, direction, angle)
+    np.testing.assert_allclose(about.apply(point + 3 * direction), point + 3 * direction, **CLOSE)
+    turned = Rotation.from_rotvec(angle * direction / np.linalg.norm(direction)).apply(other - point) + point
+    np.testing.assert_allclose(about.apply(other), turned, **CLOSE)
+
+
+@given(placements())
+def test_a_pose_read_from_a_placement_stands_as_that_does(placement):
+    read = Pose.of(placement).placement
+    np.testing.assert_allclose(read.turn, placement.turn, rtol=0, atol=2e-12)
+    np.testing.assert_allclose(read.shift, placement.shift, rtol=0, atol=1e-12)
+
+
+def test_a_pose_leaves_out_round_off():
+    pose = Pose.of(Placement(turn_about([0, 0, 1], np.pi / 2), [0.3, 1e-17, 0.0]))
+    assert pose == Pose((0.3, 0.0, 0.0), (0.0, 0.0, np.pi / 2))
 
 
 @given(placements(), placements(), points)

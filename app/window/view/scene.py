@@ -210,12 +210,9 @@ def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None,
 def _bodies(assembly: Assembly, store: SurfaceStore, before: Scene) -> tuple[Bodies, ...]:
     known = {bodies.key: bodies for bodies in before.bodies}
     table = assembly.table
-    order = np.argsort(table.owner, kind="stable")
-    start = np.searchsorted(table.owner[order], np.arange(len(table.parts) + 1))
     tints: dict[str, int] = {}
     bodies = []
-    for index, part in enumerate(table.parts):
-        rows = order[start[index] : start[index + 1]]
+    for part, rows in zip(table.parts, table.rows_by_part, strict=True):
         if len(rows) and len(part.surface.corners):
             tint = tints.setdefault(part.driver.label, len(tints))
             surface = store.of(part.surface)
