@@ -9,6 +9,7 @@ from PySide6.QtCore import QSize, Qt
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 from PySide6.QtWidgets import QMenu, QSizePolicy, QToolBar, QToolButton, QWidget
 
+from app.window.commands import lay_on_drive_axis
 from app.window.dialogs.take_apart import TakeApartDialog
 from app.window.fields import ChoiceField
 from app.window.style import GRID, Words, icon
@@ -116,6 +117,10 @@ class Actions:
             Command("Move up", lambda: w.move_line(-1), "Alt+Up"),
             Command("Move down", lambda: w.move_line(1), "Alt+Down"),
             Command("Move out of its group", w.move_out, "Alt+Left"), None,
+            Command(
+                "Lay own axis on the drive axis", lambda: lay_on_drive_axis(w.session, w.session.selected), "Ctrl+L",
+                tip="Moves the selected lines no further than it takes to lay their own axes on the drive axis.",
+            ),
             Command("Take one copy apart…", lambda: w.files.show_dialog(TakeApartDialog(w.session, w))),
         ])
         self._fill(bar.addMenu("&Axis"), [

@@ -2,10 +2,20 @@
 
 from __future__ import annotations
 
+from functools import reduce
+from typing import TYPE_CHECKING
+
 from core.assembly import Assembly, Group, Node, Part, ShapeBody
-from core.errors import EditRefused
+from core.assembly.own_axis import laid_on_axis, own_axis_of
+from core.assembly.placing import outermost
+from core.errors import EditRefused, MasswrightError
 from core.material import NotSet
 from core.shapes import SHAPES
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable
+
+    from app.window.session import Session
 
 
 def new_shape(assembly: Assembly, shape: str) -> Part:
@@ -80,3 +90,25 @@ def taken_out(assembly: Assembly, key: str) -> Assembly:
     siblings = outer.members if outer else assembly.members
     place = [node.key for node in siblings].index(above[-1].key) + 1
     return assembly.moved(key, outer.key if outer else None, place)
+
+
+def lay_on_drive_axis(session: Session, keys: Iterable[str]) -> None:
+    """Lay the own axis of each of these lines on the drive axis, in one edit that says which axis that is."""
+    before, axis = session.assembly, session.assembly.drive_axis
+    lines = outermost(before, sorted(keys))
+    if not lines:
+        session.said.emit("Nothing is selected that could be laid on the drive axis")
+        return
+    try:
+        owns = [own_axis_of(before, key, axis) for key in lines]
+    except MasswrightError as error:
+        session.refused.emit(str(error))
+        return
+    name = before.name_of_line(lines[0]) if len(lines) == 1 else f"{len(lines)} lines"
+    by = f" by {owns[0].words}" if len(lines) == 1 else ""
+    taken = session.edit(
+        f"Lay {name} on {axis.name}{by}",
+        lambda assembly: reduce(lambda after, key: laid_on_axis(after, key, axis), lines, assembly),
+    )
+    if taken and session.assembly is before:
+        session.said.emit(f"{name} {'lies' if len(lines) == 1 else 'lie'} on {axis.name} already")

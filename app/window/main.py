@@ -61,6 +61,7 @@ class MainWindow(QMainWindow):
         self.session = Session(self)
         self.session.units = self.settings.units
         self.session.decimal_mark = self.settings.decimal_mark
+        self.session.manner = self.settings.manner
         self.ledger = LedgerPane(self.session)
         self.view = ViewPane()
         self.part = PartPage(self.session)
@@ -134,6 +135,7 @@ class MainWindow(QMainWindow):
         application = QApplication.instance()
         if isinstance(application, QApplication):
             application.focusChanged.connect(self._note_place)
+        s.placed_differently.connect(self._keep_manner)
         s.found.connect(self.view.light_up)
         s.prepare = self._prepare
         s.file_changed.connect(self.changed_files.look)
@@ -245,6 +247,9 @@ class MainWindow(QMainWindow):
         if str(name) in UNIT_SETS:
             self.settings.units = UNIT_SETS[str(name)]
             self.session.show_in(UNIT_SETS[str(name)])
+
+    def _keep_manner(self) -> None:
+        self.settings.manner = self.session.manner
 
     def choose_mark(self, mark: str) -> None:
         """Show and copy numbers with this decimal mark, from now on."""

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, Signal
 
+from app.window.manner import Manner
 from core.assembly import Assembly, Finding, Ledger, Part, ledger_of
 from core.assembly.names import values_of
 from core.assembly.overlap_findings import overlap_findings
@@ -32,6 +33,7 @@ class Session(QObject):
         changed: the document is another one; ledger and findings are those of the new one.
         selection_changed: other lines are selected.
         shown_differently: the same assembly in other units or with another decimal mark.
+        placed_differently: lines are placed by hand in another manner.
         file_changed: the document has another path, or was saved.
         refused: an edit or a file could not be taken; the sentence that says why.
         said: something worth a line at the foot of the window.
@@ -41,6 +43,7 @@ class Session(QObject):
     changed = Signal()
     selection_changed = Signal()
     shown_differently = Signal()
+    placed_differently = Signal()
     file_changed = Signal()
     refused = Signal(str)
     said = Signal(str)
@@ -52,6 +55,7 @@ class Session(QObject):
         self.path: Path | None = None
         self.units: UnitSet = DEFAULT_UNITS
         self.decimal_mark = "."
+        self.manner = Manner()
         self.selected: frozenset[str] = frozenset()
         # What makes a line ready to be shown before it is; the window puts the view's preparation here.
         self.prepare: Callable[[Node], None] = lambda _node: None
@@ -176,6 +180,12 @@ class Session(QObject):
         """Show and copy numbers with "." or "," as their decimal mark."""
         self.decimal_mark = mark
         self.shown_differently.emit()
+
+    def set_manner(self, manner: Manner) -> None:
+        """Place lines by hand in this manner."""
+        if manner != self.manner:
+            self.manner = manner
+            self.placed_differently.emit()
 
     def start_new(self) -> None:
         """Start an empty document."""

@@ -2,10 +2,14 @@
 
 from __future__ import annotations
 
+import math
+from dataclasses import fields, replace
 from pathlib import Path
+from typing import Any
 
 from PySide6.QtCore import QByteArray, QLocale, QSettings
 
+from app.window.manner import CHOICES, Manner
 from core.errors import QuantityError
 from core.quantity import DEFAULT_UNITS, UnitSet, parse_unit_set
 
@@ -39,6 +43,24 @@ class Settings:
     @decimal_mark.setter
     def decimal_mark(self, mark: str) -> None:
         self._store.setValue("decimal_mark", mark)
+
+    @property
+    def manner(self) -> Manner:
+        """How lines were placed by hand last."""
+        plain = Manner()
+        kept: dict[str, Any] = {}
+        for field in fields(Manner):
+            before = getattr(plain, field.name)
+            value: Any = self._store.value(f"placing/{field.name}", before, type(before))
+            choices = CHOICES.get(field.name)
+            if value in choices if choices else 0 <= value < math.inf:
+                kept[field.name] = value
+        return replace(plain, **kept)
+
+    @manner.setter
+    def manner(self, manner: Manner) -> None:
+        for field in fields(Manner):
+            self._store.setValue(f"placing/{field.name}", getattr(manner, field.name))
 
     @property
     def recent(self) -> list[Path]:

@@ -26,7 +26,7 @@ def test_the_nearest_point_of_an_axis_is_the_one_that_least_squares_finds(start,
 
 def test_a_ray_far_from_the_origin_finds_the_same_place():
     far = np.array([4000.0, -3000.0, 2000.0])
-    found = nearest_on_axis(far + [0.25, -2, 1], [0, 1, 0], far, [1, 0, 0])
+    found = nearest_on_axis(far + np.array([0.25, -2, 1]), [0, 1, 0], far, [1, 0, 0])
     assert found == pytest.approx(0.25, abs=1e-12)
 
 

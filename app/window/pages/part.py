@@ -11,10 +11,11 @@ from PySide6.QtWidgets import QApplication, QFrame, QScrollArea, QVBoxLayout, QW
 from app.window.fields import Form, QuantityField, TextField
 from app.window.outline.section import OutlineSection, is_profile
 from app.window.pages.part_body import KnownSection, ShapeSection
+from app.window.pages.part_copies import CopiesSection
 from app.window.pages.part_cuts import CutHead, CutsSection
 from app.window.pages.part_mass import MassSection
 from app.window.pages.part_mesh import MeshSection
-from app.window.pages.part_place import CopiesSection, PlaceSection
+from app.window.pages.part_stand import PlaceSection
 from app.window.pages.part_variants import VariantsSection
 from app.window.pages.section import Section
 from app.window.style import GRID, Words
@@ -67,7 +68,9 @@ class PartPage(QScrollArea):
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setAccessibleName("Part page")
         self.setObjectName("page")
-        for signal in (session.changed, session.selection_changed, session.shown_differently):
+        for signal in (
+            session.changed, session.selection_changed, session.shown_differently, session.placed_differently
+        ):
             signal.connect(self.refresh)
         self.refresh()
 

@@ -103,7 +103,7 @@ def test_a_box_is_laid_by_the_principal_axis_that_is_nearest(turns):
 def prism_mesh(sides: int, length: float) -> MeshBody:
     """Return a regular prism along z as a mesh in mm, its axis through (100, 50)."""
     facets = SHAPES["cylinder"].of({"diameter": 80.0, "length": length}).facets(sides)
-    triangles = (facets.points + [100, 50, 0])[facets.corners]
+    triangles = (facets.points + np.array([100, 50, 0]))[facets.corners]
     rows = np.zeros(len(triangles), dtype=[("normal", "<f4", 3), ("corners", "<f4", (3, 3)), ("attribute", "<u2")])
     rows["corners"] = triangles
     data = b"prism".ljust(80) + np.uint32(len(triangles)).tobytes() + rows.tobytes()

@@ -1,4 +1,4 @@
-"""The fields for where a line stands and how it repeats."""
+"""The fields for how a line repeats."""
 
 from __future__ import annotations
 
@@ -21,26 +21,6 @@ PATTERNS: list[tuple[str, object]] = [
     ("row", Row),
     ("mirror image", Mirrored),
 ]
-
-
-class PlaceSection(Section):
-    """Position and turns in the frame that holds the line."""
-
-    def __init__(self, session: Session, form: Form, node: AnyLine) -> None:
-        super().__init__(session, form, node.key)
-        form.heading("Placement")
-        self._position = TripleField(session, "position", Kind.LENGTH)
-        form.add("position", self._position, "Of the part's own origin, in the frame of the group that holds it.")
-        self._turns = TripleField(session, "turn about", Kind.ANGLE, UNITS["°"])
-        form.add("turn about", self._turns, "About the group's fixed axes: x first, then y, then z.")
-        for at, (here, turn) in enumerate(zip(self._position.fields, self._turns.fields, strict=True)):
-            self.bind(here, f"Position {'xyz'[at]}", f"position.{at}")
-            self.bind(turn, f"Turn about {'xyz'[at]}", f"turn.{at}")
-
-    def show(self, node: AnyLine) -> None:
-        """Show position and turns."""
-        self._position.set_values(node.pose.position, lambda at: typed_for(node, f"position.{at}"))
-        self._turns.set_values(node.pose.turns, lambda at: typed_for(node, f"turn.{at}"))
 
 
 class CopiesSection(Section):
