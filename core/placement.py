@@ -148,10 +148,10 @@ def axis_and_angle_of(turn: ArrayLike) -> tuple[FloatArray, float]:
     quaternion = row / np.linalg.norm(row)
     if quaternion[0] < 0:
         quaternion = -quaternion
-    length = float(np.linalg.norm(quaternion[1:]))
+    length = math.hypot(*quaternion[1:].tolist())
     if length == 0:
         return np.array([0.0, 0.0, 1.0]), 0.0
-    axis = quaternion[1:] / length
+    axis = unit_vector(quaternion[1:])
     angle = 2 * math.atan2(length, float(quaternion[0]))
     if quaternion[0] <= _HALF_TURN_GAP and axis[np.abs(axis).argmax()] < 0:
         axis = -axis

@@ -19,6 +19,7 @@ from app.window.style import Words
 from core.assembly import Assembly, Cut, DriveAxis, Group
 from core.assembly.fields import typed_for
 from core.assembly.placing import standing_of
+from core.machine import Machine
 from core.placement import Pose
 from core.shapes import SHAPES
 
@@ -37,7 +38,7 @@ def nested() -> Assembly:
 
 @pytest.fixture
 def page(window):
-    window.session.take(nested(), None)
+    window.session.take(Machine(nested()), None)
     window.pages.setCurrentWidget(window.part)
 
     def show(key):
@@ -198,7 +199,7 @@ def test_the_menu_lays_all_selected_lines_and_says_what_lies_there_already(windo
 
 
 def test_what_has_no_axis_is_refused_in_words(window):
-    window.session.take(Assembly("d", (Group("g", "empty group"),)), None)
+    window.session.take(Machine(Assembly("d", (Group("g", "empty group"),))), None)
     window.session.select(frozenset({"g"}))
     trigger(window, "Part", "Lay own axis on the drive axis")
     assert any("empty group: it has no axis of its own" in each.text() for each in window.notice.findChildren(QLabel))
