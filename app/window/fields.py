@@ -186,6 +186,32 @@ class QuantityField(QWidget):
         super().keyPressEvent(event)
 
 
+class OpenField(QuantityField):
+    """A number that may be left open: an empty text means none, and what holds then stands there in grey.
+
+    Signals:
+        cleared: a text that said a value was emptied. A receiver that cannot take it calls `turn_down`.
+    """
+
+    cleared = Signal()
+
+    def __init__(
+        self, session: Session, label: str, kind: Kind, without: str, unit: Unit | None = None, width: int = FIELD_WIDTH
+    ) -> None:
+        super().__init__(session, label, kind, unit, width)
+        self.line.setPlaceholderText(without)
+
+    def _finish(self) -> None:
+        if not self.line.isModified() or self.line.text().strip():
+            super()._finish()
+            return
+        self._before, self._entered = (self._value, self._typed), ""
+        self._value, self._typed = None, ""
+        self._show()
+        if self._before[0] is not None:
+            self.cleared.emit()
+
+
 def kept_text(text: str) -> str:
     """Return the text where it says more than its number: arithmetic, a unit or a name; "" for a bare number."""
     bare = text.strip()

@@ -38,6 +38,7 @@ from app.window.overlap_watch import OverlapWatch
 from app.window.pages.checks import ChecksPage, counted
 from app.window.pages.part import PartPage
 from app.window.pages.sheet import SheetPage
+from app.window.pages.torque.page import TorquePage
 from app.window.session import Session
 from app.window.settings import Settings
 from app.window.start import Notice, StartPanel, stacked
@@ -66,6 +67,7 @@ class MainWindow(QMainWindow):
         self.view = ViewPane()
         self.part = PartPage(self.session)
         self.sheet = SheetPage(self.session)
+        self.torque = TorquePage(self.session)
         self.checks = ChecksPage(self.session)
         self.overlap_watch = OverlapWatch(self.session, self)
         self.pages = QTabWidget()
@@ -86,7 +88,9 @@ class MainWindow(QMainWindow):
         self.refresh()
 
     def _lay_out(self) -> None:
-        for page, words in ((self.part, "Part"), (self.sheet, "Sheet"), (self.checks, "Checks")):
+        for page, words in (
+            (self.part, "Part"), (self.sheet, "Sheet"), (self.torque, "Torque"), (self.checks, "Checks"),
+        ):
             self.pages.addTab(page, words)
         self.pages.setCurrentWidget(self.sheet)
         self.pages.setDocumentMode(True)

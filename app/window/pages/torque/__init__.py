@@ -1,0 +1,1 @@
+"""The Torque page: what is entered about the drive, and what it asks of it."""
