@@ -189,8 +189,7 @@ class Moments:
     def radii_of_gyration(self) -> FloatArray:
         """Radii of gyration (..., 3) m about the frame's directions through the centre; nan where there is no mass."""
         about = np.diagonal(self.inertia_about_centre, axis1=-2, axis2=-1)
-        with np.errstate(divide="ignore", invalid="ignore"):
-            return np.sqrt(np.maximum(about / self.mass[..., None], 0.0))
+        return radius_of_gyration(about, self.mass[..., None])
 
     @property
     def principal(self) -> Principal:
@@ -212,6 +211,14 @@ class Principal:
     moments: FloatArray
     axes: FloatArray
     tie: str
+
+
+def radius_of_gyration(inertia: ArrayLike, mass: ArrayLike) -> FloatArray:
+    """Return √(J/m) (...) m for inertia (...) kg·m² about an axis and mass (...) kg; nan where there is no mass."""
+    about, masses = np.asarray(inertia, dtype=float), np.asarray(mass, dtype=float)
+    square = np.divide(about, masses, out=np.full(np.broadcast(about, masses).shape, np.nan), where=masses != 0)
+    # A body without extent across the axis comes out a round-off below 0.
+    return np.asarray(np.sqrt(np.maximum(square, 0.0)))
 
 
 def spread_of_inertia(inertia_about_centre: ArrayLike) -> FloatArray:

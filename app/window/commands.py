@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from functools import reduce
 from typing import TYPE_CHECKING
 
@@ -62,7 +63,9 @@ def grouped(assembly: Assembly, keys: frozenset[str], key: str) -> Assembly:
     place = [node.key for node in siblings].index(chosen[0].key)
     left = assembly.removed(tuple(node.key for node in chosen))
     filled = Group(key, group.name, tuple(chosen))
-    return left.inserted(filled, home[-1] if home else None, place)
+    # What was said of the lines holds as before: they were never away.
+    whole = left.inserted(filled, home[-1] if home else None, place)
+    return replace(whole, meant=assembly.meant, axes=assembly.axes)
 
 
 def shifted(assembly: Assembly, key: str, step: int) -> Assembly:

@@ -1,6 +1,7 @@
 """The assembly: parts with their cuts, groups and known parts on axes; edits, totals, ledger, findings."""
 
-from core.assembly.assembly import Assembly, DriveAxis
+from core.assembly.assembly import Assembly
+from core.assembly.axis import DriveAxis
 from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, six_of_tensor, tensor_of_six
 from core.assembly.cuts import MOST_CUT_COPIES, Cut
 from core.assembly.cutting import CUT_AT_ONCE, Cutting

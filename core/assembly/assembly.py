@@ -7,35 +7,19 @@ from functools import cached_property
 from typing import TYPE_CHECKING
 
 from core.arrays import FloatArray, frozen
+from core.assembly.axis import DriveAxis
+from core.assembly.following import kept_on_parts
 from core.assembly.membership import check_membership, check_variants, members_in
 from core.assembly.nodes import MOST_BODIES, Group, Node, Part, Table, table_of, walk
 from core.errors import EditRefused
-from core.moments import Moments, unit_vector
 
 if TYPE_CHECKING:
     from core.assembly.cuts import Cut
     from core.assembly.names import NamedDimension
-    from core.placement import Triple
+    from core.moments import Moments
 
 # Deeper nesting than this is refused: no machine has it, and a reader of the file must not be led into the ground.
 DEEPEST = 32
-
-
-@dataclass(frozen=True)
-class DriveAxis:
-    """A named axis that something turns about: through point (m, document frame) along direction (any length)."""
-
-    name: str = "Spindle"
-    point: Triple = (0.0, 0.0, 0.0)
-    direction: Triple = (0.0, 0.0, 1.0)
-
-    def __post_init__(self) -> None:
-        unit_vector(self.direction)
-
-    @property
-    def unit(self) -> FloatArray:
-        """The direction at length one, (3,)."""
-        return unit_vector(self.direction)
 
 
 @dataclass(frozen=True)
@@ -74,7 +58,7 @@ class Assembly:
     Attributes:
         name: of the document, as shown.
         members: the outermost parts and groups, in the order of the ledger.
-        axes: at least one, names all different.
+        axes: at least one, names all different. The axis of a part stands where the part stands.
         drive: the name of the one that is driven.
         meant: marks of overlaps that are as they should be.
         names: named dimensions that number fields use; in the order of their table, names all different.
@@ -94,15 +78,11 @@ class Assembly:
     variant: str = ""
 
     def __post_init__(self) -> None:
-        names = [axis.name for axis in self.axes]
-        if self.drive not in names or len(set(names)) != len(names):
-            raise EditRefused(
-                "one of the axes has to be the drive axis, and each needs a name of its own",
-                read=f"{self.drive!r} among {', '.join(names) or 'none'}",
-            )
+        _check_axes(self.axes, self.drive)
         check_variants(self.variants, self.variant)
         self._paths  # noqa: B018  # refuses double keys, bottomless nesting and too many bodies at once
         self._cut_homes  # noqa: B018  # refuses double keys
+        object.__setattr__(self, "axes", kept_on_parts(self))
 
     @cached_property
     def _paths(self) -> dict[str, tuple[int, ...]]:
@@ -143,7 +123,21 @@ class Assembly:
     @property
     def drive_axis(self) -> DriveAxis:
         """The axis that the ledger and the sheet speak of."""
-        return next(axis for axis in self.axes if axis.name == self.drive)
+        return self.axis(self.drive)
+
+    def axis(self, name: str) -> DriveAxis:
+        """Return the axis of this name.
+
+        Raises:
+            EditRefused: there is none.
+        """
+        for axis in self.axes:
+            if axis.name == name:
+                return axis
+        raise EditRefused(
+            "the document has no such axis", read=repr(name),
+            remedy=f"Choose one of {', '.join(axis.name for axis in self.axes)}",
+        )
 
     @cached_property
     def counted(self) -> Assembly:
@@ -346,7 +340,9 @@ class Assembly:
         node = self.node(key)
         if group is not None and (group == key or key in {above.key for above in self.groups_above(group)}):
             raise EditRefused("a group cannot be put into itself", where=node.name)
-        return replace(self.removed((key,)).inserted(node, group, index), meant=self.meant)
+        left = self.removed((key,))
+        # What was said of it holds as before: it was never away.
+        return replace(left.inserted(node, group, index), meant=self.meant, axes=self.axes)
 
     def _path(self, key: str) -> tuple[int, ...]:
         if key in self._cut_homes:
@@ -365,6 +361,22 @@ class Assembly:
             nodes.append(members[step])
             members = nodes[-1].members if isinstance(nodes[-1], Group) else ()
         return nodes
+
+
+def _check_axes(axes: tuple[DriveAxis, ...], drive: str) -> None:
+    """Refuse axes of one name, and a drive axis that is not there."""
+    names = [axis.name for axis in axes]
+    double = next((name for at, name in enumerate(names) if name in names[:at]), None)
+    if double is not None:
+        raise EditRefused(
+            "two axes have the same name", where="axes", read=repr(double), remedy="Give one of them another name"
+        )
+    if drive not in names:
+        raise EditRefused(
+            '"drive" names an axis that is not there', where="drive axis",
+            read=f"{drive!r}, where the axes are {', '.join(names) or 'none'}",
+            remedy="Name one of them as the drive axis, or add an axis of that name",
+        )
 
 
 def _with(members: tuple[Node, ...], node: Node, index: int | None) -> tuple[Node, ...]:

@@ -1,10 +1,11 @@
-"""The numbers of a line that a person types, each under a path: what it measures, its value, the line with another.
+"""The numbers of a line or axis that a person types, each under a path: what it measures, its value, one with another.
 
 Paths:
     dimension.NAME                        of a shape (of a part, or of a cut)
     density, per area, per length, weighed    what says the mass of a part
     known.mass, known.centre.I, known.tensor.I, known.axial, known.length    of a data sheet
     position.I, turn.I                    of the pose
+    axis.point.I, axis.direction.I, axis.second.I    of an axis, which has these only
     copies.count, copies.start, copies.span, copies.point.I, copies.direction.I, copies.step.I, copies.normal.I
 I counts from 0. What a person typed for a number ("3/8 in + 2 mm") is kept under the same path.
 """
@@ -15,6 +16,7 @@ import math
 from dataclasses import dataclass, fields, is_dataclass, replace
 from typing import TYPE_CHECKING, Any, Final, TypeAlias, TypeVar
 
+from core.assembly.axis import DriveAxis
 from core.assembly.bodies import KnownAxial, KnownTensor, ShapeBody
 from core.assembly.cuts import Cut
 from core.assembly.nodes import Group, Node, Part
@@ -28,7 +30,8 @@ if TYPE_CHECKING:
     from core.shapes import Shape
 
 AnyLine: TypeAlias = Node | Cut
-Line = TypeVar("Line", bound=Part | Group | Cut)
+Typable: TypeAlias = AnyLine | DriveAxis
+Line = TypeVar("Line", bound=Part | Group | Cut | DriveAxis)
 Numbered: TypeAlias = ByDensity | PerArea | PerLength | Weighed
 
 # Of a mass: path → what holds the number.
@@ -82,6 +85,11 @@ _KNOWN: Final = {
     "known.axial": Spot(Kind.INERTIA, "J about its axis", "inertia_about_axis"),
     "known.length": Spot(Kind.LENGTH, "length", "length"),
 }
+_AXIS: Final = {
+    **_triple("axis.point", Kind.LENGTH, "through", "point"),
+    **_triple("axis.direction", Kind.NUMBER, "along", "direction"),
+    **_triple("axis.second", Kind.LENGTH, "second point", "second"),
+}
 _DRIVER: Final = {
     "density": Spot(Kind.DENSITY, "density", "density"),
     "per area": Spot(Kind.AREA_DENSITY, "mass per area", "mass_per_area"),
@@ -90,7 +98,7 @@ _DRIVER: Final = {
 }
 
 
-def kind_of(line: AnyLine, path: str) -> Kind:
+def kind_of(line: Typable, path: str) -> Kind:
     """Return what the number under a path measures.
 
     Raises:
@@ -99,7 +107,7 @@ def kind_of(line: AnyLine, path: str) -> Kind:
     return _spot(line, path).kind
 
 
-def words_of(line: AnyLine, path: str) -> str:
+def words_of(line: Typable, path: str) -> str:
     """Return what the number under a path is called, for a sentence.
 
     Raises:
@@ -108,7 +116,7 @@ def words_of(line: AnyLine, path: str) -> str:
     return _spot(line, path).words
 
 
-def value_of(line: AnyLine, path: str) -> float | None:
+def value_of(line: Typable, path: str) -> float | None:
     """Return the number under a path in SI; None where the line as it is now has no such number."""
     if path.startswith("dimension."):
         shape = _shape(line)
@@ -151,7 +159,7 @@ def with_values(line: Line, values: Mapping[str, float]) -> Line:
             _put(line, path, inside.setdefault(_HOLDERS[path.partition(".")[0]], {}), value)
     for attribute, numbers in inside.items():
         several = {name: tuple(each) if isinstance(each, list) else each for name, each in numbers.items()}
-        changes[attribute] = replace(getattr(line, attribute), **several)
+        changes |= {attribute: replace(getattr(line, attribute), **several)} if attribute else several
     shape = _shape(line)
     if sizes and shape is not None:
         resized = shape.resized(sizes)
@@ -160,7 +168,7 @@ def with_values(line: Line, values: Mapping[str, float]) -> Line:
     return changed
 
 
-def _put(line: AnyLine, path: str, numbers: dict[str, Any], value: float) -> None:
+def _put(line: Typable, path: str, numbers: dict[str, Any], value: float) -> None:
     """Put a number among those of its holder that are to change."""
     spot, holder = _spot(line, path), _holder(line, path)
     if not _has(holder, spot.attribute):
@@ -171,7 +179,7 @@ def _put(line: AnyLine, path: str, numbers: dict[str, Any], value: float) -> Non
         numbers[spot.attribute] = _whole(value, line.name) if spot.attribute == "count" else value
 
 
-def typed_for(line: AnyLine, path: str) -> str:
+def typed_for(line: Typable, path: str) -> str:
     """Return what was typed for the number under a path; "" where the number says it all."""
     return dict(line.typed).get(path, "")
 
@@ -183,15 +191,15 @@ def with_typed(line: Line, path: str, text: str) -> Line:
     return kept
 
 
-_SPOTS: Final[Mapping[str, Spot]] = {**_POSE, **_COPIES, **_KNOWN, **_DRIVER}
-# First step of a path → the attribute of the line that holds the number.
+_SPOTS: Final[Mapping[str, Spot]] = {**_POSE, **_COPIES, **_KNOWN, **_DRIVER, **_AXIS}
+# First step of a path → the attribute of the line that holds the number; an axis holds its numbers itself.
 _HOLDERS: Final = {
     "position": "pose", "turn": "pose", "copies": "copies", "known": "body",
-    **dict.fromkeys(_DRIVER, "driver"),
+    **dict.fromkeys(_DRIVER, "driver"), "axis": "",
 }
 
 
-def _spot(line: AnyLine, path: str) -> Spot:
+def _spot(line: Typable, path: str) -> Spot:
     if path.startswith("dimension."):
         shape, name = _shape(line), path.removeprefix("dimension.")
         for dimension in shape.dimensions if shape is not None else ():
@@ -203,13 +211,15 @@ def _spot(line: AnyLine, path: str) -> Spot:
     return spot
 
 
-def _nothing_there(line: AnyLine, path: str) -> EditRefused:
+def _nothing_there(line: Typable, path: str) -> EditRefused:
     return EditRefused("this line has no such number", where=line.name, read=path)
 
 
-def _holder(line: AnyLine, path: str) -> object:
+def _holder(line: Typable, path: str) -> object:
     """Return the value of a line that would hold the number under a path; None where it is of another kind."""
     first = path.partition(".")[0]
+    if first == "axis":
+        return line if isinstance(line, DriveAxis) else None
     holder = getattr(line, _HOLDERS[first], None)
     if first == "known":
         return holder if isinstance(holder, KnownTensor | KnownAxial) else None
@@ -219,10 +229,11 @@ def _holder(line: AnyLine, path: str) -> object:
 
 
 def _has(holder: object, attribute: str) -> bool:
-    return is_dataclass(holder) and any(field.name == attribute for field in fields(holder))
+    has = is_dataclass(holder) and any(field.name == attribute for field in fields(holder))
+    return has and getattr(holder, attribute) is not None
 
 
-def _shape(line: AnyLine) -> Shape | None:
+def _shape(line: Typable) -> Shape | None:
     if isinstance(line, Cut):
         return line.shape
     body = line.body if isinstance(line, Part) else None

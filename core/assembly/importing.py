@@ -15,7 +15,8 @@ if TYPE_CHECKING:
     from collections.abc import Sequence
 
     from core.arrays import FloatArray
-    from core.assembly.assembly import Assembly, DriveAxis
+    from core.assembly.assembly import Assembly
+    from core.assembly.axis import DriveAxis
     from core.mesh import MeshAsset
 
 # At the file's own origin; the middle of the box around it on the drive axis; its centre of mass on the drive axis.

@@ -11,11 +11,12 @@ from core.arrays import FloatArray, IntArray, frozen, settled
 from core.assembly.link import LAST_VALUES
 from core.assembly.linked_groups import bases_of
 from core.assembly.nodes import Group, Part, walk
-from core.moments import Moments
+from core.moments import Moments, radius_of_gyration
 from core.placement import Placement
 
 if TYPE_CHECKING:
-    from core.assembly.assembly import Assembly, DriveAxis
+    from core.assembly.assembly import Assembly
+    from core.assembly.axis import DriveAxis
     from core.assembly.nodes import Table
 
 LineKind: TypeAlias = Literal["part", "cut", "group", "total"]
@@ -70,6 +71,11 @@ class Line:
     def doubtful(self) -> bool:
         """Whether its values, or some of them, must not be taken as computed."""
         return self.basis.removeprefix("some ").startswith(WEAK)
+
+    @property
+    def radius_of_gyration(self) -> float | None:
+        """√(J/m) about the drive axis, m, of all copies together; None while the mass is not known, or is none."""
+        return None if self.inertia is None or not self.mass else float(radius_of_gyration(self.inertia, self.mass))
 
 
 @dataclass(frozen=True, eq=False)

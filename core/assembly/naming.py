@@ -9,7 +9,8 @@ from __future__ import annotations
 from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, TypeVar
 
-from core.assembly.fields import AnyLine, kind_of, value_of, with_values, words_of
+from core.assembly.axis import DriveAxis
+from core.assembly.fields import AnyLine, Typable, kind_of, value_of, with_values, words_of
 from core.assembly.names import USES, NameEntry, evaluated, in_order, values_of
 from core.assembly.nodes import Group, Node, Part, walk
 from core.errors import EditRefused, QuantityError, ValueRefused
@@ -21,7 +22,7 @@ if TYPE_CHECKING:
     from core.assembly.assembly import Assembly
     from core.quantity import Kind, Names
 
-Each = TypeVar("Each", bound=AnyLine)
+Each = TypeVar("Each", bound=Typable)
 
 _MOST_SHOWN = 6
 
@@ -31,8 +32,8 @@ class Use:
     """A place where a name is used.
 
     Attributes:
-        key: of the line; "" for another named dimension.
-        where: the line and what its number is called, or the named dimension.
+        key: of the line; "" for an axis and for another named dimension.
+        where: the line or axis and what its number is called, or the named dimension.
         text: as typed.
     """
 
@@ -59,14 +60,15 @@ def with_entries(assembly: Assembly, entries: Iterable[NameEntry]) -> Assembly:
     before, after = values_of(assembly.names), values_of(names)
     moved = {name for name in {*before, *after} if before.get(name) != after.get(name)}
     for gone in sorted(moved - set(after)):
-        _refuse_used(gone, [use for use in uses_of(assembly, gone) if use.key])
+        _refuse_used(gone, _uses_in_numbers(assembly, gone))
     edited = replace(assembly, names=names)
     if not moved:
         return edited
     old = {entry.name: entry for entry in entries_of(assembly)}
     changed = {entry.name for entry in kept if old.get(entry.name) != entry}
     reader = _Reader(Readings(before, moved), after, {entry.name: entry for entry in kept}, changed)
-    return replace(edited, members=_mapped(assembly.members, reader.read_again))
+    axes, members = _axes(assembly, reader.read_again), _mapped(assembly.members, reader.read_again)
+    return replace(edited, members=members, axes=axes)
 
 
 def with_entry(assembly: Assembly, entry: NameEntry) -> Assembly:
@@ -111,23 +113,29 @@ def with_name_changed(assembly: Assembly, name: str, new: str) -> Assembly:
         typed = tuple((path, with_names_changed(text, changes)) for path, text in line.typed)
         return line if typed == line.typed else replace(line, typed=typed)
 
-    return replace(assembly, names=names, members=_mapped(assembly.members, rewritten))
+    axes, members = _axes(assembly, rewritten), _mapped(assembly.members, rewritten)
+    return replace(assembly, names=names, members=members, axes=axes)
 
 
 def uses_of(assembly: Assembly, name: str) -> tuple[Use, ...]:
-    """Return every named dimension and every number of a line that a name says, in the order of the ledger."""
+    """Return every named dimension and every number of an axis or line that a name says, lines as in the ledger."""
     readings = Readings(values_of(assembly.names), {name})
-    found = [Use("", one.name, one.text) for one in assembly.names if readings.uses(one.text)]
-    for line in _lines(assembly.members):
-        found += [
-            Use(line.key, f"{line.name}, {words_of(line, path)}", text)
-            for path, text in line.typed
-            if readings.uses(text) and _is_meant(readings, line, path, text)
-        ]
-    return tuple(found)
+    named = (Use("", one.name, one.text) for one in assembly.names if readings.uses(one.text))
+    return (*named, *_uses_in_numbers(assembly, name))
 
 
-def _is_meant(readings: Readings, line: AnyLine, path: str, text: str) -> bool:
+def _uses_in_numbers(assembly: Assembly, name: str) -> tuple[Use, ...]:
+    """Return every number of an axis or line that a name says."""
+    readings = Readings(values_of(assembly.names), {name})
+    return tuple(
+        Use("" if isinstance(line, DriveAxis) else line.key, f"{line.name}, {words_of(line, path)}", text)
+        for line in (*assembly.axes, *_lines(assembly.members))
+        for path, text in line.typed
+        if readings.uses(text) and _is_meant(readings, line, path, text)
+    )
+
+
+def _is_meant(readings: Readings, line: Typable, path: str, text: str) -> bool:
     """Return whether a text that was typed for a number of a line still means that number."""
     value = value_of(line, path)
     return value is not None and readings.means(text, kind_of(line, path), value)
@@ -167,7 +175,7 @@ class _Reader:
             where = USES.join([line.name, *chain])
             raise EditRefused(error.what, where=where, read=error.read, remedy=error.remedy) from error
 
-    def _value(self, line: AnyLine, path: str, text: str) -> float:
+    def _value(self, line: Typable, path: str, text: str) -> float:
         kind = kind_of(line, path)
         try:
             if (text, kind) not in self.known:
@@ -202,6 +210,12 @@ def _lines(members: tuple[Node, ...]) -> Iterator[AnyLine]:
         yield node
         if isinstance(node, Part):
             yield from node.cuts
+
+
+def _axes(assembly: Assembly, change: Callable[[DriveAxis], DriveAxis]) -> tuple[DriveAxis, ...]:
+    """Return the axes with each of them changed; the same object if a change leaves them all alone."""
+    axes = tuple(change(axis) for axis in assembly.axes)
+    return assembly.axes if all(new is old for new, old in zip(axes, assembly.axes, strict=True)) else axes
 
 
 def _mapped(members: tuple[Node, ...], change: Callable[[AnyLine], AnyLine]) -> tuple[Node, ...]:

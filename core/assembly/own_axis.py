@@ -17,7 +17,10 @@ from core.errors import EditRefused
 from core.placement import Placement, smallest_turn
 
 if TYPE_CHECKING:
-    from core.assembly.assembly import Assembly, DriveAxis
+    from collections.abc import Callable
+
+    from core.assembly.assembly import Assembly
+    from core.assembly.axis import DriveAxis
     from core.assembly.fields import AnyLine
     from core.moments import Moments
 
@@ -54,6 +57,25 @@ def own_axis_of(assembly: Assembly, key: str, axis: DriveAxis) -> OwnAxis:
     Raises:
         EditRefused: nothing in it has a mass, or its mesh bounds no volume.
     """
+    toward = standing_of(assembly, key).inverse().turn_only(axis.unit)
+    return _own_axis(assembly, key, toward, _apart)
+
+
+def own_axis_along(assembly: Assembly, key: str, toward: FloatArray) -> OwnAxis:
+    """Return the axis of a line that is nearest to a direction (3,) of length one in the line's own frame.
+
+    Unlike that of `own_axis_of` it stays the same one however the line is turned, and when its dimensions change.
+
+    Raises:
+        EditRefused: as own_axis_of.
+    """
+    return _own_axis(assembly, key, toward, lambda _moments: None)
+
+
+def _own_axis(
+    assembly: Assembly, key: str, toward: FloatArray, chosen: Callable[[FloatArray], int | None]
+) -> OwnAxis:
+    """Return a line's own axis: the principal one that is chosen by the moments, else the one nearest to `toward`."""
     line = assembly.line(key)
     if _is_round_about_z(line):
         return OwnAxis(np.zeros(3), np.array([0.0, 0.0, 1.0]), "its axis z")
@@ -63,11 +85,10 @@ def own_axis_of(assembly: Assembly, key: str, axis: DriveAxis) -> OwnAxis:
             "it has no axis of its own: nothing in it has a mass or bounds a volume", where=line.name,
             remedy="Give its parts a material or a mass, or place it by numbers",
         )
-    toward = standing_of(assembly, key).inverse().turn_only(axis.unit)
     principal = whole.principal
     if not principal.moments.any():
         return OwnAxis(frozen(whole.centre), frozen(toward), "its centre of mass")
-    number = _apart(principal.moments)
+    number = chosen(principal.moments)
     if number is None:
         number = int(np.abs(principal.axes @ toward).argmax())
     words = f"its principal axis {number + 1}, through its centre of mass"

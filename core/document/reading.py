@@ -259,7 +259,13 @@ def _is_newer(data: Data) -> bool:
 
 
 def _axis(entry: AxisEntry, place: str) -> DriveAxis:
-    return made_at(place, lambda: DriveAxis(entry.name, entry.point, entry.direction))
+    typed = tuple((field, text) for field, text in entry.typed)
+    return made_at(
+        place,
+        lambda: DriveAxis(
+            entry.name, entry.point, entry.direction, entry.second, entry.part, entry.toward, typed
+        ),
+    )
 
 
 def _pose(entry: PoseEntry) -> Pose:

@@ -250,11 +250,15 @@ NodeEntry: TypeAlias = Annotated[PartEntry | GroupEntry, Field(discriminator="ki
 
 
 class AxisEntry(Entry):
-    """An axis that something turns about."""
+    """An axis that something turns about; a second point says its direction, a part (by its key) both."""
 
     name: Name
     point: Three
     direction: Three
+    second: Three | None = None
+    part: Name = ""
+    toward: Three = (0.0, 0.0, 1.0)
+    typed: Typed = Field(default_factory=list)
 
 
 class MeantOverlapEntry(Entry):

@@ -77,7 +77,10 @@ def meshes_of(assembly: Assembly) -> dict[str, bytes]:
 
 
 def _axis(axis: DriveAxis) -> Data:
-    return {"name": axis.name, "point": _floats(axis.point), "direction": _floats(axis.direction)}
+    more: Data = {} if axis.second is None else {"second": _floats(axis.second)}
+    more |= {"part": axis.part, "toward": _floats(axis.toward)} if axis.part else {}
+    more |= {"typed": [list(pair) for pair in axis.typed]} if axis.typed else {}
+    return {**more, "name": axis.name, "point": _floats(axis.point), "direction": _floats(axis.direction)}
 
 
 def _node(node: Node, folder: str) -> Data:

@@ -2,7 +2,7 @@
 
 - `DriveSettings` is all that a user enters and a document keeps; `drive_answer` and `balance_answer` give all that
   the pages and the command line show of it. `Study` and `Demand` are behind them.
-- Axes: `axis_through`, `about_axis`, `across`, `TurnsWith`.
+- Axes: `about_axis`, `across`, `TurnsWith`.
 - Train: `Train`, `Motor`, `Gear`, `Belt`, `Coupling`, `Brake`, `RackOrDrum`, `LeadScrew`, `ShaftInertia`;
   `reflected`, `inertia_ratio`.
 - Motion: `Duty`, `Move`, `Rest`, `Repeat`, `Law`, `ByTime`, `ByLimits`.
@@ -15,7 +15,7 @@ document stands; torques are what the drive has to give, positive where they tur
 """
 
 from core.drive.answer import BalanceAnswer, DriveAnswer, balance_answer, demand_of, drive_answer
-from core.drive.axis import AboutAxis, TurningBody, TurnsWith, about_axis, across, axis_through, bodies_of
+from core.drive.axis import AboutAxis, TurningBody, TurnsWith, about_axis, across, bodies_of
 from core.drive.balance import Correction, CorrectionPlane, Unbalance, corrected, corrections, unbalance
 from core.drive.demand import STANDARD_GRAVITY, TERMS, Demand, GravityWave, gravity_wave
 from core.drive.grade import GRADES, permissible, shares
@@ -52,7 +52,7 @@ __all__ = [
     "CorrectionPlane", "Coupling", "Curves", "Demand", "DriveAnswer", "DriveSettings", "Duty", "Friction",
     "Gear", "GravityWave", "Law", "LeadScrew", "LimitCurve", "Motor", "MotorLimits", "Move", "Needs", "Peak",
     "RackOrDrum", "Repeat", "Rest", "ShaftInertia", "Stage", "Standstill", "Step", "Stop", "StopCase", "Study",
-    "Train", "TurningBody", "TurnsWith", "Unbalance", "about_axis", "across", "axis_through", "balance_answer",
+    "Train", "TurningBody", "TurnsWith", "Unbalance", "about_axis", "across", "balance_answer",
     "bodies_of", "corrected", "corrections", "demand_of", "drive_answer", "gravity_wave", "inertia_ratio",
     "permissible", "reflected", "rms_of_ramps", "shares", "standstill", "stop", "unbalance",
 ]

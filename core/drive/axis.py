@@ -1,42 +1,26 @@
-"""Axes that things turn about, what turns about which, and the inertia about them in the forms that are in use."""
+"""What turns about which axis and with which shaft, and the inertia about an axis in the forms that are in use."""
 
 from __future__ import annotations
 
-import math
 from dataclasses import dataclass
 from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.assembly import DriveAxis
+from core.assembly.axes import without_axis
 from core.drive.train import FIXED, LOAD
-from core.errors import ValueRefused
-from core.moments import Moments, unit_vector
+from core.errors import EditRefused, ValueRefused
+from core.moments import Moments, radius_of_gyration, unit_vector
 
 if TYPE_CHECKING:
     from core.arrays import FloatArray
-    from core.assembly import Assembly
-    from core.placement import Triple
-
-
-def axis_through(name: str, first: Triple, second: Triple) -> DriveAxis:
-    """Return the axis through two points (m, document frame), directed from the first to the second.
-
-    Raises:
-        ValueRefused: the points are one and the same.
-    """
-    direction = tuple(b - a for a, b in zip(first, second, strict=True))
-    if not any(direction):
-        raise ValueRefused(
-            "an axis needs two points that differ", where=name, read=f"{first} twice", remedy="Move one of them"
-        )
-    return DriveAxis(name, first, (direction[0], direction[1], direction[2]))
+    from core.assembly import Assembly, DriveAxis
 
 
 @dataclass(frozen=True)
 class AboutAxis:
-    """Inertia about an axis in the forms that are in use.
+    """Inertia about an axis in the forms that are in use; GD² and WR² are J in units of theirs.
 
     Attributes:
         mass: kg.
@@ -45,8 +29,6 @@ class AboutAxis:
         transfer: kg·m², m·d².
         offset: d, m, of the centre of mass from the axis.
         radius_of_gyration: √(J/m), m; nan where there is no mass.
-        flywheel_effect: GD² = 4·J, kg·m² (the same number in kgf·m²).
-        wr2: WR² = J, kg·m²; shown in lb·ft² or lb·in².
     """
 
     mass: float
@@ -55,8 +37,6 @@ class AboutAxis:
     transfer: float
     offset: float
     radius_of_gyration: float
-    flywheel_effect: float
-    wr2: float
 
 
 def about_axis(moments: Moments, axis: DriveAxis) -> AboutAxis:
@@ -64,9 +44,8 @@ def about_axis(moments: Moments, axis: DriveAxis) -> AboutAxis:
     mass, own = float(moments.mass), float(moments.own_inertia_along(axis.direction))
     transfer = float(moments.transfer_to_axis(axis.point, axis.direction))
     inertia = own + transfer
-    gyration = math.sqrt(max(inertia / mass, 0.0)) if mass else math.nan
     offset = float(moments.offset_from_axis(axis.point, axis.direction))
-    return AboutAxis(mass, inertia, own, transfer, offset, gyration, 4 * inertia, inertia)
+    return AboutAxis(mass, inertia, own, transfer, offset, float(radius_of_gyration(inertia, mass)))
 
 
 def across(axis: DriveAxis) -> tuple[FloatArray, FloatArray]:
@@ -76,7 +55,7 @@ def across(axis: DriveAxis) -> tuple[FloatArray, FloatArray]:
     (within 45°).
     """
     unit = axis.unit
-    mark = np.array([1.0, 0.0, 0.0]) if abs(unit[0]) < math.sqrt(0.5) else np.array([0.0, 0.0, 1.0])
+    mark = np.array([1.0, 0.0, 0.0]) if abs(unit[0]) < np.sqrt(0.5) else np.array([0.0, 0.0, 1.0])
     first = unit_vector(mark - (mark @ unit) * unit)
     return first, np.asarray(np.cross(unit, first))
 
@@ -122,8 +101,8 @@ def bodies_of(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[Turni
     """Return what turns with each entry, in their order; parts that no entry names, and fixed ones, are left out.
 
     Raises:
-        ValueRefused: two entries name the same line, or one names an axis that is not there.
-        EditRefused: an entry names a line that is not there.
+        ValueRefused: two entries name the same line.
+        EditRefused: an entry names a line or an axis that is not there.
     """
     refuse_unless_there(assembly, turning)
     by_key = {entry.key: entry for entry in turning}
@@ -136,7 +115,7 @@ def bodies_of(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[Turni
             continue
         rows = np.array([one is entry for one in entries], dtype=bool)[table.owner]
         moments = Moments(table.moments.mass[rows], table.moments.centre[rows], table.moments.spread[rows]).total()
-        bodies.append(TurningBody(name, moments, _axis_named(assembly, entry.axis), entry.shaft))
+        bodies.append(TurningBody(name, moments, axis_of(assembly, entry), entry.shaft))
     return tuple(bodies)
 
 
@@ -144,15 +123,39 @@ def refuse_unless_there(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> N
     """Refuse entries that do not go with an assembly.
 
     Raises:
-        ValueRefused: two entries name the same line, or one names an axis that is not there.
-        EditRefused: an entry names a line that is not there.
+        ValueRefused: two entries name the same line.
+        EditRefused: an entry names a line or an axis that is not there.
     """
     if len({entry.key for entry in turning}) != len(turning):
         raise ValueRefused("a line turns with one shaft only", where="what turns", remedy="Keep one of the entries")
     for entry in turning:
         if entry.key:
             assembly.node(entry.key)
-        _axis_named(assembly, entry.axis)
+        axis_of(assembly, entry)
+
+
+def axis_of(assembly: Assembly, entry: TurnsWith) -> DriveAxis:
+    """Return the axis that an entry names.
+
+    Raises:
+        EditRefused: the assembly has none of this name.
+    """
+    return assembly.axis(entry.axis or assembly.drive)
+
+
+def without_idle_axis(assembly: Assembly, turning: tuple[TurnsWith, ...], name: str) -> Assembly:
+    """Return the assembly without an axis.
+
+    Raises:
+        EditRefused: something turns about it, or it is the last axis, or the drive axis.
+    """
+    about = [assembly.name_of_line(one.key) if one.key else assembly.name for one in turning if one.axis == name]
+    if about:
+        raise EditRefused(
+            f"an axis that something turns about cannot be deleted: {', '.join(about)}", where=name,
+            remedy="Let that turn about another axis first, on its Part page",
+        )
+    return without_axis(assembly, name)
 
 
 def keys_turning(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[str, ...]:
@@ -171,13 +174,3 @@ def _entry_of(assembly: Assembly, key: str, by_key: dict[str, TurnsWith]) -> Tur
         if name in by_key:
             return by_key[name]
     return None
-
-
-def _axis_named(assembly: Assembly, name: str) -> DriveAxis:
-    for axis in assembly.axes:
-        if axis.name == (name or assembly.drive):
-            return axis
-    raise ValueRefused(
-        "the document has no such axis", where="what turns", read=repr(name),
-        remedy=f"Choose one of {', '.join(axis.name for axis in assembly.axes)}",
-    )

@@ -13,13 +13,16 @@ from typing import TYPE_CHECKING, Any, Final, TypeAlias
 
 import numpy as np
 
+from core.handover.lines import AxisLine
+from core.moments import radius_of_gyration
+
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
     from core.arrays import FloatArray
-    from core.assembly import Assembly, Finding, Line
+    from core.assembly import Assembly, DriveAxis, Finding, Line
     from core.checks import Check
-    from core.handover.lines import AxisLine
+    from core.handover.lines import Subject
     from core.handover.mesh_reading import MeshReading
     from core.moments import Moments
 
@@ -85,20 +88,22 @@ def answer_of_assembly(assembly: Assembly, path: str, overlaps: tuple[Finding, .
 
     Findings on overlaps, where somebody has looked for them, stand behind the others.
 
-    `axis` is the drive axis, with its name, point and direction. `volume_m3` is None where a part has none.
+    `axis` is the drive axis, with its name, point and direction, `axes` are all of them. `volume_m3` is None where
+    a part has none.
     A document with variants says which one the values are of ("": all lines), and the totals of each.
     """
     from core.assembly import findings_of, ledger_of
     from core.handover.sheet import subject_of_assembly
 
-    subject, axis, ledger = subject_of_assembly(assembly), assembly.drive_axis, ledger_of(assembly)
-    spot = {"name": axis.name, "point_m": list(axis.point), "direction": _listed(axis.unit)}
+    subject, ledger = subject_of_assembly(assembly), ledger_of(assembly)
+    about = {axis.name: _about(subject, axis) for axis in assembly.axes}
     return {
         **dict.fromkeys(KEYS),
         "path": path,
         "basis": subject.basis,
         **_values(subject.body, subject.form, _volume(assembly)),
-        "axis": {**(_axis(subject.body, subject.form, subject.axis) or {}), **spot},
+        "axis": about[assembly.drive],
+        "axes": list(about.values()),
         "checks": [
             {**_check(finding.check), "part": finding.name, "key": finding.key}
             for finding in (*findings_of(assembly), *overlaps)
@@ -131,6 +136,7 @@ def json_text(value: Any, indent: str = "") -> str:
 
 def _values(body: Moments | None, form: Moments | None, volume: float | None) -> Answer:
     principal = None if form is None else form.principal
+    radii = None if principal is None or form is None else radius_of_gyration(principal.moments, form.mass)
     return {
         "volume_m3": volume,
         "mass_kg": None if body is None else float(body.mass),
@@ -138,13 +144,8 @@ def _values(body: Moments | None, form: Moments | None, volume: float | None) ->
         "inertia_kgm2": None if body is None else _listed(body.inertia_about_centre),
         "principal_kgm2": None if body is None else _listed(body.principal.moments),
         "principal_axes": None if principal is None else _listed(principal.axes),
-        "radii_m": None if form is None else _listed(radii_about_principal(form)),
+        "radii_m": None if radii is None else _listed(radii),
     }
-
-
-def radii_about_principal(form: Moments) -> FloatArray:
-    """Return the radii of gyration (3,) m about the principal axes through the centre, in their order."""
-    return np.sqrt(np.maximum(form.principal.moments / form.mass, 0.0))
 
 
 def _axis(body: Moments | None, form: Moments | None, axis: AxisLine | None) -> Answer | None:
@@ -153,7 +154,19 @@ def _axis(body: Moments | None, form: Moments | None, axis: AxisLine | None) -> 
     return {
         "inertia_kgm2": None if body is None else float(body.inertia_about_axis(axis.point, axis.direction)),
         "offset_m": None if form is None else float(form.offset_from_axis(axis.point, axis.direction)),
+        "radius_of_gyration_m": None if form is None else _radius(form, axis),
     }
+
+
+def _radius(form: Moments, axis: AxisLine) -> float:
+    return float(radius_of_gyration(form.inertia_about_axis(axis.point, axis.direction), form.mass))
+
+
+def _about(subject: Subject, axis: DriveAxis) -> Answer:
+    """Return what is said of the whole about one of the document's axes."""
+    line = AxisLine(axis.name, axis.point, axis.direction)
+    spot = {"name": axis.name, "point_m": list(axis.point), "direction": _listed(axis.unit)}
+    return {**(_axis(subject.body, subject.form, line) or {}), **spot}
 
 
 def _line(line: Line) -> Answer:
@@ -171,6 +184,7 @@ def _line(line: Line) -> Answer:
         "own_inertia_kgm2": line.own_inertia,
         "transfer_kgm2": line.transfer,
         "inertia_kgm2": line.inertia,
+        "radius_of_gyration_m": line.radius_of_gyration,
         "share": line.share,
         "counts": line.counts,
     }

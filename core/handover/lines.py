@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING, Final, Literal, TypeAlias
 import numpy as np
 
 from core.arrays import settled
+from core.moments import radius_of_gyration
 from core.placement import Triple
 from core.quantity.units import UNITS, Kind, Unit
 
@@ -170,13 +171,15 @@ def _drive_lines(subject: Subject, units: UnitSet) -> list[Entry]:
     own = None if body is None else float(body.own_inertia_along(axis.direction))
     transfer = None if body is None else float(body.mass) * _offset(body, axis) ** 2
     offset = None if form is None else _offset(form, axis)
-    square = None if form is None else float(form.inertia_about_axis(axis.point, axis.direction) / form.mass)
+    radius = None
+    if form is not None:
+        radius = float(radius_of_gyration(form.inertia_about_axis(axis.point, axis.direction), form.mass))
     name = axis.name
     return [
         make.of(Kind.INERTIA, "J", f"Moment of inertia about {name}", whole),
-        make.line("GD²", f"Flywheel effect GD² = 4·J about {name}", whole, UNITS["kgf·m² GD²"]),
-        make.line("WR²", f"Flywheel effect WR² = J about {name}", whole, _wr_unit(units)),
-        make.of(Kind.LENGTH, "k", f"Radius of gyration √(J/m) about {name}", _root(square)),
+        make.line("GD²", f"Flywheel effect GD² = 4·J about {name}", whole, units.gd2),
+        make.line("WR²", f"Flywheel effect WR² = J about {name}", whole, units.wr2),
+        make.of(Kind.LENGTH, "k", f"Radius of gyration √(J/m) about {name}", radius),
         make.of(Kind.LENGTH, "d", f"Offset of the centre of mass from {name}", offset),
         make.of(
             Kind.INERTIA,
@@ -200,10 +203,6 @@ def _offset(form: Moments, axis: AxisLine) -> float:
     """Return the distance of the centre of mass from an axis, m, exactly 0 where only round-off is left."""
     reach = extent_of(form) + float(np.abs(axis.point).max())
     return float(settled(form.offset_from_axis(axis.point, axis.direction), reach))
-
-
-def _wr_unit(units: UnitSet) -> Unit:
-    return UNITS["lb·in² WR²" if unit_of(units, Kind.INERTIA).symbol == "lb·in²" else "lb·ft² WR²"]
 
 
 def _mass_lines(subject: Subject, units: UnitSet) -> list[Entry]:
@@ -288,23 +287,19 @@ def _principal_lines(subject: Subject, units: UnitSet) -> list[Entry]:
     form = subject.form
     principal: Principal | None = None if form is None else form.principal
     axes = None if principal is None else settled(principal.axes, 1.0)
-    scale = 1.0 if form is None else float(form.mass)
+    radii = None if principal is None or form is None else radius_of_gyration(principal.moments, form.mass)
     lines = []
     for i in range(3):
         value = None if principal is None or subject.body is None else float(principal.moments[i])
         label = f"Principal moment {i + 1} about the centre of mass"
         lines.append(make.of(Kind.INERTIA, f"I{i + 1}", label, value))
     for i in range(3):
-        square = None if principal is None or not scale else float(principal.moments[i]) / scale
+        radius = None if radii is None else float(radii[i])
         label = f"Radius of gyration about principal axis {i + 1} through the centre of mass"
-        lines.append(make.of(Kind.LENGTH, f"k{i + 1}", label, _root(square)))
+        lines.append(make.of(Kind.LENGTH, f"k{i + 1}", label, radius))
     for i in range(3):
         for j, letter in enumerate("xyz"):
             value = None if axes is None else float(axes[i, j])
             label = f"Principal axis {i + 1}, component along the {subject.frame}'s {letter}"
             lines.append(make.line(f"e{i + 1}_{letter}", label, value, _PLAIN))
     return lines
-
-
-def _root(square: float | None) -> float | None:
-    return None if square is None or not math.isfinite(square) else math.sqrt(max(square, 0.0))

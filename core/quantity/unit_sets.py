@@ -36,6 +36,16 @@ class UnitSet:
         known = next((known.name for known in UNIT_SETS.values() if known.units == units), None)
         return replace(changed, name=known or " ".join(changed[kind].symbol for kind in _NAMED_BY))
 
+    @property
+    def gd2(self) -> Unit:
+        """What GD² is shown in: J times 4, the number of its weight by diameter squared in kgf·m²."""
+        return UNITS["kgf·m² GD²"]
+
+    @property
+    def wr2(self) -> Unit:
+        """What WR² is shown in: J as weight by radius squared in pounds, in inches where J is shown in them."""
+        return UNITS["lb·in² WR²" if self[Kind.INERTIA].symbol == "lb·in²" else "lb·ft² WR²"]
+
     def text(self, value: float, kind: Kind, digits: int = 5, *, decimal_mark: str = ".") -> str:
         """Return an SI value with its unit, by significant digits.
 

@@ -102,7 +102,7 @@ def test_a_steel_cube_of_20_mm_weighs_62_8_g_and_has_a_sixth_of_m_a_squared(answ
 def test_the_answer_has_the_documented_keys_and_no_others(answer):
     found = answer("cube.stl", "--axis", "0,0,0;0,0,1")
     assert tuple(found) == KEYS
-    assert set(found["axis"]) == {"inertia_kgm2", "offset_m"}
+    assert set(found["axis"]) == {"inertia_kgm2", "offset_m", "radius_of_gyration_m"}
     assert all(set(check) == {"name", "ok", "text"} for check in found["checks"])
     assert found | {"path": "cube.stl", "triangles": 12, "unit": "mm", "verdict": "closed", "closed": True} == found
     assert (found["open_edges"], found["shells"], found["basis"]) == (0, 1, "computed")
@@ -125,7 +125,11 @@ def test_about_an_axis_through_a_corner_the_transfer_term_is_added(answer):
 
 def test_the_axis_point_is_in_the_unit_of_the_file_and_may_be_negative(answer):
     found = answer("cube.stl", "--unit", "in", "--axis", "-10,10,0;0,0,-1")["axis"]
-    assert found == {"inertia_kgm2": None, "offset_m": pytest.approx(20 * 0.0254, rel=1e-12)}
+    # A cube of 20 in: k² = a²/6 + d².
+    assert found == {
+        "inertia_kgm2": None, "offset_m": pytest.approx(20 * 0.0254, rel=1e-12),
+        "radius_of_gyration_m": pytest.approx((20**2 / 6 + 20**2) ** 0.5 * 0.0254, rel=1e-12),
+    }
 
 
 def test_the_axis_asked_about_is_named_in_every_label(run):

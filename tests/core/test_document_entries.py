@@ -129,7 +129,16 @@ def rim_of(data: dict) -> dict:
         ),
         (
             lambda data: data.update(drive="Table"),
-            "one of the axes has to be the drive axis, and each needs a name of its own; read 'Table' among Spindle.",
+            ("drive axis: \"drive\" names an axis that is not there; read 'Table', where the axes are Spindle. "
+            "Name one of them as the drive axis, or add an axis of that name."),
+        ),
+        (
+            lambda data: data["axes"].append(data["axes"][0]),
+            "axes: two axes have the same name; read 'Spindle'. Give one of them another name.",
+        ),
+        (
+            lambda data: data["axes"][0].update(point=[1, 2, 3], second=[1, 2, 3]),
+            "axes[0] (Spindle): an axis needs two points that differ; read (1.0, 2.0, 3.0) twice. Move one of them.",
         ),
         (
             lambda data: data["axes"][0].update(direction=[0, 0, 0]),

@@ -265,22 +265,6 @@ def test_screw_belt_and_gear_reflect_by_the_textbook_forms():
     assert reflected(rack, ()).inertia == pytest.approx(12.0 * 0.03**2, rel=1e-14)
 
 
-def test_flywheel_effect_is_the_one_of_the_trade():
-    # A drives forum's worked example: GD² 1.788 kgf·m² is WR² 1527.49 lb·in² (1527.476 with exact factors), J 0.447.
-    body = Moments.from_inertia(10.0, [0, 0, 0], np.diag([0.3, 0.3, 0.447]))
-    forms = about_axis(body, UPRIGHT)
-    assert forms.flywheel_effect == printed(1.788, 0.001)
-    assert forms.wr2 / (POUND * INCH**2) == pytest.approx(1527.49, rel=1e-5)
-    assert forms.wr2 / (POUND * INCH**2) == printed(1527.476, 0.001)
-    assert forms.radius_of_gyration == pytest.approx(math.sqrt(0.0447), rel=1e-14)
-    # The same post: WR² in lb·ft² is 5.933 times GD² in kgf·m² (exact 5.93259), and back 0.16856.
-    ratio = forms.wr2 / (POUND * FOOT**2) / forms.flywheel_effect
-    assert ratio == printed(5.93259, 1e-5)
-    assert 1 / ratio == printed(0.16856, 1e-5)
-    # From memory: GD² of a solid cylinder is half its weight by its diameter squared.
-    assert about_axis(disc(7.0, 0.15), UPRIGHT).flywheel_effect == pytest.approx(0.5 * 7.0 * 0.3**2, rel=1e-14)
-
-
 # --- common practice, no source ------------------------------------------------------------------------------------
 
 

@@ -16,6 +16,7 @@ import numpy as np
 from app.window.view.laid import LaidFaces, LaidLines, laid_faces, laid_lines
 from app.window.view.surface import Surface, surface_of
 from core.arrays import FloatArray, frozen
+from core.moments import radius_of_gyration
 
 if TYPE_CHECKING:
     from core.assembly import Assembly, Part
@@ -241,7 +242,7 @@ def _axis_line(name: str, point: FloatArray, unit: FloatArray, reach: FloatArray
 
 def _principal_arrows(total: Moments) -> tuple[Line, ...]:
     principal = total.principal
-    radii = np.sqrt(np.maximum(principal.moments, 0.0) / float(total.mass))
+    radii = radius_of_gyration(principal.moments, total.mass)
     names = _TIES[principal.tie]
     return tuple(
         Line(name, frozen(total.centre), frozen(total.centre + radius * axis))

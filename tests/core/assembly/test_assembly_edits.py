@@ -121,16 +121,17 @@ def test_fresh_keys_and_names_are_not_taken():
         (lambda a: a.moved("g", "g"), "outer: a group cannot be put into itself."),
         (
             lambda a: replace(a, drive="Table"),
-            "one of the axes has to be the drive axis, and each needs a name of its own; read 'Table' among Spindle.",
+            ("drive axis: \"drive\" names an axis that is not there; read 'Table', where the axes are Spindle. "
+            "Name one of them as the drive axis, or add an axis of that name."),
         ),
         (
             lambda a: replace(a, axes=(DriveAxis(), DriveAxis())),
-            ("one of the axes has to be the drive axis, and each needs a name of its own; "
-            "read 'Spindle' among Spindle, Spindle."),
+            "axes: two axes have the same name; read 'Spindle'. Give one of them another name.",
         ),
         (
             lambda a: replace(a, axes=()),
-            "one of the axes has to be the drive axis, and each needs a name of its own; read 'Spindle' among none.",
+            ("drive axis: \"drive\" names an axis that is not there; read 'Spindle', where the axes are none. "
+            "Name one of them as the drive axis, or add an axis of that name."),
         ),
         (
             lambda _: replace(pin("a"), driver=DataSheet()),
