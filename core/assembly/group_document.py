@@ -19,7 +19,7 @@ from core.quantity import names_in
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
-    from core.assembly.assembly import DriveAxis
+    from core.assembly.axis import DriveAxis
     from core.assembly.names import NamedDimension
 
 
@@ -67,7 +67,7 @@ def _axis_inside(axis: DriveAxis, standing: Placement) -> DriveAxis:
     reach = np.abs(axis.point).max() + np.abs(back.shift).max()
     x, y, z = settled(back.apply(axis.point), reach).tolist()
     u, v, w = settled(back.turn_only(axis.direction), np.abs(axis.direction).max()).tolist()
-    return replace(axis, point=(x, y, z), direction=(u, v, w))
+    return replace(axis, point=(x, y, z), direction=(u, v, w), second=None, typed=())
 
 
 def _used_names(assembly: Assembly, group: Group) -> Iterator[NamedDimension]:

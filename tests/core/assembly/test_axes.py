@@ -22,6 +22,7 @@ from core.assembly.axes import (
     without_axis,
 )
 from core.assembly.fields import kind_of, with_typed, with_value
+from core.assembly.group_document import document_of_group
 from core.assembly.names import NameEntry, values_of
 from core.assembly.naming import uses_of, with_entries, with_entry, with_name_changed, without_name
 from core.document import read_document_bytes, save_document
@@ -293,3 +294,11 @@ def test_a_document_whose_axis_follows_nothing_that_is_there_keeps_the_axis_wher
     text = entries["assembly.json"].replace(b'"part": "rod"', b'"part": "gone"')
     after = read_document_bytes(packed({**entries, "assembly.json": text})).assembly
     assert after.drive_axis == DriveAxis("axis of rod")
+
+
+def test_an_axis_through_two_points_lies_in_a_document_of_a_group_where_it_lay_in_the_group():
+    arm = Group("g", "arm", (rod(),), Pose((0.5, 0.0, 0.0), (0.0, np.pi / 2, 0.0)))
+    hinge = DriveAxis("Hinge", (0.5, 0.1, 0.0), second=(1.5, 0.1, 0.0))
+    inside = document_of_group(Assembly(members=(arm,), axes=(hinge,), drive="Hinge"), "g").drive_axis
+    np.testing.assert_allclose(inside.unit, [0, 0, 1], atol=1e-15)
+    np.testing.assert_allclose(inside.point, [0.0, 0.1, 0.0], atol=1e-15)
