@@ -89,6 +89,10 @@ class Machine:
         """Return the machine with other settings of its drive."""
         return self if drive is self.drive else replace(self, drive=drive)
 
+    def with_both(self, assembly: Assembly, drive: DriveSettings) -> Machine:
+        """Return the machine with another assembly and the settings that go with it."""
+        return self.with_assembly(assembly).with_drive(drive)
+
     def drive_uses_of(self, name: str) -> tuple[DriveUse, ...]:
         """Return every number of the drive that a named dimension says."""
         return drive_uses_of(self.drive, values_of(self.assembly.names), {name})

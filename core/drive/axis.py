@@ -55,9 +55,14 @@ def across(axis: DriveAxis) -> tuple[FloatArray, FloatArray]:
     (within 45°).
     """
     unit = axis.unit
-    mark = np.array([1.0, 0.0, 0.0]) if abs(unit[0]) < np.sqrt(0.5) else np.array([0.0, 0.0, 1.0])
+    mark = np.eye(3)["xyz".index(zero_mark(axis))]
     first = unit_vector(mark - (mark @ unit) * unit)
     return first, np.asarray(np.cross(unit, first))
+
+
+def zero_mark(axis: DriveAxis) -> str:
+    """Return the document's axis, "x" or "z", that angles about an axis count from; see `across`."""
+    return "x" if abs(axis.unit[0]) < np.sqrt(0.5) else "z"
 
 
 @dataclass(frozen=True)
@@ -158,11 +163,16 @@ def without_idle_axis(assembly: Assembly, turning: tuple[TurnsWith, ...], name: 
     return without_axis(assembly, name)
 
 
-def keys_turning(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[str, ...]:
-    """Return the keys of all parts that turn with some shaft."""
+def shafts_by_key(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> dict[str, str]:
+    """Return the shaft that each part turns with, by the part's key; what stands still is not in it."""
     by_key = {entry.key: entry for entry in turning}
     found = ((part.key, _entry_of(assembly, part.key, by_key)) for part in assembly.table.parts)
-    return tuple(key for key, entry in found if entry is not None and entry.shaft != FIXED)
+    return {key: entry.shaft for key, entry in found if entry is not None and entry.shaft != FIXED}
+
+
+def keys_turning(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[str, ...]:
+    """Return the keys of all parts that turn with some shaft."""
+    return tuple(shafts_by_key(assembly, turning))
 
 
 def _entry_of(assembly: Assembly, key: str, by_key: dict[str, TurnsWith]) -> TurnsWith | None:
