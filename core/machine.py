@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 
 from core.assembly import Assembly, Finding, findings_of
 from core.assembly.names import values_of
+from core.assembly.seats import seated
 from core.checks import Check
 from core.drive import BalanceAnswer, DriveAnswer, DriveSettings, balance_answer, drive_answer
 from core.drive.naming import drive_uses_of, with_names_read_again, with_names_written_anew
@@ -74,11 +75,13 @@ class Machine:
             return (Check("drive", ok=False, text=str(error)),)
 
     def with_assembly(self, assembly: Assembly) -> Machine:
-        """Return the machine with another assembly; what the drive says of lines, axes and names follows.
+        """Return the machine with another assembly: seated lines follow, and what the drive says of lines and names.
 
         Raises:
+            EditRefused: as `seated`.
             EditRefused, QuantityError: a named dimension that the drive uses is gone, or has a value it cannot take.
         """
+        assembly = seated(assembly, self.assembly)
         if assembly is self.assembly:
             return self
         drive = _following_names(self.drive, self.assembly, assembly)

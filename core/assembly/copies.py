@@ -24,7 +24,7 @@ def taken_apart(assembly: Assembly, key: str, index: int) -> Assembly:
 
     The others keep their pattern: a full ring becomes an arc, a row or an arc is split in two where a copy from its
     middle is taken. The new parts stand behind the old one, which stays the first of what is left. Marks of overlaps
-    that are meant hold for the new parts too.
+    that are meant hold for the new parts too. The old one stays seated where its first copy stays where it was.
 
     Args:
         assembly: it stays as it is.
@@ -47,7 +47,7 @@ def taken_apart(assembly: Assembly, key: str, index: int) -> Assembly:
             "there is no such copy", where=part.name, read=str(index + 1), remedy=f"Choose one from 1 to {count}"
         )
     single = _alone(part, index)
-    rest = _rest(part, index)
+    rest = _seated_as(part, _rest(part, index))
     above = assembly.groups_above(key)
     group = above[-1] if above else None
     place = [node.key for node in (group.members if group else assembly.members)].index(key)
@@ -76,8 +76,15 @@ def _alone(part: Part, index: int) -> Part:
         # A body that is round about z is its own mirror image in x.
         turn = turn @ np.diag([-1.0, 1.0, 1.0])
     pose = Pose.of(Placement(turn, shift))
-    typed = tuple(pair for pair in part.typed if not pair[0].startswith(("position", "turn", "copies")))
-    return replace(part, pose=pose, copies=Several(1), typed=typed)
+    typed = tuple(pair for pair in part.typed if not pair[0].startswith(("position", "turn", "copies", "seat")))
+    return replace(part, pose=pose, copies=Several(1), typed=typed, seat=None)
+
+
+def _seated_as(part: Part, rest: tuple[Part, ...]) -> tuple[Part, ...]:
+    """Return what is left of a part: seated is the first line, if its first copy is still the one that was seated."""
+    first = rest[0].standing
+    stays = np.allclose(first.turn[0], part.standing.turn[0]) and np.allclose(first.shift[0], part.standing.shift[0])
+    return (replace(rest[0], seat=part.seat if stays else None), *(replace(one, seat=None) for one in rest[1:]))
 
 
 def _rest(part: Part, index: int) -> tuple[Part, ...]:

@@ -5,6 +5,7 @@ Paths:
     density, per area, per length, weighed    what says the mass of a part
     known.mass, known.centre.I, known.tensor.I, known.axial, known.length    of a data sheet
     position.I, turn.I                    of the pose
+    seat.offset, seat.aside.I, seat.turn  of the seat
     axis.point.I, axis.direction.I, axis.second.I    of an axis, which has these only
     copies.count, copies.start, copies.span, copies.point.I, copies.direction.I, copies.step.I, copies.normal.I
 I counts from 0. What a person typed for a number ("3/8 in + 2 mm") is kept under the same path.
@@ -68,6 +69,11 @@ def _triple(path: str, kind: Kind, words: str, attribute: str) -> dict[str, Spot
 
 _POSE: Final = {
     **_triple("position", Kind.LENGTH, "position", "position"), **_triple("turn", Kind.ANGLE, "turn about", "turns"),
+}
+_SEAT: Final = {
+    "seat.offset": Spot(Kind.LENGTH, "offset of the seat", "offset"),
+    **{f"seat.aside.{at}": Spot(Kind.LENGTH, f"seat aside along {'uv'[at]}", "aside", at) for at in range(2)},
+    "seat.turn": Spot(Kind.ANGLE, "turn of the seat", "turn"),
 }
 _COPIES: Final = {
     "copies.count": Spot(Kind.NUMBER, "quantity", "count"),
@@ -191,10 +197,10 @@ def with_typed(line: Line, path: str, text: str) -> Line:
     return kept
 
 
-_SPOTS: Final[Mapping[str, Spot]] = {**_POSE, **_COPIES, **_KNOWN, **_DRIVER, **_AXIS}
+_SPOTS: Final[Mapping[str, Spot]] = {**_POSE, **_SEAT, **_COPIES, **_KNOWN, **_DRIVER, **_AXIS}
 # First step of a path → the attribute of the line that holds the number; an axis holds its numbers itself.
 _HOLDERS: Final = {
-    "position": "pose", "turn": "pose", "copies": "copies", "known": "body",
+    "position": "pose", "turn": "pose", "seat": "seat", "copies": "copies", "known": "body",
     **dict.fromkeys(_DRIVER, "driver"), "axis": "",
 }
 

@@ -12,6 +12,7 @@ from core.assembly.assembly import Assembly
 from core.assembly.names import in_order
 from core.assembly.naming import entries_of
 from core.assembly.nodes import Group, Part, walk
+from core.assembly.seats import seated
 from core.errors import EditRefused
 from core.placement import Placement
 from core.quantity import names_in
@@ -40,7 +41,8 @@ def document_of_group(assembly: Assembly, key: str) -> Assembly:
         )
     inside = {node.key for node, _ in walk(group.members)}
     variants = assembly.variants if any(node.only_in for node, _ in walk(group.members)) else ()
-    return Assembly(
+    # Seats on what stays behind go; their lines stay where they are.
+    return seated(Assembly(
         group.name,
         group.members,
         (_axis_inside(assembly.drive_axis, _standing(assembly, group)),),
@@ -49,7 +51,7 @@ def document_of_group(assembly: Assembly, key: str) -> Assembly:
         tuple(_used_names(assembly, group)),
         variants,
         assembly.variant if variants else "",
-    )
+    ))
 
 
 def _standing(assembly: Assembly, group: Group) -> Placement:

@@ -188,12 +188,12 @@ def _taken(document: LinkedDocument, key: str) -> tuple[tuple[Node, ...], tuple[
 
 
 def _as_read(node: Node, key: str) -> Node:
-    """Return a line of another document as it stands here: its texts and variants belong to that document."""
+    """Return a line of another document as it stands here: its texts, variants and seat belong to that document."""
     if isinstance(node, Group):
         members = tuple(_as_read(member, key) for member in node.members)
-        return replace(node, key=_inner(key, node.key), members=members, typed=(), only_in=())
+        return replace(node, key=_inner(key, node.key), members=members, typed=(), only_in=(), seat=None)
     cuts = tuple(replace(cut, key=_inner(key, cut.key), typed=()) for cut in node.cuts)
-    return replace(node, key=_inner(key, node.key), cuts=cuts, typed=(), only_in=())
+    return replace(node, key=_inner(key, node.key), cuts=cuts, typed=(), only_in=(), seat=None)
 
 
 def _inner(group: str, key: str) -> str:

@@ -23,6 +23,7 @@ if TYPE_CHECKING:
 
     from core.arrays import FloatArray, IntArray
     from core.assembly.link import Link
+    from core.assembly.seat import Seat
     from core.checks import Check
     from core.facets import Facets
     from core.measure import Measure
@@ -58,6 +59,7 @@ class Part:
         note: free text.
         cuts: what is taken out of each copy, in the order of the ledger. A weighed mass is that of the finished part.
         only_in: the variants of the document that it belongs to; none named: all of them.
+        seat: the place of another line that it follows, which then says its pose; None where it stands by itself.
 
     Whether a cut takes nothing out, or leaves nothing, is seen when its values are first asked for.
 
@@ -75,6 +77,7 @@ class Part:
     note: str = ""
     cuts: tuple[Cut, ...] = ()
     only_in: tuple[str, ...] = ()
+    seat: Seat | None = None
 
     def __post_init__(self) -> None:
         known = isinstance(self.body, KnownTensor | KnownAxial)
@@ -196,7 +199,7 @@ class Group:
     """Parts and groups that belong together and move as one.
 
     Attributes:
-        key, name, pose, copies, typed, note, only_in: as of a Part.
+        key, name, pose, copies, typed, note, only_in, seat: as of a Part.
         members: in the order of the ledger.
         link: of a linked group, the document that its members were read from; they are the last values of it.
     """
@@ -210,6 +213,14 @@ class Group:
     note: str = ""
     only_in: tuple[str, ...] = ()
     link: Link | None = None
+    seat: Seat | None = None
+
+    @cached_property
+    def holds_seats(self) -> bool:
+        """Whether a line in it is seated, however deep."""
+        return any(
+            node.seat is not None or (isinstance(node, Group) and node.holds_seats) for node in self.members
+        )
 
     @cached_property
     def table(self) -> Table:

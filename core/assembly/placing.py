@@ -35,7 +35,7 @@ def frame_of(assembly: Assembly, key: str) -> Placement:
     above: tuple[AnyLine, ...] = assembly.groups_above(node.key)
     if assembly.is_cut(key):
         above = (*above, node)
-    return reduce(lambda outer, line: outer @ _first(line.copies, line.pose.placement), above, Placement.identity())
+    return reduce(lambda outer, line: outer @ first_of(line.copies, line.pose.placement), above, Placement.identity())
 
 
 def standing_of(assembly: Assembly, key: str) -> Placement:
@@ -45,7 +45,7 @@ def standing_of(assembly: Assembly, key: str) -> Placement:
         EditRefused: no line has this key.
     """
     line = assembly.line(key)
-    return frame_of(assembly, key) @ _first(line.copies, line.pose.placement)
+    return frame_of(assembly, key) @ first_of(line.copies, line.pose.placement)
 
 
 def pose_in_document(assembly: Assembly, key: str) -> Pose:
@@ -148,16 +148,16 @@ def mass_centre_of(assembly: Assembly, key: str) -> FloatArray | None:
 
 def _moved(assembly: Assembly, key: str, motion: Placement) -> Assembly:
     line, outer = assembly.line(key), frame_of(assembly, key)
-    first = _first(line.copies, line.pose.placement)
+    first = first_of(line.copies, line.pose.placement)
     within = outer.inverse() @ motion @ outer
-    placed = Pose.of(_unled(line.copies, within @ first))
+    placed = Pose.of(unled(line.copies, within @ first))
     if np.array_equal(motion.turn, np.eye(3)):
         # A mere shift leaves the turns as they were typed.
         placed = replace(placed, turns=line.pose.turns)
     return posed(assembly, key, placed)
 
 
-def _first(copies: Copies, placed: Placement) -> Placement:
+def first_of(copies: Copies, placed: Placement) -> Placement:
     """Return where the first copy stands of what was placed: a ring may turn it on, all others leave it there."""
     if not isinstance(copies, Ring):
         return placed
@@ -165,6 +165,6 @@ def _first(copies: Copies, placed: Placement) -> Placement:
     return lead @ placed if copies.turning else Placement(placed.turn, lead.apply(placed.shift))
 
 
-def _unled(copies: Copies, first: Placement) -> Placement:
+def unled(copies: Copies, first: Placement) -> Placement:
     """Return what was placed, from where its first copy stands."""
-    return _first(replace(copies, start=-copies.start), first) if isinstance(copies, Ring) else first
+    return first_of(replace(copies, start=-copies.start), first) if isinstance(copies, Ring) else first

@@ -26,6 +26,8 @@ from core.assembly import (
 from core.assembly.assembly import DEEPEST, MeantOverlap
 from core.assembly.link import Link
 from core.assembly.names import NameEntry, evaluated
+from core.assembly.seat import Anchor, Seat
+from core.assembly.seats import check_seats, seated
 from core.document.archive import Archive
 from core.document.drive_data import machine_with
 from core.document.layout import data_of
@@ -53,6 +55,7 @@ if TYPE_CHECKING:
         MeshEntry,
         NodeEntry,
         PoseEntry,
+        SeatEntry,
         ShapeEntry,
     )
     from core.machine import Machine
@@ -168,7 +171,9 @@ class _Builder:
         members = self._nodes(document.members, "", 0)
         meant = tuple(_meant(entry, f"meant[{i}]") for i, entry in enumerate(document.meant))
         more = _names_and_variants(document)
-        return made_at("", lambda: Assembly(document.name, members, axes, document.drive, meant, **more))
+        read = made_at("", lambda: Assembly(document.name, members, axes, document.drive, meant, **more))
+        made_at("", lambda: check_seats(read))
+        return made_at("", lambda: seated(read))
 
     def _nodes(self, entries: Sequence[NodeEntry], above: str, depth: int) -> tuple[Node, ...]:
         if depth >= DEEPEST:
@@ -183,16 +188,16 @@ class _Builder:
         copies = made_at(f"{place}.copies {said}", lambda: _copies(entry.copies))
         if entry.kind == "group":
             members = self._nodes(entry.members, f"{place}.", depth + 1)
-            only_in = tuple(entry.only_in)
+            only_in, seat = tuple(entry.only_in), _seat(entry.seat)
             link = None if entry.link is None else Link(path_of(self._folder, entry.link.path), entry.link.sha256)
-            return Group(entry.key, entry.name, members, pose, copies, typed, entry.note, only_in, link)
+            return Group(entry.key, entry.name, members, pose, copies, typed, entry.note, only_in, link, seat)
         driver = made_at(f"{place}.driver {said}", lambda: _driver(entry.driver))
         body = made_at(f"{place}.body {said}", lambda: self._body(entry.body))
         cuts = tuple(self._cut(cut, f"{place}.cuts[{i}] ({cut.name})") for i, cut in enumerate(entry.cuts))
-        only_in = tuple(entry.only_in)
+        only_in, seat = tuple(entry.only_in), _seat(entry.seat)
         part = made_at(
             f"{place} {said}",
-            lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note, cuts, only_in),
+            lambda: Part(entry.key, entry.name, body, driver, pose, copies, typed, entry.note, cuts, only_in, seat),
         )
         # What cannot be cut out is refused here, where its place in the file is known; the part keeps what it cost.
         _ = made_at(f"{place}.cuts", lambda: part.cutting)
@@ -270,6 +275,13 @@ def _axis(entry: AxisEntry, place: str) -> DriveAxis:
 
 def _pose(entry: PoseEntry) -> Pose:
     return Pose(entry.position, entry.turns)
+
+
+def _seat(entry: SeatEntry | None) -> Seat | None:
+    if entry is None:
+        return None
+    moving, target = (Anchor(one.key, one.datum) for one in (entry.moving, entry.target))
+    return Seat(moving, target, entry.facing, entry.offset, entry.aside, entry.turn)
 
 
 def _copies(entry: CopiesEntry) -> Copies:

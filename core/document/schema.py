@@ -23,6 +23,7 @@ from core.document.schema_base import (
     Six,
     Text,
     Three,
+    Two,
     Typed,
 )
 from core.shapes.profile import MOST_LOOPS, MOST_POINTS
@@ -208,6 +209,24 @@ class NamedEntry(Entry):
     note: Text
 
 
+class AnchorEntry(Entry):
+    """A named place of a line, or an axis of the document where the key is ""."""
+
+    key: Name
+    datum: Name
+
+
+class SeatEntry(Entry):
+    """What holds a line at a place of another one; its pose follows from it."""
+
+    moving: AnchorEntry
+    target: AnchorEntry
+    facing: Literal["against", "along"]
+    offset: Number
+    aside: Two
+    turn: Number
+
+
 class PartEntry(Entry):
     """One line of the parts list."""
 
@@ -222,6 +241,7 @@ class PartEntry(Entry):
     driver: DriverEntry
     cuts: Annotated[list[CutEntry], Field(max_length=MOST_CUT_COPIES)] = Field(default_factory=list)
     only_in: OnlyIn = Field(default_factory=list)
+    seat: SeatEntry | None = None
 
 
 class LinkEntry(Entry):
@@ -244,6 +264,7 @@ class GroupEntry(Entry):
     members: Annotated[list[NodeEntry], Field(max_length=MOST_NODES)]
     only_in: OnlyIn = Field(default_factory=list)
     link: LinkEntry | None = None
+    seat: SeatEntry | None = None
 
 
 NodeEntry: TypeAlias = Annotated[PartEntry | GroupEntry, Field(discriminator="kind")]

@@ -27,6 +27,7 @@ from core.placement import Copies, Mirrored, Pose, Ring, Row
 from core.shapes import OutlinedShape, Shape
 
 if TYPE_CHECKING:
+    from core.assembly.seat import Seat
     from core.machine import Machine
 
 
@@ -99,8 +100,10 @@ def _link(group: Group, folder: str) -> Data:
 
 def _common(line: Node | Cut) -> Data:
     only_in = {} if isinstance(line, Cut) or not line.only_in else {"only_in": list(line.only_in)}
+    seat = {} if isinstance(line, Cut) or line.seat is None else {"seat": _seat(line.seat)}
     return {
         **only_in,
+        **seat,
         "key": line.key,
         "name": line.name,
         "note": line.note,
@@ -112,6 +115,17 @@ def _common(line: Node | Cut) -> Data:
 
 def _pose(pose: Pose) -> Data:
     return {"position": _floats(pose.position), "turns": _floats(pose.turns)}
+
+
+def _seat(seat: Seat) -> Data:
+    places = {
+        name: {"key": anchor.key, "datum": anchor.datum}
+        for name, anchor in (("moving", seat.moving), ("target", seat.target))
+    }
+    return {
+        **places, "facing": seat.facing, "offset": float(seat.offset), "aside": _floats(seat.aside),
+        "turn": float(seat.turn),
+    }
 
 
 def _copies(copies: Copies) -> Data:
