@@ -18,7 +18,7 @@ from window_driver import (
     trigger,
 )
 
-from app.window.pages.sheet import COPY, LABEL, VALUE
+from app.window.pages.values import COPY, LABEL, VALUE
 from core.handover import Entry
 from core.quantity import UNITS
 
@@ -146,11 +146,11 @@ def test_ctrl_j_in_an_empty_document_copies_nothing_and_says_so(window):
 
 
 def rows(window):
-    return {row.symbol: at for at, row in enumerate(window.sheet.model.rows) if isinstance(row, Entry)}
+    return {row.symbol: at for at, row in enumerate(window.sheet.table.values.rows) if isinstance(row, Entry)}
 
 
 def entry(window, symbol):
-    return window.sheet.model.rows[rows(window)[symbol]]
+    return window.sheet.table.values.rows[rows(window)[symbol]]
 
 
 def test_an_empty_sheet_says_what_to_do_next(window):
@@ -166,13 +166,13 @@ def test_an_empty_sheet_says_what_to_do_next(window):
 
 def test_a_click_on_copy_and_return_copy_one_value(filled):
     table = filled.sheet.table
-    at = filled.sheet.model.index(rows(filled)["J"], COPY)
+    at = filled.sheet.table.values.index(rows(filled)["J"], COPY)
     table.scrollTo(at)
     QTest.mouseClick(table.viewport(), Qt.MouseButton.LeftButton, pos=table.visualRect(at).center())
     assert float(clipboard()) == same(filled.session.ledger.total.inertia)
     assert filled.told.text() == f"Copied {clipboard()} (J in kg·m²)"
     table.setFocus()
-    table.setCurrentIndex(filled.sheet.model.index(rows(filled)["m"], VALUE))
+    table.setCurrentIndex(filled.sheet.table.values.index(rows(filled)["m"], VALUE))
     QTest.keyClick(table, Qt.Key.Key_Return)
     assert float(clipboard()) == same(filled.session.ledger.total.mass)
 
@@ -182,7 +182,7 @@ def test_selected_values_are_copied_one_below_the_other(filled):
     table.setFocus()
     for symbol in ("m", "J"):
         table.selectionModel().select(
-            filled.sheet.model.index(rows(filled)[symbol], 0),
+            filled.sheet.table.values.index(rows(filled)[symbol], 0),
             table.selectionModel().SelectionFlag.Select | table.selectionModel().SelectionFlag.Rows,
         )
     QTest.keyClick(table, Qt.Key.Key_C, CTRL)
@@ -203,7 +203,7 @@ def test_the_whole_sheet_is_name_value_unit_in_columns(offset):
     assert value[moment] == same(filled.session.ledger.total.inertia)
     assert unit[moment] == "kg·m²"
     assert value["Mass"] == same(filled.session.ledger.total.mass)
-    entries = [row for row in filled.sheet.model.rows if isinstance(row, Entry)]
+    entries = [row for row in filled.sheet.table.values.rows if isinstance(row, Entry)]
     assert all(isinstance(value[row.label], float) for row in entries)
     assert any(value[row.label] < 0 for row in entries)
     assert filled.told.text().startswith("Copied the sheet: ")
@@ -231,13 +231,13 @@ def test_the_tensor_moves_with_its_point_and_turns_with_its_axes(offset):
     assert entry(offset, "Ixx").si == pytest.approx(about_centre[0, 0], rel=1e-12)
     choose(offset.sheet.about, "document's origin")
     transfer = total.mass * (total.centre[1] ** 2 + total.centre[2] ** 2)
-    moved = next(row for row in offset.sheet.model.rows if isinstance(row, Entry) and row.symbol.startswith("Ixx"))
+    moved = next(row for row in offset.sheet.table.values.rows if isinstance(row, Entry) and row.symbol.startswith("Ixx"))
     assert moved.si == pytest.approx(about_centre[0, 0] + transfer, rel=1e-12)
     assert "document's origin" in moved.label
     choose(offset.sheet.about, "centre of mass")
     choose(offset.sheet.along, "principal axes")
-    diagonal = [row.si for row in offset.sheet.model.rows if isinstance(row, Entry) and row.symbol in {"Ixx", "Iyy", "Izz"}]
-    moments = [row.si for row in offset.sheet.model.rows if isinstance(row, Entry) and row.symbol in {"I1", "I2", "I3"}]
+    diagonal = [row.si for row in offset.sheet.table.values.rows if isinstance(row, Entry) and row.symbol in {"Ixx", "Iyy", "Izz"}]
+    moments = [row.si for row in offset.sheet.table.values.rows if isinstance(row, Entry) and row.symbol in {"I1", "I2", "I3"}]
     assert moments == same(list(total.principal.moments))
     assert not diagonal or diagonal == same(moments)
 
@@ -253,8 +253,8 @@ def test_the_sheet_of_the_selected_line_follows_the_selection(filled):
 
 def test_the_sheet_names_the_unit_the_basis_and_the_caution(filled):
     at = rows(filled)["J"]
-    assert filled.sheet.model.index(at, LABEL).data() == "Moment of inertia about the drive axis Spindle"
-    assert filled.sheet.model.index(at, 3).data() == "kg·m²"
+    assert filled.sheet.table.values.index(at, LABEL).data() == "Moment of inertia about the drive axis Spindle"
+    assert filled.sheet.table.values.index(at, 3).data() == "kg·m²"
     assert "cover" in filled.sheet.told.text()
     assert "responsible engineer" in filled.sheet.told.text()
 
