@@ -132,7 +132,7 @@ class MainWindow(QMainWindow):
         s.selection_changed.connect(self._show_in_view)
         s.refused.connect(self.notice.say)
         s.said.connect(self._say)
-        s.changed.connect(self.notice.clear_refusal)
+        s.edited.connect(self.notice.clear_refusal)
         self._silence.timeout.connect(self.told.clear)
         self.files.opened.connect(self._opened)
         self.files.meshes_chosen.connect(self.add_meshes)

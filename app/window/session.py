@@ -31,6 +31,7 @@ class Session(QObject):
 
     Signals:
         changed: the document is another one; ledger and findings are those of the new one.
+        edited: the document is another one because of somebody at the window, not of work in the background.
         selection_changed: other lines are selected.
         shown_differently: the same assembly in other units or with another decimal mark.
         placed_differently: lines are placed by hand in another manner.
@@ -41,6 +42,7 @@ class Session(QObject):
     """
 
     changed = Signal()
+    edited = Signal()
     selection_changed = Signal()
     shown_differently = Signal()
     placed_differently = Signal()
@@ -257,6 +259,7 @@ class Session(QObject):
         kept = frozenset(key for key in wanted if key in self.assembly)
         moved = kept != self.selected
         self.selected = kept
+        self.edited.emit()
         self.changed.emit()
         if moved:
             self.selection_changed.emit()

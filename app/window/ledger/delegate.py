@@ -103,7 +103,8 @@ class LedgerDelegate(QStyledItemDelegate):
 
     def setEditorData(self, editor: QWidget, index: Index) -> None:
         """Put the text to edit into the editor, all of it selected."""
-        if isinstance(editor, QLineEdit):
+        # What is being typed stays when the ledger is judged anew, as by a search that ended in the background.
+        if isinstance(editor, QLineEdit) and not editor.isModified():
             editor.setText(str(index.data(Qt.ItemDataRole.EditRole) or ""))
             editor.selectAll()
 

@@ -121,6 +121,15 @@ def test_a_bad_cell_is_refused_in_place_with_the_old_value_kept_and_the_text_lef
     assert not is_editing(filled)
 
 
+def test_what_is_being_typed_stays_when_the_ledger_is_judged_anew(filled):
+    editor = open_editor(filled, "plate", "name")
+    QTest.keyClicks(editor, "dis")
+    filled.session.look_again()
+    QApplication.processEvents()
+    QTest.keyClicks(editor, "c")
+    assert editor.text() == "disc"
+
+
 def test_a_bad_cell_left_by_the_mouse_keeps_the_old_value_and_says_why_above(filled):
     before = filled.session.assembly
     editor = open_editor(filled, "plate", "material")
@@ -130,6 +139,7 @@ def test_a_bad_cell_left_by_the_mouse_keeps_the_old_value_and_says_why_above(fil
     QApplication.processEvents()
     assert filled.session.assembly is before
     assert "cheese" in filled.notice.words.text()
+    filled.session.look_again()
     assert filled.notice.isVisible()
     type_cell(filled, "plate", "name", "disc")
     assert not filled.notice.isVisible()
