@@ -9,7 +9,8 @@ from PySide6.QtCore import QSize, Qt
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 from PySide6.QtWidgets import QMenu, QSizePolicy, QToolBar, QToolButton, QWidget
 
-from app.window.commands import lay_on_drive_axis
+from app.window.commands import drive_about_part, lay_on_drive_axis
+from app.window.dialogs.axis import AxisDialog
 from app.window.dialogs.take_apart import TakeApartDialog
 from app.window.fields import ChoiceField
 from app.window.style import GRID, Words, icon
@@ -20,6 +21,7 @@ if TYPE_CHECKING:
     from collections.abc import Callable
 
     from app.window.main import MainWindow
+    from core.assembly import DriveAxis
 
 Keys = QKeySequence.StandardKey
 LOOKS = (("front", "1"), ("back", "2"), ("left", "3"), ("right", "4"), ("top", "5"), ("bottom", "6"), ("iso", "7"))
@@ -118,13 +120,19 @@ class Actions:
             Command("Move down", lambda: w.move_line(1), "Alt+Down"),
             Command("Move out of its group", w.move_out, "Alt+Left"), None,
             Command(
+                "Make its axis the drive axis", lambda: drive_about_part(w.session),
+                tip="The selected part's own axis becomes the drive axis, and follows the part.",
+            ),
+            Command(
                 "Lay own axis on the drive axis", lambda: lay_on_drive_axis(w.session, w.session.selected), "Ctrl+L",
                 tip="Moves the selected lines no further than it takes to lay their own axes on the drive axis.",
             ),
             Command("Take one copy apart…", lambda: w.files.show_dialog(TakeApartDialog(w.session, w))),
         ])
         self._fill(bar.addMenu("&Axis"), [
-            Command("Edit drive axis…", w.edit_axis), Command("New axis…", w.new_axis),
+            Command("Axes…", w.edit_axes, "Ctrl+Shift+A", tip="All axes, with J of the whole about each."), None,
+            Command("Edit drive axis…", lambda: self._ask_axis(w.session.assembly.drive_axis)),
+            Command("New axis…", lambda: self._ask_axis(None)),
         ])
         self._fill(bar.addMenu("&Hand-over"), [
             Command("Copy J about the drive axis", w.copy_inertia, "Ctrl+J"), Command("Copy sheet", w.copy_sheet), None,
@@ -132,6 +140,9 @@ class Actions:
         ])
         self._view_menu(bar.addMenu("&View"))
         self._fill(bar.addMenu("&Help"), [Command("About Masswright", w.show_about)])
+
+    def _ask_axis(self, axis: DriveAxis | None) -> None:
+        self._window.files.show_dialog(AxisDialog(self._window.session, axis, self._window))
 
     def _marks_menu(self) -> QMenu:
         menu = QMenu("Decimal mark", self._window)

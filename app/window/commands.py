@@ -7,6 +7,7 @@ from functools import reduce
 from typing import TYPE_CHECKING
 
 from core.assembly import Assembly, Group, Node, Part, ShapeBody
+from core.assembly.axes import driven_about_part
 from core.assembly.own_axis import laid_on_axis, own_axis_of
 from core.assembly.placing import outermost
 from core.errors import EditRefused, MasswrightError
@@ -115,3 +116,13 @@ def lay_on_drive_axis(session: Session, keys: Iterable[str]) -> None:
     )
     if taken and session.assembly is before:
         session.said.emit(f"{name} {'lies' if len(lines) == 1 else 'lie'} on {axis.name} already")
+
+
+def drive_about_part(session: Session) -> None:
+    """Make the own axis of the selected part the drive axis, in one edit."""
+    if len(session.selected) != 1:
+        session.refused.emit("The drive axis is the axis of one part. Select one line of the ledger.")
+        return
+    key = next(iter(session.selected))
+    name = session.assembly.node_of_line(key).name
+    session.edit(f"Drive about the axis of {name}", lambda before: driven_about_part(before, key))

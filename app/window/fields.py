@@ -381,3 +381,8 @@ class TripleField(QWidget):
         read = [field.read() for field in self.fields]
         values = [understood.value for understood in read if understood is not None]
         return (values[0], values[1], values[2]) if len(values) == len(self.fields) else None
+
+    def texts(self) -> list[str]:
+        """Return what stands for each of the three: as typed, or the number where that says it all."""
+        read = [field.read() for field in self.fields]
+        return [understood.text if understood is not None else "" for understood in read]

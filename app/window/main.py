@@ -26,12 +26,13 @@ from app.window.actions import Actions
 from app.window.changed_files import ChangedFiles
 from app.window.crash import CrashReporter
 from app.window.dialogs.add_mesh import AddMeshDialog
-from app.window.dialogs.axis import AxisDialog
+from app.window.dialogs.axes import AxesDialog
 from app.window.dialogs.known_part import KnownPartDialog
 from app.window.dialogs.names import NamesDialog
 from app.window.dialogs.variants import VariantsDialog
 from app.window.files import Files
 from app.window.gallery.panel import GalleryPanel
+from app.window.ledger.columns import COLUMNS
 from app.window.ledger.view import LedgerPane
 from app.window.numbers import copied, preview, shown
 from app.window.overlap_watch import OverlapWatch
@@ -45,6 +46,7 @@ from app.window.start import Notice, StartPanel, stacked
 from app.window.style import Words, dress, icon
 from app.window.view import ViewPane, prepare_opengl
 from core.assembly import Node, Part, walk
+from core.assembly.axes import driven_about
 from core.quantity import UNIT_SETS, Kind
 
 if TYPE_CHECKING:
@@ -165,7 +167,7 @@ class MainWindow(QMainWindow):
             ("window", (self.saveGeometry, self.restoreGeometry)),
             ("below", (self.below.saveState, self.below.restoreState)),
             ("halves", (self.halves.saveState, self.halves.restoreState)),
-            ("columns", (self.ledger.save_columns, self.ledger.restore_columns)),
+            (f"columns {len(COLUMNS)}", (self.ledger.save_columns, self.ledger.restore_columns)),
         ]
 
     # What is shown
@@ -241,7 +243,7 @@ class MainWindow(QMainWindow):
         self._show_in_view()
 
     def _choose_axis(self, name: object) -> None:
-        self.session.edit(f"Drive axis {name}", lambda before: replace(before, drive=str(name)))
+        self.session.edit(f"Drive axis {name}", lambda before: driven_about(before, str(name)))
 
     def _choose_variant(self, name: object) -> None:
         words = f"Variant {name}" if name else "All lines count"
@@ -325,9 +327,9 @@ class MainWindow(QMainWindow):
             name = self.session.assembly.name_of_line(key)
             self.session.edit(f"{verb} {name}", lambda before: change(before, key))
 
-    def edit_axis(self) -> None:
-        """Edit the drive axis."""
-        self.files.show_dialog(AxisDialog(self.session, self.session.assembly.drive_axis, self))
+    def edit_axes(self) -> None:
+        """Show the table of axes beside the window."""
+        self.files.show_beside(AxesDialog(self.session, self))
 
     def edit_names(self) -> None:
         """Show the table of named dimensions beside the window."""
@@ -336,10 +338,6 @@ class MainWindow(QMainWindow):
     def edit_variants(self) -> None:
         """Show the list of variants beside the window."""
         self.files.show_beside(VariantsDialog(self.session, self))
-
-    def new_axis(self) -> None:
-        """Add an axis; it becomes the drive axis."""
-        self.files.show_dialog(AxisDialog(self.session, None, self))
 
     # Copying
 

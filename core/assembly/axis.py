@@ -45,7 +45,7 @@ class DriveAxis:
             x, y, z = (there - here for here, there in zip(self.point, self.second, strict=True))
             if not any((x, y, z)):
                 raise ValueRefused(
-                    "an axis needs two points that differ", read=f"{self.point} twice", remedy="Move one of them"
+                    "an axis needs two points that differ", read=f"{self.point} m twice", remedy="Move one of them"
                 )
             object.__setattr__(self, "direction", (x, y, z))
         unit_vector(self.direction)

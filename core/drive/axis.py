@@ -148,14 +148,23 @@ def axis_of(assembly: Assembly, entry: TurnsWith) -> DriveAxis:
     return assembly.axis(entry.axis or assembly.drive)
 
 
+def turning_about(assembly: Assembly, turning: tuple[TurnsWith, ...], name: str) -> tuple[str, ...]:
+    """Return the names of what entries let turn about the axis of this name, with any shaft."""
+    return tuple(
+        assembly.node(entry.key).name if entry.key else "the whole document"
+        for entry in turning
+        if entry.shaft != FIXED and (entry.axis or assembly.drive) == name
+    )
+
+
 def without_idle_axis(assembly: Assembly, turning: tuple[TurnsWith, ...], name: str) -> Assembly:
     """Return the assembly without an axis.
 
     Raises:
         EditRefused: something turns about it, or it is the last axis, or the drive axis.
     """
-    about = [assembly.name_of_line(one.key) if one.key else assembly.name for one in turning if one.axis == name]
-    if about:
+    about = turning_about(assembly, turning, name)
+    if about and name != assembly.drive:
         raise EditRefused(
             f"an axis that something turns about cannot be deleted: {', '.join(about)}", where=name,
             remedy="Let that turn about another axis first, on its Part page",

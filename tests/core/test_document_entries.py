@@ -138,7 +138,7 @@ def rim_of(data: dict) -> dict:
         ),
         (
             lambda data: data["axes"][0].update(point=[1, 2, 3], second=[1, 2, 3]),
-            "axes[0] (Spindle): an axis needs two points that differ; read (1.0, 2.0, 3.0) twice. Move one of them.",
+            "axes[0] (Spindle): an axis needs two points that differ; read (1.0, 2.0, 3.0) m twice. Move one of them.",
         ),
         (
             lambda data: data["axes"][0].update(direction=[0, 0, 0]),

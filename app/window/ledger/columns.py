@@ -11,6 +11,7 @@ if TYPE_CHECKING:
     from collections.abc import Callable
 
     from core.assembly import Line
+    from core.quantity import Unit, UnitSet
 
 
 @dataclass(frozen=True)
@@ -24,6 +25,8 @@ class Column:
         value: the number in SI, or the text, of a line; None where there is none.
         tip: what it means and how it is formed.
         digits: significant digits shown.
+        unit: what it is shown in where that is not the unit of its kind.
+        at_first: whether it is shown until somebody chooses.
 
     """
 
@@ -33,6 +36,8 @@ class Column:
     value: Callable[[Line], float | str | int | None]
     tip: str
     digits: int = 4
+    unit: Callable[[UnitSet], Unit] | None = None
+    at_first: bool = True
 
 
 def _centre(axis: int) -> Callable[[Line], float | None]:
@@ -64,6 +69,20 @@ COLUMNS: tuple[Column, ...] = (
     Column(
         "inertia", "J about {axis}", Kind.INERTIA, lambda line: line.inertia,
         "Inertia about the drive axis: own J + m·d².",
+    ),
+    Column(
+        "gd2", "GD²", Kind.INERTIA, lambda line: line.inertia,
+        "Flywheel effect about the drive axis by diameter: GD² = 4·J, as weight by diameter squared.",
+        unit=lambda units: units.gd2, at_first=False,
+    ),
+    Column(
+        "wr2", "WR²", Kind.INERTIA, lambda line: line.inertia,
+        "Flywheel effect about the drive axis by radius: WR² = J, as weight in pounds by radius squared.",
+        unit=lambda units: units.wr2, at_first=False,
+    ),
+    Column(
+        "gyration", "k about {axis}", Kind.LENGTH, lambda line: line.radius_of_gyration,
+        "Radius of gyration about the drive axis: √(J/m) of all copies together.", at_first=False,
     ),
     Column(
         "share", "Share of J", Kind.NUMBER, lambda line: line.share,

@@ -181,8 +181,10 @@ class LedgerModel(QAbstractItemModel):
         return None
 
     def _unit_text(self, section: int) -> str:
-        kind = COLUMNS[section].kind
-        return "" if kind in {None, Kind.NUMBER} else self.session.units[Kind(kind)].symbol
+        if COLUMNS[section].kind in {None, Kind.NUMBER}:
+            return ""
+        # The heading of a flywheel effect says already which one it is.
+        return _unit(self.session, section).symbol.removesuffix(f" {COLUMNS[section].heading}")
 
     def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> object:
         """Return a cell's text, the text to edit or to copy, its line, or its tool tip."""
@@ -336,7 +338,9 @@ def cell_to_copy(session: Session, line: Line, column: int) -> float | int | str
 
 
 def _unit(session: Session, column: int) -> Unit:
-    kind = COLUMNS[column].kind
+    kind, unit = COLUMNS[column].kind, COLUMNS[column].unit
+    if unit is not None:
+        return unit(session.units)
     return UNITS["%"] if kind in {None, Kind.NUMBER} else session.units[Kind(str(kind))]
 
 

@@ -31,7 +31,7 @@ if TYPE_CHECKING:
 
 # All columns fit into a window 1280 wide, with a scroll bar beside them.
 WIDTHS = {"name": 200, "count": 48, "material": 180, "mass": 90, "x": 76, "y": 76, "z": 80, "own": 104, "transfer": 104,
-          "inertia": 120, "share": 160}
+          "inertia": 120, "gd2": 110, "wr2": 110, "gyration": 104, "share": 160}
 
 
 class LedgerTree(QTreeView):
@@ -213,8 +213,8 @@ class LedgerPane(QWidget):
         self._under.addWidget(self.foot)
         layout.addLayout(self._under)
         self.columns = self._columns_menu()
-        self._tell_columns()
         self._tie_columns()
+        self._tell_columns()
         self.tree.verticalScrollBar().installEventFilter(self)
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
@@ -237,6 +237,7 @@ class LedgerPane(QWidget):
         self.tree.horizontalScrollBar().valueChanged.connect(self.foot.horizontalScrollBar().setValue)
         for column in COLUMNS:
             header.resizeSection(INDEX[column.key], WIDTHS[column.key])
+            self.show_column(INDEX[column.key], column.at_first)
         header.setContextMenuPolicy(Qt.ContextMenuPolicy.CustomContextMenu)
         header.customContextMenuRequested.connect(self._offer_columns)
 

@@ -23,7 +23,7 @@ if TYPE_CHECKING:
 
 # ISO 128 chain line, narrow: long dash, gap, dot, gap, in line widths.
 CHAIN = (16.0, 3.0, 0.6, 3.0)
-_AXIS_WIDTH, _ARROW_WIDTH, _FOUND_WIDTH, _CASING = 1.4, 1.8, 1.6, 3.0
+_AXIS_WIDTH, _OTHER_AXIS_WIDTH, _ARROW_WIDTH, _FOUND_WIDTH, _CASING = 1.4, 0.8, 1.8, 1.6, 3.0
 _HEAD_LENGTH, _HEAD_WIDTH = 11.0, 7.0
 _DISC = 7.0
 _TRIAD, _TRIAD_AT = 26.0, 44.0
@@ -67,7 +67,7 @@ class Overlay(QWidget):
         painter = QPainter(self)
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
         self._draw_found(painter, picture)
-        names = self._draw_axis(painter, picture)
+        names = self._draw_axes(painter, picture)
         names += self._draw_principal(painter, picture)
         taken = [self._draw_centre(painter, picture)] if picture.scene.mass_centre is not None else []
         names += [*self._draw_triad(painter, picture), *self._emphasised(picture)]
@@ -106,10 +106,16 @@ class Overlay(QWidget):
             painter.setPen(QPen(qcolor(colour), width))
             painter.drawLines(lines)
 
-    def _draw_axis(self, painter: QPainter, picture: Picture) -> list[_Name]:
-        axis, theme = picture.scene.axis, picture.theme
-        ends = None if axis is None else self._line_on_screen(picture, axis)
-        if axis is None or ends is None:
+    def _draw_axes(self, painter: QPainter, picture: Picture) -> list[_Name]:
+        """Draw all axes, the drive axis last, wider and with its name in bold, which comes first to find room."""
+        others = [self._draw_axis(painter, picture, axis, _OTHER_AXIS_WIDTH) for axis in picture.scene.other_axes]
+        drive = picture.scene.axis
+        names = [] if drive is None else self._draw_axis(painter, picture, drive, _AXIS_WIDTH)
+        return [*names, *(name for each in others for name in each)]
+
+    def _draw_axis(self, painter: QPainter, picture: Picture, axis: Line, width: float) -> list[_Name]:
+        theme, ends = picture.theme, self._line_on_screen(picture, axis)
+        if ends is None:
             return []
         start, end = ends
         run = end - start
@@ -117,15 +123,17 @@ class Overlay(QWidget):
             # Seen end on, an axis is a small centre cross.
             for dx, dy in ((10.0, 0.0), (0.0, 10.0)):
                 cross = (end - QPointF(dx, dy), end + QPointF(dx, dy))
-                self._stroke(painter, picture, cross, theme.drive, _AXIS_WIDTH)
+                self._stroke(painter, picture, cross, theme.drive, width)
         else:
-            self._case(painter, picture, start, end, _AXIS_WIDTH)
-            pen = QPen(qcolor(theme.drive), _AXIS_WIDTH)
+            self._case(painter, picture, start, end, width)
+            pen = QPen(qcolor(theme.drive), width)
             pen.setCapStyle(Qt.PenCapStyle.FlatCap)
-            pen.setDashPattern(list(CHAIN))
+            # A pattern is in line widths: the dashes of a thin line are as long as those of the drive axis.
+            pen.setDashPattern([each * _AXIS_WIDTH / width for each in CHAIN])
             painter.setPen(pen)
             painter.drawLine(start, end)
-        return [self._name(axis.name, end, run, theme.drive)]
+        bold = axis is picture.scene.axis and bool(picture.scene.other_axes)
+        return [self._name(axis.name, end, run, theme.drive, bold=bold)]
 
     def _draw_principal(self, painter: QPainter, picture: Picture) -> list[_Name]:
         theme, names = picture.theme, []

@@ -19,7 +19,7 @@ from core.arrays import FloatArray, frozen
 from core.moments import radius_of_gyration
 
 if TYPE_CHECKING:
-    from core.assembly import Assembly, Part
+    from core.assembly import Assembly, DriveAxis, Part
     from core.facets import Facets
     from core.moments import Moments
 
@@ -116,6 +116,7 @@ class Scene:
         ghost: a part that is not in the document yet.
         bounds: (2, 3) m around all bodies; None when there is none.
         axis: the drive axis, as long as it is drawn; None in an empty scene.
+        other_axes: the document's other axes, drawn lighter; what they pass by is not fitted to them.
         mass_centre: (3,) m; None while no mass is known.
         principal: three arrows from the centre of mass, as long as the radii of gyration.
 
@@ -127,6 +128,7 @@ class Scene:
     axis: Line | None = None
     mass_centre: FloatArray | None = None
     principal: tuple[Line, ...] = ()
+    other_axes: tuple[Line, ...] = ()
 
     @cached_property
     def everybody(self) -> tuple[Bodies, ...]:
@@ -197,14 +199,15 @@ def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None,
     has_mass = bool(bodies) and float(assembly.total.mass) > 0
     arrows = _principal_arrows(assembly.total) if has_mass else ()
     reach = np.concatenate([bounds, *([arrow.start, arrow.end] for arrow in arrows)])
-    axis = assembly.drive_axis
+    lines = {axis.name: _axis_line(axis, reach) for axis in assembly.axes}
     return Scene(
         bodies,
         ghostly,
         bounds,
-        _axis_line(axis.name, np.asarray(axis.point, dtype=float), axis.unit, reach),
+        lines.pop(assembly.drive),
         frozen(assembly.total.centre) if has_mass else None,
         arrows,
+        tuple(lines.values()),
     )
 
 
@@ -230,14 +233,15 @@ def _bounds(everybody: tuple[Bodies, ...]) -> FloatArray:
     return frozen([boxes[:, 0].min(axis=0), boxes[:, 1].max(axis=0)])
 
 
-def _axis_line(name: str, point: FloatArray, unit: FloatArray, reach: FloatArray) -> Line:
+def _axis_line(axis: DriveAxis, reach: FloatArray) -> Line:
     """Return the axis from below what it passes to above it; reach (n, 3) m are the outermost points."""
+    point, unit = np.asarray(axis.point, dtype=float), axis.unit
     low, high = reach.min(axis=0), reach.max(axis=0)
     # The extent of a box along a direction.
     middle, half = 0.5 * (low + high), 0.5 * np.abs(unit) @ (high - low)
     along = (middle - point) @ unit
     over = half + _OVERHANG * float(np.linalg.norm(high - low))
-    return Line(name, point + (along - over) * unit, point + (along + over) * unit)
+    return Line(axis.name, point + (along - over) * unit, point + (along + over) * unit)
 
 
 def _principal_arrows(total: Moments) -> tuple[Line, ...]:

@@ -74,7 +74,7 @@ def test_columns_are_chosen_moved_and_remembered_with_their_foot(filled):
     assert [action.text() for action in menu.actions()] == [
         column.heading.format(axis="Spindle") for column in COLUMNS[1:]
     ]
-    assert all(action.isChecked() for action in menu.actions())
+    assert [action.isChecked() for action in menu.actions()] == [column.at_first for column in COLUMNS[1:]]
     menu.actions()[INDEX["x"] - 1].trigger()
     filled.ledger.tree.header().moveSection(filled.ledger.tree.header().visualIndex(INDEX["share"]), 1)
     filled.ledger.tree.header().resizeSection(INDEX["name"], 333)
