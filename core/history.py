@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
@@ -41,9 +41,12 @@ class History:
         name, after = self.future[-1]
         return History(after, (*self.past, (name, self.present)), self.future[:-1])
 
-    def merged(self, after: Machine) -> History:
-        """Return the history with the last edit's result replaced: one undo step for a value typed in one go."""
-        return replace(self, present=after, future=())
+    def merged(self, name: str, after: Machine) -> History:
+        """Return the history with the last edit's name and result replaced: one undo step for what is done in one go.
+
+        Where there is no edit yet, there is still none.
+        """
+        return History(after, (*self.past[:-1], *((name, before) for _, before in self.past[-1:])))
 
     @property
     def undo_name(self) -> str:

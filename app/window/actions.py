@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QSize, Qt
@@ -170,7 +170,15 @@ class Actions:
             action = menu.addAction(words)
             action.setCheckable(True)
             action.toggled.connect(switch)
+        handles = menu.addAction("Handles for placing")
+        handles.setCheckable(True)
+        handles.setChecked(self._window.session.manner.handles)
+        handles.toggled.connect(self._show_handles)
         menu.addMenu(self._window.ledger.columns)
+
+    def _show_handles(self, wanted: bool) -> None:
+        session = self._window.session
+        session.set_manner(replace(session.manner, handles=wanted))
 
     def _toolbar(self) -> None:
         w = self._window

@@ -40,6 +40,7 @@ from app.window.pages.checks import ChecksPage, counted
 from app.window.pages.part import PartPage
 from app.window.pages.sheet import SheetPage
 from app.window.pages.torque.page import TorquePage
+from app.window.placing import Placing
 from app.window.session import Session
 from app.window.settings import Settings
 from app.window.start import Notice, StartPanel, stacked
@@ -79,6 +80,7 @@ class MainWindow(QMainWindow):
         self.told = Words("", "quiet")
         self.files = Files(self, self.session, self.settings, self.notice)
         self.changed_files = ChangedFiles(self.session, self.notice)
+        self.placing = Placing(self.session, self.view, self)
         self.actions_ = Actions(self)
         self._place: QWidget = self.ledger
         self._given_up = False

@@ -116,7 +116,18 @@ class Session(QObject):
             ledger, findings = ledger_of(after.assembly), after.findings()
         except MasswrightError as error:
             return str(error)
-        self._take_edit(name, after, ledger, findings, select)
+        self._take_edit(self.history.edited(name, after), ledger, findings, select)
+        return ""
+
+    def amend(self, name: str, change: Callable[[Assembly], Assembly]) -> str:
+        """Do the last edit over, from the assembly before it and under another name; otherwise as `attempt`."""
+        before = self.history.undone().present
+        try:
+            after = before.with_assembly(change(before.assembly))
+            ledger, findings = ledger_of(after.assembly), after.findings()
+        except MasswrightError as error:
+            return str(error)
+        self._take_edit(self.history.merged(name, after), ledger, findings, None)
         return ""
 
     def attempt_drive(self, name: str, change: Callable[[DriveSettings], DriveSettings]) -> str:
@@ -131,7 +142,7 @@ class Session(QObject):
         refusal = _refusal_of_drive(after)
         if refusal and not _refusal_of_drive(self.machine):
             return refusal
-        self._take_edit(name, after, self.ledger, after.findings(), None)
+        self._take_edit(self.history.edited(name, after), self.ledger, after.findings(), None)
         return ""
 
     def edit(self, name: str, change: Callable[[Assembly], Assembly], select: str | None = None) -> bool:
@@ -148,13 +159,13 @@ class Session(QObject):
         return not refusal
 
     def _take_edit(
-        self, name: str, after: Machine, ledger: Ledger, findings: tuple[Finding, ...], select: str | None
+        self, history: History, ledger: Ledger, findings: tuple[Finding, ...], select: str | None
     ) -> None:
-        if after is self.machine:
+        if history.present is self.machine:
             return
-        if after.assembly is not self.assembly:
+        if history.present.assembly is not self.assembly:
             self.overlaps = None
-        self.history = self.history.edited(name, after)
+        self.history = history
         self.ledger, self.findings = ledger, (*findings, *self._overlap_findings())
         self._after_change(select)
 

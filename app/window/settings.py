@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 import math
-from dataclasses import fields, replace
+from dataclasses import fields
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QByteArray, QLocale, QSettings
 
@@ -13,7 +13,23 @@ from app.window.manner import CHOICES, Manner
 from core.errors import QuantityError
 from core.quantity import DEFAULT_UNITS, UnitSet, parse_unit_set
 
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
 MOST_RECENT = 8
+
+
+def _step(text: str) -> float | None:
+    """Return the step that a text stands for, or None."""
+    try:
+        value = float(text)
+    except ValueError:
+        return None
+    return value if 0 <= value < math.inf else None
+
+
+# By the type of a field of the manner: what a stored text means, None where it means nothing.
+_READ: dict[str, Callable[[str], object]] = {"float": _step, "bool": {"True": True, "False": False}.get}
 
 
 class Settings:
@@ -47,20 +63,19 @@ class Settings:
     @property
     def manner(self) -> Manner:
         """How lines were placed by hand last."""
-        plain = Manner()
         kept: dict[str, Any] = {}
         for field in fields(Manner):
-            before = getattr(plain, field.name)
-            value: Any = self._store.value(f"placing/{field.name}", before, type(before))
-            choices = CHOICES.get(field.name)
-            if value in choices if choices else 0 <= value < math.inf:
+            text = str(self._store.value(f"placing/{field.name}", ""))
+            value = _READ[str(field.type)](text) if str(field.type) in _READ else text
+            if value is not None and (field.name not in CHOICES or value in CHOICES[field.name]):
                 kept[field.name] = value
-        return replace(plain, **kept)
+        return Manner(**kept)
 
     @manner.setter
     def manner(self, manner: Manner) -> None:
+        # As text: numbers that Qt writes lose digits.
         for field in fields(Manner):
-            self._store.setValue(f"placing/{field.name}", getattr(manner, field.name))
+            self._store.setValue(f"placing/{field.name}", str(getattr(manner, field.name)))
 
     @property
     def recent(self) -> list[Path]:

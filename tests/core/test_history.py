@@ -27,7 +27,7 @@ def test_undo_and_redo_walk_through_the_assemblies_that_were(steps):
         elif step == "redo":
             history, at = history.redone(), min(at + 1, len(shown) - 1)
         else:
-            history = history.merged(named(str(number)))
+            history = history.merged(f"to {number}", named(str(number)))
             shown = [*shown[:at], str(number)]
         assert history.present.assembly.name == shown[at]
         assert bool(history.undo_name) == (at > 0)
@@ -62,7 +62,7 @@ def test_an_edit_after_undo_drops_what_was_undone():
 
 
 def test_values_typed_in_one_go_are_one_step_of_undo():
-    history = History(named("0")).edited("length", named("1")).merged(named("12")).merged(named("125"))
+    history = History(named("0")).edited("length", named("1")).merged("length 12", named("12")).merged("length 125", named("125"))
     assert history.present.assembly.name == "125"
     assert history.undone().present.assembly.name == "0"
 

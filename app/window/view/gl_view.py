@@ -100,10 +100,15 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
         self._solid = True
         self._dirty = DirtyFlag(0)
         super().__init__(glOptions="opaque", shader=_SHADER)
-        self.batch = batch
-        self._placements = [QMatrix4x4(*matrix.ravel().tolist()) for matrix in batch.placements]
+        self.take(batch)
         self.vertexes, self.normals, self.faces = batch.vertices, batch.normals, batch.faces
         self._dirty = DirtyFlag.POSITION | DirtyFlag.NORMAL | DirtyFlag.FACES
+
+    def take(self, batch: Batch) -> _BatchItem:
+        """Draw a batch of the same vertices and faces, wherever it stands; return this item."""
+        self.batch = batch
+        self._placements = [QMatrix4x4(*matrix.ravel().tolist()) for matrix in batch.placements]
+        return self
 
     def colour(self, of_bodies: np.ndarray[Any, np.dtype[np.uint8]]) -> None:
         """Give each vertex the colour of its body; see-through when the body is."""
@@ -194,19 +199,32 @@ class GlView(GLViewWidget):  # type: ignore[misc] # pyqtgraph has no types
 
     def _replace_items(self, scene: Scene, *, light: bool) -> None:
         pack = self._pack(scene, light=light)
-        current = self.isValid()
+        before = {id(item.batch.vertices): item for item in self._items}
+        # A large surface that only stands elsewhere keeps its buffers.
+        kept = [before.pop(id(batch.vertices), None) for batch in pack.batches]
+        self._drop([item for item in self._items if item not in kept])
+        self._items = [
+            self._new_item(batch) if item is None else item.take(batch)
+            for batch, item in zip(pack.batches, kept, strict=True)
+        ]
+        self._shown = (scene, light)
+
+    def _new_item(self, batch: Batch) -> _BatchItem:
+        item = _BatchItem(batch)
+        self.addItem(item)
+        return item
+
+    def _drop(self, items: list[_BatchItem]) -> None:
+        """Draw these no longer, and give their buffers back."""
+        current = self.isValid() and bool(items)
         if current:
             self.makeCurrent()
-        for item in self._items:
+        for item in items:
             self.removeItem(item)
             if current:
                 item.release()
         if current:
             self.doneCurrent()
-        self._items = [_BatchItem(batch) for batch in pack.batches]
-        for item in self._items:
-            self.addItem(item)
-        self._shown = (scene, light)
 
     def _set_lines(self, picture: Picture) -> None:
         assert self._shown is not None

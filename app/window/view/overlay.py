@@ -13,10 +13,12 @@ from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
 from PySide6.QtGui import QFont, QFontMetricsF, QPainter, QPainterPath, QPaintEvent, QPen, QPolygonF
 from PySide6.QtWidgets import QWidget
 
+from app.window.view.handle_marks import draw_handles, draw_words
 from app.window.view.labels import Box, Wish, places
 from app.window.view.picture import Picture, qcolor, size_of
 
 if TYPE_CHECKING:
+    from app.window.view.hand import Shown
     from app.window.view.palette import Colour
     from app.window.view.scene import Line
     from core.arrays import FloatArray
@@ -52,6 +54,9 @@ class Overlay(QWidget):
         self.setAttribute(Qt.WidgetAttribute.WA_NoSystemBackground)
         self.note = ""
         self.focused = False
+        # What is shown of the handles, and boxes (px) that names keep off, told by the pane.
+        self.handles: Shown | None = None
+        self.covered: list[Box] = []
         self._picture: Picture | None = None
 
     def show_picture(self, picture: Picture) -> None:
@@ -70,9 +75,12 @@ class Overlay(QWidget):
         names = self._draw_axes(painter, picture)
         names += self._draw_principal(painter, picture)
         taken = [self._draw_centre(painter, picture)] if picture.scene.mass_centre is not None else []
+        names = [*self._draw_handles(painter, picture), *names]
         names += [*self._draw_triad(painter, picture), *self._emphasised(picture)]
         self._draw_note(painter, picture)
-        self._draw_names(painter, picture, names, [*taken, *self._note_box()])
+        self._draw_names(painter, picture, names, [*taken, *self._note_box(), *self.covered])
+        if self.handles is not None:
+            draw_words(painter, picture, size_of(self.width(), self.height()), self.handles)
         if self.focused:
             painter.setPen(QPen(qcolor(picture.theme.principal), 2.0))
             painter.setBrush(Qt.BrushStyle.NoBrush)
@@ -105,6 +113,12 @@ class Overlay(QWidget):
         for colour, width in ((picture.theme.casing, _FOUND_WIDTH + _CASING), (picture.theme.found, _FOUND_WIDTH)):
             painter.setPen(QPen(qcolor(colour), width))
             painter.drawLines(lines)
+
+    def _draw_handles(self, painter: QPainter, picture: Picture) -> list[_Name]:
+        if self.handles is None:
+            return []
+        letters = draw_handles(painter, picture, size_of(self.width(), self.height()), self.handles)
+        return [self._name(text, at, away, picture.theme.text) for text, at, away in letters]
 
     def _draw_axes(self, painter: QPainter, picture: Picture) -> list[_Name]:
         """Draw all axes, the drive axis last, wider and with its name in bold, which comes first to find room."""

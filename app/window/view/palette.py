@@ -30,6 +30,7 @@ class Theme:
         drive: the drive axis and its name.
         principal: the principal axes, the mark of the centre of mass, and the focus ring.
         found: the edges that a finding is about.
+        handle: what a line is moved and turned by.
         casing: beneath lines and text, so that they read over any part.
 
     """
@@ -46,6 +47,7 @@ class Theme:
     drive: Colour
     principal: Colour
     found: Colour
+    handle: Colour
     casing: Colour
 
 
@@ -70,6 +72,7 @@ LIGHT = Theme(
     drive=(0x9C, 0x3F, 0x74),
     principal=(0x00, 0x6C, 0xAA),
     found=(0xC2, 0x4C, 0x00),
+    handle=(0x00, 0x6B, 0x4E),
     casing=(0xFF, 0xFF, 0xFF),
 )
 
@@ -94,6 +97,7 @@ DARK = Theme(
     drive=(0xE0, 0x95, 0xBD),
     principal=SKY_BLUE,
     found=(0xF0, 0x80, 0x40),
+    handle=(0x3F, 0xD0, 0xA4),
     casing=(0x12, 0x15, 0x18),
 )
 

@@ -10,22 +10,32 @@ from PySide6.QtCore import QEvent, QPointF, QSize, Qt, QTimer, Signal
 from PySide6.QtWidgets import QWidget
 
 from app.window.view.camera import Camera, LookName, Size
+from app.window.view.hand import Hand
+from app.window.view.nudging import nudge_of
 from app.window.view.opengl import prepare_opengl, probed
 from app.window.view.overlay import Overlay
 from app.window.view.picking import pick
 from app.window.view.picture import Picture, size_of, theme_of
-from app.window.view.scene import Scene, SurfaceStore, scene_of
+from app.window.view.scene import Scene, SurfaceStore, carried, scene_of
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from PySide6.QtGui import QFocusEvent, QKeyEvent, QMouseEvent, QResizeEvent, QShowEvent, QWheelEvent
 
+    from app.window.view.hand import Steps
+    from app.window.view.handles import Handles
+    from app.window.view.labels import Box
     from core.arrays import FloatArray
     from core.assembly import Assembly, Part
+    from core.placement import Placement
 
 TOOL_TIP = (
     "Drag turns the view; drag with Shift or with the middle button moves it; the wheel zooms to the\n"
     "pointer. A click selects a part, with Ctrl or Shift one more. F shows everything; 1–7: front, back, left,\n"
-    "right, top, bottom, isometric; arrow keys turn; + and − zoom."
+    "right, top, bottom, isometric; arrow keys turn; + and − zoom.\n"
+    "Drag a handle of the selected line to move or turn it, with Shift in finer steps; Escape puts it back.\n"
+    "Ctrl with arrow keys, Page up and Page down moves it by a step, with Shift as well turns it."
 )
 
 _KEYS: dict[int, LookName] = {
@@ -84,10 +94,12 @@ class ViewPane(QWidget):
         picked(str, bool): the key of the part that was clicked ("" for empty space), and whether it joins what
             is selected already.
         hovered(str): the key of the part under the pointer, "" for none.
+        nudged(Nudge): a key asks to move or turn what is selected by a step.
     """
 
     picked = Signal(str, bool)
     hovered = Signal(str)
+    nudged = Signal(object)
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -112,6 +124,9 @@ class ViewPane(QWidget):
         self._last = QPointF()
         self._dragging = False
         self._under = ""
+        # The scene without what is being dragged in it, while something is.
+        self._at_rest: Scene | None = None
+        self.hand = Hand(self)
         self._rest = QTimer(self, singleShot=True, interval=_REST)
         self._rest.timeout.connect(lambda: self._redraw(moving=False))
         self._look_up = QTimer(self, singleShot=True, interval=_HOVER)
@@ -143,7 +158,7 @@ class ViewPane(QWidget):
         emphasis = replace(self._picture.emphasis, selected=selected, hovered=hovered or None)
         was_empty = not self.scene.everybody
         if assembly is not self._assembly:
-            self._assembly = assembly
+            self._assembly, self._at_rest = assembly, None
             self._picture = replace(self._picture, scene=scene_of(assembly, self.store, self._ghost, self.scene))
             self._fit_due |= self._stays_fitted
         self._picture = replace(self._picture, emphasis=emphasis)
@@ -162,6 +177,23 @@ class ViewPane(QWidget):
         self._picture = replace(self._picture, scene=scene_of(self._assembly, self.store, part, self.scene))
         self._fit_due |= was_empty or self._stays_fitted
         self._redraw(moving=False)
+
+    def show_carried(self, standing: Mapping[str, Placement]) -> None:
+        """Show parts, by their keys, as if their copies stood there (tf_document_part); none: as they are."""
+        at_rest = self._at_rest or self.scene
+        self._at_rest = at_rest if standing else None
+        self._picture = replace(self._picture, scene=carried(at_rest, standing) if standing else at_rest)
+        self._redraw(moving=bool(standing))
+
+    def show_handles(self, handles: Handles | None, steps: Steps, *, grips: bool) -> None:
+        """Show these handles, or none, and let amounts snap to these steps."""
+        self.hand.show(handles, steps, grips=grips)
+        self._show_hand()
+
+    def cover(self, boxes: list[Box]) -> None:
+        """Keep names off these boxes (left, top, width, height) px, which something else covers."""
+        self._overlay.covered = boxes
+        self._overlay.update()
 
     def light_up(self, edges: FloatArray) -> None:
         """Draw edges (k, 2, 3) m of the document frame over everything; none takes those shown away."""
@@ -217,28 +249,46 @@ class ViewPane(QWidget):
         if moving:
             self._rest.start()
 
+    def _show_hand(self) -> None:
+        self._overlay.handles = self.hand.shown
+        self._overlay.update()
+        over = self.hand.shown is not None and self.hand.shown.lit is not None
+        shape = Qt.CursorShape.ClosedHandCursor if self.hand.holds else Qt.CursorShape.OpenHandCursor
+        self.setCursor(shape if over else Qt.CursorShape.ArrowCursor)
+
     def _tell_hovered(self) -> None:
-        key = "" if self._dragging or not self.underMouse() else self.key_at(self._last)
+        key = "" if self._dragging or self.hand.holds or not self.underMouse() else self.key_at(self._last)
         if key != self._under:
             self._under = key
             self.hovered.emit(key)
 
     def mousePressEvent(self, event: QMouseEvent) -> None:
-        """Remember where a click or a drag begins."""
+        """Take the handle there, or remember where a click or a drag begins."""
         self._pressed = self._last = event.position()
         self._dragging = False
+        left = event.button() == Qt.MouseButton.LeftButton
+        if left and self.hand.take(_pair(self._last), self.camera, self.frame_size):
+            # Who drags wants to see the same picture afterwards.
+            self._stays_fitted = False
+            self._show_hand()
 
     def mouseMoveEvent(self, event: QMouseEvent) -> None:
         """Turn or move the view while a button is down, otherwise look up what the pointer is on."""
         step, self._last = event.position() - self._last, event.position()
+        shifted = bool(event.modifiers() & Qt.KeyboardModifier.ShiftModifier)
+        if self.hand.holds:
+            self.hand.carry(_pair(self._last), finer=shifted)
+            self._show_hand()
+            return
         if self._pressed is None:
             self._look_up.start()
+            if self.hand.look(_pair(self._last), self.camera, self.frame_size):
+                self._show_hand()
             return
         way = event.position() - self._pressed
         self._dragging |= bool(np.hypot(way.x(), way.y()) > _CLICK)
         if not self._dragging:
             return
-        shifted = bool(event.modifiers() & Qt.KeyboardModifier.ShiftModifier)
         if event.buttons() & Qt.MouseButton.MiddleButton or shifted:
             self._move_to(self.camera.panned(step.x(), step.y(), self.frame_size), moving=True)
         elif event.buttons() & Qt.MouseButton.LeftButton:
@@ -246,7 +296,13 @@ class ViewPane(QWidget):
             self._move_to(turned, moving=True)
 
     def mouseReleaseEvent(self, event: QMouseEvent) -> None:
-        """Select on a click; end a drag."""
+        """Select on a click; end a drag; let a handle go."""
+        stirred = self.hand.stirred
+        if self.hand.holds:
+            self.hand.let_go()
+            self._show_hand()
+        if stirred:
+            self._pressed = None
         if self._pressed is not None and not self._dragging and event.button() == Qt.MouseButton.LeftButton:
             more = Qt.KeyboardModifier.ControlModifier | Qt.KeyboardModifier.ShiftModifier
             self.picked.emit(self.key_at(event.position()), bool(event.modifiers() & more))
@@ -265,7 +321,17 @@ class ViewPane(QWidget):
         event.accept()
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
-        """Fit, turn to a named view, orbit, zoom; leave every other key to the window."""
+        """Fit, turn to a named view, orbit, zoom, nudge; Escape drops a handle. The window gets every other key."""
+        if self.hand.holds:
+            if event.key() == Qt.Key.Key_Escape:
+                self.hand.drop()
+                self._pressed = None
+                self._show_hand()
+            return
+        nudge = nudge_of(event.key(), event.modifiers())
+        if nudge is not None:
+            self.nudged.emit(nudge)
+            return
         key, size = event.key(), self.frame_size
         plain = not event.modifiers() & ~(Qt.KeyboardModifier.ShiftModifier | Qt.KeyboardModifier.KeypadModifier)
         middle = (0.5 * size[0], 0.5 * size[1])
@@ -294,6 +360,7 @@ class ViewPane(QWidget):
         """Stop showing the focus."""
         super().focusOutEvent(event)
         self._show_focus()
+        self.hand.drop()
 
     def _show_focus(self) -> None:
         self._overlay.focused = self.hasFocus()
@@ -318,6 +385,10 @@ class ViewPane(QWidget):
         if event.type() == QEvent.Type.PaletteChange and hasattr(self, "_picture"):
             self._picture = replace(self._picture, theme=theme_of(self.palette()))
             self._redraw(moving=self._picture.moving)
+
+
+def _pair(spot: QPointF) -> tuple[float, float]:
+    return spot.x(), spot.y()
 
 
 def _same_place(one: Camera, other: Camera) -> bool:
