@@ -111,7 +111,7 @@ class Actions:
             Command("Named dimensions…", w.edit_names, "Ctrl+D", tip="Values that number fields use by their names."),
             Command("Variants…", w.edit_variants, tip="Lines that are in some variants of the machine only."),
         ])
-        self._fill(bar.addMenu("&Part"), [
+        part = self._fill(bar.addMenu("&Part"), [
             Command("Add shape…", w.open_gallery, "Ctrl+B", tip="Opens the gallery of shapes."), self.shapes,
             Command("Add mesh…", w.files.ask_meshes, "Ctrl+M"),
             Command("Add known part…", w.ask_known_part, "Ctrl+K"), None,
@@ -127,8 +127,13 @@ class Actions:
                 "Lay own axis on the drive axis", lambda: lay_on_drive_axis(w.session, w.session.selected), "Ctrl+L",
                 tip="Moves the selected lines no further than it takes to lay their own axes on the drive axis.",
             ),
-            Command("Take one copy apart…", lambda: w.files.show_dialog(TakeApartDialog(w.session, w))),
+            Command("Take one copy apart…", lambda: w.files.show_dialog(TakeApartDialog(w.session, w))), None,
+            Command("Save group as a document…", w.linked.save_group, tip="The group stays; its lines are copied."),
+            Command("Place a linked group…", w.linked.place, tip="Shows another document's lines as a group here."),
+            Command("Read linked group again…", w.linked.read_again), Command("Break the link", w.linked.break_link),
         ])
+        tree = w.ledger.tree
+        tree.customContextMenuRequested.connect(lambda at: part.popup(tree.viewport().mapToGlobal(at)))
         self._fill(bar.addMenu("&Axis"), [
             Command("Axes…", w.edit_axes, "Ctrl+Shift+A", tip="All axes, with J of the whole about each."), None,
             Command("Edit drive axis…", lambda: self._ask_axis(w.session.assembly.drive_axis)),

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject
 
+from app.window.linked_files import LinkedFiles
 from app.window.numbers import shown
 from app.window.tasks import Task
 from core.assembly import MeshBody, change_of, taken_anew
@@ -24,7 +25,7 @@ if TYPE_CHECKING:
 
 
 class ChangedFiles(QObject):
-    """Looks at the files behind the mesh parts when the window is come back to, in a worker."""
+    """Looks at the files behind mesh parts and linked groups when the window is come back to, in workers."""
 
     def __init__(self, session: Session, notice: Notice) -> None:
         super().__init__(session)
@@ -32,12 +33,14 @@ class ChangedFiles(QObject):
         self._notice = notice
         self._task: Task[list[Change]] | None = None
         self._seen: dict[Path, tuple[int, int]] = {}
+        self._linked = LinkedFiles(session, notice)
 
     def look(self) -> None:
         """Look whether a file is another one than at the last look, and if so what it holds now."""
+        self._linked.look()
         if self._task is not None:
             return
-        assembly, folder = self._session.assembly, self._session.path.parent if self._session.path else None
+        assembly, folder = self._session.assembly, self._session.folder
         stale = {path for path in origins(assembly, folder).values() if self._is_news(path)}
         if stale:
             self._task = Task(
@@ -47,10 +50,11 @@ class ChangedFiles(QObject):
     @property
     def busy(self) -> bool:
         """Whether files are being read."""
-        return self._task is not None
+        return self._task is not None or self._linked.busy
 
     def stop(self) -> None:
         """Stop looking; the window closes."""
+        self._linked.stop()
         if self._task is not None:
             self._task.cancel()
 

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 
 from core.assembly import Assembly, Group, Node, Part, ShapeBody
 from core.assembly.axes import driven_about_part
+from core.assembly.linked_groups import held_by
 from core.assembly.own_axis import laid_on_axis, own_axis_of
 from core.assembly.placing import outermost
 from core.errors import EditRefused, MasswrightError
@@ -28,16 +29,24 @@ def new_shape(assembly: Assembly, shape: str) -> Part:
 
 def inserted_at(assembly: Assembly, node: Node, selected: frozenset[str]) -> Assembly:
     """Return the assembly with a new line: in the selected group, behind the selected line, or at the end."""
+    return assembly.inserted(node, *place_for(assembly, selected))
+
+
+def place_for(assembly: Assembly, selected: frozenset[str]) -> tuple[str | None, int | None]:
+    """Return where a new line goes: the group that is to hold it (None: outermost), and before which index.
+
+    That is in the selected group, behind the selected line, or at the end; behind a linked group, never in it.
+    """
     if len(selected) != 1:
-        return assembly.inserted(node)
-    key = assembly.node_of_line(next(iter(selected))).key
-    if isinstance(assembly.node(key), Group):
-        return assembly.inserted(node, key)
-    above = assembly.groups_above(key)
-    group = above[-1] if above else None
-    siblings = group.members if group else assembly.members
-    place = [sibling.key for sibling in siblings].index(key) + 1
-    return assembly.inserted(node, group.key if group else None, place)
+        return None, None
+    node = assembly.node_of_line(next(iter(selected)))
+    node = held_by(assembly, node.key) or node
+    if isinstance(node, Group) and node.link is None:
+        return node.key, None
+    above = assembly.groups_above(node.key)
+    siblings = above[-1].members if above else assembly.members
+    place = [sibling.key for sibling in siblings].index(node.key) + 1
+    return (above[-1].key if above else None), place
 
 
 def grouped(assembly: Assembly, keys: frozenset[str], key: str) -> Assembly:

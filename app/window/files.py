@@ -7,12 +7,15 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, Qt, Signal
-from PySide6.QtWidgets import QFileDialog, QMenu, QMessageBox
+from PySide6.QtWidgets import QMenu, QMessageBox
 
 from app.window import autosave
+from app.window.dialogs.choosing import DOCUMENT, DOCUMENTS, ask_file, ask_files, ask_where, with_ending
+from app.window.dialogs.form import show_over
 from app.window.session import judged_document
 from app.window.start import SAMPLE
 from app.window.tasks import Task
+from core.errors import FileRefused
 from core.mesh.formats import FORMATS
 
 if TYPE_CHECKING:
@@ -25,8 +28,6 @@ if TYPE_CHECKING:
     from app.window.start import Notice
     from core.machine import Machine
 
-DOCUMENT = ".masswright"
-DOCUMENTS = f"Masswright documents (*{DOCUMENT})"
 # A larger document takes long enough to be felt.
 OPENED_AT_ONCE = 500_000
 MESHES = f"Meshes ({' '.join(f'*.{suffix} *.{suffix.upper()}' for suffix in FORMATS)} *.stl.gz)"
@@ -56,11 +57,11 @@ class Files(QObject):
 
     def ask_open(self) -> None:
         """Ask for a document and open it."""
-        self._ask("Open", DOCUMENTS, QFileDialog.FileMode.ExistingFile, lambda paths: self.open_path(paths[0]))
+        ask_file(self._window, "Open", self._session.folder, DOCUMENTS, self.open_path)
 
     def ask_meshes(self) -> None:
         """Ask for mesh files to add."""
-        self._ask("Add meshes", MESHES, QFileDialog.FileMode.ExistingFiles, self.meshes_chosen.emit)
+        ask_files(self._window, "Add meshes", self._session.folder, MESHES, self.meshes_chosen.emit)
 
     def open_path(self, path: Path) -> None:
         """Open a document, or import a mesh."""
@@ -128,38 +129,24 @@ class Files(QObject):
 
     def save_as(self, then: Callable[[], object] | None = None) -> None:
         """Ask where to save the document; go on with `then` once it is saved."""
-        dialog = QFileDialog(self._window, "Save as", "", DOCUMENTS)
-        dialog.setAcceptMode(QFileDialog.AcceptMode.AcceptSave)
-        dialog.setFileMode(QFileDialog.FileMode.AnyFile)
-        dialog.setDefaultSuffix(DOCUMENT)
-        dialog.selectFile(str(self._session.path or Path.home() / self._session.title))
-        dialog.fileSelected.connect(lambda name: self.save_under(Path(name), then))
-        self.show_dialog(dialog)
+        suggested = self._session.path or Path.home() / self._session.title
+        ask_where(self._window, "Save as", suggested, DOCUMENTS, lambda chosen: self.save_under(chosen, then))
 
     def save_under(self, chosen: Path, then: Callable[[], object] | None = None) -> None:
         """Save under a chosen name, with our ending; a file that the user was not asked about is not replaced."""
-        ours = chosen.suffix.lower() == DOCUMENT
-        path = chosen if ours else chosen.with_name(chosen.name + DOCUMENT)
-        if not ours and path.exists():
-            self._session.refused.emit(f"{path.name} is there already. To replace it, choose it itself.")
-        elif self._session.save(path):
+        try:
+            path = with_ending(chosen)
+        except FileRefused as error:
+            self._session.refused.emit(str(error))
+            return
+        if self._session.save(path):
             self._settings.add_recent(path)
             if then is not None:
                 then()
 
-    def _ask(
-        self, title: str, pattern: str, mode: QFileDialog.FileMode, then: Callable[[list[Path]], object]
-    ) -> None:
-        folder = str(self._session.path.parent) if self._session.path else ""
-        dialog = QFileDialog(self._window, title, folder, pattern)
-        dialog.setFileMode(mode)
-        dialog.filesSelected.connect(lambda names: then([Path(name) for name in names]))
-        self.show_dialog(dialog)
-
     def show_dialog(self, dialog: QDialog) -> None:
         """Show a dialog over the window, without holding up the program; it goes when it is closed."""
-        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
-        dialog.open()
+        show_over(dialog)
 
     def show_beside(self, dialog: QDialog) -> None:
         """Show a dialog that lets the window be used meanwhile; it goes when it is closed."""

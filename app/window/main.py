@@ -34,6 +34,7 @@ from app.window.files import Files
 from app.window.gallery.panel import GalleryPanel
 from app.window.ledger.columns import COLUMNS
 from app.window.ledger.view import LedgerPane
+from app.window.linked_commands import LinkedGroups
 from app.window.numbers import copied, preview, shown
 from app.window.overlap_watch import OverlapWatch
 from app.window.pages.checks import ChecksPage, counted
@@ -81,6 +82,7 @@ class MainWindow(QMainWindow):
         self.files = Files(self, self.session, self.settings, self.notice)
         self.changed_files = ChangedFiles(self.session, self.notice)
         self.placing = Placing(self.session, self.view, self)
+        self.linked = LinkedGroups(self.session, self.notice)
         self.actions_ = Actions(self)
         self._place: QWidget = self.ledger
         self._given_up = False

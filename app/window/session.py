@@ -8,6 +8,7 @@ from PySide6.QtCore import QObject, Signal
 
 from app.window.manner import Manner
 from core.assembly import Assembly, Finding, Ledger, Part, ledger_of
+from core.assembly.linked_groups import check_linked_lines
 from core.assembly.names import values_of
 from core.assembly.overlap_findings import overlap_findings
 from core.document import read_document, save_document
@@ -93,6 +94,11 @@ class Session(QObject):
         return self.history.present is not self._saved
 
     @property
+    def folder(self) -> Path | None:
+        """The folder of the document's file; None where it has none yet."""
+        return self.path.parent if self.path else None
+
+    @property
     def title(self) -> str:
         """The document's name as the window's title bar has it."""
         return self.path.name if self.path else f"{self.assembly.name}.masswright"
@@ -111,7 +117,9 @@ class Session(QObject):
         A refused edit leaves everything as it was.
         """
         try:
-            after = self.machine.with_assembly(change(self.assembly))
+            edited = change(self.assembly)
+            check_linked_lines(self.assembly, edited)
+            after = self.machine.with_assembly(edited)
             # Evaluated before it counts: an assembly that cannot be added up is refused as a whole.
             ledger, findings = ledger_of(after.assembly), after.findings()
         except MasswrightError as error:

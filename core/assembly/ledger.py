@@ -218,8 +218,9 @@ def _link_words(group: Group) -> str:
     """Return what is said of the file of a linked group; nothing of another group."""
     if group.link is None:
         return ""
-    words = {"missing": "missing", "changed": "has changed"}.get(group.link.state)
-    return f"linked: {group.link.file_name}" if words is None else f"{LAST_VALUES}: {group.link.file_name} {words}"
+    state = group.link.state
+    words = f"{LAST_VALUES}, file {state}" if state in {"missing", "changed"} else "linked"
+    return f"{words}: {group.link.file_name}"
 
 
 def _size(rows: Moments) -> float:

@@ -56,14 +56,19 @@ def read_linked(path: str | Path, holder: Path | None = None) -> LinkedDocument:
 
 def look_at_links(assembly: Assembly) -> None:
     """Note on every link of an assembly what its file holds now; each file is read once."""
-    note_links(assembly, {path: hash_of(path) for path in linked_paths(assembly)})
+    _ = note_links(assembly, {path: hash_of(path) for path in linked_paths(assembly)})
 
 
-def note_links(assembly: Assembly, hashes: Mapping[str, str | None]) -> None:
-    """Note on every link of an assembly the SHA-256 that was found for its path, None for a file that is not there."""
-    for _, link in linked_groups(assembly.members):
-        if link.path in hashes:
-            link.note(hashes[link.path])
+def note_links(assembly: Assembly, hashes: Mapping[str, str | None]) -> bool:
+    """Note on every link of an assembly the SHA-256 that was found for its path, None for a file that is not there.
+
+    Return whether more or something else is known of one of them now.
+    """
+    links = [link for _, link in linked_groups(assembly.members) if link.path in hashes]
+    before = [link.state for link in links]
+    for link in links:
+        link.note(hashes[link.path])
+    return before != [link.state for link in links]
 
 
 def linked_paths(assembly: Assembly) -> tuple[str, ...]:

@@ -2,9 +2,16 @@
 
 from __future__ import annotations
 
+from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QDialog, QDialogButtonBox, QLayout, QSizePolicy, QSpacerItem, QVBoxLayout, QWidget
 
 from app.window.style import GRID, Words
+
+
+def show_over(dialog: QDialog) -> None:
+    """Show a dialog over its window, without holding up the program; it goes when it is closed."""
+    dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+    dialog.open()
 
 
 class FormDialog(QDialog):
@@ -18,6 +25,7 @@ class FormDialog(QDialog):
         self.wrong.hide()
         buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Ok | QDialogButtonBox.StandardButton.Cancel)
         self.take_button = buttons.button(QDialogButtonBox.StandardButton.Ok)
+        self.leave_button = buttons.button(QDialogButtonBox.StandardButton.Cancel)
         self.take_button.setText(take)
         buttons.accepted.connect(self.take)
         buttons.rejected.connect(self.reject)
@@ -30,7 +38,7 @@ class FormDialog(QDialog):
         self._layout.addWidget(buttons)
         # Return takes or does nothing; it never leaves the dialog.
         self.take_button.setDefault(True)
-        buttons.button(QDialogButtonBox.StandardButton.Cancel).setAutoDefault(False)
+        self.leave_button.setAutoDefault(False)
         self._layout.addSpacerItem(QSpacerItem(width, 0, QSizePolicy.Policy.Minimum, QSizePolicy.Policy.Fixed))
 
     def stack(self, *widgets: QWidget) -> None:

@@ -169,13 +169,12 @@ def _pen(line: Line, column: int, c: Colours) -> QColor:
     if line.kind == "cut" or not line.counts:
         return QColor(c.quiet)
     if column == INDEX["material"]:
-        if line.basis == "not set":
-            return QColor(c.estimate)
-        return QColor(c.text if line.kind == "part" else c.estimate)
+        if line.kind == "part":
+            return QColor(c.estimate if line.basis == "not set" else c.text)
+        return QColor(c.estimate if line.doubtful else c.quiet)
     if line.mass is None and column >= INDEX["mass"]:
         return QColor(c.quiet)
-    estimated = "estimated" in line.basis or "not set" in line.basis
-    return QColor(c.estimate if estimated and column >= INDEX["mass"] else c.text)
+    return QColor(c.estimate if line.doubtful and column >= INDEX["mass"] else c.text)
 
 
 def _paint_figure(painter: QPainter, rect: QRect, text: str, mark: str, room: int) -> None:

@@ -10,6 +10,7 @@ from app.window.ledger import edits
 from app.window.ledger.columns import COLUMNS, INDEX
 from app.window.numbers import copied, shown
 from core.assembly import Assembly, Group, Line
+from core.assembly.linked_groups import held_by, read_only_here
 from core.errors import EditRefused
 from core.quantity import UNITS, Kind
 
@@ -158,7 +159,9 @@ class LedgerModel(QAbstractItemModel):
 
     @staticmethod
     def is_input(line: Line, column: int) -> bool:
-        """Tell whether a cell is typed rather than computed."""
+        """Tell whether a cell is typed rather than computed, or another document's."""
+        if line.read_only:
+            return False
         if column in {INDEX["name"], INDEX["count"]}:
             return line.kind != "total"
         if line.kind != "part" or line.basis == "data sheet":
@@ -202,7 +205,8 @@ class LedgerModel(QAbstractItemModel):
     def _said(self, line: Line, column: int, role: int) -> str | None:
         """Return what is said about a cell: its tool tip, or what a screen reader says."""
         if role == Qt.ItemDataRole.ToolTipRole:
-            tips = {INDEX["name"]: line.name, INDEX["material"]: f"{line.material}\nValues: {line.basis}".strip()}
+            name = f"{line.name}\nOnly read here: it belongs to a linked document" if line.read_only else line.name
+            tips = {INDEX["name"]: name, INDEX["material"]: f"{line.material}\nValues: {line.basis}".strip()}
             return tips.get(column)
         if role == Qt.ItemDataRole.AccessibleTextRole:
             text = cell_text(self.session, line, column, Qt.ItemDataRole.DisplayRole)
@@ -231,10 +235,13 @@ class LedgerModel(QAbstractItemModel):
         """Return the edit that a text in a cell asks for.
 
         Raises:
-            EditRefused: the cell is computed.
+            EditRefused: the cell is computed, or belongs to a linked document.
 
         """
         line, column = self.line(index), COLUMNS[index.column()]
+        held = held_by(self.session.assembly, line.key) if line.read_only else None
+        if held is not None and held.link is not None:
+            raise read_only_here(held.link, line.name)
         if not self.is_input(line, index.column()):
             heading = column.heading.format(axis=self.session.assembly.drive)
             raise EditRefused(
@@ -304,7 +311,8 @@ class FootModel(QAbstractTableModel):
         if role == LINE_ROLE:
             return total
         if role == Qt.ItemDataRole.ToolTipRole:
-            return COLUMNS[index.column()].tip
+            told = f"{total.material}\nValues: {total.basis}".strip()
+            return told if index.column() == INDEX["material"] and total.basis else COLUMNS[index.column()].tip
         words = {INDEX["name"]: "TOTAL", INDEX["count"]: ""}
         if role == COPY_ROLE:
             return words.get(index.column(), cell_to_copy(self.session, total, index.column()))

@@ -13,6 +13,7 @@ from app.window.outline.section import OutlineSection, is_profile
 from app.window.pages.part_body import KnownSection, ShapeSection
 from app.window.pages.part_copies import CopiesSection
 from app.window.pages.part_cuts import CutHead, CutsSection
+from app.window.pages.part_link import HeldHead, LinkSection
 from app.window.pages.part_mass import MassSection
 from app.window.pages.part_mesh import MeshSection
 from app.window.pages.part_stand import PlaceSection
@@ -20,6 +21,7 @@ from app.window.pages.part_variants import VariantsSection
 from app.window.pages.section import Section
 from app.window.style import GRID, Words
 from core.assembly import Cut, Group, MeshBody, Part, ShapeBody
+from core.assembly.linked_groups import held_by
 
 if TYPE_CHECKING:
     from app.window.session import Session
@@ -78,10 +80,11 @@ class PartPage(QScrollArea):
         """Show the selected line as it is now."""
         node = self._selected()
         inside = _signature(node) if node else len(self._session.selected)
-        signature = (inside, self._session.assembly.variants)
+        held = None if node is None else held_by(self._session.assembly, node.key)
+        signature = (inside, self._session.assembly.variants, held and (held.key, held.name, held.link))
         if signature != self._signature:
             self._signature = signature
-            self._build(node)
+            self._build(node, held)
         if node is not None:
             for section in self._sections:
                 section.show(node)
@@ -100,7 +103,7 @@ class PartPage(QScrollArea):
             return None
         return self._session.assembly.line(next(iter(self._session.selected)))
 
-    def _build(self, node: AnyLine | None) -> None:
+    def _build(self, node: AnyLine | None, held: Group | None) -> None:
         page = QWidget()
         page.setObjectName("page")
         layout = QVBoxLayout(page)
@@ -113,6 +116,11 @@ class PartPage(QScrollArea):
             layout.addWidget(words)
         else:
             form = Form()
+            if held is not None:
+                head = Form()
+                HeldHead(self._session, head, node, held)
+                layout.addWidget(head)
+                form.setEnabled(False)
             self._sections = _sections(self._session, form, node)
             layout.addWidget(form)
         layout.addStretch(1)
@@ -136,7 +144,7 @@ class PartPage(QScrollArea):
 def _signature(node: AnyLine) -> tuple[object, ...]:
     """Return what decides which fields a line has."""
     if isinstance(node, Group):
-        return (node.key, Group, type(node.copies))
+        return (node.key, Group, type(node.copies), node.link is not None)
     if isinstance(node, Cut):
         return (node.key, Cut, type(node.shape), type(node.copies))
     inner = type(node.body.shape) if isinstance(node.body, ShapeBody) else getattr(node.body, "about", "")
@@ -149,6 +157,8 @@ def _sections(session: Session, form: Form, node: AnyLine) -> list[Section]:
         sections += [CutHead(session, form, node), ShapeSection(session, form, node)]
         if is_profile(node):
             sections.append(OutlineSection(session, form, node))
+    if isinstance(node, Group) and node.link is not None:
+        sections.append(LinkSection(session, form, node))
     if isinstance(node, Part):
         if isinstance(node.body, ShapeBody):
             sections.append(ShapeSection(session, form, node))

@@ -247,7 +247,7 @@ def test_a_missing_file_is_a_failed_check_and_marks_every_value_that_rests_on_it
         "": f"some {missing}",
     }
     assert {key for key, line in lines.items() if line.doubtful} == set(lines) - {"p1"}
-    assert lines["g1"].material == "last values: fixture.masswright missing"
+    assert lines["g1"].material == "last values, file missing: fixture.masswright"
     assert lines[""].material == "2 of 3 last values"
     assert lines["g1"].mass == pytest.approx(6 * float(fixture().total.mass), rel=1e-14)
 
