@@ -45,7 +45,7 @@ def document_of_group(assembly: Assembly, key: str) -> Assembly:
     return seated(Assembly(
         group.name,
         group.members,
-        (_axis_inside(assembly.drive_axis, _standing(assembly, group)),),
+        (_axis_inside(assembly.drive_axis, _standing(assembly, group), inside),),
         assembly.drive,
         tuple(mark for mark in assembly.meant if mark.key_a in inside and mark.key_b in inside),
         tuple(_used_names(assembly, group)),
@@ -63,13 +63,14 @@ def _standing(assembly: Assembly, group: Group) -> Placement:
     return standing
 
 
-def _axis_inside(axis: DriveAxis, standing: Placement) -> DriveAxis:
-    """Return an axis of the document as it lies in the frame that stands so in the document."""
+def _axis_inside(axis: DriveAxis, standing: Placement, inside: set[str]) -> DriveAxis:
+    """Return an axis as it lies in the frame that stands so in the document; it follows a part that is inside."""
     back = standing.inverse()
     reach = np.abs(axis.point).max() + np.abs(back.shift).max()
     x, y, z = settled(back.apply(axis.point), reach).tolist()
     u, v, w = settled(back.turn_only(axis.direction), np.abs(axis.direction).max()).tolist()
-    return replace(axis, point=(x, y, z), direction=(u, v, w), second=None, typed=())
+    part = axis.part if axis.part in inside else ""
+    return replace(axis, point=(x, y, z), direction=(u, v, w), second=None, part=part, typed=())
 
 
 def _used_names(assembly: Assembly, group: Group) -> Iterator[NamedDimension]:

@@ -12,6 +12,7 @@ from strategies import poses, rings
 
 from core.assembly import Assembly, Cut, DriveAxis, Group, Part, ShapeBody, ledger_of
 from core.assembly.assembly import MeantOverlap
+from core.assembly.following import axis_of_part
 from core.assembly.group_document import document_of_group
 from core.assembly.names import NameEntry
 from core.assembly.naming import with_entries
@@ -95,3 +96,13 @@ def test_variants_that_no_line_inside_names_stay_behind() -> None:
 def test_a_part_is_no_group() -> None:
     with pytest.raises(EditRefused, match="plate: only a group becomes a document of its own"):
         document_of_group(machine(), "plate")
+
+
+def test_an_axis_of_a_part_inside_follows_it_there_and_one_of_a_part_outside_stands_by_itself() -> None:
+    at_pin = axis_of_part(machine(), "b", "Swing")
+    inside = replace(machine(), axes=(at_pin, machine().axes[1]))
+    (axis,) = document_of_group(inside, "arm").axes
+    assert axis.part == "b"
+    np.testing.assert_allclose(axis.point[:2], (0.0, 0.02), atol=1e-15)
+    outside = replace(machine(), axes=(axis_of_part(machine(), "plate", "Swing"), machine().axes[1]))
+    assert document_of_group(outside, "arm").axes[0].part == ""
