@@ -57,15 +57,20 @@ class Waves:
     start: FloatArray
     span: FloatArray
 
-    def at(self, angle: FloatArray, speeds: FloatArray, direction: FloatArray) -> FloatArray:
-        """Return the torques (h, m) N·m for angles (m,) of the load, shaft speeds (k,) per load speed."""
+    def at(
+        self, angle: FloatArray, speeds: FloatArray, direction: FloatArray, ranged: FloatArray | None = None
+    ) -> FloatArray:
+        """Return the torques (h, m) N·m for angles (m,) of the load, shaft speeds (k,) per load speed.
+
+        `ranged` (m,) rad says whether a load over a range of angles acts; None: the angle does.
+        """
         turn = speeds[self.shaft][:, None]
         theta = turn * angle
         torque = self.constant[:, None] + self.cosine[:, None] * np.cos(theta) + self.sine[:, None] * np.sin(theta)
         torque = np.where(self.against[:, None] > 0, torque * direction * np.sign(turn), torque)
         limited = self.span < _TURN
         if limited.any():
-            inside = (angle - self.start[:, None]) % _TURN <= self.span[:, None]
+            inside = ((angle if ranged is None else ranged) - self.start[:, None]) % _TURN <= self.span[:, None]
             torque = np.where(inside | ~limited[:, None], torque, 0.0)
         return np.asarray(torque)
 
@@ -158,7 +163,7 @@ class Demand:
         terms[FRICTION] = (self.dry * np.sign(speeds))[:, None] * motion.direction
         terms[FRICTION] += (self.viscous * speeds)[:, None] * motion.speed
         waves = self.waves
-        for row, torque in enumerate(waves.at(motion.angle, speeds, motion.direction)):
+        for row, torque in enumerate(waves.at(motion.angle, speeds, motion.direction, motion.ranged)):
             terms[waves.term[row], waves.shaft[row]] += torque
         for load in self.train.linear:
             at = self.train.index(load.shaft)
@@ -173,15 +178,35 @@ class Demand:
             direction: (m,) sense of the load's move; 0 at rest, where no losses are counted.
             shaft: its name.
         """
-        at, speeds = self.train.index(shaft), self.train.speeds
         total = terms[:, -1].copy()
-        for number in range(len(self.train.stages) - 1, at - 1, -1):
-            stage = self.train.stages[number]
-            net = total.sum(axis=0) / stage.ratio
-            total = total / stage.ratio
-            total[LOSSES] += net * _loss(stage, net * stage.ratio * direction * np.sign(speeds[number + 1]))
-            total = total + terms[:, number]
+        for number in range(len(self.train.stages) - 1, self.train.index(shaft) - 1, -1):
+            total = self._through(number, total, direction) + terms[:, number]
         return total
+
+    def passed_on(self, motion: Kinematics) -> FloatArray:
+        """Return what each shaft and each moved mass is given, (s, m) N·m, positive in driving, negative in braking.
+
+        Where one changes its sign, losses change sides: torque and power have a kink there.
+        """
+        terms, given = self.terms(motion), []
+        for load in self.train.linear:
+            speed = float(self.train.speeds[self.train.index(load.shaft)])
+            net, sense = _net_of_linear(load, speed, self.weight_factor, motion)
+            given.append(net.sum(axis=0) * sense)
+        total = terms[:, -1]
+        given.append(total.sum(axis=0) * motion.direction)
+        for number in range(len(self.train.stages) - 1, -1, -1):
+            total = self._through(number, total, motion.direction) + terms[:, number]
+            given.append(total.sum(axis=0) * motion.direction * np.sign(self.train.speeds[number]))
+        return np.array(given)
+
+    def _through(self, number: int, total: FloatArray, direction: FloatArray) -> FloatArray:
+        """Return what the motor side of a stage has to be given, (5, m) N·m, for a total (5, m) on its load side."""
+        stage = self.train.stages[number]
+        power = total.sum(axis=0) * direction * np.sign(self.train.speeds[number + 1])
+        passed = total / stage.ratio
+        passed[LOSSES] += total.sum(axis=0) / stage.ratio * _loss(stage, power)
+        return passed
 
 
 @dataclass(frozen=True)
@@ -236,15 +261,23 @@ def _range(load: AppliedForce | AppliedTorque) -> tuple[float, float]:
 
 def _terms_of_linear(load: LinearLoad, speed: float, gravity: float, motion: Kinematics) -> FloatArray:
     """Return what a mass moved along a line asks of its shaft, (5, m) N·m; speed is the shaft's per load speed."""
+    terms, sense = _net_of_linear(load, speed, gravity, motion)
+    net = terms.sum(axis=0)
+    terms[LOSSES] = net * _loss(load, net * sense)
+    return terms
+
+
+def _net_of_linear(
+    load: LinearLoad, speed: float, gravity: float, motion: Kinematics
+) -> tuple[FloatArray, FloatArray]:
+    """Return the same before losses, and the sense (m,) in which its shaft turns."""
     terms = np.zeros((len(TERMS), len(motion.time)))
     weight = load.mass * gravity
     sense = motion.direction * math.copysign(1.0, speed)
     terms[ACCELERATION] = load.mass * load.travel**2 * speed * motion.acceleration
     terms[GRAVITY] = weight * math.sin(load.slope) * load.travel
     terms[FRICTION] = (load.friction + load.friction_coefficient * weight * math.cos(load.slope)) * load.travel * sense
-    net = terms.sum(axis=0)
-    terms[LOSSES] = net * _loss(load, net * sense)
-    return terms
+    return terms, sense
 
 
 def _loss(stage: Stage | LinearLoad, power: FloatArray) -> FloatArray:

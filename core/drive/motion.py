@@ -226,6 +226,8 @@ class Kinematics:
     """What the load shaft does, each (m,): time s, angle rad, speed rad/s, acceleration rad/s², jerk rad/s³.
 
     `direction` is the sense of the move it belongs to, 1 or −1, also while its speed is still 0; 0 at a rest.
+    `ranged` (m,) rad is an angle on the same side of the ends of all ranges of angles, for moments on such an end;
+    None: the angle itself.
     """
 
     time: FloatArray
@@ -234,6 +236,7 @@ class Kinematics:
     acceleration: FloatArray
     jerk: FloatArray
     direction: FloatArray
+    ranged: FloatArray | None = None
 
 
 @dataclass(frozen=True, eq=False)

@@ -7,7 +7,7 @@ differ by is the stated error.
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -16,7 +16,7 @@ if TYPE_CHECKING:
     from collections.abc import Callable
 
     from core.arrays import FloatArray, IntArray
-    from core.drive.motion import Timeline
+    from core.drive.motion import Kinematics, Timeline
 
 # rad: no piece turns any shaft on which a torque varies with the angle further than this.
 _PIECE_TURN = math.pi / 2
@@ -32,6 +32,9 @@ _MOST_HALVINGS = 14
 _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(8)
 # Steps to a border of a range of angles at most, and where they end, relative to the zone.
 _MOST_NEWTON, _CLOSE = 60, 1e-14
+
+# Secants to a passage through zero at most; some eight do.
+_MOST_SECANTS = 60
 
 # Points of a curve per piece, both ends among them.
 CURVE_POINTS = 9
@@ -51,6 +54,11 @@ class Pieces:
         # The last point lies exactly on the end, whatever the rounding of the product.
         local = np.where(fractions == 1.0, self.end[:, None], local)
         return np.repeat(self.zone, len(fractions)), local.ravel()
+
+    def within(self, timeline: Timeline, piece: IntArray, local: FloatArray) -> Kinematics:
+        """Return the motion at local times (m,) of pieces (m,), their ends seen from inside them."""
+        middle = timeline.within(self.zone, (self.start + self.end) / 2).angle
+        return replace(timeline.within(self.zone[piece], local), ranged=middle[piece])
 
 
 def pieces_of(timeline: Timeline, fastest: float, edges: FloatArray) -> Pieces:
@@ -74,14 +82,65 @@ def pieces_of(timeline: Timeline, fastest: float, edges: FloatArray) -> Pieces:
     number = np.arange(len(zone)) - np.repeat(np.cumsum(parts) - parts, parts)
     step = (duration / parts)[zone]
     cut_zone, cut = _crossings(timeline, end.angle, edges)
-    zones = np.concatenate([zone, cut_zone])
-    starts = np.concatenate([number * step, cut])
+    return _laid(duration, np.concatenate([zone, cut_zone]), np.concatenate([number * step, cut]))
+
+
+def cut_where(pieces: Pieces, timeline: Timeline, turns: Callable[[Kinematics], FloatArray]) -> Pieces:
+    """Return the pieces cut where a function passes through zero, as far as the points of the curves show it.
+
+    Args:
+        pieces: of the whole timeline.
+        timeline: what they are of.
+        turns: gives (s, m) for a motion (m,), continuous within each piece.
+    """
+    _, local = pieces.points(np.linspace(0.0, 1.0, CURVE_POINTS))
+    motion = pieces.within(timeline, np.repeat(np.arange(len(pieces.zone)), CURVE_POINTS), local)
+    values = turns(motion).reshape(-1, len(pieces.zone), CURVE_POINTS)
+    above = values > 0
+    row, piece, point = np.nonzero(above[..., :-1] != above[..., 1:])
+    if not len(row):
+        return pieces
+    local, every = local.reshape(-1, CURVE_POINTS), np.arange(len(row))
+    cut = _zero(
+        lambda at: turns(pieces.within(timeline, piece, at))[row, every],
+        (local[piece, point], local[piece, point + 1]), (values[row, piece, point], values[row, piece, point + 1]),
+    )
+    zones = np.concatenate([pieces.zone, pieces.zone[piece]])
+    return _laid(timeline.zones.duration, zones, np.concatenate([pieces.start, cut]))
+
+
+def _laid(duration: FloatArray, zones: IntArray, starts: FloatArray) -> Pieces:
+    """Return pieces that fill zones of these durations, from their zones and starts in any order."""
     order = np.lexsort((starts, zones))
     zones, starts = zones[order], starts[order]
     last = np.concatenate([zones[1:] != zones[:-1], [True]])
     ends = np.where(last, duration[zones], np.concatenate([starts[1:], [0.0]]))
     kept = ends > starts
     return Pieces(zones[kept], starts[kept], ends[kept])
+
+
+def _zero(
+    function: Callable[[FloatArray], FloatArray], bounds: tuple[FloatArray, FloatArray],
+    values: tuple[FloatArray, FloatArray],
+) -> FloatArray:
+    """Return where functions (m,) are 0 between two bounds at which their values differ in sign.
+
+    By secants; the value that stays is halved (the Illinois rule), so that both bounds close in.
+    """
+    (left, right), (low, high) = bounds, values
+    width = right - left
+    for _ in range(_MOST_SECANTS):
+        at = np.clip(right - high * (right - left) / (high - low), np.minimum(left, right), np.maximum(left, right))
+        value = function(at)
+        moved = np.abs(at - right)
+        beyond = value * high < 0
+        left, low = np.where(beyond, right, left), np.where(beyond, high, low / 2)
+        right, high = at, value
+        if ((moved <= _CLOSE * width) | (value == 0)).all():
+            break
+        # Where it is found both values may be 0: it stays there while others are looked for.
+        low = np.where(low == high, 1.0, low)
+    return right
 
 
 def _crossings(timeline: Timeline, end: FloatArray, edges: FloatArray) -> tuple[IntArray, FloatArray]:

@@ -14,7 +14,7 @@ from typing import TYPE_CHECKING, Self
 import numpy as np
 
 from core.arrays import frozen
-from core.drive.sampling import CURVE_POINTS, Pieces, integrate, pieces_of
+from core.drive.sampling import CURVE_POINTS, Pieces, cut_where, integrate, pieces_of
 from core.drive.train import LOAD, MOTOR
 
 if TYPE_CHECKING:
@@ -145,18 +145,20 @@ class Study:
 
     @cached_property
     def pieces(self) -> Pieces:
-        """Stretches in which nothing jumps and no unbalanced shaft turns far."""
+        """Stretches in which nothing jumps, driving does not turn to braking and no unbalanced shaft turns far."""
         waves, speeds = self.demand.waves, self.demand.train.speeds
         varying = (waves.cosine != 0) | (waves.sine != 0)
         fastest = float(np.abs(speeds[waves.shaft[varying]]).max(initial=0.0))
         limited = np.isfinite(waves.span)
         edges = np.unique(np.concatenate([waves.start[limited], (waves.start + waves.span)[limited]]))
-        return pieces_of(self.timeline, fastest, edges)
+        pieces = pieces_of(self.timeline, fastest, edges)
+        return cut_where(pieces, self.timeline, self.demand.passed_on)
 
     @cached_property
     def _sampled(self) -> tuple[Kinematics, FloatArray]:
-        zone, local = self.pieces.points(np.linspace(0.0, 1.0, CURVE_POINTS))
-        motion = self.timeline.within(zone, local)
+        _, local = self.pieces.points(np.linspace(0.0, 1.0, CURVE_POINTS))
+        every = np.arange(len(self.pieces.zone))
+        motion = self.pieces.within(self.timeline, np.repeat(every, CURVE_POINTS), local)
         return motion, self.demand.terms(motion)
 
     @property
@@ -211,8 +213,8 @@ class Study:
         searches = [_Search.begun(score, curves, self.pieces) for score in _SCORES]
         for _ in range(_CLOSER):
             locals_ = [search.around for search in searches]
-            zones = [np.repeat(self.pieces.zone[search.near], len(_AROUND)) for search in searches]
-            motion = self.timeline.within(np.concatenate(zones), np.concatenate([one.ravel() for one in locals_]))
+            near = np.concatenate([np.repeat(search.near, len(_AROUND)) for search in searches])
+            motion = self.pieces.within(self.timeline, near, np.concatenate([one.ravel() for one in locals_]))
             closer = self._seen_from(curves.shaft, motion, self.demand.terms(motion))
             edges = np.cumsum([0, *(one.size for one in locals_)])
             searches = [search.closer(closer, int(edge)) for search, edge in zip(searches, edges[:-1], strict=True)]

@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 import strategies
 from drive_cases import FLAP_AXIS, UP, demand_of, moving, plain, torque_at
-from hypothesis import given, settings
+from hypothesis import example, given, settings
 from hypothesis import strategies as st
 from scipy.integrate import quad
 
@@ -271,17 +271,29 @@ def test_without_losses_the_work_is_the_kinetic_and_the_lifted_energy(law, angle
     assert work == pytest.approx(stored, abs=1e-8 * (body.inertia * float(end.speed[0]) ** 2 + 10 * G * 0.6))
 
 
+def cusped() -> tuple[Demand, Duty]:
+    """A demand whose torque at the motor is highest where braking becomes driving, between two straight lines."""
+    train = Train(Motor(0.0078125), (
+        Gear("gear", -20.0, 1.0, 1e-4), Belt("belt", 0.02, 0.05, 0.40234375, 1e-4, 1e-3, 0.2),
+    ))
+    duty = Duty((Move(0.5, ByTime(1.0)), Rest(1.0), Move(-0.5, ByTime(1.0), Law.MODIFIED_TRAPEZOID)), 1.0)
+    return Demand(train, (flap(1.0, 0.375, 1.0),), FLAP_AXIS), duty
+
+
 @settings(max_examples=20)
 @given(full_demands(), closed_duties())
+@example(*cusped())
 def test_the_rms_is_that_of_a_dense_sum_within_its_stated_error(demand, duty):
     study = Study(demand, duty)
     needs = study.needs("motor")
-    times = (np.arange(200_000) + 0.5) / 200_000 * study.timeline.length
+    # Midpoints within each zone, so that what jumps does so between two of them.
+    starts, lengths = study.timeline.time, study.timeline.zones.duration
+    times = (starts[:, None] + lengths[:, None] * (np.arange(20_000) + 0.5) / 20_000).ravel()
     motion = study.timeline.at(times)
     torque = demand.at_shaft(demand.terms(motion), motion.direction, "motor").sum(axis=0)
-    # The midpoint sum is off by its own step at the jumps.
-    assert needs.rms == pytest.approx(math.sqrt(float(np.mean(torque**2))), rel=2e-4, abs=1e-12)
-    assert needs.rms_error <= 1e-6 * needs.rms + 1e-15
+    mean = float((torque.reshape(len(lengths), -1) ** 2).mean(axis=1) @ lengths) / study.timeline.length
+    assert needs.rms == pytest.approx(math.sqrt(mean), rel=1e-6, abs=1e-12)
+    assert needs.rms_error <= 1e-8 * needs.rms + 1e-15
     # Nowhere between is more than at the peak.
     assert np.abs(torque).max() <= abs(needs.peak.torque) * (1 + 1e-9)
     assert abs(needs.peak.torque) <= np.abs(torque).max() * (1 + 1e-2)
@@ -309,6 +321,39 @@ def test_a_peak_at_a_jump_is_the_side_that_is_higher():
     assert needs.peak_power.time == pytest.approx(0.5)
     assert needs.mean_power == pytest.approx(1.0 / 2.0)
     assert needs.mean_speed == pytest.approx(0.5)
+
+
+def test_driving_and_braking_are_told_apart_where_one_becomes_the_other():
+    # J·α = ±8 N·m, and 10 N·m·s/rad from 0 to 2 rad/s and back: slowing down it is driven until 0.8 rad/s.
+    train = plain(2.0, 0.0, (Gear("gear", 4.0, 0.5, braking_efficiency=0.25),))
+    demand = demand_of(train, frictions=(Friction("seal", viscous=10.0),))
+    study = Study(demand, Duty((Move(1.0, ByTime(1.0), Law.TRIANGULAR),)))
+
+    def work(dry: float, low: float, high: float) -> float:
+        """∫ (dry + 10·ω)·ω dt from one speed to another at 4 rad/s²."""
+        return (dry * (high**2 - low**2) / 2 + 10.0 * (high**3 - low**3) / 3) / 4
+
+    def squares(dry: float, low: float, high: float) -> float:
+        """∫ (dry + 10·ω)² dt."""
+        return ((dry + 10.0 * high) ** 3 - (dry + 10.0 * low) ** 3) / 30.0 / 4
+
+    driving, braking = work(8.0, 0.0, 2.0) + work(-8.0, 0.8, 2.0), -work(-8.0, 0.0, 0.8)
+    load, motor = study.needs("load"), study.needs("motor")
+    assert (load.energy.driving, load.energy.returned) == pytest.approx((driving, braking), rel=1e-14)
+    assert (motor.energy.driving, motor.energy.returned) == pytest.approx((driving / 0.5, braking * 0.25), rel=1e-14)
+    driven = squares(8.0, 0.0, 2.0) + squares(-8.0, 0.8, 2.0)
+    braked = squares(-8.0, 0.0, 0.8)
+    assert motor.rms == pytest.approx(math.sqrt(driven / (4 * 0.5) ** 2 + braked * (0.25 / 4) ** 2), rel=1e-14)
+
+
+def test_each_side_of_the_end_of_a_range_is_drawn_as_it_is_there():
+    duty = Duty((Repeat((Move(2 * math.pi, ByTime(1.0), Law.CYCLOIDAL),), 2), Move(-5.0, ByTime(1.0))), start=-0.3)
+    demand = demand_of(Train(), torques=(AppliedTorque("press", 7.0, start=1.0, end=1.25),))
+    study = Study(demand, duty)
+    # 9 points a piece.
+    acting = study.curves("load").terms[APPLIED].reshape(-1, 9)
+    np.testing.assert_array_equal(acting, np.repeat(acting[:, 4:5], 9, axis=1))
+    assert sorted(set(acting[:, 4].tolist())) == [0.0, 7.0]
 
 
 def test_a_force_over_a_range_counts_in_rms_and_energy_by_exactly_its_range():
