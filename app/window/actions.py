@@ -170,6 +170,7 @@ class Actions:
         menu.addSeparator()
         for words, switch in (
             ("Parallel projection", view.set_parallel), ("See-through", view.set_see_through),
+            ("Unbalance arrows", self._window.balance.keep_arrows),
             ("Sort the ledger by share", self._window.ledger.tree.lines.sort_by_share),
         ):
             action = menu.addAction(words)

@@ -37,6 +37,7 @@ from app.window.ledger.view import LedgerPane
 from app.window.linked_commands import LinkedGroups
 from app.window.numbers import copied, preview, shown
 from app.window.overlap_watch import OverlapWatch
+from app.window.pages.balance.page import BalancePage
 from app.window.pages.checks import ChecksPage, counted
 from app.window.pages.part import PartPage
 from app.window.pages.sheet import SheetPage
@@ -72,6 +73,7 @@ class MainWindow(QMainWindow):
         self.part = PartPage(self.session)
         self.sheet = SheetPage(self.session)
         self.torque = TorquePage(self.session)
+        self.balance = BalancePage(self.session)
         self.checks = ChecksPage(self.session)
         self.overlap_watch = OverlapWatch(self.session, self)
         self.pages = QTabWidget()
@@ -95,7 +97,8 @@ class MainWindow(QMainWindow):
 
     def _lay_out(self) -> None:
         for page, words in (
-            (self.part, "Part"), (self.sheet, "Sheet"), (self.torque, "Torque"), (self.checks, "Checks"),
+            (self.part, "Part"), (self.sheet, "Sheet"), (self.torque, "Torque"), (self.balance, "Balance"),
+            (self.checks, "Checks"),
         ):
             self.pages.addTab(page, words)
         self.pages.setCurrentWidget(self.sheet)
@@ -154,6 +157,7 @@ class MainWindow(QMainWindow):
         self.gallery.closed.connect(self._close_gallery)
         self.view.picked.connect(self._pick)
         self.view.hovered.connect(self._hover)
+        self.balance.vectors_changed.connect(self.view.show_vectors)
         self.ledger.tree.hovered.connect(self._hover)
         a.axes.chosen.connect(self._choose_axis)
         a.units.chosen.connect(self._choose_units)
@@ -347,14 +351,14 @@ class MainWindow(QMainWindow):
 
     def _note_place(self, _old: QWidget | None, now: QWidget | None) -> None:
         """Remember which table the keyboard was in last: opening a menu may take it out of there."""
-        for place in (self.sheet, self.checks, self.ledger):
+        for place in (self.sheet, self.balance, self.checks, self.ledger):
             if now is not None and place.isAncestorOf(now):
                 self._place = place
 
     def copy(self) -> None:
         """Copy what is selected where the keyboard is or was last: values, a finding, or cells of the ledger."""
-        if self._place is self.sheet:
-            self.sheet.copy_selection()
+        if self._place in (self.sheet, self.balance):
+            self._place.copy_selection()
         elif self._place is self.checks:
             text = self.checks.copy_current()
             self._say_copied("the finding", text)

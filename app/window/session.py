@@ -116,10 +116,13 @@ class Session(QObject):
 
         A refused edit leaves everything as it was.
         """
+        return self.attempt_machine(name, lambda machine: machine.with_assembly(change(machine.assembly)), select)
+
+    def attempt_machine(self, name: str, change: Callable[[Machine], Machine], select: str | None = None) -> str:
+        """Do one edit of assembly and drive together, as `attempt` does."""
         try:
-            edited = change(self.assembly)
-            check_linked_lines(self.assembly, edited)
-            after = self.machine.with_assembly(edited)
+            after = change(self.machine)
+            check_linked_lines(self.assembly, after.assembly)
             # Evaluated before it counts: an assembly that cannot be added up is refused as a whole.
             ledger, findings = ledger_of(after.assembly), after.findings()
         except MasswrightError as error:

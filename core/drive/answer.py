@@ -160,19 +160,10 @@ def balance_answer(assembly: Assembly, settings: DriveSettings) -> BalanceAnswer
     Raises:
         ValueRefused, EditRefused: the settings name what the document has not.
     """
-    wanted = settings.balance
-    bodies = bodies_of(assembly, settings.turning)
-    moments = _moments_on(bodies, wanted.shaft, settings)
-    if float(moments.mass) <= 0:
+    wanted, rotor = settings.balance, rotor_of(assembly, settings)
+    if rotor is None:
         return None
-    at = settings.train.index(wanted.shaft)
-    axes = [body.axis for body in bodies if settings.train.index(body.shaft) == at]
-    if any(one != axes[0] for one in axes):
-        raise ValueRefused(
-            "what turns with one shaft turns about different axes, so it is no one rotor", where="balance",
-            read=" and ".join(one.name for one in axes), remedy="Choose another shaft, or one axis for all of it",
-        )
-    axis = axes[0]
+    moments, axis = rotor
     found = unbalance(moments, axis)
     made = corrections(found, wanted.planes, wanted.by) if wanted.planes else ()
     left = unbalance(corrected(moments, axis, made), axis) if made else found
@@ -190,6 +181,26 @@ def balance_answer(assembly: Assembly, settings: DriveSettings) -> BalanceAnswer
         None if grade is None or wanted.grade is None else grade.keeps_to(wanted.grade),
         made, left, _grade_of(left, wanted),
     )
+
+
+def rotor_of(assembly: Assembly, settings: DriveSettings) -> tuple[Moments, DriveAxis] | None:
+    """Return what turns with the shaft of the rotor, document frame, and the axis it turns about; None without mass.
+
+    Raises:
+        ValueRefused, EditRefused: as balance_answer.
+    """
+    shaft, train = settings.balance.shaft, settings.train
+    bodies = bodies_of(assembly, settings.turning)
+    moments = _moments_on(bodies, shaft, settings)
+    if float(moments.mass) <= 0:
+        return None
+    axes = [body.axis for body in bodies if train.index(body.shaft) == train.index(shaft)]
+    if any(one != axes[0] for one in axes):
+        raise ValueRefused(
+            "what turns with one shaft turns about different axes, so it is no one rotor", where="balance",
+            read=" and ".join(one.name for one in axes), remedy="Choose another shaft, or one axis for all of it",
+        )
+    return moments, axes[0]
 
 
 def _grade_of(found: Unbalance, wanted: BalanceSettings) -> Graded | None:

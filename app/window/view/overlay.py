@@ -73,7 +73,8 @@ class Overlay(QWidget):
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
         self._draw_found(painter, picture)
         names = self._draw_axes(painter, picture)
-        names += self._draw_principal(painter, picture)
+        names += self._draw_arrows(painter, picture, picture.scene.principal, picture.theme.principal)
+        names += self._draw_arrows(painter, picture, picture.vectors, picture.theme.vector)
         taken = [self._draw_centre(painter, picture)] if picture.scene.mass_centre is not None else []
         names = [*self._draw_handles(painter, picture), *names]
         names += [*self._draw_triad(painter, picture), *self._emphasised(picture)]
@@ -149,9 +150,11 @@ class Overlay(QWidget):
         bold = axis is picture.scene.axis and bool(picture.scene.other_axes)
         return [self._name(axis.name, end, run, theme.drive, bold=bold)]
 
-    def _draw_principal(self, painter: QPainter, picture: Picture) -> list[_Name]:
-        theme, names = picture.theme, []
-        for arrow in picture.scene.principal:
+    def _draw_arrows(
+        self, painter: QPainter, picture: Picture, arrows: tuple[Line, ...], colour: Colour
+    ) -> list[_Name]:
+        names = []
+        for arrow in arrows:
             ends = self._line_on_screen(picture, arrow)
             if ends is None:
                 continue
@@ -160,11 +163,14 @@ class Overlay(QWidget):
             length = float(np.hypot(run.x(), run.y()))
             if length < _HEAD_LENGTH:
                 continue
-            self._draw_arrow(painter, picture, start, end)
-            names.append(self._name(arrow.name, end, run, theme.principal, bold=True))
+            self._draw_arrow(painter, picture, ends, colour)
+            names.append(self._name(arrow.name, end, run, colour, bold=True))
         return names
 
-    def _draw_arrow(self, painter: QPainter, picture: Picture, start: QPointF, end: QPointF) -> None:
+    def _draw_arrow(
+        self, painter: QPainter, picture: Picture, ends: tuple[QPointF, QPointF], colour: Colour
+    ) -> None:
+        start, end = ends
         run = end - start
         length = float(np.hypot(run.x(), run.y()))
         along = run / length
@@ -175,9 +181,9 @@ class Overlay(QWidget):
         painter.setPen(QPen(qcolor(picture.theme.casing, 170), _CASING))
         painter.setBrush(Qt.BrushStyle.NoBrush)
         painter.drawPolygon(head)
-        self._stroke(painter, picture, (start, neck), picture.theme.principal, _ARROW_WIDTH, cased=False)
+        self._stroke(painter, picture, (start, neck), colour, _ARROW_WIDTH, cased=False)
         painter.setPen(Qt.PenStyle.NoPen)
-        painter.setBrush(qcolor(picture.theme.principal))
+        painter.setBrush(qcolor(colour))
         painter.drawPolygon(head)
 
     def _draw_centre(self, painter: QPainter, picture: Picture) -> Box:

@@ -31,6 +31,7 @@ class Theme:
         principal: the principal axes, the mark of the centre of mass, and the focus ring.
         found: the edges that a finding is about.
         handle: what a line is moved and turned by.
+        vector: arrows of what acts on the assembly, such as an unbalance.
         casing: beneath lines and text, so that they read over any part.
 
     """
@@ -48,6 +49,7 @@ class Theme:
     principal: Colour
     found: Colour
     handle: Colour
+    vector: Colour
     casing: Colour
 
 
@@ -73,6 +75,7 @@ LIGHT = Theme(
     principal=(0x00, 0x6C, 0xAA),
     found=(0xC2, 0x4C, 0x00),
     handle=(0x00, 0x6B, 0x4E),
+    vector=(0x8A, 0x5A, 0x00),
     casing=(0xFF, 0xFF, 0xFF),
 )
 
@@ -98,6 +101,7 @@ DARK = Theme(
     principal=SKY_BLUE,
     found=(0xF0, 0x80, 0x40),
     handle=(0x3F, 0xD0, 0xA4),
+    vector=(0xE6, 0x9F, 0x00),
     casing=(0x12, 0x15, 0x18),
 )
 

@@ -16,7 +16,7 @@ from app.window.view.opengl import prepare_opengl, probed
 from app.window.view.overlay import Overlay
 from app.window.view.picking import pick
 from app.window.view.picture import Picture, size_of, theme_of
-from app.window.view.scene import Scene, SurfaceStore, carried, scene_of
+from app.window.view.scene import Line, Scene, SurfaceStore, carried, scene_of
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -199,6 +199,12 @@ class ViewPane(QWidget):
         """Draw edges (k, 2, 3) m of the document frame over everything; none takes those shown away."""
         self._picture = replace(self._picture, found=edges)
         self._redraw(moving=False)
+
+    def show_vectors(self, vectors: tuple[Line, ...]) -> None:
+        """Draw arrows (m, document frame) over everything, each with its name; none takes those shown away."""
+        if vectors or self._picture.vectors:
+            self._picture = replace(self._picture, vectors=vectors)
+            self._redraw(moving=False)
 
     def go_to(self, points: FloatArray) -> None:
         """Show these points (n, 3) m, as near as they allow, from where the camera looks."""

@@ -16,7 +16,7 @@ if TYPE_CHECKING:
 
     from app.window.view.batch import Lines
     from app.window.view.camera import Camera, Size
-    from app.window.view.scene import Scene
+    from app.window.view.scene import Line, Scene
     from app.window.view.surface import Float32Array
     from core.arrays import FloatArray
 
@@ -34,6 +34,7 @@ class Picture:
     Attributes:
         moving: the camera is on its way, so that a lighter drawing does.
         found: edges (k, 2, 3) m in the document frame that a finding is about, drawn over everything.
+        vectors: arrows of what acts on the assembly, drawn over everything, each with its name at its head.
 
     """
 
@@ -43,6 +44,7 @@ class Picture:
     theme: Theme = LIGHT
     moving: bool = False
     found: FloatArray = field(default_factory=lambda: np.zeros((0, 2, 3)))
+    vectors: tuple[Line, ...] = ()
 
     def depths(self) -> tuple[float, float]:
         """Return the depths of the near and the far plane, m."""

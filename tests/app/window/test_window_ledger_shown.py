@@ -133,4 +133,4 @@ def test_the_status_line_says_mass_inertia_and_checks_and_what_to_do_when_empty(
     failed = sum(not finding.check.ok for finding in window.session.findings)
     assert failed > 0
     assert said[2].startswith(f"{failed} check")
-    assert window.pages.tabText(2) == f"Checks  {failed}"
+    assert window.pages.tabText(window.pages.indexOf(window.checks)) == f"Checks  {failed}"
