@@ -12,9 +12,12 @@ from core.assembly.seats import seated
 from core.checks import Check
 from core.drive import BalanceAnswer, DriveAnswer, DriveSettings, balance_answer, drive_answer
 from core.drive.naming import drive_uses_of, with_names_read_again, with_names_written_anew
+from core.drive.turning import turning_elsewhere
 from core.errors import MasswrightError
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from core.drive.naming import DriveUse
 
 _EMPTY = Assembly()
@@ -55,6 +58,11 @@ class Machine:
             ValueRefused, EditRefused: as balance_answer.
         """
         return balance_answer(self.assembly, self.drive)
+
+    @cached_property
+    def turning_elsewhere(self) -> Mapping[str, str]:
+        """What parts and groups turn with, in words by key; those that turn with the load are not in it."""
+        return turning_elsewhere(self.assembly, self.drive)
 
     def findings(self) -> tuple[Finding, ...]:
         """Return every check on the assembly, and then those on the drive where anything is entered about it.

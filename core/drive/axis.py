@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from core.assembly import walk
 from core.assembly.axes import without_axis
 from core.drive.train import FIXED, LOAD
 from core.errors import EditRefused, ValueRefused
@@ -110,9 +111,8 @@ def bodies_of(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[Turni
         EditRefused: an entry names a line or an axis that is not there.
     """
     refuse_unless_there(assembly, turning)
-    by_key = {entry.key: entry for entry in turning}
-    table = assembly.table
-    entries = [_entry_of(assembly, part.key, by_key) for part in table.parts]
+    table, by_line = assembly.table, entries_by_line(assembly, turning)
+    entries = [by_line[part.key] for part in table.parts]
     bodies = []
     for entry in turning:
         name = assembly.node(entry.key).name if entry.key else assembly.name
@@ -172,24 +172,25 @@ def without_idle_axis(assembly: Assembly, turning: tuple[TurnsWith, ...], name: 
     return without_axis(assembly, name)
 
 
+def entries_by_line(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> dict[str, TurnsWith | None]:
+    """Return the entry that counts for each part and group, by its key: its own, or the one of what holds it."""
+    by_key = {entry.key: entry for entry in turning}
+    # What counts for the whole document, and then at each depth down to the line.
+    above = [by_key.get("")]
+    found: dict[str, TurnsWith | None] = {}
+    for node, depth in walk(assembly.members):
+        above[depth + 1 :] = [by_key.get(node.key, above[depth])]
+        found[node.key] = above[depth + 1]
+    return found
+
+
 def shafts_by_key(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> dict[str, str]:
     """Return the shaft that each part turns with, by the part's key; what stands still is not in it."""
-    by_key = {entry.key: entry for entry in turning}
-    found = ((part.key, _entry_of(assembly, part.key, by_key)) for part in assembly.table.parts)
+    by_line = entries_by_line(assembly, turning)
+    found = ((part.key, by_line[part.key]) for part in assembly.table.parts)
     return {key: entry.shaft for key, entry in found if entry is not None and entry.shaft != FIXED}
 
 
 def keys_turning(assembly: Assembly, turning: tuple[TurnsWith, ...]) -> tuple[str, ...]:
     """Return the keys of all parts that turn with some shaft."""
     return tuple(shafts_by_key(assembly, turning))
-
-
-def _entry_of(assembly: Assembly, key: str, by_key: dict[str, TurnsWith]) -> TurnsWith | None:
-    # The document itself is what most turn with; then no group need be looked for.
-    if len(by_key) == 1 and "" in by_key:
-        return by_key[""]
-    above = [group.key for group in assembly.groups_above(key)]
-    for name in (key, *reversed(above), ""):
-        if name in by_key:
-            return by_key[name]
-    return None

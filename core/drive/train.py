@@ -313,6 +313,22 @@ class Train:
         return self.shafts.index(shaft)
 
     @cached_property
+    def shaft_words(self) -> dict[str, str]:
+        """What each shaft is called where it is shown, by its first name, from the motor to the load."""
+        if not self.stages:
+            return {LOAD: "motor and load"}
+        return {MOTOR: MOTOR, **{stage.name: f"behind {stage.name}" for stage in self.stages[:-1]}, LOAD: LOAD}
+
+    def first_name(self, shaft: str) -> str:
+        """Return the one name of a shaft that has two: behind the last stage, and of the motor without stages, LOAD.
+
+        Raises:
+            ValueRefused: the train has no such shaft.
+        """
+        at = self.index(shaft)
+        return LOAD if at == len(self.stages) else self.shafts[at]
+
+    @cached_property
     def speeds(self) -> FloatArray:
         """Turns s (k,) of each shaft for one turn of the load shaft, negative for the other way round."""
         ratios = np.array([stage.ratio for stage in self.stages] + [1.0])

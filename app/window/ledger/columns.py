@@ -10,6 +10,7 @@ from core.quantity import Kind
 if TYPE_CHECKING:
     from collections.abc import Callable
 
+    from app.window.session import Session
     from core.assembly import Line
     from core.quantity import Unit, UnitSet
 
@@ -27,6 +28,7 @@ class Column:
         digits: significant digits shown.
         unit: what it is shown in where that is not the unit of its kind.
         at_first: whether it is shown until somebody chooses.
+        beside: the text of a line where the line alone does not say it, of what the window has of the document.
 
     """
 
@@ -38,6 +40,11 @@ class Column:
     digits: int = 4
     unit: Callable[[UnitSet], Unit] | None = None
     at_first: bool = True
+    beside: Callable[[Session, Line], str] | None = None
+
+    def shown_of(self, session: Session, line: Line) -> float | str | int | None:
+        """Return the number in SI, or the text, of a line; None where there is none."""
+        return self.value(line) if self.beside is None else self.beside(session, line)
 
 
 def _centre(axis: int) -> Callable[[Line], float | None]:
@@ -53,6 +60,11 @@ COLUMNS: tuple[Column, ...] = (
     Column(
         "material", "Material", None, lambda line: line.material,
         "What says the mass: a material, a density (7850 kg/m³) or a weighed mass (1.2 kg).\nType any of them here.",
+    ),
+    Column(
+        "turns", "Turns with", None, lambda _line: "",
+        "The shaft that it turns with where that is not the load's, and the axis where it is not the drive axis.",
+        at_first=False, beside=lambda session, line: session.machine.turning_elsewhere.get(line.key, ""),
     ),
     Column("mass", "Mass", Kind.MASS, lambda line: line.mass, "Mass of all copies."),
     Column("x", "x", Kind.LENGTH, _centre(0), "Centre of mass of all copies together, from the document's origin."),

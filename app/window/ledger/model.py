@@ -339,7 +339,7 @@ def moved_lines(assembly: Assembly, keys: list[str], group: str | None, row: int
 
 def cell_to_copy(session: Session, line: Line, column: int) -> float | int | str:
     """Return what a cell holds for a spreadsheet: a number in the unit shown, or a text; "" where there is none."""
-    value = COLUMNS[column].value(line)
+    value = COLUMNS[column].shown_of(session, line)
     if value is None or isinstance(value, (str, int)):
         return "" if value is None else value
     return float(_unit(session, column).from_si(value))
@@ -355,7 +355,7 @@ def _unit(session: Session, column: int) -> Unit:
 def cell_text(session: Session, line: Line, column: int, role: int) -> str:
     """Return a cell's text: as shown, or as edited (full precision)."""
     spec = COLUMNS[column]
-    value = spec.value(line)
+    value = spec.shown_of(session, line)
     if value is None:
         return "–" if role == Qt.ItemDataRole.DisplayRole else ""
     if isinstance(value, str):

@@ -29,9 +29,9 @@ if TYPE_CHECKING:
     from core.assembly import Assembly
     from core.handover.table import Cell
 
-# All columns fit into a window 1280 wide, with a scroll bar beside them.
-WIDTHS = {"name": 200, "count": 48, "material": 180, "mass": 90, "x": 76, "y": 76, "z": 80, "own": 104, "transfer": 104,
-          "inertia": 120, "gd2": 110, "wr2": 110, "gyration": 104, "share": 160}
+# All columns that are shown at first fit into a window 1280 wide, with a scroll bar beside them.
+WIDTHS = {"name": 200, "count": 48, "material": 180, "turns": 130, "mass": 90, "x": 76, "y": 76, "z": 80, "own": 104,
+          "transfer": 104, "inertia": 120, "gd2": 110, "wr2": 110, "gyration": 104, "share": 160}
 
 
 class LedgerTree(QTreeView):
@@ -215,6 +215,8 @@ class LedgerPane(QWidget):
         self.columns = self._columns_menu()
         self._tie_columns()
         self._tell_columns()
+        self._turns_told = False
+        session.changed.connect(self._tell_turns)
         self.tree.verticalScrollBar().installEventFilter(self)
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
@@ -259,6 +261,13 @@ class LedgerPane(QWidget):
             action.setText(COLUMNS[at].heading.format(axis=self._session.assembly.drive))
             action.setChecked(not self.tree.isColumnHidden(at))
 
+    def _tell_turns(self) -> None:
+        """Show the column "Turns with" once a line turns with something else than the load, and no longer than that."""
+        told = bool(self._session.machine.turning_elsewhere)
+        if told != self._turns_told:
+            self._turns_told = told
+            self.show_column(INDEX["turns"], told)
+
     def show_column(self, at: int, wanted: bool) -> None:
         """Show or hide a column of the ledger and of its foot."""
         self.tree.setColumnHidden(at, not wanted)
@@ -272,6 +281,7 @@ class LedgerPane(QWidget):
         """Give the columns the widths, order and choice that were kept."""
         self.tree.header().restoreState(state)
         self.foot.header().restoreState(state)
+        self.show_column(INDEX["turns"], self._turns_told)
 
     def copy_block(self) -> str:
         """Put the selected cells on the clipboard, tab-separated; return that text, "" where none are selected."""

@@ -17,6 +17,7 @@ from app.window.pages.part_link import HeldHead, LinkSection
 from app.window.pages.part_mass import MassSection
 from app.window.pages.part_mesh import MeshSection
 from app.window.pages.part_stand import PlaceSection
+from app.window.pages.part_turning import TurningSection
 from app.window.pages.part_variants import VariantsSection
 from app.window.pages.section import Section
 from app.window.style import GRID, Words
@@ -171,6 +172,8 @@ def _sections(session: Session, form: Form, node: AnyLine) -> list[Section]:
         if isinstance(node.body, ShapeBody | MeshBody):
             sections += [MassSection(session, form, node), CutsSection(session, form, node)]
     sections += [PlaceSection(session, form, node), CopiesSection(session, form, node)]
+    if not isinstance(node, Cut):
+        sections.append(TurningSection(session, form, node))
     if session.assembly.variants and not isinstance(node, Cut):
         sections.append(VariantsSection(session, form, node))
     return sections

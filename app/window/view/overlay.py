@@ -25,7 +25,7 @@ if TYPE_CHECKING:
 
 # ISO 128 chain line, narrow: long dash, gap, dot, gap, in line widths.
 CHAIN = (16.0, 3.0, 0.6, 3.0)
-_AXIS_WIDTH, _OTHER_AXIS_WIDTH, _ARROW_WIDTH, _FOUND_WIDTH, _CASING = 1.4, 0.8, 1.8, 1.6, 3.0
+_AXIS_WIDTH, _OTHER_AXIS_WIDTH, _ARROW_WIDTH, _FOUND_WIDTH, _CASING = 1.4, 1.0, 1.8, 1.6, 3.0
 _HEAD_LENGTH, _HEAD_WIDTH = 11.0, 7.0
 _DISC = 7.0
 _TRIAD, _TRIAD_AT = 26.0, 44.0

@@ -22,6 +22,7 @@ from window_driver import (
     trigger,
 )
 
+from app.window.ledger.columns import INDEX
 from core.assembly import Assembly, DataSheet, KnownAxial, KnownTensor
 from core.machine import Machine
 from core.material import ByDensity, ByMaterial, NotSet, Weighed, material
@@ -363,7 +364,7 @@ def test_a_new_axis_becomes_the_drive_axis_and_is_undone_by_its_name(filled):
     assert no_dialog(filled)
     assert filled.session.assembly.drive == "Tilt"
     assert filled.actions_.axes.currentText() == "Tilt"
-    assert filled.ledger.tree.lines.headerData(9, Qt.Orientation.Horizontal).startswith("J about Tilt")
+    assert filled.ledger.tree.lines.headerData(INDEX["inertia"], Qt.Orientation.Horizontal).startswith("J about Tilt")
     assert filled.session.history.undo_name == "Add axis Tilt"
     choose(filled.actions_.axes, "Spindle")
     assert filled.session.assembly.drive == "Spindle"

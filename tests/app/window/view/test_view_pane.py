@@ -14,7 +14,7 @@ from app.window.view.opengl import VIEW_VARIABLE, opengl_works, prepare_opengl
 from app.window.view.palette import DARK, LIGHT
 from app.window.view.pane import ViewPane
 from app.window.view.soft_view import SoftView
-from core.assembly import Assembly
+from core.assembly import Assembly, DriveAxis
 
 SIZE = (480, 360)
 VIEWS = ["front", "back", "left", "right", "top", "bottom", "iso"]
@@ -89,6 +89,25 @@ def test_the_part_under_the_pointer_lights_up(pane, qtbot, dial):
     plain = shot(pane, qtbot)
     pane.show_assembly(dial, frozenset(), "fixture")
     assert (shot(pane, qtbot) != plain).any(axis=-1).sum() > 1500
+
+
+def test_every_axis_is_drawn_the_drive_axis_with_the_wider_line(pane, qtbot, dial):
+    def inked(assembly: Assembly) -> np.ndarray:
+        pane.show_assembly(assembly)
+        pane.look("front")
+        red, green, blue = np.moveaxis(shot(pane, qtbot, marks=True).astype(int), -1, 0)
+        # The purple of axes, which nothing else has, by how much of it there is.
+        return np.where((red - green > 30) & (blue - green > 15), red - green, 0)
+
+    aside = DriveAxis("Tilt", (0.1, 0.0, 0.0))
+    alone = inked(dial)
+    both = inked(replace(dial, axes=(*dial.axes, aside)))
+    other = inked(replace(dial, axes=(*dial.axes, aside), drive="Tilt"))
+    assert both.sum() > 1.3 * alone.sum()
+    # The same line of the picture, drawn as another axis and as the drive axis.
+    column = int(both[60:].sum(axis=0)[SIZE[0] // 2 + 20 :].argmax()) + SIZE[0] // 2 + 20
+    line = slice(column - 2, column + 3)
+    assert other[60:, line].sum() > 1.15 * both[60:, line].sum() > 5000
 
 
 @pytest.mark.parametrize("view", VIEWS)
