@@ -161,19 +161,22 @@ def _sections(session: Session, form: Form, node: AnyLine) -> list[Section]:
     if isinstance(node, Group) and node.link is not None:
         sections.append(LinkSection(session, form, node))
     if isinstance(node, Part):
-        if isinstance(node.body, ShapeBody):
-            sections.append(ShapeSection(session, form, node))
-            if is_profile(node):
-                sections.append(OutlineSection(session, form, node))
-        elif isinstance(node.body, MeshBody):
-            sections.append(MeshSection(session, form, node))
-        else:
-            sections.append(KnownSection(session, form, node))
-        if isinstance(node.body, ShapeBody | MeshBody):
-            sections += [MassSection(session, form, node), CutsSection(session, form, node)]
+        sections += _body_sections(session, form, node)
     sections += [PlaceSection(session, form, node), CopiesSection(session, form, node)]
     if not isinstance(node, Cut):
         sections.append(TurningSection(session, form, node))
     if session.assembly.variants and not isinstance(node, Cut):
         sections.append(VariantsSection(session, form, node))
     return sections
+
+
+def _body_sections(session: Session, form: Form, part: Part) -> list[Section]:
+    if isinstance(part.body, MeshBody):
+        sections: list[Section] = [MeshSection(session, form, part)]
+    elif isinstance(part.body, ShapeBody):
+        sections = [ShapeSection(session, form, part)]
+        if is_profile(part):
+            sections.append(OutlineSection(session, form, part))
+    else:
+        return [KnownSection(session, form, part)]
+    return [*sections, MassSection(session, form, part), CutsSection(session, form, part)]

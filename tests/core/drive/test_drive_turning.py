@@ -40,11 +40,14 @@ GEARED = DriveSettings(train=Train(stages=(Gear("belt", 2.0), Gear("gear", 4.0))
 KEYS = [node.key for node, _ in walk(ASSEMBLY.members)]
 
 
-@st.composite
-def turnings(draw: st.DrawFn) -> tuple[TurnsWith, ...]:
-    keys = draw(st.lists(st.sampled_from(["", *KEYS]), unique=True))
-    shafts = st.sampled_from([LOAD, MOTOR, "belt", FIXED])
-    return tuple(TurnsWith(key, draw(shafts), draw(st.sampled_from(["", "Roller axis"]))) for key in keys)
+ENTRIES = st.builds(
+    TurnsWith, st.sampled_from(["", *KEYS]), st.sampled_from([LOAD, MOTOR, "belt", FIXED]),
+    st.sampled_from(["", "Roller axis"]),
+)
+
+
+def turnings() -> st.SearchStrategy[tuple[TurnsWith, ...]]:
+    return st.lists(ENTRIES, max_size=4, unique_by=lambda entry: entry.key).map(tuple)
 
 
 @given(turnings())
