@@ -37,7 +37,8 @@ def changed_at(at: Any, changes: Mapping[tuple[str, ...], object]) -> Any:
     made = {}
     for step, deeper in under.items():
         inner = one_step(at, step)
-        if inner is None and () not in deeper:
+        known = step.isdecimal() if isinstance(at, tuple) else hasattr(at, step)
+        if not known or (inner is None and () not in deeper):
             raise EditRefused("the drive has no such entry", read=step)
         made[step] = deeper[()] if () in deeper else changed_at(inner, deeper)
     if isinstance(at, tuple):

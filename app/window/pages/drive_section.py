@@ -35,6 +35,11 @@ class DriveSection:
         for field, path in self._bound:
             field.set_value(self.number_at(path), typed_at(self.session.drive, self.path(path)))
 
+    def drop(self) -> None:
+        """Drop every text being typed: the fields are about to be those of something else."""
+        for field, _ in self._bound:
+            field.restore()
+
     def path(self, inner: str) -> str:
         """Return the path in the settings of something of the entry."""
         return f"{self.root}.{inner}" if self.root else inner

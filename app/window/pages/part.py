@@ -6,7 +6,7 @@ from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QApplication, QFrame, QScrollArea, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QFrame, QScrollArea, QVBoxLayout, QWidget
 
 from app.window.fields import Form, QuantityField, TextField
 from app.window.outline.section import OutlineSection, is_profile
@@ -20,6 +20,7 @@ from app.window.pages.part_stand import PlaceSection
 from app.window.pages.part_turning import TurningSection
 from app.window.pages.part_variants import VariantsSection
 from app.window.pages.section import Section
+from app.window.pages.swap import swap
 from app.window.style import GRID, Words
 from core.assembly import Cut, Group, MeshBody, Part, ShapeBody
 from core.assembly.linked_groups import held_by
@@ -125,21 +126,7 @@ class PartPage(QScrollArea):
             self._sections = _sections(self._session, form, node)
             layout.addWidget(form)
         layout.addStretch(1)
-        self._put(page)
-
-    def _put(self, page: QWidget) -> None:
-        """Show another page of fields, the keyboard in the field of the same name where it was in one."""
-        focused = QApplication.focusWidget()
-        old = self.takeWidget()
-        name = focused.accessibleName() if old is not None and focused is not None and old.isAncestorOf(focused) else ""
-        self.setWidget(page)
-        if name:
-            same = (field for field in page.findChildren(QWidget) if field.accessibleName() == name)
-            next(same, self).setFocus(Qt.FocusReason.OtherFocusReason)
-        if old is not None:
-            # Not at once: one of its fields may be telling about the edit that brought us here.
-            old.hide()
-            old.deleteLater()
+        swap(self, page)
 
 
 def _signature(node: AnyLine) -> tuple[object, ...]:

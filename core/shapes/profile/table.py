@@ -9,29 +9,25 @@
 
 from __future__ import annotations
 
-import re
-from fractions import Fraction
 from itertools import groupby
-from typing import TYPE_CHECKING, Final, Literal, TypeAlias
+from typing import TYPE_CHECKING, Final
 
-from core.errors import QuantityError, ShapeError
-from core.quantity import Kind, for_clipboard, parse
+from core.errors import ShapeError
+from core.quantity import Kind, for_clipboard
+from core.quantity.block import check_decimal_mark, rows_of_block, value_of_cell, without_heading
 from core.shapes.profile.outline import MOST_POINTS, Outline, OutlinePoint
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
     from core.quantity import Unit
+    from core.quantity.block import DecimalMark
     from core.shapes.profile.outline import Loop
-
-DecimalMark: TypeAlias = Literal[".", ","]
 
 COLUMNS: Final = ("x", "y", "rounding", "arc")
 LONGEST_TABLE: Final = 2_000_000
 
 _FEWEST_CELLS: Final = 2
-_PLAIN: Final = re.compile(r"[+\-−]?(?:[0-9]+[.,]?[0-9]*|[.,][0-9]+)(?:[eE][+\-−]?[0-9]{1,3})?")
-_THOUSANDS: Final = re.compile(r"[+\-−]?[1-9][0-9]{0,2}[.,][0-9]{3}")
 
 
 def outline_of_text(text: str, unit: Unit, decimal_mark: DecimalMark | None = None) -> Outline:
@@ -55,14 +51,7 @@ def outline_of_text(text: str, unit: Unit, decimal_mark: DecimalMark | None = No
             f"the text is longer than {LONGEST_TABLE} signs", where="outline", read=f"{len(text)}",
             remedy=f"Paste at most {MOST_POINTS} points",
         )
-    lines = text.splitlines()
-    if "\t" in text:
-        rows = [line.split("\t") for line in lines]
-    elif ";" in text:
-        rows = [line.split(";") for line in lines]
-    else:
-        rows = [line.split() for line in lines]
-    return outline_of_rows(rows, unit, decimal_mark)
+    return outline_of_rows(rows_of_block(text), unit, decimal_mark)
 
 
 def outline_of_rows(
@@ -79,10 +68,8 @@ def outline_of_rows(
         QuantityError: a cell is no length, or the decimal mark is ambiguous or mixed.
         ShapeError: the rows make no outline.
     """
-    cells = [[cell.strip() for cell in row] for row in rows]
-    if cells and any(cells[0]) and not re.search("[0-9]", "".join(cells[0])):
-        cells[0] = []
-    check_decimal_mark([cell for row in cells for cell in row], decimal_mark)
+    cells = without_heading(rows)
+    check_decimal_mark([cell for row in cells for cell in row], decimal_mark, "outline")
     numbered = list(enumerate(cells, start=1))
     loops = [
         _closed_once([_point(row, number, unit) for number, row in group])
@@ -101,34 +88,6 @@ def text_of_outline(outline: Outline, unit: Unit, decimal_mark: DecimalMark = ".
     return "\n\n".join(loops) + "\n"
 
 
-def check_decimal_mark(cells: Sequence[str], decimal_mark: DecimalMark | None = None) -> None:
-    """Refuse a block of cells whose numbers can be read in two ways.
-
-    Raises:
-        QuantityError: there are both marks in it; or other marks than the given one; or no mark was given, and
-            each number with a mark could be one with thousands set apart.
-    """
-    plain = [cell for cell in cells if _PLAIN.fullmatch(cell)]
-    marked = {mark: [cell for cell in plain if mark in cell] for mark in (".", ",")}
-    if marked["."] and marked[","]:
-        raise QuantityError(
-            "the block has two decimal marks", where="outline", read=f'"{marked["."][0]}" and "{marked[","][0]}"',
-            remedy='Use either "." or "," throughout, and no marks between thousands',
-        )
-    either = marked["."] or marked[","]
-    if decimal_mark is not None and marked["," if decimal_mark == "." else "."]:
-        raise QuantityError(
-            f'the decimal mark of this block is "{decimal_mark}"', where="outline", read=f'"{either[0]}"',
-            remedy="Choose the other mark, or leave out marks between thousands",
-        )
-    if decimal_mark is None and either and all(_THOUSANDS.fullmatch(cell) for cell in either):
-        mark = "." if marked["."] else ","
-        raise QuantityError(
-            f'it cannot be told whether "{mark}" is a decimal mark or sets thousands apart', where="outline",
-            read=f'"{either[0]}"', remedy="Say which decimal mark the block has",
-        )
-
-
 def _point(row: Sequence[str], number: int, unit: Unit) -> OutlinePoint:
     filled = len(row) - next(k for k, cell in enumerate(reversed(row)) if cell)
     if not _FEWEST_CELLS <= filled <= len(COLUMNS) or not row[0] or not row[1]:
@@ -143,12 +102,7 @@ def _point(row: Sequence[str], number: int, unit: Unit) -> OutlinePoint:
 
 
 def _length(cell: str, unit: Unit, where: str) -> float:
-    """Return a cell's length in m; the nearest double, also on the quick way for plain numbers."""
-    if not cell:
-        return 0.0
-    if _PLAIN.fullmatch(cell):
-        return float(Fraction(cell.replace(",", ".").replace("−", "-")) * unit.ratio)
-    return parse(cell, Kind.LENGTH, unit, where=where).value
+    return value_of_cell(cell, Kind.LENGTH, unit, where) if cell else 0.0
 
 
 def _closed_once(points: list[OutlinePoint]) -> Loop:

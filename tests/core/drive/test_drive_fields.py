@@ -193,3 +193,10 @@ def test_a_number_changed_in_another_way_has_let_go_of_its_name():
     after = dragged.with_assembly(with_entries(dragged.assembly, (NameEntry("arm", "600 mm"),)))
     assert after.drive.forces[0].point[0] == 0.4
     assert math.isclose(after.drive.train.linear[0].radius, 0.06, rel_tol=1e-15)
+
+
+def test_a_number_that_an_entry_of_another_kind_has_is_refused():
+    with pytest.raises(EditRefused, match="no such entry"):
+        with_number(settings(), "duty.steps.1.angle", 1.0)
+    with pytest.raises(EditRefused, match="no such entry"):
+        with_number(settings(), "train.stages.0.lead", None)

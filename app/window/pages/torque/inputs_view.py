@@ -1,28 +1,42 @@
-"""The view "Train and duty" of the Torque page: everything that is entered about the drive."""
+"""The view "Train and duty" of the Torque page: everything that is entered about the drive, in some parts."""
 
 from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtWidgets import QVBoxLayout, QWidget
+from PySide6.QtWidgets import QStackedWidget, QVBoxLayout, QWidget
 
-from app.window.style import GRID, Words
+from app.window.pages.torque.inputs_duty import DutyPanel
+from app.window.pages.torque.inputs_limits import LimitsPanel
+from app.window.pages.torque.inputs_loads import LoadsPanel
+from app.window.pages.torque.inputs_stops import StopsPanel
+from app.window.pages.torque.inputs_train import TrainPanel
+from app.window.pages.torque.switch import Switch
+from app.window.style import GRID
 
 if TYPE_CHECKING:
     from app.window.session import Session
 
-NOTHING = "No duty yet."
-
 
 class InputsView(QWidget):
-    """The inputs of the drive."""
+    """One part of the inputs at a time; `parts` chooses which."""
 
     def __init__(self, session: Session) -> None:
         super().__init__()
-        self.session = session
+        self.train = TrainPanel(session)
+        self.duty = DutyPanel(session)
+        self.loads = LoadsPanel(session)
+        self.limits = LimitsPanel(session)
+        self.stops = StopsPanel(session)
+        panels = {
+            "Train": self.train, "Duty": self.duty, "Loads": self.loads, "Motor limits": self.limits,
+            "Stops": self.stops,
+        }
+        self.parts = Switch("Inputs", tuple(panels))
+        self._stack = QStackedWidget()
+        for panel in panels.values():
+            self._stack.addWidget(panel)
         layout = QVBoxLayout(self)
-        layout.setContentsMargins(2 * GRID, GRID, 2 * GRID, GRID)
-        words = Words(NOTHING, "quiet")
-        words.setWordWrap(True)
-        layout.addWidget(words)
-        layout.addStretch(1)
+        layout.setContentsMargins(2 * GRID, GRID, GRID, GRID)
+        layout.addWidget(self._stack)
+        self.parts.chosen.connect(self._stack.setCurrentIndex)

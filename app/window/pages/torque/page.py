@@ -36,13 +36,18 @@ class TorquePage(QWidget):
         head.setContentsMargins(2 * GRID, GRID, 2 * GRID, 0)
         head.addWidget(self.switch)
         head.addStretch(1)
+        head.addWidget(self.inputs.parts)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(0)
         layout.addLayout(head)
         layout.addWidget(self._views, 1)
-        self.switch.chosen.connect(self._views.setCurrentIndex)
+        self.switch.chosen.connect(self._show)
 
     def show_view(self, at: int) -> None:
         """Show the inputs or the result."""
         self.switch.choose(at)
+
+    def _show(self, at: int) -> None:
+        self._views.setCurrentIndex(at)
+        self.inputs.parts.setVisible(at == INPUTS)
