@@ -20,11 +20,13 @@ from core.quantity import compact
 from core.quantity.tokens import quoted
 
 if TYPE_CHECKING:
+    from collections.abc import Iterable
+
     from core.measure import Measure
 
 __all__ = [
     "MATERIALS", "ByDensity", "ByMaterial", "Material", "NotSet", "PerArea", "PerLength", "Weighed",
-    "check_density", "check_measure", "implied_density", "material", "search",
+    "check_density", "check_measure", "implied_density", "material", "plain_name", "search", "with_own",
 ]
 
 _NAMED_IN_AN_ERROR: Final = 4
@@ -241,11 +243,12 @@ def implied_density(mass: float, volume: float) -> float | None:
     return mass / volume if volume > 0.0 else None
 
 
-def material(name: str) -> Material:
-    """Return the material that name means.
+def material(name: str, own: Iterable[Material] = ()) -> Material:
+    """Return the material that name means, of the table and of a list of one's own.
 
-    Case, blanks and punctuation do not matter. A full name or other name comes first, then the only material
-    whose name begins with it, then the only one that holds it anywhere.
+    Case, blanks and punctuation do not matter. A material of one's own stands in the place of one of the
+    same name. A full name or other name comes first, then the only material whose name begins with it, then the only
+    one that holds it anywhere.
 
     Raises:
         MaterialError: nothing fits, or several do; the nearest are named.
@@ -253,18 +256,25 @@ def material(name: str) -> Material:
     >>> material("en aw 6082").name
     'aluminium EN AW-6082'
     """
-    wanted = _plain(name)
+    wanted, known_ones = plain_name(name), with_own(own)
     # A few digits shorten nothing: "1.43" is more likely a slip in another field than the steel 1.4301.
     rules = (str.__eq__, str.startswith, str.__contains__) if re.search("[a-z]", wanted) else (str.__eq__,)
     for fits in rules:
-        found = [known for known in MATERIALS if any(fits(word, wanted) for word in _names(known))]
+        found = [known for known in known_ones if any(fits(word, wanted) for word in _names(known))]
         if len(found) == 1:
             return found[0]
         if found:
             raise _refused("several materials fit this name", name, [known.name for known in found])
-    spelled = {word: known.name for known in MATERIALS for word in _names(known)}
+    spelled = {word: known.name for known in known_ones for word in _names(known)}
     near = difflib.get_close_matches(wanted, spelled, n=_NAMED_IN_AN_ERROR, cutoff=0.6)
     raise _refused("no material has this name", name, list(dict.fromkeys(spelled[word] for word in near)))
+
+
+def with_own(own: Iterable[Material]) -> tuple[Material, ...]:
+    """Return materials of one's own, and behind them those of the table that have other names."""
+    first = tuple(own)
+    names = {plain_name(known.name) for known in first}
+    return (*first, *(known for known in MATERIALS if plain_name(known.name) not in names))
 
 
 def search(text: str) -> tuple[Material, ...]:
@@ -273,11 +283,11 @@ def search(text: str) -> tuple[Material, ...]:
     >>> [found.name for found in search("titan 6al")]
     ['titanium Ti-6Al-4V']
     """
-    words = [_plain(word) for word in text.split()]
+    words = [plain_name(word) for word in text.split()]
     return tuple(
         known
         for known in MATERIALS
-        if all(any(word in name for name in (*_names(known), _plain(known.group))) for word in words)
+        if all(any(word in name for name in (*_names(known), plain_name(known.group))) for word in words)
     )
 
 
@@ -324,12 +334,17 @@ def _density_text(density: float) -> str:
     return f"{compact(density, 6)} kg/m³"
 
 
-def _plain(text: str) -> str:
+def plain_name(text: str) -> str:
+    """Return a name without case, blanks and punctuation, as names are compared.
+
+    >>> plain_name("EN AW-6082")
+    'enaw6082'
+    """
     return re.sub(r"[\W_]+", "", text.casefold())
 
 
 def _names(known: Material) -> tuple[str, ...]:
-    return tuple(_plain(word) for word in (known.name, *known.also))
+    return tuple(plain_name(word) for word in (known.name, *known.also))
 
 
 def _refused(what: str, name: str, near: list[str]) -> MaterialError:

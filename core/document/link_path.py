@@ -4,13 +4,17 @@ from __future__ import annotations
 
 import os
 from pathlib import Path, PurePath
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Final
 
 from core.assembly.linked_groups import linked_groups
 from core.errors import DocumentError
 
 if TYPE_CHECKING:
     from core.assembly import Assembly
+
+
+# How the name of a document's file ends.
+DOCUMENT_SUFFIX: Final = ".masswright"
 
 
 def path_from(folder: str, path: str) -> str:

@@ -6,12 +6,12 @@ import hashlib
 import os
 from contextlib import suppress
 from pathlib import Path
-from typing import TYPE_CHECKING, Final
+from typing import TYPE_CHECKING
 
 from core.assembly.link import Link
 from core.assembly.linked_groups import LinkedDocument, linked_groups
 from core.document.archive import MOST_BYTES
-from core.document.link_path import path_of, real_path
+from core.document.link_path import DOCUMENT_SUFFIX, path_of, real_path
 from core.document.reading import entries_of_document, opened, read_document_file
 from core.errors import DocumentError
 
@@ -21,7 +21,6 @@ if TYPE_CHECKING:
     from core.assembly import Assembly
     from core.document.schema import NodeEntry
 
-SUFFIX: Final = ".masswright"
 # More files than this are not followed in search of a loop.
 _MOST_FOLLOWED = 200
 _THEN = " → "
@@ -42,7 +41,7 @@ def read_linked(path: str | Path, holder: Path | None = None) -> LinkedDocument:
     file_path = Path(os.path.abspath(path))  # noqa: PTH100  # links of the file system stay as they are
     if not _may_be_read(str(file_path)):
         raise DocumentError(
-            "there is no such document", where=str(path), remedy=f"Choose a {SUFFIX} file, or put it back"
+            "there is no such document", where=str(path), remedy=f"Choose a {DOCUMENT_SUFFIX} file, or put it back"
         )
     _refuse_loop(str(file_path), None if holder is None else str(holder))
     with opened(file_path) as file:
@@ -90,7 +89,8 @@ def hash_of(path: str) -> str | None:
 def _may_be_read(path: str) -> bool:
     """Tell whether a path leads to what may be a document; a document may name any path, a device or a pipe too."""
     try:
-        return path.lower().endswith(SUFFIX) and Path(path).is_file() and Path(path).stat().st_size <= MOST_BYTES
+        ours = path.lower().endswith(DOCUMENT_SUFFIX) and Path(path).is_file()
+        return ours and Path(path).stat().st_size <= MOST_BYTES
     except OSError:
         return False
 
