@@ -70,13 +70,10 @@ def refusal_of(kind, text: str) -> str:
 # --- the text --------------------------------------------------------------------------------------------------------
 
 
-def lines_of(text: str) -> bool:
-    """Tell whether a text may be a name: one line, not blank, as it would be typed."""
-    return bool(text.strip()) and text == text.strip() and text.isprintable()
-
-
-NAMES = TEXTS.filter(lines_of)
-MATERIAL_NAMES = NAMES.filter(lambda name: not name[0].isdigit() and name[0] not in ".,-+(")
+# What is typed as a name: signs that can be seen, blanks between them.
+SIGNS = st.text(st.characters(exclude_categories=["C", "Z"]), min_size=1, max_size=8)
+NAMES = st.lists(SIGNS, min_size=1, max_size=3).map(" ".join)
+MATERIAL_NAMES = NAMES.map(lambda name: f"m{name}")
 densities = st.floats(20.0, 2.3e4)
 materials = st.builds(
     lambda name, values, source, also: Material(name, sorted(values)[1], min(values), max(values), source, "own list", tuple(also)),

@@ -122,7 +122,7 @@ def _read(kind: ListKind[Entry], path: Path) -> tuple[str, tuple[Entry, ...]]:
     """Return the text of a list file and its entries; both empty where there is no file."""
     try:
         text = _text_in(path)
-        return text, entries_of(kind, text)
+        return text, entries_of(kind, text) if text else ()
     except FileRefused as error:
         where = f"{path.name}, {error.where}" if error.where else path.name
         raise FileRefused(error.what, where=where, read=error.read, remedy=error.remedy) from error
