@@ -39,7 +39,7 @@ class AxesDialog(BesideDialog):
         for column in range(self.table.columnCount()):
             mode = modes.Stretch if column == RUNS else modes.ResizeToContents
             self.table.horizontalHeader().setSectionResizeMode(column, mode)
-        self.lay_out(HELP, ((QWidget(), 1), (self.add, 0)), self.table, (840, 320), (self.edit, self.drive))
+        self.lay_out(HELP, ((QWidget(), 1), (self.add, 0)), self.table, (960, 320), (self.edit, self.drive))
         self.edit.clicked.connect(self.edit_current)
         self.drive.clicked.connect(self.drive_current)
         self.table.itemChanged.connect(self._renamed)
