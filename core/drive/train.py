@@ -328,6 +328,14 @@ class Train:
         at = self.index(shaft)
         return LOAD if at == len(self.stages) else self.shafts[at]
 
+    def words_of(self, shaft: str) -> str:
+        """Return what a shaft is called where it is shown.
+
+        Raises:
+            ValueRefused: the train has no such shaft.
+        """
+        return self.shaft_words[self.first_name(shaft)]
+
     @cached_property
     def speeds(self) -> FloatArray:
         """Turns s (k,) of each shaft for one turn of the load shaft, negative for the other way round."""

@@ -54,7 +54,7 @@ def turning_words(assembly: Assembly, settings: DriveSettings, entry: TurnsWith 
     """
     if entry is None or entry.shaft == FIXED:
         return STANDS_STILL
-    shaft = settings.train.shaft_words[settings.train.first_name(entry.shaft)]
+    shaft = settings.train.words_of(entry.shaft)
     axis = axis_of(assembly, entry).name
     return shaft if axis == assembly.drive else f"{shaft}, about {axis}"
 

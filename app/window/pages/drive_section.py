@@ -107,3 +107,8 @@ class DriveSection:
         refusal = self.attempt(f"{self.titled(label)}: none", lambda settings: with_number(settings, path, None))
         if refusal:
             field.turn_down(refusal)
+
+
+def shafts_of(session: Session) -> list[tuple[str, object]]:
+    """Return the shafts of the train as choices, from the motor to the load."""
+    return [(words, name) for name, words in session.drive.train.shaft_words.items()]

@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from app.window.fields import ChoiceField, Form
+from app.window.pages.drive_section import shafts_of
 from app.window.pages.section import Section
 from core.assembly import Cut
 from core.drive import FIXED, TurnsWith
@@ -40,8 +41,8 @@ class TurningSection(Section):
             return
         assembly, drive = self.session.assembly, self.session.drive
         entry = turning_of_line(drive, node.key)
-        shafts = [(words, shaft) for shaft, words in drive.train.shaft_words.items()]
-        _offer(self.shaft, [(self._held_words(node.key), AS_HELD), *shafts, (STANDS_STILL, FIXED)])
+        held = (self._held_words(node.key), AS_HELD)
+        _offer(self.shaft, [held, *shafts_of(self.session), (STANDS_STILL, FIXED)])
         others = [axis.name for axis in assembly.axes if axis.name != assembly.drive]
         _offer(self.axis, [(f"the drive axis, {assembly.drive}", ""), *((name, name) for name in others)])
         fixed = entry is not None and entry.shaft == FIXED
@@ -72,7 +73,7 @@ class TurningSection(Section):
             self.show(assembly.node(key))
 
 
-def _offer(field: ChoiceField, choices: list[tuple[str, str]]) -> None:
+def _offer(field: ChoiceField, choices: list[tuple[str, object]]) -> None:
     """Let a field offer other choices, unless they are those that it offers."""
     if [(field.itemText(at), field.itemData(at)) for at in range(field.count())] != choices:
         field.clear()

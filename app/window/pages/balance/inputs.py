@@ -7,9 +7,9 @@ from typing import TYPE_CHECKING
 from PySide6.QtWidgets import QHBoxLayout, QPushButton, QToolButton, QWidget
 
 from app.window.fields import NARROW_WIDTH, ChoiceField, Form, QuantityField
-from app.window.pages.drive_section import DriveSection
+from app.window.pages.drive_section import DriveSection, shafts_of
 from app.window.style import GRID, Words
-from core.drive import GRADES, LOAD, MOTOR
+from core.drive import GRADES
 from core.drive.entering import (
     usual_bearings,
     usual_plane,
@@ -217,13 +217,6 @@ class PlanesSection(BalanceSection):
         chosen: By = "removing" if by == "removing" else "adding"
         words = f"Correct by {chosen}"
         self.attempt_in_place(self._refused, words, lambda settings: with_correcting(settings, chosen))
-
-
-def shafts_of(session: Session) -> list[tuple[str, object]]:
-    """Return the shafts of the train as choices, from the motor to the load."""
-    stages = session.drive.train.stages
-    middle: list[tuple[str, object]] = [(f"behind {stage.name}", stage.name) for stage in stages[:-1]]
-    return [("motor", MOTOR), *middle, ("load", LOAD)] if stages else [("motor and load", LOAD)]
 
 
 def in_a_row(*widgets: QWidget) -> QWidget:

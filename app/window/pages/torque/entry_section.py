@@ -6,8 +6,7 @@ from dataclasses import replace
 from typing import TYPE_CHECKING, Any
 
 from app.window.fields import ChoiceField, Form, TextField
-from app.window.pages.drive_section import DriveSection
-from core.drive import LOAD, MOTOR
+from app.window.pages.drive_section import DriveSection, shafts_of
 from core.drive.items import items_at, with_item_at
 
 if TYPE_CHECKING:
@@ -106,7 +105,7 @@ class EntrySection(DriveSection):
     def shaft_choice(self, tip: str = "The shaft that it is on.") -> ChoiceField:
         """Add the choice of the shaft that the entry is on."""
         return self.choose(
-            "shaft", shafts_of(self.session), lambda: shaft_shown(self.session, self.item.shaft),
+            "shaft", shafts_of(self.session), lambda: self.session.drive.train.first_name(self.item.shaft),
             lambda item, shaft: replace(item, shaft=shaft), tip,
         )
 
@@ -115,23 +114,3 @@ class EntrySection(DriveSection):
             field.set_value(self.item.name)
         elif name != self.item.name:
             self.change(f"Rename {self.item.name} to {name}", lambda item: replace(item, name=name))
-
-
-def shafts_of(session: Session) -> Choices:
-    """Return the shafts of the train as choices, from the motor to the load."""
-    stages = session.drive.train.stages
-    middle: Choices = [(f"behind {stage.name}", stage.name) for stage in stages[:-1]]
-    return [("motor", MOTOR), *middle, ("load", LOAD)] if stages else [("motor and load", LOAD)]
-
-
-def shaft_shown(session: Session, shaft: str) -> str:
-    """Return the name under which a shaft is offered: the last one is the load's, whatever stage it lies behind."""
-    train = session.drive.train
-    at = train.index(shaft)
-    return LOAD if at == len(train.stages) else train.shafts[at]
-
-
-def shaft_words(session: Session, shaft: str) -> str:
-    """Return what a shaft is called where it is shown."""
-    wanted = shaft_shown(session, shaft)
-    return next(words for words, value in shafts_of(session) if value == wanted)

@@ -5,9 +5,9 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING
 
+from app.window.pages.drive_section import shafts_of
 from app.window.pages.torque.entries import Entry
 from app.window.pages.torque.entries_panel import Addition, EntriesPanel
-from app.window.pages.torque.entry_section import shaft_words, shafts_of
 from app.window.pages.torque.inputs_acting import ACTING, GravitySection
 from core.drive import AppliedForce, AppliedTorque, DriveSettings, Friction
 from core.drive.gravity import direction_of_gravity, size_of_gravity
@@ -52,7 +52,7 @@ class LoadsPanel(EntriesPanel):
         ]
         for holder, items in lists:
             for at, item in enumerate(items):
-                shaft = "load" if isinstance(item, AppliedForce) else shaft_words(self.session, item.shaft)
+                shaft = "load" if isinstance(item, AppliedForce) else self.session.drive.train.words_of(item.shaft)
                 rows.append(Entry(f"{holder}.{at}", holder, item.name, item, (item.name, self._is(item), shaft)))
         return rows
 

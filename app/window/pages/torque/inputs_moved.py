@@ -5,10 +5,12 @@ from __future__ import annotations
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
-from app.window.pages.torque.entry_section import Choices, EntrySection, shaft_shown, shafts_of
+from app.window.pages.drive_section import shafts_of
+from app.window.pages.torque.entry_section import Choices, EntrySection
 from app.window.pages.torque.inputs_stages import BRAKING, BRAKING_EFFICIENCY
 from core.assembly import walk
 from core.drive import FIXED, LeadScrew, RackOrDrum, ShaftInertia, TurnsWith
+from core.drive.turning import STANDS_STILL
 
 if TYPE_CHECKING:
     from app.window.fields import Form
@@ -58,8 +60,8 @@ class TurnsWithSection(EntrySection):
         axes: Choices = [("the drive axis", ""), *((axis.name, axis.name) for axis in assembly.axes)]
         self.choice("line", "key", lines, "A part, or a group with all it holds; the innermost entry counts.")
         self.choose(
-            "turns with", [*shafts_of(session), ("stands still", FIXED)],
-            lambda: FIXED if self.item.shaft == FIXED else shaft_shown(session, self.item.shaft),
+            "turns with", [*shafts_of(session), (STANDS_STILL, FIXED)],
+            lambda: FIXED if self.item.shaft == FIXED else session.drive.train.first_name(self.item.shaft),
             lambda item, shaft: replace(item, shaft=shaft), "The shaft that it turns with.",
         )
         self.choice("about", "axis", axes, "The axis that it turns about.")

@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from app.window.pages.drive_section import shafts_of
 from app.window.pages.torque.entries import Entry
 from app.window.pages.torque.entries_panel import Addition, EntriesPanel
-from app.window.pages.torque.entry_section import EntrySection, shaft_words, shafts_of
+from app.window.pages.torque.entry_section import EntrySection
 from core.drive.first_stop import first_stop
 from core.quantity import Kind, compact
 
@@ -69,7 +70,7 @@ class StopsPanel(EntriesPanel):
 
     def _cells(self, at: int, case: StopCase) -> tuple[str, ...]:
         by = BRAKES if case.torque is None else self._said(case.torque, Kind.TORQUE)
-        return f"stop {at + 1}", self._said(case.speed, Kind.SPEED), by, shaft_words(self.session, case.shaft)
+        return f"stop {at + 1}", self._said(case.speed, Kind.SPEED), by, self.session.drive.train.words_of(case.shaft)
 
     def _said(self, value: float, kind: Kind) -> str:
         unit = self.session.units[kind]

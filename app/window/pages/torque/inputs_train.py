@@ -5,9 +5,9 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING
 
+from app.window.pages.drive_section import shafts_of
 from app.window.pages.torque.entries import Entry
 from app.window.pages.torque.entries_panel import Addition, EntriesPanel
-from app.window.pages.torque.entry_section import shaft_words, shafts_of
 from app.window.pages.torque.inputs_moved import HUNG, WHOLE
 from app.window.pages.torque.inputs_stages import STAGES, MotorSection
 from core.drive import (
@@ -23,6 +23,7 @@ from core.drive import (
     TurnsWith,
 )
 from core.drive.items import free_name
+from core.drive.turning import STANDS_STILL
 from core.quantity import Kind, compact
 
 if TYPE_CHECKING:
@@ -79,10 +80,10 @@ class TrainPanel(EntriesPanel):
                 Entry(f"{STAGE_LIST}.{at}", STAGE_LIST, stage.name, stage, (stage.name, self._stage(stage), lies))
             )
         for at, moved in enumerate(train.linear):
-            cells = (moved.name, self._moved(moved), shaft_words(self.session, moved.shaft))
+            cells = (moved.name, self._moved(moved), train.words_of(moved.shaft))
             rows.append(Entry(f"{MOVED_LIST}.{at}", MOVED_LIST, moved.name, moved, cells))
         for at, inertia in enumerate(train.inertias):
-            cells = (inertia.name, self._said(inertia.inertia, Kind.INERTIA), shaft_words(self.session, inertia.shaft))
+            cells = (inertia.name, self._said(inertia.inertia, Kind.INERTIA), train.words_of(inertia.shaft))
             rows.append(Entry(f"{INERTIA_LIST}.{at}", INERTIA_LIST, inertia.name, inertia, cells))
         return [*rows, *(self._turns(at, entry) for at, entry in enumerate(drive.turning))]
 
@@ -142,8 +143,8 @@ class TrainPanel(EntriesPanel):
         about = entry.axis or self.session.assembly.drive
         fixed = entry.shaft == FIXED
         cells = (
-            name, "stands still" if fixed else f"turns about {about}",
-            "–" if fixed else shaft_words(self.session, entry.shaft),
+            name, STANDS_STILL if fixed else f"turns about {about}",
+            "–" if fixed else self.session.drive.train.words_of(entry.shaft),
         )
         return Entry(f"{TURNING_LIST}.{at}", TURNING_LIST, name, entry, cells)
 
