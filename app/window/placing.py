@@ -6,13 +6,15 @@ from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
-from PySide6.QtCore import QObject
+from PySide6.QtCore import QObject, QTimer
 
 from app.window.placing_bar import PlacingBar
 from app.window.view.dragging import Amount
 from app.window.view.hand import Steps
 from app.window.view.handles import Handles, nearest_to_view
-from core.assembly.placing import mass_centre_of, moved, outermost, standing_of, standing_rows
+from app.window.view.surface import surface_of
+from core.assembly.placing import frame_of, mass_centre_of, moved, outermost, standing_of, standing_rows
+from core.assembly.seats import seated, seated_in
 from core.errors import MasswrightError
 from core.quantity import MINUS, UNITS, Kind, compact
 
@@ -22,12 +24,15 @@ if TYPE_CHECKING:
     from app.window.view import ViewPane
     from app.window.view.handles import Grip
     from app.window.view.nudging import Nudge
+    from core.arrays import FloatArray
     from core.assembly import Assembly
     from core.history import History
     from core.placement import Placement
 
 LETTERS = "xyz"
 _DIGITS = 6
+# So many copies of a cut are outlined while it is dragged.
+MOST_OUTLINED = 100
 
 
 @dataclass(frozen=True)
@@ -58,7 +63,11 @@ class Placing(QObject):
         # What the handles that are shown stand at.
         self._for: tuple[Assembly, frozenset[str], Manner] | None = None
         view.hand.tell = self._tell
-        view.hand.carried.connect(self._carry)
+        # The pointer may move more often than lines can be shown: the last amount counts.
+        self._due: Amount | None = None
+        self._soon = QTimer(self, singleShot=True, interval=0)
+        self._soon.timeout.connect(self._carry)
+        view.hand.carried.connect(self._carry_soon)
         view.hand.placed.connect(self._place)
         view.hand.dropped.connect(self._put_back)
         view.nudged.connect(self._nudge)
@@ -89,32 +98,44 @@ class Placing(QObject):
         middle = frame.shift if centre is None else centre
         return Handles(frame, middle, frame.turn.T if own else np.eye(3), own)
 
-    def _carry(self, amount: Amount) -> None:
-        """Show the lines as the drag would have them."""
-        handles = self._handles()
-        if handles is None:
+    def _carry_soon(self, amount: Amount) -> None:
+        self._due = amount
+        self._soon.start()
+
+    def _carry(self) -> None:
+        """Show the lines, and those that are seated on them, as the drag would have them."""
+        handles, before, amount = self._handles(), self._session.assembly, self._due
+        if handles is None or amount is None:
             return
         try:
-            after = moved(self._session.assembly, self.keys, amount.motion(handles))
-        except MasswrightError:
-            # Said when the handle is let go; until then nothing follows the pointer.
+            after = seated(moved(before, self.keys, amount.motion(handles)), before)
+        except MasswrightError as error:
+            self._view.hand.drop()
+            self._session.refused.emit(str(error))
             return
+        keys = [*self.keys, *(node.key for node in seated_in(after.members) if node.pose != before.node(node.key).pose)]
         standing: dict[str, Placement] = {}
-        for key in self.keys:
+        for key in keys:
             if not after.is_cut(key):
                 standing |= standing_rows(after, key)
         self._view.show_carried(standing)
+        cuts = [cut_edges(after, key) for key in keys if after.is_cut(key)]
+        if cuts:
+            self._view.light_up(np.concatenate(cuts))
 
     def _place(self, amount: Amount) -> None:
         """Make one edit of a drag."""
         keys, handles = self.keys, self._handles()
-        self._view.show_carried({})
+        self._put_back()
         if handles is not None:
             name = self._edit_name(keys, handles, amount)
             self._session.edit(name, lambda before: moved(before, keys, amount.motion(handles)))
 
     def _put_back(self) -> None:
+        self._soon.stop()
         self._view.show_carried({})
+        if any(self._session.assembly.is_cut(key) for key in self.keys):
+            self._view.light_up(np.zeros((0, 2, 3)))
 
     def _nudge(self, nudge: Nudge) -> None:
         """Move or turn by a step; nudges one after the other are one edit."""
@@ -173,3 +194,13 @@ class Placing(QObject):
         axes = tuple(axis for axis in range(3) if amount.values[axis]) or (0,)
         along = "along " if handles.own and not amount.turning else ""
         return f"{'Turn' if amount.turning else 'Move'} {what} {along}{self._words(amount, axes)}"
+
+
+def cut_edges(assembly: Assembly, key: str) -> FloatArray:
+    """Return the sharp edges (k, 2, 3) m of all copies of a cut, in the document frame; of its part the first copy."""
+    cut = assembly.cut(key)
+    surface = surface_of(cut.shape.facets())
+    edges = surface.sharp.astype(np.float64) + surface.middle
+    standing = frame_of(assembly, key) @ cut.standing
+    turn, shift = standing.turn[:MOST_OUTLINED], standing.shift[:MOST_OUTLINED]
+    return np.asarray(np.einsum("nij,eaj->neai", turn, edges) + shift[:, None, None]).reshape(-1, 2, 3)

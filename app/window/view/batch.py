@@ -6,10 +6,12 @@ call; a large surface is a batch of its own that is drawn once for each of its p
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
+
+from app.window.view.carried import CarriedScene
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -104,7 +106,32 @@ class Emphasis:
 
 
 def packed(scene: Scene, surface_for: Callable[[Bodies], Surface]) -> Packed:
-    """Return the scene packed; surface_for chooses the surface that is drawn for a body."""
+    """Return the scene packed; surface_for chooses the surface that is drawn for a body.
+
+    Of a scene in which parts are dragged, what stays is packed once.
+    """
+    if not isinstance(scene, CarriedScene):
+        return _packed(scene, surface_for)
+    packs = scene.still.packs
+    if surface_for not in packs:
+        packs[surface_for] = _packed(scene.still, surface_for)
+    return _joined(packs[surface_for], _packed(scene.moved, surface_for), len(scene.still.everybody))
+
+
+def _joined(still: Packed, moved: Packed, count: int) -> Packed:
+    """Return two pieces of a scene as one; the bodies of the second come after so many of the first."""
+    one, other = still.lines, moved.lines
+    lines = Lines(
+        np.concatenate([one.sharp, other.sharp]),
+        np.concatenate([one.sharp_owner, other.sharp_owner + count]),
+        np.concatenate([one.rims, other.rims]),
+        np.concatenate([one.rim_normals, other.rim_normals]),
+        np.concatenate([one.rim_owner, other.rim_owner + count]),
+    )
+    return Packed((*still.batches, *(replace(batch, owner=batch.owner + count) for batch in moved.batches)), lines)
+
+
+def _packed(scene: Scene, surface_for: Callable[[Bodies], Surface]) -> Packed:
     small: list[tuple[int, Bodies, Surface]] = []
     batches: list[Batch] = []
     for index, bodies in enumerate(scene.everybody):

@@ -23,6 +23,7 @@ if TYPE_CHECKING:
     from app.window.view.palette import Colour
     from app.window.view.scene import Bodies, Scene
     from app.window.view.surface import Float32Array, Surface
+    from core.arrays import IntArray
 
 _SHADER = "masswright soft"
 _SAMPLES = 4
@@ -99,6 +100,9 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
         self._here = QMatrix4x4()
         self._solid = True
         self._dirty = DirtyFlag(0)
+        # What the colours that are shown were made from.
+        self._owner: IntArray | None = None
+        self._of_bodies = np.zeros((0, 4), dtype=np.uint8)
         super().__init__(glOptions="opaque", shader=_SHADER)
         self.take(batch)
         self.vertexes, self.normals, self.faces = batch.vertices, batch.normals, batch.faces
@@ -112,6 +116,10 @@ class _BatchItem(GLMeshItem):  # type: ignore[misc] # pyqtgraph has no types
 
     def colour(self, of_bodies: np.ndarray[Any, np.dtype[np.uint8]]) -> None:
         """Give each vertex the colour of its body; see-through when the body is."""
+        mine = of_bodies[: int(self.batch.owner.max(initial=-1)) + 1]
+        if self.batch.owner is self._owner and np.array_equal(mine, self._of_bodies):
+            return
+        self._owner, self._of_bodies = self.batch.owner, mine
         self.colors = np.ascontiguousarray(of_bodies[self.batch.owner])
         self._dirty |= DirtyFlag.COLOR
         self._solid = bool((self.colors[:, 3] == OPAQUE).all())

@@ -10,13 +10,14 @@ from PySide6.QtCore import QEvent, QPointF, QSize, Qt, QTimer, Signal
 from PySide6.QtWidgets import QWidget
 
 from app.window.view.camera import Camera, LookName, Size
+from app.window.view.carried import carried
 from app.window.view.hand import Hand
 from app.window.view.nudging import nudge_of
 from app.window.view.opengl import prepare_opengl, probed
 from app.window.view.overlay import Overlay
 from app.window.view.picking import pick
 from app.window.view.picture import Picture, size_of, theme_of
-from app.window.view.scene import Line, Scene, SurfaceStore, carried, scene_of
+from app.window.view.scene import Line, Scene, SurfaceStore, scene_of
 
 if TYPE_CHECKING:
     from collections.abc import Mapping

@@ -6,7 +6,7 @@ that the pointer moving over the view rebuilds nothing.
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field, fields, replace
+from dataclasses import dataclass, field
 from functools import cached_property
 from typing import TYPE_CHECKING
 from weakref import WeakKeyDictionary
@@ -19,12 +19,9 @@ from core.arrays import FloatArray, frozen
 from core.moments import radius_of_gyration
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping
-
     from core.assembly import Assembly, DriveAxis, Part
     from core.facets import Facets
     from core.moments import Moments
-    from core.placement import Placement
 
 # How far the drive axis reaches beyond what turns about it, relative to the size of the scene.
 _OVERHANG = 0.12
@@ -166,34 +163,6 @@ class Scene:
     def radius(self) -> float:
         """The radius in m of a ball about the middle that holds everything."""
         return float(np.linalg.norm(self.fit_points - self.centre, axis=1).max())
-
-
-@dataclass(frozen=True, eq=False)
-class CarriedScene(Scene):
-    """A scene in which some parts are being dragged; all else, the marks included, stays as it is at rest."""
-
-    at_rest: Scene = field(default_factory=Scene)
-
-    @cached_property
-    def fit_points(self) -> FloatArray:
-        """Points (n, 3) m that are in the picture when the whole scene at rest is."""
-        return self.at_rest.fit_points
-
-    @cached_property
-    def radius(self) -> float:
-        """The radius in m of a ball about the middle that holds everything, what is dragged away included."""
-        corners = _bounds(self.everybody)[list(np.ndindex(2, 2, 2)), range(3)]
-        return max(self.at_rest.radius, float(np.linalg.norm(corners - self.centre, axis=1).max()))
-
-
-def carried(scene: Scene, standing: Mapping[str, Placement]) -> CarriedScene:
-    """Return a scene with the copies of some parts, by their keys, standing elsewhere: tf_document_part of each."""
-    bodies = tuple(
-        replace(one, turn=standing[one.key].turn, shift=standing[one.key].shift) if one.key in standing else one
-        for one in scene.bodies
-    )
-    same = {each.name: getattr(scene, each.name) for each in fields(Scene)}
-    return CarriedScene(**{**same, "bodies": bodies}, at_rest=scene)
 
 
 @dataclass

@@ -23,7 +23,8 @@ from app.window.view.opengl import VIEW_VARIABLE, prepare_opengl
 from app.window.view.soft_view import SoftView
 from core.assembly import Assembly, Cut, Group
 from core.assembly.placing import standing_of, standing_rows
-from core.errors import EditRefused
+from core.assembly.seat import Anchor, Seat
+from core.assembly.seats import with_seat
 from core.machine import Machine
 from core.placement import Pose, Ring
 from core.pointing import met_on_plane, nearest_on_axis
@@ -122,6 +123,7 @@ def drag(window, grip, to, modifiers=NO, *, steps=5):
     start = press(window, grip, modifiers)
     for share in np.linspace(0, 1, steps + 1)[1:]:
         send(window.view, QEvent.Type.MouseMove, start + share * (to - start), modifiers)
+    QApplication.processEvents()
 
 
 def let_go(window, spot):
@@ -299,7 +301,7 @@ def test_a_cut_is_dragged_too(placed):
 
 
 @pytest.mark.gui
-def test_a_refused_drag_puts_it_back_and_says_why(placed, monkeypatch):
+def test_a_refused_drag_puts_it_back_and_says_why(placed):
     window = placed
     select(window, "bore")
     told = []
@@ -313,17 +315,56 @@ def test_a_refused_drag_puts_it_back_and_says_why(placed, monkeypatch):
     assert window.session.machine is before
     assert len(told) == 1
     assert "bore" in told[0]
-    monkeypatch.setattr("app.window.placing.moved", refuse)
-    select(window, "plate")
+
+
+def seat_bar(window):
+    """Set the bar with its lower face on the plate's upper one."""
+    seat = Seat(Anchor("bar", "face −z"), Anchor("plate", "face +z"))
+    assert window.session.edit("Seat bar", lambda before: with_seat(before, "bar", seat))
+
+
+@pytest.mark.gui
+def test_dragging_a_seated_line_is_refused_in_words_as_soon_as_it_begins(placed, qtbot):
+    window, told = placed, []
+    seat_bar(window)
+    window.session.refused.connect(told.append)
+    before = window.session.machine
+    select(window, "bar")
     to = carried_spot(window, X, (0.1, 0.0, 0.0))
     drag(window, X, to)
-    assert next(bodies for bodies in window.view.scene.bodies if bodies.key == "plate").shift[0].tolist() == [0, 0, 0]
+    assert not window.view.hand.holds
     let_go(window, to)
-    assert told[-1].startswith("plate: it is seated")
+    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL)
+    assert window.session.machine is before
+    assert told[0].startswith("bar: a seated line stands where its seat says")
+    assert set(told) == {told[0]}
 
 
-def refuse(*_args):
-    raise EditRefused("it is seated", where="plate")
+@pytest.mark.gui
+def test_what_is_seated_on_the_dragged_line_follows_at_once(placed):
+    window = placed
+    seat_bar(window)
+    select(window, "plate")
+    to = carried_spot(window, Z, (0.0, 0.0, 0.05))
+    drag(window, Z, to)
+    shown = {bodies.key: bodies.shift[0] for bodies in window.view.scene.bodies}
+    was = position(window, "bar")
+    assert shown["bar"][2] - was[2] == pytest.approx(0.05, abs=0.0006)
+    let_go(window, to)
+    np.testing.assert_allclose(position(window, "bar"), shown["bar"], rtol=0, atol=1e-12)
+
+
+@pytest.mark.gui
+def test_a_cut_is_outlined_while_it_is_dragged(placed):
+    window = placed
+    select(window, "bore")
+    to = carried_spot(window, X, (0.02, 0.0, 0.0))
+    drag(window, X, to)
+    edges = window.view._picture.found
+    middle = edges.reshape(-1, 3).mean(axis=0)
+    np.testing.assert_allclose(middle[:2], [-0.18, -0.1], rtol=0, atol=0.0006)
+    let_go(window, to)
+    assert not len(window.view._picture.found)
 
 
 @pytest.mark.gui
