@@ -171,7 +171,7 @@ class ViewPane(QWidget):
         """Show a part that is not in the document yet, see-through; None takes it away."""
         if part is self._ghost or (part is None and self._ghost is None):
             return
-        self._ghost = part
+        self._ghost, self._at_rest = part, None
         if self._assembly is None:
             return
         was_empty = not self.scene.everybody
