@@ -111,7 +111,23 @@ class Actions:
             Command("Named dimensions…", w.edit_names, "Ctrl+D", tip="Values that number fields use by their names."),
             Command("Variants…", w.edit_variants, tip="Lines that are in some variants of the machine only."),
         ])
-        part = self._fill(bar.addMenu("&Part"), [
+        self._part_menu(bar.addMenu("&Part"))
+        self._fill(bar.addMenu("&Axis"), [
+            Command("Axes…", w.edit_axes, "Ctrl+Shift+A", tip="All axes, with J of the whole about each."), None,
+            Command("Edit drive axis…", lambda: self._ask_axis(w.session.assembly.drive_axis)),
+            Command("New axis…", lambda: self._ask_axis(None)),
+        ])
+        self._fill(bar.addMenu("&Hand-over"), [
+            Command("Copy J about the drive axis", w.copy_inertia, "Ctrl+J"), Command("Copy sheet", w.copy_sheet), None,
+            self._marks_menu(),
+        ])
+        self._view_menu(bar.addMenu("&View"))
+        self._fill(bar.addMenu("&Help"), [Command("About Masswright", w.show_about)])
+
+    def _part_menu(self, menu: QMenu) -> None:
+        """Fill the menu of lines, which the ledger opens over a line, too."""
+        w = self._window
+        self._fill(menu, [
             Command("Add shape…", w.open_gallery, "Ctrl+B", tip="Opens the gallery of shapes."), self.shapes,
             Command("Add mesh…", w.files.ask_meshes, "Ctrl+M"),
             Command("Add known part…", w.ask_known_part, "Ctrl+K"), None,
@@ -133,18 +149,7 @@ class Actions:
             Command("Read linked group again…", w.linked.read_again), Command("Break the link", w.linked.break_link),
         ])
         tree = w.ledger.tree
-        tree.customContextMenuRequested.connect(lambda at: part.popup(tree.viewport().mapToGlobal(at)))
-        self._fill(bar.addMenu("&Axis"), [
-            Command("Axes…", w.edit_axes, "Ctrl+Shift+A", tip="All axes, with J of the whole about each."), None,
-            Command("Edit drive axis…", lambda: self._ask_axis(w.session.assembly.drive_axis)),
-            Command("New axis…", lambda: self._ask_axis(None)),
-        ])
-        self._fill(bar.addMenu("&Hand-over"), [
-            Command("Copy J about the drive axis", w.copy_inertia, "Ctrl+J"), Command("Copy sheet", w.copy_sheet), None,
-            self._marks_menu(),
-        ])
-        self._view_menu(bar.addMenu("&View"))
-        self._fill(bar.addMenu("&Help"), [Command("About Masswright", w.show_about)])
+        tree.customContextMenuRequested.connect(lambda at: menu.popup(tree.viewport().mapToGlobal(at)))
 
     def _ask_axis(self, axis: DriveAxis | None) -> None:
         self._window.files.show_dialog(AxisDialog(self._window.session, axis, self._window))
