@@ -25,6 +25,8 @@ from core.placement import Placement, Pose, turns_of_matrix
 from core.shapes import Cylinder, PointMass
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from core.arrays import FloatArray
     from core.assembly import Assembly, DriveAxis
     from core.drive.answer import BalanceAnswer
@@ -102,9 +104,8 @@ def with_masses_added(
 
 def drillable(assembly: Assembly, settings: DriveSettings) -> tuple[str, ...]:
     """Return the keys of the parts of the rotor that a correction can be drilled into."""
-    return tuple(
-        part.key for part in assembly.table.parts if not _why_not(assembly, settings, part)
-    )
+    shafts, counts = shafts_by_key(assembly, settings.turning), _counts(assembly)
+    return tuple(part.key for part in assembly.table.parts if not _why_not(settings, part, shafts, counts))
 
 
 def with_holes_drilled(
@@ -123,7 +124,7 @@ def with_holes_drilled(
     part = assembly.node(drill.part)
     if not isinstance(part, Part):
         raise EditRefused("holes are drilled into a part, not into a group", where=part.name)
-    refused = _why_not(assembly, settings, part)
+    refused = _why_not(settings, part, shafts_by_key(assembly, settings.turning), _counts(assembly))
     if refused:
         raise EditRefused(refused, where=part.name, remedy="Choose another part of the rotor, or add masses")
     cuts = _Driller(assembly, settings, answer, part, drill).holes(progress)
@@ -173,19 +174,29 @@ def _turning_too(
     return replace(settings, turning=(*settings.turning, *(TurnsWith(key, shaft, about) for key in keys)))
 
 
-def _why_not(assembly: Assembly, settings: DriveSettings, part: Part) -> str:
-    """Return why a correction cannot be drilled into a part; "" where it can."""
-    train = settings.train
-    shaft = shafts_by_key(assembly, settings.turning).get(part.key)
+def _counts(assembly: Assembly) -> dict[str, int]:
+    """Return how often each part is there, by its key."""
+    counts = np.bincount(assembly.table.owner, minlength=len(assembly.table.parts))
+    return {part.key: int(count) for part, count in zip(assembly.table.parts, counts, strict=True)}
+
+
+def _why_not(settings: DriveSettings, part: Part, shafts: Mapping[str, str], counts: Mapping[str, int]) -> str:
+    """Return why a correction cannot be drilled into a part; "" where it can.
+
+    Args:
+        settings: of the drive.
+        part: of the document.
+        shafts: the shaft that each part turns with, by its key.
+        counts: how often each part is there, by its key.
+    """
+    train, shaft = settings.train, shafts.get(part.key)
     if shaft is None or train.index(shaft) != train.index(settings.balance.shaft):
         return "this part does not turn with the rotor"
     if part.measure != "volume":
         return "this part has no volume that something could be drilled out of"
     if not isinstance(part.driver, ByMaterial | ByDensity):
         return "the mass of this part does not follow from its volume, so that a hole would take nothing off it"
-    table = assembly.table
-    at = [one.key for one in table.parts].index(part.key)
-    count = int((table.owner == at).sum())
+    count = counts[part.key]
     return "" if count == 1 else f"this part is there {count} times, and a hole would be drilled into each of them"
 
 

@@ -33,16 +33,6 @@ def with_rotor_shaft(settings: DriveSettings, shaft: str) -> DriveSettings:
     return _with(settings, replace(settings.balance, shaft=shaft))
 
 
-def with_grade(settings: DriveSettings, grade: float | None) -> DriveSettings:
-    """Return the settings with another grade wanted, mm/s; None for none.
-
-    Raises:
-        ValueRefused: there is no service speed.
-    """
-    typed = tuple((path, text) for path, text in settings.typed if path != "balance.grade")
-    return replace(_with(settings, replace(settings.balance, grade=grade)), typed=typed)
-
-
 def with_bearings(settings: DriveSettings, bearings: tuple[float, float] | None) -> DriveSettings:
     """Return the settings with the bearings at these stations, m; None for none.
 

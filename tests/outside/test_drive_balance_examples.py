@@ -8,10 +8,15 @@ import numpy as np
 import pytest
 from drive_cases import RPM, printed
 
-from core.assembly import DriveAxis
+from core.assembly import Assembly, DriveAxis, Part, ShapeBody
+from core.drive import BalanceSettings, DriveSettings, balance_answer
 from core.drive.balance import CorrectionPlane, corrected, corrections, unbalance
+from core.drive.correcting import with_masses_added
 from core.drive.grade import graded, permissible, shares
+from core.material import Weighed
 from core.moments import Moments
+from core.placement import Pose
+from core.shapes import PointMass
 
 SPINDLE = DriveAxis("Spindle")
 POUND, INCH = 0.45359237, 0.0254
@@ -118,3 +123,54 @@ def test_a_single_mass_is_balanced_in_two_planes(station, near, far):
     left = unbalance(corrected(rotor, SPINDLE, made), SPINDLE)
     assert left.amount <= 1e-12 * 200 * POUND * 9 * INCH
     assert left.couple_amount <= 1e-12 * 200 * POUND * 9 * INCH * INCH * 50
+
+
+# --- the same as documents, corrected by parts -----------------------------------------------------------------------
+
+
+def document_of(rows: list[tuple[float, float, float, float]]) -> Assembly:
+    """Weights (kg, m, degrees, station m) about the spindle."""
+    parts = []
+    for at, (mass, radius, degrees, station) in enumerate(rows):
+        angle = math.radians(degrees)
+        place = (radius * math.cos(angle), radius * math.sin(angle), station)
+        parts.append(Part(f"w{at}", f"w{at}", ShapeBody(PointMass(0.01)), Weighed(mass), Pose(place)))
+    return Assembly("rotor", tuple(parts), (SPINDLE,), "Spindle")
+
+
+def added(rows: list[tuple[float, float, float, float]], *planes: CorrectionPlane) -> list[tuple[float, float]]:
+    """The masses (kg) and angles (degrees, 0…360) of the parts that correct a rotor; nothing is left then."""
+    before, settings = document_of(rows), DriveSettings(balance=BalanceSettings(planes=planes))
+    after, drive = with_masses_added(before, settings, "point mass")
+    left = balance_answer(after, drive).found
+    assert left.amount <= 1e-12 * balance_answer(before, settings).found.amount
+    found = []
+    for part in after.members[len(rows) :]:
+        x, y, _ = part.pose.position
+        found.append((part.driver.mass, math.degrees(math.atan2(y, x)) % 360))
+    return found
+
+
+def test_a_part_balances_the_four_masses_of_the_first_book():
+    # Sarkar, Theory of Machines, ch. 8 Ill. 1 p. 221: 8.1 kg at 267.5° (8.1113; 267.471).
+    rows = [(12, 0.040, 0, 0.0), (10, 0.050, 60, 0.0), (18, 0.060, 130, 0.0), (15, 0.030, 270, 0.0)]
+    ((mass, angle),) = added(rows, CorrectionPlane(0.0, 0.100))
+    assert mass == printed(8.1, 0.1)
+    assert angle == printed(267.5, 0.1)
+
+
+def test_a_part_balances_the_four_masses_of_the_third_book():
+    # Khurmi & Gupta ch. 21, from memory: 116 kg at 201.48°; recomputed 116.10 and 201.31.
+    rows = [(200, 0.2, 0, 0.0), (300, 0.15, 45, 0.0), (240, 0.25, 120, 0.0), (260, 0.3, 255, 0.0)]
+    ((mass, angle),) = added(rows, CorrectionPlane(0.0, 0.2))
+    assert mass == printed(116.10, 0.01)
+    assert angle == printed(201.31, 0.01)
+
+
+@pytest.mark.parametrize(("station", "near", "far"), [(-10, 144, 24), (10, 96, 24)])
+def test_two_parts_balance_the_single_mass_of_the_second_book(station, near, far):
+    # Bevan Ex. 1 p. 491: 200 lb at 9 in, planes 50 in apart, 15 in; 10 in outside or inside the first plane.
+    planes = (CorrectionPlane(0.0, 15 * INCH), CorrectionPlane(50 * INCH, 15 * INCH))
+    made = added([(200 * POUND, 9 * INCH, 30, station * INCH)], *planes)
+    assert [mass / POUND for mass, _ in made] == [printed(near, 1), printed(far, 1)]
+    assert [angle for _, angle in made] == pytest.approx([210, 30 if station < 0 else 210])

@@ -15,9 +15,9 @@ from core.drive.entering import (
     usual_plane,
     with_bearings,
     with_correcting,
-    with_grade,
     with_rotor_shaft,
 )
+from core.drive.fields import with_number
 from core.drive.items import with_item, without_item
 from core.quantity import Kind, compact
 
@@ -118,7 +118,7 @@ class RotorSection(BalanceSection):
             return
         grade = chosen if isinstance(chosen, float) else None
         words = "No balance grade wanted" if grade is None else f"Balance grade G {compact(grade)}"
-        self.attempt_in_place(self._refused, words, lambda settings: with_grade(settings, grade))
+        self.attempt_in_place(self._refused, words, lambda settings: with_number(settings, self.path("grade"), grade))
 
 
 class BearingsSection(BalanceSection):
