@@ -73,8 +73,8 @@ class ChecksPage(QWidget):
         self.list.currentItemChanged.connect(lambda item, _before: self._offer(item))
         self.list.itemClicked.connect(self._go)
         self.list.itemActivated.connect(self._go)
-        self.list.itemExpanded.connect(lambda _item: self._keep_fold(unfolded=True))
-        self.list.itemCollapsed.connect(lambda _item: self._keep_fold(unfolded=False))
+        self.list.itemExpanded.connect(self._unfold)
+        self.list.itemCollapsed.connect(self._fold)
         session.changed.connect(self.refresh)
         self.refresh()
 
@@ -90,7 +90,8 @@ class ChecksPage(QWidget):
         if sound:
             fold = QTreeWidgetItem([f"{len(sound)} sound", "", "What was checked and found right."])
             fold.setIcon(WORD, icon("sound", "sound"))
-            fold.addChildren([_item(finding, "sound", "sound") for finding in sound])
+            # A large document has thousands of sound ones: they are listed when they are asked for.
+            fold.setChildIndicatorPolicy(QTreeWidgetItem.ChildIndicatorPolicy.ShowIndicator)
             self.list.addTopLevelItem(fold)
             fold.setExpanded(self._unfolded)
         if not findings:
@@ -114,8 +115,15 @@ class ChecksPage(QWidget):
             QGuiApplication.clipboard().setText(text)
         return text
 
-    def _keep_fold(self, *, unfolded: bool) -> None:
-        self._unfolded = unfolded
+    def _unfold(self, fold: QTreeWidgetItem) -> None:
+        """List what is sound."""
+        self._unfolded = True
+        if not fold.childCount():
+            sound = [finding for finding in self._session.findings if finding.check.ok]
+            fold.addChildren([_item(finding, "sound", "sound") for finding in sound])
+
+    def _fold(self, _fold: QTreeWidgetItem) -> None:
+        self._unfolded = False
 
     def _offer(self, item: QTreeWidgetItem | None) -> None:
         """Offer what can be done about an overlap, while one is chosen."""

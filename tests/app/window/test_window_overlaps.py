@@ -46,6 +46,7 @@ def choose_overlap(window):
     tree = window.checks.list
     for at in range(tree.topLevelItemCount()):
         item = tree.topLevelItem(at)
+        item.setExpanded(True)
         for one in [item, *(item.child(row) for row in range(item.childCount()))]:
             if "penetrates it" in one.text(2):
                 tree.setCurrentItem(one)

@@ -48,9 +48,8 @@ class BalanceSection(DriveSection):
         """The settings as they are now."""
         return self.session.drive.balance
 
-    def show(self) -> None:
-        """Show the numbers as they are now; what was refused is no longer said."""
-        super().show()
+    def forget_refusals(self) -> None:
+        """Say no longer what was refused."""
         for words in self._refusals:
             words.hide()
 

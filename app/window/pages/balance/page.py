@@ -80,6 +80,7 @@ class BalancePage(QWidget):
         self.copy_all.clicked.connect(self.copy_values)
         for signal in (session.changed, session.shown_differently):
             signal.connect(self._follow)
+        session.edited.connect(self._forget_refusals)
 
     def _lay_out(self) -> None:
         self.copy_all.setToolTip("Copies name, value, unit and basis of every line, tab-separated.")
@@ -170,6 +171,10 @@ class BalancePage(QWidget):
             self.refresh()
         elif self._arrows_kept:
             self._show_arrows()
+
+    def _forget_refusals(self) -> None:
+        for section in self.sections:
+            section.forget_refusals()
 
     def refresh(self) -> None:
         """Show everything as it is now, or why there is nothing."""

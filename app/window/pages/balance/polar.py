@@ -29,7 +29,7 @@ _MARGIN = 1.9
 _HEAD = (10.0, 7.0)
 _SMALLEST, _BEST = 200, 320
 # A permitted circle further out than this many times the largest vector would make the vectors points.
-_FURTHEST = 4.0
+_FURTHEST = 2.5
 # Of the outermost circle: one smaller than this is a point.
 _NEAREST = 0.04
 # Opacity of the ground beneath a name, 0…255.
