@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from app.window.fields import FIELD_WIDTH, Form, OpenField, QuantityField, TripleField
+from app.window.fields import FIELD_WIDTH, Form, OpenField, QuantityField
 from core.drive.fields import kind_at, number_at, typed_at, with_number
 
 if TYPE_CHECKING:
@@ -76,13 +76,10 @@ class DriveSection:
         field.cleared.connect(lambda: self._clear(field, label, inner))
         return field
 
-    def triple(self, label: str, inner: str, tip: str = "", unit: Unit | None = None) -> TripleField:
-        """Add three fields for a triple of the entry."""
-        triple = TripleField(self.session, label, kind_at(self.path(f"{inner}.0")), unit)
-        self.form.add(label, triple, tip)
-        for at, field in enumerate(triple.fields):
-            self.bind(field, f"{label} {'xyz'[at]}", f"{inner}.{at}")
-        return triple
+    def triple(self, label: str, inner: str, tip: str = "", unit: Unit | None = None) -> None:
+        """Add a field for each number of a triple, one below the other: side by side they need a wide page."""
+        for at, letter in enumerate("xyz"):
+            self.number(f"{label} {letter}", f"{inner}.{at}", tip, unit)
 
     def bind(self, field: QuantityField, label: str, inner: str) -> None:
         """Let a field edit a number of the entry; the text as typed is kept there, too."""

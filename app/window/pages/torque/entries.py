@@ -14,7 +14,7 @@ from PySide6.QtCore import (
     Signal,
 )
 from PySide6.QtGui import QColor
-from PySide6.QtWidgets import QAbstractItemView
+from PySide6.QtWidgets import QAbstractItemView, QHeaderView
 
 from app.window.pages.torque.keyed_table import KeyedTable
 from app.window.style import colours
@@ -124,7 +124,6 @@ class EntriesTable(KeyedTable):
     def __init__(self, label: str, model: EntriesModel) -> None:
         super().__init__(label, model)
         self.entries = model
-        self.horizontalHeader().setStretchLastSection(True)
         self.selectionModel().currentRowChanged.connect(lambda *_: self.chosen.emit())
         self.selectionModel().selectionChanged.connect(lambda *_: self.chosen.emit())
         self.taken |= {
@@ -132,6 +131,12 @@ class EntriesTable(KeyedTable):
             (Qt.Key.Key_Down, Qt.KeyboardModifier.AltModifier): lambda: self.moved.emit(1),
             (Qt.Key.Key_D, Qt.KeyboardModifier.ControlModifier): self.doubled.emit,
         }
+
+    def stretch(self, column: int) -> None:
+        """Give a column the room that the others leave."""
+        header = self.horizontalHeader()
+        header.setStretchLastSection(column == self.entries.columnCount() - 1)
+        header.setSectionResizeMode(column, QHeaderView.ResizeMode.Stretch)
 
     @property
     def current(self) -> Entry | None:

@@ -35,6 +35,7 @@ if TYPE_CHECKING:
     from app.window.pages.drive_section import DriveSection
     from app.window.session import Session
     from core.drive import DriveSettings
+    from core.machine import Machine
 
 LABELS = 132
 
@@ -60,6 +61,7 @@ class EntriesPanel(QWidget):
         self._sections: list[DriveSection] = []
         self._built: object = None
         self._stale = True
+        self._shown: Machine | None = None
         self.model = self.make_model(headings)
         self.table = EntriesTable(label, self.model)
         self.advice_words = Words("", "quiet")
@@ -144,8 +146,8 @@ class EntriesPanel(QWidget):
         table.removed.connect(self.remove)
         table.doubled.connect(self.double)
         table.opened.connect(self.open_fields)
-        for signal in (self.session.changed, self.session.shown_differently):
-            signal.connect(self.refresh)
+        self.session.changed.connect(self._follow)
+        self.session.shown_differently.connect(self.refresh)
 
     # What a kind of list says of itself
 
@@ -177,11 +179,17 @@ class EntriesPanel(QWidget):
         if self._stale:
             self.refresh()
 
+    def _follow(self) -> None:
+        """Show another document; what is being typed or refused stays when the same one is judged anew."""
+        if self.session.machine is not self._shown:
+            self.refresh()
+
     def refresh(self) -> None:
         """Show the entries as they are now, the current row staying where it is."""
         self._stale = not self.isVisible()
         if self._stale:
             return
+        self._shown = self.session.machine
         kept, row = [entry.root for entry in self.table.selected], max(self.table.currentIndex().row(), 0)
         self.model.show(self.entries())
         self._advise()

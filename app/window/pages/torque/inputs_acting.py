@@ -76,12 +76,12 @@ class ForceSection(RangedSection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
+        self.name_field()
         self.triple("force", "force", "Along the axes of the document, as the document stands.")
         self.triple("acts at", "point", "Where it acts as the document stands, from the document's origin.")
         self.choice("its direction", "direction_in", FOLLOWS, "Whether its direction turns with the part.")
         self.choice("its point", "point_in", FOLLOWS, "Whether the point turns with the part, or stays as a tool does.")
         self.range_fields()
-        self.name_field()
 
 
 class TorqueSection(RangedSection):
@@ -89,11 +89,11 @@ class TorqueSection(RangedSection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
+        self.name_field()
         self.number("torque", "torque", "At its shaft; a positive one asks a positive torque of the drive.")
-        self.choice("acts", "sense", SENSES, "One way, as a spring; or against the motion, as friction.")
+        self.choice("sense", "sense", SENSES, "One way, as a spring; or against the motion, as friction.")
         self.shaft_choice()
         self.range_fields()
-        self.name_field()
 
 
 class FrictionSection(EntrySection):
@@ -101,13 +101,13 @@ class FrictionSection(EntrySection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
+        self.name_field()
         self.number("constant", "constant", "Whatever the speed and the load.")
         self.number("viscous", "viscous", "Times the speed of its shaft.")
         self.number("coefficient", "coefficient", "Of the bearing; times radius and load.")
         self.number("radius", "radius", "At which the bearing rubs.")
         self.open_number("load", "load", OWN_WEIGHT, "On the bearing; empty: the weight of what turns with it.")
         self.shaft_choice()
-        self.name_field()
 
 
 ACTING: dict[type, type[EntrySection]] = {

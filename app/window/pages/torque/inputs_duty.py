@@ -13,7 +13,7 @@ from app.window.fields import kept_text
 from app.window.pages.drive_section import DriveSection
 from app.window.pages.torque.entries import EntriesModel, Entry
 from app.window.pages.torque.entries_panel import Addition, EntriesPanel
-from app.window.pages.torque.inputs_duty_table import ANGLE, TIME, TO, DutyModel
+from app.window.pages.torque.inputs_duty_table import ANGLE, LAW, TIME, TO, DutyModel
 from app.window.pages.torque.inputs_steps import MoveSection, RepeatSection, RestSection
 from app.window.pages.torque.paste_marks import PasteMarks
 from core.drive import ByTime, Duty, Move, Repeat, Rest
@@ -45,6 +45,7 @@ class DutyPanel(EntriesPanel):
         super().__init__(session, "Duty", ())
         for column, width in COLUMNS.items():
             self.table.setColumnWidth(column, width)
+        self.table.stretch(LAW)
         self.table.type_in_cells()
         self.halves.setSizes([470, 310])
         self.marks = PasteMarks(self._paste_as)

@@ -13,6 +13,7 @@ if TYPE_CHECKING:
     from PySide6.QtGui import QShowEvent
 
     from app.window.session import Session
+    from core.machine import Machine
 
 
 class LimitsPanel(QWidget):
@@ -28,8 +29,10 @@ class LimitsPanel(QWidget):
         layout.setSpacing(2 * GRID)
         for box in (self.continuous, self.peak):
             layout.addWidget(box, 1)
-        for signal in (session.changed, session.shown_differently):
-            signal.connect(self.refresh)
+        self._session = session
+        self._shown: Machine | None = None
+        session.changed.connect(self._follow)
+        session.shown_differently.connect(self.refresh)
 
     def showEvent(self, event: QShowEvent) -> None:
         """Catch up with what changed out of sight."""
@@ -37,9 +40,15 @@ class LimitsPanel(QWidget):
         if self._stale:
             self.refresh()
 
+    def _follow(self) -> None:
+        """Show another document; what is being typed or refused stays when the same one is judged anew."""
+        if self._session.machine is not self._shown:
+            self.refresh()
+
     def refresh(self) -> None:
         """Show the points as they are now."""
         self._stale = not self.isVisible()
         if not self._stale:
+            self._shown = self._session.machine
             self.continuous.refresh()
             self.peak.refresh()

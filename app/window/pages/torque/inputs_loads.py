@@ -29,7 +29,8 @@ class LoadsPanel(EntriesPanel):
     def __init__(self, session: Session) -> None:
         super().__init__(session, "Loads", ("Load", "Is", "On shaft"))
         self.table.setColumnWidth(0, 100)
-        self.table.setColumnWidth(1, 236)
+        self.table.setColumnWidth(2, 76)
+        self.table.stretch(1)
 
     def additions(self) -> list[Addition]:
         """Return a force, a torque and a friction."""

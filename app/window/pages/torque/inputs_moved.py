@@ -24,6 +24,7 @@ class MovedSection(EntrySection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
+        self.name_field()
         if isinstance(self.item, LeadScrew):
             self.number("lead", "lead", "How far it moves for a full turn.")
         else:
@@ -36,7 +37,6 @@ class MovedSection(EntrySection):
         self.number("friction coefficient", "friction_coefficient", "Of the guide, times the weight across the slope.")
         self.number("inertia", "inertia", "Of the pinion, drum or screw, on its shaft.")
         self.shaft_choice()
-        self.name_field()
 
 
 class InertiaSection(EntrySection):
@@ -44,9 +44,9 @@ class InertiaSection(EntrySection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
+        self.name_field()
         self.number("inertia", "inertia", "About its shaft.")
         self.shaft_choice()
-        self.name_field()
 
 
 class TurnsWithSection(EntrySection):

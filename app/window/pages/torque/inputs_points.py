@@ -100,7 +100,6 @@ class PointsBox(QWidget):
         points = points_at(self.session.drive, self.limit)
         self.model.show(points)
         self.advice.setVisible(not points)
-        self.table.setVisible(bool(points))
         self.remove_button.setEnabled(bool(points))
         for field in (self.speed, self.torque):
             field.set_value(None)

@@ -64,11 +64,11 @@ class GearSection(EntrySection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
+        self.name_field("Also names the shaft on its load side.")
         self.number("ratio", "ratio", RATIO)
         _efficiencies(self)
         self.number("inertia", "inertia", "Of the stage itself, seen from the side chosen below.")
         self.choice("inertia quoted at", "quoted_at", SIDES, "The shaft that the data sheet quotes the inertia at.")
-        self.name_field("Also names the shaft on its load side.")
 
 
 class BeltSection(EntrySection):
@@ -76,13 +76,13 @@ class BeltSection(EntrySection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
+        self.name_field("Also names the shaft on its load side.")
         self.number("radius, motor side", "motor_radius", "Of the pitch circle of the wheel on the motor side.")
         self.number("radius, load side", "load_radius", "Of the pitch circle of the wheel on the load side.")
         _efficiencies(self)
         self.number("inertia, motor side", "motor_inertia", "Of the wheel on the motor side, on its own shaft.")
         self.number("inertia, load side", "load_inertia", "Of the wheel on the load side, on its own shaft.")
         self.number("mass", "mass", "Of the belt or chain itself.")
-        self.name_field("Also names the shaft on its load side.")
 
 
 class CouplingSection(EntrySection):
@@ -90,8 +90,8 @@ class CouplingSection(EntrySection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
-        self.number("inertia", "inertia", "Of the whole coupling.")
         self.name_field("Also names the shaft on its load side.")
+        self.number("inertia", "inertia", "Of the whole coupling.")
 
 
 class BrakeSection(EntrySection):
@@ -99,9 +99,9 @@ class BrakeSection(EntrySection):
 
     def __init__(self, session: Session, form: Form, root: str, name: str) -> None:
         super().__init__(session, form, root, name)
+        self.name_field("Also names the shaft on its load side.")
         self.number("braking torque", "torque", "At its own shaft, when it is applied.")
         self.number("inertia", "inertia", "Of what turns in it.")
-        self.name_field("Also names the shaft on its load side.")
 
 
 STAGES: dict[type, type[EntrySection]] = {

@@ -38,8 +38,9 @@ class StopsPanel(EntriesPanel):
 
     def __init__(self, session: Session) -> None:
         super().__init__(session, "Stops", ("Stop", "From", "By", "On shaft"))
-        for column, width in enumerate((80, 100, 130)):
+        for column, width in enumerate((80, 110, 110)):
             self.table.setColumnWidth(column, width)
+        self.table.stretch(3)
 
     def additions(self) -> list[Addition]:
         """Return a stop that comes about."""

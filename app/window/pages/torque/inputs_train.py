@@ -41,7 +41,8 @@ class TrainPanel(EntriesPanel):
     def __init__(self, session: Session) -> None:
         super().__init__(session, "Train", ("Train", "Is", "On shaft"))
         self.table.setColumnWidth(0, 130)
-        self.table.setColumnWidth(1, 170)
+        self.table.setColumnWidth(2, 112)
+        self.table.stretch(1)
 
     def additions(self) -> list[Addition]:
         """Return the stages, the moved masses, an inertia, and a line of the ledger."""
