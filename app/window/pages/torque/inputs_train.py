@@ -10,6 +10,7 @@ from app.window.pages.torque.entries import Entry
 from app.window.pages.torque.entries_panel import Addition, EntriesPanel
 from app.window.pages.torque.inputs_moved import HUNG, WHOLE
 from app.window.pages.torque.inputs_stages import STAGES, MotorSection
+from core.assembly import walk
 from core.drive import (
     FIXED,
     Belt,
@@ -98,8 +99,11 @@ class TrainPanel(EntriesPanel):
     def fields_depend_on(self, entry: Entry) -> object:
         """Return the shafts and, of a line, what else there is to choose from."""
         shafts = tuple(words for words, _ in shafts_of(self.session))
+        if not isinstance(entry.item, TurnsWith):
+            return shafts
         assembly = self.session.assembly
-        return (shafts, assembly.members, assembly.axes) if isinstance(entry.item, TurnsWith) else shafts
+        lines = tuple((node.key, node.name, depth) for node, depth in walk(assembly.members))
+        return shafts, lines, tuple(axis.name for axis in assembly.axes)
 
     def advice(self) -> str:
         """Return that there is no stage yet, where there is none."""
