@@ -43,6 +43,7 @@ from app.window.pages.part import PartPage
 from app.window.pages.sheet import SheetPage
 from app.window.pages.torque.page import TorquePage
 from app.window.placing import Placing
+from app.window.seat_pointing import SeatPointing
 from app.window.session import Session
 from app.window.settings import Settings
 from app.window.start import Notice, StartPanel, stacked
@@ -85,6 +86,7 @@ class MainWindow(QMainWindow):
         self.changed_files = ChangedFiles(self.session, self.notice)
         self.placing = Placing(self.session, self.view, self)
         self.linked = LinkedGroups(self.session, self.notice)
+        self.seat_pointing = SeatPointing(self.session, self.view, self)
         self.actions_ = Actions(self)
         self._place: QWidget = self.ledger
         self._given_up = False

@@ -39,6 +39,7 @@ class Session(QObject):
         file_changed: the document has another path, or was saved.
         refused: an edit or a file could not be taken; the sentence that says why.
         said: something worth a line at the foot of the window.
+        seat_wanted: the line with this key is to be seated by pointing in the view.
         found: edges (k, 2, 3) m of the document frame to light up in the view; none to take them away.
     """
 
@@ -50,6 +51,7 @@ class Session(QObject):
     file_changed = Signal()
     refused = Signal(str)
     said = Signal(str)
+    seat_wanted = Signal(str)
     found = Signal(object)
 
     def __init__(self, parent: QObject | None = None) -> None:

@@ -16,6 +16,7 @@ from app.window.pages.part_cuts import CutHead, CutsSection
 from app.window.pages.part_link import HeldHead, LinkSection
 from app.window.pages.part_mass import MassSection
 from app.window.pages.part_mesh import MeshSection
+from app.window.pages.part_seat import SeatSection
 from app.window.pages.part_stand import PlaceSection
 from app.window.pages.part_turning import TurningSection
 from app.window.pages.part_variants import VariantsSection
@@ -132,11 +133,11 @@ class PartPage(QScrollArea):
 def _signature(node: AnyLine) -> tuple[object, ...]:
     """Return what decides which fields a line has."""
     if isinstance(node, Group):
-        return (node.key, Group, type(node.copies), node.link is not None)
+        return (node.key, Group, type(node.copies), node.link is not None, node.seat is None)
     if isinstance(node, Cut):
         return (node.key, Cut, type(node.shape), type(node.copies))
     inner = type(node.body.shape) if isinstance(node.body, ShapeBody) else getattr(node.body, "about", "")
-    return (node.key, type(node.body), inner, type(node.copies))
+    return (node.key, type(node.body), inner, type(node.copies), node.seat is None)
 
 
 def _sections(session: Session, form: Form, node: AnyLine) -> list[Section]:
@@ -149,7 +150,10 @@ def _sections(session: Session, form: Form, node: AnyLine) -> list[Section]:
         sections.append(LinkSection(session, form, node))
     if isinstance(node, Part):
         sections += _body_sections(session, form, node)
-    sections += [PlaceSection(session, form, node), CopiesSection(session, form, node)]
+    sections.append(PlaceSection(session, form, node))
+    if not isinstance(node, Cut):
+        sections.append(SeatSection(session, form, node))
+    sections.append(CopiesSection(session, form, node))
     if not isinstance(node, Cut):
         sections.append(TurningSection(session, form, node))
     if session.assembly.variants and not isinstance(node, Cut):

@@ -75,6 +75,16 @@ class Canvas(Protocol):
         """Draw this picture from now on."""
 
 
+class Aim(Protocol):
+    """What takes the clicks in the view, instead of the selection, while something is pointed at."""
+
+    def hover(self, spot: QPointF) -> None:
+        """Show what a click at a place in the pane would take."""
+
+    def click(self, spot: QPointF) -> None:
+        """Take what is at a place in the pane."""
+
+
 def make_view(parent: QWidget) -> QWidget:
     """Return a canvas for this machine: a GlView where OpenGL works, otherwise a SoftView."""
     found = probed()
@@ -128,6 +138,7 @@ class ViewPane(QWidget):
         # The scene without what is being dragged in it, while something is.
         self._at_rest: Scene | None = None
         self.hand = Hand(self)
+        self.aim: Aim | None = None
         self._rest = QTimer(self, singleShot=True, interval=_REST)
         self._rest.timeout.connect(lambda: self._redraw(moving=False))
         self._look_up = QTimer(self, singleShot=True, interval=_HOVER)
@@ -196,6 +207,11 @@ class ViewPane(QWidget):
         self._overlay.covered = boxes
         self._overlay.update()
 
+    def point_with(self, aim: Aim | None) -> None:
+        """Let something take the clicks, handles being hidden meanwhile; None: they select again."""
+        self.aim = aim
+        self._show_hand()
+
     def light_up(self, edges: FloatArray) -> None:
         """Draw edges (k, 2, 3) m of the document frame over everything; none takes those shown away."""
         self._picture = replace(self._picture, found=edges)
@@ -257,13 +273,16 @@ class ViewPane(QWidget):
             self._rest.start()
 
     def _show_hand(self) -> None:
-        self._overlay.handles = self.hand.shown
+        shown = self.hand.shown if self.aim is None else None
+        self._overlay.handles = shown
         self._overlay.update()
-        over = self.hand.shown is not None and self.hand.shown.lit is not None
+        over = shown is not None and shown.lit is not None
         shape = Qt.CursorShape.ClosedHandCursor if self.hand.holds else Qt.CursorShape.OpenHandCursor
         self.setCursor(shape if over else Qt.CursorShape.ArrowCursor)
 
     def _tell_hovered(self) -> None:
+        if self.aim is not None and not self._dragging:
+            self.aim.hover(self._last)
         key = "" if self._dragging or self.hand.holds or not self.underMouse() else self.key_at(self._last)
         if key != self._under:
             self._under = key
@@ -274,7 +293,7 @@ class ViewPane(QWidget):
         self._pressed = self._last = event.position()
         self._dragging = False
         left = event.button() == Qt.MouseButton.LeftButton
-        if left and self.hand.take(_pair(self._last), self.camera, self.frame_size):
+        if left and self.aim is None and self.hand.take(_pair(self._last), self.camera, self.frame_size):
             # Who drags wants to see the same picture afterwards.
             self._stays_fitted = False
             self._show_hand()
@@ -289,7 +308,7 @@ class ViewPane(QWidget):
             return
         if self._pressed is None:
             self._look_up.start()
-            if self.hand.look(_pair(self._last), self.camera, self.frame_size):
+            if self.aim is None and self.hand.look(_pair(self._last), self.camera, self.frame_size):
                 self._show_hand()
             return
         way = event.position() - self._pressed
@@ -312,7 +331,10 @@ class ViewPane(QWidget):
             self._pressed = None
         if self._pressed is not None and not self._dragging and event.button() == Qt.MouseButton.LeftButton:
             more = Qt.KeyboardModifier.ControlModifier | Qt.KeyboardModifier.ShiftModifier
-            self.picked.emit(self.key_at(event.position()), bool(event.modifiers() & more))
+            if self.aim is not None:
+                self.aim.click(event.position())
+            else:
+                self.picked.emit(self.key_at(event.position()), bool(event.modifiers() & more))
         self._pressed, self._dragging = None, False
 
     def leaveEvent(self, event: QEvent) -> None:

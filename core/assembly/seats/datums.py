@@ -7,6 +7,7 @@ dimensions change. Of several with one name the outermost has it, and the next o
 from __future__ import annotations
 
 import math
+import re
 from collections import Counter
 from dataclasses import dataclass, field, replace
 from functools import cached_property
@@ -38,6 +39,7 @@ ORIGIN: Final = "origin"
 _SAME_PLACE: Final = 1e-6
 # Places are put in order by so many digits of where they lie, so that round-off puts none before another.
 _RANK_DIGITS: Final = 6
+_IN_COPY: Final = re.compile(r"copy ([1-9][0-9]{0,5}): (.+)")
 
 
 @dataclass(frozen=True, eq=False)
@@ -97,6 +99,8 @@ FRAME: Final[tuple[Datum, ...]] = (
     Datum(ORIGIN, "point", frozen(np.zeros(3)), frozen([0.0, 0.0, 1.0])),
 )
 
+# Triangles of a mesh whose places are found in less than a tenth of a second.
+FOUND_AT_ONCE: Final = 15_000
 # What was found in a body's surface, for as long as an equal body is there; of a mesh in the file's own unit.
 _shapes: WeakKeyDictionary[ShapeBody, DatumSet] = WeakKeyDictionary()
 _meshes: WeakKeyDictionary[MeshAsset, DatumSet] = WeakKeyDictionary()
@@ -108,13 +112,49 @@ def datums_of(line: AnyLine) -> tuple[Datum, ...]:
     The faces of a cut are those of the part that it leaves: they point into the hole.
     """
     if isinstance(line, Cut):
-        tf_part_cut = Placement(line.standing.turn[0], line.standing.shift[0])
-        shown = [_into_hole(datum) for datum in surface_datums(ShapeBody(line.shape)).datums]
-        return tuple(datum.placed(tf_part_cut) for datum in (*shown, *_frame_beside(shown)))
+        return tuple(_in_part(line, datum, 0) for datum in _of_shape(line))
     if not isinstance(line, Part):
         return FRAME
     found = () if isinstance(line.body, KnownTensor | KnownAxial) else surface_datums(line.body).datums
     return (*found, *_frame_beside(found), *_centre_of_mass(line))
+
+
+def datum_named(line: AnyLine, name: str) -> Datum | None:
+    """Return the place of a line that has this name; None where there is none.
+
+    Of a cut the places of the other copies have names as well: "copy 3: rim +z".
+    """
+    if isinstance(line, Part) and isinstance(line.body, ShapeBody | MeshBody):
+        found = surface_datums(line.body).named.get(name)
+        if found is not None:
+            return found
+    if isinstance(line, Cut):
+        number, inner = _of_copy(name)
+        datum = next((each for each in _of_shape(line) if each.name == inner), None)
+        return None if datum is None or number > line.copies.count else _in_part(line, datum, number - 1)
+    return next((datum for datum in datums_of(line) if datum.name == name), None)
+
+
+def name_in_copy(name: str, index: int) -> str:
+    """Return the name of a place of a cut in one of its copies, counted from 0."""
+    return f"copy {index + 1}: {name}" if index else name
+
+
+def _of_copy(name: str) -> tuple[int, str]:
+    found = _IN_COPY.fullmatch(name)
+    return (1, name) if found is None else (int(found[1]), found[2])
+
+
+def _of_shape(cut: Cut) -> tuple[Datum, ...]:
+    found = surface_datums(ShapeBody(cut.shape)).datums
+    return (*found, *_frame_beside(found))
+
+
+def _in_part(cut: Cut, datum: Datum, index: int) -> Datum:
+    """Return a place of a cut's shape in the part's frame, of one of its copies; faces point into the hole."""
+    shown = replace(datum, direction=-datum.direction) if datum.is_outward else datum
+    placed = shown.placed(Placement(cut.standing.turn[index], cut.standing.shift[index]))
+    return replace(placed, name=name_in_copy(datum.name, index))
 
 
 def _frame_beside(found: Sequence[Datum]) -> tuple[Datum, ...]:
@@ -123,19 +163,10 @@ def _frame_beside(found: Sequence[Datum]) -> tuple[Datum, ...]:
     return tuple(datum for datum in FRAME if datum.name not in names)
 
 
-def datum_named(line: AnyLine, name: str) -> Datum | None:
-    """Return the place of a line that has this name; None where there is none."""
-    if isinstance(line, Part) and isinstance(line.body, ShapeBody | MeshBody):
-        found = surface_datums(line.body).named.get(name)
-        if found is not None:
-            return found
-    return next((datum for datum in datums_of(line) if datum.name == name), None)
-
-
 def surface_datums(body: ShapeBody | MeshBody) -> DatumSet:
     """Return the places in a body's surface before its cuts; of a large mesh in the lighter one that is drawn.
 
-    About 0.3 s of a mesh of 150,000 facets when first asked; then it is kept.
+    About 0.4 s of processor time of a mesh of 150,000 facets when first asked; then it is kept.
     """
     if isinstance(body, ShapeBody):
         if body not in _shapes:
@@ -147,9 +178,16 @@ def surface_datums(body: ShapeBody | MeshBody) -> DatumSet:
     return _enlarged(_meshes[body.asset], body.metres_per_unit)
 
 
-def is_found_already(node: Node) -> bool:
-    """Return whether the places of a line are known already, so that asking for them takes no time."""
-    return not (isinstance(node, Part) and isinstance(node.body, MeshBody)) or node.body.asset in _meshes
+def finding_takes_long(node: Node) -> bool:
+    """Return whether somebody who asks for the places of a line has to wait: of a large mesh, for the first time."""
+    if not isinstance(node, Part) or not isinstance(node.body, MeshBody):
+        return False
+    return node.body.asset not in _meshes and node.body.asset.survey.triangles > FOUND_AT_ONCE
+
+
+def find_places(node: Node) -> None:
+    """Find the places of a line, and keep them; a worker may do so ahead of time."""
+    datums_of(node)
 
 
 def _found_in(facets: Facets) -> DatumSet:
@@ -162,10 +200,6 @@ def _enlarged(found: DatumSet, metres_per_unit: float) -> DatumSet:
         for datum in found.datums
     )
     return DatumSet(Facets(found.facets.points * metres_per_unit, found.facets.corners), datums)
-
-
-def _into_hole(datum: Datum) -> Datum:
-    return replace(datum, direction=-datum.direction) if datum.is_outward else datum
 
 
 def _centre_of_mass(part: Part) -> tuple[Datum, ...]:

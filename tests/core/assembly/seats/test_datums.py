@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -22,6 +23,8 @@ from core.mesh.stl_writing import stl_of_triangles
 from core.mesh.weld import weld_exactly
 from core.placement import Pose, Ring
 from core.shapes import SHAPES, Box, Cylinder, Frustum, OutlinedShape, RegularPrism, Torus, Tube
+
+FACETS = Path(__file__).resolve().parents[3] / "facets"
 
 
 def part(shape, **more):
@@ -182,3 +185,16 @@ def test_the_places_of_a_mesh_follow_its_unit():
         line = Part("m", "wedge", mesh_body((10, 20, 30), "wedge.stl", unit), NotSet())
         # The face at z = 0 is a right triangle: its centroid lies at a third of its legs.
         assert place(line, "face −z") == (pytest.approx([10 / 3 * unit, 20 / 3 * unit, 0], rel=1e-6, abs=1e-9), [0, 0, -1])
+
+
+def test_a_tessellated_flange_offers_its_axis_and_those_of_its_six_bolt_holes():
+    asset = MeshAsset.read(FACETS / "flange_coarse.stl")
+    line = Part("m", "flange", MeshBody(asset, 1e-3), NotSet())
+    holes = [datum for datum in datums_of(line) if datum.name.startswith("round axis z")]
+    assert len(holes) == 6
+    assert all(datum.direction.tolist() == [0, 0, 1] for datum in holes)
+    across = np.array([datum.point[:2] for datum in holes])
+    radii = np.hypot(*across.T)
+    assert radii == pytest.approx(radii.mean(), rel=1e-5)
+    angles = np.sort(np.arctan2(across[:, 1], across[:, 0]))
+    assert np.diff(angles) == pytest.approx(math.pi / 3, rel=1e-5)
