@@ -7,11 +7,12 @@ from typing import TYPE_CHECKING, Final
 
 from app.terminal import complain
 from core.errors import FileRefused, ValueRefused
-from core.handover import csv_of_sheet, sheet_of_assembly, tsv_of_sheet
+from core.handover import csv_of_sheet, tsv_of_sheet
 
 if TYPE_CHECKING:
-    from core.assembly import Assembly, Finding
+    from core.assembly import Finding
     from core.handover import SheetChoice
+    from core.machine import Machine
     from core.quantity import UnitSet
 
 # Spreadsheets take a CSV file for UTF-8 only if it begins with this mark.
@@ -37,12 +38,13 @@ def hand_over(document: str, target: str, choice: SheetChoice, units: UnitSet, d
         )
     from core.assembly.overlap_findings import overlaps_looked_for
     from core.document import look_at_links, read_document
+    from core.handover.machine_sheet import sheet_of_machine
 
-    assembly = read_document(document).assembly
-    look_at_links(assembly)
-    sheet, overlaps = sheet_of_assembly(assembly, choice, units), overlaps_looked_for(assembly)
+    machine = read_document(document)
+    look_at_links(machine.assembly)
+    sheet, overlaps = sheet_of_machine(machine, choice, units), overlaps_looked_for(machine.assembly)
     if form == ".json":
-        _write(target, _json_text(assembly, document, overlaps), "utf-8")
+        _write(target, _json_text(machine, document, overlaps), "utf-8")
     elif form == ".csv":
         _write(target, csv_of_sheet(sheet, decimal_mark), _MARKED)
     else:
@@ -53,10 +55,10 @@ def hand_over(document: str, target: str, choice: SheetChoice, units: UnitSet, d
     return 1 if failed else 0
 
 
-def _json_text(assembly: Assembly, document: str, overlaps: tuple[Finding, ...]) -> str:
-    from core.handover.answer import answer_of_assembly, json_text
+def _json_text(machine: Machine, document: str, overlaps: tuple[Finding, ...]) -> str:
+    from core.handover.answer import answer_of_machine, json_text
 
-    return json_text(answer_of_assembly(assembly, document, overlaps)) + "\n"
+    return json_text(answer_of_machine(machine, document, overlaps)) + "\n"
 
 
 def _write(target: str, text: str, encoding: str) -> None:

@@ -11,7 +11,7 @@ from typing import TYPE_CHECKING, Any, Final, Literal
 from app.progress_bar import progress_shown
 from app.terminal import complain, show
 from core.errors import FileRefused, MasswrightError, ValueRefused
-from core.handover import csv_of_sheet, sheet_of_assembly, sheet_of_mesh, tsv_of_sheet
+from core.handover import csv_of_sheet, sheet_of_mesh, tsv_of_sheet
 from core.handover.mesh_reading import OTHER_FORMATS, MeshRequest, read_mesh
 from core.progress import Progress
 
@@ -137,6 +137,7 @@ def _document(path: str, task: Task) -> Outcome:
     from core.assembly import ledger_of
     from core.assembly.overlap_findings import overlaps_looked_for
     from core.document import look_at_links, read_document
+    from core.handover.machine_sheet import sheet_of_machine
 
     machine = read_document(path)
     machine = machine.with_assembly(_about_asked_axis(machine.assembly, task))
@@ -150,10 +151,10 @@ def _document(path: str, task: Task) -> Outcome:
     )
     status = CHECK_FAILED if complaints else SOUND
     if task.format == "json":
-        from core.handover.answer import answer_of_assembly
+        from core.handover.answer import answer_of_machine
 
-        return Outcome(status, answer=answer_of_assembly(assembly, path, overlaps), complaints=complaints)
-    text = sheet_text(sheet_of_assembly(assembly, task.choice, task.units), task)
+        return Outcome(status, answer=answer_of_machine(machine, path, overlaps), complaints=complaints)
+    text = sheet_text(sheet_of_machine(machine, task.choice, task.units), task)
     if task.format == "text":
         from core.handover.text import text_of_ledger
 

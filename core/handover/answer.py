@@ -24,6 +24,7 @@ if TYPE_CHECKING:
     from core.checks import Check
     from core.handover.lines import Subject
     from core.handover.mesh_reading import MeshReading
+    from core.machine import Machine
     from core.moments import Moments
 
 Answer: TypeAlias = dict[str, Any]
@@ -72,7 +73,7 @@ def answer_of_mesh(reading: MeshReading) -> Answer:
         **_values(reading.body, reading.geometry, reading.volume),
         "curved": None,
         "axis": _axis(reading.body, reading.geometry, reading.axis),
-        "checks": [_check(check) for check in reading.checks],
+        "checks": [check_answer(check) for check in reading.checks],
     }
     if reading.curved is not None:
         body = reading.weighed(reading.curved)
@@ -83,8 +84,8 @@ def answer_of_mesh(reading: MeshReading) -> Answer:
     return values
 
 
-def answer_of_assembly(assembly: Assembly, path: str, overlaps: tuple[Finding, ...] = ()) -> Answer:
-    """Return the answer on a document: its totals, its ledger, and every check with the part it is about.
+def answer_of_machine(machine: Machine, path: str, overlaps: tuple[Finding, ...] = ()) -> Answer:
+    """Return the answer on a document: totals, drive, balance, ledger, and every check with the part it is about.
 
     Findings on overlaps, where somebody has looked for them, stand behind the others.
 
@@ -92,9 +93,11 @@ def answer_of_assembly(assembly: Assembly, path: str, overlaps: tuple[Finding, .
     a part has none.
     A document with variants says which one the values are of ("": all lines), and the totals of each.
     """
-    from core.assembly import findings_of, ledger_of
+    from core.assembly import ledger_of
+    from core.handover.drive_answer import answer_of_balance, answer_of_drive
     from core.handover.sheet import subject_of_assembly
 
+    assembly = machine.assembly
     subject, ledger = subject_of_assembly(assembly), ledger_of(assembly)
     about = {axis.name: _about(subject, axis) for axis in assembly.axes}
     return {
@@ -105,9 +108,11 @@ def answer_of_assembly(assembly: Assembly, path: str, overlaps: tuple[Finding, .
         "axis": about[assembly.drive],
         "axes": list(about.values()),
         "checks": [
-            {**_check(finding.check), "part": finding.name, "key": finding.key}
-            for finding in (*findings_of(assembly), *overlaps)
+            {**check_answer(finding.check), "part": finding.name, "key": finding.key}
+            for finding in (*machine.findings(), *overlaps)
         ],
+        "drive": answer_of_drive(machine),
+        "balance": answer_of_balance(machine),
         "ledger": [_line(line) for line in (*ledger.lines, ledger.total)],
         **(_variants(assembly) if assembly.variants else {}),
     }
@@ -216,16 +221,18 @@ def _volume(assembly: Assembly) -> float | None:
     return float(sum(count * (volume or 0.0) for count, volume in zip(copies, volumes, strict=True)))
 
 
-def _check(check: Check) -> Answer:
+def check_answer(check: Check) -> Answer:
+    """Return a check as an object."""
     return {"name": check.name, "ok": bool(check.ok), "text": check.text}
 
 
-def _listed(values: FloatArray) -> Any:
-    """Return an array as nested lists, with None for what is not finite: JSON knows no other number."""
-    return _plain(np.asarray(values, dtype=float).tolist())
-
-
-def _plain(values: float | Iterable[Any]) -> Any:
+def plain(values: float | Iterable[Any]) -> Any:
+    """Return a number, or nested lists of them, with None for what is not finite: JSON knows no other number."""
     if isinstance(values, float):
         return values if math.isfinite(values) else None
-    return [_plain(value) for value in values]
+    return [plain(value) for value in values]
+
+
+def _listed(values: FloatArray) -> Any:
+    """Return an array as nested lists, as `plain` does."""
+    return plain(np.asarray(values, dtype=float).tolist())

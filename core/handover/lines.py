@@ -14,6 +14,8 @@ from core.placement import Triple
 from core.quantity.units import UNITS, Kind, Unit
 
 if TYPE_CHECKING:
+    from collections.abc import Iterable
+
     from core.arrays import FloatArray
     from core.moments import Moments, Principal
     from core.quantity import UnitSet
@@ -139,6 +141,16 @@ class LineMaker:
     def of(self, kind: Kind, symbol: str, label: str, si: float | None) -> Entry:
         """Return one entry in the unit that the set has for this kind."""
         return self.line(symbol, label, si, unit_of(self.units, kind))
+
+
+def joint_basis(bases: Iterable[str]) -> str:
+    """Return the one basis of several values, or "mixed" with all of them, each named once.
+
+    >>> joint_basis(["computed", "weighed", "computed"])
+    'mixed: computed, weighed'
+    """
+    named = tuple(dict.fromkeys(bases))
+    return named[0] if len(named) == 1 else f"mixed: {', '.join(named)}" if named else "empty"
 
 
 def unit_of(units: UnitSet, kind: Kind) -> Unit:

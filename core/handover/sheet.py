@@ -13,6 +13,7 @@ from core.handover.lines import (
     LineMaker,
     SheetChoice,
     Subject,
+    joint_basis,
     lines_of,
     tie_note,
 )
@@ -124,7 +125,7 @@ def subject_of_assembly(assembly: Assembly, key: str | None = None) -> Subject:
     known = len(selection.without_mass) < len(selection.parts) and float(total.mass) != 0
     line = AxisLine(f"the drive axis {axis.name}", axis.point, axis.direction)
     body = total if known else None
-    return Subject(body, body, "document", line, _joint_basis(selection), "" if known else NOTHING_WEIGHS)
+    return Subject(body, body, "document", line, joint_basis(selection.bases), "" if known else NOTHING_WEIGHS)
 
 
 def sheet_of_mesh(reading: MeshReading, choice: SheetChoice, unit_set: UnitSet) -> Sheet:
@@ -158,12 +159,6 @@ def _remarks(checks: list[Check]) -> tuple[str, ...]:
 def failed_first(checks: list[Check]) -> tuple[Check, ...]:
     """Return the checks with the failed ones in front, otherwise in their order."""
     return tuple(sorted(checks, key=lambda check: check.ok))
-
-
-def _joint_basis(selection: Selection) -> str:
-    """Return the one basis, or "mixed" with all that is in it."""
-    bases = selection.bases
-    return bases[0] if len(bases) == 1 else f"mixed: {', '.join(bases)}" if bases else "empty"
 
 
 def _variant_note(assembly: Assembly) -> tuple[str, ...]:

@@ -35,7 +35,7 @@ def text_of_sheet(sheet: Sheet, decimal_mark: str = ".", digits: int = DIGITS) -
     for entry, (symbol, value, unit, label) in zip(sheet.entries, rows, strict=True):
         if entry.section != section:
             section = entry.section
-            lines += ["", section]
+            lines += ["", section if entry.basis == sheet.basis else f"{section} ({one_line(entry.basis)})"]
         lines.append(f"  {symbol:<{symbols}}  {_aligned(value, left, right, decimal_mark)}  {unit:<{units}}  {label}")
     reasons = dict.fromkeys(entry.reason for entry in sheet.entries if entry.value is None)
     marked = [(f"{NO_VALUE} ", reason) for reason in reasons]

@@ -13,8 +13,10 @@ from app.window.numbers import preview
 from app.window.pages.values import ValuesTable
 from app.window.pages.variant_totals import VariantTotals
 from app.window.style import GRID, Words, icon
-from core.handover import Entry, Sheet, SheetChoice, sheet_of_assembly, tsv_of_sheet
+from core.handover import Entry, Sheet, SheetChoice, tsv_of_sheet
+from core.handover.drive_lines import BY_ROW, CYCLE, REFLECTED
 from core.handover.lines import FOR_THE_DRIVE
+from core.handover.machine_sheet import sheet_of_machine
 
 if TYPE_CHECKING:
     from app.window.session import Session
@@ -44,6 +46,10 @@ def short_label(entry: Entry) -> str:
         return entry.label.split(" about ")[0]
     if entry.section == FOR_THE_DRIVE:
         return entry.label.split(": ")[0].split(" of the whole, from ")[0]
+    if entry.section.startswith(CYCLE):
+        return entry.label.replace(entry.section.removeprefix(CYCLE), "")
+    if entry.section in {REFLECTED, BY_ROW}:
+        return entry.label.split(", of everything")[0].split(": its inertia")[0]
     return entry.label
 
 
@@ -99,7 +105,7 @@ class SheetPage(QWidget):
             about=self.about.currentData(), along=self.along.currentData(), products=self.products.currentData()
         )
         key = self._key() if self.of.currentData() == "selected" else None
-        return sheet_of_assembly(self._session.assembly, choice, self._session.units, key)
+        return sheet_of_machine(self._session.machine, choice, self._session.units, key)
 
     def _leave_sheet(self) -> None:
         """Select in one of the two tables only, so that it is clear what is copied."""
