@@ -76,11 +76,16 @@ class Machine:
 
     @property
     def _drive_checks(self) -> tuple[Check, ...]:
+        # A part that grew may be too much for a brake: that is found, and does not forbid the part.
         try:
-            return self.drive_answer.checks
+            checks = self.drive_answer.checks
         except MasswrightError as error:
-            # A part that grew may be too much for a brake: that is found, and does not forbid the part.
             return (Check("drive", ok=False, text=str(error)),)
+        try:
+            _ = self.balance_answer
+        except MasswrightError as error:
+            return (*checks, Check("balance", ok=False, text=str(error)))
+        return checks
 
     def with_assembly(self, assembly: Assembly) -> Machine:
         """Return the machine with another assembly: seated lines follow, and what the drive says of lines and names.

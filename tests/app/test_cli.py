@@ -65,7 +65,7 @@ def test_a_document_is_answered_with_its_total_its_ledger_and_its_checks(run):
     status, out, err = run("weigh", "dial.masswright", "--format", "json")
     found, whole = json.loads(out), assembly()
     assert (status, err) == (0, "")
-    assert tuple(found) == (*KEYS, "ledger")
+    assert tuple(found) == (*KEYS, "axes", "drive", "balance", "ledger")
     assert found["mass_kg"] == pytest.approx(float(whole.total.mass), rel=1e-12)
     foot = ledger_of(whole).total
     assert found["axis"]["inertia_kgm2"] == pytest.approx(foot.inertia, rel=1e-12)
