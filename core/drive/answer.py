@@ -166,6 +166,12 @@ def balance_answer(assembly: Assembly, settings: DriveSettings) -> BalanceAnswer
     moments, axis = rotor
     found = unbalance(moments, axis)
     made = corrections(found, wanted.planes, wanted.by) if wanted.planes else ()
+    taken = -sum(one.mass for one in made)
+    if taken >= found.mass:
+        raise ValueRefused(
+            "the corrections would take away more than the rotor weighs", where="balance",
+            read=f"{taken:.4g} kg of {found.mass:.4g} kg", remedy="Correct farther out, or by adding",
+        )
     left = unbalance(corrected(moments, axis, made), axis) if made else found
     split = None if wanted.bearings is None else shares(found.station, wanted.bearings)
     forces = None

@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING, Final
 import numpy as np
 
 from core.drive.axis import shafts_by_key, zero_mark
-from core.handover.lines import Entry, LineMaker
+from core.handover.lines import Entry, LineMaker, joint_basis
 from core.quantity.units import UNITS, Kind, Unit
 
 if TYPE_CHECKING:
@@ -47,8 +47,7 @@ def rotor_basis(assembly: Assembly, settings: DriveSettings) -> str:
     train = settings.train
     shafts, at = shafts_by_key(assembly, settings.turning), train.index(settings.balance.shaft)
     turning = (part for part in assembly.table.parts if part.key in shafts and train.index(shafts[part.key]) == at)
-    bases = tuple(dict.fromkeys(part.basis for part in turning))
-    return bases[0] if len(bases) == 1 else f"mixed: {', '.join(bases)}" if bases else "empty"
+    return joint_basis(part.basis for part in turning)
 
 
 def balance_lines(

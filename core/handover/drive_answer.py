@@ -13,7 +13,7 @@ import numpy as np
 
 from core.drive import TERMS
 from core.drive.axis import zero_mark
-from core.drive.cautions import cautions
+from core.drive.cautions import balance_cautions
 from core.errors import MasswrightError
 from core.handover.answer import Answer, check_answer, plain
 
@@ -93,7 +93,7 @@ def answer_of_balance(machine: Machine) -> Answer | None:
         "permissible": _permissible(answer),
         "corrections": [_correction(one, answer) for one in answer.made],
         "left": _left(answer) if answer.made else None,
-        "cautions": list(cautions(0.0, load_can_move=False)),
+        "cautions": list(balance_cautions()),
     }
 
 

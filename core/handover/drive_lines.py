@@ -168,10 +168,8 @@ class _Lines:
         at_rest = f"at rest at {self._angle(hardest.angle)}, friction not counted on"
         label = f"Torque that turns the load, at the load shaft, with the drive off at {self._angle(worst.angle)}"
         return [
-            make.of(Kind.TORQUE, "T_hold", f"Holding torque at the load shaft, {at_rest}", hardest.holding),
-            make.of(
-                Kind.TORQUE, "T_hold_mot", f"Holding torque at the motor shaft, {at_rest}", hardest.holding_at_motor
-            ),
+            make.of(Kind.TORQUE, "T_h,load", f"Holding torque at the load shaft, {at_rest}", hardest.holding),
+            make.of(Kind.TORQUE, "T_h,mot", f"Holding torque at the motor shaft, {at_rest}", hardest.holding_at_motor),
             make.of(Kind.TORQUE, "T_push", f"{label}, where it is largest", worst.push),
             make.of(Kind.TORQUE, "T_fric", "Dry friction of the train, at the load shaft", worst.friction),
             make.of(Kind.TORQUE, "T_brakes", "Brakes of the train, all applied, at the load shaft", worst.brakes),

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
-from typing import TYPE_CHECKING
+from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING, Final
 
-from core.drive.cautions import NO_MARGIN, STANDARDS
+from core.drive import BalanceSettings
+from core.drive.cautions import NO_MARGIN, STANDARDS, balance_cautions
 from core.errors import MasswrightError
+from core.handover.balance_lines import angle_note, balance_lines, rotor_basis
 from core.handover.drive_lines import REFLECTED, drive_lines, drive_notes
 from core.handover.lines import LineMaker
 from core.handover.sheet import failed_first, sheet_of_assembly
@@ -18,6 +20,7 @@ if TYPE_CHECKING:
     from core.machine import Machine
     from core.quantity import UnitSet
 
+BALANCE: Final = "Balance"
 # The caution of every sheet says these already.
 _SAID = frozenset({NO_MARGIN, STANDARDS})
 
@@ -34,20 +37,48 @@ def sheet_of_machine(machine: Machine, choice: SheetChoice, unit_set: UnitSet, k
     sheet = sheet_of_assembly(machine.assembly, choice, unit_set, key)
     if key is not None or not machine.has_drive:
         return sheet
-    checks = failed_first([finding.check for finding in machine.findings()])
-    try:
-        entries, notes = drive_lines(machine, unit_set), drive_notes(machine, unit_set)
-        cautions = tuple(one for one in machine.drive_answer.cautions if one not in _SAID)
-    except MasswrightError as error:
-        entries, notes, cautions = (_missing(unit_set, str(error)),), (), ()
+    drive, balance = _drive(machine, unit_set), _balance(machine, unit_set)
     return replace(
-        sheet, entries=(*sheet.entries, *entries), checks=checks, notes=(*sheet.notes, *notes),
-        cautions=(*cautions, *sheet.cautions),
+        sheet,
+        entries=(*sheet.entries, *drive.entries, *balance.entries),
+        checks=failed_first([finding.check for finding in machine.findings()]),
+        notes=(*sheet.notes, *drive.notes, *balance.notes),
+        cautions=(*(one for one in (*drive.cautions, *balance.cautions) if one not in _SAID), *sheet.cautions),
     )
 
 
-def _missing(units: UnitSet, reason: str) -> Entry:
-    """Return the line that says why there are no others."""
-    return LineMaker(REFLECTED, units, "", reason).of(
-        Kind.INERTIA, "J_mot", "Inertia reflected to the motor shaft", None
-    )
+@dataclass(frozen=True)
+class _Added:
+    """What joins a sheet."""
+
+    entries: tuple[Entry, ...] = ()
+    notes: tuple[str, ...] = ()
+    cautions: tuple[str, ...] = ()
+
+
+def _drive(machine: Machine, units: UnitSet) -> _Added:
+    """Return what there is about torque; one line that says why where it cannot be worked out."""
+    try:
+        return _Added(drive_lines(machine, units), drive_notes(machine, units), machine.drive_answer.cautions)
+    except MasswrightError as error:
+        make = LineMaker(REFLECTED, units, "", str(error))
+        return _Added((make.of(Kind.INERTIA, "J_mot", "Inertia reflected to the motor shaft", None),))
+
+
+def _balance(machine: Machine, units: UnitSet) -> _Added:
+    """Return what there is about balance; one line that says why where it cannot be worked out."""
+    wanted = machine.drive.balance
+    try:
+        answer = machine.balance_answer
+    except MasswrightError as error:
+        make = LineMaker(BALANCE, units, "", str(error))
+        return _Added((make.of(Kind.UNBALANCE, "U", "Static unbalance m·e", None),))
+    if answer is None:
+        return _Added()
+    lines = balance_lines(answer, wanted, units, rotor_basis(machine.assembly, machine.drive))
+    entries = tuple(replace(one, section=f"{BALANCE}: {one.section[0].lower()}{one.section[1:]}") for one in lines)
+    notes = [angle_note(answer.axis)]
+    if answer.keeps is not None and answer.grade is not None:
+        verb = "keeps" if answer.keeps else "does not keep"
+        notes.append(f"The rotor {verb} to G {wanted.grade:g}: it has G {answer.grade.worst:.3g}.")
+    return _Added(entries, tuple(notes), balance_cautions() if wanted != BalanceSettings() else ())

@@ -115,12 +115,13 @@ def test_the_energy_of_every_term_adds_up_to_driving_less_returned():
 
 
 def test_everything_that_is_answered_stands_in_the_readme_by_its_key():
-    wanted = BalanceSettings("load", 3.0, 6.3, (-0.2, 0.2), (CorrectionPlane(0.0, 0.1),), "removing")
+    wanted = BalanceSettings("load", 3.0, 6.3, (-0.2, 0.2), (CorrectionPlane(0.0, 0.1),))
     found = answer(flap_machine().with_drive(replace(settings(), balance=wanted)))
     readme = (ROOT / "README.md").read_text(encoding="utf-8")
     for name in ("drive", "balance"):
         section = readme.split(f"\n#### {name}\n")[1].split("\n###")[0]
         told = set(re.findall(r"`([a-zA-Z_0-9]+)`", section))
+        assert found[name] is not None
         assert keys_of(found[name]) - told - {"name", "ok", "text"} == set()
 
 
@@ -167,6 +168,21 @@ def test_a_balance_that_cannot_be_worked_out_is_null_and_a_check_says_why():
     assert "turns about different axes" in failed["text"]
 
 
+def test_corrections_that_take_away_more_than_there_is_are_refused_in_so_many_words():
+    balance = answer(flap_machine())["checks"][-1]
+    assert (balance["name"], balance["ok"]) == ("balance", False)
+    # 18.84 kg at √(0.3² + 0.005²) m are held against by three times as much at 0.1 m.
+    assert "take away more than the rotor weighs; read 56.53 kg of 18.84 kg" in balance["text"]
+
+
+def test_the_sheet_says_whether_the_rotor_keeps_to_the_grade_wanted_and_warns_about_rotors():
+    settings_of = [BalanceSettings(speed=3.0, grade=grade) for grade in (16.0, 1600.0)]
+    for wanted, words in zip(settings_of, ("does not keep to G 16: it has G 900", "keeps to G 1600"), strict=True):
+        sheet = sheet_of_machine(flap_machine().with_drive(replace(settings(), balance=wanted)), SheetChoice(), SI)
+        assert any(f"The rotor {words}" in note for note in sheet.notes)
+        assert any("balancing machine" in caution for caution in sheet.cautions)
+
+
 def test_a_limit_that_is_zero_where_the_motor_runs_is_used_without_end_which_json_cannot_say():
     limits = MotorLimits(peak=LimitCurve(((0.0, 100.0), (1.0, 100.0))))
     (one,) = answer(disc_machine(limits=limits))["drive"]["limits"]
@@ -203,10 +219,11 @@ def test_the_sheet_is_that_of_the_assembly_as_long_as_nothing_is_entered_about_t
 
 def test_the_lines_of_the_drive_stand_behind_the_others_so_that_those_keep_their_rows():
     plain = sheet_of_assembly(flap(), SheetChoice(), METRIC).entries
-    with_drive = sheet_of_machine(flap_machine(), SheetChoice(), METRIC).entries
+    machine = flap_machine().with_drive(replace(settings(), balance=BalanceSettings(speed=3.0, grade=16.0)))
+    with_drive = sheet_of_machine(machine, SheetChoice(), METRIC).entries
     assert with_drive[: len(plain)] == plain
     assert all(entry.section.startswith(("Drive: ", "Balance: ")) for entry in with_drive[len(plain) :])
-    assert sheet_of_machine(flap_machine(), SheetChoice(), METRIC, "leaf").entries == sheet_of_assembly(
+    assert sheet_of_machine(machine, SheetChoice(), METRIC, "leaf").entries == sheet_of_assembly(
         flap(), SheetChoice(), METRIC, "leaf"
     ).entries
 
@@ -262,6 +279,6 @@ def test_the_parts_of_the_reflected_inertia_add_up_to_it():
 def test_the_holding_torque_is_the_hardest_of_the_rests():
     # A spring that pushes with 3 N·m wherever it stands, and nothing else: the motor holds a fifth of it.
     lines = values(disc_machine(torques=(AppliedTorque("spring", 3.0),)))
-    assert lines["Drive: at rest|T_hold"] == pytest.approx(3.0, rel=1e-14)
-    assert lines["Drive: at rest|T_hold_mot"] == pytest.approx(0.6, rel=1e-14)
+    assert lines["Drive: at rest|T_h,load"] == pytest.approx(3.0, rel=1e-14)
+    assert lines["Drive: at rest|T_h,mot"] == pytest.approx(0.6, rel=1e-14)
     assert lines["Drive: at rest|T_push"] == pytest.approx(-3.0, rel=1e-14)
