@@ -74,7 +74,7 @@ def refusal_after(folder: Path, change: Callable[[dict[str, Any]], object]) -> s
         ),
         (
             lambda drive: drive["turning"][1].update(axis="Lost"),
-            "drive_settings.turning, what turns: the document has no such axis; read 'Lost'. Choose one of Hinge, Drum.",
+            "drive_settings.turning: the document has no such axis; read 'Lost'. Choose one of Hinge, Drum.",
         ),
         (
             lambda drive: drive["balance"].update(shaft="lost"),
