@@ -51,17 +51,17 @@ def rotor_basis(assembly: Assembly, settings: DriveSettings) -> str:
 
 
 def balance_lines(
-    answer: BalanceAnswer, wanted: BalanceSettings, units: UnitSet, basis: str
+    answer: BalanceAnswer, drive: DriveSettings, units: UnitSet, basis: str
 ) -> tuple[Entry, ...]:
     """Return every line about the balance of a rotor.
 
     Args:
         answer: of the document.
-        wanted: what it is judged by.
+        drive: what it is judged by, and the shafts.
         units: in which the values are shown.
         basis: of what turns; see `rotor_basis`.
     """
-    lines = _Lines(answer, wanted, units, basis)
+    lines = _Lines(answer, drive, units, basis)
     return (
         *lines.rotor(), *lines.unbalance(), *lines.in_planes(), *lines.in_service(), *lines.permitted(),
         *lines.corrections(), *lines.left(),
@@ -88,9 +88,14 @@ class _Lines:
     """The lines of each section."""
 
     answer: BalanceAnswer
-    wanted: BalanceSettings
+    drive: DriveSettings
     units: UnitSet
     basis: str
+
+    @property
+    def wanted(self) -> BalanceSettings:
+        """What it is judged by."""
+        return self.drive.balance
 
     @property
     def _axis(self) -> str:
@@ -112,8 +117,9 @@ class _Lines:
     def rotor(self) -> list[Entry]:
         """Return what turns, and how fast."""
         make, found = self._maker(ROTOR, "no service speed is entered"), self.answer.found
+        shaft = self.drive.train.words_of(self.wanted.shaft)
         return [
-            make.of(Kind.MASS, "m", f"Mass of what turns with the shaft {self.wanted.shaft}", found.mass),
+            make.of(Kind.MASS, "m", f"Mass of what turns with the shaft: {shaft}", found.mass),
             make.of(Kind.LENGTH, "z", f"Station of its centre of mass along {self._axis}", found.station),
             make.of(Kind.SPEED, "n", "Service speed", self.wanted.speed),
         ]

@@ -8,13 +8,16 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from core.assembly import Assembly, DriveAxis, Group, Part, ShapeBody
+from core.assembly import Assembly, DriveAxis, Group, MeshBody, Part, ShapeBody
 from core.drive import BalanceSettings, CorrectionPlane, DriveSettings, TurnsWith, balance_answer
 from core.drive.correcting import Drill, drillable, with_holes_drilled, with_masses_added
-from core.errors import EditRefused, ValueRefused
+from core.errors import Cancelled, EditRefused, ValueRefused
 from core.machine import Machine
 from core.material import ByMaterial, Weighed
+from core.mesh import MeshAsset
+from core.mesh.stl_writing import stl_of_triangles
 from core.placement import Pose, Ring, matrix_of_turns
+from core.progress import Progress
 from core.shapes import Box, Cylinder
 
 ALUMINIUM = ByMaterial("aluminium", 2700.0)
@@ -134,6 +137,29 @@ def test_a_hole_from_a_round_surface_counts_what_it_truly_takes_away():
     after = with_holes_drilled(rotor(), settings, Drill("drum", 0.02))
     assert 0 < after.node("drum").cutting.outside[0] < 0.25
     assert left_of(after, settings)[0] <= 1e-10
+
+
+def test_a_mesh_is_drilled_to_the_depth_of_the_closed_form():
+    triangles = (Box(0.3, 0.3, 0.12).facets().triangles / 1e-3).astype(np.float32)
+    mesh = MeshBody(MeshAsset.of_bytes(stl_of_triangles(triangles, "block.stl"), "block.stl"), 1e-3)
+    block = Part("block", "block", mesh, ALUMINIUM)
+    lug = Part("lug", "lug", ShapeBody(Box(0.02, 0.02, 0.02)), ALUMINIUM, Pose((0.1, 0.02, 0.12)))
+    assembly = Assembly("block", (block, lug), (DriveAxis("Shaft"),), "Shaft")
+    settings = balanced_by(*TWO)
+    before = balance_answer(assembly, settings).found
+    after = with_holes_drilled(assembly, settings, Drill("block", 0.015))
+    left = balance_answer(after, settings).found
+    # Facets of single precision: the block itself is as far out of balance as they are rounded.
+    assert left.amount <= 1e-11 * before.amount
+    assert left.couple_amount <= 1e-11 * before.couple_amount
+    assert after.node("block").cutting.exact
+
+
+def test_a_worker_can_be_stopped():
+    progress = Progress()
+    progress.cancel()
+    with pytest.raises(Cancelled):
+        with_holes_drilled(rotor(), balanced_by(replace(ONE[0], radius=RADIUS)), Drill("drum", 0.02), progress)
 
 
 def test_a_second_round_of_drilling_adds_to_the_first():

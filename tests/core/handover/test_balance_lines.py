@@ -35,11 +35,10 @@ def rotor(*more: Part) -> Assembly:
 
 
 def lines(units=METRIC, assembly: Assembly | None = None, **balance: object) -> dict[str, Entry]:
-    wanted = BalanceSettings(**balance)
-    drive = DriveSettings(balance=wanted)
+    drive = DriveSettings(balance=BalanceSettings(**balance))
     document = assembly or rotor()
     answer = balance_answer(document, drive)
-    return {one.symbol: one for one in balance_lines(answer, wanted, units, rotor_basis(document, drive))}
+    return {one.symbol: one for one in balance_lines(answer, drive, units, rotor_basis(document, drive))}
 
 
 EVERYTHING = {

@@ -43,6 +43,7 @@ class CorrectSection(BalanceSection):
         self.as_ = ChoiceField("What the masses are", FORMS)
         form.add("masses are", self.as_, "Discs lie across the axis and are half as thick as wide.")
         self.part = ChoiceField("Part to drill into", [])
+        self.part.setSizeAdjustPolicy(ChoiceField.SizeAdjustPolicy.AdjustToContents)
         form.add("drill into", self.part, "Parts of the rotor that are there once and weigh by their volume.")
         self.diameter = QuantityField(session, "diameter of the holes", Kind.LENGTH)
         self.diameter.set_value(USUAL_DIAMETER)

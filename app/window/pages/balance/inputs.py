@@ -76,6 +76,7 @@ class RotorSection(BalanceSection):
         super().__init__(session, form)
         form.heading("Rotor")
         self.shaft = ChoiceField("Shaft of the rotor", [])
+        self.shaft.setSizeAdjustPolicy(ChoiceField.SizeAdjustPolicy.AdjustToContents)
         form.add("turns with", self.shaft, "The shaft whose parts are the rotor.")
         self.shaft.chosen.connect(self._choose_shaft)
         self.speed = self.open_number(
@@ -105,8 +106,13 @@ class RotorSection(BalanceSection):
         self.grade.set_value(self.wanted.grade if listed else OWN)
         self.form.show_row(self.own, wanted=not listed)
 
+    def forget_refusals(self) -> None:
+        """Say no longer what was refused; a grade of the list is shown as that."""
+        super().forget_refusals()
+        self._own_wanted = False
+
     def _choose_shaft(self, name: object) -> None:
-        words = f"Rotor: the {name} shaft"
+        words = f"Rotor: {self.shaft.currentText()}"
         self.attempt_in_place(self._refused, words, lambda settings: with_rotor_shaft(settings, str(name)))
 
     def _choose_grade(self, chosen: object) -> None:

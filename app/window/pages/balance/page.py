@@ -164,7 +164,7 @@ class BalancePage(QWidget):
         if answer is None:
             return ()
         basis = rotor_basis(session.assembly, session.drive)
-        return balance_lines(answer, session.drive.balance, session.units, basis)
+        return balance_lines(answer, session.drive, session.units, basis)
 
     def _follow(self) -> None:
         if self.isVisible():

@@ -48,15 +48,15 @@ class PolarView(QWidget):
         self.table.setEditTriggers(QAbstractItemView.EditTrigger.NoEditTriggers)
         self.table.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
         self.table.setFixedWidth(TABLE_WIDTH)
-        for bars in (self.table.setHorizontalScrollBarPolicy, self.table.setVerticalScrollBarPolicy):
-            bars(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.table.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.table.setMinimumHeight(3 * ROW_HEIGHT)
         self.says = Words("", "quiet")
         self.says.setWordWrap(True)
         self.says.setMaximumWidth(TABLE_WIDTH)
         beside = QVBoxLayout()
-        beside.addWidget(self.table)
+        beside.addWidget(self.table, 1)
         beside.addWidget(self.says)
-        beside.addStretch(1)
+        beside.addStretch()
         layout = QHBoxLayout(self)
         layout.setContentsMargins(2 * GRID, 0, 2 * GRID, 0)
         layout.setSpacing(2 * GRID)
@@ -110,7 +110,7 @@ class PolarView(QWidget):
         header = self.table.horizontalHeader()
         header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
         header.setStretchLastSection(True)
-        self.table.setFixedHeight(header.sizeHint().height() + len(picture.marks) * ROW_HEIGHT + 4)
+        self.table.setMaximumHeight(header.sizeHint().height() + len(picture.marks) * ROW_HEIGHT + 4)
 
     @staticmethod
     def _note(answer: BalanceAnswer, picture: PolarPicture) -> str:

@@ -13,6 +13,7 @@ from PySide6.QtWidgets import QApplication
 from app.window.view.opengl import VIEW_VARIABLE, opengl_works, prepare_opengl
 from app.window.view.palette import DARK, LIGHT
 from app.window.view.pane import ViewPane
+from app.window.view.scene import Line
 from app.window.view.soft_view import SoftView
 from core.assembly import Assembly, DriveAxis
 
@@ -63,6 +64,18 @@ def test_an_empty_assembly_is_plain_ground_and_the_document_axes(pane, qtbot):
     marked = off_ground(shot(pane, qtbot, marks=True))
     assert marked[-90:, :100].any()
     assert not marked[:-90, 100:].any()
+
+
+def test_arrows_are_drawn_over_everything_until_they_are_taken_away(pane, qtbot, dial):
+    def arrow_pixels() -> int:
+        return int((np.abs(shot(pane, qtbot, marks=True).astype(int) - LIGHT.vector) < 12).all(axis=-1).sum())
+
+    pane.show_assembly(dial)
+    assert arrow_pixels() == 0
+    pane.show_vectors((Line("static 26 g·mm", np.zeros(3), np.array([0.15, 0.1, 0.0])),))
+    assert arrow_pixels() > 60
+    pane.show_vectors(())
+    assert arrow_pixels() == 0
 
 
 def test_an_assembly_is_there_and_what_is_selected_turns_blue(pane, qtbot, dial):

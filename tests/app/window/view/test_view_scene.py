@@ -165,7 +165,7 @@ def test_what_is_selected_differs_in_colour_and_in_line(dial):
 @pytest.mark.parametrize("name", THEMES)
 def test_text_and_marks_stand_out_from_their_ground(name):
     theme = THEMES[name]
-    for colour in (theme.text, theme.drive, theme.principal, theme.selected_edge):
+    for colour in (theme.text, theme.drive, theme.principal, theme.selected_edge, theme.vector):
         assert contrast(colour, theme.ground) >= 4.5
     for colour in (*theme.parts, theme.selected):
         assert contrast(colour, theme.edge) >= 3.0
