@@ -6,9 +6,10 @@ from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QEvent, QObject
-from PySide6.QtWidgets import QBoxLayout, QFrame, QHBoxLayout, QLayout
+from PySide6.QtGui import QAction, QActionGroup
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QLayout, QMenu, QPushButton, QVBoxLayout
 
-from app.window.fields import ChoiceField, QuantityField
+from app.window.fields import QuantityField
 from app.window.style import GRID, Words
 from core.quantity import UNITS, Kind
 
@@ -20,6 +21,11 @@ if TYPE_CHECKING:
 
 _FIELD_WIDTH = 52
 _CORNER = GRID
+# Words of a choice → the field of the manner and its value.
+CHOICES: tuple[tuple[tuple[str, str, str], ...], ...] = (
+    (("Along the document's axes", "along", "document"), ("Along the line's own axes", "along", "own")),
+    (("At the line's origin", "pivot", "origin"), ("At its centre of mass", "pivot", "centre")),
+)
 
 
 class PlacingBar(QFrame):
@@ -33,14 +39,10 @@ class PlacingBar(QFrame):
         self.setAccessibleName("Placing by hand")
         self._length = QuantityField(session, "step of length", Kind.LENGTH, width=_FIELD_WIDTH)
         self._angle = QuantityField(session, "step of angle", Kind.ANGLE, UNITS["°"], _FIELD_WIDTH)
-        self._along = ChoiceField("Handles along", [("document", "document"), ("own axes", "own")])
-        self._pivot = ChoiceField("Handles at", [("origin", "origin"), ("mass centre", "centre")])
-        self._rows = QBoxLayout(QBoxLayout.Direction.LeftToRight, self)
+        self._choices: dict[QAction, tuple[str, str]] = {}
         self._lay_out()
         for field, name in ((self._length, "length_step"), (self._angle, "angle_step")):
             field.entered.connect(lambda value, _text, field=field, name=name: self._take_step(field, name, value))
-        self._along.chosen.connect(lambda chosen: self._choose(along=chosen))
-        self._pivot.chosen.connect(lambda chosen: self._choose(pivot=chosen))
         view.installEventFilter(self)
         for signal in (
             session.selection_changed, session.changed, session.placed_differently, session.shown_differently
@@ -49,43 +51,52 @@ class PlacingBar(QFrame):
         self.refresh()
 
     def _lay_out(self) -> None:
-        steps = (Words("step", "quiet"), self._length, self._angle)
-        choices = (Words("along", "quiet"), self._along, Words("at", "quiet"), self._pivot)
-        self._rows.setContentsMargins(GRID, GRID // 2, GRID, GRID // 2)
-        self._rows.setSpacing(GRID // 2)
-        self._rows.setSizeConstraint(QLayout.SizeConstraint.SetFixedSize)
-        for widgets in (steps, choices):
-            row = QHBoxLayout()
-            row.setSpacing(GRID // 2)
-            for widget in widgets:
-                row.addWidget(widget)
-            row.addStretch(1)
-            self._rows.addLayout(row)
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(GRID, GRID // 2, GRID, GRID // 2)
+        layout.setSpacing(GRID // 2)
+        layout.setSizeConstraint(QLayout.SizeConstraint.SetFixedSize)
+        row = QHBoxLayout()
+        row.setSpacing(GRID // 2)
+        layout.addLayout(row)
         tip = "What dragging a handle snaps to, and a nudge by key moves or turns by. 0: dragging is free."
-        for widget in steps:
+        for widget in (Words("step", "quiet"), self._length, self._angle):
             widget.setToolTip(tip)
-        self._along.setToolTip("Whether handles and nudges run along the document's axes or the line's own.")
-        self._pivot.setToolTip("Where the handles stand, and what turns go about.")
+            row.addWidget(widget)
+        button = QPushButton("Handles")
+        button.setToolTip("Along what handles and nudges run, and where they stand; turns go about that point.")
+        button.setMenu(self._menu())
+        row.addWidget(button)
+        for field in (self._length, self._angle):
+            field.wrong.setFixedWidth(row.sizeHint().width())
+            layout.addWidget(field.wrong)
+
+    def _menu(self) -> QMenu:
+        menu = QMenu("Handles", self)
+        for choices in CHOICES:
+            group = QActionGroup(menu)
+            for words, name, value in choices:
+                action = group.addAction(words)
+                action.setCheckable(True)
+                action.triggered.connect(lambda _on, name=name, value=value: self._choose(**{name: value}))
+                menu.addAction(action)
+                self._choices[action] = (name, value)
+            menu.addSeparator()
+        return menu
 
     def refresh(self) -> None:
         """Show the manner as it is now, where there is something to place."""
         manner = self._session.manner
         self._length.set_value(manner.length_step)
         self._angle.set_value(manner.angle_step)
-        self._along.set_value(manner.along)
-        self._pivot.set_value(manner.pivot)
-        self._settle(wanted=manner.handles and bool(self._session.selected))
+        for action, (name, value) in self._choices.items():
+            action.setChecked(getattr(manner, name) == value)
+        self._settle()
 
-    def _settle(self, *, wanted: bool) -> None:
-        """Take the corner of the view: in one row, or in two where that is too wide, or not at all."""
-        room = self._view.width() - 2 * _CORNER
-        for direction in (QBoxLayout.Direction.LeftToRight, QBoxLayout.Direction.TopToBottom):
-            self._rows.setDirection(direction)
-            self._rows.activate()
-            if self.width() <= room:
-                break
+    def _settle(self) -> None:
+        """Take the corner of the view, where there is something to place and the bar has room."""
         self.move(_CORNER, _CORNER)
-        fits = wanted and self.width() <= room
+        wanted = self._session.manner.handles and bool(self._session.selected)
+        fits = wanted and self.sizeHint().width() <= self._view.width() - 2 * _CORNER
         self.setVisible(fits)
         box = (float(_CORNER), float(_CORNER), float(self.width()), float(self.height()))
         self._view.cover([box] if fits else [])
@@ -102,7 +113,7 @@ class PlacingBar(QFrame):
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
         """Follow the size of the view."""
         if watched is self._view and event.type() == QEvent.Type.Resize:
-            self._settle(wanted=self._session.manner.handles and bool(self._session.selected))
+            self._settle()
         return super().eventFilter(watched, event)
 
     def keyPressEvent(self, event: QKeyEvent) -> None:

@@ -10,10 +10,10 @@ import pytest
 pytest.importorskip("PySide6.QtWidgets")
 
 from PySide6.QtCore import QEvent, QPointF, Qt
-from PySide6.QtGui import QMouseEvent
+from PySide6.QtGui import QAction, QMouseEvent
 from PySide6.QtWidgets import QApplication
 from scipy.spatial.transform import Rotation
-from window_driver import choose, enter, field, solid
+from window_driver import enter, field, solid
 
 from app.window.main import MainWindow
 from app.window.manner import Manner
@@ -492,15 +492,15 @@ def test_steps_are_typed_with_units_in_the_bar_and_kept(placed, qtbot):
     window.view.look("front")
     qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL)
     assert position(window, "plate")[0] == pytest.approx(0.003175, rel=1e-15)
-    choose(combo(window, "Handles along"), "own axes")
-    choose(combo(window, "Handles at"), "mass centre")
+    for words in ("Along the line's own axes", "At its centre of mass"):
+        menu_entry(window, words).trigger()
     assert (window.settings.manner.along, window.settings.manner.pivot) == ("own", "centre")
+    checked = [action.text() for action in window.placing.bar.findChildren(QAction) if action.isChecked()]
+    assert checked == ["Along the line's own axes", "At its centre of mass"]
 
 
-def combo(window, name):
-    from app.window.fields import ChoiceField
-
-    return next(box for box in window.placing.bar.findChildren(ChoiceField) if box.accessibleName() == name)
+def menu_entry(window, words):
+    return next(action for action in window.placing.bar.findChildren(QAction) if action.text() == words)
 
 
 @pytest.mark.gui
@@ -519,7 +519,7 @@ def test_keys_typed_in_the_bar_do_not_turn_the_view(placed, qtbot):
 def test_handles_can_be_put_away_and_the_lines_own_frame_stays(placed):
     window = placed
     select(window, "bar")
-    action = next(each for each in window.findChildren(type(window.actions_.undo)) if each.text() == "Handles for placing")
+    action = next(each for each in window.findChildren(QAction) if each.text() == "Handles for placing")
     assert action.isChecked()
     action.trigger()
     assert not window.placing.bar.isVisible()
