@@ -75,7 +75,7 @@ def _balance(machine: Machine, units: UnitSet) -> _Added:
         return _Added((make.of(Kind.UNBALANCE, "U", "Static unbalance m·e", None),))
     if answer is None:
         return _Added()
-    lines = balance_lines(answer, wanted, units, rotor_basis(machine.assembly, machine.drive))
+    lines = balance_lines(answer, machine.drive, units, rotor_basis(machine.assembly, machine.drive))
     entries = tuple(replace(one, section=f"{BALANCE}: {one.section[0].lower()}{one.section[1:]}") for one in lines)
     notes = [angle_note(answer.axis)]
     if answer.keeps is not None and answer.grade is not None:
