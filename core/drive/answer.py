@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -21,6 +22,7 @@ from core.drive.balance import (
 )
 from core.drive.cautions import cautions
 from core.drive.demand import Demand, GravityWave, gravity_wave
+from core.drive.drawing import OverTurn, over_a_turn
 from core.drive.grade import Graded, Permissible, Shares, graded, permissible, shares
 from core.drive.limits import Judged, judge_continuous, judge_peak
 from core.drive.standstill import Standstill, standstill, standstills_of, worst_standstill
@@ -44,6 +46,7 @@ class DriveAnswer:
     """What the drive has to move, and what that asks.
 
     Attributes:
+        demand: all that asks torque of the drive.
         bodies: what turns, with which shaft, about which axis.
         at_load: inertia about the drive axis of what turns with the load shaft.
         reflected_motor, reflected_load: everything that moves, seen from the motor and from the load, row by row.
@@ -60,6 +63,7 @@ class DriveAnswer:
         cautions: the sentences that belong in every output.
     """
 
+    demand: Demand
     bodies: tuple[TurningBody, ...]
     at_load: AboutAxis
     reflected_motor: Reflected
@@ -80,6 +84,19 @@ class DriveAnswer:
     def curves(self, shaft: str = LOAD) -> Curves | None:
         """Return the curves at a shaft; None without a duty."""
         return None if self.study is None else self.study.curves(shaft)
+
+    def reflected_at(self, shaft: str) -> Reflected:
+        """Return everything that moves, seen from any shaft of the train, row by row.
+
+        Raises:
+            ValueRefused: the train has no such shaft.
+        """
+        return reflected(self.demand.train, self.bodies, shaft)
+
+    @cached_property
+    def over_turn(self) -> OverTurn:
+        """What holds the load at rest over a full turn, with its standstills marked."""
+        return over_a_turn(self.demand, self.standstills)
 
 
 def demand_of(assembly: Assembly, settings: DriveSettings) -> Demand:
@@ -112,7 +129,7 @@ def drive_answer(assembly: Assembly, settings: DriveSettings) -> DriveAnswer:
     energy = demand.inertia_at_load * max(speeds, default=0.0) ** 2 / 2
     ratio = inertia_ratio(train, demand.bodies)
     return DriveAnswer(
-        demand.bodies, about_axis(_moments_on(demand.bodies, LOAD, settings), assembly.drive_axis),
+        demand, demand.bodies, about_axis(_moments_on(demand.bodies, LOAD, settings), assembly.drive_axis),
         reflected(train, demand.bodies, MOTOR), reflected(train, demand.bodies, LOAD),
         tuple(gravity_wave(body, settings.gravity) for body in demand.bodies), ratio, study, load, motor, rests,
         worst, stops, judged, energy,

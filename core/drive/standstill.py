@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING, Literal, TypeAlias
 import numpy as np
 
 from core.arrays import ROUND_OFF, ArrayLike, FloatArray
+from core.drive.demand import GRAVITY
 from core.drive.motion import Rest
 from core.drive.train import Brake
 
@@ -84,10 +85,24 @@ def worst_standstill(demand: Demand, lowest: float, highest: float) -> Standstil
 
 def holding_torque(demand: Demand, angle: ArrayLike) -> FloatArray:
     """Return the torque (m,) N·m at the load shaft that balances all others at angles (m,) rad, nothing moving."""
-    turned = np.asarray(angle, dtype=float)
-    speeds = demand.train.speeds
-    torques = demand.waves.at(turned, speeds, np.zeros(len(turned))) * speeds[demand.waves.shaft][:, None]
-    return np.asarray(torques.sum(axis=0) + sum(torque for _, torque in _lifts(demand)))
+    gravity, applied = held_terms(demand, np.asarray(angle, dtype=float))
+    return gravity + applied
+
+
+def held_terms(
+    demand: Demand, angle: FloatArray, ranged: FloatArray | None = None
+) -> tuple[FloatArray, FloatArray]:
+    """Return what gravity and what applied loads ask for at rest, (m,) N·m each at the load shaft.
+
+    Args:
+        demand: all that acts.
+        angle: (m,) rad, of the load.
+        ranged: (m,) rad, angles on the same side of the ends of all ranges; None: the angles themselves.
+    """
+    waves, speeds = demand.waves, demand.train.speeds
+    torques = waves.at(angle, speeds, np.zeros(len(angle)), ranged) * speeds[waves.shaft][:, None]
+    lifted = sum(torque for _, torque in _lifts(demand))
+    return torques[waves.term == GRAVITY].sum(axis=0) + lifted, torques[waves.term != GRAVITY].sum(axis=0)
 
 
 def dry_friction_at_load(demand: Demand) -> float:

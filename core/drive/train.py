@@ -379,6 +379,11 @@ class Reflected:
     rows: tuple[ReflectedRow, ...]
     inertia: float
 
+    @property
+    def shares(self) -> tuple[float | None, ...]:
+        """Share of each row in the sum, 0…1; None where the sum is 0."""
+        return tuple(row.reflected / self.inertia if self.inertia else None for row in self.rows)
+
 
 def reflected(train: Train, bodies: Sequence[TurningBody], shaft: str = MOTOR) -> Reflected:
     """Return what everything that moves adds up to at a shaft, the motor's rotor included.
