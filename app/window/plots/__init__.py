@@ -1,0 +1,1 @@
+"""Plots: `Graph` says what is drawn, `CurvePlot` draws it, with its legend, a readout and a way to copy it."""

@@ -1,0 +1,55 @@
+"""How lines are told apart: a colour of Okabe and Ito and a pattern of dashes, so that either of them will do."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from types import MappingProxyType
+from typing import TYPE_CHECKING, Final
+
+from PySide6.QtCore import Qt
+from PySide6.QtGui import QColor, QPen
+
+from app.window.style import is_dark
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping
+
+
+@dataclass(frozen=True)
+class Look:
+    """Colours in the light and the dark theme, lengths of dash and gap in widths of the line, and its width in px."""
+
+    light: str
+    dark: str
+    dashes: tuple[float, ...] = ()
+    width: float = 1.5
+
+    @property
+    def colour(self) -> QColor:
+        """The colour in the theme that the system has now."""
+        return QColor(self.dark if is_dark() else self.light)
+
+    @property
+    def pen(self) -> QPen:
+        """What draws the line."""
+        pen = QPen(self.colour, self.width)
+        pen.setCosmetic(True)
+        pen.setCapStyle(Qt.PenCapStyle.FlatCap)
+        if self.dashes:
+            pen.setDashPattern(list(self.dashes))
+        return pen
+
+
+# Okabe & Ito, "Color Universal Design" (2008), darkened or lightened where a line would have less than 3:1.
+LOOKS: Final[Mapping[str, Look]] = MappingProxyType({
+    "sum": Look("#1a1c1e", "#e8e8e6", width=2.2),
+    "acceleration": Look("#0072b2", "#56b4e9"),
+    "gravity": Look("#d55e00", "#f08040", (7, 3)),
+    "applied": Look("#00845f", "#2fbf95", (7, 3, 1.5, 3)),
+    "friction": Look("#a36b00", "#e69f00", (1.5, 2.5)),
+    "losses": Look("#a8548a", "#e29bc4", (4, 2, 1.5, 2, 1.5, 2)),
+    "mean": Look("#5c6066", "#a4a8ad", (12, 4)),
+    "single": Look("#0072b2", "#56b4e9", width=2.0),
+    "continuous": Look("#00845f", "#2fbf95", (7, 3, 1.5, 3)),
+    "peak": Look("#d55e00", "#f08040", (7, 3)),
+})
