@@ -225,6 +225,8 @@ class ResultNumbers(QScrollArea):
         self._column.addStretch(1)
         self.setWidget(inner)
         self._last: CellsView | None = None
+        # It holds the field, which is not to stand about by itself until there is something to show.
+        self._block(STAGES).hide()
 
     def refresh(self) -> None:
         """Show the values of the answer as it is now; the machine has one."""
