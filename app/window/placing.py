@@ -16,7 +16,7 @@ from app.window.view.surface import surface_of
 from core.assembly.placing import frame_of, mass_centre_of, moved, outermost, standing_of, standing_rows
 from core.assembly.seats import seated, seated_in
 from core.errors import MasswrightError
-from core.quantity import MINUS, UNITS, Kind, compact
+from core.quantity import UNITS, Kind, compact
 
 if TYPE_CHECKING:
     from app.window.manner import Manner
@@ -183,7 +183,7 @@ class Placing(QObject):
         told = []
         for axis in axes:
             value = compact(unit.from_si(amount.values[axis]), _DIGITS, decimal_mark=self._session.decimal_mark)
-            sign = "" if value.startswith(MINUS) else "+"
+            sign = "+" if amount.values[axis] > 0 else ""
             told.append(f"{LETTERS[axis]} {sign}{value}{gap}{unit.symbol}")
         its = "its " if self._session.manner.along == "own" else ""
         return f"{'about ' if amount.turning else ''}{its}{', '.join(told)}"

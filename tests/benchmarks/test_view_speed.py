@@ -12,14 +12,16 @@ import pytest
 
 from app.window.view.batch import packed
 from app.window.view.camera import Camera
+from app.window.view.carried import carried
 from app.window.view.opengl import VIEW_VARIABLE, prepare_opengl
 from app.window.view.picking import pick
 from app.window.view.scene import SurfaceStore, scene_of
 from app.window.view.surface import lighter, surface_of
 from core.assembly import Assembly, Part, ShapeBody
+from core.assembly.placing import moved, standing_rows
 from core.facets import Facets
 from core.material import ByDensity
-from core.placement import Pose, Row
+from core.placement import Placement, Pose, Row
 from core.shapes import SHAPES
 
 COUNTS = [10_000, 100_000, 500_000]
@@ -146,6 +148,24 @@ def test_an_edit_in_an_assembly_of_a_thousand_parts(benchmark):
         return packed(scenes[-1], lambda bodies: bodies.surface)
 
     benchmark.pedantic(shown_again, setup=edited, rounds=5)
+
+
+@pytest.mark.parametrize("count", [10, 100, 1000, 10_000])
+def test_a_step_of_a_drag_among_many_parts(benchmark, count):
+    """One part of many follows the pointer: moved in the document, and shown; what stays was packed by the first step."""
+    assembly = many_parts(count)
+    scene = scene_of(assembly, SurfaceStore())
+    steps = iter(range(1, 1000))
+
+    def step():
+        after = moved(assembly, ["p5"], Placement(np.eye(3), [0.0, 0.0, 0.001 * next(steps)]))
+        return packed(carried(scene, standing_rows(after, "p5")), own_surface)
+
+    assert benchmark.pedantic(step, rounds=10, warmup_rounds=1).count == scene.count
+
+
+def own_surface(bodies):
+    return bodies.surface
 
 
 def test_picking_among_a_thousand_copies(benchmark):

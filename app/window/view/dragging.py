@@ -77,8 +77,14 @@ class Drag:
         return Amount(self.grip.kind == "about", (x, y, z))
 
     def _on_axis(self, spot: tuple[float, float]) -> float | None:
+        handles, axis = self.handles, self.grip.axis
         start, direction = self.camera.ray(spot, self.size)
-        return nearest_on_axis(start, direction, self.handles.middle, self.handles.directions[self.grip.axis])
+        along = nearest_on_axis(start, direction, handles.middle, handles.directions[axis])
+        if along is None:
+            return None
+        # Past the point where the axis vanishes in perspective, it is met behind the eye.
+        depth = self.camera.project(handles.middle + along * handles.directions[axis], self.size)[2]
+        return along if self.camera.parallel or depth > 0 else None
 
     def _on_plane(self, spot: tuple[float, float]) -> FloatArray | None:
         start, direction = self.camera.ray(spot, self.size)

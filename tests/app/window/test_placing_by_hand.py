@@ -11,12 +11,13 @@ pytest.importorskip("PySide6.QtWidgets")
 
 from PySide6.QtCore import QEvent, QPointF, Qt
 from PySide6.QtGui import QAction, QMouseEvent
-from PySide6.QtWidgets import QApplication
+from PySide6.QtWidgets import QApplication, QPushButton
 from scipy.spatial.transform import Rotation
 from window_driver import enter, field, solid
 
 from app.window.main import MainWindow
 from app.window.manner import Manner
+from app.window.style import Words
 from app.window.view.dragging import Amount
 from app.window.view.handles import Grip, paths_of
 from app.window.view.opengl import VIEW_VARIABLE, prepare_opengl
@@ -513,6 +514,34 @@ def test_keys_typed_in_the_bar_do_not_turn_the_view(placed, qtbot):
     for key in (Qt.Key.Key_Up, Qt.Key.Key_F, Qt.Key.Key_1, Qt.Key.Key_Down):
         qtbot.keyClick(line, key)
     assert window.view.camera is camera
+
+
+@pytest.mark.gui
+def test_tab_goes_from_the_view_through_the_bar(placed, qtbot):
+    window = placed
+    select(window, "plate")
+    bar = window.placing.bar
+    window.view.setFocus()
+    reached = []
+    for _ in range(3):
+        qtbot.keyClick(QApplication.focusWidget(), Qt.Key.Key_Tab)
+        reached.append(QApplication.focusWidget())
+    button = bar.findChild(QPushButton)
+    assert reached == [field(bar, "step of length"), field(bar, "step of angle"), button]
+
+
+@pytest.mark.gui
+def test_a_step_that_means_nothing_is_refused_below_the_fields_without_widening_the_bar(placed):
+    window = placed
+    select(window, "plate")
+    bar = window.placing.bar
+    width = bar.width()
+    enter(field(bar, "step of length"), "12 kg")
+    QApplication.processEvents()
+    assert bar.isVisible()
+    assert bar.width() == width
+    assert any("measures a mass" in words.text() for words in bar.findChildren(Words) if words.isVisible())
+    assert window.session.manner.length_step == Manner().length_step
 
 
 @pytest.mark.gui

@@ -110,6 +110,16 @@ def test_a_turn_goes_on_beyond_half_a_turn():
     assert values[2] == pytest.approx(np.radians(400), abs=1e-9)
 
 
+def test_past_the_point_where_an_axis_vanishes_a_drag_stays_where_it_was():
+    """The bar runs away from the viewer; from above its vanishing point on, the pointer would mean behind the eye."""
+    camera, grip = Camera(AT, 2.0, -np.pi / 2, 0.25), Grip("along", 1)
+    far = camera.project(AT + np.array([0.0, 1e9, 0.0]), SIZE)[:2]
+    drag = Drag(handles(), grip, camera, SIZE, tuple(camera.project(AT + np.array([0.0, 0.1, 0.0]), SIZE)[:2]))
+    last = drag.values(tuple(far + np.array([0.0, 5.0])), NOTHING)
+    assert last[1] > 10
+    assert drag.values(tuple(far - np.array([0.0, 5.0])), last) == last
+
+
 @pytest.mark.parametrize(("step", "amount"), [(0.005, 0.015), (0.0, 0.0126), (0.001, 0.013)])
 def test_amounts_come_in_whole_steps(step, amount):
     drag = Drag(handles(), Grip("along", 0), CAMERA, SIZE, (0.0, 0.0))
