@@ -10,7 +10,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from core.arrays import ArrayLike, FloatArray
+from core.arrays import ArrayLike, BoolArray, FloatArray
 from core.moments import Moments, inertia_of_spread, spread_of_inertia
 
 # Relative to the largest principal moment, reach or size: what adding and moving may cost in round-off.
@@ -107,6 +107,31 @@ def check_body(
     if reach is not None:
         checks.append(check_gyration(moments, reach, name, tolerance))
     return checks
+
+
+def surely_sound(moments: Moments, volume: FloatArray, bounds: FloatArray) -> BoolArray:
+    """Return of which bodies (n,) check_body finds every check kept; of the others some may be kept, too.
+
+    Args:
+        moments: a batch (n,).
+        volume: (n,) m³; nan where a body has none.
+        bounds: (n, 2, 3) m, lowest and highest corner of the box around each.
+    """
+    mass, centre, spread = moments.mass, moments.centre, moments.spread
+    finite = np.isfinite(mass) & np.isfinite(centre).all(axis=1) & np.isfinite(spread).all(axis=(1, 2)) & (mass > 0)
+    spread = np.where(finite[:, None, None], spread, 0.0)
+    values = np.linalg.eigvalsh(spread)
+    low, high = bounds[:, 0], bounds[:, 1]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        density = mass / volume
+        reach = np.linalg.norm(np.maximum(np.abs(low - centre), np.abs(high - centre)), axis=1)
+        # Held more strictly than one by one: what is near a limit is looked at again there.
+        possible = (values[:, 0] >= -0.1 * ROUND_OFF * values[:, 2]) & (values[:, 2] > 0)
+        gyrates = values[:, 1] + values[:, 2] <= mass * reach**2
+        inside = ((centre >= low) & (centre <= high)).all(axis=1)
+        dense = np.isnan(volume) | ((density > DENSITY_RANGE[0]) & (density < DENSITY_RANGE[1]))
+    symmetric = (spread == np.swapaxes(spread, 1, 2)).all(axis=(1, 2))
+    return np.asarray(finite & symmetric & possible & gyrates & inside & dense)
 
 
 def check_inertia_tensor(

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from core.arrays import ArrayLike, FloatArray, IntArray, frozen
+from core.errors import ValueRefused
 
 
 @dataclass(frozen=True, eq=False)
@@ -31,3 +32,14 @@ class Facets:
     def triangles(self) -> FloatArray:
         """The corner points of every facet, (m, 3, 3) m."""
         return self.points[self.corners]
+
+    @property
+    def box(self) -> FloatArray:
+        """Lowest and highest corner of the box around the surface, (2, 3) m.
+
+        Raises:
+            ValueRefused: a surface without points.
+        """
+        if not len(self.points):
+            raise ValueRefused("a surface without points has no extent")
+        return frozen([self.points.min(axis=0), self.points.max(axis=0)])

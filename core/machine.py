@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import TYPE_CHECKING
 
-from core.assembly import Assembly, Finding, findings_of
+from core.assembly import Assembly, Finding, telling_findings
 from core.assembly.names import values_of
 from core.assembly.seats import seated
 from core.checks import Check
@@ -65,11 +65,11 @@ class Machine:
         return turning_elsewhere(self.assembly, self.drive)
 
     def findings(self) -> tuple[Finding, ...]:
-        """Return every check on the assembly, and then those on the drive where anything is entered about it.
+        """Return what the checks on the assembly tell, and then those on the drive where anything is entered about it.
 
         Looked for anew each time: what is known of a mesh grows.
         """
-        found = findings_of(self.assembly)
+        found = telling_findings(self.assembly)
         if not self.has_drive:
             return found
         return (*found, *(Finding("", "drive", check) for check in self._drive_checks))

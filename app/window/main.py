@@ -140,7 +140,8 @@ class MainWindow(QMainWindow):
         s, a = self.session, self.actions_
         for signal in (s.changed, s.shown_differently, s.file_changed):
             signal.connect(self.refresh)
-        s.selection_changed.connect(self._show_in_view)
+        for signal in (s.settled, s.shown_differently, s.selection_changed):
+            signal.connect(self._show_in_view)
         s.refused.connect(self.notice.say)
         s.said.connect(self._say)
         s.edited.connect(self.notice.clear_refusal)
@@ -204,7 +205,6 @@ class MainWindow(QMainWindow):
         failed = sum(not finding.check.ok for finding in s.findings)
         self.pages.setTabText(self.pages.indexOf(self.checks), f"Checks  {failed}" if failed else "Checks")
         self._show_totals(failed)
-        self._show_in_view()
 
     def _say(self, text: str) -> None:
         """Say what was done, beside the totals, for some seconds."""

@@ -58,6 +58,8 @@ class OverlapWatch(QObject):
         if not assembly.members:
             return
         if len(assembly.table.owner) > MOST_BODIES_WATCHED:
+            if self._session.overlaps is not None and self._session.overlaps.skipped:
+                return
             self._session.show_overlaps(Overlaps((), 0, (), skipped=True))
             return
 

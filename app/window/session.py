@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QObject, Signal
+from PySide6.QtCore import QObject, QTimer, Signal
 
 from app.window.manner import Manner
 from core.assembly import Assembly, Finding, Ledger, Part, ledger_of
@@ -27,11 +27,17 @@ if TYPE_CHECKING:
     from core.quantity import Names
 
 
+# With more parts than this the ledger is shown first, and what follows it this much later.
+FEW_PARTS, SETTLE_MS = 1_000, 30
+
+
 class Session(QObject):
     """The one thing that the parts of the window share.
 
     Signals:
         changed: the document is another one; ledger and findings are those of the new one.
+        settled: the same for what shows much at once, as the view: at once with a document of few parts, with one of
+            thousands as soon as the ledger has been shown.
         edited: the document is another one because of somebody at the window, not of work in the background.
         selection_changed: other lines are selected.
         shown_differently: the same assembly in other units or with another decimal mark.
@@ -44,6 +50,7 @@ class Session(QObject):
     """
 
     changed = Signal()
+    settled = Signal()
     edited = Signal()
     selection_changed = Signal()
     shown_differently = Signal()
@@ -65,6 +72,8 @@ class Session(QObject):
         # What makes a line ready to be shown before it is; the window puts the view's preparation here.
         self.prepare: Callable[[Node], None] = lambda _node: None
         self._saved = self.history.present
+        self._settling = QTimer(self, singleShot=True, interval=SETTLE_MS)
+        self._settling.timeout.connect(self.settled)
         self.ledger: Ledger = ledger_of(self.assembly)
         self.findings: tuple[Finding, ...] = self.machine.findings()
         # Of the assembly as it is now; None until somebody has looked.
@@ -176,8 +185,7 @@ class Session(QObject):
     ) -> None:
         if history.present is self.machine:
             return
-        if history.present.assembly is not self.assembly:
-            self.overlaps = None
+        self._forget_overlaps(history.present.assembly)
         self.history = history
         self.ledger, self.findings = ledger, (*findings, *self._overlap_findings())
         self._after_change(select)
@@ -254,8 +262,7 @@ class Session(QObject):
     def _step(self, history: History, words: str) -> None:
         if history is self.history:
             return
-        if history.present.assembly is not self.assembly:
-            self.overlaps = None
+        self._forget_overlaps(history.present.assembly)
         self.history = history
         self._judge()
         self._after_change(None)
@@ -264,16 +271,29 @@ class Session(QObject):
     def look_again(self) -> None:
         """Judge the same assembly anew: what is known of its meshes has grown."""
         self._judge()
-        self.changed.emit()
+        self._tell_changed()
 
     def show_overlaps(self, overlaps: Overlaps) -> None:
         """Count what a search of this assembly for overlaps found among the findings."""
         self.overlaps = overlaps
         self.look_again()
 
+    def _tell_changed(self) -> None:
+        self.changed.emit()
+        if len(self.assembly.table.parts) <= FEW_PARTS:
+            self._settling.stop()
+            self.settled.emit()
+        else:
+            self._settling.start()
+
     def _judge(self) -> None:
         self.ledger = ledger_of(self.assembly)
         self.findings = (*self.machine.findings(), *self._overlap_findings())
+
+    def _forget_overlaps(self, after: Assembly) -> None:
+        """Drop what was found in an assembly that is another one now; that nobody looks in one so large stays true."""
+        if after is not self.assembly and not (self.overlaps is not None and self.overlaps.skipped):
+            self.overlaps = None
 
     def _overlap_findings(self) -> tuple[Finding, ...]:
         return () if self.overlaps is None else overlap_findings(self.assembly, self.overlaps)
@@ -284,7 +304,7 @@ class Session(QObject):
         moved = kept != self.selected
         self.selected = kept
         self.edited.emit()
-        self.changed.emit()
+        self._tell_changed()
         if moved:
             self.selection_changed.emit()
 
@@ -304,7 +324,7 @@ def judged_document(path: Path) -> Machine:
 def _refusal_of_drive(machine: Machine) -> str:
     """Return the sentence that says why a drive cannot be worked out; "" where it can."""
     try:
-        _ = machine.drive_answer, machine.balance_answer
+        _ = machine.drive_answer
     except MasswrightError as error:
         return str(error)
     return ""

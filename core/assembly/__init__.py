@@ -5,7 +5,7 @@ from core.assembly.axis import DriveAxis
 from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, six_of_tensor, tensor_of_six
 from core.assembly.cuts import MOST_CUT_COPIES, Cut
 from core.assembly.cutting import CUT_AT_ONCE, Cutting
-from core.assembly.findings import Finding, findings_of
+from core.assembly.findings import Finding, findings_of, telling_findings
 from core.assembly.importing import Change, Import, change_of, imported, taken_anew
 from core.assembly.ledger import Ledger, Line, ledger_of
 from core.assembly.mesh_part import MeshComparison, compare_mesh
@@ -42,6 +42,7 @@ __all__ = [
     "ledger_of",
     "six_of_tensor",
     "taken_anew",
+    "telling_findings",
     "tensor_of_six",
     "walk",
 ]

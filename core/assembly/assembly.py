@@ -14,6 +14,8 @@ from core.assembly.nodes import MOST_BODIES, Group, Node, Part, Table, table_of,
 from core.errors import EditRefused
 
 if TYPE_CHECKING:
+    from collections.abc import Mapping
+
     from core.assembly.cuts import Cut
     from core.assembly.names import NamedDimension
     from core.moments import Moments
@@ -161,6 +163,23 @@ class Assembly:
         return tuple(part for part in self.table.parts if part.single is None)
 
     @cached_property
+    def bases(self) -> Mapping[str, str]:
+        """Where the values of each part that counts come from, by its key, as shown beside them.
+
+        In a linked group whose file is missing or has changed all are last values.
+        """
+        bases: dict[str, str] = {}
+        around: list[str] = []
+        for node, depth in walk(self.counted.members):
+            del around[depth:]
+            outer = next((basis for basis in around if basis), "")
+            if isinstance(node, Part):
+                bases[node.key] = outer or node.basis
+            else:
+                around.append(outer or (node.link.basis if node.link is not None else ""))
+        return bases
+
+    @cached_property
     def bounds(self) -> FloatArray | None:
         """Lowest and highest corner of the box around everything, (2, 3) m in the document frame; None when empty."""
         table = self.table
@@ -168,8 +187,7 @@ class Assembly:
             return None
         import numpy as np
 
-        low = np.stack([part.bounds[0] for part in table.parts])[table.owner]
-        high = np.stack([part.bounds[1] for part in table.parts])[table.owner]
+        low, high = np.array([part.bounds for part in table.parts])[table.owner].swapaxes(0, 1)
         # The box around a turned box: its half-widths are |R| times the old ones.
         centre = table.standing.apply(0.5 * (low + high))
         half = np.einsum("nij,nj->ni", np.abs(table.standing.turn), 0.5 * (high - low))

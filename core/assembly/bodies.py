@@ -52,8 +52,8 @@ class ShapeBody:
 
     @cached_property
     def bounds(self) -> FloatArray:
-        """Lowest and highest corner of the box around the surface, (2, 3) m in the part frame."""
-        return bounds_of(self.surface)
+        """Lowest and highest corner of the box around what is drawn, (2, 3) m in the part frame."""
+        return self.shape.box()
 
 
 @dataclass(frozen=True)
@@ -214,14 +214,3 @@ def equal_ellipsoid(moments: Moments, steps: int = 24) -> Facets:
     ball = SHAPES["sphere"].of({"diameter": 2.0}).facets(steps)
     axes = columns * np.sign(np.linalg.det(columns))
     return Facets(moments.centre + (ball.points * semi) @ axes.T, ball.corners)
-
-
-def bounds_of(facets: Facets) -> FloatArray:
-    """Return the lowest and highest corner of the box around a surface, (2, 3) m.
-
-    Raises:
-        ValueRefused: a surface without points.
-    """
-    if not len(facets.points):
-        raise ValueRefused("a surface without points has no extent")
-    return frozen([facets.points.min(axis=0), facets.points.max(axis=0)])

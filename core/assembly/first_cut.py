@@ -7,7 +7,6 @@ from typing import TYPE_CHECKING, Final
 
 import numpy as np
 
-from core.assembly.bodies import bounds_of
 from core.assembly.cuts import Cut
 from core.errors import MasswrightError
 from core.placement import Pose
@@ -36,7 +35,7 @@ def first_cut(assembly: Assembly, part: Part, shape: str) -> Cut:
     """
     low, high = part.bounds
     solid = _sized(SHAPES[shape].of({}), high - low)
-    around = bounds_of(solid.facets())
+    around = solid.box()
     cut = Cut(assembly.fresh_key("c"), assembly.fresh_name(NAMES.get(shape, f"{solid.title} cut")), solid)
     refused: MasswrightError | None = None
     for place in PLACES:
@@ -56,7 +55,7 @@ def _sized(shape: Shape, extent: np.ndarray) -> Shape:
     """Return the shape made smaller or larger to suit a part of this extent (3,) m, and as long as it is high."""
     lengths = {dimension.name for dimension in shape.dimensions if dimension.kind == "length"}
     values = shape.values()
-    factor = SIZE * float(extent.min()) / float(np.ptp(bounds_of(shape.facets()), axis=0).max())
+    factor = SIZE * float(extent.min()) / float(np.ptp(shape.box(), axis=0).max())
     sized = {name: values[name] * factor for name in lengths}
     try:
         return shape.resized({**sized, **{name: float(extent[2]) for name in ALONG if name in lengths}})

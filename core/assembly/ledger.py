@@ -9,7 +9,6 @@ import numpy as np
 
 from core.arrays import FloatArray, IntArray, frozen, settled
 from core.assembly.link import LAST_VALUES
-from core.assembly.linked_groups import bases_of
 from core.assembly.nodes import Group, Part, walk
 from core.moments import Moments, radius_of_gyration
 from core.placement import Placement
@@ -20,6 +19,10 @@ if TYPE_CHECKING:
     from core.assembly.nodes import Table
 
 LineKind: TypeAlias = Literal["part", "cut", "group", "total"]
+
+# The first eight values of a line, and its last two; plain tuples, since there are thousands at every edit.
+_Head: TypeAlias = tuple[tuple[str, str, LineKind, int, int, int, str, str], tuple[bool, bool]]
+_UNKNOWN = (None,) * 6
 
 # How the basis of a value begins that a reader must not take as computed.
 WEAK = ("estimated", "no volume", "not set", LAST_VALUES)
@@ -98,7 +101,7 @@ def _heads(assembly: Assembly) -> tuple[list[_Head], list[tuple[int, int]]]:
     """Return the words of every line and of the foot, and the run of rows of `_sums` that each adds up."""
     heads: list[_Head] = []
     spans: list[tuple[int, int]] = []
-    known = bases_of(assembly)
+    known = assembly.bases
     everything = tuple(known[part.key] for part in assembly.table.parts)
     at, cut_at = 0, len(everything)
     above: list[int] = []
@@ -121,33 +124,18 @@ def _heads(assembly: Assembly) -> tuple[list[_Head], list[tuple[int, int]]]:
             bases = everything[at : at + inside]
             words = (_link_words(node) or _warning(bases), _common_basis(bases))
         spans.append((at, at + inside))
-        heads.append(_Head(node.key, node.name, kind, depth, node.copies.count, above[depth], *words, here, held))
+        heads.append(((node.key, node.name, kind, depth, node.copies.count, above[depth], *words), (here, held)))
         if not isinstance(node, Part):
             continue
         at += inside
         for cut in node.cuts:
             count, times = cut.copies.count, above[depth] * cut.copies.count
-            heads.append(_Head(cut.key, cut.name, "cut", depth + 1, count, times, "cut", words[1], here, held))
+            heads.append(((cut.key, cut.name, "cut", depth + 1, count, times, "cut", words[1]), (here, held)))
             spans.append((cut_at, cut_at + inside))
             cut_at += inside
     foot = (_warning(everything), _common_basis(everything))
-    return [*heads, _Head("", assembly.name, "total", 0, 1, 1, *foot, True, False)], [*spans, (0, len(everything))]
-
-
-@dataclass(frozen=True)
-class _Head:
-    """The words and counts of a line."""
-
-    key: str
-    name: str
-    kind: LineKind
-    depth: int
-    count: int
-    times: int
-    material: str
-    basis: str
-    counts: bool
-    read_only: bool
+    last: _Head = (("", assembly.name, "total", 0, 1, 1, *foot), (True, False))
+    return [*heads, last], [*spans, (0, len(everything))]
 
 
 @dataclass(frozen=True, eq=False)
@@ -190,10 +178,8 @@ def _lines(heads: list[_Head], sums: _Sums) -> list[Line]:
     numbers = (column.tolist() for column in (sums.own, transfer, inertia))
     rows = zip(heads, shown.tolist(), sums.mass.tolist(), centres, *numbers, shares, strict=True)
     lines = []
-    for head, known, *values in rows:
-        words = (head.key, head.name, head.kind, head.depth, head.count, head.times, head.material, head.basis)
-        cells = [*(values if known else [None] * len(values)), head.counts, head.read_only]
-        lines.append(Line(*words, *cells))
+    for (words, said), known, *values in rows:
+        lines.append(Line(*words, *(values if known else _UNKNOWN), *said))
     return lines
 
 

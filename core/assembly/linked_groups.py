@@ -9,12 +9,12 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
-from core.assembly.nodes import Group, Node, Part, walk
+from core.assembly.nodes import Group, Node, walk
 from core.checks import Check
 from core.errors import EditRefused
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Iterator, Mapping
+    from collections.abc import Iterable, Iterator
 
     from core.assembly.assembly import Assembly, MeantOverlap
     from core.assembly.link import Link
@@ -118,23 +118,6 @@ def read_only_here(link: Link, line: str) -> EditRefused:
         f"this line belongs to the linked document {link.file_name}, and is only read here", where=line,
         remedy="Edit it there and read it again, or break the link on the Part page of the group",
     )
-
-
-def bases_of(assembly: Assembly) -> Mapping[str, str]:
-    """Return where the values of each part that counts come from, by its key, as shown beside them.
-
-    In a linked group whose file is missing or has changed all are last values.
-    """
-    bases: dict[str, str] = {}
-    around: list[str] = []
-    for node, depth in walk(assembly.counted.members):
-        del around[depth:]
-        outer = next((basis for basis in around if basis), "")
-        if isinstance(node, Part):
-            bases[node.key] = outer or node.basis
-        else:
-            around.append(outer or (node.link.basis if node.link is not None else ""))
-    return bases
 
 
 def link_checks(assembly: Assembly) -> Iterator[tuple[Group, Check]]:

@@ -9,10 +9,10 @@ from typing import TYPE_CHECKING, TypeAlias
 
 import numpy as np
 
-from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, bounds_of, equal_ellipsoid
+from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, equal_ellipsoid
 from core.assembly.cuts import Cut, check_cuts
 from core.assembly.cutting import CUT_AT_ONCE, Cutting, cutting_of, is_cut_already, surface_without
-from core.assembly.part_checks import checks_of_part
+from core.assembly.part_checks import REMARKS, checks_of_part
 from core.errors import EditRefused
 from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, check_measure
 from core.moments import Moments
@@ -159,7 +159,7 @@ class Part:
         """
         if isinstance(self.body, ShapeBody | MeshBody) and (self.cutting is None or self.cutting.exact):
             return self.body.bounds
-        return bounds_of(self.surface)
+        return self.surface.box
 
     @property
     def measure(self) -> Measure | None:
@@ -187,6 +187,15 @@ class Part:
     def checks(self) -> tuple[Check, ...]:
         """What was checked on one copy, in the order that a reader wants it."""
         return checks_of_part(self)
+
+    @cached_property
+    def telling(self) -> tuple[Check, ...]:
+        """What of its checks a reader has to know: those that failed, and remarks on what was done to its body."""
+        return tuple(check for check in self.checks if not check.ok or check.name in REMARKS)
+
+    def known_sound(self) -> None:
+        """Keep that no check tells anything, for somebody who found that of thousands of parts at once."""
+        self.__dict__["telling"] = ()
 
     @cached_property
     def table(self) -> Table:

@@ -5,7 +5,6 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from core.assembly.linked_groups import bases_of
 from core.assembly.nodes import table_of
 
 if TYPE_CHECKING:
@@ -55,7 +54,7 @@ def selected(assembly: Assembly, key: str | None = None) -> Selection:
         EditRefused: no node has this key.
 
     """
-    basis_of = bases_of(assembly)
+    basis_of = assembly.bases
     if key is None:
         return Selection(assembly.name, assembly.table, basis_of)
     name = assembly.node(key).name

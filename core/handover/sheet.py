@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Final
 
+from core.assembly.part_checks import REMARKS
 from core.handover.lines import (
     FOR_THE_DRIVE,
     MASS_AND_CENTRE,
@@ -32,7 +33,6 @@ MARGIN_CAUTION: Final = (
 )
 NOTHING_WEIGHS: Final = "no part in it has a mass; set a material, a density or a weighed mass"
 _MOST_NAMES: Final = 8
-_SAID: Final = frozenset({"cut", "mends"})
 
 
 @dataclass(frozen=True)
@@ -59,7 +59,7 @@ class Sheet:
         choice: which tensor is shown.
         basis: of the values together.
         sources: where they came from, a line for each basis and each data sheet.
-        checks: every check on what is in it, the failed ones first.
+        checks: on what is in it: those that failed first, then remarks, and of a mesh all others.
         notes: what was noticed, which makes no value wrong.
         cautions: what may make the values wrong or harmful.
 
@@ -97,13 +97,13 @@ def sheet_of_assembly(assembly: Assembly, choice: SheetChoice, unit_set: UnitSet
         EditRefused: no part or group has this key.
 
     """
-    from core.assembly import findings_of, walk
+    from core.assembly import telling_findings, walk
     from core.assembly.selection import selected
 
     selection = selected(assembly, key)
     subject = subject_of_assembly(assembly, key)
     keys = {""} if key is None else {node.key for node, _ in walk((assembly.node(key),))}
-    checks = [finding.check for finding in findings_of(assembly) if key is None or finding.key in keys]
+    checks = [finding.check for finding in telling_findings(assembly) if key is None or finding.key in keys]
     return Sheet(
         title=selection.name,
         entries=lines_of(subject, choice, unit_set),
@@ -153,7 +153,7 @@ def sheet_of_mesh(reading: MeshReading, choice: SheetChoice, unit_set: UnitSet) 
 
 def _remarks(checks: list[Check]) -> tuple[str, ...]:
     """Return what is right but has to be said: a cut that is not all inside, a mesh that was mended."""
-    return tuple(check.text for check in checks if check.ok and check.name in _SAID)
+    return tuple(check.text for check in checks if check.ok and check.name in REMARKS)
 
 
 def failed_first(checks: list[Check]) -> tuple[Check, ...]:

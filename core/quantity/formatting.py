@@ -14,7 +14,8 @@ MINUS: Final = "−"  # U+2212
 NO_VALUE: Final = "–"
 
 # Powers of ten shown in plain decimal notation; beyond them the E-notation is easier to read.
-_SMALLEST_PLAIN: Final = -4
+_SMALLEST_POWER: Final = -4
+SMALLEST_PLAIN: Final = 10.0**_SMALLEST_POWER
 _LARGEST_PLAIN: Final = 6
 _MOST_DECIMALS: Final = 12
 _MOST_DIGITS: Final = 17
@@ -104,7 +105,7 @@ def _rounded(value: float, digits: int) -> str:
     digits = min(max(digits, 1), _MOST_DIGITS)
     mantissa, _, power_text = f"{value:.{digits - 1}e}".partition("e")
     power = int(power_text)
-    if not _SMALLEST_PLAIN <= power <= _LARGEST_PLAIN:
+    if not _SMALLEST_POWER <= power <= _LARGEST_PLAIN:
         return f"{mantissa}E{power}"
     sign = "-" if value < 0 else ""
     figures = mantissa.lstrip("-").replace(".", "")

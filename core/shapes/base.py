@@ -84,6 +84,13 @@ class Shape(ABC):
         a point mass as slender solids of a width of their own.
         """
 
+    def box(self) -> FloatArray:
+        """Return the lowest and highest corner of the box around what is drawn, (2, 3) m; for a single shape only.
+
+        The shapes that machines hold thousands of know theirs without drawing themselves.
+        """
+        return self.facets().box
+
     @abstractmethod
     def marks(self) -> tuple["Mark", ...]:
         """Return where each dimension is measured on the body (part frame, m); for a single shape only."""
@@ -233,6 +240,11 @@ def upright_moments(
     for axis, square in enumerate(mean_squares):
         np.multiply(measure, square, out=spread[..., axis, axis])
     return Moments(np.broadcast_to(measure, batch) if batch else measure, centre, spread)
+
+
+def upright_box(length_x: float, length_y: float, length_z: float) -> FloatArray:
+    """Return the corners (2, 3) of the box of these sizes that is centred in x and y and stands on z = 0; m."""
+    return frozen([(-length_x / 2, -length_y / 2, 0.0), (length_x / 2, length_y / 2, length_z)])
 
 
 def said(value: float, kind: DimensionKind = "length") -> str:

@@ -5,10 +5,10 @@ from typing import ClassVar
 
 import numpy as np
 
-from core.arrays import ArrayLike
+from core.arrays import ArrayLike, FloatArray
 from core.facets import Facets
 from core.moments import Moments
-from core.shapes.base import Dimension, Shape, register, upright_moments
+from core.shapes.base import Dimension, Shape, register, upright_box, upright_moments
 from core.shapes.marks import SIDE, Mark, along_x, along_y, span
 
 # The corners of the unit block in binary order (x fastest), and its faces seen from outside.
@@ -46,6 +46,10 @@ class Box(Shape):
             along_y("length_y", (-y, y), x, 0),
             span("length_z", (x, y, 0), (x, y, z), SIDE),
         )
+
+    def box(self) -> FloatArray:
+        """Return the corners of the block, (2, 3) m."""
+        return upright_box(*(self.single(name) for name in ("length_x", "length_y", "length_z")))
 
     def facets(self, steps: int = 48) -> Facets:  # noqa: ARG002 - a box has nothing round to divide
         """Return the twelve facets of the block, in m."""

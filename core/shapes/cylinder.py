@@ -5,11 +5,11 @@ from typing import ClassVar
 
 import numpy as np
 
-from core.arrays import ArrayLike
+from core.arrays import ArrayLike, FloatArray
 from core.errors import ShapeError
 from core.facets import Facets
 from core.moments import Moments
-from core.shapes.base import Dimension, Shape, first_where, register, said, upright_moments
+from core.shapes.base import Dimension, Shape, first_where, register, said, upright_box, upright_moments
 from core.shapes.marks import ABOVE, Mark, across, along_z
 from core.shapes.round_surface import turned_surface
 
@@ -37,6 +37,10 @@ class Cylinder(Shape):
         """Return where the dimensions are measured."""
         diameter, length = self.values().values()
         return across("diameter", diameter, 0), along_z("length", (0, length), diameter / 2)
+
+    def box(self) -> FloatArray:
+        """Return the corners of the box around the bar, (2, 3) m."""
+        return upright_box(self.single("diameter"), self.single("diameter"), self.single("length"))
 
     def facets(self, steps: int = 48) -> Facets:
         """Return a prism inscribed in the bar, in m, its ends as fans."""
@@ -91,6 +95,10 @@ class Tube(Shape):
             across("bore", bore, length, ABOVE),
             along_z("length", (0, length), outer / 2),
         )
+
+    def box(self) -> FloatArray:
+        """Return the corners of the box around the tube, (2, 3) m."""
+        return upright_box(self.single("outer_diameter"), self.single("outer_diameter"), self.single("length"))
 
     def facets(self, steps: int = 48) -> Facets:
         """Return two nested prisms with ring-shaped ends, in m, all points on the true surface."""

@@ -10,7 +10,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from core.assembly import Assembly, Group, Part, ShapeBody, ledger_of
+from core.assembly import Assembly, Group, Part, ShapeBody, ledger_of, telling_findings
 from core.document import read_document, save_document
 from core.machine import Machine
 from core.material import ByMaterial
@@ -49,20 +49,27 @@ def test_a_dimension_edited_in_an_assembly_of_many_parts(benchmark, count):
         after = assembly.replaced(replace(part, body=ShapeBody(Cylinder(float(next(diameters)), 0.05))))
         _ = after.total
         ledger_of(after)
+        telling_findings(after)
 
     benchmark(edit)
-    benchmark.extra_info["aim"] = "30 ms for 1,000 parts"
+    benchmark.extra_info["aim"] = "30 ms for 1,000 parts, and what is found in them; 100 ms on screen for 10,000"
 
 
 @pytest.mark.parametrize("count", [1000, 10_000])
 def test_a_document_of_many_parts_saved(benchmark, tmp_path, count):
     assembly = assembly_of(count)
-    benchmark(save_document, assembly, tmp_path / "many.masswright")
+    benchmark(save_document, Machine(assembly), tmp_path / "many.masswright")
     benchmark.extra_info["aim"] = "1 s for 10,000 parts"
 
 
 @pytest.mark.parametrize("count", [1000, 10_000])
 def test_a_document_of_many_parts_read_and_added_up(benchmark, tmp_path, count):
     save_document(Machine(assembly_of(count)), tmp_path / "many.masswright")
-    benchmark(lambda: ledger_of(read_document(tmp_path / "many.masswright").assembly))
+
+    def opened() -> None:
+        assembly = read_document(tmp_path / "many.masswright").assembly
+        ledger_of(assembly)
+        telling_findings(assembly)
+
+    benchmark(opened)
     benchmark.extra_info["aim"] = "2 s for 10,000 parts"

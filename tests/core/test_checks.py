@@ -18,9 +18,11 @@ from core.checks import (
     check_inertia_tensor,
     check_mass,
     check_symmetric,
+    surely_sound,
 )
 from core.moments import Moments
 from core.placement import turn_about
+from core.shapes import Cylinder
 
 ORIGIN = np.zeros(3)
 SOURCE = "Compare it with its source: decimal point, unit, sign, and the point and frame it is about."
@@ -347,3 +349,32 @@ def test_a_stated_inertia_below_the_one_about_the_centre_is_named():
 def test_numbers_that_differ_late_are_shown_with_the_digits_that_differ():
     (text,) = failing(check_body(body(1.0, [1.0, 1.0, 2.00001]), name="disc"))
     assert "2.00001 is more than 1 + 1 = 2 kg·m²" in text
+
+
+@given(st.lists(realisable_moments(), min_size=1, max_size=5), st.floats(1e-9, 1e3), st.floats(0.01, 10))
+def test_a_body_found_surely_sound_among_many_keeps_every_check_alone(bodies, volume, size):
+    bounds = np.stack([np.stack([one.centre - size, one.centre + size]) for one in bodies])
+    volumes = np.array([np.nan if at % 2 else volume for at in range(len(bodies))])
+    batch = Moments(
+        np.array([one.mass for one in bodies]), np.array([one.centre for one in bodies]),
+        np.array([one.spread for one in bodies]),
+    )
+    for at, sound in enumerate(surely_sound(batch, volumes, bounds)):
+        alone = check_body(
+            bodies[at], name="body", volume=None if np.isnan(volumes[at]) else volume, bounds=bounds[at]
+        )
+        if sound:
+            assert all(check.ok for check in alone), alone
+
+
+def test_plain_machine_parts_are_found_surely_sound_and_impossible_ones_are_not():
+    bar = Cylinder(0.05, 0.2)
+    steel = bar.moments().with_mass(7850.0 * float(bar.moments().mass))
+    gold = bar.moments().with_mass(50_000.0 * float(bar.moments().mass))
+    away = steel.mapped(np.eye(3), [0.0, 0.0, 5.0])
+    batch = Moments(
+        np.array([one.mass for one in (steel, gold, away)]), np.array([one.centre for one in (steel, gold, away)]),
+        np.array([one.spread for one in (steel, gold, away)]),
+    )
+    volume = np.full(3, float(bar.moments().mass))
+    assert surely_sound(batch, volume, np.stack([bar.box()] * 3)).tolist() == [True, False, False]

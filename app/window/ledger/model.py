@@ -4,7 +4,16 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QAbstractItemModel, QAbstractTableModel, QMimeData, QModelIndex, QPersistentModelIndex, Qt
+import numpy as np
+from PySide6.QtCore import (
+    QAbstractItemModel,
+    QAbstractTableModel,
+    QMimeData,
+    QModelIndex,
+    QPersistentModelIndex,
+    Qt,
+    Signal,
+)
 
 from app.window.ledger import edits
 from app.window.ledger.columns import COLUMNS, INDEX
@@ -13,6 +22,7 @@ from core.assembly import Assembly, Group, Line
 from core.assembly.linked_groups import held_by, read_only_here
 from core.errors import EditRefused
 from core.quantity import UNITS, Kind
+from core.quantity.formatting import SMALLEST_PLAIN
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Sequence
@@ -28,7 +38,14 @@ EDITABLE = frozenset({INDEX["name"], INDEX["count"], INDEX["material"], INDEX["m
 
 
 class LedgerModel(QAbstractItemModel):
-    """Lines as a tree; row order is the document's, or by share where that was asked for."""
+    """Lines as a tree; row order is the document's, or by share where that was asked for.
+
+    Signals:
+        reworded: every text is another one. Qt's own signal would have the view ask about all lines, not only about
+            those in sight.
+    """
+
+    reworded = Signal()
 
     def __init__(self, session: Session) -> None:
         super().__init__(session)
@@ -60,11 +77,7 @@ class LedgerModel(QAbstractItemModel):
     def refresh_texts(self) -> None:
         """Tell the views that every text is another one."""
         self._tails.clear()
-        if self._lines:
-            for rows in self._children:
-                if rows:
-                    first, last = self._index(rows[0], 0), self._index(rows[-1], len(COLUMNS) - 1)
-                    self.dataChanged.emit(first, last)
+        self.reworded.emit()
         self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(COLUMNS) - 1)
 
     def sort_by_share(self, wanted: bool) -> None:
@@ -114,9 +127,9 @@ class LedgerModel(QAbstractItemModel):
     def longest_tail(self, column: int) -> int:
         """Return how many characters stand behind the decimal mark in the longest number of a column."""
         if column not in self._tails:
-            lines = (*self._lines, self.session.ledger.total)
+            lines = _with_longest_tails(self.session, (*self._lines, self.session.ledger.total), column)
             texts = (cell_text(self.session, line, column, Qt.ItemDataRole.DisplayRole) for line in lines)
-            self._tails[column] = max(len(text.partition(self.session.decimal_mark)[2]) for text in texts)
+            self._tails[column] = max((len(text.partition(self.session.decimal_mark)[2]) for text in texts), default=0)
         return self._tails[column]
 
     def index(self, row: int, column: int, parent: Index = QModelIndex()) -> QModelIndex:
@@ -335,6 +348,20 @@ def moved_lines(assembly: Assembly, keys: list[str], group: str | None, row: int
         at = None if before is None else [node.key for node in members].index(before)
         assembly = assembly.moved(key, group, at)
     return assembly
+
+
+def _with_longest_tails(session: Session, lines: tuple[Line, ...], column: int) -> list[Line]:
+    """Return the few lines among which is the number of a column with the most characters behind its decimal mark.
+
+    With so many significant digits that is the smallest that is written without an exponent, or the one of the
+    longest exponent: the smallest or the largest of all.
+    """
+    found = [COLUMNS[column].shown_of(session, line) for line in lines]
+    sizes = np.abs(np.array([value if isinstance(value, float) else 0.0 for value in found]))
+    plain = SMALLEST_PLAIN * _unit(session, column).factor
+    above, below = np.where(sizes >= plain, sizes, np.inf), np.where(sizes < plain, sizes, 0.0)
+    smallest = np.where(sizes > 0, sizes, np.inf)
+    return [lines[int(at)] for at in (above.argmin(), below.argmax(), smallest.argmin(), sizes.argmax())]
 
 
 def cell_to_copy(session: Session, line: Line, column: int) -> float | int | str:

@@ -63,6 +63,7 @@ class LedgerTree(QTreeView):
         self.setContextMenuPolicy(Qt.ContextMenuPolicy.CustomContextMenu)
         self.expandAll()
         self.lines.modelReset.connect(self._restore)
+        self.lines.reworded.connect(self.viewport().update)
         self.collapsed.connect(lambda index: self._closed.add(self.lines.line(index).key))
         self.expanded.connect(lambda index: self._closed.discard(self.lines.line(index).key))
         self.entered.connect(lambda index: self.hovered.emit(self.lines.line(index).key))

@@ -18,13 +18,16 @@ from PySide6.QtWidgets import (
 
 from app.window.pages.overlap_row import OverlapRow
 from app.window.style import GRID, Words, colours, icon
+from app.window.tasks import Task
+from core.assembly import Finding, findings_of
 
 if TYPE_CHECKING:
     from app.window.session import Session
-    from core.assembly import Finding
 
 KEY = Qt.ItemDataRole.UserRole
 WORD, PART, TEXT = range(3)
+# Nobody reads more lines than this; of an assembly of more parts than that, sound checks are made in a worker.
+MOST_LISTED, FEW_PARTS = 500, 200
 
 
 class WrappedText(QStyledItemDelegate):
@@ -51,6 +54,7 @@ class ChecksPage(QWidget):
         self.setAttribute(Qt.WidgetAttribute.WA_StyledBackground, True)
         self._session = session
         self._unfolded = False
+        self._fold: QTreeWidgetItem | None = None
         self.head = Words()
         self.list = QTreeWidget()
         self.list.setAccessibleName("Checks")
@@ -73,33 +77,54 @@ class ChecksPage(QWidget):
         self.list.currentItemChanged.connect(lambda item, _before: self._offer(item))
         self.list.itemClicked.connect(self._go)
         self.list.itemActivated.connect(self._go)
-        self.list.itemExpanded.connect(self._unfold)
-        self.list.itemCollapsed.connect(self._fold)
-        session.changed.connect(self.refresh)
+        self.list.itemExpanded.connect(self._list_sound)
+        self.list.itemExpanded.connect(lambda _item: self._keep_fold(unfolded=True))
+        self.list.itemCollapsed.connect(lambda _item: self._keep_fold(unfolded=False))
+        session.settled.connect(self.refresh)
         self.refresh()
 
     def refresh(self) -> None:
         """Show the findings on the assembly as it is now."""
-        findings = self._session.findings
-        failed = [finding for finding in findings if not finding.check.ok]
-        sound = [finding for finding in findings if finding.check.ok]
+        session = self._session
+        failed = [finding for finding in session.findings if not finding.check.ok]
         self.list.clear()
         self._offer(None)
-        for finding in failed:
-            self.list.addTopLevelItem(_item(finding, "look", "failed"))
-        if sound:
-            fold = QTreeWidgetItem([f"{len(sound)} sound", "", "What was checked and found right."])
-            fold.setIcon(WORD, icon("sound", "sound"))
-            # A large document has thousands of sound ones: they are listed when they are asked for.
-            fold.setChildIndicatorPolicy(QTreeWidgetItem.ChildIndicatorPolicy.ShowIndicator)
-            self.list.addTopLevelItem(fold)
-            fold.setExpanded(self._unfolded)
-        if not findings:
+        self.list.addTopLevelItems([_item(finding, "look", "failed") for finding in failed[:MOST_LISTED]])
+        if len(failed) > MOST_LISTED:
+            self.list.addTopLevelItem(_left_over(len(failed)))
+        if not session.assembly.members:
             self.head.setText("Nothing to check yet: add a part, and its mass, inertia and mesh are checked here.")
-        elif failed:
+            return
+        self._fold = QTreeWidgetItem(["sound", "", "What was checked and found right."])
+        self._fold.setIcon(WORD, icon("sound", "sound"))
+        self._fold.setChildIndicatorPolicy(QTreeWidgetItem.ChildIndicatorPolicy.ShowIndicator)
+        self.list.addTopLevelItem(self._fold)
+        if failed:
             self.head.setText(f"{counted(len(failed))} a look. A click goes to the part.")
         else:
-            self.head.setText(f"All {len(sound)} checks are sound.")
+            self.head.setText("All checks are sound.")
+        self._fold.setExpanded(self._unfolded)
+
+    def _list_sound(self, fold: QTreeWidgetItem) -> None:
+        """List the sound checks of the assembly as it is, which for thousands of parts are worked out in a worker."""
+        assembly, look = self._session.assembly, self._session.findings
+        if fold is not self._fold or fold.childCount():
+            return
+
+        def done(every: tuple[Finding, ...]) -> None:
+            if fold is not self._fold or assembly is not self._session.assembly:
+                return
+            told = [finding for finding in look if finding.check.ok and finding not in every]
+            sound = [finding for finding in (*every, *told) if finding.check.ok]
+            fold.setText(WORD, f"{len(sound)} sound")
+            fold.addChildren([_item(finding, "sound", "sound") for finding in sound[:MOST_LISTED]])
+            if len(sound) > MOST_LISTED:
+                fold.addChild(_left_over(len(sound)))
+
+        if len(assembly.table.parts) <= FEW_PARTS:
+            done(findings_of(assembly))
+        else:
+            Task(self, lambda _progress: findings_of(assembly), done, self._session.refused.emit)
 
     def changeEvent(self, event: QEvent) -> None:
         """Follow a change of theme."""
@@ -115,15 +140,8 @@ class ChecksPage(QWidget):
             QGuiApplication.clipboard().setText(text)
         return text
 
-    def _unfold(self, fold: QTreeWidgetItem) -> None:
-        """List what is sound."""
-        self._unfolded = True
-        if not fold.childCount():
-            sound = [finding for finding in self._session.findings if finding.check.ok]
-            fold.addChildren([_item(finding, "sound", "sound") for finding in sound])
-
-    def _fold(self, _fold: QTreeWidgetItem) -> None:
-        self._unfolded = False
+    def _keep_fold(self, *, unfolded: bool) -> None:
+        self._unfolded = unfolded
 
     def _offer(self, item: QTreeWidgetItem | None) -> None:
         """Offer what can be done about an overlap, while one is chosen."""
@@ -139,6 +157,11 @@ class ChecksPage(QWidget):
 def counted(failed: int) -> str:
     """Return "1 check needs" or "3 checks need"."""
     return f"{failed} check needs" if failed == 1 else f"{failed} checks need"
+
+
+def _left_over(count: int) -> QTreeWidgetItem:
+    """Return the line that says how many more there are than are listed."""
+    return QTreeWidgetItem(["", "", f"… and {count - MOST_LISTED} more; the first {MOST_LISTED} are listed."])
 
 
 def _item(finding: Finding, word: str, role: str) -> QTreeWidgetItem:

@@ -78,7 +78,7 @@ class SheetPage(QWidget):
         self.table.selectionModel().selectionChanged.connect(lambda *_: self._leave_variants())
         for field in (self.of, self.about, self.along, self.products):
             field.chosen.connect(lambda _value: self.refresh())
-        for signal in (session.changed, session.selection_changed, session.shown_differently):
+        for signal in (session.settled, session.selection_changed, session.shown_differently):
             signal.connect(self.refresh)
         self.refresh()
 

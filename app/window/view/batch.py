@@ -183,6 +183,43 @@ def _own_batch(index: int, bodies: Bodies, surface: Surface, centre: FloatArray)
 
 
 def _merged(entries: list[tuple[int, Bodies, Surface]], centre: FloatArray) -> Batch:
+    alike = [entry for entry in entries if not entry[1].whole]
+    entries = [entry for entry in entries if entry[1].whole]
+    batches = [_joined_batch(entries, centre)] if entries else []
+    return _one_batch([*batches, _alike(alike, centre)]) if alike else batches[0]
+
+
+def _one_batch(batches: list[Batch]) -> Batch:
+    starts = np.cumsum([0, *(len(batch.vertices) for batch in batches[:-1])]).astype(np.uint32)
+    return Batch(
+        np.concatenate([batch.vertices for batch in batches]), np.concatenate([batch.normals for batch in batches]),
+        np.concatenate([batch.faces + start for batch, start in zip(batches, starts, strict=True)]),
+        np.concatenate([batch.owner for batch in batches]), np.eye(4)[None], all(batch.closed for batch in batches),
+    )
+
+
+def _alike(entries: list[tuple[int, Bodies, Surface]], centre: FloatArray) -> Batch:
+    """Return bodies whose surfaces share their faces and normals, all laid out at once."""
+    first = entries[0][2]
+    copies = np.array([len(bodies.shift) for _, bodies, _ in entries])
+    turn = np.concatenate([bodies.turn for _, bodies, _ in entries])
+    shift = np.concatenate([bodies.shift for _, bodies, _ in entries]) - centre
+    middles = np.repeat(np.array([surface.middle for _, _, surface in entries]), copies, axis=0)
+    places = (np.einsum("nij,nj->ni", turn, middles) + shift).astype(np.float32)
+    back = np.swapaxes(turn, 1, 2).astype(np.float32)
+    corners = np.repeat(np.array([surface.vertices for _, _, surface in entries]), copies, axis=0)
+    mirrored = np.linalg.det(turn) < 0
+    faces = np.broadcast_to(first.faces, (len(turn), *first.faces.shape)).copy()
+    faces[mirrored] = faces[mirrored][:, :, ::-1]
+    faces += (len(first.vertices) * np.arange(len(turn), dtype=np.uint32))[:, None, None]
+    owner = np.repeat(np.array([index for index, _, _ in entries]), copies * len(first.vertices))
+    return Batch(
+        (corners @ back + places[:, None]).reshape(-1, 3), (first.normals @ back).reshape(-1, 3),
+        faces.reshape(-1, 3), owner, np.eye(4)[None], first.closed,
+    )
+
+
+def _joined_batch(entries: list[tuple[int, Bodies, Surface]], centre: FloatArray) -> Batch:
     laid = [bodies.faces_of(surface) for _, bodies, surface in entries]
     sizes = np.array([len(piece.vertices) for piece in laid])
     counts = np.array([len(piece.faces) for piece in laid])
@@ -199,7 +236,8 @@ def _merged(entries: list[tuple[int, Bodies, Surface]], centre: FloatArray) -> B
 
 
 def _lines(scene: Scene, surface_for: Callable[[Bodies], Surface]) -> Lines:
-    entries = [(index, bodies, surface_for(bodies)) for index, bodies in enumerate(scene.everybody)]
+    whole = ((index, bodies) for index, bodies in enumerate(scene.everybody) if bodies.whole)
+    entries = [(index, bodies, surface_for(bodies)) for index, bodies in whole]
     left, rimmed = MOST_RIMS, []
     for entry in entries:
         count = len(entry[2].rims) * len(entry[1].shift)

@@ -268,6 +268,8 @@ class ViewPane(QWidget):
                 self._picture = replace(self._picture, camera=camera)
         self._picture = replace(self._picture, moving=moving)
         cast("Canvas", self.canvas).show_picture(self._picture)
+        said = (cast("Canvas", self.canvas).note, self.scene.note)
+        self._overlay.note = " · ".join(note for note in said if note)
         self._overlay.show_picture(self._picture)
         if moving:
             self._rest.start()

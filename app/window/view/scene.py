@@ -13,13 +13,14 @@ from weakref import WeakKeyDictionary
 
 import numpy as np
 
+from app.window.view.crowd import box_surface, drawn_whole
 from app.window.view.laid import LaidFaces, LaidLines, laid_faces, laid_lines
 from app.window.view.surface import Surface, surface_of
 from core.arrays import FloatArray, frozen
 from core.moments import radius_of_gyration
 
 if TYPE_CHECKING:
-    from core.assembly import Assembly, DriveAxis, Part
+    from core.assembly import Assembly, DriveAxis, Part, Table
     from core.facets import Facets
     from core.moments import Moments
 
@@ -39,6 +40,7 @@ class Bodies:
         surface: of one copy, in the part frame.
         turn, shift: (n, 3, 3) and (n, 3) m, placements tf_document_part of the copies.
         tint: a small number that parts of the same material share.
+        whole: whether the surface is the part's own, not only the box around it.
 
     What is worked out from these is kept, and with it through every edit that leaves the part alone.
     """
@@ -49,6 +51,7 @@ class Bodies:
     turn: FloatArray
     shift: FloatArray
     tint: int = 0
+    whole: bool = True
     _faces: dict[int, LaidFaces] = field(default_factory=dict, init=False, repr=False)
     _lines: dict[int, LaidLines] = field(default_factory=dict, init=False, repr=False)
 
@@ -117,6 +120,7 @@ class Scene:
         bounds: (2, 3) m around all bodies; None when there is none.
         axis: the drive axis, as long as it is drawn; None in an empty scene.
         other_axes: the document's other axes, drawn lighter; what they pass by is not fitted to them.
+        table: what the bodies were made of, to tell what stays in the next scene.
         mass_centre: (3,) m; None while no mass is known.
         principal: three arrows from the centre of mass, as long as the radii of gyration.
 
@@ -129,11 +133,18 @@ class Scene:
     mass_centre: FloatArray | None = None
     principal: tuple[Line, ...] = ()
     other_axes: tuple[Line, ...] = ()
+    table: Table | None = None
 
     @cached_property
     def everybody(self) -> tuple[Bodies, ...]:
         """The bodies, and the ghost where there is one."""
         return self.bodies if self.ghost is None else (*self.bodies, self.ghost)
+
+    @property
+    def note(self) -> str:
+        """What a person who looks has to know of how it is drawn; "" for nothing."""
+        boxed = sum(not bodies.whole for bodies in self.bodies)
+        return f"The {boxed} smallest parts are drawn as boxes" if boxed else ""
 
     @cached_property
     def count(self) -> int:
@@ -145,14 +156,21 @@ class Scene:
         """Points (n, 3) m that are in the picture when the whole scene is; a unit box when it is empty."""
         if self.bounds is None:
             return np.array([[x, y, z] for x in (-0.1, 0.1) for y in (-0.1, 0.1) for z in (-0.1, 0.1)])
-        few = sum(len(bodies.surface.vertices) * len(bodies.shift) for bodies in self.everybody) <= _MOST_FITTED
-        points = [
-            bodies.faces_of(bodies.surface).vertices + bodies.anchor if few else bodies.box_corners
-            for bodies in self.everybody
-        ]
+        points = self._corners()
         marks = [self.axis, *self.principal]
         points += [np.stack([mark.start, mark.end]) for mark in marks if mark is not None]
         return np.concatenate(points)
+
+    def _corners(self) -> list[FloatArray]:
+        """Return points (n, 3) m around the bodies: the fewer there are, the closer."""
+        assert self.bounds is not None
+        if not all(bodies.whole for bodies in self.everybody):
+            return [np.array([self.bounds[list(corner), range(3)] for corner in np.ndindex(2, 2, 2)])]
+        few = sum(len(bodies.surface.vertices) * len(bodies.shift) for bodies in self.everybody) <= _MOST_FITTED
+        return [
+            bodies.faces_of(bodies.surface).vertices + bodies.anchor if few else bodies.box_corners
+            for bodies in self.everybody
+        ]
 
     @cached_property
     def centre(self) -> FloatArray:
@@ -208,6 +226,7 @@ def scene_of(assembly: Assembly, store: SurfaceStore, ghost: Part | None = None,
         frozen(assembly.total.centre) if has_mass else None,
         arrows,
         tuple(lines.values()),
+        assembly.table,
     )
 
 
@@ -216,16 +235,33 @@ def _bodies(assembly: Assembly, store: SurfaceStore, before: Scene) -> tuple[Bod
     table = assembly.table
     tints: dict[str, int] = {}
     bodies = []
-    for part, rows in zip(table.parts, table.rows_by_part, strict=True):
-        if len(rows) and len(part.surface.corners):
-            tint = tints.setdefault(part.driver.label, len(tints))
-            surface = store.of(part.surface)
-            turn, shift = table.standing.turn[rows], table.standing.shift[rows]
-            old = known.get(part.key)
-            if old is None or old.name != part.name or not old.still_stands(surface, turn, shift, tint):
-                old = Bodies(part.key, part.name, surface, turn, shift, tint)
+    rows_whole = zip(table.parts, table.rows_by_part, drawn_whole(table), strict=True)
+    for (part, rows, whole), stayed in zip(rows_whole, _stayed(table, before.table), strict=True):
+        if not len(rows) or (whole and not len(part.surface.corners)):
+            continue
+        tint = tints.setdefault(part.driver.label, len(tints))
+        old = known.get(part.key)
+        if stayed and old is not None and old.tint == tint and old.whole == whole:
             bodies.append(old)
+            continue
+        surface = store.of(part.surface) if whole else box_surface(part.bounds)
+        turn, shift = table.standing.turn[rows], table.standing.shift[rows]
+        if old is None or old.name != part.name or not old.still_stands(surface, turn, shift, tint):
+            old = Bodies(part.key, part.name, surface, turn, shift, tint, whole)
+        bodies.append(old)
     return tuple(bodies)
+
+
+def _stayed(table: Table, before: Table | None) -> list[bool]:
+    """Return which parts of a table are the same and stand where they stood in the one before."""
+    if before is None or len(before.parts) != len(table.parts) or not np.array_equal(before.owner, table.owner):
+        return [False] * len(table.parts)
+    moved = (table.standing.shift != before.standing.shift).any(axis=1)
+    moved |= (table.standing.turn != before.standing.turn).any(axis=(1, 2))
+    stood = np.bincount(table.owner[moved], minlength=len(table.parts)) == 0
+    return [
+        still and part is old for still, part, old in zip(stood.tolist(), table.parts, before.parts, strict=True)
+    ]
 
 
 def _bounds(everybody: tuple[Bodies, ...]) -> FloatArray:

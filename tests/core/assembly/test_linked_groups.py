@@ -15,7 +15,6 @@ from core.assembly.assembly import MeantOverlap
 from core.assembly.link import Link
 from core.assembly.linked_groups import (
     LinkedDocument,
-    bases_of,
     check_linked_lines,
     held_by,
     with_link_read,
@@ -258,7 +257,7 @@ def test_a_changed_file_is_a_failed_check_until_it_is_read_again() -> None:
     (finding,) = linked_findings(assembly)
     assert finding[1] is False
     assert finding[2].startswith("fixture: the linked file /parts/fixture.masswright has changed; the values of before")
-    assert bases_of(assembly)["g1/p2"] == "last values: linked file has changed"
+    assert assembly.bases["g1/p2"] == "last values: linked file has changed"
     fresh = document(fixture(), "b")
     fresh.link.note("b" * 64)
     assert linked_findings(with_link_read(assembly, "g1", fresh)) == [

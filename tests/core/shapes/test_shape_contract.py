@@ -130,6 +130,17 @@ def test_any_body_can_exist_and_scales(key: str, data: st.DataObject, factor: fl
     assert_same_body(enlarged(shape, factor).moments(), scaled, rel=1e-12)
 
 
+@pytest.mark.parametrize("key", list(SHAPES))
+@given(data=st.data())
+@settings(max_examples=5)
+def test_the_box_of_a_body_is_that_of_its_surface(key: str, data: st.DataObject):
+    shape = data.draw(shapes_of(key))
+    points = shape.facets().points
+    size = float(np.ptp(points, axis=0).max())
+    np.testing.assert_allclose(shape.box(), [points.min(axis=0), points.max(axis=0)], rtol=0, atol=1e-15 * size)
+
+
+
 @every_key
 @settings(max_examples=10)
 @given(data=st.data())
