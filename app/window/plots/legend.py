@@ -26,6 +26,7 @@ class Legend(QWidget):
         self._graph: Graph | None = None
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
         self.setAccessibleName("Legend")
+        self._fold()
 
     def show_graph(self, graph: Graph | None) -> None:
         """Name the lines and signs of a graph."""

@@ -369,3 +369,12 @@ def test_words_icons_and_checks_follow_a_change_of_theme(filled, dressed, monkey
         style._repaint(dressed)
     QApplication.processEvents()
     assert filled.sheet.told.styleSheet() == light
+
+
+@pytest.mark.parametrize(("width", "height", "least"), [(1400, 880, 300), (1280, 720, 180)])
+def test_no_page_takes_the_room_of_the_ledger(filled, width, height, least):
+    filled.resize(width, height)
+    for at in range(filled.pages.count()):
+        filled.pages.setCurrentIndex(at)
+        QApplication.processEvents()
+        assert filled.ledger.height() >= least, filled.pages.tabText(at)
