@@ -11,6 +11,7 @@ import pytest
 pytest.importorskip("PySide6.QtWidgets")
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
+from PySide6.QtWidgets import QApplication
 from window_driver import choose, clipboard, enter, field, pasted, solid, trigger
 
 from app.window.pages.balance.page import INPUTS, PLOT, VALUES
@@ -145,6 +146,26 @@ def test_a_named_dimension_in_a_station_follows_its_name(window, page):
     assert page.planes[0].station.line.text() == "end/2"
 
 
+def test_tab_goes_down_the_fields_of_the_rotor_and_then_of_the_corrections(window):
+    page = show(window, BalanceSettings(speed=3000 * RPM, grade=6.3, bearings=(0.0, 0.2), planes=TWO))
+    wanted_order = [
+        page.switch.buttons[INPUTS], page.copy_all, page.rotor.shaft, page.rotor.speed.line, page.rotor.grade,
+        page.bearings.first.line, page.bearings.second.line, page.bearings.take, page.planes[0].station.line,
+        page.planes[0].take, page.planes[0].radius.line, page.planes[1].station.line, page.planes[1].take,
+        page.planes[1].radius.line, page.more.by, page.correct.as_, page.correct.add,
+    ]
+    wanted_order[0].setFocus()
+    reached = []
+    for _ in wanted_order:
+        reached.append(QApplication.focusWidget())
+        QTest.keyClick(reached[-1], Qt.Key.Key_Tab)
+    assert reached == wanted_order
+    page.show_view(PLOT)
+    page.copy_all.setFocus()
+    QTest.keyClick(page.copy_all, Qt.Key.Key_Tab)
+    assert QApplication.focusWidget() is page.plot.plot
+
+
 # --- what is shown ---------------------------------------------------------------------------------------------------
 
 
@@ -254,6 +275,8 @@ def test_holes_are_drilled_into_the_part_chosen_and_taken_back_in_one_step(windo
     assert [cut.name for cut in window.session.assembly.node("drum").cuts] == ["balance hole", "balance hole 2"]
     assert amount(window) <= 1e-11 * before
     assert not page.correct.stop.isVisible()
+    depths = [f"{cut.shape.single('length') * 1000:.4g} mm" for cut in window.session.assembly.node("drum").cuts]
+    assert window.told.toolTip() == f"Drilled {' and '.join(depths)} deep; static unbalance now 0 g·mm"
     window.undo()
     assert window.session.assembly.node("drum").cuts == ()
 
