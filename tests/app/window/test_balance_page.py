@@ -11,12 +11,13 @@ import pytest
 pytest.importorskip("PySide6.QtWidgets")
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QApplication
+from PySide6.QtWidgets import QAbstractButton, QApplication, QWidget
 from window_driver import choose, clipboard, enter, field, pasted, solid, trigger
 
 from app.window.pages.balance.page import INPUTS, PLOT, VALUES
 from app.window.pages.balance.polar import PolarMark, PolarPicture, circles_of, is_drawn, reach_of
 from app.window.pages.values import COPY
+from app.window.style import Words
 from core.assembly import Assembly
 from core.drive import BalanceSettings, CorrectionPlane, DriveSettings
 from core.handover import Entry
@@ -97,7 +98,7 @@ def test_a_grade_without_a_speed_is_refused_below_the_choice(window, page):
 def test_a_grade_of_ones_own_is_typed(window, page):
     enter(field(page, "service speed"), "3000")
     choose(page.rotor.grade, "own number")
-    enter(field(page, "own grade, mm/s"), "4")
+    enter(field(page, "grade, mm/s"), "4")
     assert wanted(window).grade == 4.0
     assert page.rotor.grade.currentText() == "own number"
     choose(page.rotor.grade, "none")
@@ -380,3 +381,33 @@ def test_a_permitted_circle_is_drawn_where_it_can_be_told():
         return is_drawn(picture, picture.marks[0])
 
     assert [drawn(each) for each in (0.1, 1.0, 20.0, 30.0)] == [False, True, True, False]
+
+
+EVERYTHING = BalanceSettings(speed=3000 * RPM, grade=4.0, bearings=(0.0, 0.2), planes=TWO)
+
+
+@pytest.mark.parametrize("by", ["adding", "removing"])
+@pytest.mark.parametrize("size", [(1280, 720), (1400, 880)])
+def test_no_words_are_cut_off_and_every_control_has_a_name(window, by, size):
+    window.resize(*size)
+    page = show(window, replace(EVERYTHING, by=by))
+    for view in (INPUTS, VALUES, PLOT):
+        page.show_view(view)
+        QApplication.processEvents()
+        assert clipped(page) == []
+        assert [each for each in page.findChildren(QWidget) if is_met(each) and not each.accessibleName()] == []
+    assert page._views.widget(INPUTS).widget().minimumSizeHint().width() <= page._views.width()
+
+
+def clipped(page: BalancePage) -> list[str]:
+    """The labels and buttons whose words do not fit into them."""
+    seen = [each for each in page.findChildren(QWidget) if each.isVisible() and isinstance(each, (Words, QAbstractButton))]
+    wrapped = [each for each in seen if isinstance(each, Words) and each.wordWrap()]
+    tight = [each.text() for each in wrapped if each.text() and each.heightForWidth(each.width()) > each.height() + 1]
+    return tight + [each.text() for each in seen if each not in wrapped and each.minimumSizeHint().width() > each.width() + 1]
+
+
+def is_met(widget: QWidget) -> bool:
+    """Whether Tab stops there; a button reads out its words."""
+    stops = widget.isVisible() and bool(widget.focusPolicy() & Qt.FocusPolicy.TabFocus)
+    return stops and not (isinstance(widget, QAbstractButton) and widget.text())

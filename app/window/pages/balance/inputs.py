@@ -90,7 +90,7 @@ class RotorSection(BalanceSection):
             "Balance quality grade of ISO 21940-11: the speed e·ω that the centre of mass may have, in mm/s.",
         )
         self._refused = self.refusal()
-        self.own = self.open_number("own grade, mm/s", "grade", "none", "A grade of your own, e·ω in mm/s.")
+        self.own = self.open_number("grade, mm/s", "grade", "none", "A grade of your own, e·ω in mm/s.")
         self.grade.chosen.connect(self._choose_grade)
         self._own_wanted = False
 
