@@ -186,6 +186,9 @@ class PlaneSection(BalanceSection):
         self.form.setVisible(len(self.wanted.planes) > self._at)
 
     def _take_away(self) -> None:
+        # What is being typed belongs to the plane that goes; the next one takes its place here.
+        for field in (self.station, self.radius):
+            field.restore()
         words = f"Take correction plane {self._at + 1} away"
         self.attempt_in_place(self._refused, words, lambda settings: without_item(settings, PLANES, self._at))
 
