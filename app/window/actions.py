@@ -127,6 +127,8 @@ class Actions:
     def _part_menu(self, menu: QMenu) -> None:
         """Fill the menu of lines, which the ledger opens over a line, too."""
         w = self._window
+        groups = QMenu("Place a group of own list", w)
+        groups.aboutToShow.connect(lambda: w.own_list.fill(groups))
         self._fill(menu, [
             Command("Add shape…", w.open_gallery, "Ctrl+B", tip="Opens the gallery of shapes."), self.shapes,
             Command("Add mesh…", w.files.ask_meshes, "Ctrl+M"),
@@ -147,6 +149,8 @@ class Actions:
             Command("Save group as a document…", w.linked.save_group, tip="The group stays; its lines are copied."),
             Command("Place a linked group…", w.linked.place, tip="Shows another document's lines as a group here."),
             Command("Read linked group again…", w.linked.read_again), Command("Break the link", w.linked.break_link),
+            None, groups, Command("Keep group in own list", w.own_list.keep_selected_group),
+            Command("Own list…", w.own_list.manage, tip="Your own materials, known parts and groups."),
         ])
         tree = w.ledger.tree
         tree.customContextMenuRequested.connect(lambda at: menu.popup(tree.viewport().mapToGlobal(at)))

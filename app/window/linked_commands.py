@@ -19,7 +19,7 @@ from core.errors import EditRefused, MasswrightError
 from core.machine import Machine
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator, Sequence
+    from collections.abc import Callable, Iterator, Sequence
 
     from PySide6.QtWidgets import QWidget
 
@@ -67,14 +67,21 @@ class LinkedGroups:
 
     def place_file(self, path: Path) -> None:
         """Read a document in a worker, and place it as a linked group at the selected line."""
+        self._place(path, "linked", lambda assembly, _key: assembly)
+
+    def place_copy(self, path: Path) -> None:
+        """Read a document in a worker, and place its lines as an ordinary group at the selected line."""
+        self._place(path, "as a copy", without_link)
+
+    def _place(self, path: Path, how: str, finish: Callable[[Assembly, str], Assembly]) -> None:
         session = self._session
 
         def placed(document: LinkedDocument) -> None:
             self._notice.hide()
             key = fresh_group_key(session.assembly)
             where = place_for(session.assembly, session.selected)
-            words = f"Place {document.name}, linked"
-            session.edit(words, lambda before: with_linked_group(before, document, *where), key)
+            words = f"Place {document.name}, {how}"
+            session.edit(words, lambda before: finish(with_linked_group(before, document, *where), key), key)
 
         own = session.path
         task = Task(session, lambda _progress: read_linked(path, own), placed, session.refused.emit)

@@ -37,6 +37,7 @@ from app.window.ledger.view import LedgerPane
 from app.window.linked_commands import LinkedGroups
 from app.window.numbers import copied, preview, shown
 from app.window.overlap_watch import OverlapWatch
+from app.window.own_commands import OwnListCommands
 from app.window.pages.balance.page import BalancePage
 from app.window.pages.checks import ChecksPage, counted
 from app.window.pages.part import PartPage
@@ -86,6 +87,7 @@ class MainWindow(QMainWindow):
         self.changed_files = ChangedFiles(self.session, self.notice)
         self.placing = Placing(self.session, self.view, self)
         self.linked = LinkedGroups(self.session, self.notice)
+        self.own_list = OwnListCommands(self.session, self.linked, self.notice)
         self.seat_pointing = SeatPointing(self.session, self.view, self)
         self.actions_ = Actions(self)
         self._place: QWidget = self.ledger
@@ -95,6 +97,7 @@ class MainWindow(QMainWindow):
         self._lay_out()
         self._connect()
         self._restore()
+        self.own_list.open()
         self.refresh()
 
     def _lay_out(self) -> None:

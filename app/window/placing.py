@@ -124,22 +124,16 @@ class Placing(QObject):
             self._view.light_up(np.concatenate(cuts))
 
     def _place(self, amount: Amount) -> None:
-        """Make one edit of a drag; what is shown stays until the view shows the edit, and is put back without one."""
-        keys, handles, before = self.keys, self._handles(), self._session.machine
-        self._soon.stop()
+        """Make one edit of a drag."""
+        keys, handles = self.keys, self._handles()
+        self._put_back()
         if handles is not None:
             name = self._edit_name(keys, handles, amount)
-            self._session.edit(name, lambda assembly: moved(assembly, keys, amount.motion(handles)))
-        if self._session.machine is before:
-            self._view.show_carried({})
-        self._take_outlines_away()
+            self._session.edit(name, lambda before: moved(before, keys, amount.motion(handles)))
 
     def _put_back(self) -> None:
         self._soon.stop()
         self._view.show_carried({})
-        self._take_outlines_away()
-
-    def _take_outlines_away(self) -> None:
         if any(self._session.assembly.is_cut(key) for key in self.keys):
             self._view.light_up(np.zeros((0, 2, 3)))
 

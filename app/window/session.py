@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 from PySide6.QtCore import QObject, QTimer, Signal
 
 from app.window.manner import Manner
+from app.window.own_list import OwnList
 from core.assembly import Assembly, Finding, Ledger, Part, ledger_of
 from core.assembly.linked_groups import check_linked_lines
 from core.assembly.names import values_of
@@ -63,6 +64,7 @@ class Session(QObject):
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
+        self.own = OwnList(self)
         self.history = History(Machine())
         self.path: Path | None = None
         self.units: UnitSet = DEFAULT_UNITS

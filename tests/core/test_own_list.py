@@ -332,7 +332,7 @@ def block(width: float = 0.06) -> Machine:
 def test_kept_groups_are_documents_and_one_of_a_taken_name_gets_a_number(tmp_path: Path):
     assert group_files(tmp_path) == ()
     first, second = with_group_kept(tmp_path, block(), "holder"), with_group_kept(tmp_path, block(0.09), "Holder")
-    assert [path.name for path in group_files(tmp_path)] == ["Holder 2.masswright", "holder.masswright"]
+    assert [path.name for path in group_files(tmp_path)] == ["holder.masswright", "Holder 2.masswright"]
     assert (read_document(first), read_document(second)) == (block(), block(0.09))
 
 

@@ -10,6 +10,7 @@ from app.window.dialogs.form import FormDialog
 from app.window.dialogs.unit_table import UnitTable
 from app.window.fields import ChoiceField, Form, TextField
 from app.window.ledger.edits import driver_of
+from app.window.materials import material_completer
 from app.window.pages.part_mesh import COUNTS
 from app.window.style import Words
 from app.window.tasks import Task
@@ -57,6 +58,7 @@ class AddMeshDialog(FormDialog):
         self.bar.setAccessibleName("Reading the mesh")
         self.bar.setRange(0, 100)
         self.material = TextField("Material", "a material, a density (7850 kg/m³) or a weighed mass (1.2 kg)")
+        self.material.setCompleter(material_completer(session.own.materials, self.material))
         self.units = UnitTable(session, self._driver)
         self.counts = ChoiceField("What counts", COUNTS)
         self.standing = ChoiceField("Where it stands", STANDING)
@@ -135,7 +137,8 @@ class AddMeshDialog(FormDialog):
 
     def _driver(self) -> Driver:
         text = self.material.text()
-        return driver_of(text, self._session.units, "made of") if text.strip() else NotSet()
+        own = self._session.own.materials
+        return driver_of(text, self._session.units, "made of", own=own) if text.strip() else NotSet()
 
     def take(self) -> None:
         """Add the file as a line, and go on with the next one; a file that could not be read is passed over."""

@@ -39,13 +39,28 @@ def ask_where(
     parent: QWidget, title: str, suggested: Path, pattern: str, then: Callable[[Path], object]
 ) -> None:
     """Ask where a file is to be saved, and go on with the path that was chosen; replacing a file is asked about."""
+    show_over(_place_dialog(parent, title, suggested, pattern, then))
+
+
+def ask_new_file(
+    parent: QWidget, title: str, suggested: Path, pattern: str, then: Callable[[Path], object]
+) -> None:
+    """Ask where a new file is to be written; whoever writes it refuses to replace one that is there."""
+    dialog = _place_dialog(parent, title, suggested, pattern, then)
+    dialog.setOption(QFileDialog.Option.DontConfirmOverwrite)
+    show_over(dialog)
+
+
+def _place_dialog(
+    parent: QWidget, title: str, suggested: Path, pattern: str, then: Callable[[Path], object]
+) -> QFileDialog:
     dialog = QFileDialog(parent, title, "", pattern)
     dialog.setAcceptMode(QFileDialog.AcceptMode.AcceptSave)
     dialog.setFileMode(QFileDialog.FileMode.AnyFile)
     dialog.setDefaultSuffix(suggested.suffix.removeprefix("."))
     dialog.selectFile(str(suggested))
     dialog.fileSelected.connect(lambda name: then(Path(name)))
-    show_over(dialog)
+    return dialog
 
 
 def with_ending(chosen: Path, ending: str = DOCUMENT) -> Path:

@@ -4,12 +4,13 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtWidgets import QStackedWidget, QWidget
+from PySide6.QtWidgets import QCheckBox, QStackedWidget, QWidget
 
 from app.window.dialogs.form import FormDialog
 from app.window.fields import ChoiceField, Form, QuantityField, TextField, TripleField, kept_text
 from app.window.pages.part_body import TENSOR_LABELS, TENSOR_TIP
 from core.assembly import DataSheet, KnownAxial, KnownTensor, Part
+from core.document.own_list import KNOWN_PARTS, OwnPart
 from core.quantity import Kind
 
 if TYPE_CHECKING:
@@ -42,11 +43,17 @@ class KnownPartDialog(FormDialog):
         for field in self.tensor[3:]:
             field.set_value(0.0)
         self._kinds = QStackedWidget()
+        parts = session.own.known_parts
+        self.own = ChoiceField("From your own list", [("type one below", None), *((one.name, one) for one in parts)])
+        self.keep = QCheckBox("Keep it in my own list, too")
         self._lay_out()
         self.about.chosen.connect(self._choose)
+        self.own.chosen.connect(self._fill)
 
     def _lay_out(self) -> None:
         form = Form()
+        form.add("own list", self.own, "Known parts that you have kept. Part menu, Own list…, holds all of them.")
+        form.show_row(self.own, wanted=bool(self._session.own.known_parts))
         form.add("name", self.name)
         form.add("source", self.source, "Where the values come from; printed with the result.")
         form.add("mass m", self.mass)
@@ -61,7 +68,26 @@ class KnownPartDialog(FormDialog):
             tensor.add(label, field, TENSOR_TIP)
         for page in (QWidget(), axial, tensor):
             self._kinds.addWidget(page)
-        self.stack(form, self._kinds)
+        self.stack(form, self._kinds, self.keep)
+
+    def _fill(self, one: object) -> None:
+        """Show the values of a part of the own list."""
+        if not isinstance(one, OwnPart):
+            return
+        body = one.body
+        self.name.set_value(one.name)
+        self.source.set_value(body.source)
+        self.mass.set_value(body.mass)
+        self.centre.set_values(body.centre)
+        about = body.about if isinstance(body, KnownTensor) else "axis"
+        self.about.set_value(about)
+        self._choose(about)
+        if isinstance(body, KnownTensor):
+            for field, value in zip(self.tensor, body.tensor, strict=True):
+                field.set_value(value)
+        else:
+            self.axial.set_value(body.inertia_about_axis)
+            self.length.set_value(body.length)
 
     def _choose(self, about: object) -> None:
         self._kinds.setCurrentIndex({"": 0, "axis": 1}.get(str(about), 2))
@@ -73,6 +99,12 @@ class KnownPartDialog(FormDialog):
         if body is None:
             return
         name = self.name.text().strip() or "known part"
+        kept = OwnPart(name, body)
+        if self.keep.isChecked() and kept not in self._session.own.known_parts:
+            refusal = self._session.own.keep(KNOWN_PARTS, kept)
+            if refusal:
+                self.refuse(f"Nothing was added: {refusal}")
+                return
         assembly = self._session.assembly
         key = assembly.fresh_key()
         part = Part(key, assembly.fresh_name(name), body, DataSheet(), typed=self._typed(body))

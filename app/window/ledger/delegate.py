@@ -16,7 +16,6 @@ from PySide6.QtCore import (
 )
 from PySide6.QtGui import QColor, QFont, QHideEvent, QKeyEvent, QPainter, QPen
 from PySide6.QtWidgets import (
-    QCompleter,
     QLineEdit,
     QStyle,
     QStyledItemDelegate,
@@ -26,9 +25,9 @@ from PySide6.QtWidgets import (
 
 from app.window.ledger.columns import COLUMNS, INDEX
 from app.window.ledger.model import LINE_ROLE, LedgerModel
+from app.window.materials import material_completer
 from app.window.style import GRID, Colours, Words, colours
 from core.assembly import Line
-from core.material import MATERIALS
 
 if TYPE_CHECKING:
     from app.window.session import Session
@@ -94,10 +93,7 @@ class LedgerDelegate(QStyledItemDelegate):
         editor = CellEditor(parent, QPersistentModelIndex(index))
         editor.setAccessibleName(COLUMNS[index.column()].heading)
         if index.column() == INDEX["material"]:
-            completer = QCompleter([each.name for each in MATERIALS], editor)
-            completer.setCaseSensitivity(Qt.CaseSensitivity.CaseInsensitive)
-            completer.setFilterMode(Qt.MatchFlag.MatchContains)
-            editor.setCompleter(completer)
+            editor.setCompleter(material_completer(self._session.own.materials, editor))
             editor.setPlaceholderText("material, 7850 kg/m³, 1.2 kg")
         return editor
 

@@ -16,8 +16,9 @@ from core.placement import Mirrored
 from core.quantity import UNITS, Kind, UnitSet, names_in, parse
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
+    from collections.abc import Callable, Sequence
 
+    from core.material import Material
     from core.quantity import Names
 
 
@@ -63,7 +64,9 @@ def _count(assembly: Assembly, text: str, where: str) -> float:
     return float(text)
 
 
-def made_of(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assembly]:
+def made_of(
+    key: str, text: str, units: UnitSet, own: Sequence[Material] = ()
+) -> Callable[[Assembly], Assembly]:
     """Return the edit that sets what says a part's mass: a material, a density, a mass per area or length, a mass."""
 
     def change(assembly: Assembly) -> Assembly:
@@ -72,7 +75,7 @@ def made_of(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assembl
             raise EditRefused(
                 "a known part takes its mass from its data sheet", where=part.name, remedy="Edit it on the Part page"
             )
-        driver = driver_of(text, units, part.name, values_of(assembly.names))
+        driver = driver_of(text, units, part.name, values_of(assembly.names), own)
         path = next((path for path, kind in DRIVER_PATHS.items() if isinstance(driver, kind)), "")
         made = replace(part, driver=driver)
         return assembly.replaced(with_typed(made, path, kept_text(text)) if path else made)
@@ -95,10 +98,13 @@ def weighing(key: str, text: str, units: UnitSet) -> Callable[[Assembly], Assemb
     return change
 
 
-def driver_of(text: str, units: UnitSet, where: str, names: Names | None = None) -> Driver:
+def driver_of(
+    text: str, units: UnitSet, where: str, names: Names | None = None, own: Sequence[Material] = ()
+) -> Driver:
     """Return what says a mass: of text that starts with a number its unit tells which, other text is a material.
 
-    A bare number is a weighed mass. A text with one of the names counts as a number.
+    A bare number is a weighed mass. A text with one of the names counts as a number. A material is one of the user's
+    own or of the table.
 
     Raises:
         MaterialError, QuantityError: neither.
@@ -108,7 +114,7 @@ def driver_of(text: str, units: UnitSet, where: str, names: Names | None = None)
     if not words:
         return NotSet()
     if not (words[0].isdigit() or words[0] in ".,-+(" or names_in(words, names or ())):
-        found = material(words)
+        found = material(words, own)
         return ByMaterial(found.name, found.density)
     try:
         return Weighed(parse(words, Kind.MASS, units[Kind.MASS], names=names).value)

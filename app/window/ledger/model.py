@@ -265,7 +265,7 @@ class LedgerModel(QAbstractItemModel):
         made = {
             "name": edits.renamed(line.key, text),
             "count": edits.counted(line.key, text),
-            "material": edits.made_of(line.key, text, units),
+            "material": edits.made_of(line.key, text, units, self.session.own.materials),
             "mass": edits.weighing(line.key, text, units),
         }
         return made[column.key]

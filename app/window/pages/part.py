@@ -74,7 +74,8 @@ class PartPage(QScrollArea):
         self.setAccessibleName("Part page")
         self.setObjectName("page")
         for signal in (
-            session.changed, session.selection_changed, session.shown_differently, session.placed_differently
+            session.changed, session.selection_changed, session.shown_differently, session.placed_differently,
+            session.own.changed,
         ):
             signal.connect(self.refresh)
         self.refresh()
@@ -84,7 +85,8 @@ class PartPage(QScrollArea):
         node = self._selected()
         inside = _signature(node) if node else len(self._session.selected)
         held = None if node is None else held_by(self._session.assembly, node.key)
-        signature = (inside, self._session.assembly.variants, held and (held.key, held.name, held.link))
+        linked = held and (held.key, held.name, held.link)
+        signature = (inside, self._session.assembly.variants, linked, self._session.own.materials)
         if signature != self._signature:
             self._signature = signature
             self._build(node, held)

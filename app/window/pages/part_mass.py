@@ -8,18 +8,22 @@ from typing import TYPE_CHECKING
 from PySide6.QtCore import Qt
 
 from app.window.fields import ChoiceField, Form, QuantityField
+from app.window.materials import MaterialsModel
 from app.window.numbers import shown
 from app.window.pages.section import Section
 from core.assembly import Driver, Part
 from core.assembly.fields import AnyLine, Numbered, typed_for, value_of
 from core.errors import EditRefused
-from core.material import MATERIALS, ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, material
+from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, material
 from core.quantity import Kind
 
 if TYPE_CHECKING:
+    from collections.abc import Sequence
+
     from PySide6.QtWidgets import QWidget
 
     from app.window.session import Session
+    from core.material import Material
     from core.measure import Measure
 
 # What can say the mass of a body, by what the body has; a point mass has nothing to multiply.
@@ -77,7 +81,7 @@ class MassSection(Section):
         choices = DRIVERS[measure]
         self._by = ChoiceField("What says the mass", choices)
         form.add("comes from", self._by)
-        self._material = _material_field()
+        self._material = _material_field(session.own.materials)
         form.add("material", self._material)
         self._numbers = {driver: self._number(driver) for _, driver in choices if driver in ENTRIES}
         self._wrong = form.say("", "failed")
@@ -161,7 +165,7 @@ class MassSection(Section):
             return
 
         def change(line: AnyLine) -> AnyLine:
-            found = material(text)
+            found = material(text, self.session.own.materials)
             return _driven(line, ByMaterial(found.name, found.density))
 
         self._refuse(self.attempt(f"Material of {node.name}: {text}", change))
@@ -197,10 +201,8 @@ def _driven(node: AnyLine, driver: Driver) -> AnyLine:
     return replace(node, driver=driver)
 
 
-def _material_field() -> ChoiceField:
-    field = ChoiceField("Material", [(each.name, each.name) for each in MATERIALS])
-    for at, each in enumerate(MATERIALS):
-        tip = f"{each.density:.0f} kg/m³ ({each.low:.0f} to {each.high:.0f}); {each.source}"
-        field.setItemData(at, tip, Qt.ItemDataRole.ToolTipRole)
+def _material_field(own: Sequence[Material]) -> ChoiceField:
+    field = ChoiceField("Material", [])
+    field.setModel(MaterialsModel(own, field))
     field.take_typing("choose or type one")
     return field

@@ -170,9 +170,8 @@ class ViewPane(QWidget):
         emphasis = replace(self._picture.emphasis, selected=selected, hovered=hovered or None)
         was_empty = not self.scene.everybody
         if assembly is not self._assembly:
-            before = self._at_rest or self.scene
             self._assembly, self._at_rest = assembly, None
-            self._picture = replace(self._picture, scene=scene_of(assembly, self.store, self._ghost, before))
+            self._picture = replace(self._picture, scene=scene_of(assembly, self.store, self._ghost, self.scene))
             self._fit_due |= self._stays_fitted
         self._picture = replace(self._picture, emphasis=emphasis)
         if was_empty and self.scene.everybody:
@@ -183,12 +182,11 @@ class ViewPane(QWidget):
         """Show a part that is not in the document yet, see-through; None takes it away."""
         if part is self._ghost or (part is None and self._ghost is None):
             return
-        before = self._at_rest or self.scene
         self._ghost, self._at_rest = part, None
         if self._assembly is None:
             return
         was_empty = not self.scene.everybody
-        self._picture = replace(self._picture, scene=scene_of(self._assembly, self.store, part, before))
+        self._picture = replace(self._picture, scene=scene_of(self._assembly, self.store, part, self.scene))
         self._fit_due |= was_empty or self._stays_fitted
         self._redraw(moving=False)
 

@@ -27,7 +27,7 @@ def group_files(folder: Path) -> tuple[Path, ...]:
         found = [path for path in (folder / FOLDER).iterdir() if path.suffix.lower() == DOCUMENT_SUFFIX]
     except OSError:
         return ()
-    return tuple(sorted(found, key=lambda path: path.name.casefold()))
+    return tuple(sorted(found, key=lambda path: path.stem.casefold()))
 
 
 def with_group_kept(folder: Path, machine: Machine, name: str) -> Path:

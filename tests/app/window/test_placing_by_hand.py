@@ -198,30 +198,6 @@ def test_a_turn_goes_about_an_axis_through_the_origin_in_whole_steps(either):
 
 
 @pytest.mark.gui
-def test_among_thousands_of_parts_what_was_dragged_stays_there_until_the_view_has_settled(placed, monkeypatch, qtbot):
-    monkeypatch.setattr("app.window.session.FEW_PARTS", 1)
-    window = placed
-    select(window, "plate")
-    to = carried_spot(window, X, (0.1, 0.0, 0.0))
-    drag(window, X, to)
-    let_go(window, to)
-    shown = next(bodies for bodies in window.view.scene.bodies if bodies.key == "plate")
-    np.testing.assert_allclose(shown.shift[0], position(window, "plate"), rtol=0, atol=1e-15)
-    with qtbot.waitSignal(window.session.settled, timeout=2000):
-        pass
-    shown = next(bodies for bodies in window.view.scene.bodies if bodies.key == "plate")
-    np.testing.assert_array_equal(shown.shift[0], position(window, "plate"))
-    to = carried_spot(window, X, (0.05, 0.0, 0.0))
-    drag(window, X, to)
-    window.session.undo()
-    with qtbot.waitSignal(window.session.settled, timeout=2000):
-        pass
-    let_go(window, to)
-    shown = next(bodies for bodies in window.view.scene.bodies if bodies.key == "plate")
-    assert shown.shift[0].tolist() == [0, 0, 0]
-
-
-@pytest.mark.gui
 def test_a_turn_about_the_centre_of_mass_leaves_it_where_it_is(placed):
     window = placed
     window.session.set_manner(replace(Manner(), pivot="centre"))

@@ -10,7 +10,6 @@ from PySide6.QtWidgets import QPushButton
 from app.window.fields import ChoiceField, Form, QuantityField
 from app.window.pages.balance.inputs import BalanceSection, in_a_row
 from app.window.tasks import Task
-from core.assembly import Part, walk
 from core.drive.correcting import Drill, drillable, with_holes_drilled, with_masses_added
 from core.errors import MasswrightError
 from core.quantity import Kind
@@ -129,17 +128,7 @@ class CorrectSection(BalanceSection):
         if self.session.machine is not machine:
             self._tell(CHANGED)
             return
-        depths = self._depths(machine.assembly, after)
-        self._tell(self.session.attempt("Drill balance holes", lambda _before: after), f"Drilled {depths} deep")
-
-    def _depths(self, before: Assembly, after: Assembly) -> str:
-        """Return how deep the holes are that were drilled."""
-        units, mark = self.session.units, self.session.decimal_mark
-        found = [
-            units.text(cut.shape.values()["length"], Kind.LENGTH, 4, decimal_mark=mark)
-            for node, _ in walk(after.members) if isinstance(node, Part) for cut in node.cuts if cut.key not in before
-        ]
-        return " and ".join(found)
+        self._tell(self.session.attempt("Drill balance holes", lambda _before: after), "Drilled the balance holes")
 
     def _failed(self, sentence: str) -> None:
         self._end()

@@ -90,7 +90,7 @@ class RotorSection(BalanceSection):
             "Balance quality grade of ISO 21940-11: the speed e·ω that the centre of mass may have, in mm/s.",
         )
         self._refused = self.refusal()
-        self.own = self.open_number("grade, mm/s", "grade", "none", "A grade of your own, e·ω in mm/s.")
+        self.own = self.open_number("own grade, mm/s", "grade", "none", "A grade of your own, e·ω in mm/s.")
         self.grade.chosen.connect(self._choose_grade)
         self._own_wanted = False
 
@@ -186,9 +186,6 @@ class PlaneSection(BalanceSection):
         self.form.setVisible(len(self.wanted.planes) > self._at)
 
     def _take_away(self) -> None:
-        # What is being typed belongs to the plane that goes; the next one takes its place here.
-        for field in (self.station, self.radius):
-            field.restore()
         words = f"Take correction plane {self._at + 1} away"
         self.attempt_in_place(self._refused, words, lambda settings: without_item(settings, PLANES, self._at))
 

@@ -139,8 +139,6 @@ class BalancePage(QWidget):
         area.setWidgetResizable(True)
         area.setFrameShape(QFrame.Shape.NoFrame)
         area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
-        # Tab goes from field to field, and what has the focus is scrolled into sight.
-        area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
         area.setWidget(page)
         return area
 
