@@ -10,7 +10,7 @@ from core.assembly import Assembly, Finding, telling_findings
 from core.assembly.names import values_of
 from core.assembly.seats import seated
 from core.checks import Check
-from core.drive import BalanceAnswer, DriveAnswer, DriveSettings, balance_answer, drive_answer
+from core.drive import BalanceAnswer, DriveAnswer, DriveSettings, Duty, balance_answer, drive_answer
 from core.drive.naming import drive_uses_of, with_names_read_again, with_names_written_anew
 from core.drive.turning import turning_elsewhere
 from core.errors import MasswrightError
@@ -22,6 +22,10 @@ if TYPE_CHECKING:
 
 _EMPTY = Assembly()
 _NOTHING_ENTERED = DriveSettings()
+
+# A duty of more moves and rests, its repeats written out, takes longer to work out than a window may stand still.
+LONG_DUTY = 1000
+_BEING_WORKED_OUT = Check("drive", ok=True, text="The duty is long: what it asks of the drive is being worked out.")
 
 
 @dataclass(frozen=True)
@@ -73,6 +77,31 @@ class Machine:
         if not self.has_drive:
             return found
         return (*found, *(Finding("", "drive", check) for check in self._drive_checks))
+
+    def findings_at_once(self) -> tuple[Finding, ...]:
+        """Return the findings as far as they are known without waiting for a long duty."""
+        short = self.at_once
+        return self.findings() if short is self else (*short.findings(), Finding("", "drive", _BEING_WORKED_OUT))
+
+    @property
+    def at_once(self) -> Machine:
+        """The machine if its answer about torque is at hand or takes no time; else without its duty, which is long."""
+        known = "drive_answer" in self.__dict__
+        return self if known or len(self.drive.duty.flat) <= LONG_DUTY else self._without_duty
+
+    def worked_out(self) -> DriveAnswer:
+        """Work the answer about torque out and keep it; may be called from another thread than those that look at it.
+
+        Raises:
+            ValueRefused, EditRefused: as drive_answer.
+        """
+        # Not by way of the cached property: while it works, that bars every other machine's answer, too.
+        self.__dict__["drive_answer"] = answer = drive_answer(self.assembly, self.drive)
+        return answer
+
+    @cached_property
+    def _without_duty(self) -> Machine:
+        return replace(self, drive=replace(self.drive, duty=Duty()))
 
     @property
     def _drive_checks(self) -> tuple[Check, ...]:

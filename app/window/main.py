@@ -30,6 +30,7 @@ from app.window.dialogs.axes import AxesDialog
 from app.window.dialogs.known_part import KnownPartDialog
 from app.window.dialogs.names import NamesDialog
 from app.window.dialogs.variants import VariantsDialog
+from app.window.duty_watch import DutyWatch
 from app.window.files import Files
 from app.window.gallery.panel import GalleryPanel
 from app.window.ledger.columns import COLUMNS
@@ -78,6 +79,7 @@ class MainWindow(QMainWindow):
         self.balance = BalancePage(self.session)
         self.checks = ChecksPage(self.session)
         self.overlap_watch = OverlapWatch(self.session, self)
+        self.duty_watch = DutyWatch(self.session, self)
         self.pages = QTabWidget()
         self.gallery = GalleryPanel(self.session)
         self.notice = Notice()
@@ -455,6 +457,7 @@ class MainWindow(QMainWindow):
         self.changed_files.stop()
         self.files.autosave.stop()
         self.overlap_watch.stop()
+        self.duty_watch.stop()
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
         """Take files."""

@@ -77,7 +77,7 @@ class Session(QObject):
         self._settling = QTimer(self, singleShot=True, interval=SETTLE_MS)
         self._settling.timeout.connect(self.settled)
         self.ledger: Ledger = ledger_of(self.assembly)
-        self.findings: tuple[Finding, ...] = self.machine.findings()
+        self.findings: tuple[Finding, ...] = self.machine.findings_at_once()
         # Of the assembly as it is now; None until somebody has looked.
         self.overlaps: Overlaps | None = None
 
@@ -137,7 +137,7 @@ class Session(QObject):
             after = change(self.machine)
             check_linked_lines(self.assembly, after.assembly)
             # Evaluated before it counts: an assembly that cannot be added up is refused as a whole.
-            ledger, findings = ledger_of(after.assembly), after.findings()
+            ledger, findings = ledger_of(after.assembly), after.findings_at_once()
         except MasswrightError as error:
             return str(error)
         self._take_edit(self.history.edited(name, after), ledger, findings, select)
@@ -148,7 +148,7 @@ class Session(QObject):
         before = self.history.undone().present
         try:
             after = before.with_assembly(change(before.assembly))
-            ledger, findings = ledger_of(after.assembly), after.findings()
+            ledger, findings = ledger_of(after.assembly), after.findings_at_once()
         except MasswrightError as error:
             return str(error)
         self._take_edit(self.history.merged(name, after), ledger, findings, None)
@@ -166,7 +166,7 @@ class Session(QObject):
         refusal = _refusal_of_drive(after)
         if refusal and not _refusal_of_drive(self.machine):
             return refusal
-        self._take_edit(self.history.edited(name, after), self.ledger, after.findings(), None)
+        self._take_edit(self.history.edited(name, after), self.ledger, after.findings_at_once(), None)
         return ""
 
     def edit(self, name: str, change: Callable[[Assembly], Assembly], select: str | None = None) -> bool:
@@ -290,7 +290,7 @@ class Session(QObject):
 
     def _judge(self) -> None:
         self.ledger = ledger_of(self.assembly)
-        self.findings = (*self.machine.findings(), *self._overlap_findings())
+        self.findings = (*self.machine.findings_at_once(), *self._overlap_findings())
 
     def _forget_overlaps(self, after: Assembly) -> None:
         """Drop what was found in an assembly that is another one now; that nobody looks in one so large stays true."""
@@ -326,7 +326,7 @@ def judged_document(path: Path) -> Machine:
 def _refusal_of_drive(machine: Machine) -> str:
     """Return the sentence that says why a drive cannot be worked out; "" where it can."""
     try:
-        _ = machine.drive_answer
+        _ = machine.at_once.drive_answer
     except MasswrightError as error:
         return str(error)
     return ""

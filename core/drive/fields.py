@@ -13,7 +13,7 @@ from types import MappingProxyType
 from typing import TYPE_CHECKING, Any, Final
 
 from core.drive.paths import changed_at, found_at, one_step
-from core.errors import EditRefused, QuantityError
+from core.errors import EditRefused, QuantityError, ValueRefused
 from core.quantity.units import Kind
 
 if TYPE_CHECKING:
@@ -107,6 +107,21 @@ def typed_at(settings: DriveSettings, path: str) -> str:
 def with_number(settings: DriveSettings, path: str, value: float | None, text: str = "") -> DriveSettings:
     """Return the settings with another number (SI) under a path, and what was typed for it; `with_numbers` for one."""
     return with_numbers(settings, {path: value}, {path: text})
+
+
+def with_typed_number(settings: DriveSettings, path: str, value: float, text: str, shown: str) -> DriveSettings:
+    """Return the settings as `with_number` does; a refusal of the value says how it was shown, not its SI value.
+
+    Raises:
+        EditRefused, QuantityError, ValueRefused: as with_numbers.
+    """
+    try:
+        return with_number(settings, path, value, text)
+    except ValueRefused as refused:
+        figure, *unit = refused.read.split(" ")
+        if figure != f"{value:g}" or len(unit) > 1:
+            raise
+        raise type(refused)(refused.what, where=refused.where, read=shown, remedy=refused.remedy) from refused
 
 
 def with_numbers(

@@ -7,8 +7,8 @@ from dataclasses import replace
 from drives import flap_machine
 
 from core.assembly import Assembly, DriveAxis
-from core.drive import StopCase, Train
-from core.machine import Machine
+from core.drive import Duty, Repeat, StopCase, Train
+from core.machine import LONG_DUTY, Machine
 
 
 def test_a_machine_without_a_word_about_its_drive_has_no_findings_of_it():
@@ -62,3 +62,23 @@ def test_a_drive_that_cannot_be_worked_out_is_a_finding_and_forbids_no_part():
 
 def test_the_empty_machine_is_about_the_default_axis():
     assert Machine().assembly == Assembly(axes=(DriveAxis(),))
+
+
+def test_a_long_duty_is_left_out_of_what_is_known_at_once_until_it_is_worked_out():
+    machine = flap_machine()
+    long = machine.with_drive(replace(machine.drive, duty=Duty((Repeat(machine.drive.duty.steps[:2], 501),))))
+    assert len(long.drive.duty.flat) == LONG_DUTY + 2
+    assert machine.at_once is machine
+    short = long.at_once
+    assert short is not long
+    assert short.drive == replace(machine.drive, duty=Duty())
+    known = [finding.check.text for finding in long.findings_at_once()]
+    assert "The duty is long: what it asks of the drive is being worked out." in known
+    assert any("the motor's data has its inertia too" in text for text in known)
+    answer = long.worked_out()
+    assert long.at_once is long
+    assert long.drive_answer is answer
+    assert long.findings_at_once() == long.findings()
+    assert answer.load.peak_speed == machine.with_drive(
+        replace(machine.drive, duty=Duty(machine.drive.duty.steps[:2]))
+    ).drive_answer.load.peak_speed

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from app.window.fields import FIELD_WIDTH, Form, OpenField, QuantityField
-from core.drive.fields import kind_at, number_at, typed_at, with_number
+from app.window.fields import FIELD_WIDTH, Form, OpenField, QuantityField, kept_text
+from core.drive.fields import kind_at, number_at, typed_at, with_number, with_typed_number
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -85,9 +85,11 @@ class DriveSection:
         """Let a field edit a number of the entry; the text as typed is kept there, too."""
 
         def entered(value: float, text: str) -> None:
-            words = f"{self.titled(label)}: {field.line.text().strip()}"
-            path = self.path(inner)
-            refusal = self.attempt(words, lambda settings: with_number(settings, path, value, text))
+            typed, path = field.line.text().strip(), self.path(inner)
+            texts = as_typed(text or typed, field.unit)
+            refusal = self.attempt(
+                f"{self.titled(label)}: {typed}", lambda settings: with_typed_number(settings, path, value, *texts)
+            )
             if refusal:
                 field.turn_down(refusal)
 
@@ -104,6 +106,12 @@ class DriveSection:
         refusal = self.attempt(f"{self.titled(label)}: none", lambda settings: with_number(settings, path, None))
         if refusal:
             field.turn_down(refusal)
+
+
+def as_typed(text: str, unit: Unit) -> tuple[str, str]:
+    """Return what is kept of the text of a number, and the text with its unit, to say what was read."""
+    kept = kept_text(text)
+    return kept, kept or f"{text} {unit.symbol}".strip()
 
 
 def shafts_of(session: Session) -> list[tuple[str, object]]:

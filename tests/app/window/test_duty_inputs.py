@@ -19,9 +19,12 @@ from app.window.pages.torque.inputs_duty_table import ANGLE, TIME, TO
 from core.drive import ByLimits, ByTime, Law, Move, Repeat, Rest
 from core.drive.fields import typed_at
 from core.drive.limit_points import points_at
+from core.machine import LONG_DUTY
 from core.quantity import UNITS
 
 if TYPE_CHECKING:
+    from pytestqt.qtbot import QtBot
+
     from app.window.main import MainWindow
     from app.window.pages.torque.inputs_duty import DutyPanel
     from app.window.pages.torque.inputs_points import PointsBox
@@ -317,3 +320,34 @@ def test_points_are_pasted_in_the_place_of_all_and_deleted_to_none(filled: MainW
     assert box.advice.isVisible()
     filled.undo()
     assert box.model.rowCount() == 3
+
+
+def test_a_long_duty_is_worked_out_beside_the_window(filled: MainWindow, qtbot: QtBot) -> None:
+    panel = pasted_duty(filled, "\n".join(f"{(-1) ** at * 90}\t0.5" for at in range(LONG_DUTY + 2)))
+    assert len(steps(filled)) == LONG_DUTY + 2
+    machine = filled.session.machine
+    assert machine.at_once is not machine
+    assert any("being worked out" in finding.check.text for finding in filled.session.findings)
+    type_in(panel.table, 1, ANGLE, "90.5")
+    assert filled.session.machine is not machine
+    qtbot.waitUntil(lambda: filled.session.machine.at_once is filled.session.machine, timeout=20_000)
+    qtbot.waitUntil(lambda: not any("being worked" in one.check.text for one in filled.session.findings), timeout=5_000)
+    assert machine.at_once is not machine, "what was left behind is not worked out"
+
+
+def test_what_is_typed_or_refused_stays_when_the_document_is_judged_anew(filled: MainWindow) -> None:
+    panel = pasted_duty(filled, "90\t1\n45\tsoon")
+    filled.session.look_again()
+    assert "row 2, time" in panel.wrong.text()
+    paste(panel.table, "90\t1\n45\t2")
+    panel.table.setCurrentIndex(panel.table.model().index(1, ANGLE))
+    QTest.keyClick(panel.table, Qt.Key.Key_F2)
+    editor = QApplication.focusWidget()
+    editor.selectAll()
+    QTest.keyClicks(editor, "3")
+    filled.session.look_again()
+    QApplication.processEvents()
+    QTest.keyClicks(editor, "0")
+    QTest.keyClick(editor, Qt.Key.Key_Return)
+    QApplication.processEvents()
+    assert steps(filled)[0].angle == pytest.approx(TURN(30), rel=1e-15)

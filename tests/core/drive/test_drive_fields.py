@@ -13,7 +13,7 @@ from hypothesis import strategies as st
 from core.assembly.names import NameEntry
 from core.assembly.naming import with_entries, with_entry, with_name_changed, without_name
 from core.drive import DriveSettings, Gear, Rest
-from core.drive.fields import kind_at, number_at, typed_at, with_number, with_numbers, words_at
+from core.drive.fields import kind_at, number_at, typed_at, with_number, with_numbers, with_typed_number, words_at
 from core.drive.items import items_at, with_item, with_item_at, with_item_moved, without_item
 from core.errors import EditRefused, QuantityError, ValueRefused
 from core.quantity import Kind
@@ -87,6 +87,15 @@ def test_a_number_of_an_entry_that_is_not_there_is_refused():
     with pytest.raises(EditRefused, match="no such entry"):
         with_number(settings(), "stops.7.speed", 1.0)
     assert number_at(settings(), "stops.7.speed") is None
+
+
+def test_a_refused_number_is_told_as_it_was_shown_and_not_in_si():
+    with pytest.raises(ValueRefused, match="limit of speed has to be more than 0; read -5 rpm"):
+        with_typed_number(settings(), "duty.steps.2.steps.0.timing.speed", -0.5235987755982988, "", "-5 rpm")
+    with pytest.raises(ValueRefused, match=r"ramps take longer than the whole move; read 0\.9 \+"):
+        with_typed_number(settings(), "duty.steps.0.ramp_up", 0.9, "90 %", "90 %")
+    taken = with_typed_number(settings(), "train.stages.2.ratio", 6.0, "2*3", "2*3")
+    assert taken == with_number(settings(), "train.stages.2.ratio", 6.0, "2*3")
 
 
 def test_repeats_are_whole():

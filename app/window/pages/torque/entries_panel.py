@@ -37,7 +37,6 @@ if TYPE_CHECKING:
     from core.drive import DriveSettings
     from core.machine import Machine
 
-LABELS = 132
 
 
 @dataclass(frozen=True)
@@ -54,6 +53,8 @@ class EntriesPanel(QWidget):
 
     It is brought up to date only while it is seen.
     """
+
+    label_width = 132
 
     def __init__(self, session: Session, label: str, headings: tuple[str, ...]) -> None:
         super().__init__()
@@ -236,7 +237,7 @@ class EntriesPanel(QWidget):
             section.drop()
         self._sections = []
         if entry is not None:
-            form = Form(LABELS)
+            form = Form(self.label_width)
             self._sections = self.sections(form, entry)
             for section in self._sections:
                 if isinstance(section, EntrySection):

@@ -9,15 +9,14 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtGui import QGuiApplication
 
-from app.window.fields import kept_text
-from app.window.pages.drive_section import DriveSection
+from app.window.pages.drive_section import DriveSection, as_typed
 from app.window.pages.torque.entries import EntriesModel, Entry
 from app.window.pages.torque.entries_panel import Addition, EntriesPanel
 from app.window.pages.torque.inputs_duty_table import ANGLE, LAW, TIME, TO, DutyModel
 from app.window.pages.torque.inputs_steps import MoveSection, RepeatSection, RestSection
 from app.window.pages.torque.paste_marks import PasteMarks
 from core.drive import ByTime, Duty, Move, Repeat, Rest
-from core.drive.fields import with_number
+from core.drive.fields import with_typed_number
 from core.drive.items import with_item_at, with_items
 from core.drive.steps import STEPS, StepRow, called, list_of, path_of, step_rows, steps_of_block, with_end
 from core.drive.steps import with_repeat as repeated
@@ -39,6 +38,8 @@ COLUMNS = {0: 104, 1: 66, 2: 66, 3: 66, 4: 64}
 
 class DutyPanel(EntriesPanel):
     """The cycle that the drive goes through."""
+
+    label_width = 92
 
     def __init__(self, session: Session) -> None:
         self._rows: dict[str, StepRow] = {}
@@ -150,7 +151,8 @@ class DutyPanel(EntriesPanel):
             self.table.stay()
             self.tell(str(error))
             return
-        change = partial(_with_cell, entry=entry, column=column, value=value, text=kept_text(text))
+        texts = as_typed(text, self.session.units[kind])
+        change = partial(_with_cell, entry=entry, column=column, value=value, texts=texts)
         if not self.attempt(f"{words}: {text}", change):
             self.table.stay()
 
@@ -212,18 +214,20 @@ class DutyPanel(EntriesPanel):
         self.marks.hide()
 
 
-def _with_cell(settings: DriveSettings, entry: Entry, column: int, value: float, text: str) -> DriveSettings:
-    """Return the settings with another number in a cell of the table."""
+def _with_cell(
+    settings: DriveSettings, entry: Entry, column: int, value: float, texts: tuple[str, str]
+) -> DriveSettings:
+    """Return the settings with another number in a cell; texts: what is kept of what was typed, and how to tell it."""
     row = entry.item
     if not isinstance(row, StepRow):
-        return with_number(settings, "duty.start", value, text)
+        return with_typed_number(settings, "duty.start", value, *texts)
     if column == TO:
         return with_end(settings, row.place, value)
     if column == ANGLE:
-        return with_number(settings, f"{entry.root}.angle", value, text)
+        return with_typed_number(settings, f"{entry.root}.angle", value, *texts)
     if isinstance(row.step, Rest):
-        return with_number(settings, f"{entry.root}.time", value, text)
+        return with_typed_number(settings, f"{entry.root}.time", value, *texts)
     if isinstance(row.step, Move) and not isinstance(row.step.timing, ByTime):
         # A time typed for a move by limits: it is given by its time from now on.
         settings = with_item_at(settings, entry.holder, entry.index, by_time(row.step))
-    return with_number(settings, f"{entry.root}.timing.time", value, text)
+    return with_typed_number(settings, f"{entry.root}.timing.time", value, *texts)

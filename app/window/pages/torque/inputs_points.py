@@ -9,10 +9,11 @@ from PySide6.QtGui import QGuiApplication
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QPushButton, QVBoxLayout, QWidget
 
 from app.window.fields import NARROW_WIDTH, QuantityField, kept_text
+from app.window.pages.drive_section import as_typed
 from app.window.pages.torque.inputs_points_table import PointsModel, PointsTable
 from app.window.pages.torque.paste_marks import PasteMarks
 from app.window.style import GRID, Words, heading_font
-from core.drive.fields import with_number
+from core.drive.fields import with_typed_number
 from core.drive.limit_points import (
     path_of_points,
     points_at,
@@ -126,7 +127,8 @@ class PointsBox(QWidget):
             self.tell(str(error))
             return
         path = f"{path_of_points(self.limit)}.{row}.{column}"
-        if not self._attempt(f"{words}: {text}", lambda settings: with_number(settings, path, value, kept_text(text))):
+        texts = as_typed(text, self.session.units[kind])
+        if not self._attempt(f"{words}: {text}", lambda settings: with_typed_number(settings, path, value, *texts)):
             self.table.stay()
 
     def add_point(self) -> None:
