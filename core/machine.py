@@ -25,7 +25,8 @@ _NOTHING_ENTERED = DriveSettings()
 
 # A duty of more moves and rests, its repeats written out, takes longer to work out than a window may stand still.
 LONG_DUTY = 1000
-_BEING_WORKED_OUT = Check("drive", ok=True, text="The duty is long: what it asks of the drive is being worked out.")
+BEING_WORKED_OUT = "The duty is long: what it asks of the drive is being worked out."
+_WAITING = Check("drive", ok=True, text=BEING_WORKED_OUT)
 
 
 @dataclass(frozen=True)
@@ -81,7 +82,7 @@ class Machine:
     def findings_at_once(self) -> tuple[Finding, ...]:
         """Return the findings as far as they are known without waiting for a long duty."""
         short = self.at_once
-        return self.findings() if short is self else (*short.findings(), Finding("", "drive", _BEING_WORKED_OUT))
+        return self.findings() if short is self else (*short.findings(), Finding("", "drive", _WAITING))
 
     @property
     def at_once(self) -> Machine:

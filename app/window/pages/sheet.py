@@ -17,9 +17,11 @@ from core.handover import Entry, Sheet, SheetChoice, tsv_of_sheet
 from core.handover.drive_lines import BY_ROW, CYCLE, REFLECTED
 from core.handover.lines import FOR_THE_DRIVE
 from core.handover.machine_sheet import sheet_of_machine
+from core.machine import BEING_WORKED_OUT
 
 if TYPE_CHECKING:
     from app.window.session import Session
+    from core.machine import Machine
 
 ABOUT: list[tuple[str, object]] = [("centre of mass", "centre"), ("document's origin", "origin")]
 ALONG: list[tuple[str, object]] = [("document's axes", "document"), ("principal axes", "principal")]
@@ -101,11 +103,14 @@ class SheetPage(QWidget):
     @property
     def sheet(self) -> Sheet:
         """The sheet as it is chosen now."""
+        return self._sheet_of(self._session.machine)
+
+    def _sheet_of(self, machine: Machine) -> Sheet:
         choice = SheetChoice(
             about=self.about.currentData(), along=self.along.currentData(), products=self.products.currentData()
         )
         key = self._key() if self.of.currentData() == "selected" else None
-        return sheet_of_machine(self._session.machine, choice, self._session.units, key)
+        return sheet_of_machine(machine, choice, self._session.units, key)
 
     def _leave_sheet(self) -> None:
         """Select in one of the two tables only, so that it is clear what is copied."""
@@ -127,13 +132,15 @@ class SheetPage(QWidget):
         empty = not self._session.assembly.members
         for widget in (self.table, self.of, self.about, self.along, self.products, self.copy_all):
             widget.setVisible(not empty)
-        sheet = self.sheet
+        machine = self._session.machine.at_once
+        sheet = self._sheet_of(machine)
         self.variants.refresh()
         self.table.show_sections(sheet.sections)
         of_line = self.of.currentData() == "selected"
         astray = of_line and not self._key()
         hint = "Select one line to see its values; these are of the whole assembly. " if astray else ""
-        words = " ".join([f"{hint}{sheet.title}: {sheet.basis}.", *sheet.notes, *sheet.cautions])
+        waiting = [] if machine is self._session.machine else [BEING_WORKED_OUT]
+        words = " ".join([*waiting, f"{hint}{sheet.title}: {sheet.basis}.", *sheet.notes, *sheet.cautions])
         self.told.setText(NOTHING if empty else words)
 
     def copy_sheet(self) -> None:

@@ -328,10 +328,17 @@ def test_a_long_duty_is_worked_out_beside_the_window(filled: MainWindow, qtbot: 
     machine = filled.session.machine
     assert machine.at_once is not machine
     assert any("being worked out" in finding.check.text for finding in filled.session.findings)
+    filled.torque.show_view(1)
+    assert "being worked out" in filled.torque.result.told.text()
+    assert filled.sheet.told.text().startswith("The duty is long")
+    filled.torque.show_view(0)
     type_in(panel.table, 1, ANGLE, "90.5")
     assert filled.session.machine is not machine
     qtbot.waitUntil(lambda: filled.session.machine.at_once is filled.session.machine, timeout=20_000)
     qtbot.waitUntil(lambda: not any("being worked" in one.check.text for one in filled.session.findings), timeout=5_000)
+    filled.torque.show_view(1)
+    assert filled.torque.result.numbers.isVisible()
+    assert not filled.sheet.told.text().startswith("The duty is long")
     assert machine.at_once is not machine, "what was left behind is not worked out"
 
 

@@ -44,7 +44,7 @@ class StopsPanel(EntriesPanel):
 
     def additions(self) -> list[Addition]:
         """Return a stop that comes about."""
-        return [Addition("Stop", STOPS, lambda: first_stop(self.session.machine.drive_answer))]
+        return [Addition("Stop", STOPS, lambda: first_stop(self.session.machine.at_once.drive_answer))]
 
     def entries(self) -> list[Entry]:
         """Return the stops."""

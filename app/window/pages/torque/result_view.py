@@ -15,6 +15,7 @@ from app.window.plots.curve_plot import CurvePlot
 from app.window.style import GRID, Words, icon
 from core.drive import LOAD, MOTOR
 from core.errors import MasswrightError
+from core.machine import BEING_WORKED_OUT
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QShowEvent
@@ -98,6 +99,10 @@ class ResultView(QWidget):
     def refresh(self) -> None:
         """Show the answer as it is now, or the sentence that says why there is none."""
         self._stale = False
+        if self.session.machine.at_once is not self.session.machine:
+            self._show_trouble("")
+            self._say(self.told, BEING_WORKED_OUT)
+            return
         try:
             answer = self.session.machine.drive_answer
         except MasswrightError as error:
