@@ -44,6 +44,7 @@ class PlacingBar(QFrame):
         for field, name in ((self._length, "length_step"), (self._angle, "angle_step")):
             field.entered.connect(lambda value, _text, field=field, name=name: self._take_step(field, name, value))
         view.installEventFilter(self)
+        view.aimed.connect(self.refresh)
         for signal in (
             session.selection_changed, session.changed, session.placed_differently, session.shown_differently
         ):
@@ -95,7 +96,7 @@ class PlacingBar(QFrame):
     def _settle(self) -> None:
         """Take the corner of the view, where there is something to place and the bar has room."""
         self.move(_CORNER, _CORNER)
-        wanted = self._session.manner.handles and bool(self._session.selected)
+        wanted = self._session.manner.handles and bool(self._session.selected) and self._view.aim is None
         fits = wanted and self.sizeHint().width() <= self._view.width() - 2 * _CORNER
         self.setVisible(fits)
         box = (float(_CORNER), float(_CORNER), float(self.width()), float(self.height()))

@@ -111,7 +111,8 @@ class SeatPointing(QObject):
 
     def _looked(self) -> None:
         self._task = None
-        self._ask("")
+        if self.is_on:
+            self._ask("")
 
     def _ask(self, place: str) -> None:
         name = self._session.assembly.node(self._key).name

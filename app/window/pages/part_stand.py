@@ -58,6 +58,7 @@ class PlaceSection(Section):
         super().__init__(session, form, node.key)
         self._one_turn = _OneTurn()
         form.heading("Placement")
+        self._seated = form.say("Its seat says where it stands. To place it by numbers, remove the seat below.")
         holder = "its part" if isinstance(node, Cut) else "its group"
         self._frame = ChoiceField("Frame of the placement", [(holder, "holder"), ("the document", "document")])
         form.add("in the frame of", self._frame, "Of copies of a group, the first one is meant.")
@@ -95,6 +96,7 @@ class PlaceSection(Section):
 
     def show(self, node: AnyLine) -> None:
         """Show position and turn."""
+        self.form.show_row(self._seated, wanted=not isinstance(node, Cut) and node.seat is not None)
         held = self._is_held
         self.form.show_row(self._frame, wanted=held)
         self._frame.set_value(self.session.manner.numbers_in)

@@ -106,11 +106,13 @@ class ViewPane(QWidget):
             is selected already.
         hovered(str): the key of the part under the pointer, "" for none.
         nudged(Nudge): a key asks to move or turn what is selected by a step.
+        aimed: something else takes the clicks now, or does so no more.
     """
 
     picked = Signal(str, bool)
     hovered = Signal(str)
     nudged = Signal(object)
+    aimed = Signal()
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -211,6 +213,7 @@ class ViewPane(QWidget):
         """Let something take the clicks, handles being hidden meanwhile; None: they select again."""
         self.aim = aim
         self._show_hand()
+        self.aimed.emit()
 
     def light_up(self, edges: FloatArray) -> None:
         """Draw edges (k, 2, 3) m of the document frame over everything; none takes those shown away."""

@@ -8,7 +8,8 @@ from typing import TYPE_CHECKING, Final
 import numpy as np
 
 from core.assembly.names import USES
-from core.assembly.nodes import Group, Node
+from core.assembly.nodes import Group, Node, Part
+from core.assembly.seat import Anchor
 from core.assembly.seats.standing import Standings, pose_of_first, seat_placement
 from core.errors import EditRefused
 
@@ -42,7 +43,10 @@ def seated(assembly: Assembly, before: Assembly | None = None) -> Assembly:
     known = {key: _kept(assembly, before, node) for key, node in nodes.items()}
     changed = {key: node for key, node in known.items() if node is not nodes[key]}
     assembly = _with_nodes(assembly, changed)
-    follower = _Follower(Standings(assembly), {key: node for key, node in known.items() if node.seat is not None})
+    follower = _Follower(
+        Standings(assembly), {key: node for key, node in known.items() if node.seat is not None},
+        None if before is None else Standings(before),
+    )
     moved: dict[str, Node] = {}
     for key in follower.in_order():
         node = known[key]
@@ -80,10 +84,17 @@ def check_seats(assembly: Assembly) -> None:
 
 @dataclass(frozen=True)
 class _Follower:
-    """Finds where seated lines belong, and in which order that can be asked."""
+    """Finds where seated lines belong, and in which order that can be asked.
+
+    Attributes:
+        standings: of the assembly, with the poses that were found so far.
+        nodes: the seated lines by key.
+        before: of the assembly before the edit, in which all of them were where they belong; None: of no such one.
+    """
 
     standings: Standings
     nodes: Mapping[str, Node]
+    before: Standings | None = None
 
     def in_order(self) -> tuple[str, ...]:
         """Return the keys of the seated lines so that each stands behind all that its place depends on.
@@ -120,6 +131,8 @@ class _Follower:
             EditRefused: a place of the seat is not there, or on the wrong line.
         """
         assert node.seat is not None
+        if self._is_untouched(node):
+            return node.pose
         own = self.standings.own_frame(node, node.seat.moving)
         target = self.standings.target_frame(node, node.seat.target)
         aim = seat_placement(node.seat)
@@ -128,6 +141,22 @@ class _Follower:
         if _agree(wanted, self.standings.first_copy(node), scale):
             return node.pose
         return pose_of_first(node.copies, wanted, scale)
+
+    def _is_untouched(self, node: Node) -> bool:
+        """Return whether the edit left alone all that a line's place follows from; False where that is not plain."""
+        assert node.seat is not None
+        before, now = self.before, self.standings
+        if before is None or before.assembly.axes is not now.assembly.axes:
+            return False
+        for anchor in (Anchor(node.key, ""), node.seat.moving, node.seat.target):
+            if anchor.key and anchor.key not in before.assembly:
+                return False
+            path, old = now.path_to(anchor), before.path_to(anchor)
+            if len(path) != len(old) or any(each.key in now.poses for each in path):
+                return False
+            if not all(map(_stands_alike, path, old)) or (path and not _has_same_places(path[-1], old[-1])):
+                return False
+        return before.assembly.node(node.key).seat is node.seat
 
     def _needs(self, key: str) -> list[str]:
         """Return the seated lines that decide where a line's seat is."""
@@ -138,6 +167,16 @@ class _Follower:
         inner = inner[inner.index(key) + 1 :] if key in inner else []
         keys = [*(each.key for each in (*above, *path)), *inner]
         return [each for each in keys if each in self.nodes and each != key]
+
+
+def _stands_alike(one: Node, other: Node) -> bool:
+    return one is other or (one.key == other.key and one.pose is other.pose and one.copies is other.copies)
+
+
+def _has_same_places(one: Node, other: Node) -> bool:
+    if one is other or isinstance(one, Group):
+        return one is other or isinstance(other, Group)
+    return isinstance(other, Part) and one.body is other.body and one.cuts is other.cuts and one.driver is other.driver
 
 
 def _agree(one: Placement, other: Placement, scale: float) -> bool:

@@ -219,6 +219,7 @@ def test_two_clicks_in_the_view_seat_a_line(parted):
     button(parted, "Pick in the view").click()
     pointing = parted.seat_pointing
     assert pointing.is_on
+    assert parted.placing.bar.isHidden()
     assert pointing.hint.text() == "Click a face, edge or axis of hub, or Escape"
     click(parted, (0.1, -0.1, 0.02))
     assert pointing._moving is None, "the plate is not the line to be seated"

@@ -464,3 +464,64 @@ def test_a_group_as_a_document_keeps_the_seats_inside_it_and_lets_go_of_the_othe
     assert alone.node("hub").seat is None
     assert alone.node("hub").pose == assembly.node("hub").pose
     assert alone.node("cap") == assembly.node("cap")
+
+
+# --- what an edit leaves alone is not looked at again ---------------------------------------------------------------
+
+
+def busy():
+    """A pin in a ring in a group, seated in a bore of the base; a cap on the pin; a lid on the axis Tilt; an arm on the pin's axis."""
+    bore = Cut("bore", "bore", Cylinder(0.02, 0.05), Pose((0.1, 0.05, 0.0), (0.3, 0.0, 0.0)), Ring(3))
+    base = part("base", Box(0.4, 0.3, 0.05), Pose((0.1, 0.2, 0.3), (0.4, -0.5, 0.6)), cuts=(bore,))
+    pin = part("pin", Cylinder(0.02, 0.1), copies=Ring(5, (0.1, 0.0, 0.2), (1.0, 2.0, -1.0), start=0.7))
+    group = Group("g", "g", (pin, part("cap", Sphere(0.05))), Pose((1.0, 0.0, 0.0), (0.1, 0.0, 0.2)), Row(2, (0.0, 0.5, 0.1)))
+    members = (base, Group("k", "k", (group,), Pose((0.0, 0.0, 1.0))), part("lid", Cylinder(0.2, 0.01)), part("arm", Box(0.3, 0.02, 0.02)))
+    assembly = Assembly("t", members, (DriveAxis(), DriveAxis("Tilt", (0.1, 0.2, 0.3), (0.0, 2.0, 0.5))))
+    assembly = replace(assembly, axes=(*assembly.axes, axis_of_part(assembly, "pin", "Pin")))
+    for key, seat in (
+        ("pin", Seat(Anchor("pin", "face −z"), Anchor("bore", "rim +z"), "against", 0.01, turn=0.2)),
+        ("cap", Seat(Anchor("cap", "centre of mass"), Anchor("pin", "face +z"), "along")),
+        ("lid", Seat(Anchor("lid", "axis z"), Anchor("", "Tilt"), "along", 0.3)),
+        ("arm", Seat(Anchor("arm", "face −z"), Anchor("", "Pin"), "along", 0.1)),
+    ):
+        assembly = with_seat(assembly, key, seat)
+    return assembly
+
+
+def with_line(key, **changes):
+    return lambda assembly: assembly.with_line(replace(assembly.line(key), **changes))
+
+
+@pytest.mark.parametrize(
+    "edit",
+    [
+        with_line("base", pose=Pose((0.5, 0.0, 0.0), (0.0, 0.0, 0.3))), with_line("base", body=ShapeBody(Box(0.4, 0.3, 0.08))),
+        with_line("bore", shape=Cylinder(0.02, 0.06)), with_line("bore", pose=Pose((0.05, 0.0, 0.01))),
+        with_line("bore", copies=Ring(3, start=0.4)), with_line("pin", body=ShapeBody(Cylinder(0.02, 0.2))),
+        with_line("pin", copies=Ring(2, start=-0.3)), with_line("g", pose=Pose((0.0, 2.0, 0.0), (0.5, 0.5, 0.5))),
+        with_line("k", copies=Ring(4, start=0.5)), with_line("cap", body=ShapeBody(Sphere(0.08))), with_line("cap", name="knob"),
+        lambda assembly: replace(assembly, axes=(assembly.axes[0], replace(assembly.axes[1], point=(0.3, 0.2, 0.1)), assembly.axes[2])),
+        lambda assembly: assembly.moved("arm", "g"), lambda assembly: assembly.moved("g", None, 0),
+        lambda assembly: assembly.removed(("bore",)), lambda assembly: assembly.removed(("k",)),
+        with_line("lid", seat=Seat(Anchor("lid", "axis z"), Anchor("", "Spindle"), "along", 0.1)),
+        with_line("arm", seat=Seat(Anchor("arm", "face −z"), Anchor("base", "edge +x +y"), "along")),
+    ],
+)
+def test_what_follows_an_edit_is_what_follows_from_the_whole(edit):
+    before = busy()
+    edited = edit(before)
+    after, anew = seated(edited, before), seated(edited)
+    assert after == anew
+    assert seated(after) is after
+
+
+@given(poses, poses, st.sampled_from(["base", "g", "k"]))
+@settings(max_examples=30)
+def test_moving_what_carries_or_holds_seated_lines_is_followed_as_a_whole(first, second, key):
+    before = seated(with_line(key, pose=first)(busy()))
+    edited = with_line(key, pose=second)(before)
+    after = seated(edited, before)
+    assert after == seated(edited)
+    scale = 1 + np.abs([first.position, second.position]).max()
+    pin, bore = spot(after, "pin", "face −z"), datum_named(after.cut("bore"), "rim +z").placed(standing(after, "base"))
+    assert pin[0] - bore.point == pytest.approx(0.01 * bore.direction, abs=1e-11 * scale)
