@@ -37,14 +37,15 @@ def draw_handles(painter: QPainter, picture: Picture, size: Size, shown: Shown) 
     """Draw the line's frame and its handles; return letters to write: text, what it names, away from where (px)."""
     letters = _draw_frame(painter, picture, size, shown)
     if not shown.grips:
-        return letters
+        return [each for each in letters if _in_sight(each[1], size)]
     paths = paths_of(shown.handles, picture.camera, size)
     seen = {grip: path for grip, path in paths.items() if not shown.held or grip == shown.lit}
     for grip, path in seen.items():
         _draw_grip(painter, picture, grip, path, lit=grip == shown.lit)
     ends = {LETTERS[grip.axis]: path for grip, path in seen.items() if grip.kind == "along"}
     named = [(letter, _point(path[-1]), _point(path[-1] - path[0])) for letter, path in ends.items()]
-    return [*named, *(each for each in letters if each[0] not in ends or not _is_frame(shown))]
+    frame = [each for each in letters if each[0] not in ends or not _is_frame(shown)]
+    return [each for each in (*named, *frame) if _in_sight(each[1], size)]
 
 
 def _is_frame(shown: Shown) -> bool:
@@ -116,6 +117,10 @@ def _pen(picture: Picture, width: float, *, casing: bool, colour: tuple[int, int
     pen.setCapStyle(Qt.PenCapStyle.RoundCap)
     pen.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
     return pen
+
+
+def _in_sight(spot: QPointF, size: Size) -> bool:
+    return 0 <= spot.x() <= size[0] and 0 <= spot.y() <= size[1]
 
 
 def _point(spot: FloatArray) -> QPointF:
