@@ -13,6 +13,7 @@ from app.window.commands import drive_about_part, lay_on_drive_axis
 from app.window.dialogs.axis import AxisDialog
 from app.window.dialogs.take_apart import TakeApartDialog
 from app.window.fields import ChoiceField
+from app.window.start import fill_samples
 from app.window.style import GRID, Words, icon
 from core.quantity import UNIT_SETS
 from core.shapes import SHAPES
@@ -48,6 +49,8 @@ class Actions:
         self.redo = self._action(Command("Redo", window.redo, Keys.Redo, "redo"))
         self.save = self._action(Command("Save", window.save, Keys.Save))
         self.shapes = self._shapes_menu()
+        self.samples = QMenu("Open a sample", window)
+        fill_samples(self.samples, window.files.open_sample)
         self.recent = QMenu("Open recent", window)
         self.axes = ChoiceField("Drive axis", [])
         self.units = ChoiceField("Units", [(name, name) for name in UNIT_SETS])
@@ -98,7 +101,7 @@ class Actions:
         w, bar = self._window, self._window.menuBar()
         self._fill(bar.addMenu("&File"), [
             Command("New", w.files.new, Keys.New), Command("Open…", w.files.ask_open, Keys.Open), self.recent,
-            Command("Open the sample", w.files.open_sample), None,
+            self.samples, None,
             self.save, Command("Save as…", w.save_as, Keys.SaveAs), None, Command("Quit", w.close, Keys.Quit),
         ])
         self._fill(bar.addMenu("&Edit"), [

@@ -13,7 +13,6 @@ from app.window import autosave
 from app.window.dialogs.choosing import DOCUMENT, DOCUMENTS, ask_file, ask_files, ask_where, with_ending
 from app.window.dialogs.form import show_over
 from app.window.session import judged_document
-from app.window.start import SAMPLE
 from app.window.tasks import Task
 from core.errors import FileRefused
 from core.mesh.formats import FORMATS
@@ -80,12 +79,12 @@ class Files(QObject):
         elif paths:
             self.meshes_chosen.emit(paths)
 
-    def open_sample(self) -> None:
-        """Show the sample as a new document, so that saving it asks where."""
-        self.when_safe(self._open_sample)
+    def open_sample(self, path: Path) -> None:
+        """Show a sample as a new document, so that saving it asks where."""
+        self.when_safe(lambda: self._open_sample(path))
 
-    def _open_sample(self) -> None:
-        if self._session.open(SAMPLE):
+    def _open_sample(self, path: Path) -> None:
+        if self._session.open(path):
             self._session.take(self._session.machine, None)
             self.opened.emit()
 

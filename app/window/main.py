@@ -219,7 +219,7 @@ class MainWindow(QMainWindow):
 
     def _show_totals(self, failed: int) -> None:
         if not self.session.assembly.members:
-            self.totals.setText("The ledger is empty: add a shape, drop a mesh, or open the sample.")
+            self.totals.setText("The ledger is empty: add a shape, drop a mesh, or open a sample.")
             return
         total, units = self.session.ledger.total, self.session.units
         if total.mass is None:

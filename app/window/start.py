@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QEvent, QSize, Qt
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QPushButton, QToolButton, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QMenu, QPushButton, QToolButton, QVBoxLayout, QWidget
 
 import app
 from app.window.style import GRID, Words, heading_font, icon
@@ -15,14 +16,47 @@ from app.window.style import GRID, Words, heading_font, icon
 if TYPE_CHECKING:
     from collections.abc import Callable
 
-SAMPLE = Path(app.__file__).resolve().parents[1] / "sample_parts" / "indexing_dial.masswright"
+_FOLDER = Path(app.__file__).resolve().parents[1] / "sample_parts"
+
+
+@dataclass(frozen=True)
+class Sample:
+    """A document that comes with the program: what a menu calls it, what it shows, and its file."""
+
+    words: str
+    tip: str
+    path: Path
+
+
+SAMPLES = (
+    Sample(
+        "Indexing dial", "A dial with six fixtures from a mesh; the motor sits on its shaft.",
+        _FOLDER / "indexing_dial.masswright",
+    ),
+    Sample(
+        "Winding reel", "A reel behind brake, gearbox and belt, with its duty and its balance.",
+        _FOLDER / "winding_reel.masswright",
+    ),
+    Sample(
+        "Tilting flap", "A flap with a counterweight, where gravity rules; with and without it.",
+        _FOLDER / "tilting_flap.masswright",
+    ),
+)
+
+
+def fill_samples(menu: QMenu, open_sample: Callable[[Path], None]) -> None:
+    """Put the samples that are installed into a menu."""
+    menu.setToolTipsVisible(True)
+    for sample in SAMPLES:
+        if sample.path.is_file():
+            menu.addAction(sample.words, partial(open_sample, sample.path)).setToolTip(sample.tip)
 
 
 class StartPanel(QWidget):
     """Three big ways in."""
 
     def __init__(
-        self, add_shape: Callable[[], None], add_mesh: Callable[[], None], open_sample: Callable[[], None]
+        self, add_shape: Callable[[], None], add_mesh: Callable[[], None], open_sample: Callable[[Path], None]
     ) -> None:
         super().__init__()
         self.setObjectName("start")
@@ -34,9 +68,12 @@ class StartPanel(QWidget):
         self.shape.clicked.connect(add_shape)
         self.mesh = _way("mesh", "Drop a mesh here", "or choose an STL file")
         self.mesh.clicked.connect(add_mesh)
-        self.sample = _way("masswright", "Open the sample", "an indexing dial")
-        self.sample.clicked.connect(open_sample)
-        self.sample.setVisible(SAMPLE.is_file())
+        self.sample = _way("masswright", "Open a sample", "a dial, a reel or a flap")
+        self.samples = QMenu("Open a sample", self)
+        fill_samples(self.samples, open_sample)
+        self.sample.setMenu(self.samples)
+        self.sample.setPopupMode(QToolButton.ToolButtonPopupMode.InstantPopup)
+        self.sample.setVisible(not self.samples.isEmpty())
         row = QHBoxLayout()
         row.setSpacing(2 * GRID)
         row.addStretch(1)

@@ -6,6 +6,7 @@ import importlib.util
 import os
 import subprocess
 import sys
+from dataclasses import replace
 from math import pi
 from pathlib import Path
 
@@ -14,6 +15,9 @@ import pytest
 from oracles import moments_of_facets
 
 from core.assembly import findings_of, ledger_of
+from core.assembly.names import NameEntry
+from core.assembly.naming import with_entry
+from core.assembly.overlap_findings import overlaps_looked_for
 from core.document import read_document
 
 ROOT = Path(__file__).resolve().parents[2]
@@ -43,8 +47,9 @@ def test_the_script_makes_the_committed_files_byte_for_byte(tmp_path):
     paths = os.pathsep.join([str(ROOT), os.environ.get("PYTHONPATH", "")])
     command = [sys.executable, str(FOLDER / "make_samples.py"), str(tmp_path)]
     ran = subprocess.run(command, env={**os.environ, "PYTHONPATH": paths}, capture_output=True, text=True, check=True)
-    assert ran.stdout == f"fixture.stl and indexing_dial.masswright are in {tmp_path}\n"
-    for name in ("fixture.stl", "indexing_dial.masswright"):
+    made = ("fixture.stl", "indexing_dial.masswright", "winding_reel.masswright", "tilting_flap.masswright")
+    assert ran.stdout == f"{', '.join(made[:-1])} and {made[-1]} are in {tmp_path}\n"
+    for name in made:
         assert (tmp_path / name).read_bytes() == (FOLDER / name).read_bytes()
 
 
@@ -122,6 +127,90 @@ def test_only_the_flag_moves_the_centre_of_mass_off_the_spindle(dial):
     x, y, _ = dial.total.centre
     assert np.hypot(x, y) * float(dial.total.mass) == pytest.approx(STAINLESS * 0.03 * 0.012 * 0.025 * 0.23, rel=1e-5)
     assert np.degrees(np.arctan2(y, x)) == pytest.approx(30, abs=1e-3)
+
+
+# The winding reel
+
+
+@pytest.fixture(scope="module")
+def reel():
+    return read_document(FOLDER / "winding_reel.masswright")
+
+
+@pytest.fixture(scope="module")
+def flap():
+    return read_document(FOLDER / "tilting_flap.masswright")
+
+
+def test_reel_and_flap_open_without_a_failing_check(reel, flap):
+    for machine in (reel, flap):
+        found = (*machine.findings(), *overlaps_looked_for(machine.assembly))
+        assert [finding.check.text for finding in found if not finding.check.ok] == []
+        assert machine.assembly.without_mass == ()
+
+
+def test_the_inertia_of_the_reel_is_what_a_sketch_gives(reel):
+    def ring(outer: float, inner: float, length: float, density: float) -> tuple[float, float]:
+        mass = density * pi / 4 * (outer**2 - inner**2) * length
+        return mass, mass * (outer**2 + inner**2) / 8
+
+    axle, thread = ring(0.025, 0, 0.26, STEEL), ring(0.0068, 0, 0.02, STEEL)
+    wheel, flange = ring(0.12, 0.025, 0.024, ALUMINIUM), ring(0.34, 0.025, 0.005, ALUMINIUM)
+    window, pin = ring(0.06, 0, 0.005, ALUMINIUM), ring(0.008, 0, 0.018, STEEL)
+    core = ring(0.076, 0.07, 0.12, 700.0)
+    inertia = (
+        axle[1] - thread[1] + wheel[1] + 2 * (flange[1] - 6 * (window[1] + window[0] * 0.11**2))
+        + 3 * (pin[1] + pin[0] * 0.05**2) + core[1] + 7.2 * (0.3**2 + 0.076**2) / 8 + 0.00085
+        + 0.008 * ((0.02**2 + 0.012**2) / 12 + 0.155**2)
+    )
+    answer = reel.drive_answer
+    assert answer.at_load.inertia == pytest.approx(inertia, rel=1e-9)
+    # Two to one in the belt, five to one in the gearbox; the small wheel and the belt turn with the gearbox's shaft.
+    small = ring(0.06, 0.014, 0.024, STEEL)[1]
+    at_motor = 3.1e-4 + 1.8e-5 + 2e-6 + 2.4e-5 + 4.5e-5 + (0.18 * 0.03**2 + small) / 5**2 + inertia / 10**2
+    assert answer.reflected_motor.inertia == pytest.approx(at_motor, rel=1e-9)
+
+
+def test_the_flag_alone_unbalances_the_reel_and_two_masses_correct_it(reel):
+    balance = reel.balance_answer
+    assert balance.found.amount == pytest.approx(0.008 * 0.155, rel=1e-9)
+    assert balance.keeps
+    assert balance.left.amount <= 1e-12 * balance.found.amount
+    assert balance.left.couple_amount <= 1e-12 * balance.found.couple_amount
+
+
+def test_the_ribbon_unwinds_the_reel_when_the_drive_is_off_and_the_brake_keeps_it(reel):
+    # 18 N at a radius of 150 mm.
+    assert reel.drive.torques[0].torque == pytest.approx(2.7, rel=1e-12)
+    assert {(rest.drift, rest.drift_braked) for rest in reel.drive_answer.standstills} == {("turns backwards", "stays")}
+
+
+def test_a_named_dimension_moves_the_coil_and_the_pull_on_it_together(reel):
+    thin = reel.with_assembly(with_entry(reel.assembly, NameEntry("coil_d", "200 mm")))
+    assert thin.drive.torques[0].torque == pytest.approx(1.8, rel=1e-12)
+    assert thin.assembly.node("coil").body.shape.outer_diameter == pytest.approx(0.2, rel=1e-12)
+
+
+def test_the_flaps_own_weight_would_drop_it_but_for_its_counterweight(flap):
+    alone = flap.with_assembly(replace(flap.assembly, variant="without counterweight"))
+    (held,), (free,) = flap.drive_answer.gravity, alone.drive_answer.gravity
+    # Blade less its holes, ribs, lip and screws, by their levers; the shaft and the cam hang at the hinge.
+    blade = 2660 * (0.45 * 0.5 * 0.195 - 4 * pi / 4 * 0.05**2 * 0.255) * 0.006
+    level = blade + 2660 * 2 * 0.02 * 0.004 * 0.36 * 0.23 + 0.065 * 0.414 + 0.22 * 0.004
+    height = 2660 * (0.45 * 0.5 - pi * 0.05**2) * 0.006 * 0.018 + 0.153216 * 0.005 + 0.054 * 0.024 + 0.065 * 0.026
+    assert free.amplitude == pytest.approx(np.hypot(level, height) * 9.80665, rel=1e-6)
+    assert held.amplitude < free.amplitude / 5
+    assert alone.drive_answer.standstills[0].drift == "turns forwards"
+    assert {rest.drift_braked for rest in (*flap.drive_answer.standstills, *alone.drive_answer.standstills)} == {"stays"}
+
+
+def test_the_counterweight_halves_the_continuous_torque_that_holding_the_flap_takes(flap):
+    alone = flap.with_assembly(replace(flap.assembly, variant="without counterweight")).drive_answer
+    with_it = flap.drive_answer
+    assert abs(alone.standstills[0].holding) > 5 * abs(with_it.standstills[0].holding)
+    assert alone.motor.rms > 2 * with_it.motor.rms
+    # What holds costs inertia: the price of a counterweight.
+    assert with_it.at_load.inertia > 1.8 * alone.at_load.inertia
 
 
 def _area(loop: np.ndarray) -> float:

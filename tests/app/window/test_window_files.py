@@ -17,7 +17,7 @@ from window_driver import box_facets, dial, dialog, enter, field, names, no_dial
 
 from app.window import autosave
 from app.window.settings import Settings
-from app.window.start import SAMPLE
+from app.window.start import SAMPLES
 from core.document import read_document, save_document
 from core.machine import Machine
 
@@ -106,9 +106,12 @@ def test_a_save_that_fails_says_so_and_the_work_stays_unsaved(window, tmp_path):
     assert window.session.path is None
 
 
-@pytest.mark.parametrize("command", ["New", "Quit", "Open the sample"])
+@pytest.mark.parametrize("command", ["New", "Quit", "Winding reel"])
 def test_cancel_keeps_the_unsaved_work(dirty, command):
-    trigger(dirty, "File", command)
+    if command == "Winding reel":
+        sample_menu(dirty)[command].trigger()
+    else:
+        trigger(dirty, "File", command)
     box = dialog(dirty)
     assert isinstance(box, QMessageBox)
     assert {button.text() for button in box.buttons()} == {"Save", "Do not save", "Cancel"}
@@ -223,10 +226,21 @@ def test_a_refused_file_leaves_the_open_document_and_says_one_sentence(filled, t
     assert not filled.notice.isVisible()
 
 
-@pytest.mark.skipif(not SAMPLE.is_file(), reason="no sample in this installation")
-def test_the_sample_opens_as_a_new_document_that_saving_does_not_overwrite(window):
-    window.start.sample.click()
-    assert window.session.assembly.members
+def sample_menu(window):
+    """The commands of the File menu that open a sample, by their words."""
+    file = next(action for action in window.menuBar().actions() if action.text() == "&File").menu()
+    samples = next(action for action in file.actions() if action.text() == "Open a sample").menu()
+    return {action.text(): action for action in samples.actions()}
+
+
+@pytest.mark.skipif(not all(sample.path.is_file() for sample in SAMPLES), reason="no samples in this installation")
+@pytest.mark.parametrize("sample", SAMPLES, ids=[sample.words for sample in SAMPLES])
+def test_a_sample_opens_sound_as_a_new_document_that_saving_does_not_overwrite(window, sample):
+    offered = {action.text(): action for action in window.start.samples.actions()}
+    assert list(offered) == list(sample_menu(window)) == ["Indexing dial", "Winding reel", "Tilting flap"]
+    offered[sample.words].trigger()
+    assert window.session.assembly == read_document(sample.path).assembly
+    assert [finding.check.text for finding in window.session.findings if not finding.check.ok] == []
     assert window.session.path is None
     assert not window.session.unsaved
 
