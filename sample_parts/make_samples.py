@@ -307,7 +307,7 @@ def tilting_flap() -> Machine:
     )
     assembly = Assembly(
         "tilting flap", (flap, blocks), (DriveAxis("Hinge", (0.0, 0.0, 0.0), (0.0, 1.0, 0.0)),), "Hinge", names=names,
-        variants=("with counterweight", "without counterweight"), variant="with counterweight",
+        variants=("balanced", "bare"), variant="balanced",
     )
     return _with_typed(assembly, _flap_drive(), {
         "duty.steps.0.angle": "opening", "duty.steps.2.angle": "-opening", "stops.0.angle": "opening/2",
@@ -329,7 +329,7 @@ def _blade() -> tuple[Part, ...]:
         ),
         Part(
             "ribs", "ribs", _shape("flat bar", width=0.02, thickness=0.004, corner_radius=0.0, length=0.36), aluminium,
-            Pose((0.05, -0.15, 0.005), ALONG_X), Row(2, (0.0, 0.3, 0.0)),
+            Pose((0.05, -0.1, 0.005), ALONG_X), Row(2, (0.0, 0.2, 0.0)),
         ),
         Part(
             "screws", "screws", _shape("cylinder", diameter=0.01, length=0.006), Weighed(0.009),
@@ -371,7 +371,7 @@ def _counterweight() -> Group:
         "bar", "bar", _shape("round bar", diameter=0.028, length=0.548), ByMaterial.named("steel, S235"),
         Pose((-0.24, -0.274, 0.0), ALONG_Y), cuts=(threads,),
     )
-    return Group("counterweight", "counterweight", (arms, bar), only_in=("with counterweight",))
+    return Group("counterweight", "counterweight", (arms, bar), only_in=("balanced",))
 
 
 def _flap_drive() -> DriveSettings:

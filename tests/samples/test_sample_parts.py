@@ -192,7 +192,7 @@ def test_a_named_dimension_moves_the_coil_and_the_pull_on_it_together(reel):
 
 
 def test_the_flaps_own_weight_would_drop_it_but_for_its_counterweight(flap):
-    alone = flap.with_assembly(replace(flap.assembly, variant="without counterweight"))
+    alone = flap.with_assembly(replace(flap.assembly, variant="bare"))
     (held,), (free,) = flap.drive_answer.gravity, alone.drive_answer.gravity
     # Blade less its holes, ribs, lip and screws, by their levers; the shaft and the cam hang at the hinge.
     blade = 2660 * (0.45 * 0.5 * 0.195 - 4 * pi / 4 * 0.05**2 * 0.255) * 0.006
@@ -205,7 +205,7 @@ def test_the_flaps_own_weight_would_drop_it_but_for_its_counterweight(flap):
 
 
 def test_the_counterweight_halves_the_continuous_torque_that_holding_the_flap_takes(flap):
-    alone = flap.with_assembly(replace(flap.assembly, variant="without counterweight")).drive_answer
+    alone = flap.with_assembly(replace(flap.assembly, variant="bare")).drive_answer
     with_it = flap.drive_answer
     assert abs(alone.standstills[0].holding) > 5 * abs(with_it.standstills[0].holding)
     assert alone.motor.rms > 2 * with_it.motor.rms

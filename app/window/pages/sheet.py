@@ -10,9 +10,10 @@ from PySide6.QtWidgets import QHBoxLayout, QPushButton, QVBoxLayout, QWidget
 
 from app.window.fields import ChoiceField
 from app.window.numbers import preview
+from app.window.pages.foot import Foot
 from app.window.pages.values import ValuesTable
 from app.window.pages.variant_totals import VariantTotals
-from app.window.style import GRID, Words, icon
+from app.window.style import GRID, icon
 from core.handover import Entry, Sheet, SheetChoice, tsv_of_sheet
 from core.handover.drive_lines import BY_ROW, CYCLE, REFLECTED
 from core.handover.lines import FOR_THE_DRIVE
@@ -72,9 +73,7 @@ class SheetPage(QWidget):
         self.copy_all.setToolTip("Copies name, value and unit of every line, tab-separated, for a spreadsheet.")
         self.copy_all.clicked.connect(self.copy_sheet)
         self.variants = VariantTotals(session)
-        self.told = Words("", "quiet")
-        self.told.setWordWrap(True)
-        self.told.setAlignment(Qt.AlignmentFlag.AlignTop)
+        self.told = Foot("What to know about the values")
         self._lay_out()
         self.variants.itemSelectionChanged.connect(self._leave_sheet)
         self.table.selectionModel().selectionChanged.connect(lambda *_: self._leave_variants())
@@ -140,8 +139,8 @@ class SheetPage(QWidget):
         astray = of_line and not self._key()
         hint = "Select one line to see its values; these are of the whole assembly. " if astray else ""
         waiting = [] if machine is self._session.machine else [BEING_WORKED_OUT]
-        words = " ".join([*waiting, f"{hint}{sheet.title}: {sheet.basis}.", *sheet.notes, *sheet.cautions])
-        self.told.setText(NOTHING if empty else words)
+        words = " ".join([*waiting, f"{hint}{sheet.title}: {sheet.basis}.", *sheet.cautions, *sheet.notes])
+        self.told.say(NOTHING if empty else words)
 
     def copy_sheet(self) -> None:
         """Put the whole sheet on the clipboard, tab-separated: name, value, unit."""
