@@ -31,6 +31,10 @@ class Foot(QScrollArea):
         self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
         self.setAccessibleName(label)
 
+    def text(self) -> str:
+        """Return the sentences shown."""
+        return self.words.text()
+
     def say(self, text: str) -> None:
         """Show these sentences from their beginning."""
         if text != self.words.text():

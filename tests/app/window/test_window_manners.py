@@ -354,13 +354,13 @@ def test_all_text_has_the_contrast_of_wcag_in_both_themes():
 def test_words_icons_and_checks_follow_a_change_of_theme(filled, dressed, monkeypatch):
     from app.window import style
 
-    light = filled.sheet.told.styleSheet()
+    light = filled.sheet.told.words.styleSheet()
     monkeypatch.setattr(style, "is_dark", lambda: True)
     style._repaint(dressed)
     QApplication.processEvents()
     try:
-        assert filled.sheet.told.styleSheet() != light
-        assert style.DARK.quiet in filled.sheet.told.styleSheet()
+        assert filled.sheet.told.words.styleSheet() != light
+        assert style.DARK.quiet in filled.sheet.told.words.styleSheet()
         item = filled.checks.list.topLevelItem(0)
         assert item.foreground(0).color().name() == style.DARK.failed
         assert QGuiApplication.palette().window().color().name() == style.DARK.raised
@@ -368,7 +368,7 @@ def test_words_icons_and_checks_follow_a_change_of_theme(filled, dressed, monkey
         monkeypatch.undo()
         style._repaint(dressed)
     QApplication.processEvents()
-    assert filled.sheet.told.styleSheet() == light
+    assert filled.sheet.told.words.styleSheet() == light
 
 
 @pytest.mark.parametrize(("width", "height", "least"), [(1400, 880, 300), (1280, 720, 180)])
