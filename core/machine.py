@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import TYPE_CHECKING
 
-from core.assembly import Assembly, Finding, telling_findings
+from core.assembly import Assembly, Finding, findings_of, telling_findings
 from core.assembly.names import values_of
 from core.assembly.seats import seated
 from core.checks import Check
@@ -74,10 +74,14 @@ class Machine:
 
         Looked for anew each time: what is known of a mesh grows.
         """
-        found = telling_findings(self.assembly)
-        if not self.has_drive:
-            return found
-        return (*found, *(Finding("", "drive", check) for check in self._drive_checks))
+        return (*telling_findings(self.assembly), *self._drive_findings())
+
+    def all_findings(self) -> tuple[Finding, ...]:
+        """Return every finding, those too that have nothing to tell, for who reads them by program."""
+        return (*findings_of(self.assembly), *self._drive_findings())
+
+    def _drive_findings(self) -> tuple[Finding, ...]:
+        return tuple(Finding("", "drive", check) for check in self._drive_checks) if self.has_drive else ()
 
     def findings_at_once(self) -> tuple[Finding, ...]:
         """Return the findings as far as they are known without waiting for a long duty."""

@@ -109,7 +109,7 @@ def answer_of_machine(machine: Machine, path: str, overlaps: tuple[Finding, ...]
         "axes": list(about.values()),
         "checks": [
             {**check_answer(finding.check), "part": finding.name, "key": finding.key}
-            for finding in (*machine.findings(), *overlaps)
+            for finding in (*machine.all_findings(), *overlaps)
         ],
         "drive": answer_of_drive(machine),
         "balance": answer_of_balance(machine),
