@@ -3,17 +3,17 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
-from functools import cached_property
 from typing import TYPE_CHECKING
 
 from core.assembly import Assembly, Finding, findings_of, telling_findings
 from core.assembly.names import values_of
 from core.assembly.seats import seated
 from core.checks import Check
-from core.drive import BalanceAnswer, DriveAnswer, DriveSettings, Duty, balance_answer, drive_answer
+from core.drive import LOAD, MOTOR, BalanceAnswer, DriveAnswer, DriveSettings, Duty, balance_answer, drive_answer
 from core.drive.naming import drive_uses_of, with_names_read_again, with_names_written_anew
 from core.drive.turning import turning_elsewhere
 from core.errors import MasswrightError
+from core.once import Once
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -24,7 +24,7 @@ _EMPTY = Assembly()
 _NOTHING_ENTERED = DriveSettings()
 
 # A duty of more moves and rests, its repeats written out, takes longer to work out than a window may stand still.
-LONG_DUTY = 1000
+LONG_DUTY = 200
 BEING_WORKED_OUT = "The duty is long: what it asks of the drive is being worked out."
 _WAITING = Check("drive", ok=True, text=BEING_WORKED_OUT)
 
@@ -46,16 +46,25 @@ class Machine:
         """Whether anything was entered about the drive."""
         return self.drive != _NOTHING_ENTERED
 
-    @cached_property
+    @property
     def drive_answer(self) -> DriveAnswer:
         """Everything about torque.
 
         Raises:
             ValueRefused, EditRefused: as drive_answer.
         """
-        return drive_answer(self.assembly, self.drive)
+        if isinstance(self._outcome, MasswrightError):
+            raise self._outcome.with_traceback(None)
+        return self._outcome
 
-    @cached_property
+    @Once
+    def _outcome(self) -> DriveAnswer | MasswrightError:
+        try:
+            return drive_answer(self.assembly, self.drive)
+        except MasswrightError as error:
+            return error
+
+    @Once
     def balance_answer(self) -> BalanceAnswer | None:
         """Everything about balance; None where nothing that has mass turns with the shaft.
 
@@ -64,7 +73,7 @@ class Machine:
         """
         return balance_answer(self.assembly, self.drive)
 
-    @cached_property
+    @Once
     def turning_elsewhere(self) -> Mapping[str, str]:
         """What parts and groups turn with, in words by key; those that turn with the load are not in it."""
         return turning_elsewhere(self.assembly, self.drive)
@@ -91,20 +100,23 @@ class Machine:
     @property
     def at_once(self) -> Machine:
         """The machine if its answer about torque is at hand or takes no time; else without its duty, which is long."""
-        known = "drive_answer" in self.__dict__
-        return self if known or len(self.drive.duty.flat) <= LONG_DUTY else self._without_duty
+        known = "_outcome" in self.__dict__
+        return self if known or self.drive.duty.count <= LONG_DUTY else self._without_duty
 
     def worked_out(self) -> DriveAnswer:
         """Work the answer about torque out and keep it; may be called from another thread than those that look at it.
 
+        What is drawn of it is worked out, too, since that takes its time.
+
         Raises:
             ValueRefused, EditRefused: as drive_answer.
         """
-        # Not by way of the cached property: while it works, that bars every other machine's answer, too.
-        self.__dict__["drive_answer"] = answer = drive_answer(self.assembly, self.drive)
+        answer = self.drive_answer
+        for shaft in (LOAD, MOTOR):
+            answer.curves(shaft)
         return answer
 
-    @cached_property
+    @Once
     def _without_duty(self) -> Machine:
         return replace(self, drive=replace(self.drive, duty=Duty()))
 

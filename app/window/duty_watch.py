@@ -55,9 +55,10 @@ class DutyWatch(QObject):
     def _work(self) -> None:
         machine = self._session.machine
         # What it finds is kept with the machine, where whoever shows it looks for it.
-        self._task = Task(self, lambda _progress: machine.worked_out(), self._found, self._session.said.emit)
+        self._task = Task(self, lambda _progress: machine.worked_out(), self._found, self._found)
 
-    def _found(self, _answer: DriveAnswer) -> None:
+    def _found(self, _outcome: DriveAnswer | str) -> None:
+        """Let the answer be looked at, or the sentence of its refusal; the machine knows which it is."""
         if self._task is not None:
             self._task.deleteLater()
             self._task = None

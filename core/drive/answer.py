@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -31,6 +30,7 @@ from core.drive.torque import Curves, Needs, Study
 from core.drive.train import LOAD, MOTOR, InertiaRatio, Reflected, inertia_ratio, reflected
 from core.errors import ValueRefused
 from core.moments import Moments
+from core.once import Once
 
 if TYPE_CHECKING:
     from core.arrays import FloatArray
@@ -93,7 +93,7 @@ class DriveAnswer:
         """
         return reflected(self.demand.train, self.bodies, shaft)
 
-    @cached_property
+    @Once
     def over_turn(self) -> OverTurn:
         """What holds the load at rest over a full turn, with its standstills marked."""
         return over_a_turn(self.demand, self.standstills)

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -13,6 +12,7 @@ from core.assembly.axes import without_axis
 from core.drive.train import FIXED, LOAD
 from core.errors import EditRefused, ValueRefused
 from core.moments import Moments, radius_of_gyration, unit_vector
+from core.once import Once
 
 if TYPE_CHECKING:
     from core.arrays import FloatArray
@@ -97,7 +97,7 @@ class TurningBody:
     axis: DriveAxis
     shaft: str = LOAD
 
-    @cached_property
+    @Once
     def inertia(self) -> float:
         """J about its axis, kg·m²."""
         return float(self.moments.inertia_about_axis(self.axis.point, self.axis.direction))

@@ -9,13 +9,13 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
 
 from core.arrays import FloatArray, IntArray, frozen, settled
 from core.drive.train import LOAD, LinearLoad, Stage, Train, inertias_of_shafts
+from core.once import Once
 
 if TYPE_CHECKING:
     from core.arrays import ArrayLike
@@ -95,17 +95,17 @@ class Demand:
     frictions: tuple[Friction, ...] = ()
     gravity: Triple = STANDARD_GRAVITY
 
-    @cached_property
+    @Once
     def weight_factor(self) -> float:
         """Size of the acceleration of gravity, m/s²."""
         return float(np.linalg.norm(self.gravity))
 
-    @cached_property
+    @Once
     def inertia(self) -> FloatArray:
         """J (k,) kg·m² on each shaft, with masses moved along a line and the rotor."""
         return inertias_of_shafts(self.train, self.bodies)
 
-    @cached_property
+    @Once
     def turning_inertia(self) -> FloatArray:
         """J (k,) kg·m² on each shaft without the masses moved along a line."""
         moved = np.zeros(len(self.inertia))
@@ -113,12 +113,12 @@ class Demand:
             moved[self.train.index(load.shaft)] += load.mass * load.travel**2
         return frozen(self.inertia - moved)
 
-    @cached_property
+    @Once
     def inertia_at_load(self) -> float:
         """Everything that moves, seen from the load shaft, kg·m²."""
         return float(self.inertia @ self.train.speeds**2)
 
-    @cached_property
+    @Once
     def waves(self) -> Waves:
         """Gravity of the turning bodies, applied forces and applied torques."""
         rows: list[tuple[float, ...]] = []
@@ -137,7 +137,7 @@ class Demand:
         whole = table[:, :2].astype(np.int64)
         return Waves(whole[:, 0], whole[:, 1], *(frozen(column) for column in table[:, 2:].T))
 
-    @cached_property
+    @Once
     def dry(self) -> FloatArray:
         """Friction (k,) N·m on each shaft that does not depend on speed."""
         dry = np.zeros(len(self.inertia))
@@ -147,7 +147,7 @@ class Demand:
             dry[at] += friction.dry(mass * self.weight_factor)
         return frozen(dry)
 
-    @cached_property
+    @Once
     def viscous(self) -> FloatArray:
         """Friction (k,) N·m·s/rad on each shaft."""
         viscous = np.zeros(len(self.inertia))

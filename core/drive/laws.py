@@ -13,12 +13,13 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 from enum import StrEnum
-from functools import cached_property, lru_cache
+from functools import lru_cache
 from typing import TypeAlias
 
 import numpy as np
 
 from core.arrays import FloatArray, IntArray, frozen
+from core.once import Once
 
 # Coefficients of the acceleration's polynomial; the 4-5-6-7 law needs them all.
 DEGREES = 6
@@ -59,7 +60,7 @@ class Zones:
     frequency: FloatArray
     phase: FloatArray
 
-    @cached_property
+    @Once
     def _used(self) -> int:
         """How many of the polynomials' coefficients are used: most laws need two, and time is spent on each."""
         return int(np.flatnonzero(self.polynomial.any(axis=0)).max(initial=0)) + 1

@@ -7,7 +7,6 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from functools import cached_property
 from typing import TypeAlias
 
 import numpy as np
@@ -16,6 +15,7 @@ from core.arrays import ArrayLike, FloatArray, IntArray, frozen
 from core.drive.laws import RAMPED, Law, Zones, ramped_zones, unit_peaks, unit_zones
 from core.drive.refusals import refuse_unless_finite, refuse_unless_positive
 from core.errors import ValueRefused
+from core.once import Once
 
 # A duty of more moves and rests than this, repeats multiplied out, is refused: nobody means it.
 MOST_STEPS = 20_000
@@ -109,7 +109,7 @@ class Move:
         if isinstance(self.timing, ByLimits):
             _refuse_limits(self.law, self.timing)
 
-    @cached_property
+    @Once
     def zones(self) -> Zones:
         """Its zones, from a start at rest."""
         if isinstance(self.timing, ByLimits):
@@ -122,7 +122,7 @@ class Move:
         part = self.smoothing / 2 if self.law == Law.S_CURVE else 0.0
         return ramped_zones(speed, (up, part * up), max(time - up - down, 0.0), (down, part * down))
 
-    @cached_property
+    @Once
     def starts(self) -> tuple[FloatArray, FloatArray, FloatArray]:
         """Time, angle and speed at the start of its zones and at its end, from a start at rest."""
         return self.zones.starts()
@@ -142,12 +142,12 @@ class Rest:
     def __post_init__(self) -> None:
         refuse_unless_positive(self.time, "time of a rest", "rest")
 
-    @cached_property
+    @Once
     def zones(self) -> Zones:
         """One zone in which nothing happens."""
         return Zones.of_rows([(self.time, [0.0], (0.0, 1.0, 0.0))])
 
-    @cached_property
+    @Once
     def starts(self) -> tuple[FloatArray, FloatArray, FloatArray]:
         """Time, angle and speed at its start and at its end."""
         return self.zones.starts()
@@ -184,14 +184,18 @@ class Duty:
 
     def __post_init__(self) -> None:
         refuse_unless_finite(self.start, "angle at the start", "duty")
-        count = sum(step.times * len(step.steps) if isinstance(step, Repeat) else 1 for step in self.steps)
-        if count > MOST_STEPS:
+        if self.count > MOST_STEPS:
             raise ValueRefused(
-                f"a duty holds at most {MOST_STEPS} moves and rests", where="duty", read=f"{count}",
+                f"a duty holds at most {MOST_STEPS} moves and rests", where="duty", read=f"{self.count}",
                 remedy="Lower the repeats",
             )
 
-    @cached_property
+    @property
+    def count(self) -> int:
+        """How many moves and rests a cycle has, repeats multiplied out."""
+        return sum(step.times * len(step.steps) if isinstance(step, Repeat) else 1 for step in self.steps)
+
+    @Once
     def flat(self) -> tuple[Move | Rest, ...]:
         """The moves and rests with the repeats written out."""
         flat: list[Move | Rest] = []
@@ -199,7 +203,7 @@ class Duty:
             flat += list(step.steps) * step.times if isinstance(step, Repeat) else [step]
         return tuple(flat)
 
-    @cached_property
+    @Once
     def positions(self) -> tuple[float, ...]:
         """The angle (rad) before the first of the flat steps and after each of them."""
         turns = [step.angle if isinstance(step, Move) else 0.0 for step in self.flat]
@@ -211,7 +215,7 @@ class Duty:
         travel = sum(abs(step.angle) for step in self.flat if isinstance(step, Move))
         return abs(self.positions[-1] - self.positions[0]) <= _SHARE_SLACK * max(travel, abs(self.start))
 
-    @cached_property
+    @Once
     def timeline(self) -> Timeline:
         """The whole cycle as zones.
 

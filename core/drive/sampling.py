@@ -33,8 +33,8 @@ _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(8)
 # Steps to a border of a range of angles at most, and where they end, relative to the zone.
 _MOST_NEWTON, _CLOSE = 60, 1e-14
 
-# Secants to a passage through zero at most; some eight do.
-_MOST_SECANTS = 60
+# Secants to a passage through zero at most, some eight do; and where they end, relative to the stretch looked at.
+_MOST_SECANTS, _FOUND = 60, 1e-12
 
 # Points of a curve per piece, both ends among them.
 CURVE_POINTS = 9
@@ -55,10 +55,16 @@ class Pieces:
         local = np.where(fractions == 1.0, self.end[:, None], local)
         return np.repeat(self.zone, len(fractions)), local.ravel()
 
-    def within(self, timeline: Timeline, piece: IntArray, local: FloatArray) -> Kinematics:
-        """Return the motion at local times (m,) of pieces (m,), their ends seen from inside them."""
-        middle = timeline.within(self.zone, (self.start + self.end) / 2).angle
-        return replace(timeline.within(self.zone[piece], local), ranged=middle[piece])
+    def middles(self, timeline: Timeline) -> FloatArray:
+        """Return the angle (p,) rad of the load in the middle of each piece."""
+        return timeline.within(self.zone, (self.start + self.end) / 2).angle
+
+    def within(self, timeline: Timeline, middles: FloatArray, piece: IntArray, local: FloatArray) -> Kinematics:
+        """Return the motion at local times (m,) of pieces (m,), their ends seen from inside them.
+
+        `middles` (p,) are the angles that `middles` gives.
+        """
+        return replace(timeline.within(self.zone[piece], local), ranged=middles[piece])
 
 
 def pieces_of(timeline: Timeline, fastest: float, edges: FloatArray) -> Pieces:
@@ -94,7 +100,8 @@ def cut_where(pieces: Pieces, timeline: Timeline, turns: Callable[[Kinematics], 
         turns: gives (s, m) for a motion (m,), continuous within each piece.
     """
     _, local = pieces.points(np.linspace(0.0, 1.0, CURVE_POINTS))
-    motion = pieces.within(timeline, np.repeat(np.arange(len(pieces.zone)), CURVE_POINTS), local)
+    middles = pieces.middles(timeline)
+    motion = pieces.within(timeline, middles, np.repeat(np.arange(len(pieces.zone)), CURVE_POINTS), local)
     values = turns(motion).reshape(-1, len(pieces.zone), CURVE_POINTS)
     above = values > 0
     row, piece, point = np.nonzero(above[..., :-1] != above[..., 1:])
@@ -102,7 +109,7 @@ def cut_where(pieces: Pieces, timeline: Timeline, turns: Callable[[Kinematics], 
         return pieces
     local, every = local.reshape(-1, CURVE_POINTS), np.arange(len(row))
     cut = _zero(
-        lambda at: turns(pieces.within(timeline, piece, at))[row, every],
+        lambda at: turns(pieces.within(timeline, middles, piece, at))[row, every],
         (local[piece, point], local[piece, point + 1]), (values[row, piece, point], values[row, piece, point + 1]),
     )
     zones = np.concatenate([pieces.zone, pieces.zone[piece]])
@@ -136,7 +143,7 @@ def _zero(
         beyond = value * high < 0
         left, low = np.where(beyond, right, left), np.where(beyond, high, low / 2)
         right, high = at, value
-        if ((moved <= _CLOSE * width) | (value == 0)).all():
+        if ((moved <= _FOUND * width) | (value == 0)).all():
             break
         # Where it is found both values may be 0: it stays there while others are looked for.
         low = np.where(low == high, 1.0, low)

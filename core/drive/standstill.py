@@ -20,6 +20,9 @@ if TYPE_CHECKING:
 # Angles that are tried at first, and how often the hardest push is closed in on.
 _ANGLES, _CLOSER = 1441, 4
 
+# Relative to a radian or to the angle: positions of rests that differ by less are one.
+_SAME_ANGLE = 1e-9
+
 Drift: TypeAlias = Literal["stays", "turns forwards", "turns backwards"]
 
 
@@ -159,8 +162,12 @@ def _drift(push: float, against: float) -> Drift:
 
 
 def _different(angles: list[float]) -> list[float]:
-    kept: list[float] = []
-    for angle in angles:
-        if not any(abs(angle - other) <= 1e-9 * max(1.0, abs(angle)) for other in kept):
-            kept.append(angle)
-    return kept
+    """Return the angles without those that differ from an earlier one by round-off only."""
+    values = np.asarray(angles)
+    order = np.argsort(values, kind="stable")
+    rising = values[order]
+    new = np.diff(rising) > _SAME_ANGLE * np.maximum(1.0, np.abs(rising[1:]))
+    run = np.concatenate([[0], np.cumsum(new)])
+    first = np.full(run[-1] + 1, len(values))
+    np.minimum.at(first, run, order)
+    return [angles[at] for at in np.sort(first)]

@@ -8,7 +8,6 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass, replace
-from functools import cached_property
 from typing import TYPE_CHECKING, Self
 
 import numpy as np
@@ -16,6 +15,7 @@ import numpy as np
 from core.arrays import frozen
 from core.drive.sampling import CURVE_POINTS, Pieces, cut_where, integrate, pieces_of
 from core.drive.train import LOAD, MOTOR
+from core.once import Once
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -138,12 +138,12 @@ class Study:
     demand: Demand
     duty: Duty
 
-    @cached_property
+    @Once
     def timeline(self) -> Timeline:
         """The duty laid out in time."""
         return self.duty.timeline
 
-    @cached_property
+    @Once
     def pieces(self) -> Pieces:
         """Stretches in which nothing jumps, driving does not turn to braking and no unbalanced shaft turns far."""
         waves, speeds = self.demand.waves, self.demand.train.speeds
@@ -154,11 +154,15 @@ class Study:
         pieces = pieces_of(self.timeline, fastest, edges)
         return cut_where(pieces, self.timeline, self.demand.passed_on)
 
-    @cached_property
+    @Once
+    def _middles(self) -> FloatArray:
+        return self.pieces.middles(self.timeline)
+
+    @Once
     def _sampled(self) -> tuple[Kinematics, FloatArray]:
         _, local = self.pieces.points(np.linspace(0.0, 1.0, CURVE_POINTS))
-        every = np.arange(len(self.pieces.zone))
-        motion = self.pieces.within(self.timeline, np.repeat(every, CURVE_POINTS), local)
+        every = np.repeat(np.arange(len(self.pieces.zone)), CURVE_POINTS)
+        motion = self.pieces.within(self.timeline, self._middles, every, local)
         return motion, self.demand.terms(motion)
 
     @property
@@ -168,7 +172,14 @@ class Study:
 
     def curves(self, shaft: str = LOAD) -> Curves:
         """Return the curves at a shaft, for drawing: 9 points a piece, both its ends among them."""
-        return self._seen_from(shaft, *self._sampled)
+        if shaft not in self._drawn:
+            self._drawn[shaft] = self._seen_from(shaft, *self._sampled)
+        return self._drawn[shaft]
+
+    @Once
+    def _drawn(self) -> dict[str, Curves]:
+        """The curves that were asked for, by their shaft."""
+        return {}
 
     def needs(self, shaft: str = MOTOR) -> Needs:
         """Return peaks, RMS, power and energy at a shaft."""
@@ -183,7 +194,7 @@ class Study:
             most, least, Energy(float(value[1]), float(value[2]), tuple(value[4:].tolist()), float(error[1:3].sum())),
         )
 
-    @cached_property
+    @Once
     def _integrals(self) -> tuple[tuple[FloatArray, FloatArray], ...]:
         """Integrals (9,) and their errors of each shaft, the motor's first: all shafts take one pass."""
         shafts = self.demand.train.shafts
@@ -214,7 +225,8 @@ class Study:
         for _ in range(_CLOSER):
             locals_ = [search.around for search in searches]
             near = np.concatenate([np.repeat(search.near, len(_AROUND)) for search in searches])
-            motion = self.pieces.within(self.timeline, near, np.concatenate([one.ravel() for one in locals_]))
+            local = np.concatenate([one.ravel() for one in locals_])
+            motion = self.pieces.within(self.timeline, self._middles, near, local)
             closer = self._seen_from(curves.shaft, motion, self.demand.terms(motion))
             edges = np.cumsum([0, *(one.size for one in locals_)])
             searches = [search.closer(closer, int(edge)) for search, edge in zip(searches, edges[:-1], strict=True)]

@@ -8,7 +8,6 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from functools import cached_property
 from typing import TYPE_CHECKING, Literal, TypeAlias
 
 import numpy as np
@@ -22,6 +21,7 @@ from core.drive.refusals import (
     refuse_unless_positive,
 )
 from core.errors import ValueRefused
+from core.once import Once
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -292,7 +292,7 @@ class Train:
         for item in (*self.linear, *self.inertias):
             self.index(item.shaft, item.name)
 
-    @cached_property
+    @Once
     def shafts(self) -> tuple[str, ...]:
         """The names of the shafts, from the motor to the load."""
         return MOTOR, *(stage.name for stage in self.stages)
@@ -312,7 +312,7 @@ class Train:
             )
         return self.shafts.index(shaft)
 
-    @cached_property
+    @Once
     def shaft_words(self) -> dict[str, str]:
         """What each shaft is called where it is shown, by its first name, from the motor to the load."""
         if not self.stages:
@@ -336,7 +336,7 @@ class Train:
         """
         return self.shaft_words[self.first_name(shaft)]
 
-    @cached_property
+    @Once
     def speeds(self) -> FloatArray:
         """Turns s (k,) of each shaft for one turn of the load shaft, negative for the other way round."""
         ratios = np.array([stage.ratio for stage in self.stages] + [1.0])

@@ -4,10 +4,12 @@ from __future__ import annotations
 
 from dataclasses import replace
 
+import pytest
 from drives import flap_machine
 
 from core.assembly import Assembly, DriveAxis
-from core.drive import Duty, Repeat, StopCase, Train
+from core.drive import ByTime, DriveSettings, Duty, Move, Repeat, StopCase, Train
+from core.errors import ValueRefused
 from core.machine import LONG_DUTY, Machine
 
 
@@ -66,7 +68,7 @@ def test_the_empty_machine_is_about_the_default_axis():
 
 def test_a_long_duty_is_left_out_of_what_is_known_at_once_until_it_is_worked_out():
     machine = flap_machine()
-    long = machine.with_drive(replace(machine.drive, duty=Duty((Repeat(machine.drive.duty.steps[:2], 501),))))
+    long = machine.with_drive(replace(machine.drive, duty=Duty((Repeat(machine.drive.duty.steps[:2], LONG_DUTY // 2 + 1),))))
     assert len(long.drive.duty.flat) == LONG_DUTY + 2
     assert machine.at_once is machine
     short = long.at_once
@@ -82,3 +84,14 @@ def test_a_long_duty_is_left_out_of_what_is_known_at_once_until_it_is_worked_out
     assert answer.load.peak_speed == machine.with_drive(
         replace(machine.drive, duty=Duty(machine.drive.duty.steps[:2]))
     ).drive_answer.load.peak_speed
+
+
+def test_a_long_duty_that_cannot_be_worked_out_says_why_once_that_is_known():
+    steps = (Repeat((Move(0.1, ByTime(0.5)), Move(-0.1, ByTime(0.5))), LONG_DUTY),)
+    machine = Machine(Assembly(), DriveSettings(duty=Duty(steps), stops=(StopCase(1.0),)))
+    assert machine.at_once is not machine
+    with pytest.raises(ValueRefused, match="nothing that has mass turns"):
+        machine.worked_out()
+    assert machine.at_once is machine
+    found = [finding.check.text for finding in machine.findings() if finding.name == "drive"]
+    assert "nothing that has mass turns" in found[0]

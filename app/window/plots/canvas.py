@@ -3,27 +3,29 @@
 from __future__ import annotations
 
 import html
+import math
 from typing import TYPE_CHECKING
 
 import pyqtgraph as pg
-from PySide6.QtCore import Qt, Signal
+from PySide6.QtCore import Qt, QTimer, Signal
 from PySide6.QtGui import QColor, QFocusEvent, QKeyEvent, QMouseEvent, QPen
 from PySide6.QtWidgets import QGraphicsGridLayout
 
-from app.window.plots.graph import nearest, thinned
+from app.window.plots.graph import MOST_POINTS, nearest, thinned, within
 from app.window.plots.looks import LOOKS
 from app.window.plots.signs import SIZE, ink, path_of
 from app.window.style import colours
 from core.quantity import compact
 
 if TYPE_CHECKING:
-    from app.window.plots.graph import Graph
+    from app.window.plots.graph import Graph, Trace
+    from core.arrays import FloatArray
 
 STEPS = {
     Qt.Key.Key_Left: -1, Qt.Key.Key_Right: 1, Qt.Key.Key_PageUp: -20, Qt.Key.Key_PageDown: 20,
     Qt.Key.Key_Home: -(10**9), Qt.Key.Key_End: 10**9,
 }
-DOT = 4
+DOT, ZOOM_REST_MS = 4, 60
 # Steps of an axis in degrees, and the px that a number beside it takes.
 DEGREES, ROOM = (360, 180, 90, 45, 30), 48
 
@@ -64,6 +66,7 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]  # pyqtgraph has no types
         super().__init__()
         self._graph: Graph | None = None
         self._at = -1
+        self._thinned = False
         self._place: tuple[str, tuple[float, float]] | None = None
         self._lines: list[pg.PlotDataItem] = []
         self._spots: list[pg.ScatterPlotItem] = []
@@ -80,7 +83,19 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]  # pyqtgraph has no types
             item.setZValue(depth)
             self.box.addItem(item, ignoreBounds=True)
         self._cursor.hide()
+        # Zooming comes in many small steps: the lines follow once it rests.
+        self._rest = QTimer(self, singleShot=True, interval=ZOOM_REST_MS)
+        self._rest.timeout.connect(self._draw_again)
+        self.box.sigXRangeChanged.connect(self._zoomed)
         self.dress()
+
+    def _zoomed(self) -> None:
+        if self._thinned:
+            self._rest.start()
+
+    def _draw_again(self) -> None:
+        if self._graph is not None:
+            self._draw_lines(self._graph)
 
     def _lay_out(self) -> None:
         """Put the axes beside the box; a ready-made plot would bring menus of its own with it."""
@@ -131,33 +146,49 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]  # pyqtgraph has no types
             label = html.escape(f"{words}, {unit.symbol}" if unit.symbol else words)
             axis.setLabel(label, color=colours().text)
             axis.picture = None
+        if not same:
+            self.show_all()
         self._draw_lines(graph)
         self._draw_spots(graph)
         self._cursor.hide()
         self._mark.clear()
-        if not same:
-            self.show_all()
+
 
     def show_all(self) -> None:
         """Fit everything that is drawn."""
         self.box.enableAutoRange()
 
     def _draw_lines(self, graph: Graph) -> None:
+        """Draw of every line what the range shown needs."""
         while len(self._lines) < len(graph.traces):
-            item = pg.PlotDataItem(antialias=True)
+            item = pg.PlotDataItem()
             self.box.addItem(item)
             self._lines.append(item)
+        everywhere = self.box.autoRangeEnabled()[0]
+        low, high = (-math.inf, math.inf) if everywhere else self.box.viewRange()[0]
+        self._thinned = False
         for number, item in enumerate(self._lines):
             if number >= len(graph.traces):
                 item.setData([], [])
                 continue
             trace = graph.traces[number]
-            look = LOOKS[trace.look]
+            x, y = trace.x / graph.x[1].factor, trace.y / graph.y[1].factor
+            if len(x) > MOST_POINTS:
+                self._thinned = True
+                shown = within(x, low, high)
+                x, y = x[shown], y[shown]
             # The sum, drawn first, lies on top of its terms.
             item.setZValue(10 if trace.look == "sum" else 5)
-            x, y = thinned(trace.x / graph.x[1].factor, trace.y / graph.y[1].factor)
-            dots = {} if trace.joined else {"symbolBrush": look.colour, "symbolPen": None, "symbolSize": DOT}
-            item.setData(x, y, pen=look.pen if trace.joined else None, symbol=None if trace.joined else "o", **dots)
+            self._draw_line(item, trace, x, y)
+
+    @staticmethod
+    def _draw_line(item: pg.PlotDataItem, trace: Trace, x: FloatArray, y: FloatArray) -> None:
+        look, dense = LOOKS[trace.look], len(x) > MOST_POINTS
+        x, y = thinned(x, y)
+        if trace.joined:
+            item.setData(x, y, pen=look.hairline if dense else look.pen, symbol=None, antialias=not dense)
+        else:
+            item.setData(x, y, pen=None, symbol="o", symbolBrush=look.colour, symbolPen=None, symbolSize=DOT)
 
     def _draw_spots(self, graph: Graph) -> None:
         pen, brush = ink()

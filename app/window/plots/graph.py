@@ -7,12 +7,14 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from core.arrays import ROUND_OFF
+
 if TYPE_CHECKING:
     from core.arrays import FloatArray
     from core.quantity import Unit
 
-# A line of more points than this is drawn by the lowest and highest of so many stretches of it.
-MOST_POINTS = 6000
+# A line of more points than this is drawn by the lowest and highest of stretches of it, two to a pixel about.
+MOST_POINTS = 2000
 
 
 @dataclass(frozen=True, eq=False)
@@ -96,6 +98,18 @@ class Graph:
         columns = [column.shown.tolist() for column in self.columns]
         headings: list[str | float] = [column.title for column in self.columns]
         return [headings, *(list(row) for row in zip(*columns, strict=True))]
+
+
+def within(x: FloatArray, low: float, high: float) -> slice:
+    """Return which points of a line whose x never falls are needed to draw it between two x, one beyond each end.
+
+    Of a line whose x falls by more than round-off anywhere that is all of them.
+    """
+    slack = ROUND_OFF * float(np.abs(x).max(initial=0.0))
+    if (x[1:] < x[:-1] - slack).any():
+        return slice(None)
+    first, last = np.searchsorted(x, [low, high], side="left")
+    return slice(max(int(first) - 1, 0), int(last) + 1)
 
 
 def thinned(x: FloatArray, y: FloatArray, most: int = MOST_POINTS) -> tuple[FloatArray, FloatArray]:

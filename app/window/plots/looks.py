@@ -32,7 +32,15 @@ class Look:
     @property
     def pen(self) -> QPen:
         """What draws the line."""
-        pen = QPen(self.colour, self.width)
+        return self._pen(self.width)
+
+    @property
+    def hairline(self) -> QPen:
+        """What draws a line that goes up and down in every pixel: at any other width that takes seconds."""
+        return self._pen(1.0)
+
+    def _pen(self, width: float) -> QPen:
+        pen = QPen(self.colour, width)
         pen.setCosmetic(True)
         pen.setCapStyle(Qt.PenCapStyle.FlatCap)
         if self.dashes:

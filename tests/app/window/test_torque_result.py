@@ -21,9 +21,9 @@ from PySide6.QtWidgets import QApplication
 from app.window.pages.torque.result_graphs import CHOICES, OVER_ANGLE, OVER_SPEED, OVER_TIME, OVER_TURN, graph_of
 from app.window.pages.torque.result_tables import Number
 from app.window.pages.torque.result_view import CURVES, NUMBERS
-from app.window.plots.graph import thinned
-from core.drive import DriveSettings, Duty, StopCase, Train
-from core.machine import Machine
+from app.window.plots.graph import MOST_POINTS, thinned, within
+from core.drive import ByTime, DriveSettings, Duty, Move, Repeat, Rest, StopCase, Train
+from core.machine import BEING_WORKED_OUT, Machine
 from core.quantity import DEFAULT_UNITS, UNIT_SETS, significant
 
 if TYPE_CHECKING:
@@ -316,3 +316,52 @@ def test_a_thinned_line_keeps_its_ends_its_highest_and_its_lowest_point(count, m
     assert (xs[0], xs[-1]) == (x[0], x[-1])
     np.testing.assert_array_equal(ys, y[xs.astype(int)])
     assert (np.diff(xs) >= 0).all()
+
+
+def test_a_long_duty_is_worked_out_beside_the_window_and_then_shown(window, qtbot):
+    result = result_of(window)
+    moves = (Move(0.1, ByTime(0.5)), Rest(0.1), Move(-0.1, ByTime(0.5)))
+    long = Duty((Repeat(moves, 100),))
+    assert window.session.edit_drive("Long duty", lambda drive: replace(drive, duty=long))
+    assert result.told.text() == BEING_WORKED_OUT
+    assert not result.numbers.isVisible()
+    assert BEING_WORKED_OUT in window.sheet.told.text()
+    qtbot.waitUntil(result.numbers.isVisible, timeout=20_000)
+    assert row_of(table_of(result, "What the duty asks"), "Time of one cycle")[1] == "110.00"
+    assert BEING_WORKED_OUT not in window.sheet.told.text()
+    choose(result, OVER_TIME)
+    assert len(result.plot.graph.across) > MOST_POINTS
+    drawn = result.plot.canvas._lines[0].getOriginalDataset()[0]
+    assert len(drawn) <= MOST_POINTS + 4
+    window.session.undo()
+    result.switch.choose(NUMBERS)
+    assert row_of(table_of(result, "What the duty asks"), "Time of one cycle")[1] == "4.2487"
+
+
+def test_zooming_into_a_long_curve_shows_its_own_points(window, qtbot):
+    result = result_of(window)
+    long = Duty((Repeat((Move(0.1, ByTime(0.5)), Rest(0.1), Move(-0.1, ByTime(0.5))), 100),))
+    window.session.edit_drive("Long duty", lambda drive: replace(drive, duty=long))
+    qtbot.waitUntil(lambda: window.session.machine.at_once is window.session.machine, timeout=20_000)
+    qtbot.waitUntil(result.numbers.isVisible)
+    choose(result, OVER_TIME)
+    canvas, trace = result.plot.canvas, result.plot.graph.traces[0]
+    canvas.box.setXRange(10.0, 12.0, padding=0)
+
+    def all_there() -> bool:
+        x, y = canvas._lines[0].getOriginalDataset()
+        inside, wanted = (x >= 10.0) & (x <= 12.0), (trace.x >= 10.0) & (trace.x <= 12.0)
+        return inside.sum() == wanted.sum() and bool((y[inside] == trace.y[wanted]).all())
+
+    qtbot.waitUntil(all_there)
+
+
+@given(st.integers(2, 60), st.floats(-1, 2), st.floats(0, 1), st.integers(0, 10**6))
+def test_the_points_within_a_range_are_those_in_it_and_one_beyond_each_end(count, low, width, seed):
+    x = np.sort(np.random.default_rng(seed).random(count))
+    kept = x[within(x, low, low + width)]
+    inside = x[(x >= low) & (x <= low + width)]
+    assert set(inside) <= set(kept)
+    assert len(kept) <= len(inside) + 2
+    backwards = x[::-1].copy()
+    assert len(backwards[within(backwards, low, low + width)]) == count

@@ -224,3 +224,14 @@ def test_the_rms_torque_is_judged_at_the_mean_speed():
 def test_limits_whose_speeds_do_not_rise_are_refused(points):
     with pytest.raises(ValueRefused, match="one point or more, the speeds rising"):
         LimitCurve(points)
+
+
+def test_ten_thousand_rests_are_named_once_each_in_their_order():
+    steps = tuple(step for number in range(5000) for step in (Move(0.1 + 1e-4 * (number % 50), ByTime(0.1)), Rest(0.1)))
+    duty = Duty((*steps, Move(-sum(step.angle for step in steps if isinstance(step, Move)), ByTime(1.0)), Rest(0.5)))
+    rests = standstills_of(Study(flap_with(), duty))
+    angles = [rest.angle for rest in rests]
+    # The last rest is the start again, to the round-off of 5,000 moves.
+    assert len(angles) == 5001
+    assert angles == sorted(angles)
+    assert angles[0] == 0.0
