@@ -316,6 +316,10 @@ class Form(QWidget):
         self._layout.setLabelAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignTop)
         self._layout.setRowWrapPolicy(QFormLayout.RowWrapPolicy.DontWrapRows)
 
+    def lay_out_anew(self) -> None:
+        """Ask for the heights of sentences again: Qt keeps those that a scroll area asked for at another width."""
+        self._layout.invalidate()
+
     def heading(self, text: str) -> None:
         """Start a section."""
         label = QLabel(text)

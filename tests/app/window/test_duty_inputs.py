@@ -358,3 +358,16 @@ def test_what_is_typed_or_refused_stays_when_the_document_is_judged_anew(filled:
     QTest.keyClick(editor, Qt.Key.Key_Return)
     QApplication.processEvents()
     assert steps(filled)[0].angle == pytest.approx(TURN(30), rel=1e-15)
+
+
+def test_a_refusal_that_makes_the_fields_scroll_is_shown_whole(filled: MainWindow, qtbot: QtBot) -> None:
+    filled.resize(1280, 720)
+    panel = pasted_duty(filled, "90\t2")
+    choose(choice(panel.editor, "law"), "S-curve")
+    choose(choice(panel.editor, "given by"), "limits")
+    QTest.qWait(50)
+    enter(field(panel.editor, "speed"), "-5")
+    QTest.qWait(50)
+    wrong = field(panel.editor, "speed").parentWidget().wrong
+    assert "read −5 rpm" in wrong.text() or "read -5 rpm" in wrong.text()
+    qtbot.waitUntil(lambda: wrong.height() >= wrong.heightForWidth(wrong.width()), timeout=2000)

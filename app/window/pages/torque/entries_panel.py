@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from functools import partial
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import Qt, QTimer
 from PySide6.QtWidgets import (
     QFrame,
     QHBoxLayout,
@@ -76,6 +76,9 @@ class EntriesPanel(QWidget):
         self.editor.setFrameShape(QFrame.Shape.NoFrame)
         self.editor.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.editor.setAccessibleName(f"Fields of {label.lower()}")
+        self._settle = QTimer(self, singleShot=True, interval=0)
+        self._settle.timeout.connect(self._settle_heights)
+        self.editor.verticalScrollBar().rangeChanged.connect(lambda *_: self._settle.start())
         self.buttons = QHBoxLayout()
         self.buttons.setSpacing(GRID // 2)
         self._lay_out()
@@ -245,6 +248,11 @@ class EntriesPanel(QWidget):
             layout.addWidget(form)
         layout.addStretch(1)
         swap(self.editor, page)
+
+    def _settle_heights(self) -> None:
+        """Let a sentence below a field have the room that it needs beside the scroll bar, too."""
+        for form in self.editor.findChildren(Form):
+            form.lay_out_anew()
 
     def _allow(self) -> None:
         listed = [entry for entry in self.table.selected if entry.holder]
