@@ -22,8 +22,12 @@ if TYPE_CHECKING:
 
 # rad: facets that turn by less across an edge may belong to one round surface.
 SOFT: Final = float(np.radians(32))
-# A patch this many times as large as each of its soft neighbours is a flat, not a facet of a round.
-TANGENT_FLAT: Final = 4.0
+# A patch is a flat, not a facet of a round, that is so many times as large as each of its soft neighbours, and as all
+# of them together: the facets at the top of a torus make a ring in one plane that is not.
+FLAT_TO_EACH: Final = 4.0
+FLAT_TO_ALL: Final = 1.5
+# Patches that it takes to show a round: one is a bevel, and through the edges of two there is always a circle.
+FEWEST_PATCHES: Final = 3
 # rad: a direction this near to an axis of the frame is that axis. Single precision in a file loses about as much.
 SAME_WAY: Final = 1e-6
 # Cosine of the largest angle between the normals of one plane: chains of nearly coplanar facets may bend further.
@@ -137,9 +141,13 @@ def _flats(surface: Surface) -> BoolArray:
     area = np.bincount(surface.patches, surface.areas, count)
     rim = np.flatnonzero((surface.mates >= 0) & (np.abs(surface.turns) < SOFT) & ~surface.coplanar)
     here, there = surface.patches[rim // 3], surface.patches[surface.mates[rim] // 3]
+    here, there = np.divmod(np.unique(here * count + there), count)
     largest = np.zeros(count)
     np.maximum.at(largest, here, area[there])
-    return np.asarray(area > TANGENT_FLAT * largest)
+    flat = (area > FLAT_TO_EACH * largest) & (area > FLAT_TO_ALL * np.bincount(here, area[there], count))
+    both_round = ~flat[here] & ~flat[there]
+    labels = connected(count, here[both_round], there[both_round])
+    return np.asarray(flat | (np.bincount(labels)[labels] < FEWEST_PATCHES))
 
 
 def _side_by_side(owner: IntArray, count: int) -> tuple[IntArray, IntArray]:

@@ -7,7 +7,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.spatial.transform import Rotation
 from strategies import LENGTHS, mesh_body
@@ -22,7 +22,7 @@ from core.mesh import MeshAsset
 from core.mesh.stl_writing import stl_of_triangles
 from core.mesh.weld import weld_exactly
 from core.placement import Pose, Ring
-from core.shapes import SHAPES, Box, Cylinder, Frustum, OutlinedShape, RegularPrism, Torus, Tube
+from core.shapes import SHAPES, Box, Cylinder, Extruded, Frustum, Outline, OutlinedShape, RegularPrism, Torus, Tube
 
 FACETS = Path(__file__).resolve().parents[3] / "facets"
 
@@ -89,7 +89,7 @@ def test_names_are_all_different_directions_unit_and_frames_turns(key):
     assert len({datum.name for datum in found}) == len(found)
     for datum in found:
         turn = datum.frame.turn
-        assert turn.T @ turn == pytest.approx(np.eye(3), abs=1e-15)
+        assert turn.T @ turn == pytest.approx(np.eye(3), abs=1e-14)
         assert np.linalg.det(turn) == pytest.approx(1, rel=1e-14)
         assert (turn[:, 2] == datum.direction).all()
 
@@ -198,3 +198,42 @@ def test_a_tessellated_flange_offers_its_axis_and_those_of_its_six_bolt_holes():
     assert radii == pytest.approx(radii.mean(), rel=1e-5)
     angles = np.sort(np.arctan2(across[:, 1], across[:, 0]))
     assert np.diff(angles) == pytest.approx(math.pi / 3, rel=1e-5)
+
+
+@pytest.mark.parametrize("steps", [24, 36, 48, 50, 60, 90])
+def test_a_torus_is_one_round_however_it_is_cut_into_facets(steps):
+    """With a multiple of four steps around the section, bands at top and bottom are plane rings of facets."""
+    for shape in (Torus(0.3, 0.05), Torus(0.3, 0.25)):
+        (region,) = regions_of(shape.facets(steps)).regions
+        assert not region.is_plane
+        assert region.direction.tolist() == [0, 0, 1]
+        assert len(region.facets) == len(shape.facets(steps).corners)
+
+
+def test_a_shallow_bevel_is_a_face_and_two_of_them_are_no_round():
+    """A bar of 100 × 20 mm with a roof of slopes of 15° and 5 mm, extruded by 0.2 m."""
+    rise = 0.005 * math.tan(math.radians(15))
+    corners = [(-0.05, 0.0), (0.05, 0.0), (0.05, 0.02), (0.045, 0.02 + rise), (-0.045, 0.02 + rise), (-0.05, 0.02)]
+    line = part(Extruded.of({"length": 0.2}, Outline.of([(x, y, 0.0, 0.0) for x, y in corners])))
+    assert {"slanted face", "slanted face (2)", "face +y", "face −y", "face +x", "face −x"} <= set(names(line))
+    assert not [name for name in names(line) if "round" in name]
+
+
+@given(st.integers(0, 2**32 - 1), st.sampled_from([1, 2, 3, 5, 12, 60]), st.sampled_from(["soup", "grid", "flat", "folded"]))
+@settings(max_examples=60)
+def test_any_triangles_give_some_places_or_none_with_names_that_differ(seed, count, kind):
+    draw = np.random.default_rng(seed)
+    triangles = draw.normal(size=(count, 3, 3))
+    if kind == "grid":
+        triangles = draw.integers(0, 3, size=(count, 3, 3)).astype(float)
+    elif kind == "flat":
+        triangles[:, :, 2] = 0.5
+    elif kind == "folded":
+        triangles = np.concatenate([triangles, triangles[:, ::-1]])
+    asset = MeshAsset.of_bytes(stl_of_triangles(triangles.astype(np.float32), "any"), "any.stl")
+    found = surface_datums(MeshBody(asset, 1e-3)).datums
+    assert len({datum.name for datum in found}) == len(found)
+    for datum in found:
+        assert np.linalg.norm(datum.direction) == pytest.approx(1, rel=1e-12)
+        assert np.isfinite(datum.point).all()
+        assert datum.frame.turn.T @ datum.frame.turn == pytest.approx(np.eye(3), abs=1e-12)
