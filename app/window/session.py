@@ -148,6 +148,7 @@ class Session(QObject):
         before = self.history.undone().present
         try:
             after = before.with_assembly(change(before.assembly))
+            check_linked_lines(before.assembly, after.assembly)
             ledger, findings = ledger_of(after.assembly), after.findings_at_once()
         except MasswrightError as error:
             return str(error)

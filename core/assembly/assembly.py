@@ -162,22 +162,26 @@ class Assembly:
         """The parts that the totals leave out, because nothing says what they weigh or they bound no volume."""
         return tuple(part for part in self.table.parts if part.single is None)
 
-    @cached_property
+    @property
     def bases(self) -> Mapping[str, str]:
         """Where the values of each part that counts come from, by its key, as shown beside them.
 
-        In a linked group whose file is missing or has changed all are last values.
+        In a linked group whose file is missing or has changed all are last values; that may be found at any time.
         """
-        bases: dict[str, str] = {}
-        around: list[str] = []
-        for node, depth in walk(self.counted.members):
-            del around[depth:]
-            outer = next((basis for basis in around if basis), "")
-            if isinstance(node, Part):
-                bases[node.key] = outer or node.basis
-            else:
-                around.append(outer or (node.link.basis if node.link is not None else ""))
-        return bases
+        doubtful = [(group, group.link.basis) for group in self._linked if group.link is not None and group.link.basis]
+        # The outermost group has the last word.
+        last = {part.key: basis for group, basis in reversed(doubtful) for part in group.table.parts}
+        return {**self._own_bases, **last} if last else self._own_bases
+
+    @cached_property
+    def _own_bases(self) -> Mapping[str, str]:
+        return {part.key: part.basis for part in self.table.parts}
+
+    @cached_property
+    def _linked(self) -> tuple[Group, ...]:
+        """The linked groups that count, an outer one before those in it."""
+        nodes = (node for node, _ in walk(self.counted.members))
+        return tuple(node for node in nodes if isinstance(node, Group) and node.link is not None)
 
     @cached_property
     def bounds(self) -> FloatArray | None:

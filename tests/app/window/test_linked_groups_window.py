@@ -228,6 +228,13 @@ def test_the_page_of_a_line_inside_says_where_it_is_edited_and_takes_no_typing(l
     assert "g1/p1" in linked.session.assembly
 
 
+def test_doing_the_last_edit_over_does_not_reach_the_lines_inside(linked):
+    before = linked.session.machine
+    refusal = linked.session.amend("Move", lambda a: a.replaced(replace(a.node("g1/p1"), pose=Pose((1.0, 0, 0)))))
+    assert "p1: this line belongs to the linked document holder.masswright" in refusal
+    assert linked.session.machine is before
+
+
 def test_the_group_itself_is_renamed_placed_and_repeated(linked):
     show_page(linked, "g1")
     enter(field(linked.part, "Name"), "clamp")

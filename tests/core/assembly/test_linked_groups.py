@@ -265,6 +265,19 @@ def test_a_changed_file_is_a_failed_check_until_it_is_read_again() -> None:
     ]
 
 
+def test_what_is_found_later_is_told_of_an_assembly_that_was_looked_at_before() -> None:
+    assembly = host()
+    bases = []
+    for found in ("a" * 64, None, "b" * 64, "a" * 64):
+        assembly.node("g1").link.note(found)
+        bases.append((ledger_of(assembly).lines[1].basis, selected(assembly).bases))
+    missing, changed = "last values: linked file missing", "last values: linked file has changed"
+    assert bases == [
+        ("computed", ("computed",)), (missing, ("computed", missing)), (changed, ("computed", changed)),
+        ("computed", ("computed",)),
+    ]
+
+
 def test_what_was_noted_of_a_file_holds_for_every_assembly_that_shares_the_link() -> None:
     """So that undo brings back no old news."""
     before = host()
