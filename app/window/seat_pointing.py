@@ -68,7 +68,8 @@ class SeatPointing(QObject):
         """Light up the place under the pointer that a click would take."""
         pointed = self._pointed(spot)
         self._session.found.emit(_NOTHING if pointed is None else pointed.edges)
-        self._ask("" if pointed is None else said_place(self._session.assembly, pointed.anchor))
+        if self._task is None:
+            self._ask("" if pointed is None else said_place(self._session.assembly, pointed.anchor))
 
     def click(self, spot: QPointF) -> None:
         """Take the place under the pointer, as the line's own or as the one that it is set on."""

@@ -15,7 +15,7 @@ from PySide6.QtWidgets import QApplication, QPushButton
 from window_driver import choose, enter, field, solid, text_of, write_stl
 
 from app.window.pages.part_seat import SeatSection
-from core.assembly import Assembly, MeshBody, Part
+from core.assembly import Assembly, Group, MeshBody, Part
 from core.assembly.seat import Anchor, Seat
 from core.assembly.seats import with_seat
 from core.machine import Machine
@@ -293,3 +293,34 @@ def test_the_wheel_changes_no_list_that_has_not_the_focus(parted):
     assert {each.accessibleName() for each in (section.own, section.line, section.place)} == {
         "Seated by its place", "Seated on the line", "Seated on the place",
     }
+
+
+def test_the_faces_of_a_large_mesh_are_looked_for_when_it_is_pointed_at(parted, qtbot, tmp_path, monkeypatch):
+    monkeypatch.setattr("core.assembly.seats.datums.FOUND_AT_ONCE", 100)
+    path = write_stl(tmp_path / "bar.stl", Cylinder(60.0, 200.0).facets(60).triangles)
+    mesh = Part("mesh", "bar", MeshBody(MeshAsset.read(path), 1e-3), NotSet(), Pose((0.1, 0.25, 0.0)))
+    parted.session.take(Machine(assembly().inserted(mesh)), None)
+    select(parted, "mesh")
+    parted.session.seat_wanted.emit("mesh")
+    pointing, top = parted.seat_pointing, spot_of(parted, (0.105, 0.245, 0.2))
+    pointing.hover(QPointF(top))
+    assert pointing.hint.text().endswith("looking for the faces of bar …")
+    qtbot.waitUntil(lambda: pointing._task is None)
+    pointing.hover(QPointF(top))
+    assert pointing.hint.text().endswith("face +z of bar")
+    pointing.leave()
+
+
+def test_a_group_is_seated_by_a_part_in_it_that_is_clicked(parted):
+    arm = Group("arm", "arm", (assembly().node("hub"),))
+    parted.session.take(Machine(assembly().removed(("hub",)).inserted(arm)), None)
+    select(parted, "arm")
+    section = seat_section(parted)
+    section.own._fill()
+    assert section.own.findText("hub: face +z") >= 0
+    button(parted, "Pick in the view").click()
+    click(parted, (0.34, 0.1, 0.16))
+    click(parted, (0.1, -0.1, 0.02))
+    assert node(parted, "arm").seat == Seat(Anchor("hub", "face +z"), Anchor("plate", "face +z"))
+    assert node(parted, "hub").pose == assembly().node("hub").pose
+    assert seat_section(parted).own.currentText() == "hub: face +z"
