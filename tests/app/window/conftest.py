@@ -10,6 +10,8 @@ pytest.importorskip("PySide6.QtWidgets")
 from core.machine import Machine
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from PySide6.QtWidgets import QApplication
     from pytestqt.qtbot import QtBot
 
@@ -46,6 +48,31 @@ def filled(window: MainWindow) -> MainWindow:
 
     window.session.take(Machine(dial()), None)
     return window
+
+
+@pytest.fixture
+def make_window(
+    qtbot: QtBot, request: pytest.FixtureRequest, monkeypatch: pytest.MonkeyPatch
+) -> Callable[[str], MainWindow]:
+    """Show a window with lines to place, drawn as one says: "software" or "opengl"."""
+    from placing_driver import placing_window
+
+    request.getfixturevalue("dressed")
+    return lambda canvas: placing_window(qtbot, monkeypatch, canvas)
+
+
+@pytest.fixture(
+    params=[pytest.param("software", marks=pytest.mark.gui), pytest.param("opengl", marks=pytest.mark.opengl)]
+)
+def either(request: pytest.FixtureRequest, make_window: Callable[[str], MainWindow]) -> MainWindow:
+    """Show a window with lines to place in both ways."""
+    return make_window(request.param)
+
+
+@pytest.fixture
+def placed(make_window: Callable[[str], MainWindow]) -> MainWindow:
+    """Show a window with lines to place."""
+    return make_window("software")
 
 
 def _give_up(window: MainWindow) -> None:

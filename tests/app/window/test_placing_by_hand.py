@@ -1,4 +1,4 @@
-"""Dragging handles in the view and nudging by keys: steps, Escape, one edit each, in groups, rings and cuts."""
+"""Dragging handles in the view: steps, Escape, one edit each, in groups, rings and cuts."""
 
 from __future__ import annotations
 
@@ -9,130 +9,33 @@ import pytest
 
 pytest.importorskip("PySide6.QtWidgets")
 
+from placing_driver import (
+    ABOUT_Z,
+    CONTROL,
+    IN_XY,
+    NO,
+    SHIFT,
+    X,
+    Z,
+    carried_spot,
+    drag,
+    grip_spot,
+    let_go,
+    position,
+    select,
+    send,
+)
 from PySide6.QtCore import QEvent, QPointF, Qt
 from PySide6.QtGui import QAction, QMouseEvent
-from PySide6.QtWidgets import QApplication, QPushButton
+from PySide6.QtWidgets import QApplication
 from scipy.spatial.transform import Rotation
-from window_driver import enter, field, solid
 
-from app.window.main import MainWindow
 from app.window.manner import Manner
-from app.window.style import Words
-from app.window.view.dragging import Amount
-from app.window.view.handles import Grip, paths_of
-from app.window.view.opengl import VIEW_VARIABLE, prepare_opengl
-from app.window.view.soft_view import SoftView
-from core.assembly import Assembly, Cut, Group
 from core.assembly.placing import standing_of, standing_rows
 from core.assembly.seat import Anchor, Seat
 from core.assembly.seats import with_seat
-from core.machine import Machine
-from core.placement import Pose, Ring
-from core.pointing import met_on_plane, nearest_on_axis
-from core.shapes import SHAPES
 
-NO, SHIFT, CONTROL = (
-    Qt.KeyboardModifier.NoModifier, Qt.KeyboardModifier.ShiftModifier, Qt.KeyboardModifier.ControlModifier
-)
 pytestmark = pytest.mark.qt_log_ignore("^This plugin does not support")
-CANVASES = [pytest.param("software", marks=pytest.mark.gui), pytest.param("opengl", marks=pytest.mark.opengl)]
-X, Z = Grip("along", 0), Grip("along", 2)
-ABOUT_Z, IN_XY = Grip("about", 2), Grip("in", 2)
-
-
-def machine() -> Machine:
-    """Return a plate, a bar in a turned group, pins in a ring in it, and a bored block."""
-    plate = solid("plate", "cylinder", diameter=400, length=20)
-    bar = solid("bar", "cylinder", (0.05, 0.02, 0.03), diameter=40, length=100)
-    pins = replace(solid("pins", "cylinder", (0.1, 0, 0), diameter=10, length=50), copies=Ring(5, start=0.4))
-    group = Group("group", "group", (bar, pins), Pose((0, 0, 0.1), (0.5, 0, 0.4)))
-    bore = Cut("bore", "bore", SHAPES["cylinder"].of({"diameter": 0.02, "length": 0.4}), Pose((0, 0, -0.1)))
-    block = replace(solid("block", "box", (-0.2, -0.1, 0.1), length_x=100, length_y=100, length_z=100), cuts=(bore,))
-    return Machine(Assembly("d", (plate, group, block)))
-
-
-@pytest.fixture
-def make_window(qtbot, request, monkeypatch):
-    def make(canvas: str) -> MainWindow:
-        request.getfixturevalue("dressed")
-        monkeypatch.setenv(VIEW_VARIABLE, canvas)
-        prepare_opengl()
-        made = MainWindow()
-        assert isinstance(made.view.canvas, SoftView) == (canvas == "software")
-        qtbot.addWidget(made, before_close_func=lambda window: setattr(window, "_given_up", True))
-        made.show()
-        made.activateWindow()
-        qtbot.waitExposed(made)
-        made.session.take(machine(), None)
-        made.session.set_manner(Manner())
-        QApplication.processEvents()
-        return made
-
-    return make
-
-
-@pytest.fixture(params=CANVASES)
-def either(request, make_window):
-    return make_window(request.param)
-
-
-@pytest.fixture
-def placed(make_window):
-    return make_window("software")
-
-
-def select(window, *keys):
-    window.session.select(frozenset(keys))
-    QApplication.processEvents()
-
-
-def send(view, kind, spot, modifiers=NO):
-    left, none = Qt.MouseButton.LeftButton, Qt.MouseButton.NoButton
-    button = none if kind == QEvent.Type.MouseMove else left
-    buttons = none if kind == QEvent.Type.MouseButtonRelease else left
-    QApplication.sendEvent(view, QMouseEvent(kind, QPointF(*spot), QPointF(*spot), button, buttons, modifiers))
-
-
-def grip_spot(window, grip) -> np.ndarray:
-    """Return a place on a handle, px: the end of a line, the middle of an arc or a square."""
-    path = paths_of(window.view.hand.shown.handles, window.view.camera, window.view.frame_size)[grip]
-    return {"along": path[-1], "about": path[len(path) // 2], "in": path[:4].mean(axis=0)}[grip.kind]
-
-
-def carried_spot(window, grip, values) -> np.ndarray:
-    """Return where the place on a handle that is taken is on the screen after a move by values, m or rad."""
-    view, handles = window.view, window.view.hand.shown.handles
-    start, direction = view.camera.ray(tuple(grip_spot(window, grip)), view.frame_size)
-    normal = handles.directions[grip.axis]
-    if grip.kind == "along":
-        taken = handles.middle + nearest_on_axis(start, direction, handles.middle, normal) * normal
-    else:
-        taken = met_on_plane(start, direction, handles.middle, normal)
-    motion = Amount(grip.kind == "about", values).motion(handles)
-    return view.camera.project(motion.apply(taken), view.frame_size)[:2]
-
-
-def press(window, grip, modifiers=NO):
-    spot = grip_spot(window, grip)
-    send(window.view, QEvent.Type.MouseMove, spot)
-    send(window.view, QEvent.Type.MouseButtonPress, spot, modifiers)
-    assert window.view.hand.holds
-    return spot
-
-
-def drag(window, grip, to, modifiers=NO, *, steps=5):
-    start = press(window, grip, modifiers)
-    for share in np.linspace(0, 1, steps + 1)[1:]:
-        send(window.view, QEvent.Type.MouseMove, start + share * (to - start), modifiers)
-    QApplication.processEvents()
-
-
-def let_go(window, spot):
-    send(window.view, QEvent.Type.MouseButtonRelease, spot)
-
-
-def position(window, key):
-    return standing_of(window.session.assembly, key).shift
 
 
 def test_a_drag_along_an_axis_is_one_edit_in_whole_steps(either):
@@ -416,132 +319,6 @@ def test_the_pointer_on_a_handle_is_told_what_it_does(placed):
 def send_hover(window, spot):
     none = Qt.MouseButton.NoButton
     QApplication.sendEvent(window.view, QMouseEvent(QEvent.Type.MouseMove, QPointF(*spot), QPointF(*spot), none, none, NO))
-
-
-@pytest.mark.gui
-def test_nudges_one_after_the_other_are_one_step_of_undo(placed, qtbot):
-    window = placed
-    select(window, "plate")
-    window.view.look("front")
-    for key in (Qt.Key.Key_Right, Qt.Key.Key_Right, Qt.Key.Key_Right, Qt.Key.Key_Up, Qt.Key.Key_PageUp):
-        qtbot.keyClick(window.view, key, CONTROL)
-    np.testing.assert_allclose(position(window, "plate"), [0.003, 0.001, 0.001], rtol=0, atol=1e-16)
-    assert [name for name, _ in window.session.history.past] == ["Move plate x +3 mm, y +1 mm, z +1 mm"]
-    window.session.undo()
-    assert position(window, "plate").tolist() == [0, 0, 0]
-    window.session.redo()
-    qtbot.keyClick(window.view, Qt.Key.Key_Left, CONTROL)
-    assert len(window.session.history.past) == 2
-
-
-@pytest.mark.gui
-def test_nudges_of_other_lines_or_after_other_edits_are_steps_of_their_own(placed, qtbot):
-    window = placed
-    select(window, "plate")
-    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL)
-    select(window, "bar")
-    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL)
-    select(window, "plate")
-    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL)
-    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL | SHIFT)
-    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL | SHIFT)
-    qtbot.keyClick(window.view, Qt.Key.Key_Up, CONTROL | SHIFT)
-    assert [name for name, _ in window.session.history.past] == [
-        "Move plate x +1 mm", "Move bar x +1 mm", "Move plate x +1 mm", "Turn plate about z +10°",
-        "Turn plate about x −5°",
-    ]
-
-
-@pytest.mark.gui
-def test_keys_turn_as_the_picture_shows_it(placed, qtbot):
-    window = placed
-    select(window, "block")
-    window.view.look("front")
-    for _ in range(9):
-        qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL | SHIFT)
-    standing = standing_of(window.session.assembly, "block")
-    np.testing.assert_allclose(standing.turn, Rotation.from_euler("z", 45, degrees=True).as_matrix(), atol=1e-15)
-    # From the front, what was in front has gone to the right.
-    assert (standing.turn @ [0, -1, 0])[0] > 0.7
-
-
-@pytest.mark.gui
-def test_nothing_selected_or_a_step_of_nothing_is_said(placed, qtbot):
-    window, told = placed, []
-    window.session.said.connect(told.append)
-    select(window)
-    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL)
-    select(window, "plate")
-    window.session.set_manner(replace(Manner(), length_step=0.0))
-    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL)
-    assert told == ["Nothing is selected that could be moved", "Nothing moves: the step is 0"]
-    assert not window.session.history.past
-
-
-@pytest.mark.gui
-def test_steps_are_typed_with_units_in_the_bar_and_kept(placed, qtbot):
-    window = placed
-    assert not window.placing.bar.isVisible()
-    select(window, "plate")
-    assert window.placing.bar.isVisible()
-    enter(field(window.placing.bar, "step of length"), "1/8 in")
-    enter(field(window.placing.bar, "step of angle"), "-5")
-    assert window.settings.manner.length_step == pytest.approx(0.003175, rel=1e-15)
-    assert window.session.manner.angle_step == Manner().angle_step
-    enter(field(window.placing.bar, "step of angle"), "7.5")
-    assert window.settings.manner.angle_step == pytest.approx(np.radians(7.5), rel=1e-15)
-    window.view.look("front")
-    qtbot.keyClick(window.view, Qt.Key.Key_Right, CONTROL)
-    assert position(window, "plate")[0] == pytest.approx(0.003175, rel=1e-15)
-    for words in ("Along the line's own axes", "At its centre of mass"):
-        menu_entry(window, words).trigger()
-    assert (window.settings.manner.along, window.settings.manner.pivot) == ("own", "centre")
-    checked = [action.text() for action in window.placing.bar.findChildren(QAction) if action.isChecked()]
-    assert checked == ["Along the line's own axes", "At its centre of mass"]
-
-
-def menu_entry(window, words):
-    return next(action for action in window.placing.bar.findChildren(QAction) if action.text() == words)
-
-
-@pytest.mark.gui
-def test_keys_typed_in_the_bar_do_not_turn_the_view(placed, qtbot):
-    window = placed
-    select(window, "plate")
-    line = field(window.placing.bar, "step of length")
-    line.setFocus()
-    camera = window.view.camera
-    for key in (Qt.Key.Key_Up, Qt.Key.Key_F, Qt.Key.Key_1, Qt.Key.Key_Down):
-        qtbot.keyClick(line, key)
-    assert window.view.camera is camera
-
-
-@pytest.mark.gui
-def test_tab_goes_from_the_view_through_the_bar(placed, qtbot):
-    window = placed
-    select(window, "plate")
-    bar = window.placing.bar
-    window.view.setFocus()
-    reached = []
-    for _ in range(3):
-        qtbot.keyClick(QApplication.focusWidget(), Qt.Key.Key_Tab)
-        reached.append(QApplication.focusWidget())
-    button = bar.findChild(QPushButton)
-    assert reached == [field(bar, "step of length"), field(bar, "step of angle"), button]
-
-
-@pytest.mark.gui
-def test_a_step_that_means_nothing_is_refused_below_the_fields_without_widening_the_bar(placed):
-    window = placed
-    select(window, "plate")
-    bar = window.placing.bar
-    width = bar.width()
-    enter(field(bar, "step of length"), "12 kg")
-    QApplication.processEvents()
-    assert bar.isVisible()
-    assert bar.width() == width
-    assert any("measures a mass" in words.text() for words in bar.findChildren(Words) if words.isVisible())
-    assert window.session.manner.length_step == Manner().length_step
 
 
 @pytest.mark.gui
