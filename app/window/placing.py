@@ -13,6 +13,7 @@ from app.window.view.dragging import Amount
 from app.window.view.hand import Steps
 from app.window.view.handles import Handles, nearest_to_view
 from app.window.view.surface import surface_of
+from core.assembly.linked_groups import held_by
 from core.assembly.placing import frame_of, mass_centre_of, moved, outermost, standing_of, standing_rows
 from core.assembly.seats import seated, seated_in
 from core.errors import MasswrightError
@@ -90,7 +91,8 @@ class Placing(QObject):
 
     def _handles(self) -> Handles | None:
         keys, assembly, manner = self.keys, self._session.assembly, self._session.manner
-        if not keys:
+        # A line of a linked document is only read here.
+        if not keys or any(held_by(assembly, key) is not None for key in keys):
             return None
         frame = standing_of(assembly, keys[0])
         centre = mass_centre_of(assembly, keys[0]) if manner.pivot == "centre" else None

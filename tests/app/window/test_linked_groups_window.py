@@ -235,6 +235,17 @@ def test_doing_the_last_edit_over_does_not_reach_the_lines_inside(linked):
     assert linked.session.machine is before
 
 
+def test_handles_stand_at_the_group_and_at_no_line_inside(linked):
+    linked.session.select(frozenset({"g1"}))
+    assert linked.placing._handles() is not None
+    for keys in ({"g1/p1"}, {"plate", "g1/p1"}):
+        linked.session.select(frozenset(keys))
+        assert linked.placing._handles() is None
+    # Carried by the group, the line moves with it.
+    linked.session.select(frozenset({"g1", "g1/p1"}))
+    assert linked.placing._handles() is not None
+
+
 def test_the_group_itself_is_renamed_placed_and_repeated(linked):
     show_page(linked, "g1")
     enter(field(linked.part, "Name"), "clamp")
