@@ -40,7 +40,9 @@ class LinkedFiles(QObject):
             return
         stale = [path for path in linked_paths(self._session.assembly) if self._is_news(path)]
         if stale:
-            self._task = Task(self, lambda _progress: {path: hash_of(path) for path in stale}, self._found, self._lost)
+            self._task = Task(
+                self, lambda progress: {path: hash_of(path, progress) for path in stale}, self._found, self._lost
+            )
 
     @property
     def busy(self) -> bool:

@@ -20,9 +20,11 @@ if TYPE_CHECKING:
 
     from core.assembly import Assembly
     from core.document.schema import NodeEntry
+    from core.progress import Progress
 
 # More files than this are not followed in search of a loop.
 _MOST_FOLLOWED = 200
+_CHUNK = 4 * 2**20
 _THEN = " → "
 
 
@@ -75,15 +77,24 @@ def linked_paths(assembly: Assembly) -> tuple[str, ...]:
     return tuple(dict.fromkeys(link.path for _, link in linked_groups(assembly.members)))
 
 
-def hash_of(path: str) -> str | None:
-    """Return the SHA-256 of a document file's bytes; None where it is not there, may not be read, or cannot be one."""
+def hash_of(path: str, progress: Progress | None = None) -> str | None:
+    """Return the SHA-256 of a document file's bytes; None where it is not there, may not be read, or cannot be one.
+
+    Raises:
+        Cancelled: progress was cancelled.
+    """
     if not _may_be_read(path):
         return None
+    found = hashlib.sha256()
     try:
         with Path(path).open("rb") as file:
-            return hashlib.file_digest(file, "sha256").hexdigest()
+            while chunk := file.read(_CHUNK):
+                found.update(chunk)
+                if progress is not None:
+                    progress.advance(len(chunk))
     except OSError:
         return None
+    return found.hexdigest()
 
 
 def _may_be_read(path: str) -> bool:

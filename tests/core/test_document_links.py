@@ -26,9 +26,10 @@ from core.document import (
     save_document,
 )
 from core.document.link_path import path_from, path_of
-from core.errors import DocumentError
+from core.errors import Cancelled, DocumentError
 from core.machine import Machine
 from core.material import ByDensity
+from core.progress import Progress
 from core.shapes import Box, Cylinder
 
 if TYPE_CHECKING:
@@ -193,6 +194,15 @@ def test_what_cannot_be_a_document_is_not_read(tmp_path: Path, name: str) -> Non
 def test_a_pipe_with_the_name_of_a_document_does_not_hold_up_the_reader(tmp_path: Path) -> None:
     os.mkfifo(tmp_path / "pipe.masswright")
     assert hash_of(str(tmp_path / "pipe.masswright")) is None
+
+
+def test_looking_at_a_file_can_be_stopped(parts: Path) -> None:
+    progress = Progress()
+    assert hash_of(str(parts), progress) == hash_of(str(parts))
+    assert progress.done == parts.stat().st_size
+    progress.cancel()
+    with pytest.raises(Cancelled):
+        hash_of(str(parts), progress)
 
 
 def test_a_file_larger_than_any_document_is_not_read(monkeypatch: pytest.MonkeyPatch, parts: Path) -> None:
