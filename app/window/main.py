@@ -358,13 +358,13 @@ class MainWindow(QMainWindow):
 
     def _note_place(self, _old: QWidget | None, now: QWidget | None) -> None:
         """Remember which table the keyboard was in last: opening a menu may take it out of there."""
-        for place in (self.sheet, self.torque.result, self.balance, self.checks, self.ledger):
+        for place in (self.sheet, self.torque.inputs, self.torque.result, self.balance, self.checks, self.ledger):
             if now is not None and place.isAncestorOf(now):
                 self._place = place
 
     def copy(self) -> None:
         """Copy what is selected where the keyboard is or was last: values, a finding, or cells of the ledger."""
-        if self._place in (self.sheet, self.torque.result, self.balance):
+        if self._place in (self.sheet, self.torque.inputs, self.torque.result, self.balance):
             self._place.copy_selection()
         elif self._place is self.checks:
             text = self.checks.copy_current()

@@ -11,7 +11,7 @@ pytest.importorskip("PySide6.QtWidgets")
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QLineEdit, QWidget
-from window_driver import choose, enter, field
+from window_driver import choose, clipboard, enter, field, trigger
 
 from app.window.fields import ChoiceField
 from core.assembly.names import NameEntry
@@ -343,3 +343,14 @@ def test_every_control_of_the_inputs_has_a_name(filled: MainWindow) -> None:
                         assert widget.accessibleName(), (part, action.text())
                     for box in panel.editor.findChildren(ChoiceField):
                         assert box.accessibleName(), (part, action.text())
+
+
+def test_rows_are_copied_by_key_and_by_the_menu(filled: MainWindow) -> None:
+    panel = opened(filled, TRAIN)
+    add(panel, "Gearbox")
+    panel.table.setFocus()
+    QTest.keyClick(panel.table, Qt.Key.Key_C, Qt.KeyboardModifier.ControlModifier)
+    assert clipboard() == "gearbox\tgear 1 : 1, 100 %\tmotor → load\n"
+    panel.table.select(["train.motor"])
+    trigger(filled, "Edit", "Copy")
+    assert clipboard() == "motor\tinertia not given\tmotor\n"

@@ -7,6 +7,7 @@ from functools import partial
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt, QTimer
+from PySide6.QtGui import QGuiApplication
 from PySide6.QtWidgets import (
     QFrame,
     QHBoxLayout,
@@ -26,6 +27,7 @@ from app.window.pages.torque.entries import EntriesModel, EntriesTable, Entry
 from app.window.pages.torque.entry_section import EntrySection
 from app.window.style import GRID, Words
 from core.drive.items import with_item, with_item_doubled, with_items_moved, without_items
+from core.handover import tsv_of_block
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -150,6 +152,7 @@ class EntriesPanel(QWidget):
         table.removed.connect(self.remove)
         table.doubled.connect(self.double)
         table.opened.connect(self.open_fields)
+        table.copying.connect(self.copy_selection)
         self.session.changed.connect(self._follow)
         self.session.shown_differently.connect(self.refresh)
 
@@ -329,6 +332,14 @@ class EntriesPanel(QWidget):
         words = chosen[0].name if len(chosen) == 1 else f"{len(chosen)} rows"
         if self.attempt(f"Move {words}", lambda settings: with_items_moved(settings, holder, indices, to)):
             self.table.select([f"{holder}.{to + at}" for at in range(len(indices))])
+
+    def copy_selection(self) -> None:
+        """Put what the selected rows say on the clipboard, tab-separated."""
+        columns = range(len(self.model.headings))
+        rows = [[self.model.text(entry, column) for column in columns] for entry in self.table.selected]
+        if rows:
+            QGuiApplication.clipboard().setText(tsv_of_block(rows, self.session.decimal_mark))
+        self.session.said.emit(f"Copied {len(rows)} rows" if rows else "Nothing is selected that could be copied")
 
     def open_fields(self) -> None:
         """Put the keyboard into the first number of the current entry, its text selected."""

@@ -52,7 +52,6 @@ class DutyPanel(EntriesPanel):
         self.marks = PasteMarks(self._paste_as)
         self.column.insertWidget(self.column.indexOf(self.wrong) + 1, self.marks)
         self.table.pasted.connect(self.paste)
-        self.table.copying.connect(self.copy)
 
     def make_model(self, headings: tuple[str, ...]) -> EntriesModel:  # the table of a duty has its own
         """Return the model of the steps."""
@@ -195,7 +194,7 @@ class DutyPanel(EntriesPanel):
                         lambda settings: with_items(settings, holder, steps, at)):
             self.table.select([f"{holder}.{at + len(steps) - 1}"])
 
-    def copy(self) -> None:
+    def copy_selection(self) -> None:
         """Put angle and time of the selected moves and rests on the clipboard, a row each."""
         angle, time = self.session.units[Kind.ANGLE], self.session.units[Kind.TIME]
         rows = [entry.item for entry in self.table.selected if isinstance(entry.item, StepRow)]

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtWidgets import QHBoxLayout, QWidget
+from PySide6.QtWidgets import QApplication, QHBoxLayout, QWidget
 
 from app.window.pages.torque.inputs_points import PointsBox
 from app.window.style import GRID
@@ -44,6 +44,12 @@ class LimitsPanel(QWidget):
         """Show another document; what is being typed or refused stays when the same one is judged anew."""
         if self._session.machine is not self._shown:
             self.refresh()
+
+    def copy_selection(self) -> None:
+        """Copy the points of the limit that the keyboard is in."""
+        focused = QApplication.focusWidget()
+        box = self.peak if focused is not None and self.peak.isAncestorOf(focused) else self.continuous
+        box.copy()
 
     def refresh(self) -> None:
         """Show the points as they are now."""

@@ -15,6 +15,7 @@ from app.window.pages.torque.switch import Switch
 from app.window.style import GRID
 
 if TYPE_CHECKING:
+    from app.window.pages.torque.entries_panel import EntriesPanel
     from app.window.session import Session
 
 
@@ -28,7 +29,7 @@ class InputsView(QWidget):
         self.loads = LoadsPanel(session)
         self.limits = LimitsPanel(session)
         self.stops = StopsPanel(session)
-        panels = {
+        panels: dict[str, EntriesPanel | LimitsPanel] = {
             "Train": self.train, "Duty": self.duty, "Loads": self.loads, "Motor limits": self.limits,
             "Stops": self.stops,
         }
@@ -39,4 +40,9 @@ class InputsView(QWidget):
         layout = QVBoxLayout(self)
         layout.setContentsMargins(2 * GRID, GRID, GRID, GRID)
         layout.addWidget(self._stack)
+        self._panels = tuple(panels.values())
         self.parts.chosen.connect(self._stack.setCurrentIndex)
+
+    def copy_selection(self) -> None:
+        """Copy what is selected in the part that is seen."""
+        self._panels[self.parts.current].copy_selection()
