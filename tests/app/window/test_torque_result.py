@@ -165,7 +165,7 @@ def test_without_a_duty_there_are_inertia_gravity_and_standstill_and_what_to_add
     shown = {key for key, block in result.numbers.blocks.items() if block.isVisible()}
     assert shown == {"Inertia", "Inertia stage by stage", "At rest", "Gravity", "Stops"}
     result.switch.choose(CURVES)
-    assert result.plot.graph.title.startswith("Gravity over a full turn")
+    assert result.plot.graph.title.startswith("Torque that holds the load at rest over a full turn")
 
 
 def test_a_drive_that_cannot_be_worked_out_shows_its_sentence_and_no_numbers(window):

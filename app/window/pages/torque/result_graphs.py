@@ -88,8 +88,8 @@ def _power(answer: DriveAnswer, study: Study, curves: Curves, units: UnitSet) ->
         )
     columns = (*_moments(study, units), Column("power", power, units[Kind.POWER]))
     return Graph(
-        f"Power over time {_at(curves.shaft)}", ("Time", units[Kind.TIME]),
-        ("Power, braking below 0", units[Kind.POWER]),
+        f"Power over time {_at(curves.shaft)}, braking below 0", ("Time", units[Kind.TIME]),
+        ("Power", units[Kind.POWER]),
         (Trace("power", "single", curves.time, power),), columns, curves.time, power, spots,
     )
 
@@ -141,9 +141,9 @@ def _over_speed(answer: DriveAnswer, study: Study, limits: MotorLimits, units: U
         Column("torque along the motion", points.torque, units[Kind.TORQUE]),
     )
     return Graph(
-        f"Torque over speed {_at(MOTOR)}", (f"Speed of the {MOTOR} shaft, of either sense", units[Kind.SPEED]),
-        ("Torque, braking below 0", units[Kind.TORQUE]), tuple(traces), columns, points.speed,
-        points.torque, tuple(spots),
+        f"Torque over speed {_at(MOTOR)}, braking below 0",
+        (f"Speed of the {MOTOR} shaft, of either sense", units[Kind.SPEED]), ("Torque", units[Kind.TORQUE]),
+        tuple(traces), columns, points.speed, points.torque, tuple(spots),
     )
 
 
@@ -171,6 +171,6 @@ def _over_turn(answer: DriveAnswer, units: UnitSet) -> Graph:
         Column("with applied loads", turn.holding, torque),
     )
     return Graph(
-        f"Gravity over a full turn {_at(LOAD)}", ("Angle of the load", units[Kind.ANGLE]),
-        ("Torque that holds it", torque), tuple(traces), columns, turn.angle, turn.holding, tuple(spots),
+        f"Torque that holds the load at rest over a full turn, {_at(LOAD)}", ("Angle of the load", units[Kind.ANGLE]),
+        ("Torque", torque), tuple(traces), columns, turn.angle, turn.holding, tuple(spots),
     )

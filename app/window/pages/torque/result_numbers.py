@@ -4,12 +4,11 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt, Signal
+from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt, QTimer, Signal
 from PySide6.QtGui import QColor, QFont, QGuiApplication, QResizeEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QHBoxLayout,
-    QHeaderView,
     QScrollArea,
     QTableView,
     QVBoxLayout,
@@ -28,7 +27,7 @@ if TYPE_CHECKING:
     from app.window.session import Session
 
 Index = QModelIndex | QPersistentModelIndex
-ROW_HEIGHT, DIGITS = 22, 5
+ROW_HEIGHT, DIGITS, FIT_REST_MS = 22, 5, 100
 STAGES = "Inertia stage by stage"
 
 
@@ -134,6 +133,8 @@ class CellsView(QTableView):
         self.setModel(self.cells)
         self.setObjectName("cells")
         self._height = 0
+        self._rest = QTimer(self, singleShot=True, interval=FIT_REST_MS)
+        self._rest.timeout.connect(self._fit_columns)
         self.setShowGrid(False)
         self.verticalHeader().hide()
         self.verticalHeader().setDefaultSectionSize(ROW_HEIGHT)
@@ -146,10 +147,12 @@ class CellsView(QTableView):
     def show_table(self, table: Table) -> None:
         """Show other values."""
         self.setAccessibleName(table.title)
-        if self.cells.show(table):
+        if not self.cells.show(table):
+            # Measuring every cell takes longer than showing it: the columns follow once the values rest.
+            self._rest.start()
+        else:
             header = self.horizontalHeader()
-            header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
-            header.setStretchLastSection(False)
+            self.resizeColumnsToContents()
             rows = len(table.rows) * ROW_HEIGHT
             self._height = header.sizeHint().height() + rows + 2 * self.frameWidth()
             self._fit()
@@ -157,6 +160,10 @@ class CellsView(QTableView):
     def resizeEvent(self, event: QResizeEvent) -> None:
         """Leave room for a scroll bar where the columns need one."""
         super().resizeEvent(event)
+        self._fit()
+
+    def _fit_columns(self) -> None:
+        self.resizeColumnsToContents()
         self._fit()
 
     def _fit(self) -> None:
