@@ -21,7 +21,7 @@ from app.window.pages.part_stand import PlaceSection
 from app.window.pages.part_turning import TurningSection
 from app.window.pages.part_variants import VariantsSection
 from app.window.pages.section import Section
-from app.window.pages.swap import swap
+from app.window.pages.swap import swap, swap_in_place
 from app.window.style import GRID, Words
 from core.assembly import Cut, Group, MeshBody, Part, ShapeBody
 from core.assembly.linked_groups import held_by
@@ -67,6 +67,7 @@ class PartPage(QScrollArea):
         super().__init__(parent)
         self._session = session
         self._signature: object = None
+        self._key: str | None = None
         self._sections: list[Section] = []
         self.setWidgetResizable(True)
         self.setFrameShape(QFrame.Shape.NoFrame)
@@ -129,7 +130,9 @@ class PartPage(QScrollArea):
             self._sections = _sections(self._session, form, node)
             layout.addWidget(form)
         layout.addStretch(1)
-        swap(self, page)
+        same_line = node is not None and node.key == self._key
+        self._key = None if node is None else node.key
+        (swap_in_place if same_line else swap)(self, page)
 
 
 def _signature(node: AnyLine) -> tuple[object, ...]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QEvent, Qt
 from PySide6.QtWidgets import QApplication, QWidget
 
 if TYPE_CHECKING:
@@ -24,3 +24,13 @@ def swap(area: QScrollArea, page: QWidget) -> None:
         # Not at once: one of its fields may be telling about the edit that brought us here.
         old.hide()
         old.deleteLater()
+
+
+def swap_in_place(area: QScrollArea, page: QWidget) -> None:
+    """Show another page of fields about the same thing, scrolled as far as the one that it takes the place of."""
+    bar = area.verticalScrollBar()
+    scrolled = bar.value()
+    swap(area, page)
+    # How far it can be scrolled is known once the new page is laid out.
+    QApplication.sendPostedEvents(None, QEvent.Type.LayoutRequest)
+    bar.setValue(scrolled)

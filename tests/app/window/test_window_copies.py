@@ -3,7 +3,12 @@
 from __future__ import annotations
 
 import pytest
-from window_driver import dialog, names, trigger
+
+pytest.importorskip("PySide6.QtWidgets")
+from PySide6.QtWidgets import QApplication
+from window_driver import choose, dialog, names, trigger
+
+from app.window.fields import ChoiceField
 
 pytestmark = pytest.mark.gui
 
@@ -30,3 +35,20 @@ def test_without_a_part_selected_it_says_what_to_do(filled, qtbot):
     with qtbot.waitSignal(filled.session.refused) as told:
         dialog(filled).accept()
     assert told.args == ["Select one part with several copies first."]
+
+
+def test_the_page_stays_where_it_was_scrolled_to_when_other_fields_are_called_for(filled):
+    filled.session.select(frozenset({"hub"}))
+    page = filled.part
+    filled.pages.setCurrentWidget(page)
+    QApplication.processEvents()
+    pattern = next(box for box in page.findChildren(ChoiceField) if box.accessibleName() == "How it repeats")
+    page.ensureWidgetVisible(pattern)
+    scrolled = page.verticalScrollBar().value()
+    assert scrolled > 0
+    choose(pattern, "row")
+    QApplication.processEvents()
+    assert page.verticalScrollBar().value() == scrolled
+    filled.session.select(frozenset({"plate"}))
+    QApplication.processEvents()
+    assert page.verticalScrollBar().value() == 0
