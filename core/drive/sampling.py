@@ -181,11 +181,11 @@ def _reached(timeline: Timeline, zone: IntArray, target: FloatArray) -> FloatArr
         with np.errstate(divide="ignore", invalid="ignore"):
             step = at - behind / (motion.speed * sense)
         following = np.where((step > left) & (step < right), step, (left + right) / 2)
+        # Where it all but stands still, the angle is there to its last digit long before the time is.
+        following = np.where(np.abs(behind) <= _LAST_DIGIT * np.abs(target), at, following)
         moved = np.abs(following - at)
         at = following
-        # Where it all but stands still, the angle is there to its last digit long before the time is.
-        there = np.abs(behind) <= _LAST_DIGIT * np.abs(target)
-        if (there | (moved <= _CLOSE * timeline.zones.duration[zone])).all():
+        if (moved <= _CLOSE * timeline.zones.duration[zone]).all():
             break
     return at
 
