@@ -28,7 +28,8 @@ DEEPEST = 32
 class MeantOverlap:
     """A mark that two parts penetrate each other on purpose, as a press fit or a thread drawn as two cylinders.
 
-    It is a mark only: the totals count the common volume twice as before, and the overlap is listed with it.
+    It is a mark only: the totals count the common volume twice as before, and the overlap is listed with it, until
+    `carrying.counted_once` takes the carrier out of the other.
 
     Attributes:
         key_a, key_b: of the parts, in any order; twice the same for copies of one part.

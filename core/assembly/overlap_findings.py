@@ -59,8 +59,13 @@ def _sentence(assembly: Assembly, one: Overlap) -> str:
     if one.meant is not None:
         carrier = dict(zip(one.keys, one.names, strict=True)).get(one.meant.carried_by, "")
         whose = f" and carried by {carrier}" if carrier else ""
-        return f"{met}; it is marked as meant{whose}, and still {_twice(assembly, one)}"
-    mend = "Delete one of them" if one.same else "Move one, cut the room for it out of the other, or mark it as meant"
+        once = ". Count it once to take its carrier out of the other" if one.keys[0] != one.keys[1] else ""
+        return f"{met}; it is marked as meant{whose}, and still {_twice(assembly, one)}{once}"
+    mend = "Move one, count it once by cutting the one out of the other, or mark it as meant"
+    if one.keys[0] == one.keys[1]:
+        mend = "Move them apart, or mark it as meant"
+    if one.same:
+        mend = "Delete one of them"
     return f"{met}; {_twice(assembly, one)}. {mend}."
 
 

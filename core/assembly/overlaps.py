@@ -7,7 +7,7 @@ they are.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING, Any, Final, NamedTuple
 
 import numpy as np
@@ -15,16 +15,17 @@ import numpy as np
 from core.assembly.bodies import KnownAxial, KnownTensor, MeshBody, ShapeBody
 from core.assembly.meeting import Bodies, Pairs, bodies_of, is_round, pairs_of
 from core.assembly.solid_cuts import moments_of_solid
+from core.errors import EditRefused
 from core.facets import Facets
 from core.mesh.edges import WELD
 from core.mesh.survey import INSIDE_OUT
+from core.moments import Moments
 from core.placement import Placement
 
 if TYPE_CHECKING:
     from core.arrays import FloatArray, IntArray
     from core.assembly.assembly import Assembly, MeantOverlap
     from core.assembly.nodes import Part
-    from core.moments import Moments
     from core.progress import Progress
 
 # Steps around a full circle: as the view draws; and where that cannot tell a thin overlap from contact.
@@ -112,6 +113,21 @@ class Overlaps:
     skipped: bool = False
 
 
+@dataclass(frozen=True, eq=False)
+class Meetings:
+    """The pairs of copies of two parts that have something in common.
+
+    Attributes:
+        bodies: all copies of the two, the first of them part 0 and the second part 1.
+        rows: (p, 2) of the bodies, a copy of the first part and one of the second.
+        common: a batch (p,) of what each pair has in common, at unit density in the frame of the second one's copy.
+    """
+
+    bodies: Bodies
+    rows: IntArray
+    common: Moments
+
+
 class _Common(NamedTuple):
     """What the pairs of a kind have in common, in their frame: moments at unit density, and the surface."""
 
@@ -153,6 +169,33 @@ def overlaps_of(assembly: Assembly, progress: Progress | None = None) -> Overlap
             progress.advance(0)
     skipped = pairs.skipped or (len(pairs.kind) > 0 and int(pairs.kind.max()) >= MOST_KINDS) or len(sums) > MOST_TOLD
     return Overlaps(tuple(found), len(bodies.owner), tuple(left_out), skipped)
+
+
+def meetings_of(assembly: Assembly, one: Part, other: Part) -> Meetings:
+    """Return which copies of two solid parts have something in common, and what; contact is none.
+
+    Raises:
+        EditRefused: the surface of one of them bounds no volume clearly.
+    """
+    bodies = bodies_of(assembly, (one, other))
+    every = pairs_of(bodies)
+    apart = np.flatnonzero(bodies.owner[every.first] != bodies.owner[every.second])
+    pairs = replace(every, first=every.first[apart], second=every.second[apart], kind=every.kind[apart],
+                    standing=Placement(every.standing.turn[apart], every.standing.shift[apart]))
+    commons, refused = _commons(bodies, pairs, None)
+    if refused:
+        raise EditRefused("its surface does not bound a volume clearly", where=bodies.parts[refused[0]].name)
+    kept = np.flatnonzero(np.isin(pairs.kind, list(commons)))
+    two = np.stack([pairs.first[kept], pairs.second[kept]], axis=1)
+    two = np.where((bodies.owner[two[:, 0]] == 0)[:, None], two, two[:, ::-1])
+    shared = [commons[kind].moments for kind in pairs.kind[kept].tolist()]
+    seen_from = Placement(bodies.standing.turn[two[:, 1]], bodies.standing.shift[two[:, 1]]).inverse()
+    standing = seen_from @ Placement(pairs.standing.turn[kept], pairs.standing.shift[kept])
+    common = Moments(
+        np.array([each.mass for each in shared]), np.array([each.centre for each in shared]).reshape(-1, 3),
+        np.array([each.spread for each in shared]).reshape(-1, 3, 3),
+    )
+    return Meetings(bodies, two, standing.place(common))
 
 
 def _why_left_out(part: Part) -> str:

@@ -10,10 +10,13 @@ from PySide6.QtTest import QTest
 from window_driver import solid
 
 from app.window import overlap_watch
-from core.assembly import Assembly
+from core.assembly import Assembly, Cut
+from core.assembly.assembly import MeantOverlap
 from core.errors import Cancelled
 from core.machine import Machine
+from core.material import Weighed
 from core.placement import Pose
+from core.shapes import Cylinder
 
 pytestmark = pytest.mark.gui
 
@@ -97,6 +100,56 @@ def test_a_press_fit_is_marked_as_meant_and_the_mark_can_be_undone(searched, qtb
     assert searched.session.history.undo_name == "Mark the overlap of plate and bush as meant"
     searched.undo()
     assert searched.session.assembly.meant == ()
+
+
+def count_once(window, words):
+    row = window.checks.overlap
+    (action,) = [one for one in row.carriers.actions() if one.text() == words]
+    action.trigger()
+
+
+def test_one_click_cuts_the_carrier_out_of_the_other_and_one_undo_puts_it_back(searched, qtbot):
+    before = searched.session.assembly.total.mass
+    searched.session.edit("Mark", lambda assembly: assembly.with_meant(MeantOverlap("plate", "bush", "bush")))
+    qtbot.waitUntil(lambda: searched.session.overlaps is not None)
+    marked = searched.session.assembly
+    choose_overlap(searched)
+    assert [one.text() for one in searched.checks.overlap.carriers.actions()] == [
+        "Take bush, which carries it, out of plate", "Take plate out of bush",
+    ]
+    count_once(searched, "Take bush, which carries it, out of plate")
+    qtbot.waitUntil(lambda: searched.session.assembly is not marked)
+    assert searched.session.history.undo_name == "Count it once: take bush out of plate"
+    density = searched.session.assembly.node("plate").driver.mass_of(1.0)
+    assert before - searched.session.assembly.total.mass == pytest.approx(density * 0.04 * 0.04 * 0.01, rel=1e-9)
+    assert [cut.name for cut in searched.session.assembly.node("plate").cuts] == ["room of bush"]
+    qtbot.waitUntil(lambda: searched.session.overlaps is not None)
+    assert searched.session.overlaps.found == ()
+    searched.undo()
+    assert searched.session.assembly is marked
+
+
+def test_what_cannot_be_counted_once_is_refused_below_the_buttons(searched, qtbot):
+    hollow = Cut("bore", "bore", Cylinder(0.01, 0.05))
+    searched.session.edit("Bore", lambda assembly: assembly.inserted_cut(hollow, "bush"))
+    qtbot.waitUntil(lambda: searched.session.overlaps is not None)
+    before, row = searched.session.assembly, searched.checks.overlap
+    choose_overlap(searched)
+    assert row.told.isHidden()
+    count_once(searched, "Take bush out of plate")
+    assert not row.once.isEnabled()
+    qtbot.waitUntil(row.once.isEnabled)
+    assert not row.told.isHidden()
+    assert row.told.text().startswith("bush, bore: it has a cut of its own where the two meet")
+    assert searched.session.assembly is before
+
+
+def test_a_weighed_part_is_said_to_keep_its_mass(searched, qtbot):
+    plate = replace(searched.session.assembly.node("plate"), driver=Weighed(6.0))
+    searched.session.edit("Weigh", lambda assembly: assembly.replaced(plate))
+    qtbot.waitUntil(lambda: searched.session.overlaps is not None)
+    choose_overlap(searched)
+    assert searched.checks.overlap.told.text() == "The weighed mass of plate stays: it is that of the finished part."
 
 
 def test_a_search_that_is_overtaken_by_a_change_is_stopped(soon, window, qtbot, monkeypatch):  # noqa: ARG001
