@@ -57,9 +57,11 @@ def _sentence(assembly: Assembly, one: Overlap) -> str:
     else:
         met = f"{first}: {second} penetrates it, {pairs}"
     if one.meant is not None:
-        carrier = dict(zip(one.keys, one.names, strict=True)).get(one.meant.carried_by, "")
+        names = dict(zip(one.keys, one.names, strict=True))
+        carrier = names.pop(one.meant.carried_by, "")
         whose = f" and carried by {carrier}" if carrier else ""
-        once = ". Count it once to take its carrier out of the other" if one.keys[0] != one.keys[1] else ""
+        taken = f"{carrier} out of {', '.join(names.values())}" if carrier else "one out of the other"
+        once = f". Count it once by cutting {taken}." if one.keys[0] != one.keys[1] else ""
         return f"{met}; it is marked as meant{whose}, and still {_twice(assembly, one)}{once}"
     mend = "Move one, count it once by cutting the one out of the other, or mark it as meant"
     if one.keys[0] == one.keys[1]:

@@ -12,6 +12,7 @@ from mesh_files import binary_stl, box
 from core.assembly import Assembly, Cut, DataSheet, Group, KnownAxial, MeshBody, Part, ShapeBody
 from core.assembly.assembly import MeantOverlap
 from core.assembly.carrying import MOST_CUTS_AT_ONCE, MOST_LOOKED_AT, counted_once
+from core.assembly.overlap_findings import overlap_findings
 from core.assembly.overlaps import overlaps_of
 from core.errors import EditRefused
 from core.history import History
@@ -183,6 +184,17 @@ def test_the_mark_goes_its_note_and_the_typed_dimensions_stay_with_the_cut():
     assert after.meant == ()
     moved = after.replaced(replace(after.node("pin"), pose=Pose((0.0, 0.1, 0.008))))
     assert overlaps_of(moved).found[0].meant is None
+
+
+def test_the_finding_says_how_it_is_counted_once():
+    def told(assembly):
+        return overlap_findings(assembly, overlaps_of(assembly))[0].check.text
+
+    assert told(pressed()).endswith("Move one, count it once by cutting the one out of the other, or mark it as meant.")
+    marked = pressed().with_meant(MeantOverlap("plate", "pin", "pin"))
+    assert told(marked).endswith("of the total. Count it once by cutting pin out of plate.")
+    marked = pressed().with_meant(MeantOverlap("plate", "pin"))
+    assert told(marked).endswith("of the total. Count it once by cutting one out of the other.")
 
 
 def test_a_mesh_can_be_cut_and_cannot_carry():
