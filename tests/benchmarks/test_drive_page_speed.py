@@ -23,14 +23,10 @@ from core.machine import Machine
 ROUNDS = 15
 
 
-@pytest.mark.parametrize("view", [NUMBERS, CURVES], ids=["numbers", "curves"])
-def test_a_duty_edited_is_drawn_again(benchmark, qtbot, view):
+def _show(session, qtbot, view):
     from app.window.style import dress
 
     dress(QApplication.instance())
-    session = Session()
-    assembly, settings = flap_of(PARTS), settings_of(MOVES)
-    session.take(Machine(assembly, settings), None)
     result = ResultView(session)
     qtbot.addWidget(result)
     result.resize(820, 480)
@@ -38,6 +34,14 @@ def test_a_duty_edited_is_drawn_again(benchmark, qtbot, view):
     qtbot.waitExposed(result)
     result.switch.choose(view)
     result.what.set_value(OVER_TIME)
+
+
+@pytest.mark.parametrize("view", [NUMBERS, CURVES], ids=["numbers", "curves"])
+def test_a_duty_edited_is_drawn_again(benchmark, qtbot, view):
+    session = Session()
+    assembly, settings = flap_of(PARTS), settings_of(MOVES)
+    session.take(Machine(assembly, settings), None)
+    _show(session, qtbot, view)
     starts = iter(range(1, 100_000))
 
     def settings_now() -> object:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QEvent, Qt
-from PySide6.QtGui import QGuiApplication
+from PySide6.QtGui import QGuiApplication, QShowEvent
 from PySide6.QtWidgets import QHBoxLayout, QPushButton, QVBoxLayout, QWidget
 
 from app.window.fields import ChoiceField
@@ -64,6 +64,7 @@ class SheetPage(QWidget):
         self.setObjectName("page")
         self.setAttribute(Qt.WidgetAttribute.WA_StyledBackground, True)
         self._session = session
+        self._stale = False
         self.of = ChoiceField("Of", OF)
         self.about = ChoiceField("About", ABOUT)
         self.along = ChoiceField("Along", ALONG)
@@ -80,7 +81,7 @@ class SheetPage(QWidget):
         for field in (self.of, self.about, self.along, self.products):
             field.chosen.connect(lambda _value: self.refresh())
         for signal in (session.settled, session.selection_changed, session.shown_differently):
-            signal.connect(self.refresh)
+            signal.connect(self._outdated)
         self.refresh()
 
     def _lay_out(self) -> None:
@@ -126,8 +127,21 @@ class SheetPage(QWidget):
             return None
         return self._session.assembly.node_of_line(next(iter(self._session.selected))).key
 
+    def _outdated(self) -> None:
+        """Show the values as they are now, or once somebody looks."""
+        self._stale = True
+        if self.isVisible():
+            self.refresh()
+
+    def showEvent(self, event: QShowEvent) -> None:
+        """Show what has changed while nobody looked."""
+        super().showEvent(event)
+        if self._stale:
+            self.refresh()
+
     def refresh(self) -> None:
         """Show the values as they are now."""
+        self._stale = False
         empty = not self._session.assembly.members
         for widget in (self.table, self.of, self.about, self.along, self.products, self.copy_all):
             widget.setVisible(not empty)

@@ -10,62 +10,24 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.spatial.transform import Rotation
+from seating import ABOVE, ANGLES, BELOW, OFFSETS, chain, part, plate_and_hub, resized, spot, standing
 from strategies import LENGTHS, poses
 
-from core.assembly import Assembly, Cut, DriveAxis, Group, Part, ShapeBody
+from core.assembly import Assembly, Cut, DriveAxis, Group, ShapeBody
 from core.assembly.copies import taken_apart
 from core.assembly.fields import kind_of, typed_for, with_typed, with_value, words_of
 from core.assembly.following import axis_of_part
-from core.assembly.group_document import document_of_group
 from core.assembly.names import NameEntry
 from core.assembly.naming import with_entries, with_entry
 from core.assembly.seat import Anchor, Seat
 from core.assembly.seats import datum_named, seat_as_it_stands, seated, with_seat, without_seat
 from core.assembly.seats.seating import moved_to
-from core.document import read_document_bytes, save_document
-from core.errors import DocumentError, EditRefused
+from core.errors import EditRefused
 from core.history import History
 from core.machine import Machine
-from core.material import ByDensity
-from core.placement import Placement, Pose, Ring, Row
+from core.placement import Pose, Ring, Row
 from core.quantity import Kind
 from core.shapes import Box, Cylinder, Sphere
-
-ANGLES = st.floats(-math.pi, math.pi)
-OFFSETS = st.floats(-0.5, 0.5)
-
-
-def part(key, shape, pose=Pose(), **more):
-    return Part(key, key, ShapeBody(shape), ByDensity(2700.0), pose, **more)
-
-
-def plate_and_hub(plate=Pose(), hub=Pose()):
-    return Assembly("t", (part("plate", Cylinder(0.4, 0.02), plate), part("hub", Cylinder(0.1, 0.05), hub)))
-
-
-BELOW, ABOVE = Anchor("hub", "face −z"), Anchor("plate", "face +z")
-
-
-def standing(assembly, key):
-    """Return where the first copy of a part stands in the document, from its table."""
-    table = assembly.table
-    row = int(np.flatnonzero([table.parts[owner].key == key for owner in table.owner])[0])
-    return Placement(table.standing.turn[row], table.standing.shift[row])
-
-
-def spot(assembly, key, name):
-    """Return a datum's point and direction in the document, by SciPy's rotation."""
-    datum = datum_named(assembly.line(key), name)
-    tf = standing(assembly, key)
-    turn = Rotation.from_matrix(tf.turn)
-    return turn.apply(datum.point.copy()) + tf.shift, turn.apply(datum.direction.copy())
-
-
-def resized(assembly, key, **sizes):
-    line = assembly.node(key)
-    for name, value in sizes.items():
-        line = with_value(line, f"dimension.{name}", value)
-    return seated(assembly.replaced(line), assembly)
 
 
 @settings(max_examples=60)
@@ -133,23 +95,6 @@ def test_an_edit_that_moves_no_seated_line_keeps_every_object():
 def test_a_hub_on_a_plate_stands_at_its_height():
     after = with_seat(plate_and_hub(), "hub", Seat(BELOW, ABOVE, offset=0.003, turn=math.pi / 2))
     assert after.node("hub").pose == Pose((0, 0, pytest.approx(0.023, rel=1e-15)), (0, 0, pytest.approx(math.pi / 2)))
-
-
-def chain():
-    """Base 20 mm, column on it, table on the column, lamp under the table: the last three seated."""
-    members = (
-        part("base", Box(0.4, 0.3, 0.02), Pose((0.1, 0.2, 0.3), (0.4, -0.5, 0.6))),
-        part("column", Cylinder(0.05, 0.2)), part("table", Box(0.2, 0.2, 0.01)), part("lamp", Cylinder(0.03, 0.04)),
-    )
-    seats = (
-        ("column", Seat(Anchor("column", "face −z"), Anchor("base", "face +z"))),
-        ("table", Seat(Anchor("table", "face −z"), Anchor("column", "rim +z"))),
-        ("lamp", Seat(Anchor("lamp", "face +z"), Anchor("table", "face −z"), "against", 0.002, (0.05, 0.0))),
-    )
-    assembly = Assembly("chain", members)
-    for key, seat in seats:
-        assembly = with_seat(assembly, key, seat)
-    return assembly
 
 
 def test_a_chain_of_three_seats_follows_a_named_dimension():
@@ -391,79 +336,6 @@ def test_a_thousand_seats_one_on_the_other_follow():
     ]
     tower = seated(Assembly("tower", tuple(reversed(members))))
     assert tower.node("p999").pose.position[2] == pytest.approx(9.99, rel=1e-12)
-
-
-# --- in a document -----------------------------------------------------------------------------------------------
-
-
-def saved(tmp_path, assembly):
-    save_document(Machine(assembly), tmp_path / "x.masswright")
-    return (tmp_path / "x.masswright").read_bytes()
-
-
-def test_seats_are_in_the_document(tmp_path):
-    assembly = chain()
-    group = Group("g", "g", (part("rod", Cylinder(0.02, 0.3)),), Pose((0.5, 0.0, 0.0), (0.3, 0.2, 0.1)))
-    assembly = with_seat(replace(assembly, members=(*assembly.members, group)), "g", Seat(Anchor("rod", "axis z"), Anchor("", "Spindle"), "along", 0.25, (0.1, 0.2), 0.3))
-    read = read_document_bytes(saved(tmp_path, assembly)).assembly
-    assert read == assembly
-
-
-def test_a_pose_that_does_not_agree_with_the_seat_follows_it_when_read(tmp_path):
-    assembly = with_seat(plate_and_hub(), "hub", Seat(BELOW, ABOVE))
-    wrong = assembly.replaced(replace(assembly.node("hub"), pose=Pose((0.0, 0.0, 1.0))))
-    assert read_document_bytes(saved(tmp_path, wrong)).assembly == assembly
-
-
-def test_documents_with_seats_that_cannot_be_are_refused(tmp_path):
-    hub = replace(plate_and_hub().node("hub"), seat=Seat(BELOW, ABOVE))
-    plate = replace(plate_and_hub().node("plate"), seat=Seat(Anchor("plate", "face −z"), Anchor("hub", "face +z")))
-    with pytest.raises(DocumentError, match="plate → hub → plate"):
-        read_document_bytes(saved(tmp_path, Assembly("t", (plate, hub))))
-    with pytest.raises(DocumentError, match="hub: the seat is on a line or axis that is not there"):
-        read_document_bytes(saved(tmp_path, Assembly("t", (hub,))))
-
-
-
-
-# --- beside axes of parts, groups as documents, and links ----------------------------------------------------------
-
-
-def test_a_seat_on_the_axis_of_a_part_follows_that_part_which_follows_its_seat():
-    """The arm lies on the shaft's axis, the shaft is seated on the plate, and the plate grows by 30 mm."""
-    shaft = part("shaft", Cylinder(0.03, 0.4), Pose((1.0, 0.0, 0.0), (0.3, 0.0, 0.0)))
-    arm = part("arm", Box(0.3, 0.02, 0.02), Pose((0.0, 1.0, 0.0)))
-    assembly = Assembly("t", (part("plate", Cylinder(0.4, 0.02)), arm, shaft))
-    axis = axis_of_part(assembly, "shaft", "Shaft")
-    assembly = replace(assembly, axes=(*assembly.axes, axis))
-    assembly = with_seat(assembly, "arm", Seat(Anchor("arm", "face −z"), Anchor("", "Shaft"), "along", 0.1))
-    assembly = with_seat(assembly, "shaft", Seat(Anchor("shaft", "face −z"), ABOVE, "against", 0.05))
-    for after, height in ((assembly, 0.07), (resized(assembly, "plate", length=0.05), 0.1)):
-        assert after.node("shaft").pose == Pose((0, 0, pytest.approx(height, rel=1e-14)))
-        assert standing(after, "arm").turn[:, 2] == pytest.approx([0, 0, -1], abs=1e-15)
-        assert after.axes[1].point == pytest.approx((0, 0, height), abs=1e-15)
-        assert standing(after, "arm").shift == pytest.approx([0, 0, height + 0.1], abs=1e-15)
-    with pytest.raises(EditRefused, match="arm → shaft → arm"):
-        with_seat(assembly, "shaft", Seat(Anchor("shaft", "face −z"), Anchor("arm", "face +z")))
-
-
-def test_a_line_cannot_be_seated_on_its_own_axis_in_the_document():
-    assembly = plate_and_hub()
-    assembly = replace(assembly, axes=(*assembly.axes, axis_of_part(assembly, "hub", "Hub")))
-    with pytest.raises(EditRefused, match='a line cannot be seated on itself; read the axis "Hub"'):
-        with_seat(assembly, "hub", Seat(BELOW, Anchor("", "Hub")))
-
-
-def test_a_group_as_a_document_keeps_the_seats_inside_it_and_lets_go_of_the_others():
-    cap = part("cap", Sphere(0.1), Pose((0.5, 0.0, 0.0)))
-    group = Group("g", "arm", (part("hub", Cylinder(0.1, 0.05)), cap), Pose((1.0, 2.0, 3.0), (0.1, 0.2, 0.3)))
-    assembly = Assembly("t", (part("plate", Cylinder(0.4, 0.02)), group))
-    assembly = with_seat(assembly, "hub", Seat(BELOW, ABOVE))
-    assembly = with_seat(assembly, "cap", Seat(Anchor("cap", "origin"), Anchor("hub", "face +z"), "along"))
-    alone = document_of_group(assembly, "g")
-    assert alone.node("hub").seat is None
-    assert alone.node("hub").pose == assembly.node("hub").pose
-    assert alone.node("cap") == assembly.node("cap")
 
 
 # --- what an edit leaves alone is not looked at again ---------------------------------------------------------------
