@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Final
 
 from core.drive import BalanceSettings
 from core.drive.cautions import NO_MARGIN, STANDARDS, balance_cautions
+from core.drive.turning import turning_elsewhere
 from core.errors import MasswrightError
 from core.handover.balance_lines import angle_note, balance_lines, rotor_basis
 from core.handover.drive_lines import REFLECTED, drive_lines, drive_notes
@@ -21,6 +22,8 @@ if TYPE_CHECKING:
     from core.quantity import UnitSet
 
 BALANCE: Final = "Balance"
+# So many parts are named in a note.
+MOST_NAMED: Final = 5
 # The caution of every sheet says these already.
 _SAID = frozenset({NO_MARGIN, STANDARDS})
 
@@ -42,7 +45,7 @@ def sheet_of_machine(machine: Machine, choice: SheetChoice, unit_set: UnitSet, k
         sheet,
         entries=(*sheet.entries, *drive.entries, *balance.entries),
         checks=failed_first([finding.check for finding in machine.findings()]),
-        notes=(*sheet.notes, *drive.notes, *balance.notes),
+        notes=(*sheet.notes, *_apart_note(machine), *drive.notes, *balance.notes),
         cautions=(*(one for one in (*drive.cautions, *balance.cautions) if one not in _SAID), *sheet.cautions),
     )
 
@@ -63,6 +66,21 @@ def _drive(machine: Machine, units: UnitSet) -> _Added:
     except MasswrightError as error:
         make = LineMaker(REFLECTED, units, "", str(error))
         return _Added((make.of(Kind.INERTIA, "J_mot", "Inertia reflected to the motor shaft", None),))
+
+
+def _apart_note(machine: Machine) -> tuple[str, ...]:
+    """Return which parts count in the values of the whole although they do not turn with the load."""
+    assembly = machine.assembly
+    try:
+        elsewhere = turning_elsewhere(assembly, machine.drive)
+    except MasswrightError:
+        return ()  # The lines of the drive say why.
+    apart = [f"{part.name} ({elsewhere[part.key]})" for part in assembly.table.parts if part.key in elsewhere]
+    if not apart:
+        return ()
+    left = len(apart) - MOST_NAMED
+    told = ", ".join(apart[:MOST_NAMED]) + (f" and {left} more" if left > 0 else "")
+    return (f"The values of the whole count these too, which do not turn with the load: {told}.",)
 
 
 def _balance(machine: Machine, units: UnitSet) -> _Added:

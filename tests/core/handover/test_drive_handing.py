@@ -282,3 +282,16 @@ def test_the_holding_torque_is_the_hardest_of_the_rests():
     assert lines["Drive: at rest|T_h,load"] == pytest.approx(3.0, rel=1e-14)
     assert lines["Drive: at rest|T_h,mot"] == pytest.approx(0.6, rel=1e-14)
     assert lines["Drive: at rest|T_push"] == pytest.approx(-3.0, rel=1e-14)
+
+
+def test_parts_that_count_in_the_whole_but_do_not_turn_with_the_load_are_named_beside_it():
+    machine = disc_machine()
+    stand = Part("stand", "stand", ShapeBody(Cylinder(0.2, 0.1)), Weighed(4.0))
+    both = replace(machine, assembly=machine.assembly.inserted(stand))
+    apart = replace(both, drive=replace(both.drive, turning=(TurnsWith(), TurnsWith("stand", "fixed"))))
+    sheet = sheet_of_machine(apart, SheetChoice(), SI)
+    assert "The values of the whole count these too, which do not turn with the load: stand (stands still)." in sheet.notes
+    assert not any("do not turn with the load" in note for note in sheet_of_machine(both, SheetChoice(), SI).notes)
+    found = {entry.symbol: entry.si for entry in sheet.entries}
+    # m r²/2 of the stand is in the first, not in the second.
+    assert found["J"] - found["J_turn"] == pytest.approx(4.0 * 0.1**2 / 2, rel=1e-9)
