@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, QTimer, Signal
@@ -30,6 +31,7 @@ if TYPE_CHECKING:
 
 # With more parts than this the ledger is shown first, and what follows it this much later.
 FEW_PARTS, SETTLE_MS = 1_000, 30
+UNNAMED = Assembly().name
 
 
 class Session(QObject):
@@ -250,14 +252,22 @@ class Session(QObject):
         self.file_changed.emit()
 
     def save(self, path: Path) -> bool:
-        """Save the document under a path and go on with it there; return whether that worked."""
-        machine = self.machine
+        """Save the document under a path and go on with it there; return whether that worked.
+
+        A document without a name of its own takes the file's, which the sheet and the values then have.
+        """
+        machine = _named_after(path, self.machine)
         try:
             save_document(machine, path)
         except MasswrightError as error:
             self.refused.emit(str(error))
             return False
         self.path, self._saved = path, machine
+        if machine is not self.machine:
+            self._forget_overlaps(machine.assembly)
+            self.history = replace(self.history, present=machine)
+            self._judge()
+            self._after_change(None)
         self.file_changed.emit()
         self.said.emit(f"Saved {path.name}")
         return True
@@ -310,6 +320,11 @@ class Session(QObject):
         self._tell_changed()
         if moved:
             self.selection_changed.emit()
+
+
+def _named_after(path: Path, machine: Machine) -> Machine:
+    assembly = machine.assembly
+    return machine if assembly.name != UNNAMED else replace(machine, assembly=replace(assembly, name=path.stem))
 
 
 def judged_document(path: Path) -> Machine:

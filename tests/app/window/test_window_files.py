@@ -88,6 +88,19 @@ def test_a_new_document_asks_where_and_gets_the_ending(window, tmp_path):
     assert len(read_document(window.session.path).assembly.members) == 1
 
 
+def test_a_document_without_a_name_takes_that_of_its_file_and_keeps_what_can_be_undone(window, tmp_path):
+    window.add_shape("cylinder")
+    window.files.save_under(tmp_path / "reel")
+    assert read_document(tmp_path / "reel.masswright").assembly.name == "reel"
+    assert window.session.assembly.name == "reel"
+    assert not window.isWindowModified()
+    window.files.save_under(tmp_path / "reel, second try")
+    assert window.session.assembly.name == "reel"
+    assert window.session.history.undo_name == "Add cylinder"
+    window.undo()
+    assert window.session.assembly.members == ()
+
+
 def test_a_file_that_the_user_did_not_choose_is_not_replaced(window, saved):
     before = saved.read_bytes()
     window.add_shape("cylinder")
