@@ -66,7 +66,7 @@ class StartPanel(QWidget):
         words = Words("Put the parts into the ledger, one line each; the totals follow as you type.", "quiet")
         self.shape = _way("shape", "Add a shape", "from dimensions on a sketch")
         self.shape.clicked.connect(add_shape)
-        self.mesh = _way("mesh", "Drop a mesh here", "or choose an STL file")
+        self.mesh = _way("mesh", "Drop a mesh here", "or choose its file")
         self.mesh.clicked.connect(add_mesh)
         self.sample = _way("masswright", "Open a sample", "a dial, a reel or a flap")
         self.samples = QMenu("Open a sample", self)

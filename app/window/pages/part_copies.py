@@ -61,14 +61,14 @@ class CopiesSection(Section):
     def _angle(self, name: str, label: str, tip: str) -> None:
         field = QuantityField(self.session, label, Kind.ANGLE, UNITS["°"])
         self.form.add(label, field, tip)
-        self.bind(field, label, f"copies.{name}")
+        self.bind(field, label.capitalize(), f"copies.{name}")
         self._angles.append((name, field))
 
     def _triple(self, name: str, label: str, kind: Kind, tip: str) -> None:
         triple = TripleField(self.session, label, kind)
         self.form.add(label, triple, tip)
         for at, field in enumerate(triple.fields):
-            self.bind(field, label, f"copies.{name}.{at}")
+            self.bind(field, label.capitalize(), f"copies.{name}.{at}")
         self._triples.append((name, triple))
 
     def show(self, node: AnyLine) -> None:

@@ -6,7 +6,7 @@ import pytest
 
 pytest.importorskip("PySide6.QtWidgets")
 from PySide6.QtWidgets import QApplication
-from window_driver import choose, dialog, names, trigger
+from window_driver import choose, dialog, enter, field, names, trigger
 
 from app.window.fields import ChoiceField
 
@@ -52,3 +52,12 @@ def test_the_page_stays_where_it_was_scrolled_to_when_other_fields_are_called_fo
     filled.session.select(frozenset({"plate"}))
     QApplication.processEvents()
     assert page.verticalScrollBar().value() == 0
+
+
+def test_an_edit_of_a_pattern_is_named_as_other_edits_are(filled):
+    filled.session.select(frozenset({"pins"}))
+    filled.pages.setCurrentWidget(filled.part)
+    enter(field(filled.part, "first copy at"), "15")
+    assert filled.session.history.undo_name == "First copy at of pins: 15"
+    enter(field(filled.part, "axis through z"), "2")
+    assert filled.session.history.undo_name == "Axis through of pins: 2"
