@@ -15,7 +15,7 @@ from strategies import assemblies, cuts
 from core.assembly import Assembly, Cut, DriveAxis, Group, Part, ShapeBody, findings_of, ledger_of
 from core.document import read_document, read_document_bytes, save_document
 from core.errors import DocumentError, EditRefused
-from core.handover.answer import answer_of_assembly
+from core.handover.answer import answer_of_machine
 from core.machine import Machine
 from core.material import ByDensity, NotSet, Weighed
 from core.placement import Pose, Ring, Several
@@ -105,7 +105,7 @@ def test_without_a_mass_the_cuts_have_none_either():
 
 
 def test_the_answer_in_json_names_cuts_as_such():
-    answer = answer_of_assembly(Assembly("dial", (plate(),)), "dial.masswright")
+    answer = answer_of_machine(Machine(Assembly("dial", (plate(),))), "dial.masswright")
     kinds = [(line["name"], line["kind"]) for line in answer["ledger"]]
     assert kinds == [("plate", "part"), ("bore ⌀60", "cut"), ("holes", "cut"), ("dial", "total")]
     assert answer["ledger"][1]["mass_kg"] < 0

@@ -24,7 +24,7 @@ from core.assembly.variants import (
 from core.document import read_document_bytes, save_document
 from core.errors import EditRefused
 from core.handover import SheetChoice, sheet_of_assembly
-from core.handover.answer import answer_of_assembly
+from core.handover.answer import answer_of_machine
 from core.machine import Machine
 from core.material import ByDensity, NotSet
 from core.placement import Pose, Ring
@@ -180,13 +180,13 @@ def test_a_document_keeps_its_variants_and_one_without_them_has_no_such_entries(
 
 
 def test_the_answer_for_programs_says_the_variant_and_the_totals_of_each():
-    answer = answer_of_assembly(machine(FULL), "m.masswright")
+    answer = answer_of_machine(Machine(machine(FULL)), "m.masswright")
     assert answer["variant"] == FULL
     assert [each["name"] for each in answer["variants"]] == [EMPTY, FULL]
     assert answer["variants"][1]["mass_kg"] == pytest.approx(answer["mass_kg"], rel=1e-15)
     assert answer["variants"][1]["axis_inertia_kgm2"] == pytest.approx(answer["axis"]["inertia_kgm2"], rel=1e-12)
     assert {line["key"]: line["counts"] for line in answer["ledger"]}["d"] is False
-    assert "variants" not in answer_of_assembly(Assembly("plain", (disc("a"),)), "p.masswright")
+    assert "variants" not in answer_of_machine(Machine(Assembly("plain", (disc("a"),))), "p.masswright")
 
 
 PROPERTY = settings(deadline=None, max_examples=30, suppress_health_check=list(HealthCheck))
