@@ -2,6 +2,7 @@
 
 Paths:
     dimension.NAME                        of a shape (of a part, or of a cut)
+    outline.LOOP.POINT.FIELD              of its outline, see core.assembly.outline_numbers
     density, per area, per length, weighed    what says the mass of a part
     known.mass, known.centre.I, known.tensor.I, known.axial, known.length    of a data sheet
     position.I, turn.I                    of the pose
@@ -21,9 +22,11 @@ from core.assembly.axis import DriveAxis
 from core.assembly.bodies import KnownAxial, KnownTensor, ShapeBody
 from core.assembly.cuts import Cut
 from core.assembly.nodes import Group, Node, Part
+from core.assembly.outline_numbers import OUTLINE, outline_value, outline_words, with_outline_values
 from core.errors import EditRefused, QuantityError
 from core.material import ByDensity, PerArea, PerLength, Weighed
 from core.quantity.units import Kind
+from core.shapes import OutlinedShape
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -124,6 +127,8 @@ def words_of(line: Typable, path: str) -> str:
 
 def value_of(line: Typable, path: str) -> float | None:
     """Return the number under a path in SI; None where the line as it is now has no such number."""
+    if path.startswith(OUTLINE):
+        return outline_value(_shape(line), path)
     if path.startswith("dimension."):
         shape = _shape(line)
         return None if shape is None else shape.values().get(path.removeprefix("dimension."))
@@ -151,12 +156,15 @@ def with_values(line: Line, values: Mapping[str, float]) -> Line:
         ShapeError, ValueRefused, MaterialError: the line cannot be with these numbers.
     """
     sizes: dict[str, float] = {}
+    points: dict[str, float] = {}
     changes: dict[str, Any] = {}
     inside: dict[str, dict[str, Any]] = {}
     for path, value in values.items():
         spot = _spot(line, path)
         if path.startswith("dimension."):
             sizes[spot.attribute] = value
+        elif path.startswith(OUTLINE):
+            points[path] = value
         elif path in DRIVER_PATHS:
             if not isinstance(line, Part):
                 raise EditRefused("only a part has a material or mass of its own", where=line.name)
@@ -167,9 +175,11 @@ def with_values(line: Line, values: Mapping[str, float]) -> Line:
         several = {name: tuple(each) if isinstance(each, list) else each for name, each in numbers.items()}
         changes |= {attribute: replace(getattr(line, attribute), **several)} if attribute else several
     shape = _shape(line)
-    if sizes and shape is not None:
-        resized = shape.resized(sizes)
-        changes |= {"shape": resized} if isinstance(line, Cut) else {"body": ShapeBody(resized)}
+    if shape is not None and (sizes or points):
+        changed_shape = shape.resized(sizes) if sizes else shape
+        if isinstance(changed_shape, OutlinedShape) and points:
+            changed_shape = with_outline_values(changed_shape, points)
+        changes |= {"shape": changed_shape} if isinstance(line, Cut) else {"body": ShapeBody(changed_shape)}
     changed: Line = replace(line, **changes)
     return changed
 
@@ -211,6 +221,8 @@ def _spot(line: Typable, path: str) -> Spot:
         for dimension in shape.dimensions if shape is not None else ():
             if dimension.name == name:
                 return Spot(_DIMENSION_KINDS[dimension.kind], dimension.label, name)
+    if path.startswith(OUTLINE) and outline_value(_shape(line), path) is not None:
+        return Spot(Kind.LENGTH, outline_words(path), path)
     spot = _SPOTS.get(path)
     if spot is None:
         raise _nothing_there(line, path)

@@ -14,6 +14,8 @@ from core.shapes.profile.edges import tangents
 from core.shapes.profile.outline import edges_of, points_of
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from core.arrays import FloatArray
     from core.errors import MasswrightError
 
@@ -77,6 +79,22 @@ def without_point(loops: Loops, place: Place) -> Loops:
     elif not left:
         return loops
     return tuple(tuple(points) for points in changed)
+
+
+def places_with(new: Place) -> Callable[[int, int], Place]:
+    """Return what gives the place of an old point once a new one has been put in at a place."""
+    return lambda loop, point: (loop, point + (loop == new[0] and point >= new[1]))
+
+
+def places_without(gone: Place, *, whole_loop: bool) -> Callable[[int, int], Place | None]:
+    """Return what gives the place of an old point once one, or the whole loop it is in, is gone; None for that one."""
+
+    def moved(loop: int, point: int) -> Place | None:
+        if whole_loop:
+            return None if loop == gone[0] else (loop - (loop > gone[0]), point)
+        return None if (loop, point) == gone else (loop, point - (loop == gone[0] and point > gone[1]))
+
+    return moved
 
 
 def with_hole(loops: Loops) -> Loops:

@@ -18,6 +18,8 @@ from app.window.outline.draft import (
     fault_places,
     name_of_point,
     outline_of,
+    places_with,
+    places_without,
     with_hole,
     with_point,
     with_point_behind,
@@ -27,8 +29,10 @@ from app.window.outline.table import OutlineTable
 from app.window.pages.section import Section
 from app.window.style import GRID
 from core.assembly import Cut, Part, ShapeBody
+from core.assembly.fields import typed_for, with_typed
+from core.assembly.outline_numbers import FIELDS, outline_path, with_places_moved
 from core.errors import EditRefused, MasswrightError, QuantityError
-from core.quantity import UNITS, Kind, compact, parse
+from core.quantity import UNITS, Kind, compact, names_in, parse
 from core.shapes import Outline, OutlinedShape
 from core.shapes.profile import outline_of_text, text_of_outline
 
@@ -44,7 +48,6 @@ Mark = Literal[".", ","]
 # Steps of the grid that are offered, in mm, beside one that suits the outline.
 GRID_STEPS = (0.1, 0.2, 0.5, 1.0, 2.0, 5.0, 10.0, 20.0, 50.0)
 FILE_UNITS = ("mm", "cm", "m", "in", "ft")
-FIELDS = ("x", "y", "rounding", "arc")
 
 
 class OutlineSection(Section):
@@ -145,7 +148,11 @@ class OutlineSection(Section):
         self._show()
 
     def _show(self) -> None:
-        self.table.show_loops(self._loops, self._unit, self.session.decimal_mark)
+        line = self.session.assembly.line(self.key)
+        self.table.show_loops(
+            self._loops, self._unit, self.session.decimal_mark,
+            lambda place, column: typed_for(line, outline_path(*place, column)),
+        )
         self.canvas.show_loops(self._loops)
 
     def _choose(self, place: Place) -> None:
@@ -173,33 +180,46 @@ class OutlineSection(Section):
 
     # Edits
 
-    def _take(self, loops: Loops, words: str) -> None:
-        """Show loops, and make them the outline under a name for undo; where they are none, say why."""
+    def _take(
+        self, loops: Loops, words: str, and_then: Callable[[AnyLine], AnyLine] = lambda line: line
+    ) -> None:
+        """Show loops, and make them the outline under a name for undo; where they are none, say why.
+
+        and_then does to the line what goes with that.
+        """
         self._loops = loops
         try:
-            self._take_outline(outline_of(loops), words)
+            self._take_outline(outline_of(loops), words, and_then)
         except MasswrightError as error:
             self._refuse(error)
         self._show()
 
-    def _take_outline(self, outline: Outline, words: str) -> None:
+    def _take_outline(
+        self, outline: Outline, words: str, and_then: Callable[[AnyLine], AnyLine] = lambda line: line
+    ) -> None:
         line = self.session.assembly.line(self.key)
         shape = outlined(line).with_outline(outline)
         self._kept, self._loops = outline, outline.loops
         self._refuse(None)
-        self.edit(f"{words} of {line.name}", lambda line: _with_shape(line, shape))
+        self.edit(f"{words} of {line.name}", lambda line: and_then(_with_shape(line, shape)))
 
     def _type(self, place: Place, column: int, text: str) -> None:
-        point = self._loops[place[0]][place[1]]
+        point, names = self._loops[place[0]][place[1]], self.session.names
+        where = f"{name_of_point(place)}, {FIELDS[column]}"
         try:
-            value = parse(text, Kind.LENGTH, self._unit, where=f"{name_of_point(place)}, {FIELDS[column]}").value
+            value = parse(text, Kind.LENGTH, self._unit, where=where, names=names).value
         except MasswrightError as error:
             self._refuse(error)
             self._show()
             return
-        if value != point[column]:
-            changed = point._replace(**{FIELDS[column]: value})
-            self._take(with_point(self._loops, place, changed), f"{FIELDS[column]} of {name_of_point(place)}")
+        # A text without names says no more than its number; the table shows that.
+        kept = text.strip() if names_in(text, names) else ""
+        if value != point[column] or kept:
+            changed, path = point._replace(**{FIELDS[column]: value}), outline_path(*place, column)
+            self._take(
+                with_point(self._loops, place, changed), f"{FIELDS[column]} of {name_of_point(place)}",
+                lambda line: with_typed(line, path, kept),
+            )
 
     def _move(self, place: Place, spot: tuple[float, float]) -> None:
         point = self._loops[place[0]][place[1]]
@@ -224,14 +244,18 @@ class OutlineSection(Section):
 
     def _split(self, place: Place, spot: tuple[float, float] | None) -> None:
         behind = (place[0], place[1] + 1)
-        self._take(with_point_behind(self._loops, place, spot), f"New {name_of_point(behind)}")
+        self._take(
+            with_point_behind(self._loops, place, spot), f"New {name_of_point(behind)}",
+            lambda line: with_places_moved(line, places_with(behind)),
+        )
         self.table.choose(behind)
         self._choose(behind)
 
     def _remove(self, place: Place) -> None:
         loops = without_point(self._loops, place)
+        moved = places_without(place, whole_loop=len(loops) < len(self._loops))
         if loops != self._loops:
-            self._take(loops, f"Delete {name_of_point(place)}")
+            self._take(loops, f"Delete {name_of_point(place)}", lambda line: with_places_moved(line, moved))
 
     def _add_hole(self) -> None:
         loops = with_hole(self._loops)

@@ -20,6 +20,8 @@ from app.window.outline.draft import Loops, Place, name_of_point, places
 from core.quantity import compact
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from core.quantity import Unit
 
 RADII = ("rounding", "arc")
@@ -78,8 +80,10 @@ class OutlineTable(QTableWidget):
         """Return room for four columns and some rows."""
         return QSize(4 * _COLUMN + 72, HEIGHT)
 
-    def show_loops(self, loops: Loops, unit: Unit, decimal_mark: str) -> None:
-        """Show these loops in a length unit; the current cell stays where it is."""
+    def show_loops(
+        self, loops: Loops, unit: Unit, decimal_mark: str, typed: Callable[[Place, int], str] = lambda _at, _column: ""
+    ) -> None:
+        """Show these loops in a length unit; the current cell stays where it is. typed: what says a number by names."""
         self._filling = True
         self._places = places(loops)
         self.setHorizontalHeaderLabels([f"{name}\n{unit.symbol}" for name in (*self._axes, *RADII)])
@@ -93,10 +97,12 @@ class OutlineTable(QTableWidget):
                 if item is None:
                     item = QTableWidgetItem()
                     item.setTextAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
-                    item.setToolTip(TIPS[column])
                     self.setItem(row, column, item)
                 item.setText(text)
-                item.setData(Qt.ItemDataRole.AccessibleTextRole, f"{name_of_point((loop, point))}: {text}")
+                said = typed((loop, point), column)
+                item.setToolTip(f"= {said}" if said else TIPS[column])
+                means = f" = {said}" if said else ""
+                item.setData(Qt.ItemDataRole.AccessibleTextRole, f"{name_of_point((loop, point))}: {text}{means}")
         self._filling = False
 
     @property

@@ -25,6 +25,8 @@ from app.window.outline.draft import (
 )
 from app.window.outline.section import OutlineSection
 from app.window.pages.part_cuts import CutsSection
+from core.assembly.names import NameEntry
+from core.assembly.naming import with_entry
 from core.errors import ShapeError
 from core.quantity import UNITS
 from core.shapes import Outline, OutlinePoint
@@ -406,3 +408,18 @@ def test_the_outline_of_a_cut_is_edited_like_that_of_a_part(window):
     assert window.session.history.undo_name.startswith("point 2 to ")
     trigger(window, "Edit", "Undo")
     assert last_cut(window).shape.outline == before
+
+
+def test_a_point_typed_with_a_named_dimension_follows_it_and_says_so(plate):
+    plate.session.edit("wide", lambda before: with_entry(before, NameEntry("wide", "80 mm")))
+    for row in (1, 2):
+        type_cell(plate, row, 0, "wide")
+    table = section(plate.part).table
+    assert table.item(2, 0).toolTip() == "= wide"
+    table.setCurrentCell(0, 0)
+    QTest.keyClick(table, Qt.Key.Key_Insert)
+    plate.session.edit("wide", lambda before: with_entry(before, NameEntry("wide", "90 mm")))
+    assert [x for x, _ in points(plate)] == [0, 40, 90, 90, 0]
+    type_cell(plate, 2, 0, "85")
+    plate.session.edit("wide", lambda before: with_entry(before, NameEntry("wide", "95 mm")))
+    assert [x for x, _ in points(plate)] == [0, 40, 85, 95, 0]
