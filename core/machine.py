@@ -90,7 +90,18 @@ class Machine:
         return (*findings_of(self.assembly), *self._drive_findings())
 
     def _drive_findings(self) -> tuple[Finding, ...]:
-        return tuple(Finding("", "drive", check) for check in self._drive_checks) if self.has_drive else ()
+        if not self.has_drive:
+            return ()
+        # A part that grew may be too much for a brake: that is found, and does not forbid the part.
+        try:
+            found = self.drive_answer.findings
+        except MasswrightError as error:
+            return (Finding("", "drive", Check("drive", ok=False, text=str(error))),)
+        try:
+            _ = self.balance_answer
+        except MasswrightError as error:
+            return (*found, Finding("", "drive", Check("balance", ok=False, text=str(error))))
+        return found
 
     def findings_at_once(self) -> tuple[Finding, ...]:
         """Return the findings as far as they are known without waiting for a long duty."""
@@ -119,19 +130,6 @@ class Machine:
     @Once
     def _without_duty(self) -> Machine:
         return replace(self, drive=replace(self.drive, duty=Duty()))
-
-    @property
-    def _drive_checks(self) -> tuple[Check, ...]:
-        # A part that grew may be too much for a brake: that is found, and does not forbid the part.
-        try:
-            checks = self.drive_answer.checks
-        except MasswrightError as error:
-            return (Check("drive", ok=False, text=str(error)),)
-        try:
-            _ = self.balance_answer
-        except MasswrightError as error:
-            return (*checks, Check("balance", ok=False, text=str(error)))
-        return checks
 
     def with_assembly(self, assembly: Assembly) -> Machine:
         """Return the machine with another assembly: seated lines follow, and what the drive says of lines and names.

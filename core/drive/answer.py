@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from core.assembly import Finding
 from core.checks import Check
 from core.drive.axis import AboutAxis, TurningBody, about_axis, bodies_of, keys_turning
 from core.drive.balance import (
@@ -34,7 +35,7 @@ from core.once import Once
 
 if TYPE_CHECKING:
     from core.arrays import FloatArray
-    from core.assembly import Assembly, DriveAxis
+    from core.assembly import Assembly, DriveAxis, Node
     from core.drive.settings import BalanceSettings, DriveSettings
 
 # A turning part whose J is this near to the rotor's, relative, may be the rotor itself.
@@ -59,7 +60,7 @@ class DriveAnswer:
         stops: the stops asked for.
         judged: the motor's limits kept or not.
         stored_energy: J, ½·J·ω² of everything at the highest speed of the duty.
-        checks: parts without mass, a rotor counted twice, limits kept or not.
+        findings: parts without mass, a rotor counted twice, limits kept or not; with the line they are about.
         cautions: the sentences that belong in every output.
     """
 
@@ -78,8 +79,13 @@ class DriveAnswer:
     stops: tuple[Stop, ...]
     judged: tuple[Judged, ...]
     stored_energy: float
-    checks: tuple[Check, ...]
+    findings: tuple[Finding, ...]
     cautions: tuple[str, ...]
+
+    @property
+    def checks(self) -> tuple[Check, ...]:
+        """The checks of the findings."""
+        return tuple(finding.check for finding in self.findings)
 
     def curves(self, shaft: str = LOAD) -> Curves | None:
         """Return the curves at a shaft; None without a duty."""
@@ -133,7 +139,7 @@ def drive_answer(assembly: Assembly, settings: DriveSettings) -> DriveAnswer:
         reflected(train, demand.bodies, MOTOR), reflected(train, demand.bodies, LOAD),
         tuple(gravity_wave(body, settings.gravity) for body in demand.bodies), ratio, study, load, motor, rests,
         worst, stops, judged, energy,
-        (*_weightless(assembly, settings), *_rotor_checks(assembly, settings), *_limit_checks(ratio, judged)),
+        (*_weightless(assembly, settings), *_rotor_findings(assembly, settings), *_limit_findings(ratio, judged)),
         cautions(energy, load_can_move=worst.drift != "stays"),
     )
 
@@ -265,7 +271,7 @@ def _judged(settings: DriveSettings, study: Study | None, motor: Needs | None) -
     return tuple(judged)
 
 
-def _limit_checks(ratio: InertiaRatio, judged: tuple[Judged, ...]) -> list[Check]:
+def _limit_findings(ratio: InertiaRatio, judged: tuple[Judged, ...]) -> list[Finding]:
     checks = []
     if ratio.within is not None:
         text = f"load inertia is {ratio.ratio:.4g} times the motor's; your limit is {ratio.limit:.4g}"
@@ -274,22 +280,21 @@ def _limit_checks(ratio: InertiaRatio, judged: tuple[Judged, ...]) -> list[Check
         whole = "RMS torque at the mean speed" if one.what == "continuous" else "torque"
         text = f"{whole}: {one.torque:.4g} N·m at {one.speed:.4g} rad/s; your limit there is {one.limit:.4g} N·m"
         checks.append(Check(f"{one.what} torque of the motor", ok=one.within, text=text))
-    return checks
+    return [Finding("", "drive", check) for check in checks]
 
 
-def _weightless(assembly: Assembly, settings: DriveSettings) -> list[Check]:
+def _weightless(assembly: Assembly, settings: DriveSettings) -> list[Finding]:
     """Tell of parts that turn and of which nothing says what they weigh."""
     turning = set(keys_turning(assembly, settings.turning))
     return [
-        Check(
-            "mass of what turns", ok=False,
-            text=f"{part.name}: nothing says what it weighs; torque and balance leave it out",
+        _failed(
+            part, "mass of what turns", f"{part.name}: nothing says what it weighs; torque and balance leave it out"
         )
         for part in assembly.without_mass if part.key in turning
     ]
 
 
-def _rotor_checks(assembly: Assembly, settings: DriveSettings) -> list[Check]:
+def _rotor_findings(assembly: Assembly, settings: DriveSettings) -> list[Finding]:
     """Tell of a rotor that is in the motor's data and also among what turns."""
     motor = settings.train.motor
     if motor.inertia == 0:
@@ -298,15 +303,19 @@ def _rotor_checks(assembly: Assembly, settings: DriveSettings) -> list[Check]:
     if motor.rotor and motor.rotor in assembly:
         inside = {part.key for part in assembly.node(motor.rotor).table.parts} & turning
         if inside:
-            name = assembly.node(motor.rotor).name
-            text = f"{name}: it turns with the train, and the motor's data has its inertia too; it is counted twice"
-            return [Check("rotor counted twice", ok=False, text=text)]
-    checks = []
+            rotor = assembly.node(motor.rotor)
+            text = "it turns with the train, and the motor's data has its inertia too; it is counted twice"
+            return [_failed(rotor, "rotor counted twice", f"{rotor.name}: {text}")]
+    found = []
     table = assembly.table
     # About its own centre: the rotor may stand beside the drive axis.
     own = np.bincount(table.owner, table.moments.own_inertia_along(assembly.drive_axis.direction), len(table.parts))
     for part, inertia in zip(table.parts, own.tolist(), strict=True):
         if part.key in turning and math.isclose(inertia, motor.inertia, rel_tol=SAME_INERTIA):
             text = f"{part.name}: its J {inertia:.4g} kg·m² is that of the motor's rotor; is the rotor counted twice?"
-            checks.append(Check("rotor counted twice", ok=False, text=text))
-    return checks
+            found.append(_failed(part, "rotor counted twice", text))
+    return found
+
+
+def _failed(line: Node, name: str, text: str) -> Finding:
+    return Finding(line.key, line.name, Check(name, ok=False, text=text))

@@ -44,7 +44,8 @@ COMPUTED = [
 # What pint calls a unit where its name is not the symbol without dots; for a flywheel effect, its J.
 PINT_NAMES = {
     "°": "degree", "rev": "turn", "rev/s": "turn/second", "rev/s²": "turn/second**2", "°/s": "degree/second",
-    "°/s²": "degree/second**2", "rpm": "revolution/minute", "gₙ": "standard_gravity", "%": "percent",
+    "°/s²": "degree/second**2", "°/s³": "degree/second**3", "rev/s³": "turn/second**3",
+    "N·m/rpm": "N*m/(revolution/minute)", "rpm": "revolution/minute", "gₙ": "standard_gravity", "%": "percent",
     "hp": "horsepower", "kgf·m² GD²": "kg*m**2/4", "kg·m² GD²": "kg*m**2/4", "lb·ft² WR²": "lb*ft**2",
     "lb·in² WR²": "lb*inch**2",
 }
@@ -52,7 +53,8 @@ BASE = {
     Kind.LENGTH: "m", Kind.AREA: "m**2", Kind.VOLUME: "m**3", Kind.MASS: "kg", Kind.DENSITY: "kg/m**3",
     Kind.AREA_DENSITY: "kg/m**2", Kind.LINEAR_DENSITY: "kg/m", Kind.INERTIA: "kg*m**2", Kind.UNBALANCE: "kg*m",
     Kind.FORCE: "N", Kind.TORQUE: "N*m", Kind.ENERGY: "J", Kind.POWER: "W", Kind.ANGLE: "radian",
-    Kind.SPEED: "radian/s", Kind.ANGULAR_ACCELERATION: "radian/s**2", Kind.VELOCITY: "m/s",
+    Kind.SPEED: "radian/s", Kind.ANGULAR_ACCELERATION: "radian/s**2", Kind.ANGULAR_JERK: "radian/s**3",
+    Kind.VISCOUS_FRICTION: "N*m*s/radian", Kind.VELOCITY: "m/s",
     Kind.ACCELERATION: "m/s**2", Kind.TIME: "s", Kind.NUMBER: "dimensionless",
 }
 OFFERED = [unit for units in UNITS_BY_KIND.values() for unit in units if unit.symbol]
