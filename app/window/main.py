@@ -229,7 +229,8 @@ class MainWindow(QMainWindow):
         inertia = f"{shown(self.session, total.inertia, units[Kind.INERTIA])} {units[Kind.INERTIA].symbol}"
         look = f"{counted(failed)} a look" if failed else "no check needs a look"
         axis = self.session.assembly.drive
-        self.totals.setText(f"{mass}   ·   J about {axis} {inertia}   ·   {look}")
+        of_all = "J of all parts about" if self.session.machine.turning_elsewhere else "J about"
+        self.totals.setText(f"{mass}   ·   {of_all} {axis} {inertia}   ·   {look}")
 
     def _prepare(self, node: Node) -> None:
         """Make what is drawn of a line's parts, before it is shown; called from a worker."""

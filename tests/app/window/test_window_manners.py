@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import sys
 import threading
+from dataclasses import replace
 
 import pytest
 from PySide6.QtCore import QObject, Qt, Signal
@@ -37,6 +38,7 @@ from window_driver import (
 
 from app.window.crash import CrashReporter, log_path
 from app.window.style import Words
+from core.drive import TurnsWith
 from core.machine import Machine
 
 pytestmark = pytest.mark.gui
@@ -378,3 +380,9 @@ def test_no_page_takes_the_room_of_the_ledger(filled, width, height, least):
         filled.pages.setCurrentIndex(at)
         QApplication.processEvents()
         assert filled.ledger.height() >= least, filled.pages.tabText(at)
+
+
+def test_the_foot_says_so_when_some_parts_do_not_turn_with_the_load(filled):
+    assert "J about Spindle" in filled.totals.text()
+    filled.session.edit_drive("Stand still", lambda before: replace(before, turning=(*before.turning, TurnsWith("hub", "fixed"))))
+    assert "J of all parts about Spindle" in filled.totals.text()
