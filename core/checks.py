@@ -20,6 +20,9 @@ ROUNDED_FIGURES = 5e-3
 # kg/m³: from light foam to a little above the densest metals.
 DENSITY_RANGE = (20.0, 23_000.0)
 
+# Checks that a body keeps and a reader wants to know of all the same: cuts that stick out, mends.
+REMARKS = frozenset({"cut", "mends"})
+
 # What most machine parts are made of, kg/m³: a slip is only named if it leads here.
 _USUAL_DENSITIES = (900.0, 12_000.0)
 # A named unit is only likely if the radius of gyration then is at least this share of the part's reach.

@@ -101,6 +101,7 @@ class MainWindow(QMainWindow):
         self._restore()
         self.own_list.open()
         self.refresh()
+        self._show_in_view()
 
     def _lay_out(self) -> None:
         for page, words in (

@@ -12,7 +12,8 @@ import numpy as np
 from core.assembly.bodies import Body, KnownAxial, KnownTensor, MeshBody, ShapeBody, equal_ellipsoid
 from core.assembly.cuts import Cut, check_cuts
 from core.assembly.cutting import CUT_AT_ONCE, Cutting, cutting_of, is_cut_already, surface_without
-from core.assembly.part_checks import REMARKS, checks_of_part
+from core.assembly.part_checks import checks_of_part
+from core.checks import REMARKS
 from core.errors import EditRefused
 from core.material import ByDensity, ByMaterial, NotSet, PerArea, PerLength, Weighed, check_measure
 from core.moments import Moments

@@ -17,9 +17,6 @@ if TYPE_CHECKING:
     from core.assembly.nodes import Part
     from core.measure import Measure
 
-# Checks that a body keeps and a reader wants to know of all the same.
-REMARKS = frozenset({"cut", "mends"})
-
 _WEIGHED_BY: dict[Measure, str] = {
     "volume": "material, density or weighed mass",
     "area": "mass per area or weighed mass",

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Final
 
-from core.assembly.part_checks import REMARKS
+from core.checks import REMARKS
 from core.handover.lines import (
     FOR_THE_DRIVE,
     MASS_AND_CENTRE,

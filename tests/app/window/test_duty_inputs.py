@@ -330,7 +330,9 @@ def test_a_long_duty_is_worked_out_beside_the_window(filled: MainWindow, qtbot: 
     assert any("being worked out" in finding.check.text for finding in filled.session.findings)
     filled.torque.show_view(1)
     assert "being worked out" in filled.torque.result.told.text()
+    filled.pages.setCurrentWidget(filled.sheet)
     assert filled.sheet.told.text().startswith("The duty is long")
+    filled.pages.setCurrentWidget(filled.torque)
     filled.torque.show_view(0)
     type_in(panel.table, 1, ANGLE, "90.5")
     assert filled.session.machine is not machine
