@@ -342,7 +342,7 @@ def judged_document(path: Path) -> Machine:
 def _refusal_of_drive(machine: Machine) -> str:
     """Return the sentence that says why a drive cannot be worked out; "" where it can."""
     try:
-        _ = machine.at_once.drive_answer
+        _ = machine.at_once.drive_answer, machine.balance_answer
     except MasswrightError as error:
         return str(error)
     return ""

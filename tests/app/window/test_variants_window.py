@@ -101,6 +101,7 @@ def test_the_totals_of_all_variants_stand_side_by_side_and_are_copied_with_their
 
 
 def test_the_sheet_says_which_variant_its_values_are_of(varied):
+    varied.pages.setCurrentWidget(varied.sheet)
     choose(varied.actions_.variants, "empty")
     assert 'Values of the variant "empty"' in varied.sheet.told.text()
     varied.session.select(frozenset({"ring"}))
